@@ -1,0 +1,81 @@
+"""What a user can get wrong, said once and in full."""
+
+from __future__ import annotations
+
+import difflib
+from collections.abc import Iterable
+from dataclasses import dataclass, replace
+
+
+@dataclass(frozen=True)
+class Problem:
+    """One thing that is wrong in what the user gave.
+
+    Parameters
+    ----------
+    message : str
+        What is wrong, in the words of the trade.
+    remedy : str
+        What would be right.
+    file, line : str, int
+        Where it stands; the line counts from 1.
+    mark : str
+        What it belongs to, as the user would say it: ``beam B3``, ``panel P1``.
+    key : str
+        The key of the job file, dotted: ``design.cover``.
+    """
+
+    message: str
+    remedy: str = ""
+    file: str | None = None
+    line: int | None = None
+    mark: str | None = None
+    key: str | None = None
+
+    def __str__(self) -> str:
+        place = ":".join(str(part) for part in (self.file, self.line) if part is not None)
+        parts = [part for part in (place, self.mark, self.key) if part]
+        text = ": ".join([*parts, self.message])
+        return f"{text}; {self.remedy}" if self.remedy else text
+
+    def at(self, **place: str | int | None) -> Problem:
+        """Fill in those parts of the place that are not known yet."""
+        missing = {key: value for key, value in place.items() if getattr(self, key) is None}
+        return replace(self, **missing)  # type: ignore[arg-type]
+
+
+class CalcpackError(Exception):
+    """Everything a user can cause; carries one problem or several.
+
+    Examples
+    --------
+    >>> error = CalcpackError("no section 'rb2'", remedy="did you mean 'rb1'?", file="a.toml", line=7)
+    >>> str(error)
+    "a.toml:7: no section 'rb2'; did you mean 'rb1'?"
+    """
+
+    def __init__(self, *problems: Problem | str, **fields: str | int | None) -> None:
+        self.problems = tuple(
+            problem if isinstance(problem, Problem) else Problem(problem, **fields)  # type: ignore[arg-type]
+            for problem in problems
+        )
+        super().__init__("\n".join(str(problem) for problem in self.problems))
+
+
+def nearest(word: str, words: Iterable[str]) -> str:
+    """The remedy for a mistyped word: the nearest right one, or all of them.
+
+    Examples
+    --------
+    >>> nearest("sheer", ["shear", "moment"])
+    "did you mean 'shear'?"
+    >>> nearest("xyz", ["shear", "moment"])
+    "it can be 'shear' or 'moment'"
+    """
+    choices = list(words)
+    if close := difflib.get_close_matches(word, choices, n=1, cutoff=0.55):
+        return f"did you mean '{close[0]}'?"
+    if not choices:
+        return "there are none"
+    *first, last = [f"'{choice}'" for choice in choices]
+    return f"it can be {', '.join(first)} or {last}" if first else f"it can only be {last}"
