@@ -6,6 +6,8 @@ import difflib
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
 
+MANY = 12  # choices a message lists in full
+
 
 @dataclass(frozen=True)
 class Problem:
@@ -63,7 +65,7 @@ class CalcpackError(Exception):
 
 
 def nearest(word: str, words: Iterable[str]) -> str:
-    """The remedy for a mistyped word: the nearest right one, or all of them.
+    """The remedy for a mistyped word: the nearest right one, or what there is.
 
     Examples
     --------
@@ -72,10 +74,13 @@ def nearest(word: str, words: Iterable[str]) -> str:
     >>> nearest("xyz", ["shear", "moment"])
     "it can be 'shear' or 'moment'"
     """
-    choices = list(words)
-    if close := difflib.get_close_matches(word, choices, n=1, cutoff=0.55):
-        return f"did you mean '{close[0]}'?"
+    choices = list(dict.fromkeys(words))
+    folded = {choice.casefold(): choice for choice in reversed(choices)}
+    if close := difflib.get_close_matches(word.casefold(), folded, n=1, cutoff=0.55):
+        return f"did you mean '{folded[close[0]]}'?"
     if not choices:
         return "there are none"
+    if len(choices) > MANY:
+        return f"it can be {', '.join(repr(choice) for choice in choices[:MANY])} and so on"
     *first, last = [f"'{choice}'" for choice in choices]
     return f"it can be {', '.join(first)} or {last}" if first else f"it can only be {last}"

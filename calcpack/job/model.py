@@ -94,7 +94,8 @@ class Section(Frozen):
     key: str
     shape: Literal["rectangle", "tee", "rolled"]
     designation: str = ""
-    dimensions: dict[str, float] = {}  # [m]: width, depth, flange_width, flange_depth, web, flange, root_radius
+    # [m]: width, depth, flange_width, flange_depth, web, flange, root_radius
+    dimensions: dict[str, float] = {}
     effective_flange: bool = False  # a tee whose flange width a design clause has yet to give
     area: float  # [m2]; for an effective flange that of the web over the full depth
     inertia: float  # [m4], about the horizontal axis
