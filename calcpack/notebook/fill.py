@@ -1,0 +1,94 @@
+"""Template and parameters make a notebook."""
+
+from __future__ import annotations
+
+import ast
+from dataclasses import dataclass
+from typing import Any
+
+import nbformat
+
+from calcpack.job.errors import CalcpackError
+from calcpack.notebook.parameters import BeamInput, to_text
+from calcpack.notebook.templates import Template
+
+PARAMETERS_TAG = "parameters"
+KERNEL = {"display_name": "Python 3 (ipykernel)", "language": "python", "name": "python3"}
+
+
+@dataclass(frozen=True)
+class FilledNotebook:
+    """A notebook with its parameters in, not yet executed."""
+
+    mark: str
+    node: Any  # nbformat.NotebookNode
+
+
+def parameters_cell(text: str) -> str:
+    """Source of the cell that holds the parameters: one string literal, nothing else.
+
+    The JSON text is put into a raw triple-quoted literal; an apostrophe, the one character that
+    could end it, is written as its JSON escape.
+
+    Examples
+    --------
+    >>> cell = parameters_cell('{"title": "O\\'Hara\\'s loft"}')
+    >>> "O'Hara" in cell
+    False
+    """
+    source = "PARAMETERS = r'''" + text.replace("'", "\\u0027") + "'''"
+    value = ast.literal_eval(source.removeprefix("PARAMETERS = "))
+    if "'" in value:
+        raise AssertionError("the parameters would leave their literal")
+    return source
+
+
+def fill(template: Template, parameters: BeamInput) -> FilledNotebook:
+    """Put a beam's parameters into a template's notebook.
+
+    Parameters
+    ----------
+    template : Template
+    parameters : BeamInput
+
+    Returns
+    -------
+    FilledNotebook
+
+    Raises
+    ------
+    CalcpackError
+        The template has no cell tagged ``parameters``.
+    """
+    node = nbformat.reads(template.notebook, as_version=4)
+    for number, cell in enumerate(node.cells):
+        cell["id"] = f"cell-{number:02d}"
+        if cell.cell_type == "code":
+            cell.outputs, cell.execution_count = [], None
+    tagged = [cell for cell in node.cells if PARAMETERS_TAG in cell.metadata.get("tags", ())]
+    if len(tagged) != 1 or tagged[0].cell_type != "code":
+        raise CalcpackError(
+            f"the template '{template.settings.name}' has no code cell tagged '{PARAMETERS_TAG}'",
+            remedy="tag the one cell that the parameters are to replace",
+        )
+    tagged[0].source = parameters_cell(to_text(parameters))
+    node.metadata = nbformat.from_dict(
+        {"kernelspec": KERNEL, "language_info": {"name": "python"}, "calcpack": sheet_metadata(parameters)}
+    )
+    node.nbformat, node.nbformat_minor = 4, 5
+    return FilledNotebook(parameters.mark, node)
+
+
+def sheet_metadata(parameters: BeamInput) -> dict[str, Any]:
+    """What an exporter needs to know beside the cells: the title block and the provenance."""
+    header = parameters.header.model_dump(mode="json")
+    return {
+        "mark": parameters.mark,
+        "title": parameters.template.title,
+        "header": header,
+        "submission": parameters.submission.model_dump(mode="json"),
+        "template": parameters.template.model_dump(mode="json", exclude={"title"}),
+        "input": parameters.input,
+        "program": parameters.program,
+        "sheets": {"first": 1, "of": 1},
+    }
