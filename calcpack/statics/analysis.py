@@ -115,12 +115,16 @@ class _Integration:
         sets, pieces, _ = load.shape
         zero = np.zeros((sets, pieces))
         # what the load of a piece alone adds from its left to its right end
-        self.shear_gain = evaluate(integral(-load, zero), self.widths)
-        self.moment_gain = evaluate(integral(integral(-load, zero), zero), self.widths)
+        self.shear_gain, self.moment_gain = self._gains(-load)
         # values at the left end of every piece
         self.shear, self.moment = zero.copy(), zero.copy()
         self.rotation, self.deflection = zero.copy(), zero.copy()
         self.at = [int(place) for place in np.searchsorted(breaks, line.supports)]
+
+    def _gains(self, coefficients: Floats) -> tuple[Floats, Floats]:
+        """What integrating once and twice over each piece adds."""
+        once = integral(coefficients)
+        return evaluate(once, self.widths), evaluate(integral(once), self.widths)
 
     def response(self) -> Response:
         sets, last = len(self.load), len(self.breaks) - 1
@@ -212,15 +216,12 @@ class _Integration:
         size = len(self.at)
         matrix = np.zeros((size, size))
         right_side = np.zeros((size, len(moments)))
+        area, about_right = self._gains(integral(integral(-self.load, self.shear), self.moment))
         for number, span in enumerate(spans):
             length = self.breaks[span.stop] - self.breaks[span.start]
-            bending = integral(integral(-self.load[:, span], self.shear[:, span]), self.moment[:, span])
-            zero = np.zeros(bending.shape[:-1])
-            area = evaluate(integral(bending, zero), self.widths[span])
-            about_right = evaluate(integral(integral(bending, zero), zero), self.widths[span])
             right_arms = self.breaks[span.stop] - self.breaks[span.start + 1 : span.stop + 1]
-            start = (about_right + area * right_arms).sum(axis=1) / length
-            end = area.sum(axis=1) - start
+            start = (about_right[:, span] + area[:, span] * right_arms).sum(axis=1) / length
+            end = area[:, span].sum(axis=1) - start
             matrix[number, number : number + 2] += length / 3, length / 6
             matrix[number + 1, number : number + 2] += length / 6, length / 3
             right_side[number] -= start
@@ -236,9 +237,8 @@ class _Integration:
         self, moment: Floats, left: slice, right: slice, spans: list[slice]
     ) -> None:
         """Integrate twice more: each span between its supports, overhangs outward from theirs."""
-        zero = np.zeros(moment.shape[:-1])
-        area = evaluate(integral(moment, zero), self.widths)
-        sink = evaluate(integral(integral(-moment, zero), zero), self.widths)
+        area, rise = self._gains(moment)
+        sink = -rise
         turn_first = turn_last = np.zeros(len(moment))
         for number, span in enumerate(spans):
             length = self.breaks[span.stop] - self.breaks[span.start]

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
@@ -40,19 +41,61 @@ class Band:
 
 @dataclass(frozen=True, eq=False)
 class Envelope:
-    """Worst values of one combination with its movable load placed at its worst.
+    """Worst values of one combination with its movable load placed at its worst; made by `envelope`.
 
-    Attributes
-    ----------
-    moment, shear, deflection : Band [kNm], [kN], [kNm³, deflection × EI]
-    reactions_max, reactions_min : (supports,) [kN]
+    Each band is worked out when it is first asked for.
     """
 
-    moment: Band
-    shear: Band
-    deflection: Band
-    reactions_max: Floats
-    reactions_min: Floats
+    response: Response
+    always: Floats
+    placed: Floats
+
+    @cached_property
+    def moment(self) -> Band:
+        """Bending moment [kNm]."""
+        return self._band("moment")
+
+    @cached_property
+    def shear(self) -> Band:
+        """Shear [kN]."""
+        return self._band("shear")
+
+    @cached_property
+    def rotation(self) -> Band:
+        """Rotation × EI [kNm²]."""
+        return self._band("rotation")
+
+    @cached_property
+    def deflection(self) -> Band:
+        """Deflection × EI [kNm³]."""
+        return self._band("deflection")
+
+    @property
+    def reactions_max(self) -> Floats:
+        """Largest reaction of each support (supports,) [kN]."""
+        moved = self.placed[:, None] * self.response.reactions
+        return np.asarray(self.always @ self.response.reactions + np.maximum(moved, 0).sum(axis=0))
+
+    @property
+    def reactions_min(self) -> Floats:
+        """Smallest reaction of each support (supports,) [kN]; negative where the beam lifts off."""
+        moved = self.placed[:, None] * self.response.reactions
+        return np.asarray(self.always @ self.response.reactions + np.minimum(moved, 0).sum(axis=0))
+
+    def _band(self, quantity: Quantity) -> Band:
+        response = self.response
+        coefficients: Floats = getattr(response, quantity)
+        there = self.placed > 0
+        steady = np.tensordot(self.always, coefficients, axes=1)
+        parts = self.placed[there, None, None] * coefficients[there]
+        breaks = _split(response.breaks, response.sign_changes(quantity)[there])
+        steady, parts = _on(breaks, response.breaks, steady), _on(breaks, response.breaks, parts)
+        adds = evaluate(parts, np.diff(breaks) / 2)[..., None] > 0
+        supports = response.line.supports
+        return Band(
+            Curve(breaks, steady + np.where(adds, parts, 0.0).sum(axis=0), supports),
+            Curve(breaks, steady + np.where(adds, 0.0, parts).sum(axis=0), supports),
+        )
 
 
 def envelope(
@@ -98,30 +141,7 @@ def envelope(
         raise ValueError(f"{fixed.shape} and {moved.shape} factors for {response.sets} load sets")
     if not np.all(moved >= 0):
         raise ValueError("a placed set's factor must not be negative")
-    steady = fixed @ response.reactions
-    parts = moved[:, None] * response.reactions
-    return Envelope(
-        moment=_band(response, "moment", fixed, moved),
-        shear=_band(response, "shear", fixed, moved),
-        deflection=_band(response, "deflection", fixed, moved),
-        reactions_max=steady + np.maximum(parts, 0).sum(axis=0),
-        reactions_min=steady + np.minimum(parts, 0).sum(axis=0),
-    )
-
-
-def _band(response: Response, quantity: Quantity, always: Floats, placed: Floats) -> Band:
-    coefficients: Floats = getattr(response, quantity)
-    steady = np.tensordot(always, coefficients, axes=1)
-    there = placed > 0
-    parts = placed[there, None, None] * coefficients[there]
-    breaks = _split(response.breaks, crossings(parts, np.diff(response.breaks)))
-    steady, parts = _on(breaks, response.breaks, steady), _on(breaks, response.breaks, parts)
-    adds = evaluate(parts, np.diff(breaks) / 2)[..., None] > 0
-    supports = response.line.supports
-    return Band(
-        Curve(breaks, steady + np.where(adds, parts, 0.0).sum(axis=0), supports),
-        Curve(breaks, steady + np.where(adds, 0.0, parts).sum(axis=0), supports),
-    )
+    return Envelope(response, fixed, moved)
 
 
 def enclosing(bands: Sequence[Band]) -> Band:

@@ -37,17 +37,19 @@ def derivative(coefficients: Floats) -> Floats:
     return coefficients[..., 1:] * np.arange(1.0, coefficients.shape[-1])
 
 
-def integral(coefficients: Floats, constant: Floats) -> Floats:
+def integral(coefficients: Floats, constant: Floats | float = 0.0) -> Floats:
     """Integrals, one degree higher, with the given value (...) at 0.
 
     Examples
     --------
-    >>> integral(np.array([4.0, 6.0]), np.array(5.0))
+    >>> integral(np.array([4.0, 6.0]), 5.0)
     array([5., 4., 3.])
     """
-    shape = (*coefficients.shape[:-1], 1)
-    powers = np.arange(1.0, coefficients.shape[-1] + 1)
-    return np.concatenate([np.broadcast_to(constant[..., None], shape), coefficients / powers], axis=-1)
+    terms = coefficients.shape[-1]
+    result = np.empty((*coefficients.shape[:-1], terms + 1))
+    result[..., 0] = constant
+    result[..., 1:] = coefficients / np.arange(1.0, terms + 1)
+    return result
 
 
 def shifted(coefficients: Floats, by: Floats) -> Floats:

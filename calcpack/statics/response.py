@@ -11,7 +11,7 @@ import numpy as np
 
 from calcpack.statics.curve import Curve
 from calcpack.statics.line import BeamLine
-from calcpack.statics.polynomials import Floats, evaluate
+from calcpack.statics.polynomials import Floats, crossings, evaluate
 
 Quantity = Literal["load", "shear", "moment", "rotation", "deflection"]
 
@@ -47,6 +47,11 @@ class Response:
     reactions: Floats
     end_moments: Floats
 
+    def __post_init__(self) -> None:
+        for array in vars(self).values():
+            if isinstance(array, np.ndarray):
+                array.flags.writeable = False  # curves and envelopes look into these
+
     @property
     def sets(self) -> int:
         """How many load sets there are."""
@@ -61,6 +66,19 @@ class Response:
     def support_rotations(self) -> Floats:
         """Rotation × EI over each support (sets, supports) [kNm²]."""
         return self._at_supports(self.rotation)
+
+    def sign_changes(self, quantity: Quantity) -> Floats:
+        """Where each set's quantity changes sign inside the pieces: (sets, n, degree), from a piece's start.
+
+        Filled up with nan; worked out once, as every envelope of this response asks for them.
+        """
+        if quantity not in self._sign_changes:
+            self._sign_changes[quantity] = crossings(getattr(self, quantity), np.diff(self.breaks))
+        return self._sign_changes[quantity]
+
+    @cached_property
+    def _sign_changes(self) -> dict[Quantity, Floats]:
+        return {}
 
     def _at_supports(self, coefficients: Floats) -> Floats:
         places = np.searchsorted(self.breaks, self.line.supports)
