@@ -148,7 +148,7 @@ def _named(name: str) -> Unit:
 @lru_cache(maxsize=2048)
 def _unit(unit: str) -> Unit:
     """A whole unit, names joined by ``*``, ``/``, a hyphen or a space, from left to right."""
-    text = _lowered(unit.translate(_PLAIN).strip())
+    text = _spelled_out(unit.translate(_PLAIN).strip())
     if not text or len(text) > _LONGEST // 2:
         raise _unknown(unit)
     result, place, sign = _ONE, 0, 1
@@ -174,7 +174,7 @@ def _unit(unit: str) -> Unit:
         place = join.end()
 
 
-def _lowered(text: str) -> str:
+def _spelled_out(text: str) -> str:
     """Raised digits as ordinary exponents: m² becomes m^2."""
     return re.sub("[⁻⁰¹²³⁴⁵⁶⁷⁸⁹]+", lambda match: "^" + match[0].translate(_RAISED), text)
 

@@ -1,0 +1,259 @@
+"""Materials and sections: the office's tables, and what a job makes of them."""
+
+from __future__ import annotations
+
+import csv
+import math
+import tomllib
+from dataclasses import dataclass
+from functools import lru_cache
+from typing import Any
+
+from calcpack.job.entries import Entry, Problems, validated
+from calcpack.job.errors import nearest
+from calcpack.job.house import house_folder
+from calcpack.job.model import Material, Section
+from calcpack.job.raw import CONCRETE_VALUES, STEEL_VALUES, RawMaterial, RawSection
+from calcpack.job.units import factor
+
+
+@dataclass(frozen=True)
+class Grade:
+    """A named grade: its kind ("concrete", "steel" or "bars"), its values as text, their source."""
+
+    name: str
+    kind: str
+    values: dict[str, Any]
+    source: str
+
+
+def _alike(name: str) -> str:
+    """A name as it is compared: "W18x50" is "W 18X50", "S 355" is "s355"."""
+    return "".join(name.split()).casefold()
+
+
+@lru_cache(maxsize=1)
+def grades() -> dict[str, Grade]:
+    """Every grade of shared/materials, by its name without spaces and capitals.
+
+    Examples
+    --------
+    >>> grades()["c30/37"].values["fck"], grades()["gradE60".casefold()].kind
+    ('30 MPa', 'bars')
+    """
+    found: dict[str, Grade] = {}
+    for path in sorted(house_folder("shared").joinpath("materials").glob("*.toml")):
+        table = tomllib.loads(path.read_text(encoding="utf-8"))
+        common = {key: value for key, value in table.items() if key not in ("source", "kind", "grades")}
+        for name, values in table["grades"].items():
+            found[_alike(name)] = Grade(name, table["kind"], common | values, table["source"])
+    return found
+
+
+@lru_cache(maxsize=1)
+def rolled_sections() -> dict[str, Section]:
+    """Every rolled section of shared/sections, by its designation without spaces and capitals.
+
+    Area and inertia are those of the nominal dimensions, root fillets included.
+
+    Examples
+    --------
+    >>> section = rolled_sections()["ipe300"]
+    >>> round(section.area * 1e4, 1), round(section.inertia * 1e8)  # [cm2], [cm4]
+    (53.8, 8356)
+    """
+    found: dict[str, Section] = {}
+    for path in sorted(house_folder("shared").joinpath("sections").glob("*.csv")):
+        first, *rest = path.read_text(encoding="utf-8").splitlines()
+        header, *rows = csv.reader(rest)
+        columns = [title.rstrip("]").split(" [") for title in header[1:]]
+        for designation, *cells in rows:
+            sizes = {
+                name: float(cell) * factor(unit) for (name, unit), cell in zip(columns, cells, strict=True)
+            }
+            if "k_design" in sizes:
+                sizes["root_radius"] = sizes.pop("k_design") - sizes["flange"]
+            area, inertia = rolled_area_and_inertia(**sizes)
+            found[_alike(designation)] = Section(
+                key=designation,
+                shape="rolled",
+                designation=designation,
+                dimensions=sizes,
+                area=area,
+                inertia=inertia,
+                source=first.removeprefix("# "),
+            )
+    return found
+
+
+def rolled_area_and_inertia(
+    depth: float, width: float, web: float, flange: float, root_radius: float
+) -> tuple[float, float]:
+    """Area and strong-axis inertia of an I-section with parallel flanges and root fillets.
+
+    Parameters
+    ----------
+    depth, width, web, flange, root_radius : float [any one length]
+
+    Returns
+    -------
+    area, inertia : float [that length squared; to the fourth]
+
+    Source: integration; a fillet is a square of side r less a quarter circle, its centroid
+    r (10 - 3π) / (12 - 3π) from the flange.
+
+    Examples
+    --------
+    >>> rolled_area_and_inertia(2.0, 1.0, 1.0, 0.5, 0.0)  # a rectangle
+    (2.0, 0.6666666666666666)
+    """
+    clear = depth - 2 * flange
+    fillet = (1 - math.pi / 4) * root_radius**2
+    own = (1 / 3 - math.pi / 16 - 1 / (9 * (4 - math.pi))) * root_radius**4
+    arm = clear / 2 - root_radius * (10 - 3 * math.pi) / (12 - 3 * math.pi)
+    area = 2 * width * flange + clear * web + 4 * fillet
+    inertia = (width * depth**3 - (width - web) * clear**3) / 12 + 4 * (own + fillet * arm**2)
+    return area, inertia
+
+
+def read_material(key: str, entry: Entry, problems: Problems) -> Material | None:
+    """A material of the job: its grades' values with the job's own put over them."""
+    given = dict(entry.data)
+    merged: dict[str, Any] = {}
+    sources: list[str] = []
+    for name, kinds in (("grade", ("concrete", "steel")), ("bars", ("bars",))):
+        if not isinstance(given.get(name), str):
+            continue
+        grade = grades().get(_alike(given[name]))
+        if grade is None or grade.kind not in kinds:
+            choices = [each.name for each in grades().values() if each.kind in kinds]
+            problems.add(
+                entry.problem(f"there is no grade '{given[name]}'", nearest(given[name], choices), name)
+            )
+            return None
+        merged |= grade.values | ({"kind": grade.kind} if name == "grade" else {})
+        given[name] = grade.name
+        sources.append(grade.source)
+    if given.get("kind") and merged.get("kind", given["kind"]) != given["kind"]:
+        problems.add(
+            entry.problem(f"grade '{given['grade']}' is a {merged['kind']}", "leave out the kind", "kind")
+        )
+        return None
+    own = [name for name in given if name not in ("kind", "grade", "bars")]
+    raw = validated(RawMaterial, Entry(**{**vars(entry), "data": merged | given}), problems)
+    if raw is None or not _complete(raw, own, entry, problems):
+        return None
+    assert raw.kind
+    assert raw.modulus
+    assert raw.unit_weight
+    values = raw.model_dump(exclude_none=True, exclude={"kind", "grade", "modulus", "unit_weight"})
+    if own:
+        sources.append(f"{', '.join(own)} as given in the job" if sources else "given in the job")
+    return Material(
+        key=key,
+        kind=raw.kind,
+        grade=raw.grade or "",
+        modulus=raw.modulus,
+        unit_weight=raw.unit_weight,
+        values=values,
+        source="; ".join(sources),
+    )
+
+
+def _complete(raw: RawMaterial, own: list[str], entry: Entry, problems: Problems) -> bool:
+    """Whether a material has what its kind needs and nothing that belongs to another kind."""
+    count = len(problems.found)
+    for name in ("kind", "modulus", "unit_weight"):
+        if getattr(raw, name) is None:
+            problems.add(
+                entry.problem("a material without a grade needs this key", "add it, or name a grade", name)
+            )
+    if raw.kind:
+        fitting = CONCRETE_VALUES if raw.kind == "concrete" else STEEL_VALUES
+        if raw.kind == "steel" and raw.bars:
+            problems.add(
+                entry.problem("bars reinforce a concrete, this is a steel", "leave out the bars", "bars")
+            )
+        for name in own:
+            if name not in (*fitting, "modulus", "unit_weight"):
+                problems.add(entry.problem(f"a {raw.kind} has no such value", nearest(name, fitting), name))
+    return len(problems.found) == count
+
+
+NEEDED: dict[str, tuple[str, ...]] = {
+    "rectangle": ("width", "depth"),
+    "tee": ("width", "depth", "flange_width", "flange_depth"),
+    "rolled": ("designation",),
+}
+
+
+def read_section(key: str, entry: Entry, problems: Problems) -> Section | None:
+    """A section of the job with its gross properties."""
+    raw = validated(RawSection, entry, problems)
+    if raw is None:
+        return None
+    given = raw.model_dump(exclude_none=True, exclude={"shape"})
+    count = len(problems.found)
+    for name in NEEDED[raw.shape]:
+        if name not in given:
+            problems.add(entry.problem(f"a {raw.shape} needs this key", "", name))
+    for name in given:
+        if name not in NEEDED[raw.shape]:
+            problems.add(
+                entry.problem(f"a {raw.shape} has no such key", nearest(name, NEEDED[raw.shape]), name)
+            )
+    if len(problems.found) > count:
+        return None
+    if raw.shape == "rolled":
+        return _rolled(key, raw.designation or "", entry, problems)
+    if raw.shape == "tee" and _faulty_tee(given, entry, problems):
+        return None
+    effective = given.get("flange_width") == "effective"
+    if effective:
+        del given["flange_width"]
+    area, inertia = _block_area_and_inertia(given)
+    return Section(
+        key=key,
+        shape=raw.shape,
+        dimensions=given,
+        effective_flange=effective,
+        area=area,
+        inertia=inertia,
+        source="given in the job",
+    )
+
+
+def _rolled(key: str, designation: str, entry: Entry, problems: Problems) -> Section | None:
+    section = rolled_sections().get(_alike(designation))
+    if section:
+        return section.model_copy(update={"key": key})
+    names = [each.designation for each in rolled_sections().values()]
+    problems.add(
+        entry.problem(f"there is no section '{designation}'", nearest(designation, names), "designation")
+    )
+    return None
+
+
+def _faulty_tee(given: dict[str, Any], entry: Entry, problems: Problems) -> bool:
+    count = len(problems.found)
+    if given["flange_depth"] >= given["depth"]:
+        problems.add(
+            entry.problem("the flange is as deep as the section", "give less than depth", "flange_depth")
+        )
+    if given["flange_width"] != "effective" and given["flange_width"] < given["width"]:
+        problems.add(
+            entry.problem("the flange is narrower than the web", "give at least width", "flange_width")
+        )
+    return len(problems.found) > count
+
+
+def _block_area_and_inertia(sizes: dict[str, float]) -> tuple[float, float]:
+    """Area and inertia of a rectangle or a tee about its own centroid; without a flange width, of the web."""
+    width, depth = sizes["width"], sizes["depth"]
+    out = sizes.get("flange_width", width) - width
+    thick = sizes.get("flange_depth", 0.0)
+    web, wings = width * depth, out * thick
+    centroid = (web * depth / 2 + wings * thick / 2) / (web + wings)  # from the top
+    inertia = width * depth**3 / 12 + web * (depth / 2 - centroid) ** 2
+    inertia += out * thick**3 / 12 + wings * (thick / 2 - centroid) ** 2
+    return web + wings, inertia
