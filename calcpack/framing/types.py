@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from itertools import pairwise
 from typing import Literal
 
 from calcpack.job.model import Beam, Case, Job, Panel, Point
@@ -33,7 +34,8 @@ class EdgeShare:
         The outline of what drains here (plan coordinates, counter-clockwise).
     depth : tuple of (along, depth) [m]
         The drained depth at right angles to the edge, piecewise linear in the distance along the
-        carrier from its start; two entries may share a distance where the depth jumps.
+        carrier from its start; two entries may share a distance where the depth jumps. Pressure times
+        depth is the load. One-way it is the reach, at right angles to the edge, of the strips that end there.
     ends : tuple of (along, area) [m], [m2]
         What drains to a point of the carrier from beyond the edge's end.
     area : float [m2]
@@ -114,7 +116,7 @@ class FramedBeam:
     def spans(self) -> tuple[float, ...]:
         """Lengths between the listed points, overhangs included [m]."""
         ends = sorted({0.0, self.length, *(bearing.at for bearing in self.bearings)})
-        return tuple(b - a for a, b in zip(ends, ends[1:], strict=False))
+        return tuple(b - a for a, b in pairwise(ends))
 
     @property
     def point_loads(self) -> dict[Case, tuple[PointLoad, ...]]:
