@@ -172,23 +172,16 @@ def unit_of(text: str) -> str:
     return unit
 
 
-@lru_cache(maxsize=512)
 def unit_latex(unit: str) -> str:
-    r"""The unit for a formula; "" for "1".
+    r"""The unit for a formula, as one piece of text that can be searched for; "" for "1".
 
     Examples
     --------
     >>> unit_latex("kN*m"), unit_latex("kN/m^3"), unit_latex("1")
-    ('\\mathrm{kN\\cdot m}', '\\mathrm{kN/m^{3}}', '')
+    ('\\text{kN·m}', '\\text{kN/m³}', '')
     """
-    if unit == "deg":
-        return r"^{\circ}"
-    found = parts(unit)
-    if not found:
-        return ""
-    powers = [name + (f"^{{{abs(exponent)}}}" if abs(exponent) != 1 else "") for name, exponent in found]
-    joined = _joined(found, r"\cdot ", powers)
-    return rf"\mathrm{{{joined}}}"
+    text = label(unit)
+    return rf"\text{{{text}}}" if text else ""
 
 
 _POWERS = {2: "square", 3: "cubic"}

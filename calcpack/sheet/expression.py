@@ -1,0 +1,422 @@
+"""Formulas as data: an unchangeable tree of numbers, symbols and named operations.
+
+Written with Python's operators on lines (``q * S / 2 * (3 - m**2) / 3``), stored as plain JSON, read
+back without evaluating anything. The tree keeps the order in which it was written.
+"""
+
+from __future__ import annotations
+
+import operator
+import re
+from collections.abc import Callable, Iterable, Iterator, Mapping
+from dataclasses import dataclass, field
+from decimal import Decimal
+from typing import Any, NoReturn
+
+from calcpack.job.errors import CalcpackError, nearest
+from calcpack.sheet.symbols import read_symbol
+from calcpack.sheet.unit_text import parts
+
+# Name of each operation and how many arguments it takes, at least and at most.
+OPERATIONS: dict[str, tuple[int, int]] = {
+    "add": (2, 2), "sub": (2, 2), "mul": (2, 2), "div": (2, 2), "pow": (2, 2), "neg": (1, 1),
+    "sqrt": (1, 1), "abs": (1, 1), "min": (2, 40), "max": (2, 40), "sum": (1, 200),
+    "sin": (1, 1), "cos": (1, 1), "tan": (1, 1), "atan": (1, 1), "log": (1, 1), "exp": (1, 1), "pi": (0, 0),
+    "eq": (2, 2), "le": (2, 2), "lt": (2, 2), "ge": (2, 2), "gt": (2, 2), "choose": (3, 3),
+    "number_in": (1, 1), "in_unit": (1, 1),
+}  # fmt: skip
+COMPARISONS = frozenset({"eq", "le", "lt", "ge", "gt"})
+WITH_UNIT = frozenset({"number_in", "in_unit"})
+DEEPEST = 60
+LARGEST = 1000  # nodes
+
+_DECIMAL = re.compile(r"[0-9]{1,24}(?:\.[0-9]{1,24})?")
+_PRINTABLE = 9  # significant digits of a constant written as a float
+
+
+class Arithmetic:
+    """Anything formulas can be written with."""
+
+    __slots__ = ()
+
+    def as_expression(self) -> Expression:
+        """The formula this stands for."""
+        raise NotImplementedError
+
+    def __add__(self, other: Term) -> Operation:
+        return _operation("add", self, other)
+
+    def __radd__(self, other: int | float | Decimal | str) -> Expression:
+        if isinstance(other, int) and other == 0:  # the start of Python's own sum()
+            return self.as_expression()
+        return _operation("add", other, self)
+
+    def __sub__(self, other: Term) -> Operation:
+        return _operation("sub", self, other)
+
+    def __rsub__(self, other: Term) -> Operation:
+        return _operation("sub", other, self)
+
+    def __mul__(self, other: Term) -> Operation:
+        return _operation("mul", self, other)
+
+    def __rmul__(self, other: Term) -> Operation:
+        return _operation("mul", other, self)
+
+    def __truediv__(self, other: Term) -> Operation:
+        return _operation("div", self, other)
+
+    def __rtruediv__(self, other: Term) -> Operation:
+        return _operation("div", other, self)
+
+    def __pow__(self, other: Term) -> Operation:
+        return _operation("pow", self, other)
+
+    def __rpow__(self, other: Term) -> Operation:
+        return _operation("pow", other, self)
+
+    def __neg__(self) -> Operation:
+        return _operation("neg", self)
+
+    def __abs__(self) -> Operation:
+        return _operation("abs", self)
+
+    def __le__(self, other: Term) -> Operation:
+        return _operation("le", self, other)
+
+    def __lt__(self, other: Term) -> Operation:
+        return _operation("lt", self, other)
+
+    def __ge__(self, other: Term) -> Operation:
+        return _operation("ge", self, other)
+
+    def __gt__(self, other: Term) -> Operation:
+        return _operation("gt", self, other)
+
+    def __bool__(self) -> NoReturn:
+        raise CalcpackError(
+            "a formula is neither true nor false",
+            remedy="state a comparison with require, choose between values with choose",
+        )
+
+
+@dataclass(frozen=True)
+class Expression(Arithmetic):
+    """A formula; one of :class:`Number`, :class:`Quantity`, :class:`Reference`, :class:`Operation`."""
+
+    @property
+    def args(self) -> tuple[Expression, ...]:
+        """What an operation works on; nothing for the others."""
+        return ()
+
+    @property
+    def depth(self) -> int:
+        """How deep the tree goes."""
+        return 1
+
+    @property
+    def size(self) -> int:
+        """How many nodes it has, written out."""
+        return 1
+
+    def as_expression(self) -> Expression:
+        """Itself."""
+        return self
+
+
+@dataclass(frozen=True)
+class Number(Expression):
+    """A pure number, as the decimal text it is printed as."""
+
+    text: str
+
+    def __post_init__(self) -> None:
+        if not isinstance(self.text, str) or not _DECIMAL.fullmatch(self.text):
+            raise CalcpackError(f"'{str(self.text)[:40]}' is not a number", remedy="write it like 0.85")
+
+
+@dataclass(frozen=True)
+class Quantity(Expression):
+    """A constant with a unit."""
+
+    text: str
+    unit: str
+
+    def __post_init__(self) -> None:
+        Number(self.text)
+        _check_unit(self.unit)
+
+
+@dataclass(frozen=True)
+class Reference(Expression):
+    """The value of an earlier line."""
+
+    symbol: str
+    line: str
+
+
+@dataclass(frozen=True)
+class Operation(Expression):
+    """A named operation on formulas; ``unit`` belongs to ``number_in`` and ``in_unit`` alone."""
+
+    name: str
+    arguments: tuple[Expression, ...]
+    unit: str = ""
+    _depth: int = field(init=False, compare=False, repr=False)
+    _size: int = field(init=False, compare=False, repr=False)
+
+    def __post_init__(self) -> None:
+        if self.name not in OPERATIONS:
+            raise CalcpackError(
+                f"there is no operation '{self.name[:40]}'", remedy=nearest(self.name, OPERATIONS)
+            )
+        least, most = OPERATIONS[self.name]
+        if not least <= len(self.arguments) <= most:
+            raise CalcpackError(f"'{self.name}' cannot take {len(self.arguments)} arguments")
+        if self.name in WITH_UNIT:
+            _check_unit(self.unit)
+        elif self.unit:
+            raise CalcpackError(f"'{self.name}' takes no unit")
+        for place, argument in enumerate(self.arguments):
+            compares = isinstance(argument, Operation) and argument.name in COMPARISONS
+            if compares != (self.name == "choose" and place == 0):
+                raise CalcpackError(
+                    "a comparison cannot be a part of a formula"
+                    if compares
+                    else "the first argument of 'choose' is a comparison"
+                )
+        object.__setattr__(self, "_depth", 1 + max((each.depth for each in self.arguments), default=0))
+        object.__setattr__(self, "_size", 1 + sum(each.size for each in self.arguments))
+        if self._depth > DEEPEST or self._size > LARGEST:
+            raise CalcpackError("the formula is too large", remedy="work it out in several lines")
+
+    @property
+    def args(self) -> tuple[Expression, ...]:
+        """What it works on."""
+        return self.arguments
+
+    @property
+    def depth(self) -> int:
+        """How deep the tree goes."""
+        return self._depth
+
+    @property
+    def size(self) -> int:
+        """How many nodes it has, written out."""
+        return self._size
+
+
+Term = Arithmetic | int | float | Decimal | str
+
+
+def _check_unit(unit: object) -> None:
+    try:
+        parts(str(unit))
+    except ValueError as error:
+        raise CalcpackError(str(error), remedy="write it like kN/m^2, mm or psf") from None
+
+
+def expression(term: Term) -> Expression:
+    """A formula from a line, a formula or a bare number.
+
+    Raises
+    ------
+    CalcpackError
+        It is none of these, or a float that nobody would print.
+
+    Examples
+    --------
+    >>> expression(0.85), expression("1.0"), expression(-2)
+    (Number(text='0.85'), Number(text='1.0'), Operation(name='neg', arguments=(Number(text='2'),), unit=''))
+    >>> expression(1 / 3)
+    Traceback (most recent call last):
+    calcpack.job.errors.CalcpackError: 0.3333333333333333 is too long to print; write number(1) / 3, or 0.33
+    """
+    if isinstance(term, Arithmetic):
+        return term.as_expression()
+    if isinstance(term, bool) or not isinstance(term, int | float | Decimal | str):
+        try:
+            term = operator.index(term)
+        except TypeError:
+            raise CalcpackError(f"{term!r:.60} cannot be a part of a formula") from None
+    if isinstance(term, str):
+        return Number(term)
+    decimal = Decimal(repr(float(term))) if isinstance(term, float) else Decimal(term)
+    if not decimal.is_finite():
+        raise CalcpackError(f"{term} cannot be a part of a formula")
+    if isinstance(term, float) and len(decimal.normalize().as_tuple().digits) > _PRINTABLE:
+        raise CalcpackError(
+            f"{float(term)} is too long to print",
+            remedy=f"write number(1) / 3, or {float(term):.2g}",
+        )
+    if isinstance(term, float) and decimal == decimal.to_integral_value():
+        decimal = decimal.to_integral_value()
+    text = format(abs(decimal), "f")
+    return -Number(text) if decimal < 0 else Number(text)
+
+
+def _operation(name: str, *terms: Term, unit: str = "") -> Operation:
+    return Operation(name, tuple(expression(term) for term in terms), unit)
+
+
+def number(value: Term) -> Expression:
+    """A bare number to write a formula with: ``number(1) / 3``."""
+    return expression(value)
+
+
+def quantity(value: Term, unit: str) -> Expression:
+    """A constant with its unit: ``quantity(25, "kN/m^3")``."""
+    plain = expression(value)
+    if isinstance(plain, Operation) and isinstance(plain.args[0], Number):
+        return -Quantity(plain.args[0].text, unit)
+    if not isinstance(plain, Number):
+        raise CalcpackError("a constant is a number and a unit")
+    return Quantity(plain.text, unit)
+
+
+def _named(name: str) -> Callable[..., Operation]:
+    def build(*terms: Term) -> Operation:
+        return _operation(name, *terms)
+
+    build.__name__ = build.__qualname__ = name
+    build.__doc__ = f"The operation ``{name}`` on lines, formulas and numbers."
+    return build
+
+
+sqrt, sin, cos, tan, atan, log, exp = map(_named, ("sqrt", "sin", "cos", "tan", "atan", "log", "exp"))
+least, greatest, equal = _named("min"), _named("max"), _named("eq")
+PI = Operation("pi", ())
+
+
+def total(terms: Iterable[Term]) -> Operation:
+    """The sum of any number of terms, in their order."""
+    return _operation("sum", *terms)
+
+
+def choose(condition: Term, then: Term, otherwise: Term) -> Operation:
+    """One of two values, by a comparison.
+
+    Examples
+    --------
+    >>> f = Reference("f", "1.01")
+    >>> choose(f <= 28, 0.85, 0.65).name
+    'choose'
+    """
+    return _operation("choose", condition, then, otherwise)
+
+
+def number_in(term: Term, unit: str) -> Operation:
+    """How many of a unit a value is: a bare number, for formulas that hold in one unit only.
+
+    The formula prints as the standard does, without the unit; the line's words should name it.
+    """
+    return _operation("number_in", term, unit=unit)
+
+
+def in_unit(term: Term, unit: str) -> Operation:
+    """A bare number taken as so many of a unit: the way back from :func:`number_in`.
+
+    Examples
+    --------
+    >>> f = Reference("f'_c", "1.01")
+    >>> in_unit(0.17 * sqrt(number_in(f, "MPa")), "MPa").unit
+    'MPa'
+    """
+    return _operation("in_unit", term, unit=unit)
+
+
+def walk(root: Expression) -> Iterator[Expression]:
+    """Every node, in writing order."""
+    pending = [root]
+    while pending:
+        node = pending.pop()
+        yield node
+        pending.extend(reversed(node.args))
+
+
+def references(root: Expression) -> dict[str, str]:
+    """Symbol -> line of everything a formula draws on, in order of appearance.
+
+    Raises
+    ------
+    CalcpackError
+        Two lines go by the same symbol.
+    """
+    found: dict[str, str] = {}
+    for node in walk(root):
+        if isinstance(node, Reference) and found.setdefault(node.symbol, node.line) != node.line:
+            raise CalcpackError(
+                f"lines {found[node.symbol]} and {node.line} are both called '{node.symbol}' in one formula",
+                remedy=f"give them an index: {node.symbol}_1, {node.symbol}_2"
+                if "_" not in node.symbol
+                else f"give them one more index: {node.symbol},1 and {node.symbol},2",
+            )
+    return found
+
+
+def to_json(root: Expression) -> dict[str, Any]:
+    """The formula as plain data.
+
+    Examples
+    --------
+    >>> q, S = Reference("q", "2.01"), Reference("S", "1.02")
+    >>> to_json(q * S / 2)["args"]
+    [{'op': 'mul', 'args': [{'symbol': 'q'}, {'symbol': 'S'}]}, {'number': '2'}]
+    """
+    match root:
+        case Number():
+            return {"number": root.text}
+        case Quantity():
+            return {"quantity": root.text, "unit": root.unit}
+        case Reference():
+            return {"symbol": root.symbol}
+        case Operation():
+            tree: dict[str, Any] = {"op": root.name, "args": [to_json(each) for each in root.arguments]}
+            return tree | {"unit": root.unit} if root.unit else tree
+    raise TypeError(f"{root!r} is not an expression")
+
+
+_KEYS = ({"number"}, {"quantity", "unit"}, {"symbol"}, {"op", "args"}, {"op", "args", "unit"})
+
+
+def from_json(tree: object, inputs: Mapping[str, str]) -> Expression:
+    """Read a formula back; nothing in it is ever evaluated as code.
+
+    Parameters
+    ----------
+    tree : plain data
+        As :func:`to_json` writes it, from wherever.
+    inputs : mapping
+        Symbol -> number of the line that it stands for.
+
+    Raises
+    ------
+    CalcpackError
+        An unknown operation, a symbol without a line, or a tree deeper or larger than any formula.
+    """
+    budget = [LARGEST]
+
+    def read(node: object, depth: int) -> Expression:
+        budget[0] -= 1
+        if budget[0] < 0 or depth > DEEPEST:
+            raise CalcpackError("the formula is too large")
+        if not isinstance(node, dict) or set(node) not in _KEYS:
+            raise CalcpackError("a part of the formula is not one of number, quantity, symbol and operation")
+        if any(not isinstance(value, str) for key, value in node.items() if key != "args"):
+            raise CalcpackError("a part of the formula has something else where its text should be")
+        if "number" in node:
+            return Number(node["number"])
+        if "quantity" in node:
+            return Quantity(node["quantity"], node["unit"])
+        if "symbol" in node:
+            name = read_symbol(node["symbol"]).name
+            if name != node["symbol"] or name not in inputs:
+                raise CalcpackError(f"the formula's symbol '{node['symbol'][:40]}' has no line")
+            return Reference(name, inputs[name])
+        if not isinstance(node["args"], list):
+            raise CalcpackError("the arguments of an operation are a list")
+        return Operation(
+            node["op"], tuple(read(each, depth + 1) for each in node["args"]), node.get("unit", "")
+        )
+
+    return read(tree, 1)
