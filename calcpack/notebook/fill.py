@@ -87,7 +87,7 @@ def sheet_metadata(parameters: BeamInput) -> dict[str, Any]:
         "title": parameters.template.title,
         "header": header,
         "submission": parameters.submission.model_dump(mode="json"),
-        "template": parameters.template.model_dump(mode="json", exclude={"title"}),
+        "template": parameters.template.model_dump(mode="json", include={"name", "version", "sha256"}),
         "input": parameters.input,
         "program": parameters.program,
         "sheets": {"first": 1, "of": 1},

@@ -29,6 +29,8 @@ class TemplateStamp(Frozen):
     version: str
     sha256: str
     title: str
+    assumptions: tuple[str, ...] = ()
+    not_covered: tuple[str, ...] = ()
 
 
 class BeamInput(Frozen):

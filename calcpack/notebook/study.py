@@ -169,6 +169,16 @@ class Study:
         """The response to each case with every span loaded, one row a case, actual loads."""
         return analyse(self.line, [self.given.loads[case] for case in self.cases])
 
+    @cached_property
+    def _scale(self) -> float:
+        """All the load on the beam [kN], to tell a value from rounding."""
+        return sum(abs(load.total) for case in self.cases for load in self.given.loads[case])
+
+    def significant(self, value: float, kind: str) -> bool:
+        """Whether a force [kN] or a moment [kNm] is more than rounding."""
+        scale = self._scale * (self.given.length if kind == "moment" else 1.0)
+        return abs(value) > 1e-9 * scale
+
     def total(self, case: Case) -> float:
         """All of a case on the beam [kN]."""
         return sum(load.total for load in self.given.loads[case])

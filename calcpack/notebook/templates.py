@@ -76,6 +76,8 @@ class Template:
             version=self.settings.version,
             sha256=self.sha256,
             title=self.settings.title,
+            assumptions=self.settings.assumptions,
+            not_covered=self.settings.not_covered,
         )
 
     def settle(self, design: Mapping[str, Any], mark: str) -> dict[str, Any]:

@@ -1,0 +1,84 @@
+"""The last page: summary, signatures, notation, provenance, and the record."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from calcpack.notebook.sections.checks import checks_of
+from calcpack.notebook.study import CASE_WORDS, results_of
+from calcpack.notebook.work import Work
+
+
+def state_summary(work: Work) -> None:
+    """The result in a few sentences, and the sign-off block."""
+    study, given, analysed = work.study, work.given, work.study.analysed
+    sheet = work.sheet
+    sheet.section("Summary and sign-off")
+    unmet = [name for name, line in work.checks if not line.passes]
+    if unmet:
+        sheet.text(f"Not satisfied: {', '.join(unmet)}.", role="unsafe")
+    moment, shear = analysed.governing_moment, analysed.governing_shear
+    parts = [
+        f"Design moment {work.show(moment.moment_governing.value, 'kN*m')} at "
+        f"{work.show(moment.moment_governing.at, 'm')} under {moment.combination.name}; design shear "
+        f"{work.show(abs(shear.shear_max.value), 'kN')} under {shear.combination.name}."
+    ]
+    for at, bearing in enumerate(given.bearings):
+        loads = ", ".join(
+            f"{work.show(float(study.by_case.reactions[row][at]), 'kN')} {CASE_WORDS[case]}"
+            for row, case in enumerate(study.cases)
+        )
+        parts.append(f"To {bearing.kind} {bearing.mark}: {loads}.")
+    if not unmet:
+        parts.append("All checks on this sheet are satisfied.")
+    sheet.text(" ".join(parts))
+    header = given.header
+    sheet.signoff(
+        [
+            {"role": role, "name": person.name, "licence": person.licence, "date": ""}
+            for role, person in (
+                ("prepared", header.prepared),
+                ("checked", header.checked),
+                ("approved", header.approved),
+            )
+        ]
+    )
+
+
+def state_notation(work: Work) -> None:
+    """The symbols of this sheet, and what it was made from."""
+    given, sheet = work.given, work.sheet
+    sheet.section("Notation and provenance")
+    sheet.notation()
+    sheet.facts(
+        [
+            ("Program", given.program),
+            ("Template", f"{given.template.name} {given.template.version}, SHA-256 {given.template.sha256[:16]}"),
+            ("Input", f"{given.job_file}, SHA-256 {given.input[:16]}"),
+        ]
+    )
+
+
+def write_record(work: Work) -> None:
+    """Put the sheet's record into the notebook, as its last output."""
+    given = work.given
+    work.sheet.emit_record(
+        job=given.header.model_dump(mode="json"),
+        revision=given.header.revision,
+        template={
+            "name": given.template.name,
+            "version": given.template.version,
+            "sha256": given.template.sha256,
+        },
+        results=record_results(work),
+    )
+
+
+def record_results(work: Work) -> dict[str, Any]:
+    """Results with the checks, and the one that governs."""
+    checks = checks_of(work)
+    governing = max(checks, key=lambda check: check["ratio"], default=None)
+    return results_of(work.study) | {
+        "checks": checks,
+        "governing": governing and {"name": governing["name"], "ratio": governing["ratio"]},
+    }

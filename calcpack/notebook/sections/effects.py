@@ -1,0 +1,233 @@
+"""Combinations, reactions, shears, moments and deflections."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from calcpack.actions import CombinationResult
+from calcpack.figures import response_figure
+from calcpack.notebook.study import CASE_WORDS
+from calcpack.notebook.work import LETTER, Work
+from calcpack.sheet import Expression, Line, absolute, number, total
+
+
+def state_combinations(work: Work) -> None:
+    """Every combination with its extremes, the governing ones marked."""
+    study, analysed = work.study, work.study.analysed
+    work.sheet.section("Combinations")
+    moment, shear = analysed.governing_moment, analysed.governing_shear
+    supports = range(len(work.given.bearings))
+    listed = supports if len(supports) <= 4 else ()
+    rows, strong = [], []
+    for number_, result in enumerate(analysed.results):
+        governs = [
+            words for words, of in (("moment", moment), ("shear", shear)) if of is result
+        ]
+        if governs:
+            strong.append(number_)
+        rows.append(
+            [
+                result.combination.name,
+                _limit(result),
+                work.show(result.moment_max.value, "kN*m"),
+                work.show(result.moment_min.value, "kN*m"),
+                work.show(abs(result.shear_max.value), "kN"),
+                *(work.show(result.reactions_max[at], "kN") for at in listed),
+                " and ".join(governs) and f"governs {' and '.join(governs)}",
+                result.combination.cite,
+            ]
+        )
+    work.sheet.table(
+        [
+            ("combination", "left"),
+            ("limit state", "left"),
+            ("max M", "right"),
+            ("min M", "right"),
+            ("max |V|", "right"),
+            *((f"max R{at + 1}", "right") for at in listed),
+            ("", "left"),
+            ("clause", "left"),
+        ],
+        rows,
+        caption="Largest sagging and hogging moment, shear and reactions of each combination, live load where it is "
+        "worst for each." + _names(work),
+        strong_rows=strong,
+    )
+    if work.simple is not None and study.given.design_loads == "actual":
+        _by_hand(work, moment, shear)
+
+
+def _limit(result: CombinationResult) -> str:
+    situation = result.combination.situation
+    return f"service, {situation}" if situation else result.combination.limit
+
+
+def _names(work: Work) -> str:
+    named = ", ".join(
+        f"{symbol} {CASE_WORDS[case]}"
+        for case, symbol in _symbols(work).items()
+    )
+    return f" {named}."
+
+
+def _symbols(work: Work) -> dict[str, str]:
+    own = {"dead": "G", "live": "Q", "roof_live": "Qr", "snow": "S"}
+    american = {"dead": "D", "live": "L", "roof_live": "Lr", "snow": "S"}
+    table = own if work.given.actions.family == "EN" else american
+    return {case: table[case] for case in work.study.cases}
+
+
+def _by_hand(work: Work, moment: CombinationResult, shear: CombinationResult) -> None:
+    """A beam on two supports: reactions by moments, the governing values from the cases."""
+    span, sheet = work.simple, work.sheet
+    assert span is not None
+    if not all(work.symmetric(span, case) for case in work.study.cases):
+        return
+    length = work.lines["span", 0]
+    for case in work.study.cases:
+        letter = LETTER[case]
+        work.lines["reaction", case] = sheet.hence(
+            f"R_{letter}",
+            work.lines["total", case] / 2,
+            "kN",
+            says=f"Reaction at each end, {CASE_WORDS[case]}: the load is symmetric",
+            cite="equilibrium",
+        )
+        terms: list[Expression] = []
+        for name, shape in work.shapes(span, case).items():
+            peak = work.lines["peak", case, name]
+            if shape.kind == "uniform":
+                terms.append(peak * length**2 / 8)
+            elif shape.kind == "triangle":
+                terms.append(peak * length**2 / 12)
+            else:
+                rise = work.lines["depth", name]
+                terms.append(peak * (3 * length**2 - 4 * rise**2) / 24)
+        work.lines["moment", case] = sheet.hence(
+            f"M_{letter}",
+            total(terms) if len(terms) > 1 else terms[0],
+            "kN*m",
+            says=f"Largest moment, {CASE_WORDS[case]}: at midspan, source by source",
+            cite="statics",
+        )
+    for result, symbol, key, unit, words in (
+        (moment, "M_max", "moment", "kN*m", "Largest moment"),
+        (shear, "V_max", "reaction", "kN", "Largest shear, at the supports"),
+    ):
+        factors = {
+            case: factor for case, factor in result.combination.factors.items() if case in work.study.cases
+        }
+        work.lines[key] = sheet.hence(
+            symbol,
+            total(number(factor) * work.lines[key, case] for case, factor in factors.items()),
+            unit,
+            says=f"{words}, under {result.combination.name}",
+            cite=result.combination.cite,
+        )
+
+
+def state_effects(work: Work) -> None:
+    """Diagrams with the envelope and the governing combination, and the reactions."""
+    study, given, analysed = work.study, work.given, work.study.analysed
+    work.sheet.section("Reactions, shear, moment and deflection")
+    governing = analysed.governing_moment
+    figure = response_figure(
+        given.length,
+        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+        curves_of(work),
+        study.system,
+        mark=given.mark,
+        fixed=given.fixed,
+        extremes=extremes_of(work),
+    )
+    deflection = analysed.deflection_total
+    caption = (
+        f"Shaded: the envelope of all strength combinations. Line: {governing.combination.name} with every span "
+        "loaded."
+    )
+    if deflection is not None:
+        caption += f" Deflection: {deflection[0].name}, E I = {work.show(study.stiffness or 0.0, 'kN*m^2')}."
+    work.sheet.figure(figure, caption)
+    _reactions(work)
+
+
+def curves_of(work: Work) -> dict[str, list[tuple[object, object, str]]]:
+    """What the figure draws: the envelope over all strength combinations, and the governing one."""
+    study, analysed = work.study, work.study.analysed
+    strength = analysed.of_limit("strength")
+    curves: dict[str, list[tuple[object, object, str]]] = {}
+    always, placed = analysed.factors(analysed.governing_moment.combination)
+    governing = analysed.response.combined(always + placed)
+    for quantity, line in (("shear", governing.shear), ("moment", governing.moment)):
+        upper = study.outermost([getattr(each.envelope, quantity).upper for each in strength], max)
+        lower = study.outermost([getattr(each.envelope, quantity).lower for each in strength], min)
+        curves[quantity] = [
+            (*upper, "upper"),
+            (*lower, "lower"),
+            (*study.curve(governing.breaks, line[0]), "line"),
+        ]
+    if (found := analysed.deflection_total) is not None and study.stiffness:
+        result = next(each for each in analysed.results if each.combination is found[0])
+        for role in ("upper", "lower"):
+            at, value = getattr(result.envelope.deflection, role).sample(60)
+            curves.setdefault("deflection", []).append((at, value / study.stiffness, role))
+    return curves
+
+
+def extremes_of(work: Work) -> list[tuple[str, float, float]]:
+    """Extreme values with their places, for the figure: (quantity, value, at)."""
+    study, analysed = work.study, work.study.analysed
+    found = [
+        ("moment", extreme.value, extreme.at)
+        for extreme in (analysed.moment_max, analysed.moment_min)
+        if study.significant(extreme.value, "moment")
+    ]
+    strength = analysed.of_limit("strength")
+    most = max((each.envelope.shear.largest for each in strength), key=lambda e: round(e.value, 9))
+    least = min((each.envelope.shear.smallest for each in strength), key=lambda e: round(e.value, 9))
+    found += [
+        ("shear", extreme.value, extreme.at)
+        for extreme in (most, least)
+        if study.significant(extreme.value, "force")
+    ]
+    if (deflection := analysed.deflection_total) is not None:
+        found.append(("deflection", deflection[1].value, deflection[1].at))
+    return found
+
+
+def _reactions(work: Work) -> None:
+    """What each support gets: case by case, every span loaded, and the worst of the combinations."""
+    study, given, analysed = work.study, work.given, work.study.analysed
+    strength = analysed.of_limit("strength")
+    rows: list[Sequence[object]] = []
+    for at, bearing in enumerate(given.bearings):
+        rows.append(
+            [
+                f"R{at + 1}",
+                f"{bearing.kind} {bearing.mark} at {bearing.name}",
+                *(work.show(float(study.by_case.reactions[row][at]), "kN") for row in range(len(study.cases))),
+                work.show(max(each.reactions_max[at] for each in strength), "kN"),
+                work.show(min(each.reactions_min[at] for each in strength), "kN"),
+            ]
+        )
+    work.sheet.table(
+        [
+            ("", "left"),
+            ("passed on to", "left"),
+            *((CASE_WORDS[case], "right") for case in study.cases),
+            ("largest, strength", "right"),
+            ("smallest, strength", "right"),
+        ],
+        rows,
+        caption="Reactions, upward: unfactored with every span loaded, and the worst of the strength combinations.",
+    )
+
+
+def held_moments(work: Work, case_row: int) -> list[float]:
+    """End moments of a case at ends held against rotation [kNm]."""
+    return [float(value) for value in work.study.by_case.end_moments[case_row]]
+
+
+def close(one: Line | Expression, other: Line | Expression, within: Expression) -> Expression:
+    """The comparison |one - other| <= within."""
+    return absolute(one - other) <= within

@@ -1,0 +1,274 @@
+"""Equivalent uniform loads: derived, put into numbers, compared with the actual load."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+
+from calcpack.equivalent import Shape, derivation, responses
+from calcpack.job.model import Case, EquivalentKind
+from calcpack.notebook.sections.opening import CARRIED_FORWARD
+from calcpack.notebook.study import CASE_WORDS, FIELD, SpanLoads
+from calcpack.notebook.work import LETTER, Work
+from calcpack.sheet import Expression, Line, Number, Quantity, total
+from calcpack.statics import LineLoad, PointLoad
+
+# Equivalent uniform load over the peak of a trapezoid that rises over m/2 of the span at each end.
+FACTOR: dict[EquivalentKind, Callable[[Line], Expression]] = {
+    "shear": lambda m: 1 - m / 2,
+    "moment": lambda m: 1 - m**2 / 3,
+    "deflection": lambda m: (1 - m**2 / 5) ** 2,
+    "fixed-end moment": lambda m: 1 - m**2 / 2 + m**3 / 8,
+    "total": lambda m: 1 - m / 2,
+}
+# Of a triangle: the same at m = 1.
+TRIANGLE: dict[EquivalentKind, tuple[int, int]] = {
+    "shear": (1, 2),
+    "moment": (2, 3),
+    "deflection": (16, 25),
+    "fixed-end moment": (5, 8),
+    "total": (1, 2),
+}
+WHY: dict[EquivalentKind, str] = {
+    "shear": "it keeps the end reactions, so bearings and shear are right; check bending against the table",
+    "moment": "it keeps the largest bending moment, on which the section is chosen; check shear against the table",
+    "deflection": "it keeps the largest deflection, on which the stiffness is chosen; check strength against the table",
+    "fixed-end moment": "it keeps the end moments that a frame or a continuous beam is analysed with",
+    "total": "it keeps the total load, which is what foundations see; check bending against the table",
+}
+COLUMNS = (("shear", "V"), ("moment", "M"), ("deflection", "δ"), ("end_moment", "end M"))
+
+
+def state_equivalents(work: Work) -> None:
+    """Derivation for the shapes that occur, the numbers of each span, and the comparison."""
+    spans = [span for span in work.study.spans if span is not None]
+    work.sheet.section("Equivalent uniform loads")
+    if not spans:
+        work.sheet.text("The beam has no span between two supports, so there is nothing to make uniform.")
+        return
+    criterion = work.given.equivalent
+    work.sheet.text(
+        [
+            "Carried forward: ",
+            {"strong": CARRIED_FORWARD[criterion]},
+            f", as the job sets it; {WHY[criterion]}. Each span is taken alone, simply supported "
+            "(for end moments: both ends fixed). The other criteria are in the table; their derivations are in "
+            "the appendix of the pack.",
+        ]
+    )
+    for kind in _kinds(work, spans):
+        work.sheet.derivation([step.as_data() for step in derivation(kind, criterion).steps])
+    for span in spans:
+        _span(work, span, criterion)
+
+
+def _kinds(work: Work, spans: Sequence[SpanLoads]) -> list[str]:
+    """The shapes to derive: triangle and trapezoid where they occur, the general one where needed."""
+    found = {
+        shape.kind for span in spans for case in work.study.cases for shape in work.shapes(span, case).values()
+    }
+    return [kind for kind in ("triangle", "trapezoid", "general") if kind in found]
+
+
+def _span(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
+    several = len(work.study.spans) > 1
+    if several:
+        work.sheet.subsection(f"Span {span.number}, {work.show(span.length, 'm')}")
+    for case in work.study.cases:
+        if not span.loads[case]:
+            continue
+        if work.symmetric(span, case):
+            _symmetric(work, span, case, criterion, several)
+        else:
+            _any_shape(work, span, case, criterion, several)
+    _comparison(work, span, criterion)
+
+
+def _symmetric(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKind, several: bool) -> None:
+    """All responses peak at midspan or at the ends alike, so the sources' equivalents add up."""
+    terms: list[Expression | Line] = []
+    for name, shape in work.shapes(span, case).items():
+        peak = work.lines["peak", case, name]
+        if shape.kind == "uniform":
+            terms.append(peak)
+        elif shape.kind == "triangle":
+            top, bottom = TRIANGLE[criterion]
+            terms.append(Number(top) / Number(bottom) * peak)
+        else:
+            terms.append(_factor(work, span, name, shape, criterion) * peak)
+    work.lines["equivalent", case, span.number] = work.sheet.hence(
+        _symbol(case, span.number if several else None),
+        total(*terms),
+        "kN/m",
+        says=f"Equivalent uniform {CASE_WORDS[case]}, {CARRIED_FORWARD[criterion]}",
+        cite="statics, derived above",
+    )
+
+
+def _factor(work: Work, span: SpanLoads, name: str, shape: Shape, criterion: EquivalentKind) -> Line:
+    """The factor of a trapezoid, a line of its own shared by the load cases."""
+    key = ("factor", name, span.number)
+    if key in work.lines:
+        return work.lines[key]
+    index = work.sources[name].index
+    ratio = work.lines.get(("ratio", name))
+    if ratio is None or abs(ratio.value - shape.side_ratio) > 1e-9:
+        ratio = work.sheet.hence(
+            f"m_{index}",
+            Number(2) * work.lines["depth", name] / work.lines["span", span.number - 1],
+            "1",
+            says=f"Twice the length over which the load from {work.sources[name].words} rises, over the span",
+        )
+    work.lines[key] = work.sheet.hence(
+        f"kappa_{index}",
+        FACTOR[criterion](ratio),
+        "1",
+        says=f"Equivalent over peak for the trapezoid from {work.sources[name].words}",
+        cite="statics, derived above",
+    )
+    return work.lines[key]
+
+
+def _symbol(case: Case, number: int | None) -> str:
+    return f"w_eq,{LETTER[case]}{'' if number is None else number}"
+
+
+def _any_shape(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKind, several: bool) -> None:
+    """Any loads: resultants and their places give the reactions; the rest follows from these."""
+    sheet, letter = work.sheet, LETTER[case]
+    mark = f"{letter}{span.number}" if several else letter
+    length = work.lines["span", span.number - 1]
+    found = responses(span.length, span.loads[case])
+    rows = []
+    for name, shape in work.shapes(span, case).items():
+        force, moment = _resultant(shape)
+        rows.append([work.sources[name].words, work.show(force, "kN"), work.show(moment / force, "m")])
+    sheet.table(
+        [("source", "left"), ("resultant", "right"), ("from the left support", "right")],
+        rows,
+        caption=f"{CASE_WORDS[case].capitalize()} on the span, source by source.",
+    )
+    parts = [_resultant(shape) for shape in work.shapes(span, case).values()]
+    weight = sheet.hence(
+        f"W_{mark}",
+        total(*(Quantity(force, "kN") * 1 for force, _ in parts)),
+        "kN",
+        says=f"Sum of the resultants, {CASE_WORDS[case]}",
+    )
+    right = sheet.hence(
+        f"R_b,{mark}",
+        total(*(Quantity(force, "kN") * Quantity(moment / force, "m") for force, moment in parts)) / length,
+        "kN",
+        says="Reaction at the right support, moments about the left one",
+    )
+    left = sheet.hence(f"R_a,{mark}", weight - right, "kN", says="Reaction at the left support")
+    symbol = _symbol(case, span.number if several else None)
+    says = f"Equivalent uniform {CASE_WORDS[case]}, {CARRIED_FORWARD[criterion]}"
+    key = ("equivalent", case, span.number)
+    if criterion == "shear":
+        larger = left if left.value >= right.value else right
+        work.lines[key] = sheet.hence(symbol, Number(2) * larger / length, "kN/m", says=says)
+    elif criterion == "total":
+        work.lines[key] = sheet.hence(symbol, weight / length, "kN/m", says=says)
+    elif criterion == "moment":
+        most = _moment(work, span, case, mark, left, found.moment_at)
+        work.lines[key] = sheet.hence(symbol, Number(8) * most / length**2, "kN/m", says=says)
+    elif criterion == "deflection":
+        sag = sheet.take(
+            f"Delta_{mark}",
+            found.deflection,
+            "kN*m^3",
+            says="Largest deflection of the span times EI, from the exact deflection line",
+            origin=f"analysis, span {span.number} alone",
+        )
+        work.lines[key] = sheet.hence(
+            symbol, Number(384) * sag / (Number(5) * length**4), "kN/m", says=says
+        )
+    else:
+        end = sheet.take(
+            f"M_f,{mark}",
+            found.fixed_end_moment,
+            "kN*m",
+            says="Larger end moment with both ends fixed, from the exact moment line",
+            origin=f"analysis, span {span.number} alone",
+        )
+        work.lines[key] = sheet.hence(symbol, Number(12) * end / length**2, "kN/m", says=says)
+
+
+def _moment(work: Work, span: SpanLoads, case: Case, mark: str, left: Line, at: float) -> Line:
+    """The largest moment of the span: at zero shear, the left reaction less what stands before it."""
+    sheet = work.sheet
+    place = sheet.take(
+        f"x_0,{mark}",
+        at,
+        "m",
+        says="Where the shear changes sign, from the left support",
+        origin=f"analysis, span {span.number} alone",
+    )
+    before = [part for part in (_resultant(_cut(shape, at)) for shape in work.shapes(span, case).values()) if part[0]]
+    arms = [Quantity(force, "kN") * Quantity(at - moment / force, "m") for force, moment in before]
+    return sheet.hence(
+        f"M_0,{mark}",
+        left * place - total(*arms) if arms else left * place,
+        "kN*m",
+        says="Largest moment there: the reaction's moment less that of the loads before it, each at its arm",
+    )
+
+
+def _resultant(shape: Shape) -> tuple[float, float]:
+    """Force [kN], and moment about the left support [kNm], of a shape."""
+    force = sum(load.total for load in (*shape.lines, *shape.points))
+    moment = sum(load.total * _centre(load) for load in shape.lines) + sum(
+        point.force * point.at for point in shape.points
+    )
+    return force, moment
+
+
+def _centre(load: LineLoad) -> float:
+    length, both = load.end - load.start, load.first + load.last
+    return load.start + length * (load.first + 2 * load.last) / (3 * both) if both else load.start
+
+
+def _cut(shape: Shape, at: float) -> Shape:
+    """The part of a shape that stands before a place."""
+    lines = []
+    for load in shape.lines:
+        if load.end <= at:
+            lines.append(load)
+        elif load.start < at:
+            value = load.first + (load.last - load.first) * (at - load.start) / (load.end - load.start)
+            lines.append(LineLoad(load.start, at, load.first, value, load.source))
+    points = tuple(PointLoad(p.at, p.force, p.source) for p in shape.points if p.at < at - 1e-9 * shape.span)
+    return Shape("general", shape.span, shape.peak, 0.0, tuple(lines), points)
+
+
+def _comparison(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
+    """Every equivalent against the actual load, unsafe entries in words."""
+    cases = [case for case in work.study.cases if span.loads[case]]
+    for chosen in (cases[i : i + 2] for i in range(0, len(cases), 2)):
+        columns: list[tuple[object, str]] = [("equal", "left")]
+        for case in chosen:
+            columns += [
+                ({"math": _symbol(case, None)}, "right"),
+                *((label, "right") for _, label in COLUMNS),
+            ]
+        rows: list[list[object]] = []
+        for kind, field in FIELD.items():
+            row: list[object] = [kind]
+            for case in chosen:
+                row.append(work.show(getattr(span.equivalents[case], field), "kN/m"))
+                compared = span.comparisons[case].row(kind)
+                row += [_ratio(compared.ratio(effect)) for effect, _ in COLUMNS]
+            rows.append(row)
+        words = " and ".join(CASE_WORDS[case] for case in chosen)
+        work.sheet.table(
+            columns,
+            rows,
+            caption=f"Span {span.number}, {words}: each equivalent, and its shear, moment, deflection and end "
+            "moment over the actual ones. Below 1 the equivalent falls short: unsafe.",
+            strong_rows=[list(FIELD).index(criterion)],
+        )
+
+
+def _ratio(value: float) -> object:
+    text = f"{value:.3f}"
+    return {"strong": f"{text} unsafe"} if value < 1 - 1e-9 else text

@@ -1,0 +1,133 @@
+"""A sheet in the making: the study of its beam, the page it is written on, and the lines so far."""
+
+from __future__ import annotations
+
+from collections.abc import Hashable
+from dataclasses import dataclass, field
+from functools import cached_property
+from typing import Any
+
+from calcpack.equivalent import Shape, shape_of
+from calcpack.framing.types import EdgeShare, PanelTransfer
+from calcpack.job.model import Case
+from calcpack.notebook.parameters import BeamInput, from_text
+from calcpack.notebook.study import SpanLoads, Study
+from calcpack.sheet import Line, Sheet, show
+
+LETTER: dict[Case, str] = {"dead": "g", "live": "q", "roof_live": "r", "snow": "s"}
+SELF_WEIGHT = "self weight"
+
+
+@dataclass(frozen=True)
+class Source:
+    """Where a load on the beam comes from, with the number that its symbols carry.
+
+    Parameters
+    ----------
+    name : str
+        As in the loads: a panel's mark, a beam's mark, ``self weight``, ``load 2``.
+    kind : str
+        "panel", "beam", "self weight" or "own".
+    index : int
+        Self weight is 0, the others count from 1.
+    """
+
+    name: str
+    kind: str
+    index: int
+
+    @property
+    def words(self) -> str:
+        """As an engineer would say it."""
+        if self.kind == "self weight":
+            return "self weight of the beam"
+        return f"{self.kind} {self.name}" if self.kind != "own" else f"given {self.name}"
+
+
+@dataclass
+class Work:
+    """What the sections of a sheet share.
+
+    ``lines`` keeps the lines that later sections draw on, under a key that says what they are:
+    ``("peak", "dead", "P1")``.
+    """
+
+    study: Study
+    sheet: Sheet
+    lines: dict[Hashable, Line] = field(default_factory=dict)
+
+    @property
+    def given(self) -> BeamInput:
+        """The beam's input."""
+        return self.study.given
+
+    def show(self, value: float, unit: str, *, exact: bool = False) -> str:
+        """A value in words of the job's unit system."""
+        return show(value, unit, self.study.system, exact=exact)
+
+    @cached_property
+    def sources(self) -> dict[str, Source]:
+        """All sources of load on the beam by name: self weight, panels, beams, own loads."""
+        panels = {transfer.panel.mark for transfer in self.given.panels}
+        beams = {carried.mark for carried in self.given.carried}
+        found: dict[str, Source] = {}
+        names = dict.fromkeys(
+            load.source for case in self.study.cases for load in self.given.loads[case]
+        )
+        ranked = sorted(names, key=lambda name: (name not in panels, name not in beams))
+        for name in ranked:
+            if name == SELF_WEIGHT:
+                found[name] = Source(name, "self weight", 0)
+            else:
+                kind = "panel" if name in panels else "beam" if name in beams else "own"
+                index = 1 + sum(source.index > 0 for source in found.values())
+                found[name] = Source(name, kind, index)
+        return found
+
+    def share(self, transfer: PanelTransfer) -> EdgeShare:
+        """The share of a panel that drains to this beam."""
+        return next(share for share in transfer.shares if share.carrier == self.given.mark)
+
+    def shapes(self, span: SpanLoads, case: Case) -> dict[str, Shape]:
+        """The shape of each source's load on a span in a case, in the order of the sources."""
+        by_source: dict[str, list[Any]] = {}
+        for load in span.loads[case]:
+            by_source.setdefault(load.source, []).append(load)
+        return {
+            name: shape_of(span.length, by_source[name]) for name in self.sources if name in by_source
+        }
+
+    def symmetric(self, span: SpanLoads, case: Case) -> bool:
+        """Whether every load on the span is a uniform, triangular or trapezoidal one."""
+        return all(
+            shape.kind != "general" and ("peak", case, name) in self.lines
+            for name, shape in self.shapes(span, case).items()
+        )
+
+    @property
+    def simple(self) -> SpanLoads | None:
+        """The one span of a beam on two supports at its ends, turning freely; else None."""
+        if len(self.study.spans) == 1 and not any(self.given.fixed):
+            return self.study.spans[0]
+        return None
+
+
+def load_sheet(parameters: str) -> Work:
+    """Begin the sheet of a beam.
+
+    Parameters
+    ----------
+    parameters : str
+        JSON text, as the notebook's first cell holds it.
+
+    Returns
+    -------
+    Work
+
+    Raises
+    ------
+    CalcpackError
+        The text is not a beam's parameters.
+    """
+    given = from_text(parameters)
+    return Work(Study(given), Sheet(given.mark, given.header.units))

@@ -1,0 +1,206 @@
+"""What the command line prints: the job as understood, progress, and the closing summary."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
+from pathlib import Path
+
+from rich.console import Console
+from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn, TimeElapsedColumn
+from rich.table import Table
+from rich.text import Text
+
+from calcpack.build import BuiltJob, Follow
+from calcpack.files import write_file
+from calcpack.figures import key_plan
+from calcpack.framing import Frame, FramedBeam, PanelTransfer
+from calcpack.job.model import Case
+from calcpack.notebook.parameters import plan_of
+from calcpack.notebook.study import CASE_WORDS
+from calcpack.notebook.templates import Parameter, find_template, template_names
+from calcpack.sheet import show
+
+
+def _table(title: str, columns: Sequence[tuple[str, str]], rows: Sequence[Sequence[str]]) -> Table:
+    """A plain table; every cell is shown as it is, never read as markup."""
+    table = Table(title=Text(title, style="bold"), title_justify="left", box=None, pad_edge=False)
+    for head, align in columns:
+        table.add_column(Text(head), justify=align, overflow="fold")  # type: ignore[arg-type]
+    for row in rows:
+        table.add_row(*(Text(cell) for cell in row))
+    return table
+
+
+def print_overview(frame: Frame, console: Console) -> None:
+    """Print panels, beams, the solving order and what reaches the supports."""
+    header, system = frame.job.job, frame.job.job.units
+    console.print(Text(f"Job {header.number}: {header.title}, revision {header.revision}"))
+    tables = [
+        _panels(frame),
+        _beams(frame),
+        _supports(frame),
+    ]
+    for table in tables:
+        console.print()
+        console.print(table)
+    console.print()
+    console.print(Text(f"Solved in the order {', '.join(frame.order)}."))
+    applied = ", ".join(f"{CASE_WORDS[case]} {show(frame.applied[case], 'kN', system)}" for case in frame.cases)
+    console.print(Text(f"Applied in all: {applied}; the supports carry the same."))
+    for note in frame.notes:
+        console.print(Text(f"Note: {note}"))
+
+
+def _panels(frame: Frame) -> Table:
+    system, cases = frame.job.job.units, frame.cases
+    rows = [
+        [
+            mark,
+            f"{show(transfer.sides[0], 'm', system)} × {show(transfer.sides[1], 'm', system)}",
+            f"{transfer.sides[1] / transfer.sides[0]:.2f}",
+            _way(transfer),
+            transfer.reason,
+            *(show(transfer.panel.pressure(case), "kPa", system) for case in cases),
+            ", ".join(dict.fromkeys(share.carrier for share in transfer.shares)),
+        ]
+        for mark, transfer in frame.panels.items()
+    ]
+    columns = [
+        ("panel", "left"),
+        ("short × long", "right"),
+        ("ratio", "right"),
+        ("transfer", "left"),
+        ("because", "left"),
+        *((CASE_WORDS[case], "right") for case in cases),
+        ("drains to", "left"),
+    ]
+    return _table("Panels", columns, rows)
+
+
+def _way(transfer: PanelTransfer) -> str:
+    if transfer.direction is None:
+        return transfer.transfer
+    x, y = (abs(part) for part in transfer.direction)
+    along = "along x" if y < 1e-9 else "along y" if x < 1e-9 else "askew"
+    return f"{transfer.transfer}, {along}"
+
+
+def _beams(frame: Frame) -> Table:
+    system = frame.job.job.units
+    rows = [
+        [
+            mark,
+            " + ".join(show(span, "m", system) for span in beam.spans),
+            ", ".join(f"{bearing.kind} {bearing.mark}" for bearing in beam.bearings),
+            ", ".join(dict.fromkeys(carried.mark for carried in beam.carried)) or "–",
+            ", ".join(beam.panels) or "–",
+            *(show(_total(beam, case), "kN", system) for case in frame.cases),
+            beam.beam.template,
+        ]
+        for mark, beam in frame.beams.items()
+    ]
+    columns = [
+        ("beam", "left"),
+        ("spans", "right"),
+        ("stands on", "left"),
+        ("carries", "left"),
+        ("panels", "left"),
+        *((CASE_WORDS[case], "right") for case in frame.cases),
+        ("template", "left"),
+    ]
+    return _table("Beams", columns, rows)
+
+
+def _total(beam: FramedBeam, case: Case) -> float:
+    return sum(load.total for load in beam.loads.get(case, ()))
+
+
+def _supports(frame: Frame) -> Table:
+    system = frame.job.job.units
+    rows = [
+        [mark, *(show(forces.get(case, 0.0), "kN", system) for case in frame.cases)]
+        for mark, forces in frame.supports.items()
+    ]
+    return _table(
+        "Columns and walls, unfactored",
+        [("mark", "left"), *((CASE_WORDS[case], "right") for case in frame.cases)],
+        rows,
+    )
+
+
+def write_plan(frame: Frame, path: Path) -> None:
+    """Draw the whole plan with every beam labelled into an SVG file."""
+    figure = key_plan(plan_of(frame), None, frame.job.job.units, width_mm=180)
+    write_file(path, figure.svg.encode("utf-8"))
+
+
+@contextmanager
+def progress(console: Console) -> Iterator[Follow]:
+    """A progress bar that a build reports its stages and steps to."""
+    bar = Progress(
+        TextColumn("{task.description}"),
+        BarColumn(),
+        MofNCompleteColumn(),
+        TimeElapsedColumn(),
+        console=console,
+        transient=True,
+    )
+    with bar:
+        tasks: dict[str, int] = {}
+
+        def follow(stage: str, done: int, of: int) -> None:
+            if stage not in tasks:
+                tasks[stage] = bar.add_task(stage, total=of)
+            bar.update(tasks[stage], completed=done, total=of)  # type: ignore[arg-type]
+
+        yield follow
+
+
+def print_summary(built: BuiltJob, console: Console) -> None:
+    """Print a line a beam, and where the pack is."""
+    system = built.frame.job.job.units
+    rows = []
+    for record in built.records:
+        results = record["results"]
+        envelope, deflection = results["envelope"], results["deflection"]
+        moment = max(envelope["moment_max"], envelope["moment_min"], key=abs)
+        rows.append(
+            [
+                record["mark"],
+                show(moment, "kN*m", system),
+                show(envelope["shear_max"], "kN", system),
+                show(deflection["total_mm"], "mm", system) if deflection else "–",
+                built.files.get(record["mark"], ""),
+            ]
+        )
+    columns = [
+        ("beam", "left"),
+        ("governing moment", "right"),
+        ("shear", "right"),
+        ("deflection", "right"),
+        ("file", "left"),
+    ]
+    console.print(_table(f"{len(rows)} sheets in {built.folder}", columns, rows))
+    for name in built.kept:
+        console.print(Text(f"Kept aside, since it was changed by hand: {name}"))
+    for note in built.frame.notes:
+        console.print(Text(f"Note: {note}"))
+
+
+def print_templates(console: Console) -> None:
+    """Print the shipped templates with the keys a job may set."""
+    for name in template_names():
+        settings = find_template(name, Path()).settings
+        console.print(Text(f"{name} {settings.version}: {settings.says}"))
+        for key, parameter in settings.parameters.items():
+            for path, leaf in _leaves(f"design.{key}", parameter):
+                default = "" if leaf.default is None else f" (default {leaf.default})"
+                console.print(Text(f"    {path}: {leaf.says}{default}"))
+
+
+def _leaves(path: str, parameter: Parameter) -> Iterator[tuple[str, Parameter]]:
+    if not parameter.keys:
+        yield path, parameter
+    for key, inner in parameter.keys.items():
+        yield from _leaves(f"{path}.{key}", inner)
