@@ -6,7 +6,7 @@ from itertools import pairwise, product
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from random_beams import QUICK, load_lists, loaded_lines
 
@@ -21,7 +21,7 @@ def all_placements(response, always, placed):
     return response.combined(np.array([np.add(always, choice) for choice in choices]))
 
 
-@QUICK
+@settings(QUICK, max_examples=40)
 @given(loaded_lines(sets=5, most_spans=4), st.lists(st.sampled_from([0.0, 1.0, 1.5]), min_size=5, max_size=5))
 def test_nothing_is_worse_and_everything_is_reached(case, placed):
     line, sets = case
@@ -136,7 +136,7 @@ def test_wrong_factors_are_refused():
         enclosing([])
 
 
-@QUICK
+@settings(QUICK, max_examples=40)
 @given(st.data())
 def test_the_band_about_several(data):
     line, sets = span_by_span([5.0, 6.0], 3.0, overhang=1.0)
