@@ -17,6 +17,7 @@ from pydantic_core import ErrorDetails
 
 from calcpack.job.errors import CalcpackError, Problem, nearest
 from calcpack.job.fields import shown
+from calcpack.job.model import Place
 
 Model = TypeVar("Model", bound=BaseModel)
 MOST = 200  # problems told at once
@@ -100,9 +101,27 @@ class Entry:
 
     def problem(self, message: str, remedy: str = "", key: str = "") -> Problem:
         """A problem at one of its keys, or with the whole."""
-        spoken = ".".join(part for part in key.split(".") if not part.isdigit()) if key else ""
-        name = f"{self.prefix}{spoken}".rstrip(".") or None
+        name = f"{self.prefix}{self._spoken(key)}".rstrip(".") or None
         return Problem(message, remedy, self.file, self.line_of(key), self.mark, name)
+
+    def _spoken(self, key: str) -> str:
+        """A key without the numbers of list items: their line tells them apart."""
+        parts: list[str] = []
+        inner: Any = self.data
+        for part in key.split("."):
+            if not isinstance(inner, list):
+                parts.append(part)
+            inner = inner.get(part) if isinstance(inner, dict) else None
+        return ".".join(parts)
+
+    def placed(self, error: CalcpackError, key: str = "") -> Problem:
+        """What a function that knows no place found wrong with one of its keys."""
+        return self.problem(error.problems[0].message, error.problems[0].remedy, key)
+
+    @property
+    def place(self) -> Place:
+        """Where it stands, as the job keeps it."""
+        return Place(file=self.file, line=self.line)
 
 
 def validated(model: type[Model], entry: Entry, problems: Problems) -> Model | None:
@@ -149,6 +168,7 @@ def _said(model: type[BaseModel], detail: ErrorDetails) -> tuple[str, str]:
         "model_type": "a table of keys and values",
         "date_type": "a date without quotes, for example 2026-12-01",
     }
+    kind = "date_type" if kind.startswith("date") else kind
     return f"{shown(value)} does not fit here", f"give {wanted.get(kind, 'something else')}"
 
 

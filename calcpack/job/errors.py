@@ -38,7 +38,8 @@ class Problem:
         place = ":".join(str(part) for part in (self.file, self.line) if part is not None)
         parts = [part for part in (place, self.mark, self.key) if part]
         text = ": ".join([*parts, self.message])
-        return f"{text}; {self.remedy}" if self.remedy else text
+        text = f"{text}; {self.remedy}" if self.remedy else text
+        return "".join(each if each.isprintable() else "\N{REPLACEMENT CHARACTER}" for each in text)
 
     def at(self, **place: str | int | None) -> Problem:
         """Fill in those parts of the place that are not known yet."""

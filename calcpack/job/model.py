@@ -11,8 +11,8 @@ from typing import Any, Literal
 from pydantic import BaseModel, ConfigDict
 
 Point = tuple[float, float]
-CASES = ("dead", "live", "roof_live", "snow")
 Case = Literal["dead", "live", "roof_live", "snow"]
+CASES: tuple[Case, ...] = ("dead", "live", "roof_live", "snow")
 EquivalentKind = Literal["shear", "moment", "deflection", "fixed-end moment", "total"]
 
 

@@ -105,9 +105,9 @@ def parse_toml(file: FileBytes) -> Document:
 
     Examples
     --------
-    >>> document = parse_toml(FileBytes("a.toml", b"[[beam]]\\nmark = 'B1'\\n[beam.design]\\ncover = '40 mm'"))
-    >>> document.data["beam"][0]["design"], document.line(("beam", 0, "design", "cover"))
-    ({'cover': '40 mm'}, 4)
+    >>> document = parse_toml(FileBytes("a.toml", b"format = 1\\n[job]\\ntitle = 'Loft'"))
+    >>> document.data["job"], document.line(("job", "title"))
+    ({'title': 'Loft'}, 3)
     """
     text = file.text()
     try:
@@ -128,12 +128,11 @@ def _syntax_error(reason: str, name: str, text: str) -> CalcpackError:
     if not match:
         return CalcpackError("this is not TOML: a number has thousands of digits", file=name)
     what, line, column = match.groups()
-    what = (
-        "a key is given a second time" if what == "Cannot overwrite a value" else what[:1].lower() + what[1:]
-    )
+    if what == "Cannot overwrite a value":
+        what = "a key is given a second time"
     where = f"at column {column}" if column else "at the end of the file"
     number = int(line) if line else text.rstrip("\n").count("\n") + 1
-    return CalcpackError(f"this is not TOML: {what}, {where}", file=name, line=number)
+    return CalcpackError(f"this is not TOML: {what[:1].lower()}{what[1:]}, {where}", file=name, line=number)
 
 
 def _tree(content: bytes) -> Node:
