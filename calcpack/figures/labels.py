@@ -122,6 +122,15 @@ class Placer:
         )
         return sum(touches(box, *line) for line in lines[near].tolist())
 
+    def covered(self, start: Pair, end: Pair) -> int:
+        """How many of the blocked boxes a segment would run through."""
+        left, right = sorted((start[0], end[0]))
+        bottom, top = sorted((start[1], end[1]))
+        return sum(
+            a <= right and c >= left and b <= top and d >= bottom and touches(box, *start, *end)
+            for box, (a, b, c, d) in zip(self.boxes, self._bounds, strict=True)
+        )
+
     def cost(self, box: Box) -> float:
         """How bad a place is; 0 is free."""
         left, bottom, right, top = box.bounds()
@@ -205,6 +214,8 @@ def spread(wanted: Sequence[float], gaps: Sequence[float], low: float, high: flo
     >>> spread([0.0, 1.0, 10.0], [4.0, 4.0], -5.0, 20.0)
     [-1.5, 2.5, 10.0]
     """
+    if not wanted:
+        return []
     offsets = [0.0, *itertools.accumulate(gaps)]
     # With the gaps taken out the places must only not fall: pool neighbours that would (least squares).
     pools: list[list[float]] = []

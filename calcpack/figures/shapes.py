@@ -138,3 +138,35 @@ def clip_ring(points: Points, window: tuple[float, float, float, float]) -> Arra
         ring = kept
     first = ring.index(min(ring)) if ring else 0
     return np.asarray(ring[first:] + ring[:first], dtype=float).reshape(-1, 2)
+
+
+def simplified(points: Points, tolerance: float = 0.01) -> Array:
+    """A polyline with the points left out that lie within a tolerance of it (Douglas and Peucker).
+
+    Examples
+    --------
+    >>> simplified([(0, 0), (1, 0.001), (2, 0), (2, 5)]).tolist()
+    [[0.0, 0.0], [2.0, 0.0], [2.0, 5.0]]
+    """
+    line = np.asarray(points, dtype=float)
+    keep = np.zeros(len(line), dtype=bool)
+    keep[[0, -1]] = True
+    pending = [(0, len(line) - 1)]
+    while pending:
+        first, last = pending.pop()
+        if last - first < 2:
+            continue
+        start, along = line[first], line[last] - line[first]
+        inner = line[first + 1 : last] - start
+        length = math.hypot(*along.tolist())
+        off = (
+            np.abs(inner[:, 0] * along[1] - inner[:, 1] * along[0]) / length
+            if length > 1e-12
+            else np.hypot(inner[:, 0], inner[:, 1])
+        )
+        worst = int(off.argmax())
+        if off[worst] > tolerance:
+            middle = first + 1 + worst
+            keep[middle] = True
+            pending += [(first, middle), (middle, last)]
+    return line[keep]
