@@ -2,7 +2,8 @@
 
 from calcpack.equivalent.closed import equivalent_factor, under_panel
 from calcpack.equivalent.shapes import Shape, ShapeKind, shape_of
-from calcpack.equivalent.spans import Responses, Stretch, by_source, loads_on, responses, stretches
+from calcpack.equivalent.spans import Responses, by_source, loads_on, responses
+from calcpack.equivalent.stretches import Stretch, stretches
 from calcpack.equivalent.uniform import (
     EFFECTS,
     KINDS,

@@ -32,55 +32,38 @@ from calcpack.equivalent.formula import (
     times,
     total,
 )
+from calcpack.equivalent.letters import (
+    BEFORE,
+    COUNT,
+    FIRST,
+    FORCE,
+    INDEX,
+    LAST,
+    M_A,
+    M_B,
+    POINT,
+    R_A,
+    R_B,
+    SAME,
+    SPAN,
+    T0,
+    TURN_A,
+    TURN_B,
+    WHOLE,
+    A,
+    B,
+    C,
+    H,
+    K,
+    T,
+    X,
+    part,
+)
 from calcpack.equivalent.steps import Derivation, Step, step
-from calcpack.equivalent.symmetric import SAME, SPAN, uniform_response
+from calcpack.equivalent.symmetric import uniform_response
 from calcpack.job.model import EquivalentKind
 
-I = letter(sympy.Symbol("i", integer=True, positive=True), "i", "i", 40)  # noqa: E741
-R = letter(sympy.Symbol("r", integer=True, positive=True), "r", "r", 40)
-N = letter(sympy.Symbol("n", integer=True, positive=True), "n", "n", 40)
-T = letter(sympy.Symbol("t", positive=True), "t", "t", 31)
-T0 = letter(sympy.Symbol("t_0", positive=True), "t_0", "t 0", 31)
-X = letter(sympy.Symbol("x", positive=True), "x", "x", 30)
-C = letter(sympy.Symbol("c", positive=True), "c", "c", 16)
-FORCE = letter(sympy.Symbol("P", positive=True), "P", "P", 9)
-R_A = letter(sympy.Symbol("R_A"), "R_A", "R A", 8)
-R_B = letter(sympy.Symbol("R_B"), "R_B", "R B", 8)
-M_A = letter(sympy.Symbol("M_A"), "M_A", "M A", 8)
-M_B = letter(sympy.Symbol("M_B"), "M_B", "M B", 8)
-TURN_A = letter(sympy.Symbol("EItheta_A"), r"EI\,\theta_A", "E I theta A", 8)
-TURN_B = letter(sympy.Symbol("EItheta_B"), r"EI\,\theta_B", "E I theta B", 8)
-
 _ONE, _ZERO, _TWO = (of(sympy.Integer(number)) for number in (1, 0, 2))
-_SHAPES = {  # name of what belongs to a stretch: LaTeX and words around its number, rank in a product
-    "a": ("a_{{{}}}", "a {}", 14),
-    "b": ("b_{{{}}}", "b {}", 15),
-    "h": ("h_{{{}}}", "h {}", 13),
-    "k": ("k_{{{}}}", "k {}", 8),
-    "w_1": ("w_{{{}1}}", "w {} 1", 10),
-    "w_2": ("w_{{{}2}}", "w {} 2", 11),
-    "P": ("P_{{{}}}", "P {}", 9),
-    "W": ("W_{{{}}}", "W {}", 9),
-    "J_1": ("J_{{{}1}}", "J {} 1", 25),
-    "J_2": ("J_{{{}2}}", "J {} 2", 25),
-    "J_3": ("J_{{{}3}}", "J {} 3", 25),
-    "V": ("V_{{{}}}", "V {}", 9),
-    "M": ("M_{{{}}}", "M {}", 9),
-    "EItheta": (r"EI\,\theta_{{{}}}", "E I theta {}", 9),
-    "EIv": (r"EI\,v_{{{}}}", "E I v {}", 9),
-}
-
-
-def part(name: str, index: Value = I) -> Value:
-    """What belongs to one stretch, as an indexed symbol: ``part("w_1")`` is w_i1."""
-    latex, spoken, rank = _SHAPES[name]
-    shown = str(index).replace(" ", "")
-    symbol = sympy.IndexedBase(name)[index]
-    return letter(symbol, latex.format(shown), spoken.format(shown.replace("+", " plus ")), rank)
-
-
-A, B, H, K = part("a"), part("b"), part("h"), part("k")
-FIRST, LAST, POINT, WHOLE = part("w_1"), part("w_2"), part("P"), part("W")
 LOAD = FIRST + K * T  # along a stretch, t from its start
 
 
@@ -128,13 +111,18 @@ def derive(criterion: EquivalentKind) -> Derivation:
     return Derivation("general", criterion, tuple(steps), result.equations[0], None)
 
 
+def _over_all(*terms: Form) -> Form:
+    """Add the terms up over all stretches."""
+    return total(add(*terms), INDEX, _ONE, of(COUNT))
+
+
 def _known(latex: str, spoken: str, name: str) -> Form:
     return of(letter(sympy.Symbol(name), latex, spoken, 9))
 
 
 def _total_road() -> tuple[list[Step], Form]:
     all_load = _known("W", "W", "W")
-    adding = step("The whole load.", chain(all_load, total(add(of(WHOLE), of(POINT)), I, _ONE, of(N))))
+    adding = step("The whole load.", chain(all_load, _over_all(of(WHOLE), of(POINT))))
     return [_cuts(), _integrals(0), adding], all_load
 
 
@@ -186,8 +174,8 @@ def _deflection_road() -> tuple[list[Step], Form]:
     )
     bend = step(
         r"Bending turns the axis, $EI\,\theta' = -M$, $v' = \theta$, starting from $\theta_1 = \theta_A$ and "
-        "$v_1 = 0$. The deflection is largest where the rotation is zero, a root of this quartic found by "
-        "number.",
+        "$v_1 = 0$, each stretch going on where the last one ended. The deflection is largest where the "
+        "rotation is zero, a root of this quartic found by number.",
         chain(_of_t(r"EI\,\theta", "E I theta"), grouped(_rotation_along(), 1, T)),
         chain(_of_t(r"EI\,v", "E I v"), grouped(_deflection_along(), 1, T)),
         reading,
@@ -233,16 +221,11 @@ def _fixed_road() -> tuple[list[Step], Form]:
             of(M_A),
             times(
                 of(1 / SPAN**2),
-                total(
-                    add(
-                        of(SPAN**2 * first),
-                        minus(of(2 * SPAN * second)),
-                        of(third),
-                        times(of(POINT * A), power(at_a, 2)),
-                    ),
-                    I,
-                    _ONE,
-                    of(N),
+                _over_all(
+                    of(SPAN**2 * first),
+                    minus(of(2 * SPAN * second)),
+                    of(third),
+                    times(of(POINT * A), power(at_a, 2)),
                 ),
             ),
         ),
@@ -250,9 +233,7 @@ def _fixed_road() -> tuple[list[Step], Form]:
             of(M_B),
             times(
                 of(1 / SPAN**2),
-                total(
-                    add(of(SPAN * second), minus(of(third)), times(of(POINT * A**2), at_a)), I, _ONE, of(N)
-                ),
+                _over_all(of(SPAN * second), minus(of(third)), times(of(POINT * A**2), at_a)),
             ),
         ),
         Row(
@@ -276,9 +257,9 @@ def _cuts() -> Step:
         "of $n$, from $a_i$ to $b_i$, carries a load going straight from $w_{i1}$ to $w_{i2}$, and at its "
         "start the point load $P_i$ (zero where none stands); $t = x - a_i$.",
         beside(
-            along,
-            chain(of(K), over(series(LAST - FIRST, (FIRST,)), of(H))),
             chain(of(H), series(B - A, (A,))),
+            chain(of(K), over(series(LAST - FIRST, (FIRST,)), of(H))),
+            along,
         ),
     )
 
@@ -309,8 +290,8 @@ def _integrals(*degrees: int) -> Step:
 
 
 def _reactions() -> Step:
-    about = total(add(of(part("J_1")), of(POINT * A)), I, _ONE, of(N))
-    down = total(add(of(WHOLE), of(POINT)), I, _ONE, of(N))
+    about = _over_all(of(part("J_1")), of(POINT * A))
+    down = _over_all(of(WHOLE), of(POINT))
     return step(
         "Moments about the left support give the right reaction, vertical balance the left one.",
         beside(
@@ -351,8 +332,8 @@ def _passed(name: str, value: Value) -> Form:
 def _shear() -> Step:
     before = add(
         of(R_A),
-        minus(total(of(part("P", R)), R, _ONE, of(I))),
-        minus(total(of(part("W", R)), R, _ONE, named("i-1", "i minus 1", I - 1))),
+        minus(total(of(part("P", BEFORE)), BEFORE, _ONE, of(INDEX))),
+        minus(total(of(part("W", BEFORE)), BEFORE, _ONE, named("i-1", "i minus 1", INDEX - 1))),
     )
     return step(
         "The shear along a stretch, from its value $V_i$ at the start.",
@@ -362,7 +343,7 @@ def _shear() -> Step:
 
 
 def _moment(*more: Row) -> Step:
-    after = of(part("M", I + 1))
+    after = of(part("M", INDEX + 1))
     at_end = sympy.expand(_moment_along().subs(T, H).subs(K, (LAST - FIRST) / H))
     load = sympy.expand(part("M") + part("V") * H - at_end)
     arranged = times(of(H**2 / 6), series(sympy.expand(load * 6 / H**2), (LAST,)))
@@ -428,12 +409,7 @@ def _start_rotation() -> Step:
             of(TURN_A),
             times(
                 of(1 / (6 * SPAN)),
-                total(
-                    add(of(2 * SPAN**2 * first), minus(of(3 * SPAN * second)), of(third), point),
-                    I,
-                    _ONE,
-                    of(N),
-                ),
+                _over_all(of(2 * SPAN**2 * first), minus(of(3 * SPAN * second)), of(third), point),
             ),
         ),
     )

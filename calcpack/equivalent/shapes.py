@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Literal
 
-from calcpack.equivalent.spans import stretches
+from calcpack.equivalent.stretches import stretches
 from calcpack.statics.loads import LineLoad, Load, PointLoad
 
 ShapeKind = Literal["uniform", "triangle", "trapezoid", "general"]

@@ -23,7 +23,6 @@ from calcpack.equivalent.formula import (
     fronted,
     grouped,
     integral,
-    letter,
     minus,
     named,
     neat,
@@ -32,26 +31,13 @@ from calcpack.equivalent.formula import (
     times,
     within,
 )
+from calcpack.equivalent.letters import HOLD, PEAK, PRESSURE, RATIO, REACTION, RISE, SAME, SHORT, SPAN, X
 from calcpack.equivalent.steps import Derivation, Step, step
 from calcpack.job.model import EquivalentKind
 
 SymmetricKind = Literal["uniform", "triangle", "trapezoid"]
 
 
-def _positive(name: str, latex: str, spoken: str, rank: int) -> Value:
-    return letter(sympy.Symbol(name, positive=True), latex, spoken, rank)
-
-
-SAME = _positive("w_eq", r"w_{\mathrm{eq}}", "w eq", 5)
-PEAK = _positive("w_0", "w_0", "w 0", 10)
-PRESSURE = _positive("q", "q", "q", 11)
-SHORT = _positive("S", "S", "S", 12)
-SPAN = _positive("L", "L", "L", 13)
-RISE = _positive("a", "a", "a", 14)
-RATIO = _positive("m", "m", "m", 20)
-X = _positive("x", "x", "x", 30)
-REACTION = _positive("R", "R", "R", 8)
-HOLD = _positive("M_F", "M_F", "M F", 8)
 _ORDER = (RISE,)  # within brackets: what has no rise first
 _ZERO = of(sympy.Integer(0))
 _HALF = named("L/2", "L over 2", SPAN / 2)  # as a limit or an argument, on one line
