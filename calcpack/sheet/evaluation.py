@@ -33,12 +33,12 @@ class Measured(NamedTuple):
         return self.force, self.length
 
 
-def measured(value: float, unit: str) -> Measured:
+def in_base(value: float, unit: str) -> Measured:
     """A value in a unit, turned into kN and m.
 
     Examples
     --------
-    >>> measured(250.0, "mm")
+    >>> in_base(250.0, "mm")
     Measured(value=0.25, force=0, length=1)
     """
     return Measured(value * factor(unit), *dimension(unit))
@@ -107,9 +107,9 @@ def evaluate(root: Expression, known: Mapping[str, Measured]) -> Measured:
     Examples
     --------
     >>> q, S = Reference("q", "2.01"), Reference("S", "1.02")
-    >>> evaluate(q * S / 2, {"2.01": measured(5.5, "kPa"), "1.02": measured(4500, "mm")})
+    >>> evaluate(q * S / 2, {"2.01": in_base(5.5, "kPa"), "1.02": in_base(4500, "mm")})
     Measured(value=12.375, force=1, length=-1)
-    >>> evaluate(q + S, {"2.01": measured(5.5, "kPa"), "1.02": measured(4500, "mm")})
+    >>> evaluate(q + S, {"2.01": in_base(5.5, "kPa"), "1.02": in_base(4500, "mm")})
     Traceback (most recent call last):
     calcpack.job.errors.CalcpackError: in 'q + S': q is a pressure and S is a length
     """
@@ -117,7 +117,7 @@ def evaluate(root: Expression, known: Mapping[str, Measured]) -> Measured:
         case Number():
             return Measured(float(root.text))
         case Quantity():
-            return measured(float(root.text), root.unit)
+            return in_base(float(root.text), root.unit)
         case Reference():
             if root.line not in known:
                 raise CalcpackError(f"there is no line {root.line} to take '{root.symbol}' from")
@@ -191,12 +191,12 @@ def _apply(node: Operation, sizes: list[Measured]) -> Measured:
             dimension = _alike(node, terms[1:])
             return Measured(values[1] if values[0] else values[2], *dimension)
         case "number_in":
-            unit = measured(1.0, node.unit)
+            unit = in_base(1.0, node.unit)
             if sizes[0].dimension != unit.dimension:
                 raise _wrong(node, f"{plain(node.args[0])} is {kind(sizes[0])}, not {kind(unit)}")
             return Measured(values[0] / unit.value)
         case "in_unit":
-            return measured(_bare(node, sizes[0]), node.unit)
+            return in_base(_bare(node, sizes[0]), node.unit)
         case name if name in COMPARISONS:
             _alike(node, terms)
             return Measured(float(holds(name, *values)))
@@ -247,7 +247,7 @@ def evaluate_in(root: Expression, unit: str, known: Mapping[str, Measured]) -> f
     Examples
     --------
     >>> q, S = Reference("q", "2.01"), Reference("S", "1.02")
-    >>> known = {"2.01": measured(5.5, "kPa"), "1.02": measured(4.5, "m")}
+    >>> known = {"2.01": in_base(5.5, "kPa"), "1.02": in_base(4.5, "m")}
     >>> evaluate_in(q * S**2 / 8, "kN", known)
     13.921875
     >>> evaluate_in(q * S / 2, "kN", known)
@@ -255,7 +255,7 @@ def evaluate_in(root: Expression, unit: str, known: Mapping[str, Measured]) -> f
     calcpack.job.errors.CalcpackError: 'q*S/2' is a line load, but kN stands for a force
     """
     result = evaluate(root, known)
-    wanted = measured(1.0, unit)
+    wanted = in_base(1.0, unit)
     if result.dimension != wanted.dimension:
         named = "no unit" if unit == "1" else unit
         raise CalcpackError(f"'{plain(root)}' is {kind(result)}, but {named} stands for {kind(wanted)}")

@@ -30,7 +30,7 @@ WITH_UNIT = frozenset({"number_in", "in_unit"})
 DEEPEST = 60
 LARGEST = 1000  # nodes
 
-_DECIMAL = re.compile(r"[0-9]{1,24}(?:\.[0-9]{1,24})?")
+_DECIMAL = re.compile(r"[0-9]{1,40}(?:\.[0-9]{1,40})?")
 _PRINTABLE = 9  # significant digits of a constant written as a float
 
 
@@ -144,7 +144,7 @@ class Quantity(Expression):
 
     def __post_init__(self) -> None:
         Number(self.text)
-        _check_unit(self.unit)
+        check_unit(self.unit)
 
 
 @dataclass(frozen=True)
@@ -174,7 +174,7 @@ class Operation(Expression):
         if not least <= len(self.arguments) <= most:
             raise CalcpackError(f"'{self.name}' cannot take {len(self.arguments)} arguments")
         if self.name in WITH_UNIT:
-            _check_unit(self.unit)
+            check_unit(self.unit)
         elif self.unit:
             raise CalcpackError(f"'{self.name}' takes no unit")
         for place, argument in enumerate(self.arguments):
@@ -209,7 +209,8 @@ class Operation(Expression):
 Term = Arithmetic | int | float | Decimal | str
 
 
-def _check_unit(unit: object) -> None:
+def check_unit(unit: object) -> None:
+    """Raise a CalcpackError unless a sheet knows the unit."""
     try:
         parts(str(unit))
     except ValueError as error:
@@ -265,13 +266,28 @@ def number(value: Term) -> Expression:
 
 
 def quantity(value: Term, unit: str) -> Expression:
-    """A constant with its unit: ``quantity(25, "kN/m^3")``."""
+    """A constant with its unit, printed as it is written: ``quantity(25, "kN/m^3")``."""
     plain = expression(value)
     if isinstance(plain, Operation) and isinstance(plain.args[0], Number):
         return -Quantity(plain.args[0].text, unit)
     if not isinstance(plain, Number):
         raise CalcpackError("a constant is a number and a unit")
     return Quantity(plain.text, unit)
+
+
+def measured(value: float, unit: str) -> Expression:
+    """A value worked out beside the sheet: kept in full, printed rounded as a line's value is.
+
+    Examples
+    --------
+    >>> measured(12.345678901234, "kN")
+    Quantity(text='12.345678901234', unit='kN')
+    """
+    decimal = Decimal(repr(float(value)))
+    if not decimal.is_finite():
+        raise CalcpackError(f"{value} cannot be a part of a formula")
+    node = Quantity(format(abs(decimal), "f"), unit)
+    return -node if decimal < 0 else node
 
 
 def _named(name: str) -> Callable[..., Operation]:
@@ -284,13 +300,19 @@ def _named(name: str) -> Callable[..., Operation]:
 
 
 sqrt, sin, cos, tan, atan, log, exp = map(_named, ("sqrt", "sin", "cos", "tan", "atan", "log", "exp"))
-least, greatest, equal = _named("min"), _named("max"), _named("eq")
+least, greatest, absolute, equal = _named("min"), _named("max"), _named("abs"), _named("eq")
 PI = Operation("pi", ())
 
 
-def total(terms: Iterable[Term]) -> Operation:
-    """The sum of any number of terms, in their order."""
-    return _operation("sum", *terms)
+def total(*terms: Term | Iterable[Term]) -> Operation:
+    """The sum of any number of terms, or of any number of them in a list, in their order."""
+    flat: list[Term] = []
+    for term in terms:
+        if isinstance(term, Iterable) and not isinstance(term, str):
+            flat.extend(term)
+        else:
+            flat.append(term)
+    return _operation("sum", *flat)
 
 
 def choose(condition: Term, then: Term, otherwise: Term) -> Operation:

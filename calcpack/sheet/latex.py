@@ -11,8 +11,8 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 from typing import Protocol
 
-from calcpack.sheet.display import parse_shown, shown_number
-from calcpack.sheet.evaluation import evaluate, measured
+from calcpack.sheet.display import System, parse_shown, shown_number
+from calcpack.sheet.evaluation import evaluate, in_base
 from calcpack.sheet.expression import (
     COMPARISONS,
     Expression,
@@ -36,6 +36,7 @@ from calcpack.sheet.pieces import (
 )
 from calcpack.sheet.symbols import read_symbol
 from calcpack.sheet.unit_text import label, unit_latex
+from calcpack.sheet.words import shown_constant
 
 
 class Printed(Protocol):
@@ -86,7 +87,7 @@ def symbol_latex(symbol: str) -> str:
     return read_symbol(symbol).latex
 
 
-def symbols_row(root: Expression) -> list[str]:
+def symbols_row(root: Expression, system: System = "SI") -> list[str]:
     r"""The formula with its symbols, in chunks.
 
     Examples
@@ -95,10 +96,10 @@ def symbols_row(root: Expression) -> list[str]:
     >>> print(*symbols_row(q * S / 2 * (3 - m**2) / 3), sep=" | ")
     \frac{q\,S}{2} | \cdot \frac{3 - m^{2}}{3}
     """
-    return _Writer(None).row(root)
+    return _Writer(None, system).row(root)
 
 
-def numbers_row(root: Expression, known: Mapping[str, Printed]) -> list[str]:
+def numbers_row(root: Expression, known: Mapping[str, Printed], system: System = "SI") -> list[str]:
     """The formula with the printed numbers of the lines it draws on, in chunks.
 
     Where it chooses between values, the one taken is written, and why.
@@ -108,8 +109,10 @@ def numbers_row(root: Expression, known: Mapping[str, Printed]) -> list[str]:
     root : Expression
     known : mapping
         Line number -> that line.
+    system : "SI" or "US"
+        For constants; a line's number is printed as the line has it.
     """
-    writer = _Writer(known)
+    writer = _Writer(known, system)
     return [*writer.row(root), *writer.reasons]
 
 
@@ -145,7 +148,8 @@ def _chain(node: Expression) -> Iterator[tuple[bool, Expression]]:
 class _Writer:
     """Writes one row; ``known`` is None for symbols."""
 
-    def __init__(self, known: Mapping[str, Printed] | None) -> None:
+    def __init__(self, known: Mapping[str, Printed] | None, system: System) -> None:
+        self.system = system
         self.known = known
         self.numbers = known is not None
         self.reasons: dict[str, None] = {}
@@ -203,7 +207,7 @@ class _Writer:
             case Number():
                 return Piece(node.text, ATOM, len(node.text), digit=True)
             case Quantity():
-                return value_piece(f"{node.text} {label(node.unit)}".strip().replace(" °", "°"))
+                return value_piece(shown_constant(node, self.system))
             case Reference():
                 return self.reference(node)
             case Operation(name="add" | "sub" | "sum"):
@@ -319,7 +323,7 @@ class _Writer:
         assert isinstance(condition, Operation)
         assert self.known is not None
         lines = {no: self.known[no] for no in references(condition).values()}
-        sizes = {no: measured(line.value, line.unit) for no, line in lines.items()}
+        sizes = {no: in_base(line.value, line.unit) for no, line in lines.items()}
         true = evaluate(condition, sizes).value == 1.0
         reason = " ".join(self.row_on_one_line(condition, _RELATIONS if true else _OPPOSITES))
         self.reasons.setdefault(rf"\quad(\text{{as }}{reason})")

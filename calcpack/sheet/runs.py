@@ -20,17 +20,17 @@ _KINDS = ("math", "strong", "em", "line")
 _LINE = re.compile(r"[0-9]{1,3}\.[0-9]{2,3}")
 _LONGEST = 20_000
 
-_COMMANDS = frozenset(
-    """
-    frac dfrac tfrac sqrt left right cdot times div pm le ge ne lt gt approx leq geq neq equiv text textbf
-    mathrm mathbf mathit mathsf quad qquad bar hat tilde dot ddot vec overline underline circ prime partial
-    infty int sum prod lim min max sin cos tan cot arcsin arccos arctan ln log exp ldots cdots dots ell
-    to rightarrow Rightarrow Leftrightarrow begin end displaystyle alpha beta gamma delta epsilon varepsilon
-    zeta eta theta vartheta iota kappa lambda mu nu xi pi rho sigma tau upsilon phi varphi chi psi omega
-    Gamma Delta Theta Lambda Xi Pi Sigma Upsilon Phi Psi Omega big Big bigl bigr Bigl Bigr langle rangle lvert
-    rvert vert lfloor rfloor lceil rceil operatorname boldsymbol limits mid colon
-    """.split()
+_COMMAND_LIST = (
+    "frac dfrac tfrac sqrt left right cdot times div pm le ge ne lt gt approx leq geq neq equiv text "
+    "textbf mathrm mathbf mathit mathsf quad qquad bar hat tilde dot ddot vec overline underline "
+    "circ prime partial infty int sum prod lim min max sin cos tan cot arcsin arccos arctan ln log "
+    "exp ldots cdots dots ell to rightarrow Rightarrow Leftrightarrow begin end displaystyle alpha "
+    "beta gamma delta epsilon varepsilon zeta eta theta vartheta iota kappa lambda mu nu xi pi rho "
+    "sigma tau upsilon phi varphi chi psi omega Gamma Delta Theta Lambda Xi Pi Sigma Upsilon Phi Psi "
+    "Omega big Big bigl bigr Bigl Bigr langle rangle lvert rvert vert lfloor rfloor lceil rceil "
+    "operatorname boldsymbol limits mid colon "
 )
+_COMMANDS = frozenset(_COMMAND_LIST.split())
 _ENVIRONMENTS = frozenset({"cases", "aligned", "matrix", "pmatrix"})
 _TOKEN = re.compile(r"\\([A-Za-z]+|.|\Z)", re.DOTALL)
 _SPACING = frozenset(" ,:;!\\{}|%&_#$")
@@ -48,9 +48,9 @@ def check_math(latex: object) -> str:
     --------
     >>> check_math(r"w_{\text{eq}}")
     'w_{\\text{eq}}'
-    >>> check_math(r"\input{secret}")
+    >>> check_math(r"\input{file}")
     Traceback (most recent call last):
-    calcpack.job.errors.CalcpackError: the formula '\input{secret}' has the command '\input', which no sheet needs
+    calcpack.job.errors.CalcpackError: the formula '\input{file}' has the command '\input'; no sheet needs it
     """
     if not isinstance(latex, str) or len(latex) > _LONGEST:
         raise CalcpackError("a formula is a text of ordinary length")
@@ -58,8 +58,8 @@ def check_math(latex: object) -> str:
     for match in _TOKEN.finditer(latex):
         name = match[1]
         if name not in _COMMANDS and name not in _SPACING:
-            message = f"the formula '{shown}' has the command '\\{name}', which no sheet needs"
-            raise CalcpackError(message)
+            message = f"the formula '{shown}' has the command '\\{name}'"
+            raise CalcpackError(message, remedy="no sheet needs it")
     for name in re.findall(r"\\(?:begin|end)\b(?:\{([a-z]*)\})?", latex):
         if name not in _ENVIRONMENTS:
             raise CalcpackError(f"the formula '{shown}' has an environment that no sheet needs")
@@ -76,7 +76,7 @@ def check_math(latex: object) -> str:
     return latex
 
 
-def math(latex: str) -> dict[str, str]:
+def formula(latex: str) -> dict[str, str]:
     """Mathematics among words."""
     return {"math": check_math(latex)}
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from calcpack.sheet.display import parse_shown
+from calcpack.sheet.display import System, parse_shown, show
 from calcpack.sheet.expression import Expression, Number, Operation, Quantity, Reference
 from calcpack.sheet.symbols import read_symbol
 from calcpack.sheet.unit_text import label, unit_spoken
@@ -54,6 +54,20 @@ def plain(root: Expression) -> str:
     raise TypeError(f"{root!r} is not an expression")
 
 
+def shown_constant(node: Quantity, system: System) -> str:
+    r"""A constant as printed: in full where somebody wrote it, rounded where it was worked out.
+
+    Examples
+    --------
+    >>> for text in ("25", "12.345678901"):
+    ...     print(ascii(shown_constant(Quantity(text, "kN"), "SI")))
+    '25.0\xa0kN'
+    '12.3\xa0kN'
+    """
+    written = len(node.text.replace(".", "").strip("0")) <= 6
+    return show(float(node.text), node.unit, system, exact=written)
+
+
 _SPOKEN_SIGNS = {"add": "plus", "sub": "minus", "mul": "times", "div": "over", "pow": "to the power"}
 _SPOKEN_RELATIONS = {
     "eq": "equals",
@@ -69,7 +83,7 @@ _FUNCTIONS = {
 }  # fmt: skip
 
 
-def spoken(root: Expression) -> str:
+def spoken(root: Expression, system: System = "SI") -> str:
     """A formula as read aloud, symbols by name.
 
     Examples
@@ -80,13 +94,14 @@ def spoken(root: Expression) -> str:
     """
 
     def held(node: Expression, least: int) -> str:
-        return spoken(node) if _rank(node) >= least else f"({spoken(node)})"
+        said = spoken(node, system)
+        return said if _rank(node) >= least else f"({said})"
 
     match root:
         case Number():
             return root.text
         case Quantity():
-            return f"{root.text} {unit_spoken(root.unit)}".strip()
+            return spoken_value(shown_constant(root, system))
         case Reference():
             return read_symbol(root.symbol).spoken
         case Operation(name="pi"):
@@ -104,9 +119,9 @@ def spoken(root: Expression) -> str:
             return f"{held(left, rank + (name == 'pow'))} {sign} {held(right, max(rank + 1, 3))}"
         case Operation(name=name) if name in _SPOKEN_RELATIONS:
             left, right = root.args
-            return f"{spoken(left)} {_SPOKEN_RELATIONS[name]} {spoken(right)}"
+            return f"{held(left, 1)} {_SPOKEN_RELATIONS[name]} {held(right, 1)}"
         case Operation(name="choose"):
-            condition, then, otherwise = map(spoken, root.args)
+            condition, then, otherwise = (spoken(each, system) for each in root.args)
             return f"{then} if {condition}, otherwise {otherwise}"
         case Operation(name="number_in" | "in_unit"):
             return f"{held(root.args[0], 3)} in {unit_spoken(root.unit)}"
