@@ -140,9 +140,7 @@ def _bearing(
                 f"nothing stands under {name}, where the beam meets {met}: "
                 "each names the point as a support of its own"
             )
-            remedy = (
-                "put a column or a wall there, or take the point out of the line of the beam that carries"
-            )
+            remedy = "put a column or a wall there, or let one of them pass under it without naming it"
             problems.append(plan.problem(beam, "line", message, remedy))
     else:
         message = f"nothing stands under {name}: no column, no wall and no beam{_nearest(plan, point)}"
