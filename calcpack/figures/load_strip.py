@@ -65,6 +65,7 @@ class LoadStrip:
         self.drawing = Drawing()
         self.placer = Placer(axis.bounds())
         self.surface: list[list[Pair]] = []
+        self.remark = ""
 
     def draw(
         self, layers: list[Layer], loads: Sequence[Load], even: Sequence[tuple[float, float, float]]
@@ -89,7 +90,12 @@ class LoadStrip:
         if layers:
             at, value = together(layers)
             if abs(value) > max(abs(layer.peak()[1]) for layer in layers) * (1 + 1e-9):
-                self._above(at, f"together {show(value, 'kN/m', self.system)}")
+                text = f"together {show(value, 'kN/m', self.system)}"
+                place = self._above(self.axis.x(at), text, 0.4, (0.0, self.axis.width))
+                if self.placer.cost(place) == 0:
+                    self._write(place, text)
+                else:  # said beside the title where the drawing has no room for it
+                    self.remark = f"; {text}"
         for start, end, value in even:
             text = f"equivalent {show(value, 'kN/m', self.system)}"
             self._along(start, end, value, text)
@@ -202,10 +208,13 @@ class LoadStrip:
 
     def _with_leader(self, layer: Layer, text: str) -> None:
         """A name above the pile, led straight down into a share too thin to be written in."""
-        box = self._above(layer.peak()[0], text, lift=2.0)
+        loaded = np.flatnonzero(np.abs(layer.own).max(axis=1) > 1e-9)
+        reach = self.axis.x(layer.breaks[loaded[0]]), self.axis.x(layer.breaks[loaded[-1] + 1])
+        box = self._above(self.axis.x(layer.peak()[0]), text, 2.0, reach)
+        self._write(box, text)
         places = [box.x + part * box.width for part in (0.0, -0.2, 0.2, -0.4, 0.4, -0.48, 0.48)]
         foot = box.bounds()[1]
-        found = [self._share_at(layer, x) for x in places]
+        found = [self._share_at(layer, min(max(x, reach[0] + 0.6), reach[1] - 0.6)) for x in places]
         # Into the thickest part, but through nobody's name.
         x, y, _ = max(
             found, key=lambda at: round(at[2], 1) - 9.0 * self.placer.covered((at[0], foot), at[:2])
@@ -215,10 +224,7 @@ class LoadStrip:
         self.drawing.disc(x, y, 0.4, INK, SIGNS)
 
     def _share_at(self, layer: Layer, x: float) -> tuple[float, float, float]:
-        """The middle of a share under a place on paper, moved into the share, and how thick it is there."""
-        loaded = np.flatnonzero(np.abs(layer.own).max(axis=1) > 1e-9)
-        left, right = self.axis.x(layer.breaks[loaded[0]]), self.axis.x(layer.breaks[loaded[-1] + 1])
-        x = min(max(x, left + 0.6), right - 0.6)
+        """The middle of a share under a place on paper, and how thick it is there."""
         at = (x - self.axis.x(0.0)) / self.axis.scale
         n = min(max(int(np.searchsorted(layer.breaks, at)) - 1, 0), len(layer.own) - 1)
         part = (at - layer.breaks[n]) / (layer.breaks[n + 1] - layer.breaks[n])
@@ -226,19 +232,24 @@ class LoadStrip:
         top = layer.top[n, 0] + (layer.top[n, 1] - layer.top[n, 0]) * part
         return x, float(base + top) / 2 * self.scale, float(abs(top - base)) * self.scale
 
-    def _above(self, at: float, text: str, lift: float = 0.4) -> Box:
-        """A line of text over the pile, as near to a place as others leave free."""
+    def _above(self, middle: float, text: str, lift: float, reach: Pair) -> Box:
+        """The place for a line of text over the pile, over a stretch and as near to its middle as can be."""
         width, height = text_width(text, SMALL), line_height(SMALL)
         low, high = 0.5 + width / 2, self.axis.width - 0.5 - width / 2
-        places = []
-        for row in range(6):
-            for shift in (0.0, -0.4, 0.4, -0.8, 0.8, -1.3, 1.3, -2.0, 2.0, -3.0, 3.0):
-                x = min(max(self.axis.x(at) + shift * width, low), high)
-                top = self._top(x - width / 2, x + width / 2)
-                places.append(Box(x, top + lift + height / 2 + row * height, width + 0.8, height))
-        box = self.placer.choose(places, penalty=0.01)
+        shifts = sorted((3.0 * step for step in range(-20, 21)), key=abs)
+        xs = [middle + shift for shift in shifts if reach[0] <= middle + shift <= reach[1]]
+        xs = list(dict.fromkeys(min(max(x, low), high) for x in xs))
+        places = [self._over(x, width, height, lift + row * height) for row in range(5) for x in xs]
+        costs = [self.placer.cost(place) + 0.01 * number for number, place in enumerate(places)]
+        return places[costs.index(min(costs))]
+
+    def _write(self, box: Box, text: str) -> None:
         self.drawing.text(box.x, box.y, text, SMALL, level="box")
-        return box
+        self.placer.block(box)
+
+    def _over(self, x: float, width: float, height: float, lift: float) -> Box:
+        top = self._top(x - width / 2, x + width / 2)
+        return Box(x, top + lift + height / 2, width + 0.8, height)
 
     def _along(self, start: float, end: float, value: float, text: str) -> None:
         """A dashed line's value, over it or under it."""

@@ -73,7 +73,7 @@ def load_figure(
         strip = LoadStrip(axis, scale, patterns, system)
         strip.draw(piles[case], loads, even.get(case, ()))
         title = case.replace("_", " ")
-        strips.append((title, _remark(loads, own, system), strip.drawing))
+        strips.append((title, _remark(loads, own, system) + strip.remark, strip.drawing))
     sheet = stacked(axis, strips, beam_row(axis, system))
     spoken = "; ".join(
         f"{case.replace('_', ' ')}: {spoken_loads(piles[case], loads, system)}"
