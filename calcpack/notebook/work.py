@@ -49,12 +49,13 @@ class Work:
     """What the sections of a sheet share.
 
     ``lines`` keeps the lines that later sections draw on, under a key that says what they are:
-    ``("peak", "dead", "P1")``.
+    ``("peak", "dead", "P1")``. ``checks`` are the requirements on the beam itself, by name.
     """
 
     study: Study
     sheet: Sheet
     lines: dict[Hashable, Line] = field(default_factory=dict)
+    checks: list[tuple[str, Line]] = field(default_factory=list)
 
     @property
     def given(self) -> BeamInput:
@@ -63,7 +64,7 @@ class Work:
 
     def show(self, value: float, unit: str, *, exact: bool = False) -> str:
         """A value in words of the job's unit system."""
-        return show(value, unit, self.study.system, exact=exact)
+        return show(value, unit, self.study.system, exact)
 
     @cached_property
     def sources(self) -> dict[str, Source]:

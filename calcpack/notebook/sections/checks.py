@@ -6,8 +6,9 @@ from typing import Any
 
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import LETTER, Work
-from calcpack.sheet import Line, absolute, greatest, measured, number, total
-from calcpack.statics import LineLoad, PointLoad, stiffness_check
+from calcpack.sheet import Expression, Line, absolute, greatest, measured, number, total
+from calcpack.statics import LineLoad, PointLoad
+from calcpack.statics.stiffness import stiffness_check
 
 TOLERANCE = "0.000001"  # relative, for two roads to one number
 
@@ -33,14 +34,10 @@ def _equilibrium(work: Work, row: int, case: str) -> None:
         says=f"Sum of the reactions, {CASE_WORDS[case]}",  # type: ignore[index]
         cite="equilibrium",
     )
-    _note(
-        work,
-        sheet.require(
-            absolute(upward - load) <= number(TOLERANCE) * load,
-            says=f"They carry all the {CASE_WORDS[case]}",  # type: ignore[index]
-            cite="equilibrium",
-        ),
-        f"equilibrium, {CASE_WORDS[case]}",  # type: ignore[index]
+    sheet.require(
+        absolute(upward - load) <= number(TOLERANCE) * load,
+        says=f"They carry all the {CASE_WORDS[case]}",  # type: ignore[index]
+        cite="equilibrium",
     )
     start, end = (float(value) for value in study.by_case.end_moments[row])
     turning = [
@@ -51,15 +48,11 @@ def _equilibrium(work: Work, row: int, case: str) -> None:
     # sagging positive: the wall at the start turns the beam with -M, at the end with +M
     held = [measured(-start, "kN*m"), measured(end, "kN*m")] if any(given.fixed) else []
     loads = sum(_moment(each) for each in given.loads[case])  # type: ignore[index]
-    _note(
-        work,
-        sheet.require(
-            absolute(total([*turning, *held]) - measured(loads, "kN*m"))
-            <= number(TOLERANCE) * load * work.lines["whole length"],
-            says=f"Moments about the beam's start: reactions against {CASE_WORDS[case]}",  # type: ignore[index]
-            cite="equilibrium",
-        ),
-        f"moment equilibrium, {CASE_WORDS[case]}",  # type: ignore[index]
+    sheet.require(
+        absolute(total([*turning, *held]) - measured(loads, "kN*m"))
+        <= number(TOLERANCE) * load * _length(work),
+        says=f"Moments about the beam's start: reactions against {CASE_WORDS[case]}",  # type: ignore[index]
+        cite="equilibrium",
     )
 
 
@@ -101,14 +94,10 @@ def _second_method(work: Work) -> None:
         caption="The beam solved a second time by direct stiffness with cubic elements.",
     )
     weight = total(measured(load.total, "kN") for load in factored if load.total)
-    _note(
-        work,
-        sheet.require(
-            (greatest(*differences) if len(differences) > 1 else differences[0]) <= number(TOLERANCE) * weight,
-            says="Largest difference between the two methods' reactions, against the load",
-            cite="second method",
-        ),
-        "second method",
+    sheet.require(
+        (greatest(*differences) if len(differences) > 1 else differences[0]) <= number(TOLERANCE) * weight,
+        says="Largest difference between the two methods' reactions, against the load",
+        cite="second method",
     )
 
 
@@ -149,15 +138,12 @@ def _deflection_limits(work: Work) -> None:
         )
         overhang = not work.given.between_supports(number_)
         reach = 2 * span if overhang else span
-        _note(
-            work,
-            work.sheet.require(
-                found <= reach / number(limit),
-                says=f"Deflection under {words}: at most {'twice the overhang' if overhang else 'span'} over {limit:g}",
-                cite="limit set by the job",
-            ),
-            f"deflection, {words}",
+        line = work.sheet.require(
+            found <= reach / number(limit),
+            says=f"Deflection under {words}: at most {'twice the overhang' if overhang else 'span'} over {limit:g}",
+            cite="limit set by the job",
         )
+        work.checks.append((f"deflection, {words}", line))
 
 
 def _span_at(work: Work, at: float) -> int:
@@ -166,11 +152,12 @@ def _span_at(work: Work, at: float) -> int:
     return next((number for number, (_, end) in enumerate(spans) if at < end), len(spans) - 1)
 
 
-def _note(work: Work, line: Line, name: str) -> None:
-    """Keep a requirement for the record's list of checks."""
-    work.checks.append((name, line))
+def _length(work: Work) -> Line | Expression:
+    """The beam's whole length, as its spans make it up."""
+    spans = [work.lines["span", number_] for number_ in range(len(work.given.spans))]
+    return total(spans) if len(spans) > 1 else spans[0]
 
 
 def checks_of(work: Work) -> list[dict[str, Any]]:
-    """The ``checks`` of the record, from the requirements stated."""
+    """The ``checks`` of the record: what is required of the beam, not of the calculation."""
     return [line.check(name) for name, line in work.checks]

@@ -7,6 +7,7 @@ from typing import Any
 from calcpack.notebook.sections.checks import checks_of
 from calcpack.notebook.study import CASE_WORDS, results_of
 from calcpack.notebook.work import Work
+from calcpack.sheet.runs import plain_text
 
 
 def state_summary(work: Work) -> None:
@@ -14,9 +15,10 @@ def state_summary(work: Work) -> None:
     study, given, analysed = work.study, work.given, work.study.analysed
     sheet = work.sheet
     sheet.section("Summary and sign-off")
-    unmet = [name for name, line in work.checks if not line.passes]
+    unmet = [line for line in sheet.lines.values() if line.passes is False]
     if unmet:
-        sheet.text(f"Not satisfied: {', '.join(unmet)}.", role="unsafe")
+        which = ", ".join(f"{plain_text(line.says)} (line {line.no})" for line in unmet)
+        sheet.text(f"Not satisfied: {which}.", role="unsafe")
     moment, shear = analysed.governing_moment, analysed.governing_shear
     parts = [
         f"Design moment {work.show(moment.moment_governing.value, 'kN*m')} at "

@@ -8,7 +8,10 @@ from calcpack.actions import CombinationResult
 from calcpack.figures import response_figure
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import LETTER, Work
-from calcpack.sheet import Expression, Line, absolute, number, total
+from calcpack.sheet import Expression, Line, number, total
+from calcpack.statics import enclosing
+
+SAMPLES = 120
 
 
 def state_combinations(work: Work) -> None:
@@ -158,18 +161,17 @@ def curves_of(work: Work) -> dict[str, list[tuple[object, object, str]]]:
     curves: dict[str, list[tuple[object, object, str]]] = {}
     always, placed = analysed.factors(analysed.governing_moment.combination)
     governing = analysed.response.combined(always + placed)
-    for quantity, line in (("shear", governing.shear), ("moment", governing.moment)):
-        upper = study.outermost([getattr(each.envelope, quantity).upper for each in strength], max)
-        lower = study.outermost([getattr(each.envelope, quantity).lower for each in strength], min)
+    for quantity in ("shear", "moment"):
+        band = enclosing([getattr(each.envelope, quantity) for each in strength])
         curves[quantity] = [
-            (*upper, "upper"),
-            (*lower, "lower"),
-            (*study.curve(governing.breaks, line[0]), "line"),
+            (*band.upper.sample(SAMPLES), "upper"),
+            (*band.lower.sample(SAMPLES), "lower"),
+            (*governing.curve(quantity).sample(SAMPLES), "line"),
         ]
     if (found := analysed.deflection_total) is not None and study.stiffness:
         result = next(each for each in analysed.results if each.combination is found[0])
         for role in ("upper", "lower"):
-            at, value = getattr(result.envelope.deflection, role).sample(60)
+            at, value = getattr(result.envelope.deflection, role).sample(SAMPLES)
             curves.setdefault("deflection", []).append((at, value / study.stiffness, role))
     return curves
 
@@ -221,13 +223,3 @@ def _reactions(work: Work) -> None:
         rows,
         caption="Reactions, upward: unfactored with every span loaded, and the worst of the strength combinations.",
     )
-
-
-def held_moments(work: Work, case_row: int) -> list[float]:
-    """End moments of a case at ends held against rotation [kNm]."""
-    return [float(value) for value in work.study.by_case.end_moments[case_row]]
-
-
-def close(one: Line | Expression, other: Line | Expression, within: Expression) -> Expression:
-    """The comparison |one - other| <= within."""
-    return absolute(one - other) <= within

@@ -24,7 +24,6 @@ def state_place(work: Work) -> None:
     sheet, given = work.sheet, work.given
     sheet.section("Where this beam stands and what this sheet shows")
     with sheet.columns([10, 13]) as column:
-        column()
         figure = key_plan(given.plan, given.mark, work.study.system, width_mm=74)
         sheet.figure(figure, "Framing plan; what drains to this beam is hatched.")
         column()

@@ -9,7 +9,7 @@ from calcpack.framing.types import EdgeShare, PanelTransfer
 from calcpack.job.model import Case
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import LETTER, SELF_WEIGHT, Work
-from calcpack.sheet import Expression, Line, Quantity, total
+from calcpack.sheet import Expression, Line, measured, total
 from calcpack.statics import LineLoad
 
 CLOSE = 1e-9
@@ -31,8 +31,7 @@ def _panel(work: Work, transfer: PanelTransfer) -> None:
     sheet, panel, share = work.sheet, transfer.panel, work.share(transfer)
     index = work.sources[panel.mark].index
     with sheet.columns([17, 7]) as column:
-        column()
-        sheet.text([{"strong": f"Panel {panel.mark}"}, f": {transfer.transfer}, {transfer.reason}."])
+        sheet.text([{"strong": f"Panel {panel.mark}"}, f": {transfer.reason}."])
         if transfer.rectangle and transfer.transfer == "two-way":
             work.lines["ratio", panel.mark] = sheet.hence(
                 f"m_{index}",
@@ -72,7 +71,7 @@ def _pressure(work: Work, transfer: PanelTransfer) -> None:
     if terms:
         work.lines["pressure dead", panel.mark] = work.sheet.hence(
             f"g_{work.sources[panel.mark].index}",
-            total(*terms),
+            total(terms) if len(terms) > 1 else terms[0],
             "kPa",
             says=f"Dead load on panel {panel.mark}",
         )
@@ -97,7 +96,7 @@ def _depth(work: Work, transfer: PanelTransfer, share: EdgeShare) -> Line | None
         )
         expression = work.lines[key, panel.mark] / 2
     elif math.isclose(deepest, span, rel_tol=CLOSE):
-        words, expression = "Depth that drains to the beam: all of the slab", work.lines[key, panel.mark] * 1
+        words, expression = "Depth that drains to the beam: all of the slab", work.lines[key, panel.mark].as_expression()
     else:
         return None
     work.lines["depth", panel.mark] = sheet.hence(
@@ -173,11 +172,11 @@ def _general(work: Work, transfer: PanelTransfer, share: EdgeShare) -> None:
         if after > at and (first or last)
     ]
     parts: list[Expression] = [
-        _half_sum(first, last) * Quantity(after - at, "m") for at, after, first, last in pieces
-    ] + [Quantity(area, "m^2") * 1 for _, area in share.ends]
+        _half_sum(first, last) * measured(after - at, "m") for at, after, first, last in pieces
+    ] + [measured(area, "m^2") for _, area in share.ends]
     work.lines["area", panel.mark] = sheet.hence(
         f"A_{index}",
-        total(*parts),
+        total(parts) if len(parts) > 1 else parts[0],
         "m^2",
         says=f"Area of panel {panel.mark} that drains to the beam, piece by piece between the rows",
     )
@@ -192,8 +191,8 @@ def _general(work: Work, transfer: PanelTransfer, share: EdgeShare) -> None:
 
 def _half_sum(first: float, last: float) -> Expression:
     if first == last:
-        return Quantity(first, "m") * 1
-    return (Quantity(first, "m") + Quantity(last, "m")) / 2
+        return measured(first, "m")
+    return (measured(first, "m") + measured(last, "m")) / 2
 
 
 def _self_weight(work: Work) -> None:

@@ -4,12 +4,14 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 
-from calcpack.equivalent import Shape, derivation, responses
+from calcpack.equivalent import Shape, responses
+from calcpack.equivalent.derive import derivation
 from calcpack.job.model import Case, EquivalentKind
 from calcpack.notebook.sections.opening import CARRIED_FORWARD
 from calcpack.notebook.study import CASE_WORDS, FIELD, SpanLoads
 from calcpack.notebook.work import LETTER, Work
-from calcpack.sheet import Expression, Line, Number, Quantity, total
+from calcpack.sheet import Expression, Line, formula, measured, number, total
+from calcpack.sheet.latex import symbol_latex
 from calcpack.statics import LineLoad, PointLoad
 
 # Equivalent uniform load over the peak of a trapezoid that rises over m/2 of the span at each end.
@@ -92,12 +94,12 @@ def _symmetric(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKin
             terms.append(peak)
         elif shape.kind == "triangle":
             top, bottom = TRIANGLE[criterion]
-            terms.append(Number(top) / Number(bottom) * peak)
+            terms.append(number(top) / bottom * peak)
         else:
             terms.append(_factor(work, span, name, shape, criterion) * peak)
     work.lines["equivalent", case, span.number] = work.sheet.hence(
         _symbol(case, span.number if several else None),
-        total(*terms),
+        total(terms) if len(terms) > 1 else terms[0],
         "kN/m",
         says=f"Equivalent uniform {CASE_WORDS[case]}, {CARRIED_FORWARD[criterion]}",
         cite="statics, derived above",
@@ -114,7 +116,7 @@ def _factor(work: Work, span: SpanLoads, name: str, shape: Shape, criterion: Equ
     if ratio is None or abs(ratio.value - shape.side_ratio) > 1e-9:
         ratio = work.sheet.hence(
             f"m_{index}",
-            Number(2) * work.lines["depth", name] / work.lines["span", span.number - 1],
+            2 * work.lines["depth", name] / work.lines["span", span.number - 1],
             "1",
             says=f"Twice the length over which the load from {work.sources[name].words} rises, over the span",
         )
@@ -150,13 +152,13 @@ def _any_shape(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKin
     parts = [_resultant(shape) for shape in work.shapes(span, case).values()]
     weight = sheet.hence(
         f"W_{mark}",
-        total(*(Quantity(force, "kN") * 1 for force, _ in parts)),
+        total(measured(force, "kN") for force, _ in parts),
         "kN",
         says=f"Sum of the resultants, {CASE_WORDS[case]}",
     )
     right = sheet.hence(
         f"R_b,{mark}",
-        total(*(Quantity(force, "kN") * Quantity(moment / force, "m") for force, moment in parts)) / length,
+        total(measured(force, "kN") * measured(moment / force, "m") for force, moment in parts) / length,
         "kN",
         says="Reaction at the right support, moments about the left one",
     )
@@ -166,12 +168,12 @@ def _any_shape(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKin
     key = ("equivalent", case, span.number)
     if criterion == "shear":
         larger = left if left.value >= right.value else right
-        work.lines[key] = sheet.hence(symbol, Number(2) * larger / length, "kN/m", says=says)
+        work.lines[key] = sheet.hence(symbol, 2 * larger / length, "kN/m", says=says)
     elif criterion == "total":
         work.lines[key] = sheet.hence(symbol, weight / length, "kN/m", says=says)
     elif criterion == "moment":
         most = _moment(work, span, case, mark, left, found.moment_at)
-        work.lines[key] = sheet.hence(symbol, Number(8) * most / length**2, "kN/m", says=says)
+        work.lines[key] = sheet.hence(symbol, 8 * most / length**2, "kN/m", says=says)
     elif criterion == "deflection":
         sag = sheet.take(
             f"Delta_{mark}",
@@ -181,17 +183,17 @@ def _any_shape(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKin
             origin=f"analysis, span {span.number} alone",
         )
         work.lines[key] = sheet.hence(
-            symbol, Number(384) * sag / (Number(5) * length**4), "kN/m", says=says
+            symbol, 384 * sag / (5 * length**4), "kN/m", says=says
         )
     else:
         end = sheet.take(
             f"M_f,{mark}",
-            found.fixed_end_moment,
+            found.end_moment,
             "kN*m",
             says="Larger end moment with both ends fixed, from the exact moment line",
             origin=f"analysis, span {span.number} alone",
         )
-        work.lines[key] = sheet.hence(symbol, Number(12) * end / length**2, "kN/m", says=says)
+        work.lines[key] = sheet.hence(symbol, 12 * end / length**2, "kN/m", says=says)
 
 
 def _moment(work: Work, span: SpanLoads, case: Case, mark: str, left: Line, at: float) -> Line:
@@ -205,10 +207,10 @@ def _moment(work: Work, span: SpanLoads, case: Case, mark: str, left: Line, at: 
         origin=f"analysis, span {span.number} alone",
     )
     before = [part for part in (_resultant(_cut(shape, at)) for shape in work.shapes(span, case).values()) if part[0]]
-    arms = [Quantity(force, "kN") * Quantity(at - moment / force, "m") for force, moment in before]
+    arms = [measured(force, "kN") * measured(at - moment / force, "m") for force, moment in before]
     return sheet.hence(
         f"M_0,{mark}",
-        left * place - total(*arms) if arms else left * place,
+        left * place - total(arms) if arms else left * place,
         "kN*m",
         says="Largest moment there: the reaction's moment less that of the loads before it, each at its arm",
     )
@@ -248,7 +250,7 @@ def _comparison(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
         columns: list[tuple[object, str]] = [("equal", "left")]
         for case in chosen:
             columns += [
-                ({"math": _symbol(case, None)}, "right"),
+                (formula(symbol_latex(_symbol(case, None))), "right"),
                 *((label, "right") for _, label in COLUMNS),
             ]
         rows: list[list[object]] = []
