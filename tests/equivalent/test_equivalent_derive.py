@@ -200,18 +200,19 @@ class Worked:
 
     def at(self, value: Any, number: int | None = None, **more: Any) -> float:
         """A number for an expression, of one stretch or of the whole span."""
-        filled = value if number is None else value.subs(self.i, number)
-        filled = filled.subs(self.n, self.count).doit()
-        return float(filled.subs(self.values).subs(more.get("places", {})))
+        filled = value if number is None else value.xreplace({self.i: sympy.Integer(number)})
+        filled = filled.xreplace({self.n: sympy.Integer(self.count)}).doit()
+        numbers = {**self.values, **more.get("places", {})}
+        return float(filled.xreplace({key: sympy.Float(number) for key, number in numbers.items()}))
 
     def take(self, equation: Any) -> None:
         left, right = equation.lhs, equation.rhs
         if isinstance(left, sympy.Indexed) and left.indices[0] == self.i:
             for number in range(1, self.count + 1):
-                self.values[left.subs(self.i, number)] = self.at(right, number)
+                self.values[left.xreplace({self.i: sympy.Integer(number)})] = self.at(right, number)
         elif isinstance(left, sympy.Indexed):  # what the next stretch starts from
             for number in range(1, self.count):
-                self.values[left.subs(self.i, number)] = self.at(right, number)
+                self.values[left.xreplace({self.i: sympy.Integer(number)})] = self.at(right, number)
         elif left.is_Function:
             self.functions[left.func.__name__] = right
         elif left.is_Symbol and left not in self.values:
