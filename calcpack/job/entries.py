@@ -54,16 +54,18 @@ class Problems:
         self.found: list[Problem] = []
 
     def add(self, problem: Problem) -> None:
-        """Note a problem; so many that nobody reads them all are told at once."""
+        """Note a problem; where they become too many to read, tell them before the end."""
         self.found.append(problem)
         if len(self.found) >= MOST:
-            self.found.append(Problem(f"these are the first {MOST} problems, there may be more"))
             self.tell()
 
     def tell(self) -> None:
-        """Raise what was found, each problem once."""
-        if self.found:
-            raise CalcpackError(*dict.fromkeys(self.found))
+        """Raise what was found, each problem once, file by file and line by line."""
+        files = list(dict.fromkeys(problem.file for problem in self.found))
+        order = {file: place for place, file in enumerate(files)}
+        found = sorted(dict.fromkeys(self.found), key=lambda each: (order[each.file], each.line or 0))
+        if found:
+            raise CalcpackError(*found)
 
 
 @dataclass(frozen=True)
@@ -109,9 +111,11 @@ class Entry:
         parts: list[str] = []
         inner: Any = self.data
         for part in key.split("."):
-            if not isinstance(inner, list):
+            if isinstance(inner, list):
+                inner = inner[int(part)] if part.isdigit() and int(part) < len(inner) else None
+            else:
                 parts.append(part)
-            inner = inner.get(part) if isinstance(inner, dict) else None
+                inner = inner.get(part) if isinstance(inner, dict) else None
         return ".".join(parts)
 
     def placed(self, error: CalcpackError, key: str = "") -> Problem:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import difflib
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
+from itertools import takewhile
 
 MANY = 12  # choices a message lists in full
 
@@ -65,6 +66,27 @@ class CalcpackError(Exception):
         super().__init__("\n".join(str(problem) for problem in self.problems))
 
 
+def _likeness(word: str, other: str) -> tuple[float, int]:
+    """How alike two words are; of two equally alike the one that begins alike."""
+    ratio = difflib.SequenceMatcher(None, other, word).ratio()
+    return ratio, sum(1 for _ in takewhile(lambda pair: pair[0] == pair[1], zip(word, other, strict=False)))
+
+
+def closest(word: str, words: Iterable[str]) -> str | None:
+    """The right word a mistyped one stands for, capitals aside; None where none is near.
+
+    Examples
+    --------
+    >>> closest("KN", ["kN", "kPa"]), closest("xyz", ["kN", "kPa"])
+    ('kN', None)
+    """
+    folded: dict[str, str] = {}
+    for choice in words:
+        folded.setdefault(choice.casefold(), choice)
+    close = difflib.get_close_matches(word.casefold(), folded, n=5, cutoff=0.55)
+    return folded[max(close, key=lambda each: _likeness(word.casefold(), each))] if close else None
+
+
 def nearest(word: str, words: Iterable[str]) -> str:
     """The remedy for a mistyped word: the nearest right one, or what there is.
 
@@ -76,9 +98,8 @@ def nearest(word: str, words: Iterable[str]) -> str:
     "it can be 'shear' or 'moment'"
     """
     choices = list(dict.fromkeys(words))
-    folded = {choice.casefold(): choice for choice in reversed(choices)}
-    if close := difflib.get_close_matches(word.casefold(), folded, n=1, cutoff=0.55):
-        return f"did you mean '{folded[close[0]]}'?"
+    if close := closest(word, choices):
+        return f"did you mean '{close}'?"
     if not choices:
         return "there are none"
     if len(choices) > MANY:

@@ -57,7 +57,7 @@ class Quantity:
         if self.sign == "positive" and number < SMALLEST ** max(1, KINDS[self.kind].length):
             raise refusal(f"'{value}' is not more than zero", f"give {name} greater than zero")
         if self.sign == "not negative" and number < 0:
-            raise refusal(f"'{value}' is negative", "downward loads are positive; give zero or more")
+            raise refusal(f"'{value}' is negative", "give zero or more")
         return number
 
 

@@ -196,11 +196,13 @@ def read_section(key: str, entry: Entry, problems: Problems) -> Section | None:
     count = len(problems.found)
     for name in NEEDED[raw.shape]:
         if name not in given:
-            problems.add(entry.problem(f"a {raw.shape} needs this key", "", name))
+            problems.add(entry.problem(f"a {raw.shape} section needs this key", "", name))
     for name in given:
         if name not in NEEDED[raw.shape]:
             problems.add(
-                entry.problem(f"a {raw.shape} has no such key", nearest(name, NEEDED[raw.shape]), name)
+                entry.problem(
+                    f"a {raw.shape} section has no such key", nearest(name, NEEDED[raw.shape]), name
+                )
             )
     if len(problems.found) > count:
         return None

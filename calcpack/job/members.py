@@ -39,15 +39,17 @@ class Surroundings:
 
     def points(self, entry: Entry, key: str, given: Sequence[str | Spot]) -> list[Named] | None:
         """Places of the points a key lists; None with the problems noted."""
-        if self.grid is None:
-            return None
-        found = []
-        for number, each in enumerate(given):
-            try:
-                found.append(self.grid.place(each))
-            except CalcpackError as error:
-                self.problems.add(entry.placed(error, f"{key}.{number}"))
+        places = [self.point(entry, f"{key}.{number}", each) for number, each in enumerate(given)]
+        found = [each for each in places if each is not None]
         return found if len(found) == len(given) else None
+
+    def point(self, entry: Entry, key: str, given: str | Spot) -> Named | None:
+        """The place of the point a key names; None with the problem noted."""
+        try:
+            return self.grid.place(given) if self.grid else None
+        except CalcpackError as error:
+            self.problems.add(entry.placed(error, key))
+            return None
 
     def material(self, name: str | None, entry: Entry) -> Material | None:
         """The material of that name."""
@@ -204,10 +206,10 @@ def put_load(raw: RawLoad, entry: Entry, length: float, around: Surroundings) ->
 def read_column(entry: Entry, around: Surroundings) -> Column | None:
     """A column."""
     raw = validated(RawColumn, entry, around.problems)
-    points = around.points(entry, "at", [raw.at]) if raw else None
-    if raw is None or points is None:
+    point = around.point(entry, "at", raw.at) if raw else None
+    if raw is None or point is None:
         return None
-    return Column(mark=raw.mark, at=points[0].at, point_name=str(points[0]), place=entry.place)
+    return Column(mark=raw.mark, at=point.at, point_name=str(point), place=entry.place)
 
 
 def read_wall(entry: Entry, around: Surroundings) -> Wall | None:

@@ -88,16 +88,18 @@ class Grid:
         name = given.strip()
         pairs = self.points.get(name)
         if not pairs:
-            remedy = nearest(name, self._likely(name)) if self.points else "give [grid] with x and y first"
-            raise _fault(f"there is no grid point {shown(name)}", remedy)
+            raise _fault(f"there is no grid point {shown(name)}", self._remedy(name))
         x, y = pairs[0]
         return Named((self.x[x], self.y[y]), (x, y), True)
 
-    def _likely(self, name: str) -> list[str]:
-        """Grid points a mistyped name could mean: its parts swapped, or those that share a line."""
-        turned = [x + y for x in self.x for y in self.y if (y + x).casefold() == name.casefold()]
+    def _remedy(self, name: str) -> str:
+        """What a mistyped name could mean: its parts swapped, or points that share a line with it."""
+        if not self.points:
+            return "give [grid] with x and y first"
+        if turned := [x + y for x in self.x for y in self.y if (y + x).casefold() == name.casefold()]:
+            return f"did you mean '{turned[0]}'?"
         sharing = [x + y for x in self.x for y in self.y if name.startswith(x) or name.endswith(y)]
-        return turned or sharing or list(self.points)[:MOST_LINES]
+        return nearest(name, sharing or list(self.points)[:MOST_LINES])
 
 
 def distance(a: Point, b: Point) -> float:

@@ -12,6 +12,7 @@ from pydantic import BaseModel
 
 from calcpack.job.entries import EXAMPLES, Entry, Problems, validated
 from calcpack.job.errors import CalcpackError, Problem, nearest
+from calcpack.job.fields import shown
 from calcpack.job.library import read_material, read_section
 from calcpack.job.members import (
     Surroundings,
@@ -134,7 +135,7 @@ class _Reader:
             self._problem("the file does not say its format", "write format = 1 as its first line", "format")
         elif type(self.data["format"]) is not int or self.data["format"] != 1:
             self._problem(
-                f"format {self.data['format']} is not known", "this program reads format = 1", "format"
+                f"format {shown(self.data['format'])} is not known", "this program reads format = 1", "format"
             )
             self.problems.tell()
         for key in self.data:
@@ -144,7 +145,11 @@ class _Reader:
     def _entry(self, path: KeyPath, data: Any, mark: str | None, prefix: str = "") -> Entry | None:
         """A table of the file with its lines; None, with the problem noted, if it is no table."""
         if not isinstance(data, dict):
-            self._problem("this is no table of keys and values", f"write it as [{path[0]}]", *path)
+            self._problem(
+                "this is no table of keys and values",
+                f"write it as [{'.'.join(part for part in path if isinstance(part, str))}]",
+                *path,
+            )
             return None
         entry = Entry(
             mark, data, self.document.file, self.document.line(path), self.places.get(path, {}), prefix
@@ -179,7 +184,7 @@ class _Reader:
         for key in ("number", "title") if header else ():
             if not getattr(header, key).strip():
                 self._problem("this text is empty", f"write for example {EXAMPLES[key]}", "job", key)
-        if not 1.0 <= basis.one_way_ratio <= 100.0:
+        if basis.one_way_ratio < 1.0:
             self._problem("the ratio is long side to short side", "give 1 or more", "basis", "one_way_ratio")
         if basis.occupancy and basis.occupancy not in OCCUPANCIES:
             message = f"there is no category '{basis.occupancy}'"
@@ -245,8 +250,12 @@ class _Reader:
             file = load(self.folder, name)
             entries = read_table(file, kind, self.problems)
         except CalcpackError as error:
-            line = self.document.line((key,))
-            self.problems.add(error.problems[0].at(file=self.document.file, line=line, key=key))
+            found = error.problems[0]
+            if found.line is None:  # not in the table but with it: a fault of the line that names it
+                message = found.message if name in found.message else f"'{name}': {found.message}"
+                self._problem(message, found.remedy, key)
+            else:
+                self.problems.add(found)
             return
         if name not in [each.name for each in self.files]:
             self.files.append(file)
@@ -270,13 +279,16 @@ class _Reader:
                 if entry := self._entry(("beam", place, "load", number), data, beam.mark, "load."):
                     loads[place].append(entry)
         marks = {str(beam.data.get("mark")): place for place, beam in enumerate(beams)}
+        unread = {self.data.get("beams"), "beams"} & {
+            part for each in self.problems.found for part in (each.file, each.key)
+        }
         for row in self._table("beam_loads") if "beam_loads" in self.data else ():
             name = str(row.data.get("beam", ""))
             if name in marks:
                 loads[marks[name]].append(row)
-            elif name:
+            elif name and not unread:  # else the beam may be in a row that could not be read
                 self.problems.add(row.problem(f"there is no beam '{name}'", nearest(name, marks), "beam"))
-            else:
+            elif not name:
                 self.problems.add(row.problem("this key is missing", "name the beam the load is on", "beam"))
         return loads
 

@@ -130,6 +130,9 @@ def _syntax_error(reason: str, name: str, text: str) -> CalcpackError:
     what, line, column = match.groups()
     if what == "Cannot overwrite a value":
         what = "a key is given a second time"
+    if keys := re.fullmatch(r"Cannot declare \((.*)\) twice", what):
+        table = ".".join(re.findall("'([^']*)'", keys[1]))
+        what = f"the table [{table}] is given a second time"
     where = f"at column {column}" if column else "at the end of the file"
     number = int(line) if line else text.rstrip("\n").count("\n") + 1
     return CalcpackError(f"this is not TOML: {what[:1].lower()}{what[1:]}, {where}", file=name, line=number)

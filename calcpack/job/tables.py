@@ -208,7 +208,9 @@ def _value(cell: Any, column: Column) -> Any:
     number = isinstance(cell, int | float) and not isinstance(cell, bool)
     if column.holds in ("points", "point", "words"):
         items = _items(str(cell), column.unit)
-        return items[0] if column.holds == "point" and len(items) == 1 else items
+        if column.holds == "point":
+            return items[0] if len(items) == 1 else str(cell)
+        return items
     if column.holds == "text" and number:  # a mark 7 in a workbook is the text "7"
         return f"{cell:g}" if float(cell).is_integer() else str(cell)
     if column.unit and (number or (isinstance(cell, str) and _BARE.fullmatch(cell))):

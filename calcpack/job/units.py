@@ -13,7 +13,7 @@ from fractions import Fraction
 from functools import lru_cache
 from typing import TYPE_CHECKING, Any, NamedTuple
 
-from calcpack.job.errors import CalcpackError, nearest
+from calcpack.job.errors import CalcpackError, closest
 
 if TYPE_CHECKING:
     from pint import UnitRegistry
@@ -122,7 +122,8 @@ def _registry() -> UnitRegistry[Any]:
 
 def _unknown(unit: str) -> CalcpackError:
     shown = unit.strip()[: _LONGEST // 2]
-    remedy = nearest(shown, _COMMON) if shown.isalpha() else "write it like 'kN/m^2', 'mm' or 'psf'"
+    close = closest(shown, _COMMON) if shown.isalpha() else None
+    remedy = f"did you mean '{close}'?" if close else "write it like 'kN/m^2', 'mm' or 'psf'"
     return CalcpackError(f"there is no unit '{shown}'", remedy=remedy)
 
 
