@@ -234,10 +234,11 @@ def show(value: float, unit: str, system: System, exact: bool = False, *, shown_
     83.56 × 10⁶ mm⁴ 4000 psi
     """
     other = shown_in or shown_unit(unit, system)
-    return _with_unit(_number(float(value), unit, other, exact), other)
+    return with_unit(_number(float(value), unit, other, exact), other)
 
 
-def _with_unit(number: str, unit: str) -> str:
+def with_unit(number: str, unit: str) -> str:
+    """A printed number with its unit, a no-break space between them."""
     text = label(unit)
     return number + (text if text in ("", "°") else NO_BREAK + text)
 

@@ -300,7 +300,7 @@ class _Writer:
         held = inner.least(PRODUCT)
         unit = "°" if node.unit == "deg" else rf"\,{unit_latex(node.unit)}"
         level = HELD if held.level == ATOM else PRODUCT
-        return Piece(held.latex + unit, level, held.width + 4, digit=held.digit, unit=True)
+        return Piece(held.latex + unit, level, held.width + 4, digit=held.digit, composed=True)
 
     def cases(self, node: Operation) -> Piece:
         condition, then, otherwise = node.args

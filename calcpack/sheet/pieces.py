@@ -23,7 +23,7 @@ class Piece:
     level: int
     width: int  # in characters, about
     digit: bool = False  # begins with a digit
-    unit: bool = False  # a number with its unit
+    composed: bool = False  # a number with its unit or a power of ten
     split: bool = False  # a fraction
     solidus: bool = False  # a division on one line
 
@@ -61,7 +61,9 @@ def value_piece(shown: str) -> Piece:
     elif unit != "1":
         latex, level = rf"{latex}\,{unit_latex(unit)}", HELD
     negative = latex.startswith("-")
-    return Piece(latex, NEGATIVE if negative else level, len(shown), digit=not negative, unit=unit != "1")
+    return Piece(
+        latex, NEGATIVE if negative else level, len(shown), digit=not negative, composed=level == HELD
+    )
 
 
 def separator(left: Piece, right: Piece, dotted: bool) -> str:
@@ -106,7 +108,7 @@ def fraction(over: Piece, under: Piece) -> Piece:
 
 def on_one_line(over: Piece, under: Piece) -> Piece:
     """One before the other, with a solidus."""
-    left = over.enclosed() if over.unit else over.least(PRODUCT)
-    right = under.enclosed() if under.unit else under.least(HELD)
+    left = over.enclosed() if over.composed else over.least(PRODUCT)
+    right = under.enclosed() if under.composed else under.least(HELD)
     width = left.width + right.width + 1
     return Piece(f"{left.latex}/{right.latex}", PRODUCT, width, digit=left.digit, solidus=True)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from calcpack.sheet.display import System, parse_shown, show
+from calcpack.sheet.display import System, parse_shown, show, shown_unit, with_unit
 from calcpack.sheet.expression import Expression, Number, Operation, Quantity, Reference
 from calcpack.sheet.symbols import read_symbol
 from calcpack.sheet.unit_text import label, unit_spoken
@@ -61,10 +61,12 @@ def shown_constant(node: Quantity, system: System) -> str:
     --------
     >>> for text in ("25", "12.345678901"):
     ...     print(ascii(shown_constant(Quantity(text, "kN"), "SI")))
-    '25.0\xa0kN'
+    '25\xa0kN'
     '12.3\xa0kN'
     """
     written = len(node.text.replace(".", "").strip("0")) <= 6
+    if written and shown_unit(node.unit, system) == node.unit and node.unit != "1":
+        return with_unit(node.text, node.unit)
     return show(float(node.text), node.unit, system, exact=written)
 
 
