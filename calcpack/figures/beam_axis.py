@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Sequence
 from dataclasses import dataclass
 
@@ -16,11 +17,12 @@ from calcpack.figures.drawing import (
     Drawing,
     Stroke,
 )
-from calcpack.figures.labels import Box, Placer
+from calcpack.figures.labels import spread
 from calcpack.figures.lettering import shorten, text_width
 from calcpack.figures.parts import held_end, line_height, span_dimensions, support
 from calcpack.sheet.display import System
 
+Lines = list[tuple[str, float]]  # lines of text with their size [pt]
 Bearing = tuple[float, str, str]  # [m] from the beam's start; "column", "wall" or "beam"; its mark
 GUIDE = Stroke(HAIR, PALE, (1.2, 1.6))
 BEAM = Stroke(1.5)
@@ -84,16 +86,15 @@ def beam_row(axis: BeamAxis, system: System, notes: Sequence[Sequence[str]] = ()
     for number, (place, held) in enumerate(ends.items()):
         if held:
             held_end(drawing, axis.x(place), 0.0, 1 if number else -1)
-    placer = Placer(axis.bounds())
+    blocks: list[Lines] = []
     low = 0.0
     for number, (at, kind, mark) in enumerate(axis.bearings):
         held = any(fixed and abs(at - place) < 1e-9 for place, fixed in ends.items())
-        foot = -2.8 if held else support(drawing, axis.x(at), -0.26, kind).bounds()[1]
+        low = min(low, -2.8 if held else support(drawing, axis.x(at), -0.26, kind).bounds()[1])
         lines = [(shorten(mark, 18.0, BODY), BODY)] if mark else []
-        lines += [(text, SMALL) for text in (notes[number] if number < len(notes) else ())]
-        if lines:
-            low = min(low, _under(drawing, placer, axis, axis.x(at), foot - 0.5, lines))
-        low = min(low, foot)
+        blocks.append(lines + [(text, SMALL) for text in (notes[number] if number < len(notes) else ())])
+    if any(blocks):
+        low = _under(drawing, axis, low, blocks)
     places = sorted({0.0, axis.length, *(bearing[0] for bearing in axis.bearings)})
     line = low - 4.0
     span_dimensions(
@@ -102,31 +103,33 @@ def beam_row(axis: BeamAxis, system: System, notes: Sequence[Sequence[str]] = ()
     return drawing
 
 
-def _under(
-    drawing: Drawing,
-    placer: Placer,
-    axis: BeamAxis,
-    x: float,
-    top: float,
-    lines: list[tuple[str, float]],
-) -> float:
-    """A block of lines under a support; lower where a neighbour's block is in the way. Returns its foot."""
-    width = max(text_width(text, size) for text, size in lines)
-    height = sum(line_height(size) for _, size in lines)
-    middle = min(max(x, 0.5 + width / 2), axis.width - 0.5 - width / 2)
-    rows = [Box(middle, top - height / 2 - row * (height + 0.3), width + 1.0, height) for row in range(8)]
-    box = placer.choose(rows)
-    y = box.y + height / 2
-    if y < top - 0.1:
-        drawing.line([(x, top + 0.3), (x, y)], Stroke(HAIR, GREY), HATCHING)
-    for text, size in lines:
-        y -= line_height(size) / 2
-        drawing.text(middle, y, text, size, level="box")
-        y -= line_height(size) / 2
-    return y
+def _under(drawing: Drawing, axis: BeamAxis, foot: float, blocks: list[Lines]) -> float:
+    """Blocks of lines under the supports, led aside where these stand close; returns their foot."""
+    widths = [max((text_width(text, size) for text, size in lines), default=0.0) for lines in blocks]
+    heights = [sum(line_height(size) for _, size in lines) for lines in blocks]
+    rows = 1
+    while rows < 4 and sum(widths) / rows + 1.6 * len(widths) > axis.width - 1.0:
+        rows += 1
+    xs = [axis.x(at) for at, _, _ in axis.bearings]
+    gaps = [(one + two) / 2 / rows + 1.6 for one, two in itertools.pairwise(widths)]
+    moved = spread(xs, gaps, 0.5 + widths[0] / 2, axis.width - 0.5 - widths[-1] / 2)
+    led = any(abs(a - b) > 1.5 for a, b in zip(xs, moved, strict=True)) or rows > 1
+    first = foot - (2.4 if led else 0.5)
+    lowest = foot
+    for number, (x, aside, lines) in enumerate(zip(xs, moved, blocks, strict=True)):
+        top = y = first - (number % rows) * (max(heights) + 0.5)
+        if led and lines:
+            drawing.line([(x, foot - 0.2), (aside, first + 0.3), (aside, top)], Stroke(HAIR, GREY), HATCHING)
+        for text, size in lines:
+            drawing.text(aside, y - line_height(size) / 2, text, size, level="box")
+            y -= line_height(size)
+        lowest = min(lowest, y)
+    return lowest
 
 
-def stacked(axis: BeamAxis, strips: Sequence[tuple[str, str, Drawing]], foot: Drawing) -> Drawing:
+def stacked(
+    axis: BeamAxis, strips: Sequence[tuple[str, str, Drawing]], foot: Drawing, foot_title: str = ""
+) -> Drawing:
     """Strips under one another, each with a title at left and a remark at right, the beam under them.
 
     Each strip and the foot have their own y = 0 at the beam's line.
@@ -143,6 +146,9 @@ def stacked(axis: BeamAxis, strips: Sequence[tuple[str, str, Drawing]], foot: Dr
         sheet.paste(strip, 0.0, y)
         y += min(bottom, 0.0) - STRIP_GAP
     y -= 0.6
+    if foot_title:
+        box = sheet.text(0.5, y, foot_title, SMALL, anchor="left", bold=True, level="under")
+        y = box.bounds()[1] - 0.6 - foot.extent()[3]
     if strips:
         for at in {0.0, axis.length, *(bearing[0] for bearing in axis.bearings)}:
             sheet.line([(axis.x(at), -line_height(SMALL)), (axis.x(at), y)], GUIDE, HATCHING)

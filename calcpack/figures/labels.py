@@ -142,25 +142,44 @@ class Placer:
                 cost += self.OVERLAP
         return cost + self.CROSSING * self.crossings(box)
 
-    def choose(self, places: Iterable[Box], penalty: float = 0.0) -> Box:
-        """The first free place, or the least bad one; each further place is worse by ``penalty``.
+    def pick(self, places: Iterable[Box], penalty: float = 0.0, lead: Pair | None = None) -> tuple[int, Box]:
+        """The first free place, or the least bad one, with its number; each further one is worse.
 
-        The place chosen is blocked from then on.
+        ``lead`` is the point the label belongs to: a line from there should cross no other label.
+
+        Raises
+        ------
+        ValueError
+            No places are given.
         """
-        best, least = None, math.inf
+        found: tuple[int, Box] | None = None
+        least = math.inf
         for number, box in enumerate(places):
             worse = penalty * number
             if worse >= least:
                 break
             cost = self.cost(box) + worse
+            if lead is not None and cost < least:
+                cost += self.CROSSING * self.covered(lead, lead_foot(box, lead))
             if cost < least:
-                best, least = box, cost
+                found, least = (number, box), cost
             if cost == worse:
                 break
-        if best is None:
+        if found is None:
             raise ValueError("no places given")
-        self.block(best)
-        return best
+        return found
+
+    def choose(self, places: Iterable[Box], penalty: float = 0.0) -> Box:
+        """As :meth:`pick`; the place is blocked from then on."""
+        _, box = self.pick(places, penalty)
+        self.block(box)
+        return box
+
+
+def lead_foot(box: Box, point: Pair) -> Pair:
+    """Where on a level box's lower or upper side a line from a point ends."""
+    left, bottom, right, top = box.bounds()
+    return min(max(point[0], left + 0.4), right - 0.4), bottom if bottom > point[1] else top
 
 
 def touches(box: Box, x1: float, y1: float, x2: float, y2: float) -> bool:

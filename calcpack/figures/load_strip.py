@@ -240,8 +240,7 @@ class LoadStrip:
         xs = [middle + shift for shift in shifts if reach[0] <= middle + shift <= reach[1]]
         xs = list(dict.fromkeys(min(max(x, low), high) for x in xs))
         places = [self._over(x, width, height, lift + row * height) for row in range(5) for x in xs]
-        costs = [self.placer.cost(place) + 0.01 * number for number, place in enumerate(places)]
-        return places[costs.index(min(costs))]
+        return self.placer.pick(places, penalty=0.01)[1]
 
     def _write(self, box: Box, text: str) -> None:
         self.drawing.text(box.x, box.y, text, SMALL, level="box")
