@@ -132,11 +132,11 @@ def _self_weight(plan: Plan, beam: Beam) -> float:
 
 def _cases(plan: Plan) -> tuple[Case, ...]:
     """The cases that occur anywhere, in their usual order."""
-    there: set[str] = {case for panel in plan.job.panels for case in CASES if panel.pressure(case)}  # type: ignore[arg-type]
+    there: set[Case] = {case for panel in plan.job.panels for case in CASES if panel.pressure(case)}
     there.update(load.case for beam in plan.job.beams for load in beam.loads)
     if any(_self_weight(plan, beam) for beam in plan.job.beams):
         there.add("dead")
-    return tuple(case for case in CASES if case in there)  # type: ignore[misc]
+    return tuple(case for case in CASES if case in there)
 
 
 def _own_loads(

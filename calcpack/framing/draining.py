@@ -81,14 +81,8 @@ class Nearest:
             region = self._part(region, after=start)
         if not last:
             region = self._part(region, before=end)
-        ends = []
-        for at, beyond, there in (
-            (start, self._part(region, before=start), first),
-            (end, self._part(region, after=end), last),
-        ):
-            size = area(beyond)
-            if there and size > self.noise * self.edge.length:
-                ends.append((at, size))
+        beyond = ((start, self._part(region, before=start)), (end, self._part(region, after=end)))
+        ends = [(at, area(part)) for at, part in beyond if area(part) > self.noise * self.edge.length]
         middle = self._part(self._part(region, after=start), before=end)
         corners = [self.edge.place(corner) for corner in middle]
         return Drained(region, _profile(corners, (start, end), self.noise), tuple(ends))

@@ -7,7 +7,7 @@ from itertools import combinations, pairwise
 from typing import Literal
 
 from calcpack.framing.plan import NEARLY, Plan
-from calcpack.framing.plane import Interval, Line, between, clipped, cross, dot, gaps, inside
+from calcpack.framing.plane import Interval, Line, between, clipped, cross, gaps, inside
 from calcpack.job.errors import Problem
 from calcpack.job.model import Beam, Panel, Wall
 
@@ -88,7 +88,7 @@ def _beyond(plan: Plan, number: int, line: Line) -> tuple[tuple[str, ...], list[
     marks, covered = [], []
     for other in plan.panel_boxes.near((line.start, line.end)):
         for edge in plan.panels[other] if other != number else ():
-            if dot(edge.direction, line.direction) < 0 and (stretch := line.beside(edge)) is not None:
+            if (stretch := line.beside(edge)) is not None:
                 start, end, gap = stretch
                 if gap <= plan.tolerance.close < end - start:
                     marks.append(plan.job.panels[other].mark)
@@ -137,7 +137,7 @@ def _joined(plan: Plan, line: Line, pieces: list[Piece]) -> tuple[Piece, ...]:
 
     Places on a beam that are one of its points, or one of its ends, are moved onto it.
     """
-    cuts = [0.0, *((a.end + b.start) / 2 for a, b in pairwise(pieces)), line.length]
+    cuts = [0.0, *(piece.start for piece in pieces[1:]), line.length]
     joined = []
     for piece, (start, end) in zip(pieces, pairwise(cuts), strict=True):
         if piece.kind == "beam":

@@ -220,7 +220,7 @@ def _basins(
     held = [number for number, edge in enumerate(row) if edge.supported]
     noise = plan.tolerance.noise
     if way.direction is None or (panel.transfer == "auto" and len(held) == 1):
-        uneven = way.transfer == "two-way" and plan.job.basis.dividing_lines == "60 at continuous edges"
+        uneven = plan.job.basis.dividing_lines == "60 at continuous edges"
         reach = {number: math.sqrt(3) if uneven and row[number].continuous else 1.0 for number in held}
         return nearest_edges(panel.corners, reach, lines, noise)
     basins, lost, hung = strips_along(way.direction, [edge.supported for edge in row], lines, noise)

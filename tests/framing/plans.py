@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterable
+from itertools import pairwise
 
 import numpy as np
 
@@ -77,17 +78,9 @@ class Floor:
         places, names = self.points(points)
         place = self.place()
         own = tuple(BeamLoad(place=self.place(), **load) for load in loads)
+        choice = {"equivalent": "moment", "design_loads": "actual"}
         self.beams.append(
-            Beam(
-                mark=mark,
-                points=places,
-                point_names=names,
-                equivalent="moment",
-                design_loads="actual",
-                loads=own,
-                place=place,
-                **keys,
-            )  # fmt: skip
+            Beam(mark=mark, points=places, point_names=names, loads=own, place=place, **choice, **keys)
         )
         return self
 
@@ -155,7 +148,7 @@ def share(transfer: PanelTransfer, carrier: str) -> EdgeShare:
 
 def depth_area(share: EdgeShare) -> float:
     """What comes down along the edge [m2]."""
-    return sum((b - a) * (p + q) / 2 for (a, p), (b, q) in zip(share.depth, share.depth[1:], strict=False))
+    return sum((b - a) * (p + q) / 2 for (a, p), (b, q) in pairwise(share.depth))
 
 
 def total(loads: Iterable[LineLoad | PointLoad]) -> float:

@@ -66,6 +66,13 @@ def test_a_drop_in_span_hangs_between_two_tips():
     assert frame.order == ("M", "L", "R")
 
 
+def test_a_beam_a_hair_beyond_the_tip_that_carries_it_stands_on_the_tip():
+    floor = Floor().beam("G", (0, 0), (6, 0), (8, 0), free_end=True).beam("E", (8 + 4e-7, 0), (8, 5))
+    floor.columns_at((0, 0), (6, 0), (8, 5))
+    (carried,) = floor.frame().beams["G"].carried
+    assert carried.at == 8.0
+
+
 def test_two_beams_that_both_name_a_column_share_it():
     floor = Floor().beam("B1", (0, 0), (4, 0)).beam("B2", (4, 0), (8, 0)).columns_at((0, 0), (4, 0), (8, 0))
     frame = floor.frame()
@@ -96,7 +103,8 @@ def test_columns_and_walls_passed_over_are_noted_not_used():
     assert len(frame.beams["B"].bearings) == 2
     assert frame.notes == (
         "beam B does not rest on column C3, over which it passes at B1: the point is no support in its line",
-        "beam B does not rest on wall W, over which it passes at (3 m, 0 m): the point is no support in its line",
+        "beam B does not rest on wall W, over which it passes at (3 m, 0 m): the point is no "
+        "support in its line",
         "beam B lies over wall V from (8, 0) to (9, 0): it rests on it only at the points in its line",
         "column C3 carries nothing",
         "wall W carries nothing",
@@ -129,7 +137,8 @@ def test_an_end_fixed_to_a_beam_is_noted(end, does):
     floor = Floor().beam("G", (-4, 0), (0, 0), free_end=True, fixed_start=True).columns_at((-4, 0))
     floor.beam("K", (0, 0), end, fixed_start=True).column("E", end)
     assert floor.frame().notes == (
-        f"beam K is fixed at its start to beam G: its end moment {does} that beam, which its sheet does not follow",
+        f"beam K is fixed at its start to beam G: its end moment {does} that beam, which its sheet "
+        "does not follow",
     )
 
 

@@ -188,6 +188,19 @@ def test_uplift_is_handed_down_and_noted():
     )
 
 
+@pytest.mark.parametrize("size", [0.7, 1.1, 2.3, 3.7, 5.9])
+def test_a_reaction_of_nothing_is_no_uplift(size):
+    """The overhang just balances the span: P L/2 = w a²/2."""
+    loads = [
+        {"case": "dead", "point": size, "at": 3.0},
+        {"case": "dead", "line": 1.5 * size, "start": 6.0},
+    ]
+    floor = Floor().beam("B", (0, 0), (6, 0), (8, 0), free_end=True, loads=loads).columns_at((0, 0), (6, 0))
+    frame = floor.frame()
+    assert frame.supports["C1"]["dead"] == pytest.approx(0.0, abs=1e-12)
+    assert frame.notes == ()
+
+
 def test_a_load_straight_over_a_support_goes_into_it():
     loads = [{"case": "live", "point": 9.0, "at": 6.0}]
     frame = Floor().beam("B", (0, 0), (6, 0), loads=loads).columns_at((0, 0), (6, 0)).frame()

@@ -1,8 +1,10 @@
 """What runs along the edges of panels."""
 
+import math
+
 import numpy as np
 import pytest
-from plans import Floor, depth_area, share, total
+from plans import Floor, depth_area, share, total, turned
 
 from calcpack.framing.edges import panel_edges
 from calcpack.framing.plan import Plan
@@ -100,6 +102,30 @@ def test_neighbours_and_continuity_edge_by_edge():
     assert [edge.neighbours for edge in edges[0]] == [(), ("P2",), ("P3",), ()]
     assert [edge.continuous for edge in edges[0]] == [False, True, False, False]
     assert not any(edge.supported for row in edges for edge in row)
+
+
+def test_panels_that_touch_at_a_corner_are_no_neighbours():
+    floor = Floor(**GRID).panel("P1", "A1", "B2").panel("P2", (6 - 1e-7, 4 - 1e-7), "C3")
+    edges, _ = panel_edges(Plan(floor.job()))
+    assert all(edge.neighbours == () for row in edges for edge in row)
+
+
+def test_a_break_that_falls_on_a_support_falls_on_it_exactly():
+    corners = [(0.0, 0.0), (9.0, 0.0), (9.0, 4.1), (0.0, 4.1)]
+    floor = Floor().panel("P", *corners, transfer="two-way").walls_round(*corners, free=[0])
+    floor.beam("B", (0, 0), (2.05, 0), (6.95, 0), (9, 0)).columns_at((2.05, 0), (6.95, 0))
+    for degrees in range(0, 90, 7):
+        beam = floor.frame(move=turned(math.radians(degrees), (31.7, -12.9))).beams["B"]
+        breaks = {place for load in beam.loads["live"] for place in (load.start, load.end)}
+        assert breaks == {0.0, *(bearing.at for bearing in beam.bearings), beam.length}
+        assert [len(each.loads) for each in beam.placements] == [1, 1, 1]
+
+
+def test_a_beam_of_the_next_bay_that_overshoots_by_millimetres_is_no_fault():
+    corners = [(0.0, 0.0), (6.0, 0.0), (6.0, 4.0), (0.0, 4.0)]
+    floor = Floor().panel("P", *corners).walls_round(*corners)
+    floor.beam("B", (-5, -0.001), (0.003, -0.001)).columns_at((-5, -0.001), (0.003, -0.001))
+    assert [each.carrier for each in floor.frame().panels["P"].shares] == ["W0", "W1", "W2", "W3"]
 
 
 def test_panels_that_meet_over_nothing_are_noted():

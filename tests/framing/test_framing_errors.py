@@ -24,7 +24,8 @@ def walled(free=(), **keys) -> Floor:
 
 def test_no_support():
     assert problems(walled(free=range(4))) == [
-        "floor.toml:1: panel P1: corners: the panel has no support: no beam and no wall runs along any of its "
+        "floor.toml:1: panel P1: corners: the panel has no support: no beam and no wall runs along "
+        "any of its "
         "edges; give a beam or a wall the same two points as an edge of the panel"
     ]
 
@@ -34,7 +35,8 @@ def test_edge_supported_in_part():
         walled(free=[0]).beam("B1", (1, 0), (2.5, 0)).wall("V", (4, 0), (5, 0)).columns_at((1, 0), (2.5, 0))
     )
     assert problems(floor) == [
-        "floor.toml:1: panel P1: corners: the edge from A1 to B1 is supported only in part, by beam B1 and wall V: "
+        "floor.toml:1: panel P1: corners: the edge from A1 to B1 is supported only in part, by "
+        "beam B1 and wall V: "
         "nothing runs along it from A1 to (1, 0) and from (2.5, 0) to (4, 0) and from (5, 0) to B1; "
         "support it along its whole length, or divide the panel where the support ends"
     ]
@@ -71,11 +73,18 @@ def test_two_supports_under_a_shared_edge_are_said_for_both_panels():
 def test_beam_beside_an_edge():
     floor = walled(free=[0]).beam("B1", (0, 0.0003), (6, 0.0003)).columns_at((0, 0.0003), (6, 0.0003))
     assert problems(floor) == [
-        "floor.toml:1: panel P1: corners: beam B1 runs 0.3 mm beside the edge from A1 to B1, too near to be clear of "
+        "floor.toml:1: panel P1: corners: beam B1 runs 0.3 mm beside the edge from A1 to B1, too "
+        "near to be clear of "
         "it and too far to carry it; give both the same points, or one of them more decimals"
     ]
     floor.units = "US"
     assert "beam B1 runs 0.011811 in beside" in problems(floor)[0]
+
+
+def test_beam_beside_part_of_an_edge_is_not_also_a_partly_supported_edge():
+    floor = walled(free=[0]).wall("V", (0, 0), (3, 0)).beam("B1", (3, 0.002), (6, 0.002))
+    (only,) = problems(floor.columns_at((3, 0.002), (6, 0.002)))
+    assert "beam B1 runs 2 mm beside the edge from A1 to B1" in only
 
 
 def test_beam_and_wall_under_the_inside():
@@ -83,7 +92,8 @@ def test_beam_and_wall_under_the_inside():
     assert problems(floor) == [
         "floor.toml:1: panel P1: corners: beam B1 runs under the inside of the panel, from (3, 0) to (3, 4); "
         "divide the panel along beam B1: a panel ends where it is supported",
-        "floor.toml:1: panel P1: corners: wall V runs under the inside of the panel, from (4, 1) to (6 m, 1 m); "
+        "floor.toml:1: panel P1: corners: wall V runs under the inside of the panel, from (4, 1) "
+        "to (6 m, 1 m); "
         "divide the panel along wall V: a panel ends where it is supported",
     ]
 
@@ -107,7 +117,8 @@ def test_a_panel_given_twice_overlaps():
 
 def test_cantilever_slab_with_nothing_beyond():
     assert problems(walled(free=[0, 1, 3])) == [
-        "floor.toml:1: panel P1: corners: the panel is a cantilever slab off the edge from B2 to A2, its only "
+        "floor.toml:1: panel P1: corners: the panel is a cantilever slab off the edge from B2 to "
+        "A2, its only "
         "support, and is not continuous over it: no panel lies on the other side; "
         "continue the slab over the whole of that edge, or support another edge"
     ]
@@ -116,7 +127,8 @@ def test_cantilever_slab_with_nothing_beyond():
 def test_cantilever_slab_continuous_over_part_only():
     floor = walled().panel("K", (0, 4), (7, 5)).wall("X", "B2", (7, 4))
     assert problems(floor) == [
-        "floor.toml:6: panel K: corners: the panel is a cantilever slab off the edge from A2 to (7, 4), its only "
+        "floor.toml:6: panel K: corners: the panel is a cantilever slab off the edge from A2 to "
+        "(7, 4), its only "
         "support, and is not continuous over it: panel P1 covers only part of the other side; "
         "continue the slab over the whole of that edge, or support another edge"
     ]
@@ -130,7 +142,8 @@ def test_a_given_transfer_does_not_hold_up_a_cantilever_slab(transfer):
 
 def test_strips_without_support_at_either_end():
     assert problems(walled(free=[1, 3], transfer="one-way x")) == [
-        "floor.toml:1: panel P1: transfer: the strips between the edge from A2 to A1 and the edge from B1 to B2 have "
+        "floor.toml:1: panel P1: transfer: the strips between the edge from A2 to A1 and the edge "
+        "from B1 to B2 have "
         "no support at either end; turn the span, or support one of the two edges"
     ]
 
@@ -160,7 +173,8 @@ def test_beam_out_of_order():
 def test_beam_with_a_point_twice():
     floor = Floor(**GRID).beam("B1", "A1", "B1", "B1", "C1").columns_at("A1", "B1", "C1")
     assert problems(floor) == [
-        "floor.toml:1: beam B1: line: the points are out of order: along the beam B1 is the same point as B1; "
+        "floor.toml:1: beam B1: line: the points are out of order: along the beam B1 is the same "
+        "point as B1; "
         "list them from start to end"
     ]
 
@@ -168,8 +182,10 @@ def test_beam_with_a_point_twice():
 def test_beam_and_wall_without_length():
     floor = Floor(**GRID).beam("B1", "A1", "A1").wall("W1", "B1", "B1").columns_at("A1")
     assert problems(floor) == [
-        "floor.toml:1: beam B1: line: the beam starts and ends at the same point, A1; give two different points",
-        "floor.toml:2: wall W1: line: the wall starts and ends at the same point, B1; give two different points",
+        "floor.toml:1: beam B1: line: the beam starts and ends at the same point, A1; give two "
+        "different points",
+        "floor.toml:2: wall W1: line: the wall starts and ends at the same point, B1; give two "
+        "different points",
     ]
 
 
@@ -186,7 +202,8 @@ def test_beam_that_only_falls_over():
     floor.beam("B2", "A2", "B2", free_start=True, free_end=True)
     remedy = "it needs two supports, or one support with that end fixed"
     assert problems(floor) == [
-        f"floor.toml:1: beam B1: line: the beam falls over: it is held only at A1, about which it turns over; {remedy}",
+        f"floor.toml:1: beam B1: line: the beam falls over: it is held only at A1, about which it "
+        f"turns over; {remedy}",
         f"floor.toml:3: beam B2: line: the beam falls over: it is held nowhere; {remedy}",
     ]
 
@@ -217,7 +234,8 @@ def test_two_candidates():
     floor = Floor().beam("S", (0, 0), (0, 5)).beam("G1", (-3, 0), (3, 0)).beam("G2", (-3, -3), (3, 3))
     floor.columns_at((0, 5), (-3, 0), (3, 0), (-3, -3), (3, 3))
     assert problems(floor) == [
-        "floor.toml:1: beam S: line: beam G1 and beam G2 both pass under (0, 0): it is not clear which of them carries "
+        "floor.toml:1: beam S: line: beam G1 and beam G2 both pass under (0, 0): it is not clear "
+        "which of them carries "
         "the beam; put a column there, or end one of them before it"
     ]
 
@@ -259,7 +277,8 @@ def test_loads_off_the_beam():
         "floor.toml:2: beam B1: load.at: 6.5 m from the start is off the beam; the beam is 6 m long",
         "floor.toml:3: beam B1: load.from: -1 m from the start is off the beam; the beam is 6 m long",
         "floor.toml:4: beam B1: load.to: 7 m from the start is off the beam; the beam is 6 m long",
-        "floor.toml:5: beam B1: load.to: the load ends at 3 m, not beyond where it begins; 'to' lies beyond 'from'",
+        "floor.toml:5: beam B1: load.to: the load ends at 3 m, not beyond where it begins; 'to' "
+        "lies beyond 'from'",
     ]
 
 

@@ -1,6 +1,7 @@
 """One-way panels: strips, their skew, free ends, cantilever slabs."""
 
 import math
+from itertools import pairwise
 
 import numpy as np
 import pytest
@@ -127,7 +128,8 @@ def test_a_cantilever_slab_wider_than_its_edge_loads_the_ends():
 def test_balanced_cantilever_slabs_are_noted():
     floor = Floor().panel("P", (0, 0), (6, 2)).panel("K", (0, 2), (6, 4)).wall("W", (0, 2), (6, 2))
     assert floor.frame().notes == (
-        "panels P and K are both cantilever slabs off the edge from (6, 2) to (0, 2): they only balance each other",
+        "panels P and K are both cantilever slabs off the edge from (6, 2) to (0, 2): they only "
+        "balance each other",
     )
 
 
@@ -164,7 +166,7 @@ def test_against_a_cloud_of_points(direction, free):
         length = math.dist(SKEW[each.edge], SKEW[(each.edge + 1) % len(SKEW)])
         bins = np.linspace(0.0, length, 7)
         counted = np.histogram(place, bins)[0] * step**2
-        exact = [depth_between(each.depth, a, b) for a, b in zip(bins, bins[1:], strict=False)]
+        exact = [depth_between(each.depth, a, b) for a, b in pairwise(bins)]
         assert counted == pytest.approx(exact, abs=0.006 * panel.area)
     assert sum(each.area for each in panel.shares) == pytest.approx(panel.area, rel=1e-12)
 
@@ -176,7 +178,7 @@ def depth_between(depth, start, end):
 
 
 def depth_at(depth, place):
-    for (a, p), (b, q) in zip(depth, depth[1:], strict=False):
+    for (a, p), (b, q) in pairwise(depth):
         if a < place < b:
             return p + (place - a) / (b - a) * (q - p)
     return 0.0
