@@ -3,10 +3,14 @@
 from __future__ import annotations
 
 import difflib
+import re
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
 from itertools import takewhile
 
+# What could steer a terminal or turn a line round: control characters but tab and line feed, and the marks of
+# writing direction.
+_CONTROL = re.compile("[\x00-\x08\x0b-\x1f\x7f-\x9f\u202a-\u202e\u2066-\u2069\ud800-\udfff]")
 MANY = 12  # choices a message lists in full
 
 
@@ -40,7 +44,7 @@ class Problem:
         parts = [part for part in (place, self.mark, self.key) if part]
         text = ": ".join([*parts, self.message])
         text = f"{text}; {self.remedy}" if self.remedy else text
-        return "".join(each if each.isprintable() else "\N{REPLACEMENT CHARACTER}" for each in text)
+        return _CONTROL.sub("\N{REPLACEMENT CHARACTER}", text)
 
     def at(self, **place: str | int | None) -> Problem:
         """Fill in those parts of the place that are not known yet."""

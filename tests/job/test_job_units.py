@@ -171,6 +171,7 @@ def test_hostile_text_is_refused_at_once(text: str) -> None:
     assert time.perf_counter() - begin < 0.5
 
 
+@settings(deadline=None)
 @given(st.text(max_size=60))
 def test_any_text_is_a_finite_number_or_refused(text: str) -> None:
     try:
@@ -191,7 +192,7 @@ UNITS = {
 }
 
 
-@settings(max_examples=200)
+@settings(max_examples=200, deadline=None)
 @given(
     st.sampled_from([(kind, unit) for kind, names in UNITS.items() for unit in names]),
     st.floats(min_value=-1e12, max_value=1e12),
@@ -210,6 +211,7 @@ def _si(kind: str) -> str:
     return f"kN^{force}" + (f"*m^{length}" if length else "")
 
 
+@settings(deadline=None)
 @given(st.integers(0, 400), st.integers(0, 11), st.integers(0, 15))
 def test_feet_inches_and_sixteenths(feet: int, inches: int, sixteenths: int) -> None:
     exact = float((feet * 12 + inches + Fraction(sixteenths, 16)) * Fraction("0.0254"))

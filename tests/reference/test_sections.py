@@ -3,11 +3,11 @@
 The sources, both recalled from memory:
 
 EN    producers' tables of IPE, HE A and HE B sections to EN 10365 (formerly EN 10034 and DIN 1025), A in cm2
-      and Iy in cm4. Dimensions and properties there follow from one another, root fillets included, so what is
-      left is the rounding of the printed figures: 0.25 % of A, 0.1 % of Iy.
+      and Iy in cm4. Dimensions and properties there follow from one another, root fillets included, so what
+      is left is the rounding of the printed figures: 0.25 % of A, 0.1 % of Iy.
 AISC  AISC Steel Construction Manual, 15th ed., Table 1-1, A in in2 and Ix in in4. Depths are printed to
-      0.1 in and k to 0.01 in, so 0.7 % of A and 1.0 % of Ix. The nominal weight of the designation, in lb/ft, is met
-      to 1.1 % at 490 lb/ft3.
+      0.1 in and k to 0.01 in, so 0.7 % of A and 1.0 % of Ix. The nominal weight of the designation, in
+      lb/ft, is met to 1.1 % at 490 lb/ft3.
 """
 
 from __future__ import annotations
