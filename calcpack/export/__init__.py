@@ -1,1 +1,52 @@
-"""."""
+"""From an executed notebook to paper and screen: sheets in PDF and HTML, the pack that binds them.
+
+A notebook becomes a :class:`SheetContent`; that becomes ``sheet_pdf`` and ``sheet_html``; several
+become a :class:`Pack`. Jupyter finds ``SheetHTMLExporter`` and ``SheetPDFExporter`` as plug-ins.
+"""
+
+from calcpack.export.content import (
+    SheetContent,
+    SheetNumbers,
+    notebook_bytes,
+    record_bytes,
+    sheet_content,
+)
+from calcpack.export.exporters import SheetHTMLExporter, SheetPDFExporter
+from calcpack.export.mathematics import Mathematics
+from calcpack.export.pack import (
+    BuiltPack,
+    Pack,
+    PackedFile,
+    Section,
+    SigningPlace,
+    build_pack,
+    index_html,
+    paginate,
+)
+from calcpack.export.page_html import sheet_html
+from calcpack.export.pdf import sheet_pdf
+from calcpack.export.tables import schedule_csv
+from calcpack.export.typesetting import Attached
+
+__all__ = [
+    "Attached",
+    "BuiltPack",
+    "Mathematics",
+    "Pack",
+    "PackedFile",
+    "Section",
+    "SheetContent",
+    "SheetHTMLExporter",
+    "SheetNumbers",
+    "SheetPDFExporter",
+    "SigningPlace",
+    "build_pack",
+    "index_html",
+    "notebook_bytes",
+    "paginate",
+    "record_bytes",
+    "schedule_csv",
+    "sheet_content",
+    "sheet_html",
+    "sheet_pdf",
+]

@@ -22,7 +22,7 @@ from calcpack.job.model import Header, Submission
 BLOCKS_MIME = "application/vnd.calcpack.blocks+json"
 RECORD_MIME = "application/vnd.calcpack.record+json"
 CAUTION = (
-    "Calculations prepared with a program, to be reviewed and sealed by a licensed engineer;"
+    "Prepared with a program; to be reviewed and sealed by a licensed engineer;"
     " the local code and authority govern."
 )
 _DOLLARS = re.compile(r"^\$+\s*(?:\\displaystyle\b)?(.*?)\$+$", re.S)
@@ -119,7 +119,8 @@ def record_bytes(record: Mapping[str, Any]) -> bytes:
     >>> record_bytes({"format": 1, "mark": "B1"})
     b'{\\n "format": 1,\\n "mark": "B1"\\n}\\n'
     """
-    return (json.dumps(record, ensure_ascii=False, indent=1, allow_nan=False) + "\n").encode()
+    text = json.dumps(dict(record), ensure_ascii=False, indent=1, allow_nan=False, sort_keys=True)
+    return (text + "\n").encode()
 
 
 def notebook_bytes(notebook: nbformat.NotebookNode) -> bytes:

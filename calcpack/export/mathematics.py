@@ -17,6 +17,7 @@ import pypandoc
 from math_core import LatexError, LatexToMathML
 
 from calcpack.export.text import clean
+from calcpack.export.typesetting import settable_formulas
 
 
 def _words(text: str) -> frozenset[str]:
@@ -25,7 +26,7 @@ def _words(text: str) -> frozenset[str]:
 
 _ELEMENTS = _words("""
     math mrow mi mn mo mtext mspace mfrac msqrt mroot msub msup msubsup munder mover munderover
-    mmultiscripts mprescripts mtable mtr mtd mpadded mphantom
+    mmultiscripts mprescripts mtable mtr mtd b i mpadded mphantom
 """)
 _ATTRIBUTES = _words("""
     displaystyle scriptlevel mathvariant lspace rspace stretchy symmetric minsize maxsize largeop
@@ -47,8 +48,11 @@ _TYPST = re.compile(
     r"|\\."
     r"|#scale\(x: \d+%, y: \d+%\)\[\\?[^\]#]\]"
     r"|[A-Za-z]+(?:\.[a-z]+)*|\d+(?:\.\d+)*"
-    r"|/(?![/*])|[^\s\"\\#$@`A-Za-z0-9/]|\s+"
+    r"|/(?![/*])|[^\s\"\\#$@`A-Za-z0-9/]|\s+",
+    re.S,
 )
+# Bold words as words of the text's own face: mathematical bold letters could not be searched for.
+_BOLD_WORDS = re.compile(r'\bbold\(("(?:[^"\\]|\\.)*")\)')
 _FORBIDDEN = _words("std sys eval read plugin import include raw link label ref")
 
 
@@ -103,6 +107,8 @@ class Mathematics:
             return "", ""
         if not _tidy(root):
             return "", ""
+        if source != latex and len(root) > 1 and root[1].tag == "mo":
+            root[1].set("form", "infix")
         inner = "".join(tostring(child, encoding="unicode") for child in root)
         return inner, " ".join(_spoken(root).split())
 
@@ -130,8 +136,8 @@ def _spoken(element: Element) -> str:
     """A formula in words and signs, as a reader aloud takes it."""
     parts = [_spoken(child) for child in element]
     match element.tag:
-        case "mi" | "mn" | "mtext":
-            return (element.text or "").translate(_UPRIGHT)
+        case "mi" | "mn" | "mtext" | "b" | "i":
+            return (element.text or "").translate(_UPRIGHT) + "".join(parts)
         case "mo":
             text = element.text or ""
             return f" {_SAID.get(text, text)} "
@@ -192,7 +198,9 @@ def _typst(formulas: list[str]) -> list[str]:
     )
     found = re.split(r"^formula(\d+)formula$", written, flags=re.M)
     by_number = {int(number): text.strip() for number, text in zip(found[1::2], found[2::2], strict=True)}
-    return [_checked(by_number.get(number, "")) for number in range(len(formulas))]
+    checked = [_checked(by_number.get(number, "")) for number in range(len(formulas))]
+    proven = settable_formulas(checked)
+    return [text if good else "" for text, good in zip(checked, proven, strict=True)]
 
 
 def _for_pandoc(latex: str) -> str:
@@ -212,4 +220,4 @@ def _checked(text: str) -> str:
         if not match or match[0].split(".")[0] in _FORBIDDEN:
             return ""
         at = match.end()
-    return inner
+    return _BOLD_WORDS.sub(r"strongwords(\1)", inner)
