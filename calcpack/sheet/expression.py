@@ -235,11 +235,13 @@ def expression(term: Term) -> Expression:
     """
     if isinstance(term, Arithmetic):
         return term.as_expression()
-    if isinstance(term, bool) or not isinstance(term, int | float | Decimal | str):
+    if not isinstance(term, int | float | Decimal | str):
         try:
-            term = operator.index(term)
+            term = operator.index(term)  # numpy's whole numbers
         except TypeError:
             raise CalcpackError(f"{term!r:.60} cannot be a part of a formula") from None
+    if isinstance(term, bool):
+        raise CalcpackError(f"{term} cannot be a part of a formula")
     if isinstance(term, str):
         return Number(term)
     decimal = Decimal(repr(float(term))) if isinstance(term, float) else Decimal(term)

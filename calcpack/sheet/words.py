@@ -85,6 +85,13 @@ _FUNCTIONS = {
 }  # fmt: skip
 
 
+def _spoken_rank(node: Expression) -> int:
+    """Words for a function do not hold together as its parentheses do."""
+    if isinstance(node, Operation) and node.name not in (*_RANKS, "pi"):
+        return 0 if node.name == "choose" else 4
+    return _rank(node)
+
+
 def spoken(root: Expression, system: System = "SI") -> str:
     """A formula as read aloud, symbols by name.
 
@@ -97,7 +104,7 @@ def spoken(root: Expression, system: System = "SI") -> str:
 
     def held(node: Expression, least: int) -> str:
         said = spoken(node, system)
-        return said if _rank(node) >= least else f"({said})"
+        return said if _spoken_rank(node) >= least else f"({said})"
 
     match root:
         case Number():
@@ -128,7 +135,7 @@ def spoken(root: Expression, system: System = "SI") -> str:
         case Operation(name="number_in" | "in_unit"):
             return f"{held(root.args[0], 3)} in {unit_spoken(root.unit)}"
         case Operation(arguments=arguments):
-            inner = " and ".join(held(each, 3) for each in arguments)
+            inner = " and ".join(held(each, 5) for each in arguments)
             return f"{_FUNCTIONS[root.name]} {inner}"
     raise TypeError(f"{root!r} is not an expression")
 
