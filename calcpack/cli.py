@@ -56,10 +56,9 @@ def validate(
     ] = None,
 ) -> None:
     """Read a job and print what was understood of it."""
-    from calcpack.overview import print_overview, write_plan
-
     from calcpack.framing import frame
     from calcpack.job import read_job
+    from calcpack.overview import print_overview, write_plan
 
     framed = frame(read_job(job))
     if plan is not None:
@@ -75,7 +74,8 @@ def build(
         list[str] | None, typer.Option(metavar="MARK", help="Only this beam; may be given several times.")
     ] = None,
     formats: Annotated[
-        list[Format] | None, typer.Option("--format", help="Only this form of sheet; may be given several times.")
+        list[Format] | None,
+        typer.Option("--format", help="Only this form of sheet; may be given several times."),
     ] = None,
 ) -> None:
     """Make the calculation sheets of a job and bind them into a pack."""

@@ -12,8 +12,8 @@ from rich.table import Table
 from rich.text import Text
 
 from calcpack.build import BuiltJob, Follow
-from calcpack.files import write_file
 from calcpack.figures import key_plan
+from calcpack.files import write_file
 from calcpack.framing import Frame, FramedBeam, PanelTransfer
 from calcpack.job.model import Case
 from calcpack.notebook.parameters import plan_of
@@ -46,7 +46,9 @@ def print_overview(frame: Frame, console: Console) -> None:
         console.print(table)
     console.print()
     console.print(Text(f"Solved in the order {', '.join(frame.order)}."))
-    applied = ", ".join(f"{CASE_WORDS[case]} {show(frame.applied[case], 'kN', system)}" for case in frame.cases)
+    applied = ", ".join(
+        f"{CASE_WORDS[case]} {show(frame.applied[case], 'kN', system)}" for case in frame.cases
+    )
     console.print(Text(f"Applied in all: {applied}; the supports carry the same."))
     for note in frame.notes:
         console.print(Text(f"Note: {note}"))

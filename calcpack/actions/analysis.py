@@ -122,9 +122,7 @@ class AnalysedBeam:
         """Largest deflection by size of each service combination [m] at [m]."""
         if self.stiffness is None:
             return ()
-        return tuple(
-            (each.combination, self._deflection(each.envelope)) for each in self.of_limit("service")
-        )
+        return tuple((each.combination, self._deflection(each.envelope)) for each in self.of_limit("service"))
 
     @cached_property
     def deflection_total(self) -> tuple[Combination, Extreme] | None:

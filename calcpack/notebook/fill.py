@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 import ast
+from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
 
 import nbformat
 
 from calcpack.job.errors import CalcpackError
-from calcpack.notebook.parameters import BeamInput, to_text
+from calcpack.job.model import Job
 from calcpack.notebook.templates import Template
 
 PARAMETERS_TAG = "parameters"
@@ -36,20 +37,23 @@ def parameters_cell(text: str) -> str:
     >>> "O'Hara" in cell
     False
     """
-    source = "PARAMETERS = r'''" + text.replace("'", "\\u0027") + "'''"
-    value = ast.literal_eval(source.removeprefix("PARAMETERS = "))
-    if "'" in value:
-        raise AssertionError("the parameters would leave their literal")
-    return source
+    literal = "r'''" + text.replace("'", "\\u0027") + "'''"
+    if ast.literal_eval(literal) != text.replace("'", "\\u0027"):
+        raise CalcpackError("the parameters cannot be written into the notebook")
+    return f"PARAMETERS = {literal}"
 
 
-def fill(template: Template, parameters: BeamInput) -> FilledNotebook:
-    """Put a beam's parameters into a template's notebook.
+def fill(template: Template, mark: str, parameters: str, metadata: Mapping[str, Any]) -> FilledNotebook:
+    """Put parameters into a template's notebook.
 
     Parameters
     ----------
     template : Template
-    parameters : BeamInput
+    mark : str
+    parameters : str
+        JSON text.
+    metadata : mapping
+        What an exporter needs beside the cells, from :func:`sheet_metadata`.
 
     Returns
     -------
@@ -71,24 +75,23 @@ def fill(template: Template, parameters: BeamInput) -> FilledNotebook:
             f"the template '{template.settings.name}' has no code cell tagged '{PARAMETERS_TAG}'",
             remedy="tag the one cell that the parameters are to replace",
         )
-    tagged[0].source = parameters_cell(to_text(parameters))
+    tagged[0].source = parameters_cell(parameters)
     node.metadata = nbformat.from_dict(
-        {"kernelspec": KERNEL, "language_info": {"name": "python"}, "calcpack": sheet_metadata(parameters)}
+        {"kernelspec": KERNEL, "language_info": {"name": "python"}, "calcpack": dict(metadata)}
     )
     node.nbformat, node.nbformat_minor = 4, 5
-    return FilledNotebook(parameters.mark, node)
+    return FilledNotebook(mark, node)
 
 
-def sheet_metadata(parameters: BeamInput) -> dict[str, Any]:
+def sheet_metadata(job: Job, mark: str, template: Template, program: str) -> dict[str, Any]:
     """What an exporter needs to know beside the cells: the title block and the provenance."""
-    header = parameters.header.model_dump(mode="json")
     return {
-        "mark": parameters.mark,
-        "title": parameters.template.title,
-        "header": header,
-        "submission": parameters.submission.model_dump(mode="json"),
-        "template": parameters.template.model_dump(mode="json", include={"name", "version", "sha256"}),
-        "input": parameters.input,
-        "program": parameters.program,
+        "mark": mark,
+        "title": template.settings.title,
+        "header": job.job.model_dump(mode="json"),
+        "submission": job.submission.model_dump(mode="json"),
+        "template": template.stamp.model_dump(mode="json", include={"name", "version", "sha256"}),
+        "input": job.digest,
+        "program": program,
         "sheets": {"first": 1, "of": 1},
     }

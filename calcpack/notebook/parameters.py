@@ -22,6 +22,9 @@ from calcpack.job.model import Basis, Case, EquivalentKind, Frozen, Header, Mate
 from calcpack.statics import Load
 
 
+PROGRAM = f"calcpack {calcpack.__version__}"
+
+
 class TemplateStamp(Frozen):
     """Which template made a sheet."""
 
@@ -122,7 +125,7 @@ def beam_input(frame: Frame, mark: str, design: dict[str, Any], template: Templa
         template=template,
         job_file=job.file,
         input=job.digest,
-        program=f"calcpack {calcpack.__version__}",
+        program=PROGRAM,
     )
 
 

@@ -153,16 +153,15 @@ class Study:
             loads += [
                 load
                 for load in self.given.loads[case]
-                if isinstance(load, PointLoad) and any(abs(load.at - at) <= 1e-9 * self.given.length for at in ends)
+                if isinstance(load, PointLoad)
+                and any(abs(load.at - at) <= 1e-9 * self.given.length for at in ends)
             ]
         return tuple(loads)
 
     @cached_property
     def analysed(self) -> AnalysedBeam:
         """The beam under all its combinations."""
-        return analyse_beam(
-            self.line, self.design_sets, self.given.actions.combinations, self.stiffness
-        )
+        return analyse_beam(self.line, self.design_sets, self.given.actions.combinations, self.stiffness)
 
     @cached_property
     def by_case(self) -> Response:
@@ -178,6 +177,10 @@ class Study:
         """Whether a force [kN] or a moment [kNm] is more than rounding."""
         scale = self._scale * (self.given.length if kind == "moment" else 1.0)
         return abs(value) > 1e-9 * scale
+
+    def settled(self, value: float, kind: str) -> float:
+        """The value, or zero where it is no more than rounding."""
+        return value if self.significant(value, kind) else 0.0
 
     def total(self, case: Case) -> float:
         """All of a case on the beam [kN]."""

@@ -46,6 +46,7 @@ class TemplateSettings(Frozen):
     needs: tuple[Literal["section", "material"], ...] = ()
     assumptions: tuple[str, ...] = ()
     not_covered: tuple[str, ...] = ()
+    appendix: bool = False  # made once a pack, not for a beam
     parameters: dict[str, Parameter] = Field(default_factory=dict)
 
 

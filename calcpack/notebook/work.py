@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Hashable
+from collections.abc import Hashable, Sequence
 from dataclasses import dataclass, field
 from functools import cached_property
 from typing import Any
@@ -12,7 +12,7 @@ from calcpack.framing.types import EdgeShare, PanelTransfer
 from calcpack.job.model import Case
 from calcpack.notebook.parameters import BeamInput, from_text
 from calcpack.notebook.study import SpanLoads, Study
-from calcpack.sheet import Line, Sheet, show
+from calcpack.sheet import Expression, Line, Sheet, show, total
 
 LETTER: dict[Case, str] = {"dead": "g", "live": "q", "roof_live": "r", "snow": "s"}
 SELF_WEIGHT = "self weight"
@@ -44,6 +44,20 @@ class Source:
         return f"{self.kind} {self.name}" if self.kind != "own" else f"given {self.name}"
 
 
+@dataclass(frozen=True)
+class Alike:
+    """Loads of one shape on a span: the shape, the sources, the sum of their peaks."""
+
+    shape: Shape
+    names: tuple[str, ...]
+    peak: Expression | Line
+
+
+def summed(terms: Sequence[Expression | Line]) -> Expression | Line:
+    """The sum of terms; a single one as it is."""
+    return total(terms) if len(terms) > 1 else terms[0]
+
+
 @dataclass
 class Work:
     """What the sections of a sheet share.
@@ -72,9 +86,7 @@ class Work:
         panels = {transfer.panel.mark for transfer in self.given.panels}
         beams = {carried.mark for carried in self.given.carried}
         found: dict[str, Source] = {}
-        names = dict.fromkeys(
-            load.source for case in self.study.cases for load in self.given.loads[case]
-        )
+        names = dict.fromkeys(load.source for case in self.study.cases for load in self.given.loads[case])
         ranked = sorted(names, key=lambda name: (name not in panels, name not in beams))
         for name in ranked:
             if name == SELF_WEIGHT:
@@ -94,9 +106,7 @@ class Work:
         by_source: dict[str, list[Any]] = {}
         for load in span.loads[case]:
             by_source.setdefault(load.source, []).append(load)
-        return {
-            name: shape_of(span.length, by_source[name]) for name in self.sources if name in by_source
-        }
+        return {name: shape_of(span.length, by_source[name]) for name in self.sources if name in by_source}
 
     def symmetric(self, span: SpanLoads, case: Case) -> bool:
         """Whether every load on the span is a uniform, triangular or trapezoidal one."""
@@ -104,6 +114,17 @@ class Work:
             shape.kind != "general" and ("peak", case, name) in self.lines
             for name, shape in self.shapes(span, case).items()
         )
+
+    def alike(self, span: SpanLoads, case: Case) -> list[Alike]:
+        """The symmetric loads of a case, those of one shape put together."""
+        groups: dict[tuple[str, float], tuple[Shape, list[str]]] = {}
+        for name, shape in self.shapes(span, case).items():
+            key = (shape.kind, round(shape.side_ratio, 9))
+            groups.setdefault(key, (shape, []))[1].append(name)
+        return [
+            Alike(shape, tuple(names), summed([self.lines["peak", case, name] for name in names]))
+            for shape, names in groups.values()
+        ]
 
     @property
     def simple(self) -> SpanLoads | None:

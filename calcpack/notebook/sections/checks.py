@@ -2,41 +2,45 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
 from typing import Any
 
+from calcpack.equivalent import loads_on, responses
+from calcpack.job.model import Case
 from calcpack.notebook.study import CASE_WORDS
-from calcpack.notebook.work import LETTER, Work
+from calcpack.notebook.work import Work, summed
 from calcpack.sheet import Expression, Line, absolute, greatest, measured, number, total
 from calcpack.statics import LineLoad, PointLoad
 from calcpack.statics.stiffness import stiffness_check
-
-TOLERANCE = "0.000001"  # relative, for two roads to one number
 
 
 def state_checks(work: Work) -> None:
     """Equilibrium case by case, the second method, deflection limits."""
     work.sheet.section("Checks")
+    work.lines["agreement"] = work.sheet.take(
+        "epsilon",
+        1e-6,
+        "1",
+        says="How closely two roads to one number have to agree",
+        origin="template",
+        word="agreement asked for",
+    )
     for row, case in enumerate(work.study.cases):
         _equilibrium(work, row, case)
+    _three_moments(work)
     _second_method(work)
     _deflection_limits(work)
 
 
-def _equilibrium(work: Work, row: int, case: str) -> None:
+def _equilibrium(work: Work, row: int, case: Case) -> None:
     """Forces, and moments about the beam's start."""
     study, given, sheet = work.study, work.given, work.sheet
-    letter, load = LETTER[case], work.lines["total", case]  # type: ignore[index]
+    load, near, words = work.lines["total", case], work.lines["agreement"], CASE_WORDS[case]
     reactions = [float(value) for value in study.by_case.reactions[row]]
-    upward = sheet.hence(
-        f"R_sum,{letter}",
-        total(measured(value, "kN") for value in reactions),
-        "kN",
-        says=f"Sum of the reactions, {CASE_WORDS[case]}",  # type: ignore[index]
-        cite="equilibrium",
-    )
+    upward = total(measured(value, "kN") for value in reactions)
     sheet.require(
-        absolute(upward - load) <= number(TOLERANCE) * load,
-        says=f"They carry all the {CASE_WORDS[case]}",  # type: ignore[index]
+        absolute(upward - load) <= near * load,
+        says=f"Reactions, every span loaded, carry all the {words}",
         cite="equilibrium",
     )
     start, end = (float(value) for value in study.by_case.end_moments[row])
@@ -45,13 +49,12 @@ def _equilibrium(work: Work, row: int, case: str) -> None:
         for value, bearing in zip(reactions, given.bearings, strict=True)
         if bearing.at > 0
     ]
-    # sagging positive: the wall at the start turns the beam with -M, at the end with +M
+    # sagging positive: what holds the start turns the beam by -M, what holds the end by +M
     held = [measured(-start, "kN*m"), measured(end, "kN*m")] if any(given.fixed) else []
-    loads = sum(_moment(each) for each in given.loads[case])  # type: ignore[index]
+    loads = sum(_moment(each) for each in given.loads[case])
     sheet.require(
-        absolute(total([*turning, *held]) - measured(loads, "kN*m"))
-        <= number(TOLERANCE) * load * _length(work),
-        says=f"Moments about the beam's start: reactions against {CASE_WORDS[case]}",  # type: ignore[index]
+        absolute(total([*turning, *held]) - measured(loads, "kN*m")) <= near * load * _length(work),
+        says=f"Moments about the beam's start: reactions against {words}",
         cite="equilibrium",
     )
 
@@ -64,6 +67,75 @@ def _moment(load: LineLoad | PointLoad) -> float:
     return load.total * load.start + length**2 * (load.first + 2 * load.last) / 6
 
 
+def _three_moments(work: Work) -> None:
+    """At each inner support, the moments on both sides turn the two spans' ends alike (Clapeyron)."""
+    study, sheet = work.study, work.sheet
+    combination = study.analysed.governing_moment.combination
+    always, placed = study.analysed.factors(combination)
+    exact = study.analysed.response.combined(always + placed)
+    moments = {
+        bearing.at: study.settled(float(exact.support_moments[0][at]), "moment")
+        for at, bearing in enumerate(work.given.bearings)
+    }
+    fixed = {}
+    for span in study.spans:
+        if span is not None:
+            loads = [
+                scaled(load, combination.factors[each.case])
+                for each in study.design_sets
+                for load in loads_on(each.loads, span.start, span.end)
+                if each.case in combination.factors
+            ]
+            fixed[span.number] = responses(span.length, loads).end_moments
+    rows = [
+        [
+            f"span {number_}",
+            work.show(span.length, "m"),
+            *(work.show(value, "kN*m") for value in ends),
+            *(work.show(moments[at], "kN*m") for at in (span.start, span.end)),
+        ]
+        for number_, ends in fixed.items()
+        if (span := study.spans[number_ - 1]) is not None
+    ]
+    pairs = [(one, other) for one, other in pairwise(study.spans) if one is not None and other is not None]
+    if not pairs:
+        return
+    sheet.table(
+        [
+            (f"{combination.name}, every span loaded", "left"),
+            ("length", "right"),
+            ("fixed end, left", "right"),
+            ("fixed end, right", "right"),
+            ("support moment, left", "right"),
+            ("right", "right"),
+        ],
+        rows,
+        caption="Moments of each span with both ends fixed (hogging positive), and the support moments of the "
+        "continuous beam (sagging positive).",
+    )
+    for left, right in pairs:
+        one, other = work.lines["span", left.number - 1], work.lines["span", right.number - 1]
+        (a, b), (c, d) = fixed[left.number], fixed[right.number]
+        bent = total(
+            [
+                measured(moments[left.start], "kN*m") * one,
+                2 * measured(moments[left.end], "kN*m") * (one + other),
+                measured(moments[right.end], "kN*m") * other,
+            ]
+        )
+        loaded = total(
+            [
+                one * (measured(a, "kN*m") + 2 * measured(b, "kN*m")),
+                other * (2 * measured(c, "kN*m") + measured(d, "kN*m")),
+            ]
+        )
+        sheet.require(
+            absolute(bent + loaded) <= work.lines["agreement"] * loaded,
+            says=f"Three-moment equation at the support between spans {left.number} and {right.number}",
+            cite="Clapeyron",
+        )
+
+
 def _second_method(work: Work) -> None:
     """The governing combination, every span loaded, solved once more by direct stiffness."""
     study, given, sheet = work.study, work.given, work.sheet
@@ -71,37 +143,54 @@ def _second_method(work: Work) -> None:
     always, placed = study.analysed.factors(combination)
     exact = study.analysed.response.combined(always + placed)
     factored = [
-        _scaled(load, combination.factors.get(each.case, 0.0))
+        scaled(load, combination.factors[each.case])
         for each in study.design_sets
         for load in each.loads
-        if combination.factors.get(each.case, 0.0)
+        if each.case in combination.factors
     ]
     second = stiffness_check(study.line, factored)
     rows, differences = [], []
     for at, bearing in enumerate(given.bearings):
         one, other = float(exact.reactions[0][at]), _steady(float(second.reactions[at]))
+        hogging = [float(values[at]) for values in (exact.support_moments[0], second.support_moments)]
         rows.append(
             [
-                f"R{at + 1}, {bearing.kind} {bearing.mark}",
+                f"{bearing.kind} {bearing.mark}",
                 work.show(one, "kN"),
                 work.show(other, "kN"),
+                *(work.show(study.settled(value, "moment"), "kN*m") for value in hogging),
             ]
         )
         differences.append(absolute(measured(one, "kN") - measured(other, "kN")))
     sheet.table(
-        [(f"{combination.name}, every span loaded", "left"), ("exact", "right"), ("direct stiffness", "right")],
+        [
+            ("support", "left"),
+            ("reaction, exact", "right"),
+            ("by stiffness", "right"),
+            ("moment, exact", "right"),
+            ("by stiffness", "right"),
+        ],
         rows,
-        caption="The beam solved a second time by direct stiffness with cubic elements.",
+        caption=f"{combination.name}, every span loaded, solved a second time by direct stiffness with cubic "
+        "elements.",
     )
-    weight = total(measured(load.total, "kN") for load in factored if load.total)
+    weight = [
+        number(combination.factors[case]) * work.lines["total", case]
+        for case in study.cases
+        if case in combination.factors
+    ]
+    if study.given.design_loads == "equivalent":
+        weight = [measured(sum(load.total for load in factored), "kN")]
     sheet.require(
-        (greatest(*differences) if len(differences) > 1 else differences[0]) <= number(TOLERANCE) * weight,
-        says="Largest difference between the two methods' reactions, against the load",
+        (greatest(*differences) if len(differences) > 1 else differences[0])
+        <= work.lines["agreement"] * summed(weight),
+        says="Largest difference of the reactions between the two methods, against the load",
         cite="second method",
     )
 
 
-def _scaled(load: LineLoad | PointLoad, factor: float) -> LineLoad | PointLoad:
+def scaled(load: LineLoad | PointLoad, factor: float) -> LineLoad | PointLoad:
+    """A load times a factor."""
     if isinstance(load, PointLoad):
         return PointLoad(load.at, factor * load.force, load.source)
     return LineLoad(load.start, load.end, factor * load.first, factor * load.last, load.source)
@@ -155,7 +244,7 @@ def _span_at(work: Work, at: float) -> int:
 def _length(work: Work) -> Line | Expression:
     """The beam's whole length, as its spans make it up."""
     spans = [work.lines["span", number_] for number_ in range(len(work.given.spans))]
-    return total(spans) if len(spans) > 1 else spans[0]
+    return summed(spans)
 
 
 def checks_of(work: Work) -> list[dict[str, Any]]:

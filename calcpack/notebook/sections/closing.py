@@ -55,7 +55,10 @@ def state_notation(work: Work) -> None:
     sheet.facts(
         [
             ("Program", given.program),
-            ("Template", f"{given.template.name} {given.template.version}, SHA-256 {given.template.sha256[:16]}"),
+            (
+                "Template",
+                f"{given.template.name} {given.template.version}, SHA-256 {given.template.sha256[:16]}",
+            ),
             ("Input", f"{given.job_file}, SHA-256 {given.input[:16]}"),
         ]
     )

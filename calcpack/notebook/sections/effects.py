@@ -6,9 +6,10 @@ from collections.abc import Sequence
 
 from calcpack.actions import CombinationResult
 from calcpack.figures import response_figure
+from calcpack.notebook.sections.resultants import midspan_moment
 from calcpack.notebook.study import CASE_WORDS
-from calcpack.notebook.work import LETTER, Work
-from calcpack.sheet import Expression, Line, number, total
+from calcpack.notebook.work import LETTER, Work, summed
+from calcpack.sheet import number
 from calcpack.statics import enclosing
 
 SAMPLES = 120
@@ -23,9 +24,7 @@ def state_combinations(work: Work) -> None:
     listed = supports if len(supports) <= 4 else ()
     rows, strong = [], []
     for number_, result in enumerate(analysed.results):
-        governs = [
-            words for words, of in (("moment", moment), ("shear", shear)) if of is result
-        ]
+        governs = [words for words, of in (("moment", moment), ("shear", shear)) if of is result]
         if governs:
             strong.append(number_)
         rows.append(
@@ -56,7 +55,7 @@ def state_combinations(work: Work) -> None:
         "worst for each." + _names(work),
         strong_rows=strong,
     )
-    if work.simple is not None and study.given.design_loads == "actual":
+    if study.given.design_loads == "actual":
         _by_hand(work, moment, shear)
 
 
@@ -66,10 +65,7 @@ def _limit(result: CombinationResult) -> str:
 
 
 def _names(work: Work) -> str:
-    named = ", ".join(
-        f"{symbol} {CASE_WORDS[case]}"
-        for case, symbol in _symbols(work).items()
-    )
+    named = ", ".join(f"{symbol} {CASE_WORDS[case]}" for case, symbol in _symbols(work).items())
     return f" {named}."
 
 
@@ -81,48 +77,39 @@ def _symbols(work: Work) -> dict[str, str]:
 
 
 def _by_hand(work: Work, moment: CombinationResult, shear: CombinationResult) -> None:
-    """A beam on two supports: reactions by moments, the governing values from the cases."""
+    """A beam on two supports: the governing values from the cases, where all loads are symmetric."""
     span, sheet = work.simple, work.sheet
-    assert span is not None
-    if not all(work.symmetric(span, case) for case in work.study.cases):
+    if span is None or not all(work.symmetric(span, case) for case in work.study.cases):
         return
     length = work.lines["span", 0]
     for case in work.study.cases:
-        letter = LETTER[case]
+        letter, words = LETTER[case], CASE_WORDS[case]
         work.lines["reaction", case] = sheet.hence(
             f"R_{letter}",
             work.lines["total", case] / 2,
             "kN",
-            says=f"Reaction at each end, {CASE_WORDS[case]}: the load is symmetric",
+            says=f"Reaction at each end, {words}: the load is symmetric",
             cite="equilibrium",
         )
-        terms: list[Expression] = []
-        for name, shape in work.shapes(span, case).items():
-            peak = work.lines["peak", case, name]
-            if shape.kind == "uniform":
-                terms.append(peak * length**2 / 8)
-            elif shape.kind == "triangle":
-                terms.append(peak * length**2 / 12)
-            else:
-                rise = work.lines["depth", name]
-                terms.append(peak * (3 * length**2 - 4 * rise**2) / 24)
         work.lines["moment", case] = sheet.hence(
             f"M_{letter}",
-            total(terms) if len(terms) > 1 else terms[0],
+            summed([midspan_moment(work, group, length) for group in work.alike(span, case)]),
             "kN*m",
-            says=f"Largest moment, {CASE_WORDS[case]}: at midspan, source by source",
+            says=f"Largest moment, {words}, at midspan, shape by shape",
             cite="statics",
         )
     for result, symbol, key, unit, words in (
         (moment, "M_max", "moment", "kN*m", "Largest moment"),
         (shear, "V_max", "reaction", "kN", "Largest shear, at the supports"),
     ):
-        factors = {
-            case: factor for case, factor in result.combination.factors.items() if case in work.study.cases
-        }
+        factors = [
+            (factor, work.lines[key, case])
+            for case, factor in result.combination.factors.items()
+            if case in work.study.cases
+        ]
         work.lines[key] = sheet.hence(
             symbol,
-            total(number(factor) * work.lines[key, case] for case, factor in factors.items()),
+            summed([line if factor == 1 else number(factor) * line for factor, line in factors]),
             unit,
             says=f"{words}, under {result.combination.name}",
             cite=result.combination.cite,
@@ -140,6 +127,7 @@ def state_effects(work: Work) -> None:
         curves_of(work),
         study.system,
         mark=given.mark,
+        width_mm=170,
         fixed=given.fixed,
         extremes=extremes_of(work),
     )
@@ -207,7 +195,10 @@ def _reactions(work: Work) -> None:
             [
                 f"R{at + 1}",
                 f"{bearing.kind} {bearing.mark} at {bearing.name}",
-                *(work.show(float(study.by_case.reactions[row][at]), "kN") for row in range(len(study.cases))),
+                *(
+                    work.show(float(study.by_case.reactions[row][at]), "kN")
+                    for row in range(len(study.cases))
+                ),
                 work.show(max(each.reactions_max[at] for each in strength), "kN"),
                 work.show(min(each.reactions_min[at] for each in strength), "kN"),
             ]

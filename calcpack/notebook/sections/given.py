@@ -31,10 +31,22 @@ def _spans(work: Work) -> None:
         several = len(work.given.spans) > 1
         symbol = f"ell_{number + 1}" if several else "ell"
         kind = "span" if work.given.between_supports(number) else "overhang"
-        words = f"{kind.capitalize()} {number + 1} of the beam" if several else f"{kind.capitalize()} of the beam"
-        work.lines["span", number] = work.sheet.take(
-            symbol, end - start, "m", says=words, origin=f"{beam} line"
+        words = (
+            f"{kind.capitalize()} {number + 1} of the beam" if several else f"{kind.capitalize()} of the beam"
         )
+        work.lines["span", number] = work.sheet.take(
+            symbol,
+            end - start,
+            "m",
+            says=words,
+            origin=f"{beam} line",
+            given=_in_full(end - start),
+        )
+
+
+def _in_full(length: float) -> bool:
+    """Whether a length is one that somebody wrote down, in metres or in feet, to be shown in full."""
+    return any(abs(value - round(value, 3)) < 1e-9 for value in (length, length / 0.3048))
 
 
 def _section(work: Work) -> None:
@@ -44,7 +56,11 @@ def _section(work: Work) -> None:
     place = f"section {section.key}"
     if section.shape == "rolled":
         work.lines["area"] = work.sheet.take(
-            "A", section.area * 1e6, "mm^2", says=f"Area of {section.designation}", origin=f"{place} designation"
+            "A",
+            section.area * 1e6,
+            "mm^2",
+            says=f"Area of {section.designation}",
+            origin=f"{place} designation",
         )
     else:
         for key, symbol, words in _dimensions(section):
@@ -76,7 +92,12 @@ def _panel(work: Work, transfer: PanelTransfer) -> None:
 
     def take(key: str, symbol: str, value: float, unit: str, words: str, origin: str) -> None:
         work.lines[key, panel.mark] = sheet.take(
-            f"{symbol}_{index}", value, unit, says=f"{words} of panel {panel.mark}", origin=f"{place} {origin}"
+            f"{symbol}_{index}",
+            value,
+            unit,
+            says=f"{words} of panel {panel.mark}",
+            origin=f"{place} {origin}",
+            given=unit != "m" or _in_full(value),
         )
 
     if transfer.rectangle:
@@ -111,6 +132,7 @@ def _carried(work: Work, source: Source) -> None:
                 "kN",
                 says=f"Reaction of beam {source.name}, {CASE_WORDS[case]}, every span loaded",
                 origin=f"sheet {source.name}, reactions",
+                given=False,
             )
 
 
@@ -143,7 +165,11 @@ def _own(work: Work, source: Source) -> None:
 
 def _own_point(work: Work, source: Source, case: str, load: PointLoad, words: str, origin: str) -> None:
     work.lines["force", case, source.name] = work.sheet.take(
-        f"F_{LETTER[case]}{source.index}", load.force, "kN", says=words, origin=f"{origin} point"  # type: ignore[index]
+        f"F_{LETTER[case]}{source.index}",
+        load.force,
+        "kN",
+        says=words,
+        origin=f"{origin} point",  # type: ignore[index]
     )
     work.lines["place", source.name] = work.sheet.take(
         f"x_{source.index}", load.at, "m", says=f"Where {source.name} stands", origin=f"{origin} at"

@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 from calcpack.figures import load_figure
+from calcpack.job.model import Case
+from calcpack.notebook.sections.resultants import CLOSE, weight
 from calcpack.notebook.study import CASE_WORDS
-from calcpack.notebook.work import LETTER, Work
-from calcpack.sheet import measured, total
+from calcpack.notebook.work import LETTER, Work, summed
+from calcpack.sheet import Expression, Line, measured
 
 
 def state_loads(work: Work) -> None:
@@ -27,7 +29,8 @@ def state_loads(work: Work) -> None:
         given.mark,
         study.system,
         fixed=given.fixed,
-        equivalent=uniform,
+        equivalents=uniform,
+        width_mm=170,
     )
     work.sheet.figure(figure, "Loads as they stand, unfactored; dashed: the equivalent carried forward.")
     rows: list[list[object]] = []
@@ -43,18 +46,27 @@ def state_loads(work: Work) -> None:
         caption="Resultant of each source over the whole beam.",
     )
     for case in study.cases:
-        parts = [
-            force
-            for name in work.sources
-            if study.significant(force := _resultant(work, name, case), "force")
-        ]
         work.lines["total", case] = work.sheet.hence(
-            f"W_{LETTER[case]}",
-            total(measured(force, "kN") for force in parts),
-            "kN",
-            says=f"All the {CASE_WORDS[case]} on the beam",
+            f"W_{LETTER[case]}", _total(work, case), "kN", says=f"All the {CASE_WORDS[case]} on the beam"
         )
 
 
-def _resultant(work: Work, name: str, case: str) -> float:
-    return sum(load.total for load in work.given.loads[case] if load.source == name)  # type: ignore[index]
+def _total(work: Work, case: Case) -> Expression | Line:
+    """By formula for the everyday shapes on a single span, else the sum of the table's column."""
+    span = work.simple
+    if span is not None and work.symmetric(span, case) and not work.given.carried:
+        length = work.lines["span", 0]
+        return summed([weight(work, group, length) for group in work.alike(span, case)])
+    terms: list[Expression | Line] = []
+    for name in work.sources:
+        force = _resultant(work, name, case)
+        line = work.lines.get(("force", case, name), work.lines.get(("resultant", case, name)))
+        if line is not None and abs(line.value - force) <= CLOSE * abs(force):
+            terms.append(line)
+        elif work.study.significant(force, "force"):
+            terms.append(measured(force, "kN"))
+    return summed(terms)
+
+
+def _resultant(work: Work, name: str, case: Case) -> float:
+    return sum(load.total for load in work.given.loads[case] if load.source == name)

@@ -5,11 +5,12 @@ from __future__ import annotations
 import math
 
 from calcpack.figures import panel_drainage
+from calcpack.figures.panel import DividedPanelData, ShareData
 from calcpack.framing.types import EdgeShare, PanelTransfer
 from calcpack.job.model import Case
 from calcpack.notebook.study import CASE_WORDS
-from calcpack.notebook.work import LETTER, SELF_WEIGHT, Work
-from calcpack.sheet import Expression, Line, measured, total
+from calcpack.notebook.work import LETTER, SELF_WEIGHT, Work, summed
+from calcpack.sheet import Expression, Line, measured
 from calcpack.statics import LineLoad
 
 CLOSE = 1e-9
@@ -42,7 +43,7 @@ def _panel(work: Work, transfer: PanelTransfer) -> None:
         _pressure(work, transfer)
         depth = _depth(work, transfer, share)
         column()
-        figure = panel_drainage(transfer, work.given.mark, work.study.system, width_mm=52)
+        figure = panel_drainage(_drawn(transfer), work.study.system, width_mm=54)
         sheet.figure(figure, f"How panel {panel.mark} drains.")
     if depth is None:
         _general(work, transfer, share)
@@ -54,6 +55,28 @@ def _panel(work: Work, transfer: PanelTransfer) -> None:
             "kN/m",
             says=f"{CASE_WORDS[case].capitalize()} from panel {panel.mark} on the beam, {_where(share)}",
         )
+
+
+def _drawn(transfer: PanelTransfer) -> DividedPanelData:
+    """The panel as its figure wants it."""
+    shares: list[ShareData] = [
+        {
+            "edge": share.edge,
+            "carrier": share.carrier,
+            "carrier_kind": share.carrier_kind,
+            "region": share.region,
+            "area": share.area,
+            "continuous": share.continuous,
+        }
+        for share in transfer.shares
+    ]
+    return {
+        "mark": transfer.panel.mark,
+        "corners": transfer.panel.corners,
+        "shares": shares,
+        "transfer": transfer.transfer,
+        "direction": transfer.direction,
+    }
 
 
 def _cases(work: Work, transfer: PanelTransfer) -> list[Case]:
@@ -71,7 +94,7 @@ def _pressure(work: Work, transfer: PanelTransfer) -> None:
     if terms:
         work.lines["pressure dead", panel.mark] = work.sheet.hence(
             f"g_{work.sources[panel.mark].index}",
-            total(terms) if len(terms) > 1 else terms[0],
+            summed(terms),
             "kPa",
             says=f"Dead load on panel {panel.mark}",
         )
@@ -96,12 +119,13 @@ def _depth(work: Work, transfer: PanelTransfer, share: EdgeShare) -> Line | None
         )
         expression = work.lines[key, panel.mark] / 2
     elif math.isclose(deepest, span, rel_tol=CLOSE):
-        words, expression = "Depth that drains to the beam: all of the slab", work.lines[key, panel.mark].as_expression()
+        words, expression = (
+            "Depth that drains to the beam: all of the slab",
+            work.lines[key, panel.mark].as_expression(),
+        )
     else:
         return None
-    work.lines["depth", panel.mark] = sheet.hence(
-        f"a_{index}", expression, "m", says=words, cite=PRACTICE
-    )
+    work.lines["depth", panel.mark] = sheet.hence(f"a_{index}", expression, "m", says=words, cite=PRACTICE)
     return work.lines["depth", panel.mark]
 
 
@@ -123,7 +147,9 @@ def _shape_words(share: EdgeShare) -> str | None:
     profile = [((at - start) / (end - start), depth / deepest) for at, depth in points]
     mirrored = [(1 - at, depth) for at, depth in reversed(profile)]
     if len(profile) > 4 or any(
-        abs(p - q) > CLOSE for one, other in zip(profile, mirrored, strict=True) for p, q in zip(one, other, strict=True)
+        abs(p - q) > CLOSE
+        for one, other in zip(profile, mirrored, strict=True)
+        for p, q in zip(one, other, strict=True)
     ):
         return None
     match [round(depth, 9) for _, depth in profile]:
@@ -161,7 +187,11 @@ def _general(work: Work, transfer: PanelTransfer, share: EdgeShare) -> None:
         for at, area in share.ends
     ]
     sheet.table(
-        [("from the beam's start", "right"), ("depth that drains", "right"), *((CASE_WORDS[c], "right") for c in cases)],
+        [
+            ("from the beam's start", "right"),
+            ("depth that drains", "right"),
+            *((CASE_WORDS[c], "right") for c in cases),
+        ],
         rows,
         caption=f"Panel {panel.mark} on the beam, straight from row to row; depths at right angles to the edge, "
         "from the dividing lines in the figure.",
@@ -171,12 +201,12 @@ def _general(work: Work, transfer: PanelTransfer, share: EdgeShare) -> None:
         for (at, first), (after, last) in zip(share.depth, share.depth[1:], strict=False)
         if after > at and (first or last)
     ]
-    parts: list[Expression] = [
+    parts: list[Expression | Line] = [
         _half_sum(first, last) * measured(after - at, "m") for at, after, first, last in pieces
     ] + [measured(area, "m^2") for _, area in share.ends]
     work.lines["area", panel.mark] = sheet.hence(
         f"A_{index}",
-        total(parts) if len(parts) > 1 else parts[0],
+        summed(parts),
         "m^2",
         says=f"Area of panel {panel.mark} that drains to the beam, piece by piece between the rows",
     )
@@ -205,12 +235,13 @@ def _self_weight(work: Work) -> None:
             flange = (work.lines["flange_width"] - work.lines["width"]) * work.lines["flange_depth"]
             area = area + flange
     work.lines["peak", "dead", SELF_WEIGHT] = work.sheet.hence(
-        "w_g0", area * work.lines["unit weight"], "kN/m", says="Self weight of the beam, no deduction for the slab"
+        "w_g0",
+        area * work.lines["unit weight"],
+        "kN/m",
+        says="Self weight of the beam, no deduction for the slab",
     )
 
 
 def profile_of(work: Work, case: Case, name: str) -> list[LineLoad]:
     """The line loads of one source in a case, from the beam's start."""
-    return [
-        load for load in work.given.loads[case] if isinstance(load, LineLoad) and load.source == name
-    ]
+    return [load for load in work.given.loads[case] if isinstance(load, LineLoad) and load.source == name]

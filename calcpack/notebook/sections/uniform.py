@@ -4,15 +4,15 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 
-from calcpack.equivalent import Shape, responses
+from calcpack.equivalent import responses
 from calcpack.equivalent.derive import derivation
 from calcpack.job.model import Case, EquivalentKind
 from calcpack.notebook.sections.opening import CARRIED_FORWARD
+from calcpack.notebook.sections.resultants import before, resultant, resultant_term
 from calcpack.notebook.study import CASE_WORDS, FIELD, SpanLoads
-from calcpack.notebook.work import LETTER, Work
+from calcpack.notebook.work import LETTER, Alike, Work, summed
 from calcpack.sheet import Expression, Line, formula, measured, number, total
 from calcpack.sheet.latex import symbol_latex
-from calcpack.statics import LineLoad, PointLoad
 
 # Equivalent uniform load over the peak of a trapezoid that rises over m/2 of the span at each end.
 FACTOR: dict[EquivalentKind, Callable[[Line], Expression]] = {
@@ -63,12 +63,16 @@ def state_equivalents(work: Work) -> None:
         _span(work, span, criterion)
 
 
-def _kinds(work: Work, spans: Sequence[SpanLoads]) -> list[str]:
+def _kinds(work: Work, spans: Sequence[SpanLoads]) -> list[ShapeKind]:
     """The shapes to derive: triangle and trapezoid where they occur, the general one where needed."""
-    found = {
-        shape.kind for span in spans for case in work.study.cases for shape in work.shapes(span, case).values()
-    }
-    return [kind for kind in ("triangle", "trapezoid", "general") if kind in found]
+    found: set[ShapeKind] = set()
+    for span in spans:
+        for case in work.study.cases:
+            if work.symmetric(span, case):
+                found.update(shape.kind for shape in work.shapes(span, case).values())
+            else:
+                found.add("general")
+    return [kind for kind in ("triangle", "trapezoid", "general") if kind in found]  # type: ignore[misc]
 
 
 def _span(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
@@ -88,43 +92,44 @@ def _span(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
 def _symmetric(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKind, several: bool) -> None:
     """All responses peak at midspan or at the ends alike, so the sources' equivalents add up."""
     terms: list[Expression | Line] = []
-    for name, shape in work.shapes(span, case).items():
-        peak = work.lines["peak", case, name]
-        if shape.kind == "uniform":
-            terms.append(peak)
-        elif shape.kind == "triangle":
+    for group in work.alike(span, case):
+        if group.shape.kind == "uniform":
+            terms.append(group.peak)
+        elif group.shape.kind == "triangle":
             top, bottom = TRIANGLE[criterion]
-            terms.append(number(top) / bottom * peak)
+            terms.append(number(top) / bottom * group.peak)
         else:
-            terms.append(_factor(work, span, name, shape, criterion) * peak)
+            terms.append(_factor(work, span, group, criterion) * group.peak)
     work.lines["equivalent", case, span.number] = work.sheet.hence(
         _symbol(case, span.number if several else None),
-        total(terms) if len(terms) > 1 else terms[0],
+        summed(terms),
         "kN/m",
         says=f"Equivalent uniform {CASE_WORDS[case]}, {CARRIED_FORWARD[criterion]}",
         cite="statics, derived above",
     )
 
 
-def _factor(work: Work, span: SpanLoads, name: str, shape: Shape, criterion: EquivalentKind) -> Line:
+def _factor(work: Work, span: SpanLoads, group: Alike, criterion: EquivalentKind) -> Line:
     """The factor of a trapezoid, a line of its own shared by the load cases."""
-    key = ("factor", name, span.number)
+    name, side_ratio = group.names[0], group.shape.side_ratio
+    key = ("factor", round(side_ratio, 9), span.number)
     if key in work.lines:
         return work.lines[key]
     index = work.sources[name].index
     ratio = work.lines.get(("ratio", name))
-    if ratio is None or abs(ratio.value - shape.side_ratio) > 1e-9:
+    words = " and ".join(work.sources[each].words for each in group.names)
+    if ratio is None or abs(ratio.value - side_ratio) > 1e-9:
         ratio = work.sheet.hence(
             f"m_{index}",
             2 * work.lines["depth", name] / work.lines["span", span.number - 1],
             "1",
-            says=f"Twice the length over which the load from {work.sources[name].words} rises, over the span",
+            says=f"Twice the length over which the load from {words} rises, over the span",
         )
     work.lines[key] = work.sheet.hence(
         f"kappa_{index}",
         FACTOR[criterion](ratio),
         "1",
-        says=f"Equivalent over peak for the trapezoid from {work.sources[name].words}",
+        says=f"Equivalent over peak for the trapezoid from {words}",
         cite="statics, derived above",
     )
     return work.lines[key]
@@ -142,27 +147,32 @@ def _any_shape(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKin
     found = responses(span.length, span.loads[case])
     rows = []
     for name, shape in work.shapes(span, case).items():
-        force, moment = _resultant(shape)
+        force, moment = resultant(shape)
         rows.append([work.sources[name].words, work.show(force, "kN"), work.show(moment / force, "m")])
     sheet.table(
         [("source", "left"), ("resultant", "right"), ("from the left support", "right")],
         rows,
         caption=f"{CASE_WORDS[case].capitalize()} on the span, source by source.",
     )
-    parts = [_resultant(shape) for shape in work.shapes(span, case).values()]
+    terms = {name: resultant_term(work, span, case, name) for name in work.shapes(span, case)}
     weight = sheet.hence(
-        f"W_{mark}",
-        total(measured(force, "kN") for force, _ in parts),
-        "kN",
-        says=f"Sum of the resultants, {CASE_WORDS[case]}",
+        f"W_{mark}", summed(list(terms.values())), "kN", says=f"Sum of the resultants, {CASE_WORDS[case]}"
     )
+    turning = []
+    for name, shape in work.shapes(span, case).items():
+        force, moment = resultant(shape)
+        turning.append(terms[name] * measured(moment / force, "m"))
     right = sheet.hence(
         f"R_b,{mark}",
-        total(measured(force, "kN") * measured(moment / force, "m") for force, moment in parts) / length,
+        summed(turning) / length,
         "kN",
         says="Reaction at the right support, moments about the left one",
+        cite="equilibrium",
     )
-    left = sheet.hence(f"R_a,{mark}", weight - right, "kN", says="Reaction at the left support")
+    left = sheet.hence(
+        f"R_a,{mark}", weight - right, "kN", says="Reaction at the left support", cite="equilibrium"
+    )
+    work.lines["left", case, span.number], work.lines["right", case, span.number] = left, right
     symbol = _symbol(case, span.number if several else None)
     says = f"Equivalent uniform {CASE_WORDS[case]}, {CARRIED_FORWARD[criterion]}"
     key = ("equivalent", case, span.number)
@@ -181,10 +191,9 @@ def _any_shape(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKin
             "kN*m^3",
             says="Largest deflection of the span times EI, from the exact deflection line",
             origin=f"analysis, span {span.number} alone",
+            given=False,
         )
-        work.lines[key] = sheet.hence(
-            symbol, 384 * sag / (5 * length**4), "kN/m", says=says
-        )
+        work.lines[key] = sheet.hence(symbol, 384 * sag / (5 * length**4), "kN/m", says=says)
     else:
         end = sheet.take(
             f"M_f,{mark}",
@@ -192,6 +201,7 @@ def _any_shape(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKin
             "kN*m",
             says="Larger end moment with both ends fixed, from the exact moment line",
             origin=f"analysis, span {span.number} alone",
+            given=False,
         )
         work.lines[key] = sheet.hence(symbol, 12 * end / length**2, "kN/m", says=says)
 
@@ -205,42 +215,20 @@ def _moment(work: Work, span: SpanLoads, case: Case, mark: str, left: Line, at: 
         "m",
         says="Where the shear changes sign, from the left support",
         origin=f"analysis, span {span.number} alone",
+        given=False,
     )
-    before = [part for part in (_resultant(_cut(shape, at)) for shape in work.shapes(span, case).values()) if part[0]]
-    arms = [measured(force, "kN") * measured(at - moment / force, "m") for force, moment in before]
+    ahead = [
+        part
+        for part in (resultant(before(shape, at)) for shape in work.shapes(span, case).values())
+        if part[0]
+    ]
+    arms = [measured(force, "kN") * measured(at - moment / force, "m") for force, moment in ahead]
     return sheet.hence(
         f"M_0,{mark}",
         left * place - total(arms) if arms else left * place,
         "kN*m",
         says="Largest moment there: the reaction's moment less that of the loads before it, each at its arm",
     )
-
-
-def _resultant(shape: Shape) -> tuple[float, float]:
-    """Force [kN], and moment about the left support [kNm], of a shape."""
-    force = sum(load.total for load in (*shape.lines, *shape.points))
-    moment = sum(load.total * _centre(load) for load in shape.lines) + sum(
-        point.force * point.at for point in shape.points
-    )
-    return force, moment
-
-
-def _centre(load: LineLoad) -> float:
-    length, both = load.end - load.start, load.first + load.last
-    return load.start + length * (load.first + 2 * load.last) / (3 * both) if both else load.start
-
-
-def _cut(shape: Shape, at: float) -> Shape:
-    """The part of a shape that stands before a place."""
-    lines = []
-    for load in shape.lines:
-        if load.end <= at:
-            lines.append(load)
-        elif load.start < at:
-            value = load.first + (load.last - load.first) * (at - load.start) / (load.end - load.start)
-            lines.append(LineLoad(load.start, at, load.first, value, load.source))
-    points = tuple(PointLoad(p.at, p.force, p.source) for p in shape.points if p.at < at - 1e-9 * shape.span)
-    return Shape("general", shape.span, shape.peak, 0.0, tuple(lines), points)
 
 
 def _comparison(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:

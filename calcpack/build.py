@@ -1,0 +1,306 @@
+"""A job built into its folder: sheets, schedules, pack, all or nothing."""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Callable, Mapping, Sequence
+from dataclasses import dataclass, replace
+from pathlib import Path
+from typing import Any
+
+from calcpack.actions import combination_set
+from calcpack.export.blocks import Figure as FigureBlock
+from calcpack.export.content import SheetContent, notebook_bytes, sheet_content
+from calcpack.export.mathematics import Mathematics
+from calcpack.export.pack import Pack, PackedFile, Section, build_pack, index_html, paginate
+from calcpack.export.page_html import sheet_html
+from calcpack.export.pdf import sheet_pdf
+from calcpack.export.tables import schedule_csv
+from calcpack.export.typesetting import Attached
+from calcpack.figures import Figure, key_plan
+from calcpack.files import OutputFolder
+from calcpack.framing import Frame, frame
+from calcpack.job import read_job
+from calcpack.job.errors import CalcpackError, Problem, nearest
+from calcpack.job.model import Job
+from calcpack.notebook.basis import basis_sections, input_sections
+from calcpack.notebook.derivations import appendix_parameters
+from calcpack.notebook.execute import execute
+from calcpack.notebook.fill import FilledNotebook, fill, sheet_metadata
+from calcpack.notebook.parameters import PROGRAM, BeamInput, beam_input, plan_of, to_text
+from calcpack.notebook.templates import Template, find_template
+
+APPENDIX = "appendix"
+APPENDIX_TEMPLATE = "derivations"
+ALL_FORMATS = frozenset({"pdf", "html", "notebook"})
+XLSX = "application/vnd.openxmlformats-officedocument.spreadsheetml.sheet"
+Follow = Callable[[str, int, int], None]  # stage, steps done, steps in all
+
+
+@dataclass(frozen=True)
+class BuiltJob:
+    """What a build has left in its folder.
+
+    Parameters
+    ----------
+    frame : Frame
+    folder : Path
+    records : tuple of mapping
+        Of the sheets built, in order.
+    files : mapping
+        Mark -> the sheet's main file, seen from the folder.
+    kept : tuple of str
+        Files that somebody had changed, under their new names.
+    """
+
+    frame: Frame
+    folder: Path
+    records: tuple[Mapping[str, Any], ...]
+    files: Mapping[str, str]
+    kept: tuple[str, ...]
+
+
+def build_job(
+    job_file: Path,
+    out: Path,
+    *,
+    only: Sequence[str] = (),
+    formats: frozenset[str] = ALL_FORMATS,
+    follow: Follow = lambda _stage, _done, _of: None,
+) -> BuiltJob:
+    """Make a job's sheets and bind its pack.
+
+    Parameters
+    ----------
+    job_file, out : Path
+    only : sequence of str
+        Marks of the beams wanted; none for all.
+    formats : set of "pdf", "html", "notebook"
+        The record of a sheet is always written; the pack where "pdf" is wanted.
+    follow : callable
+        Told of the progress.
+
+    Returns
+    -------
+    BuiltJob
+
+    Raises
+    ------
+    CalcpackError
+        Something in the input is wrong, or cannot be written; the folder is as it was.
+    """
+    folder = OutputFolder(out)
+    folder.check()
+    framed = frame(read_job(job_file))
+    inputs = _inputs(framed, only)
+    notebooks = [
+        fill(template, given.mark, to_text(given), sheet_metadata(framed.job, given.mark, template, PROGRAM))
+        for given, template in inputs
+    ]
+    notebooks.append(_appendix(framed, [given for given, _ in inputs]))
+    contents = _executed(notebooks, follow)
+    pack = _pack(framed, inputs, contents)
+    files = _files(framed, pack, {each.mark: node for each, node in contents}, formats, follow)
+    kept = folder.write(files, keep=bool(only))
+    main = next((ending for name, ending in _ENDINGS if name in formats), "json")
+    return BuiltJob(
+        framed,
+        out,
+        tuple(content.record for content in pack.sheets if content.record is not None),
+        {content.mark: f"sheets/{content.mark}.{main}" for content in pack.sheets},
+        kept,
+    )
+
+
+_ENDINGS = (("pdf", "pdf"), ("html", "html"), ("notebook", "ipynb"))
+
+
+def _inputs(framed: Frame, only: Sequence[str]) -> list[tuple[BeamInput, Template]]:
+    """Each wanted beam's input with its template; all that is wrong with them is said at once."""
+    job, problems = framed.job, []
+    for mark in only:
+        if mark not in framed.beams:
+            problems.append(Problem(f"no beam '{mark}' to build", nearest(mark, framed.beams), file=job.file))
+    found = []
+    for mark, beam in framed.beams.items():
+        if only and mark not in only:
+            continue
+        try:
+            template = find_template(beam.beam.template, Path(job.folder))
+            _check_needs(template, framed, mark)
+            design = template.settle(beam.beam.design, mark)
+            found.append((beam_input(framed, mark, design, template.stamp), template))
+        except CalcpackError as error:
+            problems += [_placed(job, mark, problem) for problem in error.problems]
+    if problems:
+        raise CalcpackError(*dict.fromkeys(problems))
+    return found
+
+
+def _check_needs(template: Template, framed: Frame, mark: str) -> None:
+    beam = framed.beams[mark].beam
+    for need in template.settings.needs:
+        if getattr(beam, need) is None:
+            raise CalcpackError(
+                f"the template '{template.settings.name}' needs a {need}",
+                remedy=f"give the beam a {need}",
+                key=need,
+            )
+
+
+def _placed(job: Job, mark: str, problem: Problem) -> Problem:
+    """The problem with its place in the job's files, as near as it is known."""
+    key = problem.key or ""
+    if key.startswith("basis."):
+        line = job.lines.get(key.replace(".", " "))
+        return problem.at(file=job.file, line=line)
+    place = job_place(job, mark)
+    line = job.lines.get(f"beam {mark} {key}", place[1])
+    return problem.at(file=place[0], line=line, mark=f"beam {mark}")
+
+
+def job_place(job: Job, mark: str) -> tuple[str, int | None]:
+    """File and line where a beam stands."""
+    beam = next(beam for beam in job.beams if beam.mark == mark)
+    return beam.place.file, beam.place.line
+
+
+def _appendix(framed: Frame, inputs: Sequence[BeamInput]) -> FilledNotebook:
+    template = find_template(APPENDIX_TEMPLATE, Path(framed.job.folder))
+    return fill(
+        template,
+        APPENDIX,
+        appendix_parameters(framed, inputs),
+        sheet_metadata(framed.job, APPENDIX, template, PROGRAM),
+    )
+
+
+def _executed(notebooks: Sequence[FilledNotebook], follow: Follow) -> list[tuple[SheetContent, Any]]:
+    done = 0
+
+    def step(_mark: str) -> None:
+        nonlocal done
+        done += 1
+        follow("working out the sheets", done, len(notebooks))
+
+    follow("working out the sheets", 0, len(notebooks))
+    return [(sheet_content(each.node), each.node) for each in execute(notebooks, done=step)]
+
+
+def _pack(
+    framed: Frame,
+    inputs: Sequence[tuple[BeamInput, Template]],
+    contents: Sequence[tuple[SheetContent, Any]],
+) -> Pack:
+    job = framed.job
+    actions = combination_set(
+        job.basis.actions, framed.cases or ("dead",), occupancy=job.basis.occupancy, own=job.combinations
+    )
+    notes = dict.fromkeys(
+        note
+        for _, template in inputs
+        for note in (
+            *template.settings.assumptions,
+            f"{template.settings.title}s do not cover: {', '.join(template.settings.not_covered)}.",
+        )
+    )
+    plan = key_plan(plan_of(framed), None, job.job.units, width_mm=165)
+    return Pack(
+        header=job.job,
+        submission=job.submission,
+        program=PROGRAM,
+        input_digest=job.digest,
+        sheets=tuple(content for content, _ in contents[:-1]),
+        supports=framed.supports,
+        key_plan=_figure(plan, "Framing plan with all beams."),
+        basis=tuple(
+            Section.of(title, blocks)
+            for title, blocks in (*basis_sections(framed, actions, notes), *input_sections(framed))
+        ),
+        appendices=(contents[-1][0],),
+        attached=_inputs_attached(job),
+    )
+
+
+def _figure(drawing: Figure, caption: str) -> FigureBlock:
+    return FigureBlock.model_validate(
+        {
+            "type": "figure",
+            "svg": drawing.svg,
+            "alt": drawing.alt,
+            "caption": caption,
+            "width_mm": drawing.width_mm,
+        }
+    )
+
+
+def _inputs_attached(job: Job) -> tuple[Attached, ...]:
+    """The job file and its tables, for the pack to carry inside."""
+    kinds = {".toml": "application/toml", ".csv": "text/csv", ".xlsx": XLSX}
+    return tuple(
+        Attached(
+            name, (Path(job.folder) / name).read_bytes(), kinds[Path(name).suffix.lower()], "Input of the job"
+        )
+        for name in job.files
+    )
+
+
+def _files(
+    framed: Frame, pack: Pack, nodes: Mapping[str, Any], formats: frozenset[str], follow: Follow
+) -> dict[str, bytes]:
+    """Every file of the folder by name; sheets are numbered before they are written."""
+    mathematics = Mathematics()
+    names = [
+        f"sheets/{content.mark}.{ending}"
+        for content in pack.bound
+        for form, ending in (*((form, ending) for form, ending in _ENDINGS if form in formats), ("", "json"))
+        if form or content.record is not None
+    ]
+    listed = ["job.json", "schedule.csv", *names]
+    pack = replace(pack, files=tuple(PackedFile(name, "") for name in listed))
+    follow("setting the pages", 0, len(names))
+    numbers = paginate(pack, mathematics)
+    files: dict[str, bytes] = {}
+    contents = {}
+    for content in pack.bound:
+        node = nodes[content.mark]
+        node.metadata["calcpack"]["sheets"] = numbers[content.mark].model_dump()
+        content = replace(content.numbered(numbers[content.mark]), notebook=notebook_bytes(node))
+        contents[content.mark] = content
+        stem = f"sheets/{content.mark}"
+        if "notebook" in formats:
+            files[f"{stem}.ipynb"] = content.notebook
+        if "html" in formats:
+            files[f"{stem}.html"] = sheet_html(content, mathematics).encode()
+        if "pdf" in formats:
+            files[f"{stem}.pdf"] = sheet_pdf(content, mathematics)
+        if content.record is not None:
+            files[f"{stem}.json"] = content.record_bytes
+        follow("setting the pages", len(files), len(names))
+    sheets = tuple(contents[content.mark] for content in pack.sheets)
+    first_pages = {mark: each.first for mark, each in numbers.items()}
+    files["schedule.csv"] = schedule_csv(sheets, first_pages).encode()
+    files["job.json"] = _job_json(framed)
+    pack = replace(
+        pack,
+        sheets=sheets,
+        appendices=tuple(contents[content.mark] for content in pack.appendices),
+        files=tuple(PackedFile.of(name, files[name]) for name in listed),
+    )
+    if "html" in formats:
+        files["index.html"] = index_html(pack, mathematics).encode()
+    if "pdf" in formats:
+        files["pack.pdf"] = build_pack(pack, mathematics).pdf
+    return files
+
+
+def _job_json(framed: Frame) -> bytes:
+    data = {
+        "format": 1,
+        "job": framed.job.job.model_dump(mode="json"),
+        "supports": framed.supports,
+        "applied": framed.applied,
+        "beams": list(framed.beams),
+        "order": list(framed.order),
+    }
+    return (json.dumps(data, ensure_ascii=False, indent=1) + "\n").encode()
