@@ -1,1 +1,18 @@
-"""."""
+"""Figures of a calculation sheet: plain SVG with a spoken alternative, the same bytes every time."""
+
+from calcpack.figures.figure import Figure
+from calcpack.figures.free_body import equivalents_figure, free_body
+from calcpack.figures.loads import load_figure
+from calcpack.figures.panel import panel_drainage
+from calcpack.figures.plan import key_plan
+from calcpack.figures.response import response_figure
+
+__all__ = [
+    "Figure",
+    "equivalents_figure",
+    "free_body",
+    "key_plan",
+    "load_figure",
+    "panel_drainage",
+    "response_figure",
+]

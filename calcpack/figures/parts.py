@@ -151,7 +151,7 @@ def arrow(
 
 
 def support(drawing: Drawing, x: float, y: float, kind: str) -> Box:
-    """What stands under a beam at (x, y): a triangle on a column's head, a wall or a crossing beam.
+    """What stands under a beam at (x, y): a triangle, on a column's head, a wall or a crossing beam if said.
 
     Returns
     -------
@@ -169,7 +169,7 @@ def support(drawing: Drawing, x: float, y: float, kind: str) -> Box:
         shape = [(x - 1.3, low), (x + 1.3, low), (x + 1.3, y - height), (x - 1.3, y - height)]
         drawing.outline(shape, Stroke(THIN))
         drawing.hatch(shape, 45.0, 0.7, Stroke(HAIR, INK))
-    else:  # a beam, seen from its end
+    elif kind == "beam":  # seen from its end
         shape = [(x - 0.5, low), (x + 0.5, low), (x + 0.5, y - height), (x - 0.5, y - height)]
         drawing.area(shape, INK)
     return Box(x, (y + low) / 2, 2 * half, y - low)
