@@ -87,7 +87,7 @@ def _plain(value: Any, where: str) -> Any:
         if not math.isfinite(value):
             raise CalcpackError(f"{where} is no finite number")
         return value + 0.0
-    if isinstance(value, Sequence):
+    if isinstance(value, Sequence) and not isinstance(value, bytes | bytearray):
         return [_plain(each, f"{where}[{place}]") for place, each in enumerate(value)]
     raise CalcpackError(f"{where} is not plain data: {value!r:.60}")
 
@@ -110,7 +110,7 @@ class _Shape(BaseModel):
     model_config = ConfigDict(extra="forbid", strict=True)
 
 
-Finite = Annotated[float, Field(allow_inf_nan=False, strict=False)]
+Finite = Annotated[float, Field(allow_inf_nan=False)]
 Text = Annotated[str, Field(max_length=20_000)]
 
 
