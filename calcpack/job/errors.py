@@ -6,12 +6,14 @@ import difflib
 import re
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
-from itertools import takewhile
+from itertools import islice, takewhile
 
 # What could steer a terminal or turn a line round: control characters but tab and line feed, and the marks of
 # writing direction.
 _CONTROL = re.compile("[\x00-\x08\x0b-\x1f\x7f-\x9f\u202a-\u202e\u2066-\u2069\ud800-\udfff]")
 MANY = 12  # choices a message lists in full
+MOST = 2000  # choices looked at for the nearest, and the longest word there is one for
+LONGEST = 80
 
 
 @dataclass(frozen=True)
@@ -85,7 +87,9 @@ def closest(word: str, words: Iterable[str]) -> str | None:
     ('kN', None)
     """
     folded: dict[str, str] = {}
-    for choice in words:
+    if len(word) > LONGEST:
+        return None
+    for choice in islice(words, MOST):
         folded.setdefault(choice.casefold(), choice)
     close = difflib.get_close_matches(word.casefold(), folded, n=5, cutoff=0.55)
     return folded[max(close, key=lambda each: _likeness(word.casefold(), each))] if close else None

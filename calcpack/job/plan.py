@@ -96,10 +96,18 @@ class Grid:
         """What a mistyped name could mean: its parts swapped, or points that share a line with it."""
         if not self.points:
             return "give [grid] with x and y first"
-        if turned := [x + y for x in self.x for y in self.y if (y + x).casefold() == name.casefold()]:
+        word = name.casefold()
+        if turned := [
+            x + y
+            for y in self.y
+            if word.startswith(y.casefold())
+            for x in self.x
+            if word == f"{y}{x}".casefold()
+        ]:
             return f"did you mean '{turned[0]}'?"
-        sharing = [x + y for x in self.x for y in self.y if name.startswith(x) or name.endswith(y)]
-        return nearest(name, sharing or list(self.points)[:MOST_LINES])
+        level = [x + y for y in self.y if name.endswith(y) for x in self.x]
+        upright = [x + y for x in self.x if name.startswith(x) for y in self.y]
+        return nearest(name, upright + level or self.points)
 
 
 def distance(a: Point, b: Point) -> float:

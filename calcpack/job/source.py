@@ -19,8 +19,10 @@ from calcpack.job.errors import CalcpackError
 if TYPE_CHECKING:
     from tree_sitter import Node
 
-LARGEST = 4_000_000  # bytes of a job file or a table
+LARGEST = 2_000_000  # bytes of a job file or a table
 DEEPEST = 24  # arrays and tables one in the other
+
+MOST_DOTS = 100  # in a line
 
 KeyPath = tuple[str | int, ...]
 
@@ -110,6 +112,10 @@ def parse_toml(file: FileBytes) -> Document:
     ({'title': 'Loft'}, 3)
     """
     text = file.text()
+    for number, line in enumerate(text.splitlines() if text.count(".") > MOST_DOTS else (), 1):
+        if line.count(".") > MOST_DOTS:  # the parser takes quadratic time over the parts of a key
+            message = f"there are more than {MOST_DOTS} dots in this line"
+            raise CalcpackError(message, remedy="break the line", file=file.name, line=number)
     try:
         data = tomllib.loads(text)
     except RecursionError:
@@ -117,8 +123,9 @@ def parse_toml(file: FileBytes) -> Document:
     except ValueError as error:  # TOMLDecodeError, and numbers of thousands of digits
         raise _syntax_error(str(error), file.name, text) from None
     lines: dict[KeyPath, int] = {}
-    for path, line in _places(_tree(text.encode())):
-        lines.setdefault(path, line)
+    for path, place in _places(_tree(text.encode())):
+        if len(path) <= 2 * DEEPEST:
+            lines.setdefault(path, place)
     return Document(file.name, data, lines)
 
 
@@ -191,7 +198,7 @@ def _value(path: KeyPath, node: Node) -> Iterator[tuple[KeyPath, int]]:
 
 def _keys(node: Node) -> list[str]:
     """The parts of a key, unquoted."""
-    if node.type == "dotted_key":
+    if node.type == "dotted_key":  # what is left of the last dot, and what is right of it
         return [part for child in node.named_children for part in _keys(child)]
     text = (node.text or b"").decode()
     if node.type == "quoted_key":

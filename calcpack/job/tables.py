@@ -153,8 +153,9 @@ def _columns(titles: list[Any], kind: str, header: Entry, problems: Problems) ->
         columns.append(None)
         if not _filled(title):
             continue
-        match = _HEAD.fullmatch(str(title))
-        key, unit = (match["key"], match["unit"] or "") if match else (str(title).strip(), "")
+        text = str(title).strip()
+        match = _HEAD.fullmatch(text) if len(text) < 200 else None
+        key, unit = (match["key"], match["unit"] or "") if match else (text[:40], "")
         free = kind == "beam" and key.startswith("design.") and all(key.split("."))
         holds = known.get(key, "anything")
         if key not in known and not free:

@@ -98,8 +98,8 @@ def test_files_that_are_none(tmp_path: Path) -> None:
     assert refused(tmp_path) == f"{tmp_path}: this is a folder; name a file in it"
     latin = SOUND.replace("loft", "Dachgeschoß").encode("latin-1")
     assert refused(write(tmp_path, latin)) == "job.toml:4: the file is not UTF-8 text; save it as UTF-8"
-    huge = write(tmp_path, "#" * 4_100_000)
-    assert refused(huge) == f"{huge}: the file has 4.1 MB, at most 4 MB are read; split the job into several"
+    huge = write(tmp_path, "#" * 2_100_000)
+    assert refused(huge) == f"{huge}: the file has 2.1 MB, at most 2 MB are read; split the job into several"
     assert refused(write(tmp_path, "a = " + "[" * 9999)) == "job.toml: arrays or tables are nested too deeply"
     assert (
         refused(write(tmp_path, "a = " + "9" * 9999))
