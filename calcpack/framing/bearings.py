@@ -266,7 +266,7 @@ def solving_order(
         order.append(mark)
         for carrier in carriers[mark]:
             waiting[carrier] -= 1
-            if waiting[carrier] == 0 and carrier not in order:
+            if waiting[carrier] == 0:
                 heapq.heappush(ready, plan.rank[carrier])
     return tuple(order), problems
 

@@ -203,9 +203,11 @@ def test_a_reaction_of_nothing_is_no_uplift(size):
 
 def test_a_load_straight_over_a_support_goes_into_it():
     loads = [{"case": "live", "point": 9.0, "at": 6.0}]
-    frame = Floor().beam("B", (0, 0), (6, 0), loads=loads).columns_at((0, 0), (6, 0)).frame()
-    assert frame.supports["C1"]["live"] == pytest.approx(0.0)
-    assert frame.supports["C2"]["live"] == 9.0
+    floor = Floor().beam("G", (0, -2), (0, 2)).columns_at((6, 0), (0, -2), (0, 2))
+    frame = floor.beam("B", (0, 0), (6, 0), loads=loads).frame()
+    assert frame.supports["C1"]["live"] == 9.0
+    assert frame.beams["G"].loads["live"] == ()  # no load of nothing
+    assert frame.beams["G"].placements == ()
 
 
 def test_walls_get_what_the_slab_puts_on_them_directly():

@@ -9,6 +9,7 @@ from plans import Floor, cloud, depth_area, share, turned
 
 from calcpack.framing import PanelTransfer
 from calcpack.framing.plane import area
+from calcpack.statics import LineLoad
 
 RECTANGLE = [(0.0, 0.0), (9.0, 0.0), (9.0, 4.0), (0.0, 4.0)]
 
@@ -82,6 +83,14 @@ def test_strips_of_a_triangle_run_out_to_nothing():
     assert share(panel, "W2").area == pytest.approx(2.0)
 
 
+def test_strips_that_run_out_to_nothing_end_at_zero_however_the_panel_stands():
+    for degrees in range(5, 90, 7):
+        move = turned(math.radians(degrees), (31.7, -12.9))
+        panel = walled([move(corner) for corner in RECTANGLE[:3]], transfer="one-way y")
+        ends = [each.depth[end][1] for each in panel.shares for end in (0, -1)]
+        assert ends.count(0.0) == 4  # nothing, not next to nothing
+
+
 def test_strips_with_one_free_end_give_all_to_the_other():
     """The strip's length jumps where its far end passes from a free to a supported edge."""
     corners = [(0.0, 0.0), (6.0, 0.0), (6.0, 4.0), (3.0, 4.0), (0.0, 3.0)]
@@ -91,6 +100,13 @@ def test_strips_with_one_free_end_give_all_to_the_other():
     assert share(panel, "W3").area == pytest.approx(10.5 / 2)
     assert share(panel, "W0").area == pytest.approx(10.5 / 2 + 12.0)
     assert area(share(panel, "W0").region) == pytest.approx(10.5 / 2 + 12.0)
+
+
+def test_where_the_depth_jumps_one_load_ends_and_the_next_begins():
+    corners = [(0.0, 0.0), (6.0, 0.0), (6.0, 4.0), (3.0, 4.0), (0.0, 3.0)]
+    floor = Floor().panel("P", *corners, live=2.0, transfer="one-way y").walls_round(*corners, free=[0, 2])
+    beam = floor.beam("B", (0, 0), (6, 0)).columns_at((0, 0), (6, 0)).frame().beams["B"]
+    assert beam.loads["live"] == (LineLoad(0.0, 3.0, 3.0, 4.0, "P"), LineLoad(3.0, 6.0, 8.0, 8.0, "P"))
 
 
 def test_strips_off_a_discontinuous_edge_are_noted():
@@ -112,6 +128,7 @@ def test_cantilever_slab_puts_all_on_its_edge():
     (only,) = panel.shares
     assert only.carrier == "W2"
     assert only.depth == ((0.0, 1.5), (6.0, 1.5))
+    assert floor.frame().notes == ()
     assert floor.frame().supports["W2"]["live"] == pytest.approx(6.0 * 1.5 * 2.0 + 4.0 * (12 - 4) / 4)
 
 

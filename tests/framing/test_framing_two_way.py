@@ -87,6 +87,14 @@ def test_parallelogram_bisects_its_angles():
     assert all(each.ends == () for each in panel.shares)
 
 
+def test_triangles_start_from_nothing_however_the_panel_stands():
+    for degrees in range(0, 90, 7):
+        panel = walled([turned(math.radians(degrees), (31.7, -12.9))(corner) for corner in RECTANGLE])
+        assert {each.depth[end][1] for each in panel.shares for end in (0, -1)} == {0.0}
+        assert [len(each.depth) for each in panel.shares] == [4, 3, 4, 3]
+        assert all(each.ends == () for each in panel.shares)
+
+
 def test_three_supported_edges_of_a_rectangle():
     """The free edge's strip goes to the sides: their depth stays at its full value up to it."""
     panel = walled(RECTANGLE, free=[1])
