@@ -9,21 +9,16 @@ from calcpack.sheet.display import (
     shown_column,
     shown_number,
 )
-from calcpack.sheet.expression import (
+from calcpack.sheet.expression import Expression, Number, Operation, Quantity, Reference, expression
+from calcpack.sheet.line import Line
+from calcpack.sheet.operations import (
     PI,
-    Expression,
-    Number,
-    Operation,
-    Quantity,
-    Reference,
     absolute,
     atan,
     choose,
     cos,
     equal,
     exp,
-    expression,
-    from_json,
     greatest,
     in_unit,
     least,
@@ -35,13 +30,12 @@ from calcpack.sheet.expression import (
     sin,
     sqrt,
     tan,
-    to_json,
     total,
 )
-from calcpack.sheet.line import Line
 from calcpack.sheet.record import Source, check_record, read_record, write_json
 from calcpack.sheet.runs import emphasis, formula, strong
 from calcpack.sheet.symbols import indexed
+from calcpack.sheet.trees import from_json, to_json
 
 __all__ = [
     "PI",

@@ -2,14 +2,15 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
-from typing import Any, Literal, Protocol
+from typing import Any
 
 from pydantic import BaseModel
 
 from calcpack.job.errors import CalcpackError
+from calcpack.sheet import blocks as make
+from calcpack.sheet.blocks import Block, Column, Drawing, Role, finite
 from calcpack.sheet.display import System, display_unit, show
 from calcpack.sheet.evaluation import Measured, evaluate, evaluate_in, in_base
 from calcpack.sheet.expression import (
@@ -18,38 +19,16 @@ from calcpack.sheet.expression import (
     Term,
     check_unit,
     expression,
-    measured,
     references,
 )
 from calcpack.sheet.glossary import look_up
 from calcpack.sheet.latex import symbol_latex
 from calcpack.sheet.line import SATISFIED, Line, in_unit_of, line_block, side_unit
+from calcpack.sheet.operations import measured
 from calcpack.sheet.record import Cite, cited, make_record
-from calcpack.sheet.runs import Runs, check_math, check_runs
+from calcpack.sheet.runs import Runs, check_runs
 from calcpack.sheet.screen import blocks_bundle, put, record_bundle
 from calcpack.sheet.symbols import read_symbol
-
-Block = dict[str, Any]
-Role = Literal["body", "note", "caution", "unsafe"]
-Column = str | tuple[Runs, str] | Mapping[str, Any]
-_ROLES = ("body", "note", "caution", "unsafe")
-_ALIGNMENTS = ("left", "right", "center")
-
-
-class Drawing(Protocol):
-    """What a figure has to bring."""
-
-    @property
-    def svg(self) -> str:
-        """The drawing."""
-
-    @property
-    def alt(self) -> str:
-        """What it shows, in words."""
-
-    @property
-    def width_mm(self) -> float:
-        """Its width [mm]."""
 
 
 class Sheet:
@@ -97,30 +76,23 @@ class Sheet:
         """Begin the next section; lines are numbered within it."""
         self._sections += 1
         self._count = 0
-        self._add({"type": "heading", "level": 1, "number": str(self._sections), "text": check_runs(title)})
+        self._add(make.heading(1, str(self._sections), title))
 
     def subsection(self, title: Runs) -> None:
         """A heading within a section, without a number."""
-        self._add({"type": "heading", "level": 2, "number": "", "text": check_runs(title)})
+        self._add(make.heading(2, "", title))
 
     def text(self, runs: Runs, role: Role = "body") -> None:
         """A paragraph: body, a note, a caution, or what is unsafe."""
-        if role not in _ROLES:
-            raise CalcpackError(
-                f"a text's role cannot be {role!r:.40}", remedy=f"it is one of {', '.join(_ROLES)}"
-            )
-        self._add({"type": "text", "runs": check_runs(runs), "role": role})
+        self._add(make.paragraph(runs, role))
 
     def items(self, items: Iterable[Runs]) -> None:
         """A list of short paragraphs."""
-        self._add({"type": "list", "items": [check_runs(item) for item in items]})
+        self._add(make.listing(items))
 
     def facts(self, rows: Mapping[str, Runs] | Iterable[tuple[Runs, Runs]]) -> None:
         """Labels, each with its value."""
-        pairs: Iterable[tuple[Runs, Runs]] = rows.items() if isinstance(rows, Mapping) else rows
-        self._add(
-            {"type": "facts", "rows": [[check_runs(label), check_runs(value)] for label, value in pairs]}
-        )
+        self._add(make.facts(rows))
 
     # Lines
 
@@ -160,7 +132,7 @@ class Sheet:
         """
         no = self._next()
         with _at(no):
-            value = _finite(value)
+            value = finite(value)
             shown = self._shown(value, unit, us, given)
             symbol = self._symbol(symbol, word)
             line = Line(
@@ -241,68 +213,19 @@ class Sheet:
         >>> sheet.blocks[0]["columns"][1]
         {'head': 'force', 'align': 'right'}
         """
-        heads = [_column(column) for column in columns]
-        cells = [[check_runs(cell) for cell in row] for row in rows]
-        for place, row in enumerate(cells):
-            if len(row) != len(heads):
-                raise CalcpackError(
-                    f"row {place + 1} of the table has {len(row)} cells for {len(heads)} columns"
-                )
-        strong = sorted(set(strong_rows))
-        if strong and not 0 <= strong[0] <= strong[-1] < len(cells):
-            raise CalcpackError("a row to set in bold is not in the table")
-        self._add(
-            {
-                "type": "table",
-                "caption": check_runs(caption),
-                "columns": heads,
-                "rows": cells,
-                "strong_rows": strong,
-            }
-        )
+        self._add(make.table(columns, rows, caption, strong_rows))
 
     def ratios(self, rows: Iterable[Mapping[str, Any]]) -> None:
         """A schedule of checks with bars: ``says, demand, resistance, ratio, passes`` of each."""
-        self._add(
-            {
-                "type": "ratios",
-                "rows": [
-                    {
-                        "says": check_runs(row["says"]),
-                        "demand": str(row["demand"]),
-                        "resistance": str(row["resistance"]),
-                        "ratio": _finite(row["ratio"]),
-                        "passes": bool(row["passes"]),
-                    }
-                    for row in rows
-                ],
-            }
-        )
+        self._add(make.ratios(rows))
 
     def figure(self, drawing: Drawing, caption: Runs = "") -> None:
         """A drawing, with what it shows in words."""
-        if not drawing.svg.lstrip().startswith("<svg") or not drawing.alt.strip():
-            raise CalcpackError("a figure is one <svg> element, and words that say what it shows")
-        self._add(
-            {
-                "type": "figure",
-                "svg": drawing.svg,
-                "alt": drawing.alt,
-                "caption": check_runs(caption),
-                "width_mm": _finite(drawing.width_mm),
-            }
-        )
+        self._add(make.figure(drawing, caption))
 
     def derivation(self, steps: Iterable[Any]) -> None:
         """Steps that lead to a formula, each with ``says``, ``rows`` of LaTeX, and ``alt``, spoken."""
-        found = []
-        for step in steps:
-            read: Callable[[str], Any] = (
-                step.__getitem__ if isinstance(step, Mapping) else step.__getattribute__
-            )
-            rows = [check_math(row) for row in read("rows")]
-            found.append({"says": check_runs(read("says")), "rows": rows, "alt": str(read("alt"))})
-        self._add({"type": "derivation", "steps": found})
+        self._add(make.derivation(steps))
 
     @contextmanager
     def columns(self, widths: Sequence[float]) -> Iterator[Callable[[], None]]:
@@ -320,7 +243,7 @@ class Sheet:
         """
         if self._sink is not self.blocks:
             raise CalcpackError("columns cannot stand inside columns")
-        if not widths or any(_finite(width) <= 0 for width in widths):
+        if not widths or any(finite(width) <= 0 for width in widths):
             raise CalcpackError("each column has a width above 0")
         filled: list[list[Block]] = [[] for _ in widths]
         place = 0
@@ -359,8 +282,7 @@ class Sheet:
 
     def signoff(self, rows: Iterable[Mapping[str, Any]]) -> None:
         """Places to sign: ``role, name, licence, date`` of each."""
-        keys = ("role", "name", "licence", "date")
-        self._add({"type": "signoff", "rows": [{key: str(row.get(key, "")) for key in keys} for row in rows]})
+        self._add(make.signoff(rows))
 
     def record(
         self,
@@ -464,25 +386,3 @@ def _at(no: str) -> Iterator[None]:
         yield
     except CalcpackError as error:
         raise CalcpackError(*(problem.at(mark=f"line {no}") for problem in error.problems)) from None
-
-
-def _finite(value: Any) -> float:
-    try:
-        number = float(value) + 0.0
-    except (TypeError, ValueError):
-        raise CalcpackError(f"{value!r:.60} is not a number") from None
-    if not math.isfinite(number):
-        raise CalcpackError(f"{number} is not a finite number")
-    return number
-
-
-def _column(column: Column) -> Block:
-    if isinstance(column, str):
-        head, align = column, "left"
-    elif isinstance(column, Mapping):
-        head, align = column["head"], column.get("align", "left")
-    else:
-        head, align = column  # type: ignore[assignment]
-    if align not in _ALIGNMENTS:
-        raise CalcpackError(f"a column cannot be aligned {align!r:.40}", remedy="left, right or center")
-    return {"head": check_runs(head), "align": align}

@@ -1,20 +1,19 @@
 """Formulas as data: an unchangeable tree of numbers, symbols and named operations.
 
-Written with Python's operators on lines (``q * S / 2 * (3 - m**2) / 3``), stored as plain JSON, read
-back without evaluating anything. The tree keeps the order in which it was written.
+Written with Python's operators on lines: ``q * S / 2 * (3 - m**2) / 3``. The tree keeps the order in
+which it was written.
 """
 
 from __future__ import annotations
 
 import operator
 import re
-from collections.abc import Callable, Iterable, Iterator, Mapping
+from collections.abc import Iterator
 from dataclasses import dataclass, field
 from decimal import Decimal
-from typing import Any, NoReturn
+from typing import NoReturn
 
 from calcpack.job.errors import CalcpackError, nearest
-from calcpack.sheet.symbols import read_symbol
 from calcpack.sheet.unit_text import parts
 
 # Name of each operation and how many arguments it takes, at least and at most.
@@ -44,54 +43,54 @@ class Arithmetic:
         raise NotImplementedError
 
     def __add__(self, other: Term) -> Operation:
-        return _operation("add", self, other)
+        return operation("add", self, other)
 
     def __radd__(self, other: int | float | Decimal | str) -> Expression:
         if isinstance(other, int) and other == 0:  # the start of Python's own sum()
             return self.as_expression()
-        return _operation("add", other, self)
+        return operation("add", other, self)
 
     def __sub__(self, other: Term) -> Operation:
-        return _operation("sub", self, other)
+        return operation("sub", self, other)
 
     def __rsub__(self, other: Term) -> Operation:
-        return _operation("sub", other, self)
+        return operation("sub", other, self)
 
     def __mul__(self, other: Term) -> Operation:
-        return _operation("mul", self, other)
+        return operation("mul", self, other)
 
     def __rmul__(self, other: Term) -> Operation:
-        return _operation("mul", other, self)
+        return operation("mul", other, self)
 
     def __truediv__(self, other: Term) -> Operation:
-        return _operation("div", self, other)
+        return operation("div", self, other)
 
     def __rtruediv__(self, other: Term) -> Operation:
-        return _operation("div", other, self)
+        return operation("div", other, self)
 
     def __pow__(self, other: Term) -> Operation:
-        return _operation("pow", self, other)
+        return operation("pow", self, other)
 
     def __rpow__(self, other: Term) -> Operation:
-        return _operation("pow", other, self)
+        return operation("pow", other, self)
 
     def __neg__(self) -> Operation:
-        return _operation("neg", self)
+        return operation("neg", self)
 
     def __abs__(self) -> Operation:
-        return _operation("abs", self)
+        return operation("abs", self)
 
     def __le__(self, other: Term) -> Operation:
-        return _operation("le", self, other)
+        return operation("le", self, other)
 
     def __lt__(self, other: Term) -> Operation:
-        return _operation("lt", self, other)
+        return operation("lt", self, other)
 
     def __ge__(self, other: Term) -> Operation:
-        return _operation("ge", self, other)
+        return operation("ge", self, other)
 
     def __gt__(self, other: Term) -> Operation:
-        return _operation("gt", self, other)
+        return operation("gt", self, other)
 
     def __bool__(self) -> NoReturn:
         raise CalcpackError(
@@ -258,95 +257,9 @@ def expression(term: Term) -> Expression:
     return -Number(text) if decimal < 0 else Number(text)
 
 
-def _operation(name: str, *terms: Term, unit: str = "") -> Operation:
+def operation(name: str, *terms: Term, unit: str = "") -> Operation:
+    """An operation on anything formulas are written with."""
     return Operation(name, tuple(expression(term) for term in terms), unit)
-
-
-def number(value: Term) -> Expression:
-    """A bare number to write a formula with: ``number(1) / 3``."""
-    return expression(value)
-
-
-def quantity(value: Term, unit: str) -> Expression:
-    """A constant with its unit, printed as it is written: ``quantity(25, "kN/m^3")``."""
-    plain = expression(value)
-    if isinstance(plain, Operation) and isinstance(plain.args[0], Number):
-        return -Quantity(plain.args[0].text, unit)
-    if not isinstance(plain, Number):
-        raise CalcpackError("a constant is a number and a unit")
-    return Quantity(plain.text, unit)
-
-
-def measured(value: float, unit: str) -> Expression:
-    """A value worked out beside the sheet: kept in full, printed rounded as a line's value is.
-
-    Examples
-    --------
-    >>> measured(12.345678901234, "kN")
-    Quantity(text='12.345678901234', unit='kN')
-    """
-    decimal = Decimal(repr(float(value)))
-    if not decimal.is_finite():
-        raise CalcpackError(f"{value} cannot be a part of a formula")
-    node = Quantity(format(abs(decimal), "f"), unit)
-    return -node if decimal < 0 else node
-
-
-def _named(name: str) -> Callable[..., Operation]:
-    def build(*terms: Term) -> Operation:
-        return _operation(name, *terms)
-
-    build.__name__ = build.__qualname__ = name
-    build.__doc__ = f"The operation ``{name}`` on lines, formulas and numbers."
-    return build
-
-
-sqrt, sin, cos, tan, atan, log, exp = map(_named, ("sqrt", "sin", "cos", "tan", "atan", "log", "exp"))
-least, greatest, absolute, equal = _named("min"), _named("max"), _named("abs"), _named("eq")
-PI = Operation("pi", ())
-
-
-def total(*terms: Term | Iterable[Term]) -> Operation:
-    """The sum of any number of terms, or of any number of them in a list, in their order."""
-    flat: list[Term] = []
-    for term in terms:
-        if isinstance(term, Iterable) and not isinstance(term, str):
-            flat.extend(term)
-        else:
-            flat.append(term)
-    return _operation("sum", *flat)
-
-
-def choose(condition: Term, then: Term, otherwise: Term) -> Operation:
-    """One of two values, by a comparison.
-
-    Examples
-    --------
-    >>> f = Reference("f", "1.01")
-    >>> choose(f <= 28, 0.85, 0.65).name
-    'choose'
-    """
-    return _operation("choose", condition, then, otherwise)
-
-
-def number_in(term: Term, unit: str) -> Operation:
-    """How many of a unit a value is: a bare number, for formulas that hold in one unit only.
-
-    The formula prints as the standard does, without the unit; the line's words should name it.
-    """
-    return _operation("number_in", term, unit=unit)
-
-
-def in_unit(term: Term, unit: str) -> Operation:
-    """A bare number taken as so many of a unit: the way back from :func:`number_in`.
-
-    Examples
-    --------
-    >>> f = Reference("f'_c", "1.01")
-    >>> in_unit(0.17 * sqrt(number_in(f, "MPa")), "MPa").unit
-    'MPa'
-    """
-    return _operation("in_unit", term, unit=unit)
 
 
 def walk(root: Expression) -> Iterator[Expression]:
@@ -376,71 +289,3 @@ def references(root: Expression) -> dict[str, str]:
                 else f"give them one more index: {node.symbol},1 and {node.symbol},2",
             )
     return found
-
-
-def to_json(root: Expression) -> dict[str, Any]:
-    """The formula as plain data.
-
-    Examples
-    --------
-    >>> q, S = Reference("q", "2.01"), Reference("S", "1.02")
-    >>> to_json(q * S / 2)["args"]
-    [{'op': 'mul', 'args': [{'symbol': 'q'}, {'symbol': 'S'}]}, {'number': '2'}]
-    """
-    match root:
-        case Number():
-            return {"number": root.text}
-        case Quantity():
-            return {"quantity": root.text, "unit": root.unit}
-        case Reference():
-            return {"symbol": root.symbol}
-        case Operation():
-            tree: dict[str, Any] = {"op": root.name, "args": [to_json(each) for each in root.arguments]}
-            return tree | {"unit": root.unit} if root.unit else tree
-    raise TypeError(f"{root!r} is not an expression")
-
-
-_KEYS = ({"number"}, {"quantity", "unit"}, {"symbol"}, {"op", "args"}, {"op", "args", "unit"})
-
-
-def from_json(tree: object, inputs: Mapping[str, str]) -> Expression:
-    """Read a formula back; nothing in it is ever evaluated as code.
-
-    Parameters
-    ----------
-    tree : plain data
-        As :func:`to_json` writes it, from wherever.
-    inputs : mapping
-        Symbol -> number of the line that it stands for.
-
-    Raises
-    ------
-    CalcpackError
-        An unknown operation, a symbol without a line, or a tree deeper or larger than any formula.
-    """
-    budget = [LARGEST]
-
-    def read(node: object, depth: int) -> Expression:
-        budget[0] -= 1
-        if budget[0] < 0 or depth > DEEPEST:
-            raise CalcpackError("the formula is too large")
-        if not isinstance(node, dict) or set(node) not in _KEYS:
-            raise CalcpackError("a part of the formula is not one of number, quantity, symbol and operation")
-        if any(not isinstance(value, str) for key, value in node.items() if key != "args"):
-            raise CalcpackError("a part of the formula has something else where its text should be")
-        if "number" in node:
-            return Number(node["number"])
-        if "quantity" in node:
-            return Quantity(node["quantity"], node["unit"])
-        if "symbol" in node:
-            name = read_symbol(node["symbol"]).name
-            if name != node["symbol"] or name not in inputs:
-                raise CalcpackError(f"the formula's symbol '{node['symbol'][:40]}' has no line")
-            return Reference(name, inputs[name])
-        if not isinstance(node["args"], list):
-            raise CalcpackError("the arguments of an operation are a list")
-        return Operation(
-            node["op"], tuple(read(each, depth + 1) for each in node["args"]), node.get("unit", "")
-        )
-
-    return read(tree, 1)

@@ -17,12 +17,12 @@ from calcpack.sheet.expression import (
     Quantity,
     Reference,
     references,
-    to_json,
     walk,
 )
 from calcpack.sheet.latex import numbers_row, result, symbol_latex, symbols_row
 from calcpack.sheet.runs import Run, plain_text
 from calcpack.sheet.symbols import read_symbol
+from calcpack.sheet.trees import to_json
 from calcpack.sheet.unit_text import exponents
 from calcpack.sheet.words import spoken, spoken_value
 

@@ -12,9 +12,10 @@ from pydantic import BaseModel, ConfigDict, Field, ValidationError
 
 from calcpack.job.errors import CalcpackError, Problem
 from calcpack.sheet.display import parse_shown
-from calcpack.sheet.expression import COMPARISONS, Expression, Operation, from_json, references
+from calcpack.sheet.expression import COMPARISONS, Expression, Operation, references
 from calcpack.sheet.line import SATISFIED, Line, line_record
 from calcpack.sheet.symbols import read_symbol
+from calcpack.sheet.trees import from_json
 from calcpack.sheet.unit_text import exponents
 
 FORMAT = 1
