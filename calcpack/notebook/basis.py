@@ -76,9 +76,11 @@ def _codes(sheet: Sheet, frame: Frame, actions: CombinationSet, notes: Iterable[
         f"{basis.one_way_ratio:g} on; dividing lines at {_lines(basis.dividing_lines)}.",
         f"Equivalent uniform load carried forward: equal {basis.equivalent}, unless a beam chooses its own; "
         f"design with the {'actual' if basis.design_loads == 'actual' else 'equivalent'} loads.",
-        "Live and roof live load are placed span by span where they are worst; snow lies on all spans at once.",
+        "Live and roof live load are placed span by span where they are worst; snow lies on all spans.",
         f"Live-load reduction: {basis.live_load_reduction}.",
-        f"Self weight of the beams: {'full section, no deduction for the slab' if basis.beam_self_weight else 'left out'}.",
+        "Self weight of the beams: full section, no deduction for the slab."
+        if basis.beam_self_weight
+        else "Self weight of the beams: left out.",
         f"Checking: {frame.job.submission.check_level} (EN 1990, Annex B).",
         *notes,
     ]

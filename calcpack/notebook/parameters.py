@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+from itertools import pairwise
 from typing import Any
 
 from pydantic import ValidationError
@@ -20,7 +21,6 @@ from calcpack.framing.types import (
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Basis, Case, EquivalentKind, Frozen, Header, Material, Section, Submission
 from calcpack.statics import Load
-
 
 PROGRAM = f"calcpack {calcpack.__version__}"
 
@@ -71,7 +71,7 @@ class BeamInput(Frozen):
     def spans(self) -> tuple[tuple[float, float], ...]:
         """Where each span starts and ends [m], overhangs included."""
         ends = sorted({0.0, self.length, *(bearing.at for bearing in self.bearings)})
-        return tuple(zip(ends, ends[1:], strict=False))
+        return tuple(pairwise(ends))
 
     def between_supports(self, span: int) -> bool:
         """Whether a span has a support at both of its ends."""

@@ -29,7 +29,7 @@ class Parameter(Frozen):
     type: Literal["number", "integer", "text", "choice", "true or false", "table", "quantity"]
     of: str = ""  # for a quantity its kind: "length", "stress", ...
     choices: tuple[str, ...] = ()
-    keys: dict[str, Parameter] = {}  # for a table, its own keys
+    keys: dict[str, Parameter] = Field(default_factory=dict)  # for a table, its own keys
     minimum: float | None = None
     maximum: float | None = None
     default: Any = None

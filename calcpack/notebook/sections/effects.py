@@ -22,46 +22,42 @@ def state_combinations(work: Work) -> None:
     moment, shear = analysed.governing_moment, analysed.governing_shear
     supports = range(len(work.given.bearings))
     listed = supports if len(supports) <= 4 else ()
+    hogging = any(study.significant(each.moment_min.value, "moment") for each in analysed.results)
     rows, strong = [], []
     for number_, result in enumerate(analysed.results):
-        governs = [words for words, of in (("moment", moment), ("shear", shear)) if of is result]
+        governs = [words for words, of in (("M", moment), ("V", shear)) if of is result]
         if governs:
             strong.append(number_)
         rows.append(
             [
                 result.combination.name,
-                _limit(result),
+                result.combination.situation or "strength",
+                result.combination.cite,
                 work.show(result.moment_max.value, "kN*m"),
-                work.show(result.moment_min.value, "kN*m"),
+                *([work.show(result.moment_min.value, "kN*m")] if hogging else []),
                 work.show(abs(result.shear_max.value), "kN"),
                 *(work.show(result.reactions_max[at], "kN") for at in listed),
-                " and ".join(governs) and f"governs {' and '.join(governs)}",
-                result.combination.cite,
+                f"governs {' and '.join(governs)}" if governs else "",
             ]
         )
     work.sheet.table(
         [
             ("combination", "left"),
             ("limit state", "left"),
+            ("clause", "left"),
             ("max M", "right"),
-            ("min M", "right"),
-            ("max |V|", "right"),
+            *([("min M", "right")] if hogging else []),
+            ("max V", "right"),
             *((f"max R{at + 1}", "right") for at in listed),
             ("", "left"),
-            ("clause", "left"),
         ],
         rows,
-        caption="Largest sagging and hogging moment, shear and reactions of each combination, live load where it is "
-        "worst for each." + _names(work),
+        caption="Largest moments, shear (by size) and reactions of each combination, live load where it is "
+        f"worst for each; all but strength are service combinations.{_names(work)}",
         strong_rows=strong,
     )
     if study.given.design_loads == "actual":
         _by_hand(work, moment, shear)
-
-
-def _limit(result: CombinationResult) -> str:
-    situation = result.combination.situation
-    return f"service, {situation}" if situation else result.combination.limit
 
 
 def _names(work: Work) -> str:
@@ -133,8 +129,8 @@ def state_effects(work: Work) -> None:
     )
     deflection = analysed.deflection_total
     caption = (
-        f"Shaded: the envelope of all strength combinations. Line: {governing.combination.name} with every span "
-        "loaded."
+        f"Shaded: the envelope of all strength combinations. Line: {governing.combination.name} with every "
+        "span loaded."
     )
     if deflection is not None:
         caption += f" Deflection: {deflection[0].name}, E I = {work.show(study.stiffness or 0.0, 'kN*m^2')}."
@@ -212,5 +208,6 @@ def _reactions(work: Work) -> None:
             ("smallest, strength", "right"),
         ],
         rows,
-        caption="Reactions, upward: unfactored with every span loaded, and the worst of the strength combinations.",
+        caption="Reactions, upward: unfactored with every span loaded, and the worst of the strength "
+        "combinations.",
     )

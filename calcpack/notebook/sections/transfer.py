@@ -193,8 +193,8 @@ def _general(work: Work, transfer: PanelTransfer, share: EdgeShare) -> None:
             *((CASE_WORDS[c], "right") for c in cases),
         ],
         rows,
-        caption=f"Panel {panel.mark} on the beam, straight from row to row; depths at right angles to the edge, "
-        "from the dividing lines in the figure.",
+        caption=f"Panel {panel.mark} on the beam, straight from row to row; depths at right angles to the "
+        "edge, from the dividing lines in the figure.",
     )
     pieces = [
         (at, after, first, last)

@@ -3,15 +3,26 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
+from typing import Any
 
-from calcpack.equivalent import responses
+from calcpack.equivalent import KINDS, Effect, ShapeKind, responses
 from calcpack.equivalent.derive import derivation
 from calcpack.job.model import Case, EquivalentKind
 from calcpack.notebook.sections.opening import CARRIED_FORWARD
 from calcpack.notebook.sections.resultants import before, resultant, resultant_term
-from calcpack.notebook.study import CASE_WORDS, FIELD, SpanLoads
+from calcpack.notebook.study import CASE_WORDS, SpanLoads
 from calcpack.notebook.work import LETTER, Alike, Work, summed
-from calcpack.sheet import Expression, Line, formula, measured, number, total
+from calcpack.sheet import (
+    Expression,
+    Line,
+    display_unit,
+    formula,
+    measured,
+    number,
+    shown_number,
+    strong,
+    total,
+)
 from calcpack.sheet.latex import symbol_latex
 
 # Equivalent uniform load over the peak of a trapezoid that rises over m/2 of the span at each end.
@@ -31,13 +42,24 @@ TRIANGLE: dict[EquivalentKind, tuple[int, int]] = {
     "total": (1, 2),
 }
 WHY: dict[EquivalentKind, str] = {
-    "shear": "it keeps the end reactions, so bearings and shear are right; check bending against the table",
-    "moment": "it keeps the largest bending moment, on which the section is chosen; check shear against the table",
-    "deflection": "it keeps the largest deflection, on which the stiffness is chosen; check strength against the table",
+    "shear": "it keeps the end reactions, so bearings and shear are right; for bending see the table",
+    "moment": "it keeps the largest bending moment, on which the section is chosen; for shear see the table",
+    "deflection": "it keeps the largest deflection, for which stiffness is chosen; for strength see the table",
     "fixed-end moment": "it keeps the end moments that a frame or a continuous beam is analysed with",
-    "total": "it keeps the total load, which is what foundations see; check bending against the table",
+    "total": "it keeps the total load, which is what foundations see; for bending see the table",
 }
-COLUMNS = (("shear", "V"), ("moment", "M"), ("deflection", "δ"), ("end_moment", "end M"))
+COLUMNS: tuple[tuple[Effect, str], ...] = (
+    ("shear", "V"),
+    ("moment", "M"),
+    ("deflection", "δ"),
+    ("end_moment", "end M"),
+)
+SHORT_OF: dict[Effect, str] = {
+    "shear": "shear",
+    "moment": "moment",
+    "deflection": "deflection",
+    "end_moment": "end moment",
+}
 
 
 def state_equivalents(work: Work) -> None:
@@ -53,8 +75,8 @@ def state_equivalents(work: Work) -> None:
             "Carried forward: ",
             {"strong": CARRIED_FORWARD[criterion]},
             f", as the job sets it; {WHY[criterion]}. Each span is taken alone, simply supported "
-            "(for end moments: both ends fixed). The other criteria are in the table; their derivations are in "
-            "the appendix of the pack.",
+            "(for end moments: both ends fixed). The other criteria are in the table; their derivations are "
+            "in the pack's appendix.",
         ]
     )
     for kind in _kinds(work, spans):
@@ -232,33 +254,33 @@ def _moment(work: Work, span: SpanLoads, case: Case, mark: str, left: Line, at: 
 
 
 def _comparison(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
-    """Every equivalent against the actual load, unsafe entries in words."""
+    """Every equivalent against the actual load; what falls short is bold, and named in the last column."""
+    unit, _ = display_unit("kN/m", work.study.system)
     cases = [case for case in work.study.cases if span.loads[case]]
     for chosen in (cases[i : i + 2] for i in range(0, len(cases), 2)):
-        columns: list[tuple[object, str]] = [("equal", "left")]
+        columns: list[tuple[Any, str]] = [("equal", "left")]
         for case in chosen:
-            columns += [
-                (formula(symbol_latex(_symbol(case, None))), "right"),
-                *((label, "right") for _, label in COLUMNS),
-            ]
-        rows: list[list[object]] = []
-        for kind, field in FIELD.items():
-            row: list[object] = [kind]
+            columns.append(([formula(symbol_latex(_symbol(case, None))), f" {unit}"], "right"))
+            columns += [(label, "right") for _, label in COLUMNS]
+        columns.append(("unsafe for", "left"))
+        rows: list[list[Any]] = []
+        for kind in KINDS:
+            row: list[Any] = [kind]
+            short = set()
             for case in chosen:
-                row.append(work.show(getattr(span.equivalents[case], field), "kN/m"))
                 compared = span.comparisons[case].row(kind)
-                row += [_ratio(compared.ratio(effect)) for effect, _ in COLUMNS]
+                row.append(shown_number(compared.load, "kN/m", work.study.system))
+                for effect, _ in COLUMNS:
+                    text = f"{compared.ratio(effect):.3f}"
+                    row.append([strong(text)] if compared.unsafe_for(effect) else text)
+                short.update(compared.unsafe)
+            row.append([strong(", ".join(SHORT_OF[effect] for effect in SHORT_OF if effect in short) or "–")])
             rows.append(row)
         words = " and ".join(CASE_WORDS[case] for case in chosen)
         work.sheet.table(
             columns,
             rows,
-            caption=f"Span {span.number}, {words}: each equivalent, and its shear, moment, deflection and end "
-            "moment over the actual ones. Below 1 the equivalent falls short: unsafe.",
-            strong_rows=[list(FIELD).index(criterion)],
+            caption=f"Span {span.number}, {words}: each equivalent, and its shear V, moment M, deflection δ "
+            "and fixed-end moment over the actual ones. Bold, below 1: it falls short and is unsafe there.",
+            strong_rows=[KINDS.index(criterion)],
         )
-
-
-def _ratio(value: float) -> object:
-    text = f"{value:.3f}"
-    return {"strong": f"{text} unsafe"} if value < 1 - 1e-9 else text
