@@ -300,7 +300,7 @@ def test_a_crooked_beam_brings_no_errors_about_the_panels_along_it():
 
 
 def test_a_beam_listed_the_wrong_way_brings_none_either():
-    floor = walled(free=[0]).panel("P2", "B1", "C2")
+    floor = Floor(**GRID).panel("P1", "A1", "C2").walls_round("A1", "C1", "C2", "A2", free=[0])
     floor.beam("B1", "A1", "C1", "B1").columns_at("A1", "B1", "C1")
     (only,) = problems(floor)
     assert "out of order" in only

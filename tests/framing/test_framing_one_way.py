@@ -119,7 +119,7 @@ def test_strips_off_a_discontinuous_edge_are_noted():
 
 
 def test_cantilever_slab_puts_all_on_its_edge():
-    floor = Floor().panel("P", (0, 0), (6, 4)).panel("K", (0, 4), (6, 5.5), live=2.0)
+    floor = Floor().panel("K", (0, 4), (6, 5.5), live=2.0).panel("P", (0, 0), (6, 4))
     floor.walls_round((0, 0), (6, 0), (6, 4), (0, 4))
     panel = floor.frame().panels["K"]
     assert panel.transfer == "one-way"
