@@ -11,7 +11,7 @@ from collections.abc import Mapping, Sequence
 from html import escape
 from typing import Any
 
-from calcpack.sheet.runs import Runs
+from calcpack.sheet.runs import Checked
 
 _SHIELD = re.compile(r"[$\\]")
 
@@ -33,7 +33,7 @@ def math_html(latex: str, display: bool = False) -> str:
     return f'<span class="mathjax_process">{mark}{escape(latex)}{mark}</span>'
 
 
-def runs_html(runs: Runs) -> str:
+def runs_html(runs: Checked) -> str:
     """Words with what is among them."""
     if isinstance(runs, str):
         return text_html(runs)
@@ -103,7 +103,7 @@ def _derivation(block: Mapping[str, Any]) -> str:
 def _table(block: Mapping[str, Any]) -> str:
     aligns = [column["align"] for column in block["columns"]]
 
-    def row(cells: Sequence[Runs], tag: str, bold: bool = False) -> str:
+    def row(cells: Sequence[Checked], tag: str, bold: bool = False) -> str:
         texts = [f"<strong>{runs_html(cell)}</strong>" if bold else runs_html(cell) for cell in cells]
         pairs = zip(texts, aligns, strict=True)
         return "<tr>" + "".join(f'<{tag} align="{side}">{text}</{tag}>' for text, side in pairs) + "</tr>"

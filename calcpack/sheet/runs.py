@@ -14,7 +14,8 @@ from typing import Any
 from calcpack.job.errors import CalcpackError
 
 Run = str | dict[str, str]
-Runs = str | Sequence[Run]
+Checked = str | Sequence[Run]  # as they stand in a block
+Runs = Checked | dict[str, str]  # as an author may give them
 
 _KINDS = ("math", "strong", "em", "line")
 _LINE = re.compile(r"[0-9]{1,3}\.[0-9]{2,3}")
@@ -146,7 +147,7 @@ def _plain_math(latex: str) -> str:
     return " ".join(re.sub(r"[{}]", "", text).split())
 
 
-def plain_text(runs: Runs) -> str:
+def plain_text(runs: Checked) -> str:
     r"""Runs as plain words, for the record and for names.
 
     Examples
