@@ -90,11 +90,11 @@ def letters(
     base, _, index = symbol.partition("_")
     small = 0.72 * size
     width, tail = text_width(base, size, italic=True), text_width(index, small, italic=True)
-    start = x - {"left": 0.0, "middle": 0.5, "right": 1.0}[anchor] * (width + tail)
+    start = x - {"left": 0.0, "middle": 0.5, "right": 1.0}[anchor] * (width + tail + 0.3)
     drawing.text(start, y, base, size, anchor="left", italic=True)
     if index:
         drop = 0.32 * size * MM
-        drawing.text(start + width + 0.1, y - drop, index, small, anchor="left", italic=not index.isdigit())
+        drawing.text(start + width + 0.3, y - drop, index, small, anchor="left", italic=not index.isdigit())
 
 
 def _ends(drawing: Drawing, ends: Pair, held: bool, names: tuple[str, str], general: bool) -> None:
