@@ -211,7 +211,10 @@ def _pack(
         program=PROGRAM,
         input_digest=job.digest,
         sheets=tuple(content for content, _ in contents[:-1]),
-        supports=framed.supports,
+        supports={
+            mark: {str(case): value for case, value in forces.items()}
+            for mark, forces in framed.supports.items()
+        },
         key_plan=_figure(plan, "Framing plan with all beams."),
         basis=tuple(
             Section.of(title, blocks)

@@ -39,6 +39,12 @@ def _version(asked: bool) -> None:
         raise typer.Exit
 
 
+def _console() -> Console:
+    """What goes to a file or a pipe is not cut to the width of a terminal."""
+    console = Console(highlight=False)
+    return console if console.is_terminal else Console(highlight=False, width=160)
+
+
 @app.callback()
 def _options(
     version: Annotated[
@@ -63,7 +69,7 @@ def validate(
     framed = frame(read_job(job))
     if plan is not None:
         write_plan(framed, plan)
-    print_overview(framed, Console(highlight=False))
+    print_overview(framed, _console())
 
 
 @app.command()
@@ -86,7 +92,7 @@ def build(
         built = build_job(
             job, out, only=tuple(only or ()), formats=frozenset(map(str, formats or Format)), follow=follow
         )
-    print_summary(built, Console(highlight=False))
+    print_summary(built, _console())
 
 
 @app.command()
@@ -94,7 +100,7 @@ def templates() -> None:
     """List the sheet templates and the keys a job may set in each."""
     from calcpack.overview import print_templates
 
-    print_templates(Console(highlight=False))
+    print_templates(_console())
 
 
 def main() -> None:

@@ -7,7 +7,7 @@ from contextlib import contextmanager
 from pathlib import Path
 
 from rich.console import Console
-from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn, TimeElapsedColumn
+from rich.progress import BarColumn, MofNCompleteColumn, Progress, TaskID, TextColumn, TimeElapsedColumn
 from rich.table import Table
 from rich.text import Text
 
@@ -19,7 +19,7 @@ from calcpack.job.model import Case
 from calcpack.notebook.parameters import plan_of
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.templates import Parameter, find_template, template_names
-from calcpack.sheet import show
+from calcpack.sheet import display_unit, show, shown_number
 
 
 def _table(title: str, columns: Sequence[tuple[str, str]], rows: Sequence[Sequence[str]]) -> Table:
@@ -44,6 +44,9 @@ def print_overview(frame: Frame, console: Console) -> None:
     for table in tables:
         console.print()
         console.print(table)
+        if table is tables[0]:
+            for mark, transfer in frame.panels.items():
+                console.print(Text(f"{mark}: {transfer.reason}."))
     console.print()
     console.print(Text(f"Solved in the order {', '.join(frame.order)}."))
     applied = ", ".join(
@@ -56,25 +59,24 @@ def print_overview(frame: Frame, console: Console) -> None:
 
 def _panels(frame: Frame) -> Table:
     system, cases = frame.job.job.units, frame.cases
+    length, pressure = display_unit("m", system)[0], display_unit("kPa", system)[0]
     rows = [
         [
             mark,
-            f"{show(transfer.sides[0], 'm', system)} × {show(transfer.sides[1], 'm', system)}",
-            f"{transfer.sides[1] / transfer.sides[0]:.2f}",
+            " × ".join(shown_number(side, "m", system) for side in transfer.sides),
+            f"{transfer.sides[1] / transfer.sides[0]:.3g}",
             _way(transfer),
-            transfer.reason,
-            *(show(transfer.panel.pressure(case), "kPa", system) for case in cases),
+            *(shown_number(transfer.panel.pressure(case), "kPa", system) for case in cases),
             ", ".join(dict.fromkeys(share.carrier for share in transfer.shares)),
         ]
         for mark, transfer in frame.panels.items()
     ]
     columns = [
         ("panel", "left"),
-        ("short × long", "right"),
+        (f"short × long [{length}]", "right"),
         ("ratio", "right"),
         ("transfer", "left"),
-        ("because", "left"),
-        *((CASE_WORDS[case], "right") for case in cases),
+        *((f"{case.replace('_', ' ')} [{pressure}]", "right") for case in cases),
         ("drains to", "left"),
     ]
     return _table("Panels", columns, rows)
@@ -90,28 +92,27 @@ def _way(transfer: PanelTransfer) -> str:
 
 def _beams(frame: Frame) -> Table:
     system = frame.job.job.units
+    length, force = display_unit("m", system)[0], display_unit("kN", system)[0]
     rows = [
         [
             mark,
-            " + ".join(show(span, "m", system) for span in beam.spans),
+            " + ".join(shown_number(span, "m", system) for span in beam.spans),
             ", ".join(f"{bearing.kind} {bearing.mark}" for bearing in beam.bearings),
-            ", ".join(dict.fromkeys(carried.mark for carried in beam.carried)) or "–",
-            ", ".join(beam.panels) or "–",
-            *(show(_total(beam, case), "kN", system) for case in frame.cases),
+            ", ".join([*beam.panels, *dict.fromkeys(carried.mark for carried in beam.carried)]) or "–",
+            *(shown_number(_total(beam, case), "kN", system) for case in frame.cases),
             beam.beam.template,
         ]
         for mark, beam in frame.beams.items()
     ]
     columns = [
         ("beam", "left"),
-        ("spans", "right"),
+        (f"spans [{length}]", "right"),
         ("stands on", "left"),
-        ("carries", "left"),
-        ("panels", "left"),
-        *((CASE_WORDS[case], "right") for case in frame.cases),
+        ("takes from", "left"),
+        *((f"{case.replace('_', ' ')} [{force}]", "right") for case in frame.cases),
         ("template", "left"),
     ]
-    return _table("Beams", columns, rows)
+    return _table("Beams, with all their load", columns, rows)
 
 
 def _total(beam: FramedBeam, case: Case) -> float:
@@ -120,15 +121,16 @@ def _total(beam: FramedBeam, case: Case) -> float:
 
 def _supports(frame: Frame) -> Table:
     system = frame.job.job.units
+    force = display_unit("kN", system)[0]
     rows = [
-        [mark, *(show(forces.get(case, 0.0), "kN", system) for case in frame.cases)]
+        [mark, *(shown_number(forces.get(case, 0.0), "kN", system) for case in frame.cases)]
         for mark, forces in frame.supports.items()
     ]
-    return _table(
-        "Columns and walls, unfactored",
-        [("mark", "left"), *((CASE_WORDS[case], "right") for case in frame.cases)],
-        rows,
-    )
+    columns = [
+        ("mark", "left"),
+        *((f"{case.replace('_', ' ')} [{force}]", "right") for case in frame.cases),
+    ]
+    return _table("Columns and walls, unfactored", columns, rows)
 
 
 def write_plan(frame: Frame, path: Path) -> None:
@@ -149,12 +151,12 @@ def progress(console: Console) -> Iterator[Follow]:
         transient=True,
     )
     with bar:
-        tasks: dict[str, int] = {}
+        tasks: dict[str, TaskID] = {}
 
         def follow(stage: str, done: int, of: int) -> None:
             if stage not in tasks:
                 tasks[stage] = bar.add_task(stage, total=of)
-            bar.update(tasks[stage], completed=done, total=of)  # type: ignore[arg-type]
+            bar.update(tasks[stage], completed=done, total=of)
 
         yield follow
 

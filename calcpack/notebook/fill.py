@@ -64,7 +64,7 @@ def fill(template: Template, mark: str, parameters: str, metadata: Mapping[str, 
     CalcpackError
         The template has no cell tagged ``parameters``.
     """
-    node = nbformat.reads(template.notebook, as_version=4)
+    node = nbformat.reads(template.notebook, as_version=4)  # type: ignore[no-untyped-call]
     for number, cell in enumerate(node.cells):
         cell["id"] = f"cell-{number:02d}"
         if cell.cell_type == "code":
@@ -76,7 +76,7 @@ def fill(template: Template, mark: str, parameters: str, metadata: Mapping[str, 
             remedy="tag the one cell that the parameters are to replace",
         )
     tagged[0].source = parameters_cell(parameters)
-    node.metadata = nbformat.from_dict(
+    node.metadata = nbformat.from_dict(  # type: ignore[no-untyped-call]
         {"kernelspec": KERNEL, "language_info": {"name": "python"}, "calcpack": dict(metadata)}
     )
     node.nbformat, node.nbformat_minor = 4, 5

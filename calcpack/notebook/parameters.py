@@ -4,12 +4,13 @@ from __future__ import annotations
 
 import json
 from itertools import pairwise
-from typing import Any
+from typing import Any, cast
 
 from pydantic import ValidationError
 
 import calcpack
 from calcpack.actions import CombinationSet, combination_set
+from calcpack.figures.plan_data import PlanData
 from calcpack.framing.types import (
     Bearing,
     CarriedReaction,
@@ -73,6 +74,11 @@ class BeamInput(Frozen):
         ends = sorted({0.0, self.length, *(bearing.at for bearing in self.bearings)})
         return tuple(pairwise(ends))
 
+    @property
+    def drawn_plan(self) -> PlanData:
+        """The plan as figures take it."""
+        return cast(PlanData, self.plan)
+
     def between_supports(self, span: int) -> bool:
         """Whether a span has a support at both of its ends."""
         stands_at = {bearing.at for bearing in self.bearings}
@@ -120,7 +126,7 @@ def beam_input(frame: Frame, mark: str, design: dict[str, Any], template: Templa
         placements=framed.placements,
         reactions={case: framed.reactions[case] for case in cases},
         panels=tuple(frame.panels[panel] for panel in framed.panels),
-        plan=plan_of(frame, framed),
+        plan=dict(plan_of(frame, framed)),
         design=design,
         template=template,
         job_file=job.file,
@@ -129,7 +135,7 @@ def beam_input(frame: Frame, mark: str, design: dict[str, Any], template: Templa
     )
 
 
-def plan_of(frame: Frame, framed: FramedBeam | None = None) -> dict[str, Any]:
+def plan_of(frame: Frame, framed: FramedBeam | None = None) -> PlanData:
     """The framing plan as plain data for drawing, with the regions that drain to one beam."""
     job = frame.job
     return {

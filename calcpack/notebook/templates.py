@@ -127,7 +127,7 @@ def read_template(folder: Path) -> Template:
         notebook = (folder / NOTEBOOK).read_bytes()
         settings_text = (folder / SETTINGS).read_bytes()
         settings = TemplateSettings.model_validate(tomllib.loads(settings_text.decode("utf-8")))
-        nbformat.reads(notebook.decode("utf-8"), as_version=4)
+        nbformat.reads(notebook.decode("utf-8"), as_version=4)  # type: ignore[no-untyped-call]
     except ValidationError as error:
         first = error.errors()[0]
         key = ".".join(str(part) for part in first["loc"])

@@ -8,7 +8,7 @@ from typing import Any
 from calcpack.equivalent import loads_on, responses
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import Work, summed
-from calcpack.sheet import Expression, absolute, greatest, measured, number, total
+from calcpack.sheet import Expression, Line, absolute, greatest, measured, number, total
 from calcpack.statics import LineLoad, PointLoad
 from calcpack.statics.stiffness import stiffness_check
 
@@ -168,7 +168,8 @@ def _second_method(work: Work) -> None:
         if each.case in combination.factors
     ]
     second = stiffness_check(study.line, factored)
-    rows, differences = [], []
+    rows: list[list[str]] = []
+    differences: list[Expression] = []
     for at, bearing in enumerate(given.bearings):
         one, other = float(exact.reactions[0][at]), _steady(float(second.reactions[at]))
         hogging = [float(values[at]) for values in (exact.support_moments[0], second.support_moments)]
@@ -193,7 +194,7 @@ def _second_method(work: Work) -> None:
         caption=f"{combination.name}, every span loaded, solved a second time by direct stiffness with cubic "
         "elements.",
     )
-    weight = [
+    weight: list[Expression | Line] = [
         number(combination.factors[case]) * work.lines["total", case]
         for case in study.cases
         if case in combination.factors

@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
-
 from calcpack.actions import CombinationResult
 from calcpack.figures import response_figure
+from calcpack.figures.response import CurveData, Quantity
+from calcpack.job.model import Case
 from calcpack.notebook.sections.resultants import midspan_moment
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import LETTER, Work, summed
@@ -65,9 +65,9 @@ def _names(work: Work) -> str:
     return f" {named}."
 
 
-def _symbols(work: Work) -> dict[str, str]:
-    own = {"dead": "G", "live": "Q", "roof_live": "Qr", "snow": "S"}
-    american = {"dead": "D", "live": "L", "roof_live": "Lr", "snow": "S"}
+def _symbols(work: Work) -> dict[Case, str]:
+    own: dict[Case, str] = {"dead": "G", "live": "Q", "roof_live": "Qr", "snow": "S"}
+    american: dict[Case, str] = {"dead": "D", "live": "L", "roof_live": "Lr", "snow": "S"}
     table = own if work.given.actions.family == "EN" else american
     return {case: table[case] for case in work.study.cases}
 
@@ -138,14 +138,15 @@ def state_effects(work: Work) -> None:
     _reactions(work)
 
 
-def curves_of(work: Work) -> dict[str, list[tuple[object, object, str]]]:
+def curves_of(work: Work) -> dict[Quantity, list[CurveData]]:
     """What the figure draws: the envelope over all strength combinations, and the governing one."""
     study, analysed = work.study, work.study.analysed
     strength = analysed.of_limit("strength")
-    curves: dict[str, list[tuple[object, object, str]]] = {}
+    curves: dict[Quantity, list[CurveData]] = {}
     always, placed = analysed.factors(analysed.governing_moment.combination)
     governing = analysed.response.combined(always + placed)
-    for quantity in ("shear", "moment"):
+    quantities: tuple[Quantity, ...] = ("shear", "moment")
+    for quantity in quantities:
         band = enclosing([getattr(each.envelope, quantity) for each in strength])
         curves[quantity] = [
             (*band.upper.sample(SAMPLES), "upper"),
@@ -154,16 +155,19 @@ def curves_of(work: Work) -> dict[str, list[tuple[object, object, str]]]:
         ]
     if (found := analysed.deflection_total) is not None and study.stiffness:
         result = next(each for each in analysed.results if each.combination is found[0])
-        for role in ("upper", "lower"):
-            at, value = getattr(result.envelope.deflection, role).sample(SAMPLES)
-            curves.setdefault("deflection", []).append((at, value / study.stiffness, role))
+        band = result.envelope.deflection
+        high, low = (edge.sample(SAMPLES) for edge in (band.upper, band.lower))
+        curves["deflection"] = [
+            (high[0], high[1] / study.stiffness, "upper"),
+            (low[0], low[1] / study.stiffness, "lower"),
+        ]
     return curves
 
 
-def extremes_of(work: Work) -> list[tuple[str, float, float]]:
+def extremes_of(work: Work) -> list[tuple[Quantity, float, float]]:
     """Extreme values with their places, for the figure: (quantity, value, at)."""
     study, analysed = work.study, work.study.analysed
-    found = [
+    found: list[tuple[Quantity, float, float]] = [
         ("moment", extreme.value, extreme.at)
         for extreme in (analysed.moment_max, analysed.moment_min)
         if study.significant(extreme.value, "moment")
@@ -185,7 +189,7 @@ def _reactions(work: Work) -> None:
     """What each support gets: case by case, every span loaded, and the worst of the combinations."""
     study, given, analysed = work.study, work.given, work.study.analysed
     strength = analysed.of_limit("strength")
-    rows: list[Sequence[object]] = []
+    rows: list[list[str]] = []
     for at, bearing in enumerate(given.bearings):
         rows.append(
             [

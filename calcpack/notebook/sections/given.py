@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from calcpack.framing.types import PanelTransfer
-from calcpack.job.model import Section
+from calcpack.job.model import Case, Section
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import LETTER, SELF_WEIGHT, Source, Work
 from calcpack.sheet import Line
@@ -163,13 +163,13 @@ def _own(work: Work, source: Source) -> None:
                 )
 
 
-def _own_point(work: Work, source: Source, case: str, load: PointLoad, words: str, origin: str) -> None:
+def _own_point(work: Work, source: Source, case: Case, load: PointLoad, words: str, origin: str) -> None:
     work.lines["force", case, source.name] = work.sheet.take(
         f"F_{LETTER[case]}{source.index}",
         load.force,
         "kN",
         says=words,
-        origin=f"{origin} point",  # type: ignore[index]
+        origin=f"{origin} point",
     )
     work.lines["place", source.name] = work.sheet.take(
         f"x_{source.index}", load.at, "m", says=f"Where {source.name} stands", origin=f"{origin} at"

@@ -14,7 +14,7 @@ def state_loads(work: Work) -> None:
     """Load diagram of each case, the sources' resultants, and the totals."""
     study, given = work.study, work.given
     work.sheet.section("Loads on the beam")
-    uniform = {
+    uniform: dict[str, list[tuple[float, float, float]]] = {
         case: [
             (span.start, span.end, work.lines["equivalent", case, span.number].value)
             for span in study.spans
@@ -33,9 +33,9 @@ def state_loads(work: Work) -> None:
         width_mm=170,
     )
     work.sheet.figure(figure, "Loads as they stand, unfactored; dashed: the equivalent carried forward.")
-    rows: list[list[object]] = []
+    rows: list[list[str]] = []
     for source in work.sources.values():
-        row: list[object] = [source.words]
+        row = [source.words]
         for case in study.cases:
             force = _resultant(work, source.name, case)
             row.append(work.show(force, "kN") if study.significant(force, "force") else "–")

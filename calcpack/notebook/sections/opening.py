@@ -25,7 +25,7 @@ def state_place(work: Work) -> None:
     sheet, given = work.sheet, work.given
     sheet.section("Where this beam stands and what this sheet shows")
     with sheet.columns([10, 13]) as column:
-        figure = key_plan(given.plan, given.mark, work.study.system, width_mm=74)
+        figure = key_plan(given.drawn_plan, given.mark, work.study.system, width_mm=74)
         sheet.figure(figure, "Framing plan; what drains to this beam is hatched.")
         column()
         sheet.facts(_particulars(work))
@@ -74,10 +74,10 @@ def _section_words(work: Work) -> str:
 def _schedule(work: Work) -> None:
     """The numbers somebody looks for first."""
     analysed, study = work.study.analysed, work.study
-    rows: list[Sequence[object]] = []
+    rows: list[list[str]] = []
 
     def row(says: str, extreme: Extreme, unit: str, name: str) -> None:
-        rows.append((says, work.show(extreme.value, unit), work.show(extreme.at, "m"), name))
+        rows.append([says, work.show(extreme.value, unit), work.show(extreme.at, "m"), name])
 
     sagging = max(analysed.of_limit("strength"), key=lambda each: round(each.moment_max.value, 9))
     hogging = min(analysed.of_limit("strength"), key=lambda each: round(each.moment_min.value, 9))

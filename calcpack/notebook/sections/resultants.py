@@ -33,7 +33,7 @@ def midspan_moment(work: Work, group: Alike, length: Line) -> Expression:
 
 def resultant(shape: Shape) -> tuple[float, float]:
     """Force [kN] of a shape, and its moment about the left support [kNm]."""
-    force = sum(load.total for load in (*shape.lines, *shape.points))
+    force = sum(line.total for line in shape.lines) + sum(point.force for point in shape.points)
     moment = sum(load.total * _centre(load) for load in shape.lines) + sum(
         point.force * point.at for point in shape.points
     )

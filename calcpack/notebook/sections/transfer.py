@@ -11,6 +11,7 @@ from calcpack.job.model import Case
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import LETTER, SELF_WEIGHT, Work, summed
 from calcpack.sheet import Expression, Line, measured
+from calcpack.sheet.runs import Runs
 from calcpack.statics import LineLoad
 
 CLOSE = 1e-9
@@ -117,7 +118,7 @@ def _depth(work: Work, transfer: PanelTransfer, share: EdgeShare) -> Line | None
             if transfer.transfer == "two-way"
             else "Depth that drains to the beam: half the span of the slab"
         )
-        expression = work.lines[key, panel.mark] / 2
+        expression: Expression = work.lines[key, panel.mark] / 2
     elif math.isclose(deepest, span, rel_tol=CLOSE):
         words, expression = (
             "Depth that drains to the beam: all of the slab",
@@ -170,7 +171,7 @@ def _general(work: Work, transfer: PanelTransfer, share: EdgeShare) -> None:
     """A profile that no plain formula gives: its breakpoints, its area, the place of its resultant."""
     sheet, panel = work.sheet, transfer.panel
     index, cases = work.sources[panel.mark].index, _cases(work, transfer)
-    rows = [
+    rows: list[list[Runs]] = [
         [
             work.show(at, "m"),
             work.show(depth, "m"),
@@ -203,7 +204,8 @@ def _general(work: Work, transfer: PanelTransfer, share: EdgeShare) -> None:
     ]
     parts: list[Expression | Line] = [
         _half_sum(first, last) * measured(after - at, "m") for at, after, first, last in pieces
-    ] + [measured(area, "m^2") for _, area in share.ends]
+    ]
+    parts += [measured(area, "m^2") for _, area in share.ends]
     work.lines["area", panel.mark] = sheet.hence(
         f"A_{index}",
         summed(parts),

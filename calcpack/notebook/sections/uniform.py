@@ -44,7 +44,7 @@ TRIANGLE: dict[EquivalentKind, tuple[int, int]] = {
 WHY: dict[EquivalentKind, str] = {
     "shear": "it keeps the end reactions, so bearings and shear are right; for bending see the table",
     "moment": "it keeps the largest bending moment, on which the section is chosen; for shear see the table",
-    "deflection": "it keeps the largest deflection, for which stiffness is chosen; for strength see the table",
+    "deflection": "it keeps the largest deflection, as stiffness needs; for strength see the table",
     "fixed-end moment": "it keeps the end moments that a frame or a continuous beam is analysed with",
     "total": "it keeps the total load, which is what foundations see; for bending see the table",
 }
@@ -94,7 +94,7 @@ def _kinds(work: Work, spans: Sequence[SpanLoads]) -> list[ShapeKind]:
                 found.update(shape.kind for shape in work.shapes(span, case).values())
             else:
                 found.add("general")
-    return [kind for kind in ("triangle", "trapezoid", "general") if kind in found]  # type: ignore[misc]
+    return [kind for kind in ("triangle", "trapezoid", "general") if kind in found]
 
 
 def _span(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
@@ -266,7 +266,7 @@ def _comparison(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
         rows: list[list[Any]] = []
         for kind in KINDS:
             row: list[Any] = [kind]
-            short = set()
+            short: set[Effect] = set()
             for case in chosen:
                 compared = span.comparisons[case].row(kind)
                 row.append(shown_number(compared.load, "kN/m", work.study.system))
