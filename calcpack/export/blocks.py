@@ -295,6 +295,31 @@ def every(blocks: Sequence[Block]) -> Iterator[Block]:
                 yield from every(column)
 
 
+def levelled(blocks: Sequence[Block]) -> tuple[Block, ...]:
+    """Blocks whose headings skip no level: one of level 2 before any of level 1 becomes one of level 1.
+
+    Examples
+    --------
+    >>> part = read_blocks([{"type": "heading", "level": level, "text": "a"} for level in (2, 1, 2)])
+    >>> [heading.level for heading in levelled(part)]
+    [1, 1, 2]
+    """
+    seen = False
+
+    def raised(block: Block) -> Block:
+        nonlocal seen
+        if isinstance(block, Columns):
+            columns = tuple(tuple(raised(part) for part in column) for column in block.columns)
+            return block.model_copy(update={"columns": columns})
+        if isinstance(block, Heading):
+            if not seen and block.level == 2:
+                return block.model_copy(update={"level": 1})
+            seen = True
+        return block
+
+    return tuple(raised(block) for block in blocks)
+
+
 def runs_of(block: Block) -> Iterator[Run]:
     """All running text of one block, columns excepted."""
     match block:

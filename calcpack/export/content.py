@@ -12,7 +12,7 @@ from typing import Any
 import nbformat
 from pydantic import BaseModel, ConfigDict, ValidationError
 
-from calcpack.export.blocks import Block, Line, every, read_blocks
+from calcpack.export.blocks import Block, Line, every, levelled, read_blocks
 from calcpack.export.markdown import markdown_blocks
 from calcpack.export.svg import size_mm
 from calcpack.export.text import clean
@@ -165,6 +165,9 @@ def sheet_content(notebook: nbformat.NotebookNode) -> SheetContent:
             raise CalcpackError(
                 f"cell {number} shows something that is not as agreed: {_said(error)}", mark=metadata.mark
             ) from None
+    numbers = [block.no for block in every(blocks) if isinstance(block, Line)]
+    if twice := sorted({number for number in numbers if numbers.count(number) > 1}):
+        raise CalcpackError(f"line {twice[0]} occurs twice", mark=metadata.mark)
     if record is not None and not isinstance(record, dict):
         raise CalcpackError("the sheet's record is not an object", mark=metadata.mark)
     return SheetContent(
@@ -176,7 +179,7 @@ def sheet_content(notebook: nbformat.NotebookNode) -> SheetContent:
         input_digest=metadata.input,
         program=metadata.program,
         numbers=metadata.sheets,
-        blocks=tuple(blocks),
+        blocks=levelled(blocks),
         record=None if record is None else types.MappingProxyType(_plain(record)),
         notebook=notebook_bytes(notebook),
         changed=frozenset(metadata.changed),

@@ -204,8 +204,9 @@ def _typst(formulas: list[str]) -> list[str]:
 
 
 def _for_pandoc(latex: str) -> str:
-    """Spaces pandoc would round to none, and words it would set letter by letter."""
-    latex = _THICK.sub(lambda match: match[1] + {";": r"\:", "!": ""}[match[2]], _LATEX_UNSEEN.sub("", latex))
+    """On one line; without the spaces pandoc would round to none, and words it would set letter by letter."""
+    latex = " ".join(_LATEX_UNSEEN.sub("", latex).split())
+    latex = _THICK.sub(lambda match: match[1] + {";": r"\:", "!": ""}[match[2]], latex)
     return _ROMAN.sub(r"\\text{\1}", latex)
 
 

@@ -17,7 +17,7 @@ from urllib.parse import quote
 from markupsafe import Markup
 
 from calcpack.export import blocks as kinds
-from calcpack.export.blocks import Block, formulas_of, read_blocks
+from calcpack.export.blocks import Block, formulas_of, levelled, read_blocks
 from calcpack.export.content import CAUTION, SheetContent, SheetNumbers
 from calcpack.export.mathematics import Mathematics
 from calcpack.export.page_html import Screen, header_fields, render
@@ -43,7 +43,7 @@ class Section:
     @classmethod
     def of(cls, title: str, blocks: Sequence[Mapping[str, Any]]) -> Section:
         """A section from blocks in their data form."""
-        return cls(title, read_blocks(list(blocks)))
+        return cls(title, levelled(read_blocks(list(blocks))))
 
 
 @dataclass(frozen=True)

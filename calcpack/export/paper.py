@@ -10,6 +10,7 @@ import base64
 import binascii
 import re
 from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
 from typing import Any
 
 from calcpack.export import blocks as kinds
@@ -53,7 +54,8 @@ class Paper:
     ) -> list[Data]:
         """A part's blocks; ``lines`` are the lines of it that can be linked to."""
         self._mathematics.learn(formulas_of(blocks))
-        return [self._block(block, _Place(identity, lines, changed, set())) for block in blocks]
+        place = _Place(identity, lines, changed)
+        return [self._block(block, place) for block in blocks]
 
     def runs(self, runs: Iterable[Run], place: _Place | None = None) -> list[list[Any]]:
         """Running text as (kind, text, ...)."""
@@ -137,9 +139,6 @@ class Paper:
         return data
 
     def _line(self, line: kinds.Line, place: _Place) -> Data:
-        if line.no in place.seen:
-            raise CalcpackError(f"line {line.no} occurs twice in a sheet")
-        place.seen.add(line.no)
         rows = [[self.formula(chunk) for chunk in row if chunk.strip()] for row in line.rows]
         return {
             "no": line.no,
@@ -200,11 +199,13 @@ class Paper:
         return {"picture": name, "width-mm": min(width, 400.0), "alt": with_known_letters(picture.alt)}
 
 
+@dataclass(frozen=True)
 class _Place:
-    """Where a block stands: its part, the part's lines, those seen so far."""
+    """Where a block stands: its part, the part's lines and those of them that are revised."""
 
-    def __init__(self, identity: str, lines: frozenset[str], changed: frozenset[str], seen: set[str]) -> None:
-        self.identity, self.lines, self.changed, self.seen = identity, lines, changed, seen
+    identity: str
+    lines: frozenset[str]
+    changed: frozenset[str]
 
     def label(self, number: str) -> str:
         return f"{self.identity}/{number}"
@@ -262,16 +263,16 @@ def person(who: Person) -> str:
     return who.name or "–"
 
 
-def foot_of(content: SheetContent) -> str:
+def foot_of(content: SheetContent) -> list[str]:
     """What stands at the foot of each page of a sheet: who made it, from what, and the caution."""
     stamp = content.template
     return foot([content.program, f"template {stamp.name} {stamp.version}"], content.input_digest)
 
 
-def foot(makers: Sequence[str], input_digest: str) -> str:
-    """The foot of a page: what made it, the start of the input's hash, the caution."""
+def foot(makers: Sequence[str], input_digest: str) -> list[str]:
+    """The foot of a page: what made it and the start of the input's hash; the caution."""
     parts = [*makers, f"input {input_digest[:8]}"] if input_digest else [*makers]
-    return with_known_letters(" · ".join([*parts, CAUTION]))
+    return [with_known_letters(" · ".join(parts)), CAUTION]
 
 
 def document_data(header: Header, paper: str, title: str, says: str) -> Data:

@@ -103,6 +103,10 @@ def line(no: str, kind: str, says: Any, symbol: str, rows: list[list[str]], **mo
     } | more
 
 
+def ratio(value: float, words: str = "bending") -> dict[str, Any]:
+    return {"says": words, "demand": "2 kN", "resistance": "1 kN", "ratio": value, "passes": value <= 1}
+
+
 def place() -> list[dict[str, Any]]:
     """Where the beam stands, and what is shown of it."""
     ratios = {
