@@ -171,7 +171,7 @@ class Drawing:
         _, lowest, _, highest = self.extent()
         top = highest + 0.6 if top is None else top
         bottom = lowest - 0.6 if bottom is None else bottom
-        alt = plain(alt)
+        alt = plain(alt).replace("\u00a0", " ")
         return Figure(svg=self._svg(width, bottom, top - bottom, alt), alt=alt, width_mm=width)
 
     def _svg(self, width: float, bottom: float, height: float, alt: str) -> str:

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import functools
 import unicodedata
-import warnings
 from importlib import resources
 
 from matplotlib.font_manager import FontProperties, fontManager, get_font
@@ -71,11 +70,9 @@ def text_width(text: str, size: float, bold: bool = False, italic: bool = False)
     style = face(100.0, bold, italic)
     font = get_font(fontManager.findfont(style))
     # What the face lacks is drawn by the reader's own fonts: counted as one em each.
-    missing = sum(1 for letter in text if not font.get_char_index(ord(letter)))
-    with warnings.catch_warnings():
-        warnings.simplefilter("ignore")
-        width, _, _ = _ruler.get_text_width_height_descent(text, style, False)
-    return (float(width) + 60.0 * missing) / 100.0 * size * MM
+    known = "".join(letter for letter in text if font.get_char_index(ord(letter)))
+    width, _, _ = _ruler.get_text_width_height_descent(known, style, False) if known else (0.0, 0.0, 0.0)
+    return (float(width) + 100.0 * (len(text) - len(known))) / 100.0 * size * MM
 
 
 def shorten(text: str, room: float, size: float, bold: bool = False, italic: bool = False) -> str:

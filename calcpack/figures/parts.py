@@ -52,8 +52,8 @@ def length(value: float, system: System) -> str:
 
     Examples
     --------
-    >>> print(length(4.125, "SI"), length(11.0, "US"), length(4.45982, "SI"))
-    4.125 m 36.09 ft 4.46 m
+    >>> length(4.125, "SI"), length(11.0, "US"), length(4.45982, "SI")
+    ('4.125\\xa0m', '36.09\\xa0ft', '4.46\\xa0m')
     """
     full = show(value, "m", system, exact=True)
     decimals = full.split("\u00a0")[0].partition(".")[2]

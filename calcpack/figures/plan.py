@@ -93,8 +93,8 @@ def key_plan(
     view = view_of(shape, window, system, width_mm, height - 18.0, dimensions)
     whole = window == shape.extent()
     drawing = Drawing()
-    draw_grid(drawing, shape, view, system, dimensions, width_mm)
     placer = Placer((0.3, -1e9, width_mm - 0.3, 1e9))
+    draw_grid(drawing, shape, view, system, dimensions, width_mm, placer)
     placer.block(*drawing.boxes)
     _structure(drawing, shape, view, beam, placer)
     regions = _regions(drawing, shape, view)
@@ -157,6 +157,8 @@ def _regions(drawing: Drawing, plan: PlanShape, view: View) -> list[Ring]:
     chosen: dict[str, int] = {}
     drawn = []
     for mark, outline in plan.regions:
+        if len(outline) < 3:
+            continue
         if mark not in chosen:
             taken = {
                 chosen[other]

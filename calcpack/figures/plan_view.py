@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from calcpack.figures.drawing import GREY, HAIR, HEAVY, LINES, SMALL, WHITE, Drawing, Stroke
-from calcpack.figures.labels import spread
+from calcpack.figures.labels import Box, Placer, spread
 from calcpack.figures.lettering import shorten, text_width
 from calcpack.figures.parts import dimension_chain, length
 from calcpack.figures.plan_data import BeamShape, PlanShape
@@ -93,15 +93,23 @@ def view_of(
         spare = width - left - right - (c - a) * scale * across
         view = View(window, (scale * across, scale * up), left + spare / 2)
         scratch = Drawing()
-        edges = draw_grid(scratch, plan, view, system, dimensions, width)
+        edges = draw_grid(scratch, plan, view, system, dimensions, width, Placer())
         left, right = max(edges[0], 2.0), max(edges[1], 2.0)
     return view
 
 
 def draw_grid(
-    drawing: Drawing, plan: PlanShape, view: View, system: System, dimensions: bool, width: float
+    drawing: Drawing,
+    plan: PlanShape,
+    view: View,
+    system: System,
+    dimensions: bool,
+    width: float,
+    placer: Placer,
 ) -> tuple[float, float]:
     """Grid lines with their bubbles at top and left, dimensions at bottom and right.
+
+    The placer learns what labels must keep clear of.
 
     Returns
     -------
@@ -116,9 +124,10 @@ def draw_grid(
     ys = [float(view.at([(a, at)])[0, 1]) for _, at in lines_y]
     left = 0.0
     if lines_x:
-        _bubbles(drawing, [name for name, _ in lines_x], xs, up, upright=True, bounds=(1.0, width - 1.0))
+        names = [name for name, _ in lines_x]
+        _bubbles(drawing, placer, names, xs, up, upright=True, bounds=(1.0, width - 1.0))
     if lines_y:
-        left = _bubbles(drawing, [name for name, _ in lines_y], ys, view.left, upright=False)
+        left = _bubbles(drawing, placer, [name for name, _ in lines_y], ys, view.left, upright=False)
     under, beside, right = -4.4, view.left + across + 4.4, 0.0
     measured_x, measured_y = dimensions and len(xs) > 1, dimensions and len(ys) > 1
     for x in xs:
@@ -128,14 +137,17 @@ def draw_grid(
     if measured_x:
         labels = _lengths([at for _, at in lines_x], system)
         dimension_chain(drawing, xs, labels, (0.0, under), bounds=(0.5, width - 0.5))
+        placer.block_line([(xs[0] - 0.8, under), (xs[-1] + 0.8, under)])
     if measured_y:
         labels = _lengths([at for _, at in lines_y], system)
         right = 4.4 + dimension_chain(drawing, ys, labels, (beside, 0.0), 90.0)
+        placer.block_line([(beside, ys[0] - 0.8), (beside, ys[-1] + 0.8)])
     return left, right + 0.6
 
 
 def _bubbles(
     drawing: Drawing,
+    placer: Placer,
     names: list[str],
     places: list[float],
     edge: float,
@@ -167,6 +179,7 @@ def _bubbles(
         drawing.area(ring, WHITE, LINES)
         drawing.outline(ring, Stroke(0.4, GREY), HEAVY)
         drawing.text(x, y, text, SMALL)
+        placer.block(Box(x, y, width, 2 * BUBBLE))
         reach = max(reach, off + width)
     return reach + 0.4
 

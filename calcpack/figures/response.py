@@ -104,7 +104,7 @@ def response_figure(
     Raises
     ------
     ValueError
-        The length is not positive, or the reactions are not one for each bearing.
+        The length is not positive, a quantity is none of these, or reactions are not one a bearing.
 
     Examples
     --------
@@ -116,6 +116,8 @@ def response_figure(
     axis = BeamAxis(length, tuple(bearings), fixed, width_mm)
     if reactions and len(reactions) != len(bearings):
         raise ValueError(f"{len(reactions)} reactions for {len(bearings)} bearings")
+    if unknown := sorted(set(curves) - set(MANNERS)):
+        raise ValueError(f"no diagram is known for {', '.join(unknown)}")
     found = list(_worst(axis, curves)) if extremes is None else list(extremes)
     strips = []
     for quantity, manner in MANNERS.items():

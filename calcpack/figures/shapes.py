@@ -158,12 +158,9 @@ def simplified(points: Points, tolerance: float = 0.01) -> Array:
             continue
         start, along = line[first], line[last] - line[first]
         inner = line[first + 1 : last] - start
-        length = math.hypot(*along.tolist())
-        off = (
-            np.abs(inner[:, 0] * along[1] - inner[:, 1] * along[0]) / length
-            if length > 1e-12
-            else np.hypot(inner[:, 0], inner[:, 1])
-        )
+        square = float(along @ along)
+        part = np.clip(inner @ along / square, 0.0, 1.0) if square > 0 else np.zeros(len(inner))
+        off = np.hypot(*(inner - part[:, None] * along).T)
         worst = int(off.argmax())
         if off[worst] > tolerance:
             middle = first + 1 + worst
