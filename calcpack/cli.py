@@ -86,13 +86,15 @@ def build(
 ) -> None:
     """Make the calculation sheets of a job and bind them into a pack."""
     from calcpack.build import build_job
-    from calcpack.overview import print_summary, progress
+    from calcpack.overview import print_summary, print_unmet, progress
 
     with progress(Console(stderr=True)) as follow:
         built = build_job(
             job, out, only=tuple(only or ()), formats=frozenset(map(str, formats or Format)), follow=follow
         )
     print_summary(built, _console())
+    if print_unmet(built, Console(stderr=True, highlight=False, soft_wrap=True)):
+        raise typer.Exit(1)
 
 
 @app.command()

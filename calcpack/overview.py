@@ -5,13 +5,13 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from rich.console import Console
 from rich.progress import BarColumn, MofNCompleteColumn, Progress, TaskID, TextColumn, TimeElapsedColumn
 from rich.table import Table
 from rich.text import Text
 
-from calcpack.build import BuiltJob, Follow
 from calcpack.figures import key_plan
 from calcpack.files import write_file
 from calcpack.framing import Frame, FramedBeam, PanelTransfer
@@ -20,6 +20,9 @@ from calcpack.notebook.parameters import plan_of
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.templates import Parameter, find_template, template_names
 from calcpack.sheet import display_unit, show, shown_number
+
+if TYPE_CHECKING:
+    from calcpack.build import BuiltJob, Follow
 
 
 def _table(title: str, columns: Sequence[tuple[str, str]], rows: Sequence[Sequence[str]]) -> Table:
@@ -149,16 +152,22 @@ def progress(console: Console) -> Iterator[Follow]:
         TimeElapsedColumn(),
         console=console,
         transient=True,
+        disable=not console.is_terminal,
     )
-    with bar:
-        tasks: dict[str, TaskID] = {}
+    tasks: dict[str, TaskID] = {}
+    try:
 
         def follow(stage: str, done: int, of: int) -> None:
+            if not tasks:
+                bar.start()
             if stage not in tasks:
                 tasks[stage] = bar.add_task(stage, total=of)
             bar.update(tasks[stage], completed=done, total=of)
 
         yield follow
+    finally:
+        if tasks:
+            bar.stop()
 
 
 def print_summary(built: BuiltJob, console: Console) -> None:
@@ -190,6 +199,21 @@ def print_summary(built: BuiltJob, console: Console) -> None:
         console.print(Text(f"Kept aside, since it was changed by hand: {name}"))
     for note in built.frame.notes:
         console.print(Text(f"Note: {note}"))
+
+
+def print_unmet(built: BuiltJob, console: Console) -> bool:
+    """Print a plain list of requirements that are not satisfied; say whether there are any."""
+    system = built.frame.job.job.units
+    unmet = [
+        (record["mark"], check)
+        for record in built.records
+        for check in record["results"]["checks"]
+        if not check["passes"]
+    ]
+    for mark, check in unmet:
+        demand, capacity = (show(check[side], check["unit"], system) for side in ("demand", "capacity"))
+        console.print(Text(f"not satisfied: beam {mark}: {check['name']}: {demand} against {capacity}"))
+    return bool(unmet)
 
 
 def print_templates(console: Console) -> None:

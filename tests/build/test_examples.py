@@ -1,0 +1,102 @@
+"""Every shipped example builds; its headline numbers are those of a hand calculation."""
+
+from __future__ import annotations
+
+import csv
+import hashlib
+import json
+import math
+
+import pytest
+
+EXAMPLES = ["rope_walk", "seed_store"]
+KIP, FOOT = 4.4482216152605, 0.3048
+
+
+def record(folder, mark):
+    return json.loads((folder / "sheets" / f"{mark}.json").read_text(encoding="utf-8"))
+
+
+@pytest.mark.parametrize("name", EXAMPLES)
+def test_the_folder_holds_what_it_should(name, built):
+    folder = built(name)
+    job = json.loads((folder / "job.json").read_text(encoding="utf-8"))
+    assert 8 <= len(job["beams"]) <= 15
+    for mark in job["beams"]:
+        for ending in ("ipynb", "html", "pdf", "json"):
+            assert (folder / "sheets" / f"{mark}.{ending}").stat().st_size > 1000
+    assert (folder / "pack.pdf").read_bytes().startswith(b"%PDF-")
+    assert (folder / "index.html").read_text(encoding="utf-8").startswith("<!DOCTYPE html>")
+    rows = list(csv.DictReader((folder / "schedule.csv").open(encoding="utf-8", newline="")))
+    assert [row["mark"] for row in rows] == job["beams"]
+    assert sorted(job["order"]) == sorted(job["beams"])
+
+
+@pytest.mark.parametrize("name", EXAMPLES)
+def test_supports_carry_what_is_applied(name, built):
+    job = json.loads((built(name) / "job.json").read_text(encoding="utf-8"))
+    for case, applied in job["applied"].items():
+        carried = math.fsum(forces.get(case, 0.0) for forces in job["supports"].values())
+        assert carried == pytest.approx(applied, rel=1e-9, abs=1e-9)
+    assert job["applied"]["dead"] > 100
+
+
+@pytest.mark.parametrize("name", EXAMPLES)
+def test_the_manifest_names_every_file(name, built):
+    folder = built(name)
+    lines = (folder / "manifest.sha256").read_text(encoding="utf-8").splitlines()
+    named = dict(reversed(line.split("  ", 1)) for line in lines)
+    files = {path.relative_to(folder).as_posix() for path in folder.rglob("*") if path.is_file()}
+    assert set(named) == files - {"manifest.sha256"}
+    for file, digest in named.items():
+        assert hashlib.sha256((folder / file).read_bytes()).hexdigest() == digest
+
+
+def test_beam_between_two_triangles(built):
+    """B7 by hand: triangles of 5.85 and 3.0 kPa over 2.25 m from both sides, 4.5 m span."""
+    found = record(built("rope_walk"), "B7")["results"]
+    own = 0.3 * 0.6 * 25
+    dead = 2 * 5.85 * 2.25 * 4.5**2 / 12 + own * 4.5**2 / 8
+    live = 2 * 3.0 * 2.25 * 4.5**2 / 12
+    assert found["envelope"]["moment_max"] == pytest.approx(1.35 * dead + 1.5 * live, rel=1e-9)
+    assert found["reactions"]["live"] == pytest.approx([2 * 3.0 * 2.25 * 4.5 / 4] * 2, rel=1e-9)
+    assert found["equivalent"][0]["live"]["moment"] == pytest.approx(2 * 2 / 3 * 3.0 * 2.25, rel=1e-9)
+    assert found["equivalent"][0]["live"]["shear"] == pytest.approx(2 * 1 / 2 * 3.0 * 2.25, rel=1e-9)
+    inertia, modulus = 0.3 * 0.6**3 / 12, 32.84e6  # Ecm of C30/37 to four figures, EN 1992-1-1 Table 3.1
+    live_mm = 2 * 3.0 * 2.25 * 4.5**4 / (120 * modulus * inertia) * 1000
+    assert found["deflection"]["live_mm"] == pytest.approx(live_mm, rel=2e-3)
+
+
+def test_joist_comes_down_on_its_girder(built):
+    """J1 takes 2.5 m of one-way slab on both sides; half of it stands on B8 at 2.5 m."""
+    joist, girder = (record(built("rope_walk"), mark)["results"] for mark in ("J1", "B8"))
+    assert joist["reactions"]["live"] == pytest.approx([3.0 * 2.5 * 6 / 2] * 2, rel=1e-9)
+    (point,) = [load for load in girder["loads"]["live"] if load["source"] == "J1"]
+    assert (point["at"], point["force"]) == pytest.approx((2.5, 22.5))
+    square = 4.0 * 2.5 * 5 / 2  # triangle of the square panel P5
+    assert girder["reactions"]["live"] == pytest.approx([(22.5 + square) / 2] * 2, rel=1e-9)
+
+
+def test_two_way_and_one_way_panels_in_us_units(built):
+    """F1 by hand, in kips and feet: trapezoids 7 ft deep from both sides over 20 ft."""
+    found = record(built("seed_store"), "F1")["results"]
+    trapezoid = 0.125 * 7 * (20 - 7)  # [kip] from one side, live
+    assert [value / KIP for value in found["reactions"]["live"]] == pytest.approx([trapezoid] * 2, rel=1e-9)
+    peak = 2 * 0.125 * 7
+    moment = peak * (3 * 20**2 - 4 * 7**2) / 24
+    service = next(each for each in found["combinations"] if each["name"] == "D + L")
+    dead = next(each for each in found["combinations"] if each["name"] == "1.4 D")["moment_max"] / 1.4
+    assert (service["moment_max"] - dead) / (KIP * FOOT) == pytest.approx(moment, rel=1e-9)
+
+
+def test_patterns_of_live_load_reach_further_than_all_spans_loaded(built):
+    """G1 overhangs: with only the overhang loaded the far support is relieved."""
+    found = record(built("seed_store"), "G1")["results"]
+    strength = [each for each in found["combinations"] if each["name"] == "1.2 D + 1.6 L"]
+    together = [
+        1.2 * dead + 1.6 * live
+        for dead, live in zip(found["reactions"]["dead"], found["reactions"]["live"], strict=True)
+    ]
+    worst = strength[0]["reactions_max"]
+    assert all(one >= other - 1e-9 for one, other in zip(worst, together, strict=True))
+    assert any(one > other * 1.01 for one, other in zip(worst, together, strict=True))

@@ -1,0 +1,31 @@
+"""What several tests share: the shipped examples, built once a run."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import pytest
+
+ROOT = Path(__file__).parent.parent
+
+
+@pytest.fixture(scope="session")
+def example_job():
+    """Path of an example's job file by its name."""
+    return lambda name: ROOT / "examples" / name / "job.toml"
+
+
+@pytest.fixture(scope="session")
+def built(tmp_path_factory, example_job):
+    """Build an example, once a run, and give the folder."""
+    from calcpack.build import build_job
+
+    done: dict[str, Path] = {}
+
+    def build(name: str) -> Path:
+        if name not in done:
+            done[name] = tmp_path_factory.mktemp("built") / name
+            build_job(example_job(name), done[name])
+        return done[name]
+
+    return build
