@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from calcpack.framing.bearings import beam_problems, bearings, solving_order, twisting
-from calcpack.framing.carry import carry_down, load_problems
+from calcpack.framing.bearings import bearings, check_falling, solving_order
+from calcpack.framing.carry import carry_down
+from calcpack.framing.notes import passed_over, twisting
 from calcpack.framing.plan import Plan
 from calcpack.framing.summary import describe
 from calcpack.framing.transfer import transfers
@@ -17,7 +18,6 @@ from calcpack.framing.types import (
     PanelTransfer,
     Placement,
 )
-from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Job
 
 __all__ = [
@@ -78,12 +78,9 @@ def frame(job: Job) -> Frame:
     [40.0, 20.0, 40.0, 20.0]
     """
     plan = Plan(job)
-    problems = [*beam_problems(plan), *load_problems(plan)]
-    panels, of_panels, notes = transfers(plan)
-    found, of_bearings, passed = bearings(plan)
-    problems += [*of_panels, *of_bearings]
-    order, rings = solving_order(plan, found)
-    problems += rings
-    if problems:
-        raise CalcpackError(*plan.sorted(problems))
-    return carry_down(plan, panels, found, order, [*notes, *passed, *twisting(plan, found)])
+    panels, notes = transfers(plan)
+    found = bearings(plan)
+    check_falling(plan)
+    order = solving_order(plan, found)
+    plan.problems.tell()
+    return carry_down(plan, panels, found, order, [*notes, *passed_over(plan), *twisting(plan, found)])

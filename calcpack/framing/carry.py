@@ -8,6 +8,7 @@ from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, field
 from itertools import pairwise
 
+from calcpack.framing.notes import idle, lifting
 from calcpack.framing.plan import Plan
 from calcpack.framing.plane import area
 from calcpack.framing.types import (
@@ -20,8 +21,7 @@ from calcpack.framing.types import (
     PanelTransfer,
     Placement,
 )
-from calcpack.job.errors import Problem
-from calcpack.job.model import CASES, Beam, Case, Panel
+from calcpack.job.model import CASES, Beam, BeamLoad, Case, Panel
 from calcpack.statics import BeamLine, LineLoad, Load, PointLoad, analyse
 
 PlacementKey = tuple[Case, str, int]
@@ -35,27 +35,6 @@ class _Arriving:
     loads: defaultdict[Case, list[Load]] = field(default_factory=lambda: defaultdict(list))
     placements: defaultdict[PlacementKey, list[Load]] = field(default_factory=lambda: defaultdict(list))
     carried: list[CarriedReaction] = field(default_factory=list)
-
-
-def load_problems(plan: Plan) -> list[Problem]:
-    """Loads given on beams that do not lie on them."""
-    problems = []
-    for beam in plan.job.beams:
-        if beam.mark not in plan.beams:
-            continue
-        length = plan.beams[beam.mark].length
-        long = f"the beam is {plan.length(length)} long"
-        for load in beam.loads:
-            end = length if load.end is None else load.end
-            places = (("at", load.at),) if load.point is not None else (("from", load.start), ("to", end))
-            for key, place in places:
-                if place is not None and not -plan.tolerance.close <= place <= length + plan.tolerance.close:
-                    message = f"{plan.length(place)} from the start is off the beam"
-                    problems.append(plan.load_problem(beam, load, key, message, long))
-            if load.point is None and end - load.start <= plan.tolerance.close:
-                message = f"the load ends at {plan.length(end)}, not beyond where it begins"
-                problems.append(plan.load_problem(beam, load, "to", message, "'to' lies beyond 'from'"))
-    return problems
 
 
 def carry_down(
@@ -119,7 +98,7 @@ def carry_down(
         supports=supports,
         applied={case: _applied(plan, case) for case in cases},
         cases=cases,
-        notes=(*notes, *_idle(plan, panels, found), *_lifting(plan, solved)),
+        notes=(*notes, *idle(plan, panels, found), *lifting(plan, solved)),
     )
 
 
@@ -152,20 +131,17 @@ def _own_loads(
     for number, load in enumerate(beam.loads, 1):
         if load.case == case:
             source = f"load {number}"
-            if load.point is not None:
-                loads.append(PointLoad(_on_beam(load.at or 0.0, length), load.point, source))
-            else:
-                first = load.line or 0.0
-                last = first if load.line_end is None else load.line_end
-                end = length if load.end is None else load.end
-                loads.append(
-                    LineLoad(_on_beam(load.start, length), _on_beam(end, length), first, last, source)
-                )
+            loads.append(_given(load, length, source))
     return loads
 
 
-def _on_beam(place: float, length: float) -> float:
-    return min(max(place, 0.0), length)
+def _given(load: BeamLoad, length: float, source: str) -> Load:
+    """A load given on a beam, with what was left out."""
+    if load.point is not None:
+        return PointLoad(min(load.at or 0.0, length), load.point, source)
+    first = load.line or 0.0
+    last = first if load.line_end is None else load.line_end
+    return LineLoad(load.start, length if load.end is None else min(load.end, length), first, last, source)
 
 
 def _panel_loads(
@@ -287,29 +263,3 @@ def _applied(plan: Plan, case: Case) -> float:
     for beam in plan.job.beams:
         forces += [load.total for load in _own_loads(plan, beam, case, (), ())]
     return math.fsum(forces)
-
-
-def _idle(
-    plan: Plan, panels: Mapping[str, PanelTransfer], found: Mapping[str, tuple[Bearing, ...]]
-) -> list[str]:
-    """Columns and walls on which nothing stands."""
-    used = {(bearing.kind, bearing.mark) for row in found.values() for bearing in row}
-    for transfer in panels.values():
-        used.update((share.carrier_kind, share.carrier) for share in transfer.shares)
-    notes = [f"column {c.mark} carries nothing" for c in plan.job.columns if ("column", c.mark) not in used]
-    return notes + [f"wall {w.mark} carries nothing" for w in plan.job.walls if ("wall", w.mark) not in used]
-
-
-def _lifting(plan: Plan, solved: Mapping[str, FramedBeam]) -> list[str]:
-    """Bearings that a beam pulls up under dead load alone."""
-    notes = []
-    for beam in plan.job.beams:
-        framed = solved[beam.mark]
-        largest = sum(abs(load.total) for load in framed.loads.get("dead", ()))
-        for bearing, reaction in zip(framed.bearings, framed.reactions.get("dead", ()), strict=False):
-            if reaction < -1e-9 * largest:
-                notes.append(
-                    f"beam {beam.mark} lifts off at {bearing.name} under dead load: "
-                    f"{bearing.kind} {bearing.mark} has to hold it down"
-                )
-    return notes

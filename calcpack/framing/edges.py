@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
-from itertools import combinations, pairwise
+from itertools import pairwise
 from typing import Literal
 
 from calcpack.framing.plan import NEARLY, Plan
 from calcpack.framing.plane import Interval, Line, between, clipped, cross, gaps, inside
-from calcpack.job.errors import Problem
-from calcpack.job.model import Beam, Panel, Wall
+from calcpack.job.model import Panel, Point
 
 Kind = Literal["beam", "wall"]
 
@@ -62,25 +62,19 @@ class Edge:
         return bool(self.pieces)
 
 
-def panel_edges(plan: Plan) -> tuple[list[tuple[Edge, ...]], list[Problem]]:
-    """The edges of every panel, and what is wrong with what runs along them.
-
-    Returns
-    -------
-    edges : list of tuples of Edge, panel by panel
-        An edge with a fault is left free.
-    problems : list
-    """
-    problems: list[Problem] = []
-    found = []
+def panel_edges(plan: Plan) -> list[tuple[Edge, ...] | None]:
+    """The edges of every panel; None for a panel where something is wrong with what runs along them."""
+    found: list[tuple[Edge, ...] | None] = []
     for number, panel in enumerate(plan.job.panels):
         row = []
         for line in plan.panels[number]:
             neighbours, beyond = _beyond(plan, number, line)
-            pieces = _pieces(plan, panel, line, problems)
-            row.append(Edge(line, pieces, neighbours, not gaps(beyond, line.length, plan.tolerance.close)))
-        found.append(tuple(row))
-    return found, problems
+            pieces = _pieces(plan, panel, line)
+            if pieces is not None:
+                continuous = not gaps(beyond, line.length, plan.tolerance.close)
+                row.append(Edge(line, pieces, neighbours, continuous))
+        found.append(tuple(row) if len(row) == len(panel.corners) else None)
+    return found
 
 
 def _beyond(plan: Plan, number: int, line: Line) -> tuple[tuple[str, ...], list[Interval]]:
@@ -96,40 +90,42 @@ def _beyond(plan: Plan, number: int, line: Line) -> tuple[tuple[str, ...], list[
     return tuple(marks), covered
 
 
-def _pieces(plan: Plan, panel: Panel, line: Line, problems: list[Problem]) -> tuple[Piece, ...]:
-    """What runs under an edge, in order along it; empty for a free edge and where something is wrong."""
+def _pieces(plan: Plan, panel: Panel, line: Line) -> tuple[Piece, ...] | None:
+    """What runs under an edge, in order along it; empty for a free edge, None where something is wrong."""
     close = plan.tolerance.close
     pieces: list[Piece] = []
-    faults: list[Problem] = []
-    for kind, mark, run in _runs(plan, line):
-        stretch = line.beside(run)
+    right = True
+    for kind, mark, carrier in _lines(plan, line):
+        stretch = line.beside(carrier)
         if stretch is None or stretch[1] - stretch[0] <= close:
             continue
         start, end, gap = stretch
         if gap <= close:
-            carrier = plan.beams[mark] if kind == "beam" else plan.walls[mark]
             at = [carrier.place(line.point(along))[0] for along in (start, end)]
             pieces.append(Piece(start, end, kind, mark, at[0], at[1]))
         elif gap <= NEARLY and end - start > 10 * NEARLY:
-            faults.append(_beside(plan, panel, line, kind, mark, stretch))
+            _beside(plan, panel, line, kind, mark, gap)
+            right = False
     pieces.sort(key=lambda piece: (piece.start, piece.end))
     open_parts = gaps(((piece.start, piece.end) for piece in pieces), line.length, close)
-    if pieces and open_parts and not faults:
-        faults.append(_partly(plan, panel, line, pieces, open_parts))
-    for first, second in combinations(pieces, 2):
-        if min(first.end, second.end) - second.start > close:
-            faults.append(_two_supports(plan, panel, line, first, second))
-    problems += faults
-    return () if faults or not pieces else _joined(plan, line, pieces)
+    if pieces and open_parts and right:
+        _partly(plan, panel, line, pieces, open_parts)
+        right = False
+    for number, piece in enumerate(pieces[1:], 1):
+        farthest = max(pieces[:number], key=lambda before: before.end)
+        if min(farthest.end, piece.end) - piece.start > close:
+            _two_supports(plan, panel, line, farthest, piece)
+            right = False
+    if not right:
+        return None
+    return _joined(plan, line, pieces) if pieces else ()
 
 
-def _runs(plan: Plan, line: Line) -> list[tuple[Kind, str, Line]]:
-    """Every straight run of a beam or wall near a line."""
-    found: list[tuple[Kind, str, Line]] = []
-    for mark in plan.beams_near(line.start, line.end):
-        found += [("beam", mark, run) for run in plan.runs(plan.by_mark[mark])]
-    found += [("wall", mark, plan.walls[mark]) for mark in plan.walls_near(line.start, line.end)]
-    return found
+def _lines(plan: Plan, line: Line) -> list[tuple[Kind, str, Line]]:
+    """Every beam and wall near a line."""
+    beams, walls = plan.beams_near(line.start, line.end), plan.walls_near(line.start, line.end)
+    found: list[tuple[Kind, str, Line]] = [("beam", mark, plan.beams[mark]) for mark in beams]
+    return [*found, *(("wall", mark, plan.walls[mark]) for mark in walls)]
 
 
 def _joined(plan: Plan, line: Line, pieces: list[Piece]) -> tuple[Piece, ...]:
@@ -155,19 +151,14 @@ def _snapped(place: float, knots: tuple[float, ...], close: float) -> float:
 
 
 def edge_name(plan: Plan, line: Line) -> str:
-    """An edge in words.
-
-    Named by its two corners: "the edge from A1 to B1".
-    """
+    """An edge in words: the edge from A1 to B1."""
     return f"the edge {plan.stretch(line, 0.0, line.length)}"
 
 
-def _partly(
-    plan: Plan, panel: Panel, line: Line, pieces: list[Piece], parts: tuple[Interval, ...]
-) -> Problem:
+def _partly(plan: Plan, panel: Panel, line: Line, pieces: list[Piece], parts: tuple[Interval, ...]) -> None:
     missing = " and ".join(plan.stretch(line, *part) for part in parts)
     there = " and ".join(dict.fromkeys(f"{piece.kind} {piece.mark}" for piece in pieces))
-    return plan.problem(
+    plan.fault(
         panel,
         "corners",
         f"{edge_name(plan, line)} is supported only in part, by {there}: nothing runs along it {missing}",
@@ -175,9 +166,9 @@ def _partly(
     )
 
 
-def _two_supports(plan: Plan, panel: Panel, line: Line, first: Piece, second: Piece) -> Problem:
+def _two_supports(plan: Plan, panel: Panel, line: Line, first: Piece, second: Piece) -> None:
     where = plan.stretch(line, second.start, min(first.end, second.end))
-    return plan.problem(
+    plan.fault(
         panel,
         "corners",
         f"{edge_name(plan, line)} has two supports on the same stretch: "
@@ -186,27 +177,21 @@ def _two_supports(plan: Plan, panel: Panel, line: Line, first: Piece, second: Pi
     )
 
 
-def _beside(
-    plan: Plan, panel: Panel, line: Line, kind: Kind, mark: str, stretch: tuple[float, float, float]
-) -> Problem:
-    return plan.problem(
+def _beside(plan: Plan, panel: Panel, line: Line, kind: Kind, mark: str, gap: float) -> None:
+    plan.fault(
         panel,
         "corners",
-        f"{kind} {mark} runs {plan.length(stretch[2])} beside {edge_name(plan, line)}, "
+        f"{kind} {mark} runs {plan.length(gap)} beside {edge_name(plan, line)}, "
         "too near to be clear of it and too far to carry it",
         "give both the same points, or one of them more decimals",
     )
 
 
-def lines_inside(plan: Plan) -> list[Problem]:
-    """Beams and walls that run under the inside of a panel."""
-    problems = []
-    lines: list[tuple[Kind, Beam | Wall, Line]] = []
-    for beam in plan.job.beams:
-        if beam.mark in plan.beams:
-            lines += [("beam", beam, run) for run in plan.runs(beam)]
-    lines += [("wall", wall, plan.walls[wall.mark]) for wall in plan.job.walls if wall.mark in plan.walls]
-    for kind, thing, line in lines:
+def check_inside(plan: Plan) -> None:
+    """Fault beams and walls that run under the inside of a panel."""
+    lines: list[tuple[Kind, str, Line]] = [("beam", mark, line) for mark, line in plan.beams.items()]
+    lines += [("wall", mark, line) for mark, line in plan.walls.items()]
+    for kind, mark, line in lines:
         for number in plan.panel_boxes.near((line.start, line.end)):
             panel = plan.job.panels[number]
             chord = _chord(plan.panels[number], line)
@@ -214,16 +199,13 @@ def lines_inside(plan: Plan) -> list[Problem]:
                 continue
             depth = inside(panel.corners, line.point(sum(chord) / 2))
             if depth <= plan.tolerance.close or (depth <= NEARLY and _runs_beside(plan, number, line)):
-                continue  # along an edge, or reported as running beside one
-            problems.append(
-                plan.problem(
-                    panel,
-                    "corners",
-                    f"{kind} {thing.mark} runs under the inside of the panel, {plan.stretch(line, *chord)}",
-                    f"divide the panel along {kind} {thing.mark}: a panel ends where it is supported",
-                )
+                continue  # along an edge, or faulted as running beside one
+            plan.fault(
+                panel,
+                "corners",
+                f"{kind} {mark} runs under the inside of the panel, {plan.stretch(line, *chord)}",
+                f"divide the panel along {kind} {mark}: a panel ends where it is supported",
             )
-    return problems
 
 
 def _runs_beside(plan: Plan, number: int, line: Line) -> bool:
@@ -250,25 +232,27 @@ def _chord(outline: tuple[Line, ...], line: Line) -> Interval | None:
     return (low, high) if high > low else None
 
 
-def overlaps(plan: Plan) -> list[Problem]:
-    """Panels that lie over each other, by more than what counts as one place."""
-    problems = []
-    close, noise = plan.tolerance.close, plan.tolerance.noise
+def check_overlaps(plan: Plan) -> None:
+    """Fault panels that lie over each other, by more than what counts as one place."""
+    noise = plan.tolerance.noise
     for number, panel in enumerate(plan.job.panels):
         for other in plan.panel_boxes.near(panel.corners):
             if other <= number:
                 continue
-            common = plan.job.panels[other].corners
+            over = plan.job.panels[other]
+            common = over.corners
             for edge in plan.panels[number]:
-                common = clipped(common, lambda point, edge=edge: close - edge.place(point)[1], noise)  # type: ignore[misc]
+                common = clipped(common, _shortfall(edge, plan.tolerance.close), noise)
             if common:
-                middle = between(common[0], common[len(common) // 2])
-                problems.append(
-                    plan.problem(
-                        plan.job.panels[other],
-                        "corners",
-                        f"the panel and panel {panel.mark} overlap about {plan.name(middle)}",
-                        "every part of the floor belongs to one panel",
-                    )
+                middle = plan.name(between(common[0], common[len(common) // 2]))
+                plan.fault(
+                    over,
+                    "corners",
+                    f"the panel and panel {panel.mark} overlap about {middle}",
+                    "every part of the floor belongs to one panel",
                 )
-    return problems
+
+
+def _shortfall(edge: Line, depth: float) -> Callable[[Point], float]:
+    """A function that is positive where a point lies less deep than that inside an edge."""
+    return lambda point: depth - edge.place(point)[1]

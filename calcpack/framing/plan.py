@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
-import math
-from collections.abc import Iterable
-from itertools import pairwise
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
 
 from calcpack.framing.plane import Boxes, Line, Tolerance, edges
+from calcpack.job.entries import Problems
 from calcpack.job.errors import Problem
-from calcpack.job.model import Beam, BeamLoad, Column, Job, Panel, Point, Wall
+from calcpack.job.model import Beam, Column, Job, Panel, Point, Wall
 from calcpack.job.units import factor
 
 Thing = Panel | Beam | Column | Wall
@@ -22,6 +24,8 @@ class Plan:
     Parameters
     ----------
     job : Job
+        Outlines convex, beams straight with their points in order, loads on them, as the reader
+        makes sure.
 
     Attributes
     ----------
@@ -29,26 +33,27 @@ class Plan:
     panels : tuple of tuples of Line
         The edges of each panel, in the job's order.
     beams : dict of mark -> Line
-        From a beam's first point to its last. Beams and walls without length are left out.
+        From a beam's first point to its last.
     walls : dict of mark -> Line
+    problems : Problems
+        What was found wrong so far.
     """
 
     def __init__(self, job: Job) -> None:
         self.job = job
+        self.problems = Problems()
         self.tolerance = Tolerance.of(_points(job))
-        close = self.tolerance.close
         self.panels = tuple(edges(panel.corners) for panel in job.panels)
         self.by_mark: dict[str, Beam] = {beam.mark: beam for beam in job.beams}
         self.rank = {beam.mark: number for number, beam in enumerate(job.beams)}
         self.rank_of_panel = {panel.mark: number for number, panel in enumerate(job.panels)}
-        self.beams = _lines(((each.mark, each.points[0], each.points[-1]) for each in job.beams), close)
-        self.walls = _lines(((each.mark, *each.line) for each in job.walls), close)
+        self.beams = {beam.mark: Line(beam.points[0], beam.points[-1]) for beam in job.beams}
+        self.walls = {wall.mark: Line(*wall.line) for wall in job.walls}
         self.panel_boxes = Boxes((panel.corners for panel in job.panels), NEARLY)
         self._beam_marks, self._wall_marks = list(self.beams), list(self.walls)
         self._beam_boxes = Boxes(((line.start, line.end) for line in self.beams.values()), NEARLY)
         self._wall_boxes = Boxes(((line.start, line.end) for line in self.walls.values()), NEARLY)
         self._column_boxes = Boxes(([column.at] for column in job.columns), NEARLY)
-        self._names = _names(job)
 
     def beams_near(self, *points: Point) -> list[str]:
         """Marks of the beams whose box comes near that about these points, in the job's order."""
@@ -67,67 +72,41 @@ class Plan:
         line = self.beams[beam.mark]
         return (0.0, *(line.place(point)[0] for point in beam.points[1:-1]), line.length)
 
-    def runs(self, beam: Beam) -> tuple[Line, ...]:
-        """The lines a beam follows: one, or several where its points are not on one line.
-
-        Such a beam is an error of its own; following it where it goes saves the user errors about
-        the panels beside it that are not there.
-        """
-        line = self.beams[beam.mark]
-        places = [line.place(point) for point in beam.points]
-        if all(abs(left) <= self.tolerance.close for _, left in places):
-            along = [place for place, _ in places]
-            low, high = along.index(min(along)), along.index(max(along))
-            return (
-                line if (low, high) == (0, len(along) - 1) else Line(beam.points[low], beam.points[high]),
-            )
-        pieces = (Line(a, b) for a, b in pairwise(beam.points))
-        return tuple(piece for piece in pieces if piece.length > self.tolerance.close)
-
     # words
 
     def name(self, point: Point) -> str:
         """A point as the user says it: a grid point, or any name given to it, or its coordinates."""
-        for place, name in self._names:
-            if math.dist(place, point) <= self.tolerance.close:
-                return name
-        return self.coordinates(point, 5)
+        places, names = self._names
+        near = np.hypot(*(places - point).T) <= self.tolerance.close
+        if near.any():
+            return names[int(near.argmax())]
+        return f"({self.length(point[0])}, {self.length(point[1])})"
 
-    def coordinates(self, point: Point, digits: int) -> str:
-        """A point by its coordinates."""
-        return f"({self.length(point[0], digits)}, {self.length(point[1], digits)})"
+    @cached_property
+    def _names(self) -> tuple[NDArray[np.float64], list[str]]:
+        named = _named_points(self.job)
+        return np.array([place for place, _ in named]).reshape(-1, 2), [name for _, name in named]
 
     def stretch(self, line: Line, start: float, end: float) -> str:
         """A part of a line in words: from here to there."""
         return f"from {self.name(line.point(start))} to {self.name(line.point(end))}"
 
-    def length(self, value: float, digits: int = 5) -> str:
+    def length(self, value: float) -> str:
         """A length in the job's units, short."""
         if self.job.job.units == "US":
             unit = "in" if 0 < abs(value) < factor("ft") else "ft"
         else:
             unit = "mm" if 0 < abs(value) < 0.1 else "m"
-        return f"{round(value / factor(unit), 9) + 0.0:.{digits}g} {unit}"
+        return f"{round(value / factor(unit), 9) + 0.0:.5g} {unit}"
 
-    def problem(self, thing: Thing, key: str, message: str, remedy: str = "") -> Problem:
-        """A problem with its place in the user's files."""
+    def fault(self, thing: Thing, key: str, message: str, remedy: str) -> None:
+        """Note a problem, with its place in the user's files."""
         mark = f"{type(thing).__name__.lower()} {thing.mark}"
         place = thing.place
         line = self.job.lines.get(f"{mark} {key}") if place.file == self.job.file else None
-        return Problem(message, remedy, place.file, place.line if line is None else line, mark, key)
-
-    def load_problem(self, beam: Beam, load: BeamLoad, key: str, message: str, remedy: str) -> Problem:
-        """A problem with one of a beam's own loads."""
-        return Problem(message, remedy, load.place.file, load.place.line, f"beam {beam.mark}", f"load.{key}")
-
-    def sorted(self, problems: Iterable[Problem]) -> list[Problem]:
-        """Each problem once, the job file first, from top to bottom."""
-        order = dict.fromkeys(problems)
-        return sorted(order, key=lambda each: (each.file != self.job.file, each.file or "", each.line or 0))
-
-
-def _lines(things: Iterable[tuple[str, Point, Point]], close: float) -> dict[str, Line]:
-    return {mark: Line(start, end) for mark, start, end in things if math.dist(start, end) > close}
+        self.problems.add(
+            Problem(message, remedy, place.file, place.line if line is None else line, mark, key)
+        )
 
 
 def _points(job: Job) -> list[Point]:
@@ -139,7 +118,7 @@ def _points(job: Job) -> list[Point]:
     ]
 
 
-def _names(job: Job) -> list[tuple[Point, str]]:
+def _named_points(job: Job) -> list[tuple[Point, str]]:
     grid = [((x, y), f"{a}{b}") for a, x in job.grid_x.items() for b, y in job.grid_y.items()]
     given: list[tuple[Point, str]] = []
     for panel in job.panels:

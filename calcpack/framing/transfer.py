@@ -9,11 +9,10 @@ from itertools import pairwise
 from typing import Literal
 
 from calcpack.framing.draining import Basin, nearest_edges, strips_along, unit
-from calcpack.framing.edges import Edge, Piece, edge_name, lines_inside, overlaps, panel_edges
+from calcpack.framing.edges import Edge, Piece, check_inside, check_overlaps, edge_name, panel_edges
 from calcpack.framing.plan import Plan
 from calcpack.framing.plane import area, dot, edges, smallest_box
 from calcpack.framing.types import EdgeShare, PanelTransfer
-from calcpack.job.errors import Problem
 from calcpack.job.model import Basis, Panel, Point
 
 SQUARE = 1e-3
@@ -116,26 +115,20 @@ def rectangle_ways(corners: Sequence[Point]) -> tuple[tuple[Point, float], tuple
     return ways[0], ways[1]
 
 
-def transfers(plan: Plan) -> tuple[dict[str, PanelTransfer], list[Problem], list[str]]:
-    """How every panel hands its load on.
+def transfers(plan: Plan) -> tuple[dict[str, PanelTransfer], list[str]]:
+    """How every panel hands its load on, and what is worth a second look; faults go to the plan.
 
-    Returns
-    -------
-    panels : dict of mark -> PanelTransfer
-        Only those without a fault.
-    problems : list
-    notes : list of str
+    Panels with a fault along their edges are left out.
     """
-    found, problems = panel_edges(plan)
-    wrong = {problem.mark for problem in problems}
-    problems += [*lines_inside(plan), *overlaps(plan)]
+    check_inside(plan)
+    check_overlaps(plan)
     panels: dict[str, PanelTransfer] = {}
     notes: list[str] = []
     hung: dict[tuple[str, str], str] = {}
-    for panel, row in zip(plan.job.panels, found, strict=True):
-        if f"panel {panel.mark}" in wrong:
+    for panel, row in zip(plan.job.panels, panel_edges(plan), strict=True):
+        if row is None:
             continue
-        panels[panel.mark] = _transfer(plan, panel, row, problems, notes)
+        panels[panel.mark] = _transfer(plan, panel, row, notes)
         supported = [edge for edge in row if edge.supported]
         if len(supported) == 1:
             for neighbour in supported[0].neighbours:
@@ -153,29 +146,25 @@ def transfers(plan: Plan) -> tuple[dict[str, PanelTransfer], list[Problem], list
                 f"panels {mark} and {neighbour} are both cantilever slabs off {where}: "
                 "they only balance each other"
             )
-    return panels, problems, notes
+    return panels, notes
 
 
-def _transfer(
-    plan: Plan, panel: Panel, row: tuple[Edge, ...], problems: list[Problem], notes: list[str]
-) -> PanelTransfer:
+def _transfer(plan: Plan, panel: Panel, row: tuple[Edge, ...], notes: list[str]) -> PanelTransfer:
     supported = tuple(edge.supported for edge in row)
     continuous = tuple(edge.continuous for edge in row)
     basins: dict[int, Basin] = {}
     way = Way("two-way", None, "no support")
     if not any(supported):
-        problems.append(
-            plan.problem(
-                panel,
-                "corners",
-                "the panel has no support: no beam and no wall runs along any of its edges",
-                "give a beam or a wall the same two points as an edge of the panel",
-            )
+        plan.fault(
+            panel,
+            "corners",
+            "the panel has no support: no beam and no wall runs along any of its edges",
+            "give a beam or a wall the same two points as an edge of the panel",
         )
     else:
         way = choose(panel, supported, plan.job.basis)
-        _check_cantilever(plan, panel, row, problems)
-        basins = _basins(plan, panel, row, way, problems, notes)
+        _check_cantilever(plan, panel, row)
+        basins = _basins(plan, panel, row, way, notes)
     shares = tuple(
         share
         for number, basin in sorted(basins.items())
@@ -193,7 +182,7 @@ def _transfer(
     )  # fmt: skip
 
 
-def _check_cantilever(plan: Plan, panel: Panel, row: tuple[Edge, ...], problems: list[Problem]) -> None:
+def _check_cantilever(plan: Plan, panel: Panel, row: tuple[Edge, ...]) -> None:
     held = [edge for edge in row if edge.supported]
     if len(held) != 1 or held[0].continuous:
         return
@@ -202,20 +191,16 @@ def _check_cantilever(plan: Plan, panel: Panel, row: tuple[Edge, ...], problems:
         beyond = f"panel {' and panel '.join(held[0].neighbours)} covers only part of the other side"
     else:
         beyond = "no panel lies on the other side"
-    problems.append(
-        plan.problem(
-            panel,
-            "corners",
-            f"the panel is a cantilever slab off {where}, its only support, "
-            f"and is not continuous over it: {beyond}",
-            "continue the slab over the whole of that edge, or support another edge",
-        )
+    plan.fault(
+        panel,
+        "corners",
+        f"the panel is a cantilever slab off {where}, its only support, "
+        f"and is not continuous over it: {beyond}",
+        "continue the slab over the whole of that edge, or support another edge",
     )
 
 
-def _basins(
-    plan: Plan, panel: Panel, row: tuple[Edge, ...], way: Way, problems: list[Problem], notes: list[str]
-) -> dict[int, Basin]:
+def _basins(plan: Plan, panel: Panel, row: tuple[Edge, ...], way: Way, notes: list[str]) -> dict[int, Basin]:
     lines = [edge.line for edge in row]
     held = [number for number, edge in enumerate(row) if edge.supported]
     noise = plan.tolerance.noise
@@ -226,13 +211,11 @@ def _basins(
     basins, lost, hung = strips_along(way.direction, [edge.supported for edge in row], lines, noise)
     for pair in lost:
         first, last = (edge_name(plan, lines[number]) for number in pair)
-        problems.append(
-            plan.problem(
-                panel,
-                "transfer",
-                f"the strips between {first} and {last} have no support at either end",
-                "turn the span, or support one of the two edges",
-            )
+        plan.fault(
+            panel,
+            "transfer",
+            f"the strips between {first} and {last} have no support at either end",
+            "turn the span, or support one of the two edges",
         )
     for number in hung:
         if len(held) > 1 and not row[number].continuous:
