@@ -279,9 +279,13 @@ def _reach(ring: Sequence[Pair], left: float, right: float) -> Pair:
 
 
 def _named(layer: Layer, system: System) -> str:
-    source = shorten(layer.source, SOURCE_ROOM, SMALL)
-    value = _value(layer, system)
-    return f"{source} {value}" if source else value
+    return _with_value(shorten(layer.source, SOURCE_ROOM, SMALL), _value(layer, system))
+
+
+def _with_value(source: str, value: str) -> str:
+    """A name and its value; "load 4" and a number next to it are kept apart."""
+    numbered = " " in source and source[-1:].isdigit()
+    return f"{source}{':' if numbered else ''} {value}".strip()
 
 
 def _value(layer: Layer, system: System) -> str:
@@ -292,7 +296,7 @@ def _value(layer: Layer, system: System) -> str:
 
 
 def _point_text(load: PointLoad, system: System) -> str:
-    return f"{shorten(load.source, SOURCE_ROOM, SMALL)} {show(load.force, 'kN', system)}".strip()
+    return _with_value(shorten(load.source, SOURCE_ROOM, SMALL), show(load.force, "kN", system))
 
 
 def spoken_loads(layers: Sequence[Layer], loads: Sequence[Load], system: System) -> str:
@@ -301,10 +305,10 @@ def spoken_loads(layers: Sequence[Layer], loads: Sequence[Load], system: System)
     for layer in layers:
         even = layer.ends() is not None
         where = "" if even else f", largest at {length_text(layer.peak()[0], system)}"
-        parts.append(f"{layer.source} {_value(layer, system)}{where}".strip())
+        parts.append(f"{_with_value(layer.source, _value(layer, system))}{where}")
     for at, group in point_loads(loads):
         parts += [
-            f"{load.source} {show(load.force, 'kN', system)} at {length_text(at, system)}".strip()
+            f"{_with_value(load.source, show(load.force, 'kN', system))} at {length_text(at, system)}"
             for load in group
         ]
     return "; ".join(parts) or "none"

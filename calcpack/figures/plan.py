@@ -153,19 +153,17 @@ def _clipped(
 
 def _regions(drawing: Drawing, plan: PlanShape, view: View) -> list[Ring]:
     """The draining regions, hatched so that neighbours differ."""
-    corners = {panel.mark: panel.corners for panel in plan.panels}
+    whole = {panel.mark: panel.corners for panel in plan.panels}
     chosen: dict[str, int] = {}
+    taken: list[tuple[str, Array]] = []
     drawn = []
     for mark, outline in plan.regions:
         if len(outline) < 3:
             continue
         if mark not in chosen:
-            taken = {
-                chosen[other]
-                for other in chosen
-                if mark in corners and other in corners and _touch(corners[mark], corners[other])
-            }
-            chosen[mark] = next((n for n in range(len(HATCHES)) if n not in taken), 0)
+            beside = {chosen[other] for other, area in taken if _touch(whole.get(mark, outline), area)}
+            chosen[mark] = next((n for n in range(len(HATCHES)) if n not in beside), 0)
+        taken.append((mark, whole.get(mark, outline)))
         ring = view.at(outline)
         drawing.hatch(ring, HATCHES[chosen[mark]], 1.15, Stroke(HAIR, INK))
         drawing.outline(ring, Stroke(0.4, INK))

@@ -49,7 +49,7 @@ def test_the_pile_carries_what_the_loads_do():
 
 def test_a_load_that_varies_tells_both_ends():
     figure = load_figure(4.0, TWO[:1], {"live": [LineLoad(0.5, 3.5, 2.0, 5.0, "load 1")]}, "B1")
-    assert f"load 1 2.00{NBSP}kN/m to 5.00{NBSP}kN/m" in words(figure)
+    assert f"load 1: 2.00{NBSP}kN/m to 5.00{NBSP}kN/m" in words(figure)
 
 
 def test_a_source_looks_alike_in_every_case():

@@ -47,6 +47,12 @@ def test_two_panels_are_hatched_in_two_directions():
     assert found[135] > 5
 
 
+def test_regions_of_panels_that_are_not_in_the_plan_differ_too():
+    found = directions(drawn("plan, hostile"))
+    assert found[45] > 5
+    assert found[135] > 5
+
+
 def test_a_continuous_beams_four_panels_differ_from_their_neighbours():
     plan = small_floor()
     corners = {"P1": (0, 0), "P2": (6, 0), "P3": (0, 4.5), "P4": (6, 4.5)}
