@@ -5,6 +5,7 @@ from __future__ import annotations
 import base64
 import functools
 import hashlib
+import re
 from collections.abc import Iterable, Sequence
 
 import jinja2
@@ -14,7 +15,7 @@ from calcpack.export import blocks as kinds
 from calcpack.export.blocks import Block, Run, every, formulas_of, plain_text
 from calcpack.export.content import SheetContent
 from calcpack.export.mathematics import Mathematics
-from calcpack.export.paper import foot_of, line_alt, png_bytes, wide_columns
+from calcpack.export.paper import foot_of, line_alt, png_bytes
 from calcpack.export.svg import with_prefix
 from calcpack.export.text import shown_date
 from calcpack.export.typesetting import page_folder
@@ -26,9 +27,11 @@ _FACES = (
     ("Libertinus Serif", "LibertinusSerif-Italic", 400, "italic"),
     ("Libertinus Math", "LibertinusMath-Regular", 400, "normal"),
 )
-_SHORT = 52  # spoken characters a formula may have to stand on one line
+_TAG = re.compile(r"<[^<>]*>")
+_SHORT = 60  # characters a formula may have to stand on one line
 _LARGER = 1.25  # a figure's lettering on the screen, whose text is larger than the paper's
 _STEP, _LEASTS = 40, 25  # a figure is not made narrower than so many steps [px]
+_WORDS = 28  # letters from which on a cell holds words
 _SHARES = 24  # widths of columns in steps
 
 
@@ -111,7 +114,7 @@ class Screen:
             "drawing": self.drawing,
             "png": lambda picture: base64.b64encode(png_bytes(picture)).decode(),
             "share": share,
-            "wide": lambda table: any(wide_columns(table)),
+            "wide": lambda table: is_wide(table),
             "governing": lambda ratios: max((row.ratio for row in ratios.rows), default=0.0),
             "section_id": lambda heading: self._sections[id(heading)],
         }
@@ -147,7 +150,8 @@ class Screen:
     def short(self, line: kinds.Line) -> bool:
         """Whether a formula is short enough to stand on one line."""
         chunks = [line.symbol, *(chunk for row in line.rows for chunk in row)]
-        return sum(len(self._mathematics[chunk].spoken) + 1 for chunk in chunks if chunk.strip()) <= _SHORT
+        shown = (_TAG.sub("", self._mathematics[chunk].mathml) or chunk for chunk in chunks if chunk.strip())
+        return sum(len(text) + 1 for text in shown) <= _SHORT
 
     def step_alt(self, step: kinds.Step) -> str:
         """What is said for the equations of a step."""
@@ -179,6 +183,14 @@ def share(columns: kinds.Columns, number: int) -> int:
     """A column's part of the width, in steps."""
     widths = columns.widths or (1.0,) * len(columns.columns)
     return max(1, round(_SHARES * widths[number] / sum(widths)))
+
+
+def is_wide(table: kinds.Table) -> bool:
+    """Whether a table has a column of words rather than of numbers, which the page's width serves."""
+    return any(
+        column.align == "left" and any(len(plain_text(row[number])) > _WORDS for row in table.rows)
+        for number, column in enumerate(table.columns)
+    )
 
 
 def header_fields(header: Header) -> list[tuple[str, str]]:

@@ -161,10 +161,7 @@ class Paper:
         return {"says": self.runs(step.says, place), "rows": rows, "alt": with_known_letters(alt)}
 
     def _table(self, table: kinds.Table, place: _Place) -> Data:
-        columns = [
-            {"head": self.runs(column.head, place), "align": column.align, "wide": wide}
-            for column, wide in zip(table.columns, wide_columns(table), strict=True)
-        ]
+        columns = [{"head": self.runs(column.head, place), "align": column.align} for column in table.columns]
         return {
             "caption": self.runs(table.caption, place),
             "columns": columns,
@@ -236,18 +233,6 @@ def drawn_letters(svg: str) -> str:
         ),
         svg,
     )
-
-
-def wide_columns(table: kinds.Table) -> list[bool]:
-    """Which columns share the room left over: those of words rather than of numbers.
-
-    A column is of words where it is aligned left and one of its cells is long.
-    """
-    found = []
-    for number, column in enumerate(table.columns):
-        longest = max((len(kinds.plain_text(row[number])) for row in table.rows), default=0)
-        found.append(column.align == "left" and longest > 28)
-    return found
 
 
 def line_alt(line: kinds.Line, mathematics: Mathematics) -> str:
