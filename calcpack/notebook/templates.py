@@ -149,7 +149,9 @@ def _settle(
     settled = {}
     for key in given:
         if key not in known:
-            problems.append(Problem(f"unknown key '{key}'", nearest(key, known), mark=mark, key=prefix))
+            problems.append(
+                Problem("there is no such key", nearest(key, known), mark=mark, key=f"{prefix}.{key}")
+            )
     for key, parameter in known.items():
         path = f"{prefix}.{key}"
         if key not in given:

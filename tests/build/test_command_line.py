@@ -64,11 +64,11 @@ REFUSED = {
     ),
     "unknown design key": (
         ('material = "m"\n', 'material = "m"\n[beam.design]\ndeflection_limit = { live = 360 }\n'),
-        "beam B1: design.deflection_limit: unknown key; did you mean 'deflection_limits'?",
+        "job.toml:26: beam B1: design.deflection_limit: there is no such key; did you mean 'deflection_limits'?",
     ),
     "design value of the wrong kind": (
         ('material = "m"\n', 'material = "m"\n[beam.design]\ndeflection_limits = { live = "360" }\n'),
-        "beam B1: design.deflection_limits.live: a plain number is expected, not '360'",
+        "job.toml:26: beam B1: design.deflection_limits.live: a plain number is expected, not '360'",
     ),
     "category of use": (
         ("[grid]", '[basis]\noccupancy = "X"\n[grid]'),
@@ -151,7 +151,7 @@ def test_all_that_is_wrong_is_said_at_once(run, job, tmp_path):
 def test_unknown_mark(run, job, tmp_path):
     status, _, err = run("build", job, "--out", tmp_path / "out", "--only", "B2")
     assert status == 2
-    assert err == "error: job.toml: no beam 'B2' to build; did you mean 'B1'?\n"
+    assert err == "error: job.toml: no beam 'B2' to build; it can only be 'B1'\n"
 
 
 def test_a_missing_job_and_a_file_for_a_folder(run, job, tmp_path):
