@@ -130,8 +130,7 @@ def _own_loads(
         loads += _panel_loads(panel.mark, panel.pressure(case), share, knots, plan.tolerance.noise)
     for number, load in enumerate(beam.loads, 1):
         if load.case == case:
-            source = f"load {number}"
-            loads.append(_given(load, length, source))
+            loads.append(_given(load, length, f"load {number}"))
     return loads
 
 
@@ -156,9 +155,10 @@ def _panel_loads(
         return nearest if abs(nearest - along) <= noise else along
 
     loads: list[Load] = []
-    for (start, first), (end, last) in pairwise(share.depth):
+    places = [(settled(along), depth) for along, depth in share.depth]
+    for (start, first), (end, last) in pairwise(places):
         if end > start and (first or last):
-            loads.append(LineLoad(settled(start), settled(end), pressure * first, pressure * last, source))
+            loads.append(LineLoad(start, end, pressure * first, pressure * last, source))
     loads += [PointLoad(settled(along), pressure * size, source) for along, size in share.ends]
     return loads
 

@@ -6,10 +6,35 @@ import math
 from collections.abc import Mapping
 
 from calcpack.framing.bearings import free_points
+from calcpack.framing.edges import Edge, edge_name
 from calcpack.framing.plan import Plan
 from calcpack.framing.plane import dot
 from calcpack.framing.types import Bearing, FramedBeam, PanelTransfer
 from calcpack.job.model import Beam, Point
+
+
+def between_panels(plan: Plan, rows: Mapping[str, tuple[Edge, ...]]) -> list[str]:
+    """Panels that meet over nothing, and cantilever slabs on either side of one edge."""
+    notes = []
+    hung: dict[tuple[str, str], str] = {}
+    for mark, row in rows.items():
+        supported = [edge for edge in row if edge.supported]
+        for edge in row:
+            for neighbour in edge.neighbours:
+                if supported == [edge]:
+                    hung[mark, neighbour] = edge_name(plan, edge.line)
+                elif not edge.supported and plan.rank_of_panel[mark] < plan.rank_of_panel[neighbour]:
+                    notes.append(
+                        f"panels {mark} and {neighbour} meet at {edge_name(plan, edge.line)} "
+                        "with nothing under it: it is a free edge of both"
+                    )
+    for (mark, neighbour), where in hung.items():
+        if (neighbour, mark) in hung and plan.rank_of_panel[mark] < plan.rank_of_panel[neighbour]:
+            notes.append(
+                f"panels {mark} and {neighbour} are both cantilever slabs off {where}: "
+                "they only balance each other"
+            )
+    return notes
 
 
 def passed_over(plan: Plan) -> list[str]:

@@ -10,6 +10,7 @@ from typing import Literal
 
 from calcpack.framing.draining import Basin, nearest_edges, strips_along, unit
 from calcpack.framing.edges import Edge, Piece, check_inside, check_overlaps, edge_name, panel_edges
+from calcpack.framing.notes import between_panels
 from calcpack.framing.plan import Plan
 from calcpack.framing.plane import area, dot, edges, smallest_box
 from calcpack.framing.types import EdgeShare, PanelTransfer
@@ -122,31 +123,14 @@ def transfers(plan: Plan) -> tuple[dict[str, PanelTransfer], list[str]]:
     """
     check_inside(plan)
     check_overlaps(plan)
-    panels: dict[str, PanelTransfer] = {}
+    rows = {panel.mark: row for panel, row in zip(plan.job.panels, panel_edges(plan), strict=True) if row}
     notes: list[str] = []
-    hung: dict[tuple[str, str], str] = {}
-    for panel, row in zip(plan.job.panels, panel_edges(plan), strict=True):
-        if row is None:
-            continue
-        panels[panel.mark] = _transfer(plan, panel, row, notes)
-        supported = [edge for edge in row if edge.supported]
-        if len(supported) == 1:
-            for neighbour in supported[0].neighbours:
-                hung[panel.mark, neighbour] = edge_name(plan, supported[0].line)
-        for edge in row:
-            for neighbour in edge.neighbours if not edge.supported else ():
-                if plan.rank_of_panel[panel.mark] < plan.rank_of_panel[neighbour]:
-                    notes.append(
-                        f"panels {panel.mark} and {neighbour} meet at {edge_name(plan, edge.line)} "
-                        "with nothing under it: it is a free edge of both"
-                    )
-    for (mark, neighbour), where in hung.items():
-        if (neighbour, mark) in hung and plan.rank_of_panel[mark] < plan.rank_of_panel[neighbour]:
-            notes.append(
-                f"panels {mark} and {neighbour} are both cantilever slabs off {where}: "
-                "they only balance each other"
-            )
-    return panels, notes
+    panels = {
+        panel.mark: _transfer(plan, panel, rows[panel.mark], notes)
+        for panel in plan.job.panels
+        if panel.mark in rows
+    }
+    return panels, [*notes, *between_panels(plan, rows)]
 
 
 def _transfer(plan: Plan, panel: Panel, row: tuple[Edge, ...], notes: list[str]) -> PanelTransfer:
@@ -227,7 +211,7 @@ def _basins(plan: Plan, panel: Panel, row: tuple[Edge, ...], way: Way, notes: li
 
 
 def _share(number: int, edge: Edge, piece: Piece, basin: Basin) -> EdgeShare | None:
-    """What one beam or wall under an edge gets, with places along the beam or wall."""
+    """What one beam or wall under an edge gets, with places along the beam or wall; None for nothing."""
     drained = basin.onto(piece.start, piece.end)
     if not drained.region:
         return None
