@@ -66,7 +66,8 @@ class Paper:
                 found.append(["m", self.formula(run.text), with_known_letters(formula.spoken)])
             elif run.kind == "line":
                 known = place is not None and run.text in place.lines
-                found.append(["l", run.text, place.label(run.text) if place and known else None])
+                label = place.label(run.text) if place and known else None
+                found.append(["l", with_known_letters(run.text), label])
             else:
                 for number, piece in enumerate(pieces(with_known_letters(run.text))):
                     found += [["b"]] if number else []
@@ -95,7 +96,8 @@ class Paper:
         runs = self.runs
         match block:
             case kinds.Heading():
-                data |= {"level": block.level, "number": block.number, "text": runs(block.text, place)}
+                data |= {"level": block.level, "number": with_known_letters(block.number)}
+                data |= {"text": self._heading(block, place)}
             case kinds.Text():
                 data |= {"role": block.role, "runs": runs(block.runs, place)}
             case kinds.Listing():
@@ -121,12 +123,18 @@ class Paper:
                 data |= {"rows": [self._signer(row) for row in block.rows]}
             case kinds.Figure():
                 data |= {"source": drawn_letters(block.svg), "format": "svg", "width-mm": block.width_mm}
-                data |= {"alt": with_known_letters(block.alt), "caption": runs(block.caption, place)}
+                data |= {
+                    "alt": with_known_letters(block.alt) or "figure",
+                    "caption": runs(block.caption, place),
+                }
             case kinds.Picture():
                 data |= self._picture(block)
             case kinds.Formula():
                 alt = block.alt or self._spoken(block.latex)
-                data |= {"formula": self.formula(block.latex), "alt": with_known_letters(alt)}
+                data |= {
+                    "formula": self.formula(block.latex),
+                    "alt": with_known_letters(alt).strip() or "formula",
+                }
             case kinds.Plain():
                 lines = with_known_letters(block.text.expandtabs(4)).split("\n")
                 # A blank that begins a line must not be lost.
@@ -138,10 +146,17 @@ class Paper:
                 }
         return data
 
+    def _heading(self, heading: kinds.Heading, place: _Place) -> list[list[Any]]:
+        """A heading's words; a formula that stands alone is said, as a bookmark holds no formula."""
+        if any(run.kind != "math" and run.text.strip() for run in heading.text):
+            return self.runs(heading.text, place)
+        said = " ".join(self._spoken(run.text) for run in heading.text if run.kind == "math")
+        return self.words(said.strip() or "–")
+
     def _line(self, line: kinds.Line, place: _Place) -> Data:
         rows = [[self.formula(chunk) for chunk in row if chunk.strip()] for row in line.rows]
         return {
-            "no": line.no,
+            "no": with_known_letters(line.no),
             "id": place.label(line.no),
             "kind": line.kind,
             "says": self.runs(line.says, place),
@@ -193,7 +208,11 @@ class Paper:
         name = f"picture{len(self.pictures)}.png"
         self.pictures[name] = raw
         width = int.from_bytes(raw[16:20], "big") / _DOTS_PER_MM
-        return {"picture": name, "width-mm": min(width, 400.0), "alt": with_known_letters(picture.alt)}
+        return {
+            "picture": name,
+            "width-mm": min(width, 400.0),
+            "alt": with_known_letters(picture.alt) or "picture",
+        }
 
 
 @dataclass(frozen=True)

@@ -320,6 +320,48 @@ def rest() -> list[dict[str, Any]]:
     ]
 
 
+NOT_FORMULAS = (
+    r"\input{/etc/passwd}",
+    "#panic(1)",
+    "a $ b",
+    r"\href{x}{<b>}",
+    r"\frac{",
+    "&",
+    "%",
+    r"\text{梁}",
+    "`c`",
+)
+
+
+def empties() -> list[dict[str, Any]]:
+    """Blocks with nothing in them."""
+    return [
+        {"type": "heading", "level": 2, "number": "", "text": ""},
+        {"type": "heading", "level": 1, "number": "1", "text": []},
+        {"type": "heading", "level": 2, "number": "1.1", "text": [{"math": "w_0"}]},
+        {"type": "heading", "level": 2, "number": "梁", "text": ["\u00a0", {"math": " "}]},
+        {"type": "text", "runs": ""},
+        {"type": "list", "items": []},
+        {"type": "list", "items": [""]},
+        line("1.01", "hence", "", "", [], **{"from": ["梁 <1>", "1.02"]}),
+        line("梁 <1>", "take", "", "", []),
+        line("1.02", "require", "", "", [[], [" "]], passes=False),
+        line("1.03", "take", "", "L", []),
+        {"type": "derivation", "steps": []},
+        {"type": "derivation", "steps": [{"says": "", "rows": [], "alt": ""}]},
+        {"type": "table", "columns": [{"head": ""}], "rows": []},
+        {"type": "ratios", "rows": []},
+        {"type": "figure", "svg": figure(), "alt": "", "caption": ""},
+        {"type": "columns", "widths": [], "columns": []},
+        {"type": "columns", "widths": [1, 2], "columns": [[], []]},
+        {"type": "signoff", "rows": []},
+        {"type": "facts", "rows": []},
+        {"type": "notation", "rows": []},
+        {"type": "plain", "text": ""},
+        {"type": "formula", "latex": "", "alt": ""},
+    ]
+
+
 def record(mark: str) -> dict[str, Any]:
     """A sheet record with the results a pack draws on."""
     return {
@@ -415,6 +457,8 @@ def hostile() -> nbformat.NotebookNode:
     blocks: list[dict[str, Any]] = [{"type": "heading", "level": 1, "number": "#1", "text": HOSTILE[0]}]
     for number, words in enumerate(HOSTILE):
         blocks += [
+            line(f"2.{number:02d}", "hence", "no formulas", words, [list(NOT_FORMULAS), [words]]),
+            {"type": "derivation", "steps": [{"says": words, "rows": [*NOT_FORMULAS, words], "alt": ""}]},
             {"type": "text", "role": "body", "runs": [words, {"strong": words}, {"em": words}]},
             line(f"1.{number:02d}", "take", words, "L", [["6"]], cite=words, origin=words, alt=words),
             {

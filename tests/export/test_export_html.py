@@ -132,7 +132,15 @@ def test_hostile_words_are_shown_as_they_are():
     for words in samples.HOSTILE:
         assert squeezed(words) in text
     assert text.count(squeezed(samples.HOSTILE[4])) > 12
+    for words in samples.NOT_FORMULAS[:5]:
+        assert squeezed(words) in text
     assert "49" not in text.replace("1049", "")
+
+
+def test_blocks_with_nothing_in_them_do_no_harm():
+    page = sheet_html(sheet_content(samples.notebook([samples.empties()])))
+    assert_harmless(page)
+    assert 'id="line-1.03"' in page
 
 
 def test_same_content_same_bytes(ordinary, page):

@@ -153,10 +153,18 @@ def test_hostile_words_are_shown_as_they_are():
             assert any(part in text for part in ("שלום", "םולש"))  # in reading or in visual order
         else:
             assert squeezed(with_known_letters(words)) in text, words
+    for words in samples.NOT_FORMULAS[:5]:
+        assert squeezed(words) in text
     assert "⟨U+6881⟩" in text
     file = reader(pdf)
     assert "/OpenAction" not in file.trailer["/Root"]
     assert b"/JavaScript" not in pdf
+
+
+def test_blocks_with_nothing_in_them_do_no_harm():
+    pdf = sheet_pdf(sheet_content(samples.notebook([samples.empties()])))
+    assert identification(pdf)["pdfuaid:part"] == "1"
+    assert "1.03" in page_texts(pdf)[0]
 
 
 def words_on_page(pdf: bytes, folder, page: int) -> list[tuple[float, float, str]]:
