@@ -5,13 +5,24 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
+from typing import Literal
 
 import numpy as np
 from numpy.typing import NDArray
 
 from calcpack.actions.combinations import PLACED, Combination
 from calcpack.job.model import Case
-from calcpack.statics import BeamLine, Envelope, Extreme, Load, Response, analyse, envelope
+from calcpack.statics import (
+    Band,
+    BeamLine,
+    Envelope,
+    Extreme,
+    Load,
+    Response,
+    analyse,
+    enclosing,
+    envelope,
+)
 
 Floats = NDArray[np.float64]
 
@@ -96,6 +107,20 @@ class AnalysedBeam:
     def of_limit(self, limit: str) -> tuple[CombinationResult, ...]:
         """The results of a limit state, "strength" or "service"."""
         return tuple(result for result in self.results if result.combination.limit == limit)
+
+    def band(self, quantity: Literal["moment", "shear", "deflection"], limit: str = "strength") -> Band:
+        """The envelope about all combinations of a limit state, exact at every point.
+
+        Deflections are times E I.
+        """
+        key = (quantity, limit)
+        if key not in self._bands:
+            self._bands[key] = enclosing([getattr(each.envelope, quantity) for each in self.of_limit(limit)])
+        return self._bands[key]
+
+    @cached_property
+    def _bands(self) -> dict[tuple[str, str], Band]:
+        return {}
 
     @cached_property
     def governing_moment(self) -> CombinationResult:

@@ -10,7 +10,6 @@ from calcpack.notebook.sections.resultants import midspan_moment
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import LETTER, Work, summed
 from calcpack.sheet import number
-from calcpack.statics import enclosing
 
 SAMPLES = 120
 
@@ -141,13 +140,12 @@ def state_effects(work: Work) -> None:
 def curves_of(work: Work) -> dict[Quantity, list[CurveData]]:
     """What the figure draws: the envelope over all strength combinations, and the governing one."""
     study, analysed = work.study, work.study.analysed
-    strength = analysed.of_limit("strength")
     curves: dict[Quantity, list[CurveData]] = {}
     always, placed = analysed.factors(analysed.governing_moment.combination)
     governing = analysed.response.combined(always + placed)
     quantities: tuple[Quantity, ...] = ("shear", "moment")
     for quantity in quantities:
-        band = enclosing([getattr(each.envelope, quantity) for each in strength])
+        band = analysed.band(quantity)
         curves[quantity] = [
             (*band.upper.sample(SAMPLES), "upper"),
             (*band.lower.sample(SAMPLES), "lower"),
@@ -172,9 +170,7 @@ def extremes_of(work: Work) -> list[tuple[Quantity, float, float]]:
         for extreme in (analysed.moment_max, analysed.moment_min)
         if study.significant(extreme.value, "moment")
     ]
-    strength = analysed.of_limit("strength")
-    most = max((each.envelope.shear.largest for each in strength), key=lambda e: round(e.value, 9))
-    least = min((each.envelope.shear.smallest for each in strength), key=lambda e: round(e.value, 9))
+    most, least = analysed.band("shear").largest, analysed.band("shear").smallest
     found += [
         ("shear", extreme.value, extreme.at)
         for extreme in (most, least)

@@ -5,8 +5,9 @@ from __future__ import annotations
 from collections.abc import Callable, Sequence
 from typing import Any
 
-from calcpack.equivalent import KINDS, Effect, ShapeKind, responses
+from calcpack.equivalent import KINDS, Effect, Shape, ShapeKind, responses, shape_of
 from calcpack.equivalent.derive import derivation
+from calcpack.figures import free_body
 from calcpack.job.model import Case, EquivalentKind
 from calcpack.notebook.sections.opening import CARRIED_FORWARD
 from calcpack.notebook.sections.resultants import before, resultant, resultant_term
@@ -79,22 +80,28 @@ def state_equivalents(work: Work) -> None:
             "in the pack's appendix.",
         ]
     )
-    for kind in _kinds(work, spans):
-        work.sheet.derivation([step.as_data() for step in derivation(kind, criterion).steps])
+    for kind, shape in _kinds(work, spans).items():
+        with work.sheet.columns([17, 7]) as column:
+            work.sheet.derivation([step.as_data() for step in derivation(kind, criterion).steps])
+            column()
+            held = criterion == "fixed-end moment"
+            work.sheet.figure(free_body(shape, held=held, width_mm=54), "Free body of the derivation.")
     for span in spans:
         _span(work, span, criterion)
 
 
-def _kinds(work: Work, spans: Sequence[SpanLoads]) -> list[ShapeKind]:
-    """The shapes to derive: triangle and trapezoid where they occur, the general one where needed."""
-    found: set[ShapeKind] = set()
+def _kinds(work: Work, spans: Sequence[SpanLoads]) -> dict[ShapeKind, Shape]:
+    """The shapes to derive, each with the first load of its kind; the general one where it is needed."""
+    found: dict[ShapeKind, Shape] = {}
     for span in spans:
         for case in work.study.cases:
             if work.symmetric(span, case):
-                found.update(shape.kind for shape in work.shapes(span, case).values())
+                for shape in work.shapes(span, case).values():
+                    found.setdefault(shape.kind, shape)
             else:
-                found.add("general")
-    return [kind for kind in ("triangle", "trapezoid", "general") if kind in found]
+                found.setdefault("general", shape_of(span.length, span.loads[case]))
+    ranked: tuple[ShapeKind, ...] = ("triangle", "trapezoid", "general")
+    return {kind: found[kind] for kind in ranked if kind in found}
 
 
 def _span(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
