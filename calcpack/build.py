@@ -216,11 +216,9 @@ def _pack(
             for mark, forces in framed.supports.items()
         },
         key_plan=_figure(plan, "Framing plan with all beams."),
-        basis=tuple(
-            Section.of(title, blocks)
-            for title, blocks in (*basis_sections(framed, actions, notes), *input_sections(framed))
-        ),
+        basis=tuple(Section.of(*section) for section in basis_sections(framed, actions, notes)),
         appendices=(contents[-1][0],),
+        annex=tuple(Section.of(*section) for section in input_sections(framed)),
         attached=_inputs_attached(job),
     )
 

@@ -13,7 +13,6 @@ from calcpack.notebook.study import CASE_WORDS
 from calcpack.sheet import Sheet, show
 
 PackSection = tuple[str, list[dict[str, Any]]]
-LONGEST_ECHO = 600  # lines of one input file that the pack prints
 
 
 def basis_sections(frame: Frame, actions: CombinationSet, notes: Iterable[str]) -> list[PackSection]:
@@ -55,11 +54,16 @@ def input_sections(frame: Frame) -> list[PackSection]:
         path = Path(job.folder) / name
         if path.suffix.lower() not in (".toml", ".csv"):
             continue
-        lines = path.read_text(encoding="utf-8-sig").splitlines()
-        sheet = Sheet("basis", job.job.units)
-        rows = [[str(number), line] for number, line in enumerate(lines[:LONGEST_ECHO], start=1)]
-        sheet.table([("line", "right"), ("text", "left")], rows, caption=f"{name}, SHA-256 {job.files[name]}")
-        found.append((f"Input: {name}", sheet.blocks))
+        text = path.read_text(encoding="utf-8-sig")
+        found.append(
+            (
+                f"Input: {name}",
+                [
+                    {"type": "text", "runs": f"SHA-256 {job.files[name]}", "role": "note"},
+                    {"type": "plain", "text": text, "numbered": True},
+                ],
+            )
+        )
     return found
 
 
