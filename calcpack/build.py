@@ -30,7 +30,7 @@ from calcpack.notebook.fill import FilledNotebook, fill, sheet_metadata
 from calcpack.notebook.parameters import PROGRAM, BeamInput, beam_input, plan_of, to_text
 from calcpack.notebook.templates import Template, find_template
 
-APPENDIX = "appendix"
+APPENDIX = "Appendix"
 APPENDIX_TEMPLATE = "derivations"
 ALL_FORMATS = frozenset({"pdf", "html", "notebook"})
 XLSX = "application/vnd.openxmlformats-officedocument.spreadsheetml.sheet"

@@ -21,7 +21,7 @@ LARGEST = 1e12
 SMALLEST = 1e-9  # of a size that has to be more than nothing, in its SI unit
 
 _MARK = re.compile(r"[A-Za-z0-9_][A-Za-z0-9 ._-]{0,39}")
-_TAKEN = {"pack", "index", "con", "prn", "aux", "nul"}
+_TAKEN = {"pack", "index", "appendix", "con", "prn", "aux", "nul"}
 _TAKEN |= {f"{port}{number}" for port in ("com", "lpt") for number in range(1, 10)}
 
 

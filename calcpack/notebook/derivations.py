@@ -47,7 +47,7 @@ def state_derivations(parameters: str) -> None:
         JSON text with ``units`` and ``shapes``.
     """
     given = json.loads(parameters)
-    sheet = Sheet("appendix", given["units"])
+    sheet = Sheet("Appendix", given["units"])
     if not given["shapes"]:
         sheet.section("Equivalent uniform loads")
         sheet.text("All loads of this job are uniform over their spans; there is nothing to derive.")

@@ -116,7 +116,7 @@ def test_build_in_parts(run, job, tmp_path):
     assert status == 0, err
     assert "B1" in said
     assert {path.name for path in (out / "sheets").iterdir()} == {
-        "B1.html", "B1.json", "appendix.html",
+        "B1.html", "B1.json", "Appendix.html",
     }  # fmt: skip
     assert not (out / "pack.pdf").exists()
     status, said, err = run("build", job, "--out", out, "--only", "B1", "--format", "pdf")
