@@ -237,10 +237,11 @@ class Columns(_Block):
 
 
 class Plain(_Block):
-    """What a cell printed, letter by letter."""
+    """What a cell printed, letter by letter; ``numbered`` counts the lines, as of a file."""
 
     type: Literal["plain"]
     text: Annotated[str, AfterValidator(clean_lines)]
+    numbered: bool = False
 
 
 class Formula(_Block):

@@ -81,6 +81,8 @@ class Pack:
         The basis of design.
     appendices : tuple of SheetContent
         Bound after the sheets.
+    annex : tuple of Section
+        What stands at the very end, before the manifest: the input as it was read.
     files : tuple of PackedFile
         The manifest: every other file of the output folder.
     attached : tuple of Attached
@@ -97,6 +99,7 @@ class Pack:
     front: tuple[Section, ...] = ()
     basis: tuple[Section, ...] = ()
     appendices: tuple[SheetContent, ...] = ()
+    annex: tuple[Section, ...] = ()
     files: tuple[PackedFile, ...] = ()
     attached: tuple[Attached, ...] = ()
 
@@ -210,23 +213,11 @@ def _set(pack: Pack, mathematics: Mathematics, *, pdf: bool) -> Typeset:
     for mark in marks:
         if marks.count(mark) > 1:
             raise CalcpackError(f"two sheets of the pack have the mark '{mark}'")
-    sections = _sections(pack)
-    mathematics.learn(
-        latex
-        for blocks in (*(content.blocks for content in pack.bound), *(section.blocks for section in sections))
-        for latex in formulas_of(blocks)
-    )
+    general = _sections(pack)
+    shown = [*(content.blocks for content in pack.bound), *(part.blocks for part in (*general, *pack.annex))]
+    mathematics.learn(latex for blocks in shown for latex in formulas_of(blocks))
     paper = Paper(mathematics)
     header = pack.header
-    general = _part("general", "", "General", pack) | {
-        "sections": [
-            {
-                "title": with_known_letters(section.title),
-                "blocks": paper.part(f"general{number}", section.blocks),
-            }
-            for number, section in enumerate(sections)
-        ]
-    }
     bound = [sheet_part(content, paper, str(number)) for number, content in enumerate(pack.bound)]
     manifest = _part("manifest", "", "Manifest", pack) | {
         "files": [
@@ -244,8 +235,9 @@ def _set(pack: Pack, mathematics: Mathematics, *, pdf: bool) -> Typeset:
         "first": 1,
         "of": 0,
         "cover": _part("cover", "", "Cover", pack) | _cover(pack, paper),
-        "general": general,
+        "general": _general("general", "General", general, pack, paper),
         "parts": bound,
+        "annex": _general("annex", "Annex", pack.annex, pack, paper),
         "manifest": manifest,
         "maths": paper.formulas,
     }
@@ -273,6 +265,19 @@ def _part(identity: str, mark: str, title: str, pack: Pack) -> Data:
         "sheet": None,
         "hangs": False,
         "narrow": False,
+    }
+
+
+def _general(identity: str, title: str, sections: Sequence[Section], pack: Pack, paper: Paper) -> Data:
+    """Sections that follow each other without a new page."""
+    return _part(identity, "", title, pack) | {
+        "sections": [
+            {
+                "title": with_known_letters(section.title),
+                "blocks": paper.part(f"{identity}{number}", section.blocks),
+            }
+            for number, section in enumerate(sections)
+        ]
     }
 
 
@@ -328,7 +333,7 @@ def index_html(pack: Pack, mathematics: Mathematics | None = None) -> str:
     mathematics : Mathematics
         Formulas known already.
     """
-    sections = _sections(pack)
+    sections = [*_sections(pack), *pack.annex]
     blocks = [block for section in sections for block in section.blocks]
     screen = Screen(mathematics or Mathematics(), blocks, frozenset())
     sheets = [
@@ -352,6 +357,7 @@ def index_html(pack: Pack, mathematics: Mathematics | None = None) -> str:
         files=pack.files,
         foot=foot([pack.program], pack.input_digest),
         changed=frozenset(),
+        below=2,
         **screen.names(),
     )
 

@@ -249,6 +249,7 @@ def sheet_html(content: SheetContent, mathematics: Mathematics | None = None) ->
         content=content,
         head=content.header,
         changed=content.changed,
+        below=1,
         date=shown_date(content.header.date),
         of=content.numbers.of if content.numbers.of > 1 else 0,
         fields=header_fields(content.header),

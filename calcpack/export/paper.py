@@ -136,9 +136,8 @@ class Paper:
                     "alt": with_known_letters(alt).strip() or "formula",
                 }
             case kinds.Plain():
-                lines = with_known_letters(block.text.expandtabs(4)).split("\n")
-                # A blank that begins a line must not be lost.
-                data |= {"lines": [pieces(line.replace(" ", "\u00a0")) or [""] for line in lines]}
+                lines = [with_known_letters(line) for line in block.text.expandtabs(4).split("\n")]
+                data |= {"numbered": block.numbered, "lines": [pieces(kept_blanks(line)) for line in lines]}
             case kinds.Columns():
                 data |= {
                     "widths": list(block.widths) or [1] * len(block.columns),
@@ -225,6 +224,18 @@ class _Place:
 
     def label(self, number: str) -> str:
         return f"{self.identity}/{number}"
+
+
+def kept_blanks(line: str) -> str:
+    """A printed line with every blank kept, and broken only after the last blank of a run.
+
+    Examples
+    --------
+    >>> kept_blanks("  a b   c").replace(chr(0xa0), "~")
+    '~~a b~~ c'
+    """
+    line = re.sub(r" {2,}", lambda blanks: "\u00a0" * (len(blanks[0]) - 1) + " ", line)
+    return re.sub(r"^\u00a0* ", lambda blanks: "\u00a0" * len(blanks[0]), line)
 
 
 def png_bytes(picture: kinds.Picture) -> bytes:

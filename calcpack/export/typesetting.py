@@ -61,6 +61,21 @@ def _fonts() -> typst.Fonts:
         return fonts
 
 
+def _faces_beside() -> list[Path]:
+    """Faces an office laid beside the page designs, for scripts the page's own lack."""
+    return sorted(page_folder().glob("*.ttf"))
+
+
+@functools.lru_cache(maxsize=1)
+def _families_beside() -> str:
+    """Their names, as the page designs read them."""
+    names = []
+    for path in _faces_beside():
+        with TTFont(path, lazy=True) as font:
+            names.append(font["name"].getBestFamilyName())
+    return json.dumps(list(dict.fromkeys(names)))
+
+
 def _letters(path: Path) -> frozenset[int]:
     with TTFont(path, lazy=True) as font:
         return frozenset(font.getBestCmap())
@@ -73,8 +88,7 @@ def settable() -> frozenset[int]:
         *(_letters(_face_folder() / _FACE.format(style)) for style in ("Regular", "Bold", "Italic"))
     )
     other = frozenset.intersection(*(_letters(_dejavu_folder() / file) for file in _OTHER_SCRIPTS[:2]))
-    extra = [_letters(path) for path in sorted(page_folder().glob("*.ttf"))]
-    return own.union(other, *extra)
+    return own.union(other, *(_letters(path) for path in _faces_beside()))
 
 
 def with_known_letters(text: str) -> str:
@@ -170,7 +184,12 @@ def typeset(
         The design cannot be set with this data.
     """
     with _root(data, attached, files or {}) as root:
-        compiler = typst.Compiler(str(root / design), root=str(root), font_paths=_fonts())
+        compiler = typst.Compiler(
+            str(root / design),
+            root=str(root),
+            font_paths=_fonts(),
+            sys_inputs={"faces": _families_beside()},
+        )
         try:
             written = (
                 compiler.compile(format="pdf", pdf_standards=[*STANDARDS], timestamp=_midnight(date))
@@ -192,8 +211,9 @@ def typeset(
 
 _PROOF = """
 #set document(title: "proof", date: datetime(year: 1970, month: 1, day: 1))
-#set text(font: ("Libertinus Serif", "DejaVu Sans"), fallback: false)
-#show math.equation: set text(font: ("Libertinus Math", "Libertinus Serif", "DejaVu Sans"))
+#let serif = ("Libertinus Serif", "DejaVu Sans") + json(bytes(sys.inputs.faces))
+#set text(font: serif, fallback: false)
+#show math.equation: set text(font: ("Libertinus Math",) + serif)
 #for source in json(bytes(sys.inputs.formulas)) {
   math.equation(block: true, alt: "a", eval(source, mode: "math", scope: (strongwords: strong)))
 }
@@ -210,7 +230,7 @@ def settable_formulas(formulas: Sequence[str]) -> list[bool]:
     """
     if not formulas:
         return []
-    inputs = {"formulas": json.dumps(list(formulas))}
+    inputs = {"formulas": json.dumps(list(formulas)), "faces": _families_beside()}
     compiler = typst.Compiler(_PROOF.encode(), font_paths=_fonts(), sys_inputs=inputs)
     try:
         compiler.compile(format="pdf", pdf_standards=[*STANDARDS], timestamp=0)

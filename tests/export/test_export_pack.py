@@ -203,6 +203,16 @@ def test_bookmarks_of_all_sheets(built):
     assert places["B2 Concrete beam, EN 1992-1-1"] == built.numbers["B2"].first - 1
 
 
+def test_annex_stands_between_the_sheets_and_the_manifest(pack, mathematics):
+    lines = {"type": "plain", "numbered": True, "text": 'format = 1\nnumber = "2417"'}
+    built = build_pack(
+        dataclasses.replace(numbered(made(annex=(Section.of("Input", [lines]),)), mathematics)), mathematics
+    )
+    tops = [title for depth, title, _ in bookmarks(built.pdf) if depth == 0]
+    assert tops[-3:] == ["D1 Derivations", "Input", "Manifest"]
+    assert squeezed('2 number = "2417"') in squeezed(page_texts(built.pdf)[-2])
+
+
 def test_schedule_and_reactions(built):
     general = squeezed("".join(page_texts(built.pdf)[1 : built.numbers["B1"].first - 1]))
     for words in ("110.7", "−42.5", "61.3", "8.40", "bending", "0.76", "6.00 + 5.00"):

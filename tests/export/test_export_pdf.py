@@ -12,7 +12,7 @@ import pytest
 import samples
 from pages import bookmarks, identification, page_texts, reader, squeezed, structure
 
-from calcpack.export import Mathematics, SheetNumbers, sheet_content, sheet_pdf
+from calcpack.export import Mathematics, SheetNumbers, sheet_content, sheet_pdf, typesetting
 from calcpack.export.typesetting import settable_formulas, with_known_letters
 from calcpack.job.errors import CalcpackError
 
@@ -100,12 +100,13 @@ def test_numbers_in_the_pack_do_not_change_the_layout(ordinary, pdf):
 
 def test_results_stay_searchable(pdf):
     text = "\n".join(page_texts(pdf))
+    assert "U+" not in text
     for words in (
         "10.06 kN/m",
         "0.750",
         "not satisfied",
         "54.0 kN·m at 3.00 m",
-        "own cell: 12 bars".replace(" ", "\xa0"),
+        "own cell: 12 bars",
     ):
         assert words in text
 
@@ -165,6 +166,27 @@ def test_blocks_with_nothing_in_them_do_no_harm():
     pdf = sheet_pdf(sheet_content(samples.notebook([samples.empties()])))
     assert identification(pdf)["pdfuaid:part"] == "1"
     assert "1.03" in page_texts(pdf)[0]
+
+
+def test_a_face_beside_the_designs_is_used(tmp_path, monkeypatch):
+    letter = "\u1d81"  # none of the page's faces has it
+    cached = (typesetting._fonts, typesetting.settable, typesetting._families_beside)
+    page = shutil.copytree(typesetting.page_folder(), tmp_path / "page")
+    from matplotlib import get_data_path
+
+    shutil.copy(f"{get_data_path()}/fonts/ttf/STIXGeneral.ttf", page)
+    monkeypatch.setattr(typesetting, "page_folder", lambda: page)
+    try:
+        for function in cached:
+            function.cache_clear()
+        assert typesetting.with_known_letters(letter) == letter
+        assert typesetting.settable_formulas([f'upright("{letter}")']) == [True]
+    finally:
+        for function in cached:
+            function.cache_clear()
+    monkeypatch.undo()
+    assert typesetting.with_known_letters(letter) == "⟨U+1D81⟩"
+    assert typesetting.settable_formulas([f'upright("{letter}")']) == [False]
 
 
 def words_on_page(pdf: bytes, folder, page: int) -> list[tuple[float, float, str]]:
@@ -232,15 +254,27 @@ def test_no_heading_stands_alone_at_the_foot():
     assert pages == {0, 1}  # it was brought to the foot of the first page, and over it
 
 
-def test_a_long_table_repeats_its_head():
+@pytest.mark.parametrize("caption", ["", "long caption"])
+def test_a_long_table_repeats_its_head(caption):
+    filler = [{"type": "text", "runs": f"paragraph {number}"} for number in range(36)]
     table = {
         "type": "table",
+        "caption": caption,
         "columns": [{"head": "first head"}, {"head": "second head", "align": "right"}],
-        "rows": [[str(number), "x"] for number in range(120)],
+        "rows": [[f"row {number}.", "x"] for number in range(150)],
     }
-    texts = page_texts(sheet_pdf(sheet_content(samples.notebook([[table]]))))
+    texts = page_texts(sheet_pdf(sheet_content(samples.notebook([[*filler, table]]))))
     assert len(texts) > 2
-    assert all("second head" in text for text in texts)
+    with_rows = [text for text in texts if "row " in text]
+    assert all("second head" in text for text in with_rows)
+    assert all(caption not in text or "row 0." in text for text in texts if caption)
+    assert all(f"row {number}." in "".join(texts) for number in range(150))
+
+
+def test_a_listing_counts_its_lines():
+    text = "\n".join(f"key{number} = {number}" for number in range(100))
+    pdf = sheet_pdf(sheet_content(samples.notebook([[{"type": "plain", "text": text, "numbered": True}]])))
+    assert squeezed("99 key98 = 98 100 key99 = 99") in squeezed("".join(page_texts(pdf)))
 
 
 def test_a_line_twice_is_refused():
