@@ -136,7 +136,8 @@ class Sheet:
             shown = self._shown(value, unit, us, given)
             symbol = self._symbol(symbol, word)
             line = Line(
-                no, "take", symbol, check_runs(says), measured(value, unit), value, unit, shown,
+                no, "take", symbol, check_runs(says), measured(value, unit, rounded=not given),
+                value, unit, shown,
                 cite=cited(cite), origin=origin,
             )  # fmt: skip
         return self._keep(line)

@@ -136,10 +136,11 @@ class Number(Expression):
 
 @dataclass(frozen=True)
 class Quantity(Expression):
-    """A constant with a unit."""
+    """A constant with a unit: written by somebody, or worked out beside the sheet and printed rounded."""
 
     text: str
     unit: str
+    rounded: bool = False
 
     def __post_init__(self) -> None:
         Number(self.text)

@@ -24,18 +24,18 @@ def quantity(value: Term, unit: str) -> Expression:
     return Quantity(plain.text, unit)
 
 
-def measured(value: float, unit: str) -> Expression:
+def measured(value: float, unit: str, *, rounded: bool = True) -> Expression:
     """A value worked out beside the sheet: kept in full, printed rounded as a line's value is.
 
     Examples
     --------
     >>> measured(12.345678901234, "kN")
-    Quantity(text='12.345678901234', unit='kN')
+    Quantity(text='12.345678901234', unit='kN', rounded=True)
     """
     decimal = Decimal(repr(float(value)))
     if not decimal.is_finite():
         raise CalcpackError(f"{value} cannot be a part of a formula")
-    node = Quantity(format(abs(decimal), "f"), unit)
+    node = Quantity(format(abs(decimal), "f"), unit, rounded=rounded)
     return -node if decimal < 0 else node
 
 

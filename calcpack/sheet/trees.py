@@ -23,7 +23,7 @@ def to_json(root: Expression) -> dict[str, Any]:
         case Number():
             return {"number": root.text}
         case Quantity():
-            return {"quantity": root.text, "unit": root.unit}
+            return {"measured" if root.rounded else "quantity": root.text, "unit": root.unit}
         case Reference():
             return {"symbol": root.symbol}
         case Operation():
@@ -32,7 +32,14 @@ def to_json(root: Expression) -> dict[str, Any]:
     raise TypeError(f"{root!r} is not an expression")
 
 
-_KEYS = ({"number"}, {"quantity", "unit"}, {"symbol"}, {"op", "args"}, {"op", "args", "unit"})
+_KEYS = (
+    {"number"},
+    {"quantity", "unit"},
+    {"measured", "unit"},
+    {"symbol"},
+    {"op", "args"},
+    {"op", "args", "unit"},
+)
 
 
 def from_json(tree: object, inputs: Mapping[str, str]) -> Expression:
@@ -64,6 +71,8 @@ def from_json(tree: object, inputs: Mapping[str, str]) -> Expression:
             return Number(node["number"])
         if "quantity" in node:
             return Quantity(node["quantity"], node["unit"])
+        if "measured" in node:
+            return Quantity(node["measured"], node["unit"], rounded=True)
         if "symbol" in node:
             name = read_symbol(node["symbol"]).name
             if name != node["symbol"] or name not in inputs:

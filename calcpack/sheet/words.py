@@ -64,6 +64,8 @@ def shown_constant(node: Quantity, system: System) -> str:
     '25\xa0kN'
     '12.3\xa0kN'
     """
+    if node.rounded:
+        return show(float(node.text), node.unit, system)
     written = len(node.text.replace(".", "").strip("0")) <= 6
     if written and shown_unit(node.unit, system) == node.unit and node.unit != "1":
         return with_unit(node.text, node.unit)

@@ -110,7 +110,8 @@ def test_measured_values_keep_every_digit() -> None:
         node = measured(value, "kN")
         assert isinstance(node, Quantity)
         assert float(node.text) == value
-    assert measured(-1.5, "kN") == -Quantity("1.5", "kN")
+    assert measured(-1.5, "kN") == -Quantity("1.5", "kN", rounded=True)
+    assert measured(1.5, "kN", rounded=False) == Quantity("1.5", "kN")
     with pytest.raises(CalcpackError):
         measured(float("nan"), "kN")
     with pytest.raises(CalcpackError):
