@@ -20,7 +20,7 @@ def state_checks(work: Work) -> None:
         "epsilon",
         1e-6,
         "1",
-        says="How closely two roads to one number have to agree",
+        says="Agreement asked for of two roads",
         origin="template",
         word="agreement asked for",
     )

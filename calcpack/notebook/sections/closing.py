@@ -52,15 +52,11 @@ def state_notation(work: Work) -> None:
     given, sheet = work.given, work.sheet
     sheet.section("Notation and provenance")
     sheet.notation()
-    sheet.facts(
-        [
-            ("Program", given.program),
-            (
-                "Template",
-                f"{given.template.name} {given.template.version}, SHA-256 {given.template.sha256[:16]}",
-            ),
-            ("Input", f"{given.job_file}, SHA-256 {given.input[:16]}"),
-        ]
+    template = given.template
+    sheet.text(
+        f"Made by {given.program} with the template {template.name} {template.version} (SHA-256 "
+        f"{template.sha256[:16]}…) from {given.job_file} (SHA-256 of all input {given.input[:16]}…).",
+        role="note",
     )
 
 

@@ -33,28 +33,44 @@ def state_loads(work: Work) -> None:
         width_mm=170,
     )
     work.sheet.figure(figure, "Loads as they stand, unfactored; dashed: the equivalent carried forward.")
-    rows: list[list[str]] = []
-    for source in work.sources.values():
-        row = [source.words]
-        for case in study.cases:
-            force = _resultant(work, source.name, case)
-            row.append(work.show(force, "kN") if study.significant(force, "force") else "–")
-        rows.append(row)
-    work.sheet.table(
-        [("source", "left"), *((CASE_WORDS[case], "right") for case in study.cases)],
-        rows,
-        caption="Resultant of each source over the whole beam.",
-    )
+    if not _by_formula(work):
+        _resultants(work)
     for case in study.cases:
         work.lines["total", case] = work.sheet.hence(
             f"W_{LETTER[case]}", _total(work, case), "kN", says=f"All the {CASE_WORDS[case]} on the beam"
         )
 
 
+def _by_formula(work: Work) -> bool:
+    """Whether all load is of everyday shapes on a single span, and the totals come from formulas."""
+    span = work.simple
+    return (
+        span is not None
+        and not work.given.carried
+        and all(work.symmetric(span, case) for case in work.study.cases)
+    )
+
+
+def _resultants(work: Work) -> None:
+    """What each source amounts to."""
+    rows: list[list[str]] = []
+    for source in work.sources.values():
+        row = [source.words]
+        for case in work.study.cases:
+            force = _resultant(work, source.name, case)
+            row.append(work.show(force, "kN") if work.study.significant(force, "force") else "–")
+        rows.append(row)
+    work.sheet.table(
+        [("source", "left"), *((CASE_WORDS[case], "right") for case in work.study.cases)],
+        rows,
+        caption="Resultant of each source over the whole beam.",
+    )
+
+
 def _total(work: Work, case: Case) -> Expression | Line:
     """By formula for the everyday shapes on a single span, else the sum of the table's column."""
     span = work.simple
-    if span is not None and work.symmetric(span, case) and not work.given.carried:
+    if span is not None and _by_formula(work):
         length = work.lines["span", 0]
         return summed([weight(work, group, length) for group in work.alike(span, case)])
     terms: list[Expression | Line] = []
