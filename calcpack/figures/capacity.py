@@ -1,0 +1,347 @@
+"""What a beam is asked for against what it can do, along its length."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+from typing import Any, Literal, NamedTuple
+
+import numpy as np
+
+from calcpack.figures.beam_axis import BeamAxis, Bearing, beam_row, stacked
+from calcpack.figures.callout import call_out
+from calcpack.figures.drawing import HAIR, HEAVY, INK, LINES, SMALL, WASH, Drawing, Stroke
+from calcpack.figures.figure import Figure
+from calcpack.figures.labels import Box, Placer
+from calcpack.figures.lettering import text_width
+from calcpack.figures.parts import arrow, line_height
+from calcpack.figures.shapes import Array, simplified
+from calcpack.sheet.display import System, show, shown_number
+
+Force = Literal["moment", "shear"]
+Samples = tuple[Any, Any]  # places [m], values; a jump is two points at one place
+
+HEIGHT = 34.0  # of the whole diagram [mm]
+STEPS = 400  # places at which demand and capacity are compared
+TITLES = {
+    "moment": "bending moment and resistance, drawn on the tension side",
+    "shear": "shear and resistance",
+}
+UNITS = {"moment": "kN*m", "shear": "kN"}
+CAPACITY = Stroke(1.5, INK)
+
+
+class Capacity(NamedTuple):
+    """What a stretch of the beam can carry, each way; sloped where the values at its end are given."""
+
+    start: float
+    end: float
+    positive: float
+    negative: float
+    positive_end: float | None = None
+    negative_end: float | None = None
+
+
+class Governing(NamedTuple):
+    """A place where a ratio is written: demand and capacity with the demand's sign."""
+
+    at: float
+    demand: float
+    capacity: float
+
+    @property
+    def ratio(self) -> float:
+        """Demand over capacity; infinite without any."""
+        return self.demand / self.capacity if self.capacity else math.inf
+
+
+def capacity_figure(
+    length: float,
+    bearings: Sequence[Bearing],
+    quantity: Force,
+    demand: tuple[Samples, Samples],
+    capacity: Sequence[Capacity | tuple[float, ...]],
+    system: System = "SI",
+    *,
+    governing: Sequence[Governing | tuple[float, float, float]] | None = None,
+    compared: Sequence[tuple[float, float]] = (),
+    fixed: tuple[bool, bool] = (False, False),
+    mark: str = "",
+    width_mm: float = 170.0,
+) -> Figure:
+    """The envelope of a moment or shear with the resistance drawn over it, and the ratio where it is worst.
+
+    Parameters
+    ----------
+    length : float [m]
+    bearings : (at [m], kind, mark) in order
+    quantity : "moment" or "shear"
+        A moment is drawn on the tension side, sagging below the beam.
+    demand : (upper, lower)
+        Each (places [m], values [kNm] or [kN]), as a curve's ``sample`` gives them.
+    capacity : sequence of (from [m], to [m], positive, negative)
+        What the beam can carry in each direction, as amounts; a stretch whose capacity changes evenly has
+        the values at its end behind these (see :class:`Capacity`).
+    system : "SI" or "US"
+    governing : sequence of (at [m], demand, capacity), optional
+        Where ratios are written; left out, the worst place each way is found.
+    compared : sequence of (from [m], to [m]), optional
+        Where demand and capacity are compared; left out, everywhere.
+    fixed : (bool, bool)
+        Whether start and end are held against rotation.
+    mark : str
+        The beam's mark, for the spoken alternative.
+    width_mm : float [mm]
+
+    Returns
+    -------
+    Figure
+
+    Raises
+    ------
+    ValueError
+        No such quantity, no capacity, a negative one, or stretches that are not in order.
+
+    Examples
+    --------
+    >>> x = np.linspace(0.0, 6.0, 61)
+    >>> figure = capacity_figure(
+    ...     6.0,
+    ...     [(0.0, "column", "C1"), (6.0, "column", "C2")],
+    ...     "moment",
+    ...     ((x, 12.0 * x * (6.0 - x) / 2), (x, 0.0 * x)),
+    ...     [(0.0, 6.0, 90.0, 30.0)],
+    ...     mark="B5",
+    ... )
+    >>> print(figure.alt)
+    Bending moment and resistance of B5: largest ratio 0.600 at 3.00 m (54.0 of 90.0 kN·m).
+    """
+    if quantity not in TITLES:
+        raise ValueError(f"no resistance is drawn for {quantity!r}")
+    stretches = _stretches(capacity, length)
+    upper, lower = ((np.asarray(x, dtype=float), np.asarray(y, dtype=float)) for x, y in demand)
+    ranges = list(compared) or [(0.0, length)]
+    if governing is None:
+        places = list(_worst((upper, lower), stretches, ranges, length))
+    else:
+        places = [Governing(*place) for place in governing]
+    places.sort(key=lambda place: -place.ratio)
+    axis = BeamAxis(length, tuple(bearings), fixed, width_mm)
+    strip = _Strip(axis, quantity, system)
+    strip.draw(upper, lower, stretches, ranges, places)
+    sheet = stacked(axis, [(TITLES[quantity], strip.remark, strip.drawing)], beam_row(axis, system))
+    return sheet.finish(width_mm, _spoken(quantity, places, mark, system))
+
+
+def _stretches(capacity: Sequence[Capacity | tuple[float, ...]], length: float) -> list[Capacity]:
+    found = [Capacity(*stretch) for stretch in capacity]
+    if not found:
+        raise ValueError("no capacity is given")
+    last = -1e-9 * length
+    for stretch in found:
+        if stretch.start < last - 1e-6 * length or stretch.end <= stretch.start:
+            raise ValueError(f"the stretch from {stretch.start} to {stretch.end} is not in order")
+        if min(value for value in stretch[2:] if value is not None) < 0:
+            raise ValueError("a capacity is an amount, not negative")
+        last = stretch.end
+    return found
+
+
+def _ends(stretch: Capacity, sign: float) -> tuple[float, float]:
+    """A stretch's capacity at its start and end, with its sign."""
+    if sign > 0:
+        end = stretch.positive if stretch.positive_end is None else stretch.positive_end
+        return stretch.positive, end
+    end = stretch.negative if stretch.negative_end is None else stretch.negative_end
+    return -stretch.negative, -end
+
+
+def _worst(
+    demand: tuple[tuple[Array, Array], tuple[Array, Array]],
+    stretches: Sequence[Capacity],
+    ranges: Sequence[tuple[float, float]],
+    length: float,
+) -> Iterator[Governing]:
+    """The place of the largest ratio each way, if the beam is asked for anything that way."""
+    largest = max(float(np.abs(y).max()) for _, y in demand)
+    for sign, (xs, ys) in zip((1.0, -1.0), demand, strict=True):
+        best: Governing | None = None
+        for stretch in stretches:
+            for start, end in ranges:
+                low, high = max(stretch.start, start), min(stretch.end, end)
+                if high < low:
+                    continue
+                x, y = _piece(xs, ys, low, high, length)
+                first, last = _ends(stretch, sign)
+                held = first + (last - first) * (x - stretch.start) / (stretch.end - stretch.start)
+                asked = np.maximum(y * sign, 0.0)
+                with np.errstate(divide="ignore", invalid="ignore"):
+                    ratio = np.where(asked > 1e-9 * largest, asked / np.abs(held), 0.0)
+                n = int(ratio.argmax())
+                if ratio[n] > 0 and (best is None or ratio[n] > best.ratio * (1 + 1e-9)):
+                    best = Governing(float(x[n]), float(y[n]), float(held[n]))
+        if best is not None:
+            yield best
+
+
+def _piece(xs: Array, ys: Array, low: float, high: float, length: float) -> tuple[Array, Array]:
+    """A curve's points between two places, these included, on the inner side of a jump there."""
+    inside = (xs > low + 1e-9 * length) & (xs < high - 1e-9 * length)
+    # The last point at or before the start and the first at or after the end are the inner sides.
+    first = int(np.searchsorted(xs, low + 1e-9 * length, side="right")) - 1
+    last = int(np.searchsorted(xs, high - 1e-9 * length, side="left"))
+    x, y = [], []
+    for index, other, place in ((first, first + 1, low), (last, last - 1, high)):
+        index, other = (min(max(n, 0), len(xs) - 1) for n in (index, other))
+        step = xs[other] - xs[index]
+        part = 0.0 if abs(step) < 1e-12 else (place - xs[index]) / step
+        x.append(place)
+        y.append(float(ys[index] + (ys[other] - ys[index]) * min(max(part, 0.0), 1.0)))
+    return np.array([x[0], *xs[inside], x[1]]), np.array([y[0], *ys[inside], y[1]])
+
+
+@dataclass
+class _Strip:
+    """The diagram over y = 0."""
+
+    axis: BeamAxis
+    quantity: Force
+    system: System
+    remark: str = ""
+
+    def draw(
+        self,
+        upper: tuple[Array, Array],
+        lower: tuple[Array, Array],
+        stretches: Sequence[Capacity],
+        ranges: Sequence[tuple[float, float]],
+        places: Sequence[Governing],
+    ) -> None:
+        """Demand filled, capacity heavy over it, what is beyond it hatched; then the words."""
+        self.drawing, self.placer = Drawing(), Placer(self.axis.bounds())
+        ends = [0.0, float(upper[1].max()), float(lower[1].min())]
+        needed = max(abs(value) for value in ends)
+        held = [value for stretch in stretches for sign in (1.0, -1.0) for value in _ends(stretch, sign)]
+        # A resistance far beyond the demand would flatten it: it is cut, and said.
+        cut = 3.0 * needed if needed > 0 else math.inf
+        ends += [max(min(value, cut), -cut) for value in held]
+        upward = -1.0 if self.quantity == "moment" else 1.0
+        self.scale = upward * HEIGHT / ((max(ends) - min(ends)) or 1.0)
+        self.axis.baseline(self.drawing)
+        for line in (upper, lower):
+            self._demand(*line)
+        for sign, line in ((1.0, upper), (-1.0, lower)):
+            if any(abs(value) > 1e-9 for stretch in stretches for value in _ends(stretch, sign)):
+                self._capacity(stretches, sign, cut)
+            self._beyond(line, stretches, sign, ranges)
+        for number, place in enumerate(places):
+            self._place(place, bold=number == 0)
+        self._key(stretches, cut)
+
+    def _demand(self, x: Array, y: Array) -> None:
+        points = np.column_stack([self.axis.x(0.0) + x * self.axis.scale, y * self.scale])
+        line = simplified(points)
+        ring = np.vstack([[self.axis.x(float(x[0])), 0.0], line, [self.axis.x(float(x[-1])), 0.0]])
+        self.drawing.area(ring, WASH)
+        self.drawing.line(ring, Stroke(0.6), LINES)
+        self.placer.block_line(ring)
+
+    def _capacity(self, stretches: Sequence[Capacity], sign: float, cut: float) -> None:
+        points: list[tuple[float, float]] = []
+        for stretch in stretches:
+            for at, value in zip((stretch.start, stretch.end), _ends(stretch, sign), strict=True):
+                points.append((self.axis.x(at), max(min(value, cut), -cut) * self.scale))
+        first, last = points[0][0], points[-1][0]
+        line = [(first, 0.0), *points, (last, 0.0)]
+        self.drawing.line(line, CAPACITY, HEAVY)
+        self.placer.block_line(line)
+
+    def _beyond(
+        self,
+        line: tuple[Array, Array],
+        stretches: Sequence[Capacity],
+        sign: float,
+        ranges: Sequence[tuple[float, float]],
+    ) -> None:
+        """What the beam is asked for beyond its capacity, densely hatched."""
+        for stretch in stretches:
+            for start, end in ranges:
+                low, high = max(stretch.start, start), min(stretch.end, end)
+                if high - low < 1e-9:
+                    continue
+                x, y = _piece(*line, low, high, self.axis.length)
+                fine = np.unique(np.concatenate([x, np.linspace(low, high, STEPS // 4)]))
+                first, last = _ends(stretch, sign)
+                held = first + (last - first) * (fine - stretch.start) / (stretch.end - stretch.start)
+                asked = np.interp(fine, x, y)
+                more = np.maximum(sign * asked, np.abs(held)) * sign
+                if (np.abs(more) - np.abs(held)).max() <= 1e-9 * max(np.abs(asked).max(), 1e-12):
+                    continue
+                across = self.axis.x(0.0) + fine * self.axis.scale
+                edge = np.column_stack([across, held * self.scale])
+                ring = np.vstack([np.column_stack([across, more * self.scale]), edge[::-1]])
+                self.drawing.hatch(ring, 45.0, 0.8, Stroke(HAIR, INK))
+
+    def _place(self, place: Governing, bold: bool) -> None:
+        """The ratio where it is worst, with an arrow from nothing to the demand."""
+        x, y = self.axis.x(place.at), place.demand * self.scale
+        unit = UNITS[self.quantity]
+        asked = shown_number(abs(place.demand), unit, self.system)
+        words = [self._ratio(place), f"({asked} of {show(abs(place.capacity), unit, self.system)})"]
+        if not self.axis.at_bearing(place.at):
+            words.insert(1, f"at {show(place.at, 'm', self.system)}")
+        if abs(y) > 2.0:
+            arrow(self.drawing, (x, 0.0), (x, y), Stroke(HAIR, INK), 1.4)
+        self.placer.block_line([(x, 0.0), (x, y)])
+        # Inside the diagram there is room beside the arrow; outside, beyond the capacity.
+        call_out(
+            self.drawing, self.placer, (x, y), words, self.axis.width, out=1.0 if y > 0 else -1.0, bold=bold
+        )
+
+    def _ratio(self, place: Governing) -> str:
+        if not math.isfinite(place.ratio):
+            return "no resistance"
+        return f"ratio {shown_number(place.ratio, '1', 'SI')}"
+
+    def _key(self, stretches: Sequence[Capacity], cut: float) -> None:
+        """Each capacity's value at its line, in the stretch's middle where there is room."""
+        unit, height = UNITS[self.quantity], line_height(SMALL)
+        written: list[tuple[float, str]] = []
+        for sign in (1.0, -1.0):
+            for stretch in stretches:
+                first, last = _ends(stretch, sign)
+                if abs(first) < 1e-9 or abs(first - last) > 1e-9 * abs(first):
+                    continue
+                text = show(abs(first), unit, self.system)
+                if abs(first) > cut:
+                    self.remark = "resistance beyond three times the demand cut off"
+                y = max(min(first, cut), -cut) * self.scale
+                side = 1.0 if y > 0 else -1.0
+                width = text_width(text, SMALL)
+                left, right = self.axis.x(stretch.start), self.axis.x(stretch.end)
+                if width + 0.6 > right - left or (y, text) in written:
+                    continue
+                middle, reach = (left + right) / 2, (right - left - width) / 2
+                options = [
+                    Box(middle + part * reach, y + off * side * (0.9 + height / 2), width + 0.4, height)
+                    for off in (1.0, -1.0)
+                    for part in (0.0, 0.5, -0.5, 0.9, -0.9)
+                ]
+                _, box = self.placer.pick(options)
+                if self.placer.cost(box) < Placer.CROSSING:
+                    self.placer.block(box)
+                    written.append((y, text))
+                    self.drawing.text(box.x, box.y, text, SMALL, level="box")
+
+
+def _spoken(quantity: Force, places: Sequence[Governing], mark: str, system: System) -> str:
+    name = {"moment": "Bending moment", "shear": "Shear"}[quantity]
+    head = f"{name} and resistance{f' of {mark}' if mark else ''}"
+    words = []
+    for place in places:
+        asked = shown_number(abs(place.demand), UNITS[quantity], system)
+        held = show(abs(place.capacity), UNITS[quantity], system)
+        ratio = shown_number(place.ratio, "1", "SI") if math.isfinite(place.ratio) else "without limit"
+        words.append(f"ratio {ratio} at {show(place.at, 'm', system)} ({asked} of {held})")
+    return f"{head}: largest {', other way '.join(words)}." if words else f"{head}: nothing is asked for."
