@@ -1,0 +1,1 @@
+"""Concrete beams to ACI 318-19."""
