@@ -106,7 +106,8 @@ class Work:
         by_source: dict[str, list[Any]] = {}
         for load in span.loads[case]:
             by_source.setdefault(load.source, []).append(load)
-        return {name: shape_of(span.length, by_source[name]) for name in self.sources if name in by_source}
+        shapes = {name: shape_of(span.length, by_source[name]) for name in self.sources if name in by_source}
+        return {name: shape for name, shape in shapes.items() if shape.lines or shape.points}
 
     def symmetric(self, span: SpanLoads, case: Case) -> bool:
         """Whether every load on the span is a uniform, triangular or trapezoidal one."""

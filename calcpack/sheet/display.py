@@ -1,8 +1,8 @@
 """How a value is written on the sheet, and how what is written is read back.
 
-Rounding is exact: the value's shortest decimal form (``repr``) is turned into the shown unit by exact
-fractions and rounded half away from zero at the printed digits, so that whoever recomputes a printed
-text by hand finds the same digits.
+Rounding is exact: the value to twelve significant digits, which leaves the noise of binary arithmetic
+behind, is turned into the shown unit by exact fractions and rounded half away from zero at the printed
+digits, so that whoever recomputes a printed text by hand finds the same digits.
 """
 
 from __future__ import annotations
@@ -157,12 +157,23 @@ def _power_of_ten(size: Fraction) -> int:
     return 3 * math.floor(_order(size) / 3)
 
 
+def decimal_of(value: float) -> Fraction:
+    """A value as the decimal fraction that is printed of it: twelve significant digits.
+
+    Examples
+    --------
+    >>> decimal_of(23.749999999999996) == Fraction(95, 4)
+    True
+    """
+    return Fraction(f"{float(value):.12g}")
+
+
 def _converted(value: float, unit: str, shown_in: str) -> Fraction:
     if not math.isfinite(value):
         raise ValueError(f"{value} cannot be shown")
     if exponents(unit) != exponents(shown_in):
         raise ValueError(f"a value in {unit!r} cannot be shown in {shown_in!r}")
-    return Fraction(repr(float(value))) * (exact_factor(unit) / exact_factor(shown_in))
+    return decimal_of(value) * (exact_factor(unit) / exact_factor(shown_in))
 
 
 @lru_cache(maxsize=4096)
@@ -308,7 +319,7 @@ def is_shown_as(value: float, unit: str, text: str) -> bool:
     number, other = parse_shown(text)
     if not math.isfinite(value) or exponents(other) != exponents(unit):
         return False
-    exact = Fraction(repr(float(value))) * (exact_factor(unit) / exact_factor(other))
+    exact = decimal_of(value) * (exact_factor(unit) / exact_factor(other))
     exponent = number.as_tuple().exponent
     assert isinstance(exponent, int)  # the pattern lets no NaN through
     step = Fraction(10) ** exponent

@@ -6,10 +6,10 @@ from calcpack.actions import CombinationResult
 from calcpack.figures import response_figure
 from calcpack.figures.response import CurveData, Quantity
 from calcpack.job.model import Case
-from calcpack.notebook.sections.resultants import midspan_moment
-from calcpack.notebook.study import CASE_WORDS
+from calcpack.notebook.sections.resultants import CLOSE, before, midspan_moment, resultant
+from calcpack.notebook.study import CASE_WORDS, SpanLoads
 from calcpack.notebook.work import LETTER, Work, summed
-from calcpack.sheet import number
+from calcpack.sheet import Expression, Line, measured, number, total
 
 SAMPLES = 120
 
@@ -74,7 +74,10 @@ def _symbols(work: Work) -> dict[Case, str]:
 def _by_hand(work: Work, moment: CombinationResult, shear: CombinationResult) -> None:
     """A beam on two supports: the governing values from the cases, where all loads are symmetric."""
     span, sheet = work.simple, work.sheet
-    if span is None or not all(work.symmetric(span, case) for case in work.study.cases):
+    if span is None:
+        return
+    if not all(work.symmetric(span, case) for case in work.study.cases):
+        _by_moments(work, span, moment, shear)
         return
     length = work.lines["span", 0]
     for case in work.study.cases:
@@ -104,11 +107,62 @@ def _by_hand(work: Work, moment: CombinationResult, shear: CombinationResult) ->
         ]
         work.lines[key] = sheet.hence(
             symbol,
-            summed([line if factor == 1 else number(factor) * line for factor, line in factors]),
+            summed([_times(factor, line) for factor, line in factors]),
             unit,
             says=f"{words}, under {result.combination.name}",
             cite=result.combination.cite,
         )
+
+
+def _by_moments(work: Work, span: SpanLoads, moment: CombinationResult, shear: CombinationResult) -> None:
+    """Any load on two supports: the governing values from the cases' reactions and resultants.
+
+    Only where all loads together are the worst placement, and the reactions stand on the sheet.
+    """
+    cases = [case for case in work.study.cases if work.shapes(span, case)]
+    factors = {case: factor for case, factor in moment.combination.factors.items() if case in cases}
+    always, placed = work.study.analysed.factors(moment.combination)
+    together = work.study.analysed.response.combined(always + placed)
+    most = moment.moment_max
+    if (
+        any(work.symmetric(span, case) for case in cases)
+        or shear is not moment
+        or abs(together.curve("moment").largest.value - most.value) > CLOSE * abs(most.value)
+    ):
+        return
+    sheet = work.sheet
+    ends = {
+        end: sheet.hence(
+            f"R_{letter},max",
+            summed([_times(factors[case], work.lines[end, case, span.number]) for case in factors]),
+            "kN",
+            says=f"Reaction at the {end} support, under {moment.combination.name}",
+            cite=moment.combination.cite,
+        )
+        for end, letter in (("left", "a"), ("right", "b"))
+    }
+    place = sheet.take(
+        "x_0", most.at, "m", says="Where the shear changes sign", origin="analysis", given=False
+    )
+    arms: list[Expression] = []
+    for case, factor in factors.items():
+        for shape in work.shapes(span, case).values():
+            force, turning = resultant(before(shape, most.at))
+            if force:
+                arm = measured(most.at - turning / force, "m")
+                arms.append(number(factor) * measured(force, "kN") * arm)
+    sheet.hence(
+        "M_max",
+        ends["left"] * place - total(arms) if arms else ends["left"] * place,
+        "kN*m",
+        says=f"Largest moment, under {moment.combination.name}: that of the reaction less that of the loads "
+        "before",
+        cite=moment.combination.cite,
+    )
+
+
+def _times(factor: float, line: Line) -> Expression | Line:
+    return line if factor == 1 else number(factor) * line
 
 
 def state_effects(work: Work) -> None:

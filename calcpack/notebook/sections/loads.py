@@ -33,9 +33,10 @@ def state_loads(work: Work) -> None:
         width_mm=170,
     )
     work.sheet.figure(figure, "Loads as they stand, unfactored; dashed: the equivalent carried forward.")
-    if not _by_formula(work):
+    missing = [case for case in study.cases if ("total", case) not in work.lines]
+    if missing and not _by_formula(work):
         _resultants(work)
-    for case in study.cases:
+    for case in missing:
         work.lines["total", case] = work.sheet.hence(
             f"W_{LETTER[case]}", _total(work, case), "kN", says=f"All the {CASE_WORDS[case]} on the beam"
         )

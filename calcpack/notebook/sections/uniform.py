@@ -109,7 +109,7 @@ def _span(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
     if several:
         work.sheet.subsection(f"Span {span.number}, {work.show(span.length, 'm')}")
     for case in work.study.cases:
-        if not span.loads[case]:
+        if not work.shapes(span, case):
             continue
         if work.symmetric(span, case):
             _symmetric(work, span, case, criterion, several)
@@ -202,6 +202,8 @@ def _any_shape(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKin
         f"R_a,{mark}", weight - right, "kN", says="Reaction at the left support", cite="equilibrium"
     )
     work.lines["left", case, span.number], work.lines["right", case, span.number] = left, right
+    if work.simple is not None and abs(weight.value - work.study.total(case)) <= 1e-9 * weight.value:
+        work.lines["total", case] = weight
     symbol = _symbol(case, span.number if several else None)
     says = f"Equivalent uniform {CASE_WORDS[case]}, {CARRIED_FORWARD[criterion]}"
     key = ("equivalent", case, span.number)
@@ -263,7 +265,7 @@ def _moment(work: Work, span: SpanLoads, case: Case, mark: str, left: Line, at: 
 def _comparison(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
     """Every equivalent against the actual load; what falls short is bold, and named in the last column."""
     unit, _ = display_unit("kN/m", work.study.system)
-    cases = [case for case in work.study.cases if span.loads[case]]
+    cases = [case for case in work.study.cases if work.shapes(span, case)]
     for chosen in (cases[i : i + 2] for i in range(0, len(cases), 2)):
         columns: list[tuple[Any, str]] = [("equal", "left")]
         for case in chosen:
