@@ -58,7 +58,7 @@ class Beam:
 
     @cached_property
     def alone(self) -> list[dict[str, list[Load]] | None]:
-        """Each span's loads by case, from its start and without forces over its supports; None for an overhang."""
+        """Each span's loads by case, without forces over its supports; None for an overhang."""
         found: list[dict[str, list[Load]] | None] = []
         for a, b in pairwise(self.stops):
             if not {a, b} <= set(self.supports):
@@ -100,7 +100,7 @@ class Beam:
                     [
                         max(pinned.reactions[k], key=abs),
                         *largest,
-                        -min(built_in.end_moments[k], key=lambda m: -abs(m)),
+                        -max(built_in.end_moments[k], key=abs),
                         sum(load.total for load in each),
                     ]
                 )
@@ -133,12 +133,13 @@ class Beam:
     def _uniform(self, case: str, span: int) -> list[Load]:
         """A span's loads as its equivalent; an overhang's as they are; forces over supports stay."""
         a, b = self.stops[span : span + 2]
+        ends = (a, b) if span == 0 else (b,)
         found = self.equivalents[span]
         over = [
             load
             for load in self.of(case)
-            if isinstance(load, Force) and any(abs(load.at - end) < SAME for end in ((a, b) if span == 0 else (b,)))
-        ]  # fmt: skip
+            if isinstance(load, Force) and any(abs(load.at - end) < SAME for end in ends)
+        ]
         if found is None:
             return [*(load.moved(a) for load in self.inside(case, a, b)), *over]
         value = found[case][self.bar.equivalent.replace("fixed-end moment", "fixed_end_moment")]
@@ -225,7 +226,7 @@ class Carried:
         return above <= set(self.order)
 
     def _bearings(self, bar: Bar) -> list[tuple[str, str]]:
-        """Under each held point: a column, else a wall, else the one beam that passes or has its free tip there."""
+        """Under each held point: a column, else a wall, else the beam that passes or is free there."""
         found = []
         for number_ in bar.held:
             point = bar.points[number_]

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from itertools import pairwise
 from typing import Any, NamedTuple
 
 import numpy as np
@@ -12,123 +13,136 @@ from second_road_job import Force, Load
 MOST_PLACEMENTS = 12  # as many are tried in every subset
 
 
-class Solution:
-    """A beam of stiffness 1 under several sets of loads: Hermite elements.
+PER_SPAN = 3  # finite elements
+XI, WEIGHTS = (np.polynomial.legendre.leggauss(4)[0] + 1) / 2, np.polynomial.legendre.leggauss(4)[1] / 2
 
-    ``fields`` gives load, shear, moment, rotation and deflection within each element.
+
+def shapes(xi: np.ndarray, h: float) -> np.ndarray:
+    """Hermite's cubics at xi from 0 to 1: deflection and rotation at the left, at the right end."""
+    return np.array(
+        [
+            1 - 3 * xi**2 + 2 * xi**3,
+            h * (xi - 2 * xi**2 + xi**3),
+            3 * xi**2 - 2 * xi**3,
+            h * (xi**3 - xi**2),
+        ]
+    )
+
+
+class Solution:
+    """A beam of stiffness 1 under several sets of loads.
+
+    Hermite elements give deflection and rotation at their nodes (exact there, as the loads are integrated
+    exactly) and what holds the supports. ``fields`` has load, shear, moment, rotation and deflection as
+    polynomials in the cells between all places where a load begins, ends or stands.
     """
 
     def __init__(
         self, length: float, supports: list[float], fixed: tuple[bool, bool], sets: list[list[Load]]
     ) -> None:
-        places = [0.0, length, *supports]
+        ends = sorted({0.0, length, *supports})
+        coarse = np.unique(np.concatenate([np.linspace(a, b, PER_SPAN + 1) for a, b in pairwise(ends)]))
+        nodes = coarse.tolist()
         for load in (load for loads in sets for load in loads):
-            places += [load.at] if isinstance(load, Force) else [load.start, load.end]
-        nodes: list[float] = sorted({0.0, length, *supports})
-        for place in sorted(places):
-            if min(abs(place - node) for node in nodes) > 1e-7 * length:
-                nodes.append(place)
+            for place in (load.at,) if isinstance(load, Force) else (load.start, load.end):
+                if min(abs(place - node) for node in nodes) > 1e-7 * length:
+                    nodes.append(place)
         self.nodes = np.array(sorted(nodes))
         self.width = np.diff(self.nodes)
         self._loads(sets)
-        self._displacements(supports, fixed)
-        self._march(supports)
+        self._displacements(coarse, supports, fixed)
+        self._march(coarse, supports)
 
     def _node(self, place: float) -> int:
         return int(np.abs(self.nodes - place).argmin())
 
     def _loads(self, sets: list[list[Load]]) -> None:
-        """Intensities at both ends of each element (sets, elements, 2), forces on nodes (sets, nodes)."""
+        """Intensities at both ends of each cell (sets, cells, 2), forces between them (sets, cells + 1)."""
         self.spread = np.zeros((len(sets), len(self.width), 2))
         self.forces = np.zeros((len(sets), len(self.nodes)))
-        for number_, loads in enumerate(sets):
+        for row, loads in enumerate(sets):
             for load in loads:
                 if isinstance(load, Force):
-                    self.forces[number_, self._node(load.at)] += load.size
+                    self.forces[row, self._node(load.at)] += load.size
                     continue
                 a, b = self._node(load.start), self._node(load.end)
                 if a < b:
-                    ends = self.nodes[[a, b]]
-                    values = np.interp(self.nodes[a : b + 1], ends, [load.first, load.last])
-                    self.spread[number_, a:b, 0] += values[:-1]
-                    self.spread[number_, a:b, 1] += values[1:]
+                    values = np.interp(self.nodes[a : b + 1], self.nodes[[a, b]], [load.first, load.last])
+                    self.spread[row, a:b, 0] += values[:-1]
+                    self.spread[row, a:b, 1] += values[1:]
 
-    def _displacements(self, supports: list[float], fixed: tuple[bool, bool]) -> None:
-        """Nodal deflections and rotations; residual forces at what is held.
-
-        Assembled in extended precision and solved with refinement, since elements may be short.
-        """
-        count = 2 * len(self.nodes)
-        stiffness = np.zeros((count, count), dtype=np.longdouble)
-        right = np.zeros((count, len(self.spread)), dtype=np.longdouble)
-        right[::2] = self.forces.T
-        points, weights = np.polynomial.legendre.leggauss(4)
-        xi = (points + 1) / 2
-        for e, h in enumerate(self.width.astype(np.longdouble)):
-            six, four, two = 6 / h**2, 4 / h, 2 / h
-            twelve = 12 / h**3
-            stiffness[2 * e : 2 * e + 4, 2 * e : 2 * e + 4] += np.array(
-                [
-                    [twelve, six, -twelve, six],
-                    [six, four, -six, two],
-                    [-twelve, -six, twelve, -six],
-                    [six, two, -six, four],
-                ]
-            )
-            shapes = np.array(
-                [
-                    1 - 3 * xi**2 + 2 * xi**3,
-                    h * (xi - 2 * xi**2 + xi**3),
-                    3 * xi**2 - 2 * xi**3,
-                    h * (xi**3 - xi**2),
-                ]
-            )
-            at_points = self.spread[:, e, :1] * (1 - xi) + self.spread[:, e, 1:] * xi
-            right[2 * e : 2 * e + 4] += (shapes * weights / 2 * h) @ at_points.T
-        held = [2 * self._node(support) for support in supports]
-        held += [1] * fixed[0] + [count - 1] * fixed[1]
-        open_ = np.setdiff1d(np.arange(count), held)
+    def _displacements(self, coarse: np.ndarray, supports: list[float], fixed: tuple[bool, bool]) -> None:
+        """Deflections and rotations of the elements' nodes; forces and moments at what is held."""
+        count = 2 * len(coarse)
+        stiffness = np.zeros((count, count))
+        right = np.zeros((count, len(self.spread)))
+        for e, (a, b) in enumerate(pairwise(coarse)):
+            h = float(b - a)
+            own = slice(2 * e, 2 * e + 4)
+            # second derivatives at both ends; between them they are linear
+            bend = np.array([[-6 / h, -4, 6 / h, -2], [6 / h, 2, -6 / h, 4]]) / h
+            stiffness[own, own] += h / 6 * bend.T @ np.array([[2, 1], [1, 2]]) @ bend
+            for cell in range(self._node(a), self._node(b)):
+                wide = self.width[cell]
+                at_points = self.spread[:, cell, :1] * (1 - XI) + self.spread[:, cell, 1:] * XI
+                there = (self.nodes[cell] - a + XI * wide) / h
+                right[own] += (shapes(there, h) * WEIGHTS * wide) @ at_points.T
+            last = self._node(b) + (e == len(coarse) - 2)
+            for node in range(self._node(a), last):
+                there = np.array([(self.nodes[node] - a) / h])
+                right[own] += shapes(there, h) @ self.forces[:, node][None]
+        held_at = [int(np.abs(coarse - support).argmin()) for support in supports]
+        held = [2 * node for node in held_at] + [1] * fixed[0] + [count - 1] * fixed[1]
+        loose = np.setdiff1d(np.arange(count), held)
         found = np.zeros_like(right)
-        loose = stiffness[np.ix_(open_, open_)]
-        scale = 1 / np.sqrt(np.diag(loose))[:, None]
-        inverse = np.linalg.inv((scale * loose * scale.T).astype(float))
-        for _ in range(8):
-            found[open_] += scale * (inverse @ (scale * (right[open_] - loose @ found[open_])).astype(float))
-        residual = (stiffness @ found - right).astype(float)
-        self.deflection, self.rotation = found[::2].T.astype(float), found[1::2].T.astype(float)
-        self.reactions = -residual[[2 * self._node(support) for support in supports]].T
+        inner = stiffness[np.ix_(loose, loose)]
+        for _ in range(2):  # the second time to take off what rounding left
+            found[loose] += np.linalg.solve(inner, right[loose] - inner @ found[loose])
+        residual = stiffness @ found - right
+        self.deflection, self.rotation = found[::2].T, found[1::2].T
+        self.reactions = -residual[[2 * node for node in held_at]].T
         self.end_moments = np.array([residual[1] * fixed[0], -residual[-1] * fixed[1]]).T
 
-    def _march(self, supports: list[float]) -> None:
-        """Shear and moment at each element's left end, from equilibrium; checked at the far end."""
+    def _march(self, coarse: np.ndarray, supports: list[float]) -> None:
+        """From cell to cell by equilibrium and integration; checked at every node of the elements."""
         jumps = -self.forces
         for column, support in enumerate(supports):
             jumps[:, self._node(support)] += self.reactions[:, column]
-        first, last, h = self.spread[..., 0], self.spread[..., 1], self.width
-        shear, moment = [jumps[:, 0]], [self.end_moments[:, 0]]
-        for e in range(len(h)):
-            moment.append(
-                moment[-1] + shear[-1] * h[e] - first[:, e] * h[e] ** 2 / 2
-                - (last[:, e] - first[:, e]) * h[e] ** 2 / 6
-            )  # fmt: skip
-            shear.append(shear[-1] - h[e] * (first[:, e] + last[:, e]) / 2 + jumps[:, e + 1])
-        scale = float(np.abs(jumps).sum()) + 1e-9
-        assert np.abs(shear[-1]).max(initial=0.0) < 1e-9 * scale, "forces do not balance"
-        assert np.abs(moment[-1] - self.end_moments[:, 1]).max(initial=0.0) < 1e-9 * scale * self.nodes[-1]
-        self.shear, self.moment = np.array(shear[:-1]).T, np.array(moment[:-1]).T
-        slope = (last - first) / h
-        nothing = np.zeros_like(first)
-        v, m, r, d = self.shear, self.moment, self.rotation[:, :-1], self.deflection[:, :-1]
-        powers = {
-            "load": [first, slope, nothing, nothing, nothing, nothing],
-            "shear": [v, -first, -slope / 2, nothing, nothing, nothing],
-            "moment": [m, v, -first / 2, -slope / 6, nothing, nothing],
-            "rotation": [r, -m, -v / 2, first / 6, slope / 24, nothing],
-            "deflection": [d, r, -m / 2, -v / 6, first / 24, slope / 120],
-        }
-        self.fields = {name: np.stack(each, axis=-1) for name, each in powers.items()}
+        scale = float(np.abs(jumps).sum() + np.abs(self.spread).sum() * self.nodes[-1])
+        at_nodes = {self._node(place): number for number, place in enumerate(coarse)}
+        v, m = jumps[:, 0], self.end_moments[:, 0]
+        r, d = self.rotation[:, 0], self.deflection[:, 0]
+        rows: dict[str, list[np.ndarray]] = {name: [] for name in FIELDS}
+        zero = np.zeros_like(v)
+        for e, h in enumerate(self.width):
+            w, slope = self.spread[:, e, 0], (self.spread[:, e, 1] - self.spread[:, e, 0]) / h
+            cell = {
+                "load": [w, slope, zero, zero, zero, zero],
+                "shear": [v, -w, -slope / 2, zero, zero, zero],
+                "moment": [m, v, -w / 2, -slope / 6, zero, zero],
+                "rotation": [r, -m, -v / 2, w / 6, slope / 24, zero],
+                "deflection": [d, r, -m / 2, -v / 6, w / 24, slope / 120],
+            }
+            for name in FIELDS:
+                rows[name].append(np.stack(cell[name], axis=-1))
+            v, m, r, d = (polynomial(rows[name][-1], h) for name in FIELDS[1:])
+            v = v + jumps[:, e + 1]
+            if (node := at_nodes.get(e + 1)) is not None:
+                for value, exact, power in ((r, self.rotation, 2), (d, self.deflection, 3)):
+                    gap = np.abs(value - exact[:, node]).max(initial=0.0)
+                    assert gap <= 1e-9 * scale * self.nodes[-1] ** power, "an element does not fit its load"
+                r, d = self.rotation[:, node], self.deflection[:, node]
+        assert np.abs(v).max(initial=0.0) <= 1e-9 * scale, "forces do not balance"
+        gap = np.abs(m - self.end_moments[:, 1]).max(initial=0.0)
+        assert gap <= 1e-9 * scale * self.nodes[-1], "moments do not balance"
+        self.fields = {name: np.stack(each, axis=1) for name, each in rows.items()}
 
 
+def polynomial(coefficients: np.ndarray, x: float) -> Any:
+    return coefficients @ (x ** np.arange(coefficients.shape[-1]))
+
+
+FIELDS = ("load", "shear", "moment", "rotation", "deflection")
 RATE = {"moment": ("shear", 1.0), "shear": ("load", -1.0), "deflection": ("rotation", 1.0)}
 SAMPLES = np.linspace(0.0, 1.0, 17)
 
@@ -145,11 +159,11 @@ def subsets(count: int) -> np.ndarray:
 
 
 def worst(solution: Solution, quantity: str, always: np.ndarray, placed: np.ndarray, sign: float) -> Worst:
-    """The largest (sign 1) or smallest (sign -1) value of a quantity with movable sets placed at their worst."""
+    """The largest (sign 1) or smallest (sign -1) value of a quantity, movable sets at their worst."""
     field_, (rate, way) = solution.fields[quantity], RATE[quantity]
-    powers = SAMPLES[:, None] ** np.arange(6) * 1.0
+    powers = SAMPLES[:, None] ** np.arange(6)
     h = solution.width
-    local = SAMPLES * h[:, None]  # (elements, samples)
+    local = SAMPLES * h[:, None]  # (cells, samples)
     values = np.einsum("aek,ek,sk->aes", field_, h[:, None] ** np.arange(6), powers)
     steady = sign * np.tensordot(always, values, axes=1)
     moving = np.flatnonzero(placed)
@@ -191,10 +205,6 @@ def worst(solution: Solution, quantity: str, always: np.ndarray, placed: np.ndar
         found.append((value, float(solution.nodes[e] + at)))
     most = max(value for value, _ in found)
     return Worst(sign * most, sorted(at for value, at in found if value >= most - 1e-9 * span))
-
-
-def polynomial(coefficients: np.ndarray, x: float) -> Any:
-    return coefficients @ (x ** np.arange(coefficients.shape[-1]))
 
 
 def worst_reactions(solution: Solution, always: np.ndarray, placed: np.ndarray, sign: float) -> np.ndarray:

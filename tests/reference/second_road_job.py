@@ -140,7 +140,9 @@ class Bar:
     def held(self) -> list[int]:
         """Numbers of the points it stands on."""
         last = len(self.points) - 1
-        return [k for k in range(last + 1) if not (k == 0 and self.free[0] or k == last and self.free[1])]
+        return [
+            k for k in range(last + 1) if not (self.free[0] and k == 0) and not (self.free[1] and k == last)
+        ]
 
 
 def number(text: str) -> float:
@@ -246,7 +248,7 @@ class Floor:
             for key, each in data.get("materials", {}).items()
         }  # fmt: skip
         sections = {key: section(each) for key, each in data.get("sections", {}).items()}
-        usual = 150 * UNITS["lbf/ft^3"] if self.basis["actions"].startswith("ASCE") else 25.0
+        concrete = 150 * UNITS["lbf/ft^3"] if self.basis["actions"].startswith("ASCE") else 25.0
         self.slabs = []
         for each in members("panel"):
             corners = [point(corner) for corner in each["corners"]]
@@ -256,7 +258,7 @@ class Floor:
             outline = np.array(corners)
             if shoelace(outline) < 0:
                 outline = outline[::-1]
-            heavy = materials[each["material"]][1] if "material" in each else usual
+            heavy = materials[each["material"]][1] if "material" in each else concrete
             heavy = number(each["unit_weight"]) if "unit_weight" in each else heavy
             pressure = {case: number(each.get(case, "0 kPa")) for case in CASES}
             pressure["dead"] += heavy * number(each.get("thickness", "0 m"))

@@ -79,7 +79,7 @@ def holding(floor: Floor, side: Side) -> list[Piece]:
 
 
 def continues(floor: Floor, slab: Slab, side: Side) -> bool:
-    """Whether panels cover the whole other side of an edge: looked up a little beyond it, stretch by stretch."""
+    """Whether panels cover all the other side of an edge: looked up beyond it, stretch by stretch."""
     others = [other for other in floor.slabs if other is not slab]
     feet = [side.foot(corner) for other in others for corner in other.corners]
     stops = sorted({0.0, side.length, *(foot for foot in feet if 0 < foot < side.length)})
@@ -179,15 +179,17 @@ def strips(sides: list[Side], held: list[bool], way: np.ndarray, own: int) -> li
 
 
 def shares(floor: Floor, slab: Slab) -> list[tuple[Piece, list[Cell], dict[float, float]]]:
-    """What each beam or wall gets of a panel: (its stretch; depths there in its own coordinates; areas at points)."""
+    """What each beam or wall gets of a panel: its stretch, depths and areas at points, at its own places."""
     sides = sides_of(slab)
     pieces = [holding(floor, side) for side in sides]
     held = [bool(row) for row in pieces]
     way = way_of(floor, slab, sides, held)
     far = floor.basis["dividing_lines"] == "60 at continuous edges"
     reach = {
-        k: math.sqrt(3) if far and continues(floor, slab, sides[k]) else 1.0 for k in range(len(sides)) if held[k]
-    }  # fmt: skip
+        k: math.sqrt(3) if far and continues(floor, slab, sides[k]) else 1.0
+        for k in range(len(sides))
+        if held[k]
+    }
     found = []
     for own in reach:
         cells = nearest(sides, reach, own) if way is None else strips(sides, held, way, own)
@@ -200,14 +202,11 @@ def shares(floor: Floor, slab: Slab) -> list[tuple[Piece, list[Cell], dict[float
                 return float(np.interp(s, (piece.start, piece.end), (piece.at_start, piece.at_end)))
 
             for cell in cells:
-                spread = Spread(*cell, "")
-                for low, high, end in (
-                    (-math.inf, 0.0, piece.at_start if piece.start < SAME else None),
-                    (sides[own].length, math.inf, piece.at_end if piece.end > sides[own].length - SAME else None),
-                ):  # fmt: skip
-                    part = spread.part(low, high)
-                    if part and end is not None:
-                        beyond[end] += part.total
+                spread, length = Spread(*cell, ""), sides[own].length
+                if piece.start < SAME and (part := spread.part(-math.inf, 0.0)):
+                    beyond[piece.at_start] += part.total
+                if piece.end > length - SAME and (part := spread.part(length, math.inf)):
+                    beyond[piece.at_end] += part.total
                 part = spread.part(piece.start, piece.end)
                 if part and part.end - part.start > 1e-8:
                     a, b = (part.first, part.last) if forward else (part.last, part.first)
