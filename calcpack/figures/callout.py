@@ -10,7 +10,8 @@ from calcpack.figures.lettering import text_width
 from calcpack.figures.parts import line_height
 from calcpack.figures.shapes import Pair
 
-ROWS = (0, 1, 2, 3, 4, 5, 6)
+ROWS = range(9)
+CLEAR = 0.45  # above and below the words, so that a heavy line does not touch them [mm]
 
 
 def call_out(
@@ -52,7 +53,7 @@ def call_out(
     placer.block(box)
     if dot:
         drawing.disc(*point, 0.45, INK, SIGNS)
-    foot, top = lead_foot(box, point), box.bounds()[3]
+    foot, top = lead_foot(box, point), box.bounds()[3] - CLEAR
     if abs(foot[0] - point[0]) > 0.5 or abs(foot[1] - point[1]) > 1.6:
         drawing.line([foot, point], Stroke(HAIR, GREY), HATCHING)
         placer.block_line([foot, point])
@@ -74,8 +75,9 @@ def _options(
     for row in ROWS:
         for side in (out, -out) if row < 3 else (out,):
             for lines in layouts:
-                wide, high = max(text_width(line, SMALL, bold) for line in lines), height * len(lines)
+                wide = max(text_width(line, SMALL, bold) for line in lines)
+                high = height * len(lines) + 2 * CLEAR
                 low, far = 0.4 + wide / 2, width - 0.4 - wide / 2
                 for shift in (0.0, 0.25, -0.25, 0.5, -0.5, 0.9, -0.9):
                     middle = min(max(x + shift * (wide + 1.2), low), far)
-                    yield Box(middle, y + side * (0.8 + high / 2 + row * height), wide + 0.8, high), lines
+                    yield Box(middle, y + side * (0.5 + high / 2 + row * height), wide + 0.8, high), lines

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 import math
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
@@ -24,10 +25,17 @@ Samples = tuple[Any, Any]  # places [m], values; a jump is two points at one pla
 
 HEIGHT = 34.0  # of the whole diagram [mm]
 STEPS = 400  # places at which demand and capacity are compared
+# The fullest wording of the title and of what is said beside it that fit next to each other is taken.
 TITLES = {
-    "moment": "bending moment and resistance, drawn on the tension side",
-    "shear": "shear and resistance",
+    "moment": (
+        "bending moment and resistance, drawn on the tension side",
+        "moment and resistance, on the tension side",
+        "moment, tension side",
+    ),
+    "shear": ("shear and resistance",),
 }
+WHOLE = ("heavy line: resistance", "heavy: resistance")
+CUT = ("heavy line: resistance, not to scale beyond three times the demand", "resistance not to scale", "cut")
 UNITS = {"moment": "kN*m", "shear": "kN"}
 CAPACITY = Stroke(1.5, INK)
 
@@ -54,6 +62,20 @@ class Governing(NamedTuple):
     def ratio(self) -> float:
         """Demand over capacity; infinite without any."""
         return self.demand / self.capacity if self.capacity else math.inf
+
+
+def ratio_text(ratio: float) -> str:
+    """A ratio in two decimals, in more where these would hide that it is beyond one.
+
+    Examples
+    --------
+    >>> ratio_text(0.7649), ratio_text(1.0004), ratio_text(math.inf)
+    ('0.76', '1.0004', 'without limit')
+    """
+    if not math.isfinite(ratio):
+        return "without limit"
+    hidden = ratio > 1 and round(ratio, 2) <= 1
+    return f"{ratio:.6g}" if hidden else f"{ratio:.2f}"
 
 
 def capacity_figure(
@@ -115,7 +137,7 @@ def capacity_figure(
     ...     mark="B5",
     ... )
     >>> print(figure.alt)
-    Bending moment and resistance of B5: largest ratio 0.600 at 3.00 m (54.0 of 90.0 kN·m).
+    Bending moment and resistance of B5: largest ratio 0.60 at 3.00 m (54.0 of 90.0 kN·m).
     """
     if quantity not in TITLES:
         raise ValueError(f"no resistance is drawn for {quantity!r}")
@@ -130,8 +152,17 @@ def capacity_figure(
     axis = BeamAxis(length, tuple(bearings), fixed, width_mm)
     strip = _Strip(axis, quantity, system)
     strip.draw(upper, lower, stretches, ranges, places)
-    sheet = stacked(axis, [(TITLES[quantity], strip.remark, strip.drawing)], beam_row(axis, system))
+    title, remark = _heading(TITLES[quantity], CUT if strip.cut else WHOLE, width_mm)
+    sheet = stacked(axis, [(title, remark, strip.drawing)], beam_row(axis, system))
     return sheet.finish(width_mm, _spoken(quantity, places, mark, system))
+
+
+def _heading(titles: Sequence[str], remarks: Sequence[str], width: float) -> tuple[str, str]:
+    """A title and a remark that fit beside each other, both as full as may be."""
+    for title, remark in itertools.product(titles, remarks):
+        if text_width(title, SMALL, bold=True) + text_width(remark, SMALL) + 4.0 <= width:
+            return title, remark
+    return titles[-1], remarks[-1]
 
 
 def _stretches(capacity: Sequence[Capacity | tuple[float, ...]], length: float) -> list[Capacity]:
@@ -208,7 +239,7 @@ class _Strip:
     axis: BeamAxis
     quantity: Force
     system: System
-    remark: str = ""
+    cut: bool = False  # a resistance is drawn smaller than it is
 
     def draw(
         self,
@@ -288,7 +319,10 @@ class _Strip:
         x, y = self.axis.x(place.at), place.demand * self.scale
         unit = UNITS[self.quantity]
         asked = shown_number(abs(place.demand), unit, self.system)
-        words = [self._ratio(place), f"({asked} of {show(abs(place.capacity), unit, self.system)})"]
+        words = [
+            f"ratio {ratio_text(place.ratio)}",
+            f"({asked} of {show(abs(place.capacity), unit, self.system)})",
+        ]
         if not self.axis.at_bearing(place.at):
             words.insert(1, f"at {show(place.at, 'm', self.system)}")
         if abs(y) > 2.0:
@@ -298,11 +332,6 @@ class _Strip:
         call_out(
             self.drawing, self.placer, (x, y), words, self.axis.width, out=1.0 if y > 0 else -1.0, bold=bold
         )
-
-    def _ratio(self, place: Governing) -> str:
-        if not math.isfinite(place.ratio):
-            return "no resistance"
-        return f"ratio {shown_number(place.ratio, '1', 'SI')}"
 
     def _key(self, stretches: Sequence[Capacity], cut: float) -> None:
         """Each capacity's value at its line, in the stretch's middle where there is room."""
@@ -315,7 +344,7 @@ class _Strip:
                     continue
                 text = show(abs(first), unit, self.system)
                 if abs(first) > cut:
-                    self.remark = "resistance beyond three times the demand cut off"
+                    self.cut = True
                 y = max(min(first, cut), -cut) * self.scale
                 side = 1.0 if y > 0 else -1.0
                 width = text_width(text, SMALL)
@@ -342,6 +371,5 @@ def _spoken(quantity: Force, places: Sequence[Governing], mark: str, system: Sys
     for place in places:
         asked = shown_number(abs(place.demand), UNITS[quantity], system)
         held = show(abs(place.capacity), UNITS[quantity], system)
-        ratio = shown_number(place.ratio, "1", "SI") if math.isfinite(place.ratio) else "without limit"
-        words.append(f"ratio {ratio} at {show(place.at, 'm', system)} ({asked} of {held})")
+        words.append(f"ratio {ratio_text(place.ratio)} at {show(place.at, 'm', system)} ({asked} of {held})")
     return f"{head}: largest {', other way '.join(words)}." if words else f"{head}: nothing is asked for."
