@@ -1,0 +1,296 @@
+"""Bending and shear to AISC 360-22 on a sheet: each strength a few lines that draw on each other."""
+
+from __future__ import annotations
+
+from typing import NamedTuple
+
+from calcpack.clauses.aisc360 import strength
+from calcpack.clauses.aisc360.shape_lines import (
+    AISC,
+    ShapeLines,
+    SlendernessLines,
+    SteelLines,
+    available,
+    class_of,
+    state_factor,
+)
+from calcpack.clauses.aisc360.strength import Method, Slenderness, Zone
+from calcpack.sheet import PI, Expression, Line, Sheet, greatest, least, sqrt
+
+
+class BendingBasis(NamedTuple):
+    """What the bending strength of every segment draws on; ``flange`` where local buckling counts."""
+
+    factor: Line
+    plastic: Line
+    first: Line
+    short: Line
+    long: Line
+    ratio: Line
+    flange: Line | None
+
+
+def state_bending_basis(
+    sheet: Sheet,
+    ratios: Slenderness,
+    method: Method,
+    steel: SteelLines,
+    shape: ShapeLines,
+    slender: SlendernessLines,
+) -> BendingBasis:
+    """Plastic moment, moment at first yield, limiting lengths, and local buckling of the flange.
+
+    Source: AISC 360-22 (F2-1), (F2-5), (F2-6), (F3-1), (F3-2).
+    """
+    factor = state_factor(sheet, strength.BENDING, method, "b", "bending")
+    plastic = sheet.hence("M_p", steel.fy * shape.plastic, "kN*m", "Plastic moment", f"{AISC} (F2-1)")
+    first = sheet.hence(
+        "M_y",
+        0.7 * steel.fy * shape.elastic,
+        "kN*m",
+        "Where residual stresses make the first fibre yield",
+        f"{AISC} F2.2",
+        word="moment at first yield, residual stresses counted",
+    )
+    short = sheet.hence(
+        "L_p",
+        1.76 * shape.weak_radius * sqrt(steel.modulus / steel.fy),
+        "m",
+        "Limit for yielding",
+        f"{AISC} (F2-5)",
+    )
+    ratio = sheet.hence(
+        "X",
+        shape.torsion / (shape.elastic * shape.apart),
+        "1",
+        "Torsion against warping, c = 1",
+        f"{AISC} (F2-8a)",
+        word="torsion against warping",
+    )
+    stress = sheet.hence(
+        "e",
+        0.7 * steel.fy / steel.modulus,
+        "1",
+        "Strain at 0.7 of the yield strength",
+        f"{AISC} (F2-6)",
+        word="strain at 0.7 of the yield strength",
+    )
+    long = sheet.hence(
+        "L_r",
+        1.95 * (shape.shear_radius / stress) * sqrt(ratio + sqrt(ratio**2 + 6.76 * stress**2)),
+        "m",
+        "Limit for inelastic buckling",
+        f"{AISC} (F2-6)",
+    )
+    return BendingBasis(
+        factor,
+        plastic,
+        first,
+        short,
+        long,
+        ratio,
+        _flange(sheet, ratios, steel, shape, slender, plastic, first),
+    )
+
+
+def _flange(
+    sheet: Sheet,
+    ratios: Slenderness,
+    steel: SteelLines,
+    shape: ShapeLines,
+    slender: SlendernessLines,
+    plastic: Line,
+    first: Line,
+) -> Line | None:
+    if slender.flange_noncompact is None:
+        return None
+    if ratios.slender_flange:
+        factor = sheet.hence(
+            "k_c",
+            least(greatest(4 / sqrt(slender.web), 0.35), 0.76),
+            "1",
+            "Restraint by the web",
+            f"{AISC} F3.2(b)",
+            word="restraint of the flange by the web",
+        )
+        term = 0.9 * steel.modulus * factor * shape.elastic / slender.flange**2
+        cite = f"{AISC} (F3-2)"
+    else:
+        term = plastic - (plastic - first) * (
+            (slender.flange - slender.flange_compact) / (slender.flange_noncompact - slender.flange_compact)
+        )
+        cite = f"{AISC} (F3-1)"
+    return sheet.hence(
+        "M_n,f",
+        term,
+        "kN*m",
+        f"Local buckling of the {class_of(ratios)} flange",
+        cite,
+        word="nominal moment strength, local buckling of the flange",
+    )
+
+
+class Moments(NamedTuple):
+    """The moments that C_b is made from: by size; ``capped`` where the demand is not the largest."""
+
+    demand: Line
+    quarter: Line
+    middle: Line
+    three_quarters: Line
+    capped: bool
+
+
+def state_diagram_factor(sheet: Sheet, moments: Moments) -> Line:
+    """C_b of a segment from its moments.
+
+    Source: AISC 360-22 (F1-1).
+
+    Examples
+    --------
+    >>> sheet = Sheet("B1")
+    >>> sheet.section("Diagram")
+    >>> values = {"M_r": 8, "M_A": 6, "M_B": 8, "M_C": 6}
+    >>> four = [sheet.take(name, value, "kN*m", name, "analysis") for name, value in values.items()]
+    >>> state_diagram_factor(sheet, Moments(*four, capped=False)).shown
+    '1.136'
+    """
+    below = 2.5 * moments.demand + 3 * moments.quarter + 4 * moments.middle + 3 * moments.three_quarters
+    term: Expression = 12.5 * moments.demand / below
+    says = "Factor for the moment diagram"
+    if moments.capped:
+        term = greatest(term, 1)
+        says += ", the moment checked in place of the larger one of the other sense, and at least 1"
+    return sheet.hence("C_b", term, "1", says, f"{AISC} (F1-1)")
+
+
+class BendingLines(NamedTuple):
+    """Nominal and available strength of a segment."""
+
+    nominal: Line
+    available: Line
+
+
+_ZONES: dict[Zone, str] = {
+    "yielding": "Yielding, as the unbraced length is at most the limit for yielding",
+    "inelastic": "Inelastic buckling, as the unbraced length lies between the limits",
+    "elastic": "Elastic buckling, as the unbraced length is beyond both limits",
+}
+
+
+def state_bending(
+    sheet: Sheet,
+    zone: Zone,
+    method: Method,
+    basis: BendingBasis,
+    steel: SteelLines,
+    shape: ShapeLines,
+    unbraced: Line | None,
+    factor: Line | None,
+) -> BendingLines:
+    """Bending strength of a segment.
+
+    Parameters
+    ----------
+    zone : "yielding", "inelastic" or "elastic"
+    unbraced, factor : Line or None
+        L_b and C_b; not needed for yielding.
+
+    Source: AISC 360-22 F2.1, (F2-2), (F2-3), (F2-4); F3 where the flange is not compact.
+    """
+    says, cite = _ZONES[zone], f"{AISC} F2.1"
+    term: Expression = basis.plastic.as_expression()
+    if zone != "yielding":
+        if unbraced is None or factor is None:
+            raise ValueError("buckling needs an unbraced length and a factor for the diagram")
+        if zone == "inelastic":
+            along = (unbraced - basis.short) / (basis.long - basis.short)
+            buckling: Expression = factor * (basis.plastic - (basis.plastic - basis.first) * along)
+            cite = f"{AISC} (F2-2)"
+        else:
+            slender = (unbraced / shape.shear_radius) ** 2
+            stress = sheet.hence(
+                "F_cr",
+                factor * PI**2 * steel.modulus / slender * sqrt(1 + 0.078 * basis.ratio * slender),
+                "MPa",
+                "Critical stress of elastic buckling",
+                f"{AISC} (F2-4)",
+            )
+            buckling, cite = stress * shape.elastic, f"{AISC} (F2-3)"
+        term = least(buckling, basis.plastic)
+    if basis.flange is not None:
+        term = least(*(term.args if zone != "yielding" else (term,)), basis.flange)
+        says, cite = f"{says}; local buckling of the flange counted", f"{cite}, F3"
+    nominal = sheet.hence("M_n", term, "kN*m", says, cite)
+    return BendingLines(
+        nominal,
+        sheet.hence(
+            "M_c",
+            available(basis.factor, nominal, method),
+            "kN*m",
+            "Available strength",
+            f"{AISC} B3.{1 if method == 'LRFD' else 2}",
+            word="available moment strength",
+        ),
+    )
+
+
+class ShearLines(NamedTuple):
+    """Web area and available shear strength."""
+
+    area: Line
+    available: Line
+
+
+def state_shear(
+    sheet: Sheet, shear: strength.Shear, method: Method, steel: SteelLines, shape: ShapeLines, web: Line
+) -> ShearLines:
+    """Shear strength of the web without stiffeners.
+
+    Parameters
+    ----------
+    web : Line
+        Its slenderness.
+
+    Source: AISC 360-22 G2.1, (G2-1) to (G2-4).
+    """
+    limit = sheet.hence(
+        "lambda_v",
+        2.24 * sqrt(steel.modulus / steel.fy),
+        "1",
+        "A rolled shape's web yields in shear up to this: it does" + ("" if shear.stocky else " not"),
+        f"{AISC} G2.1(a)",
+        word="slenderness up to which the web yields in shear",
+    )
+    factor = state_factor(sheet, shear.factor, method, "v", "shear")
+    area = sheet.hence("A_w", shape.depth * shape.web, "mm^2", "Area of the web", f"{AISC} G2.1")
+    if shear.stocky:
+        coefficient = sheet.take(
+            "C_v1", 1.0, "1", f"Web shear factor, as {web.shown} is at most {limit.shown}", f"{AISC} (G2-2)"
+        )
+    else:
+        buckling = sheet.take(
+            "k_v",
+            strength.PLATE_BUCKLING,
+            "1",
+            "Plate buckling coefficient, no stiffeners",
+            f"{AISC} G2.1(b)(2)",
+            word="plate buckling coefficient",
+        )
+        root = sqrt(buckling * steel.modulus / steel.fy)
+        coefficient = sheet.hence(
+            "C_v1", least(1.10 * root / web, 1), "1", "Web shear factor", f"{AISC} (G2-3), (G2-4)"
+        )
+    nominal = sheet.hence(
+        "V_n", 0.6 * steel.fy * area * coefficient, "kN", "Nominal shear strength", f"{AISC} (G2-1)"
+    )
+    return ShearLines(
+        area,
+        sheet.hence(
+            "V_c",
+            available(factor, nominal, method),
+            "kN",
+            "Available strength",
+            f"{AISC} G1",
+            word="available shear strength",
+        ),
+    )
