@@ -177,10 +177,13 @@ def _only(
 
 def _by_entry(entry: Mapping[str, Any], present: Sequence[Case]) -> Iterator[_Draft]:
     """A combination written out in the file, with each of its ``one_of`` in turn."""
+    occur = set(VARIABLE) & set(present)
     for companion in ({}, *entry.get("one_of", ())):
-        yield _only(
-            entry["factors"] | companion, present, entry["limit"], entry.get("situation", ""), entry["cite"]
-        )
+        factors = entry["factors"] | companion
+        variable = set(factors) & set(VARIABLE)
+        if variable and occur and not variable & occur:
+            continue  # all it is about does not occur; what is left of it says nothing of its own
+        yield _only(factors, present, entry["limit"], entry.get("situation", ""), entry["cite"])
 
 
 def _by_rule(

@@ -8,7 +8,7 @@ from typing import Any
 from calcpack.equivalent import loads_on, responses
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import Work, summed
-from calcpack.sheet import Expression, Line, absolute, greatest, measured, number, total
+from calcpack.sheet import Expression, Line, absolute, greatest, measured, number
 from calcpack.statics import LineLoad, PointLoad
 from calcpack.statics.stiffness import stiffness_check
 
@@ -135,22 +135,32 @@ def _three_moments(work: Work) -> None:
     for left, right in pairs:
         one, other = work.lines["span", left.number - 1], work.lines["span", right.number - 1]
         (a, b), (c, d) = fixed[left.number], fixed[right.number]
-        bent = total(
-            [
-                measured(moments[left.start], "kN*m") * one,
-                2 * measured(moments[left.end], "kN*m") * (one + other),
-                measured(moments[right.end], "kN*m") * other,
-            ]
+        words = f"at the support between spans {left.number} and {right.number}"
+        outer = [
+            measured(moments[at], "kN*m") * length
+            for at, length in ((left.start, one), (right.end, other))
+            if moments[at]
+        ]
+        bent = sheet.hence(
+            f"C_{left.number}",
+            summed([2 * measured(moments[left.end], "kN*m") * (one + other), *outer]),
+            "kN*m^2",
+            says=f"Three-moment equation {words}: turning by the support moments",
+            cite="Clapeyron",
+            word="turning by support moments, times 6 EI",
         )
-        loaded = total(
-            [
-                one * (measured(a, "kN*m") + 2 * measured(b, "kN*m")),
-                other * (2 * measured(c, "kN*m") + measured(d, "kN*m")),
-            ]
+        loaded = sheet.hence(
+            f"D_{left.number}",
+            one * (measured(a, "kN*m") + 2 * measured(b, "kN*m"))
+            + other * (2 * measured(c, "kN*m") + measured(d, "kN*m")),
+            "kN*m^2",
+            says="Turning by the loads, from the moments with fixed ends",
+            cite="Clapeyron",
+            word="turning by loads, times 6 EI",
         )
         sheet.require(
             absolute(bent + loaded) / loaded <= work.lines["agreement"],
-            says=f"Three-moment equation at the support between spans {left.number} and {right.number}",
+            says="The two cancel, over the turning by the loads",
             cite="Clapeyron",
         )
 
