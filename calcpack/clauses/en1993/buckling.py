@@ -1,0 +1,189 @@
+"""Lateral-torsional buckling in numbers: the critical moment of the actual diagram, and what it leaves.
+
+C1 after Serna, López, Puente and Yong, Equivalent uniform moment factors for lateral-torsional buckling of
+steel members, Journal of Constructional Steel Research 62 (2006) 566-580 (from memory), ends free to turn in
+plan and to warp. Beside eigenvalues (tests/reference/test_en1993.py) it is 0 to 2 % off under
+end moments of one sign and under uniform load, and up to about 9 % short under a load at midspan.
+
+C2 from the energy of one half sine wave of twist (Timoshenko and Gere, Theory of elastic stability,
+chapter 6), which gives the 0.46 and 0.55 that are printed for a uniform load and for a load at midspan.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from typing import NamedTuple
+
+from calcpack.clauses.en1993.rules import CURVE, IMPERFECTION, SLENDER, Curves, Factors
+from calcpack.clauses.en1993.section import Profile
+from calcpack.clauses.steel import SegmentMoments
+from calcpack.statics import LineLoad, Load
+
+
+def diagram_factor(moments: SegmentMoments) -> float:
+    """C1 from the moments at the quarters of a segment and the largest one in it.
+
+    Source: Serna et al. (2006): √(35 Mmax² / (Mmax² + 9 M2² + 16 M3² + 9 M4²)).
+
+    Examples
+    --------
+    >>> from calcpack.statics import Extreme
+    >>> none = Extreme(0.0, 0.0)
+    >>> even = SegmentMoments(0.0, 4.0, 5.0, 5.0, 5.0, 5.0, 5.0, Extreme(5.0, 2.0), Extreme(5.0, 2.0), none)
+    >>> diagram_factor(even)
+    1.0
+    """
+    most = moments.largest.value
+    spread = most**2 + 9 * moments.quarter**2 + 16 * moments.middle**2 + 9 * moments.three_quarters**2
+    return math.sqrt(35 * most**2 / spread) if most else 1.0
+
+
+def twisting_load(loads: Sequence[tuple[Load, float]], start: float, end: float) -> float:
+    """Loads times the square of the half sine wave at their place [kN]: what their height works on.
+
+    Parameters
+    ----------
+    loads : sequence of (load, factor)
+        Downward positive, measured from the beam's start.
+    start, end : float [m]
+        The segment, where the wave is zero.
+
+    Examples
+    --------
+    >>> from calcpack.statics import PointLoad
+    >>> round(twisting_load([(LineLoad(0, 6, 10, 10), 1.0), (PointLoad(3.0, 5.0), 2.0)], 0.0, 6.0), 9)
+    40.0
+    """
+    length = end - start
+    wave = 2 * math.pi / length
+    found = 0.0
+    for load, factor in loads:
+        if not isinstance(load, LineLoad):
+            if start < load.at < end:
+                found += factor * load.force * math.sin(math.pi * (load.at - start) / length) ** 2
+            continue
+        first, last = max(load.start, start), min(load.end, end)
+        if last <= first:
+            continue
+        slope = (load.last - load.first) / (load.end - load.start)
+        base = load.first + slope * (start - load.start)
+
+        def up_to(x: float, base: float = base, slope: float = slope) -> float:
+            swing = (base + slope * x) * math.sin(wave * x) / wave + slope * math.cos(wave * x) / wave**2
+            return (base * x + slope * x**2 / 2 - swing) / 2
+
+        found += factor * (up_to(last - start) - up_to(first - start))
+    return found
+
+
+def load_factor(diagram: float, length: float, twisting: float, moment: float) -> float:
+    """C2 = C1 L F / (π² M), F the load times the square of the half sine wave.
+
+    Parameters
+    ----------
+    diagram : float
+        C1.
+    length : float [m]
+    twisting : float [kN]
+        From :func:`twisting_load`.
+    moment : float [kNm]
+        Largest by size.
+
+    Examples
+    --------
+    10 kN/m over 6 m, for which ENV 1993-1-1:1992, Table F.1.2 prints 0.459:
+
+    >>> round(load_factor(1.132, 6.0, 30.0, 45.0), 3)
+    0.459
+    """
+    return diagram * length * twisting / (math.pi**2 * abs(moment)) if moment else 0.0
+
+
+def critical_moment(profile: Profile, length: float, diagram: float, height_term: float) -> float:
+    """M_cr of a doubly symmetric section, ends held sideways and against twist, free to warp [kNm].
+
+    Parameters
+    ----------
+    profile : Profile
+    length : float [m]
+    diagram : float
+        C1.
+    height_term : float [m]
+        C2 z_g, z_g positive above the shear centre.
+
+    Source: NCCI SN003b, equation (1) with k = kw = 1 (from memory); ENV 1993-1-1:1992, (F.2).
+    """
+    s = profile.shape
+    euler = math.pi**2 * profile.modulus * s.weak_inertia / length**2
+    arm = s.warping / s.weak_inertia + profile.shear_modulus * s.torsion / euler
+    return diagram * euler * (math.sqrt(arm + height_term**2) - height_term)
+
+
+class Reduction(NamedTuple):
+    """The way from a slenderness to a reduction factor."""
+
+    alpha: float
+    phi: float
+    chi: float
+    correction: float  # f of 6.3.2.3(2); 1 in the general case
+    reduced: float  # χ_LT, or χ_LT,mod
+
+
+def imperfection(profile: Profile, curves: Curves) -> tuple[str, float]:
+    """Buckling curve and α_LT of a rolled I-section, Tables 6.3 to 6.5.
+
+    Examples
+    --------
+    >>> from calcpack.job.library import rolled_sections
+    >>> from calcpack.clauses.steel import i_section
+    >>> ipe = Profile("IPE 330", i_section(rolled_sections()["ipe330"]), 235e3, 210e6, 81e6)
+    >>> imperfection(ipe, "rolled"), imperfection(ipe, "general")
+    (('c', 0.49), ('b', 0.34))
+    """
+    stocky, slender = CURVE[curves]
+    curve = stocky if profile.shape.depth / profile.shape.width <= SLENDER * (1 + 1e-12) else slender
+    return curve, IMPERFECTION[curve]
+
+
+def reduction(
+    slenderness: float, alpha: float, curves: Curves, factors: Factors, diagram: float
+) -> Reduction:
+    """χ_LT at a slenderness.
+
+    Parameters
+    ----------
+    slenderness : float
+        λ_LT.
+    alpha : float
+        Imperfection factor.
+    curves : "general" or "rolled"
+    factors : Factors
+        λ_LT,0 and β, of rolled sections only.
+    diagram : float
+        C1, for k_c = 1/√C1 in f.
+
+    Source: EN 1993-1-1:2005, (6.56), (6.57), (6.58); k_c as for Table 6.6, 1/√C1.
+
+    Examples
+    --------
+    Exactly on the plateau nothing is lost:
+
+    >>> reduction(0.4, 0.49, "rolled", Factors(), 1.0).chi
+    1.0
+    >>> reduction(0.2, 0.34, "general", Factors(), 1.0).chi
+    1.0
+    >>> round(reduction(1.0, 0.34, "general", Factors(), 1.0).chi, 4)  # curve b; tables print 0.5970
+    0.597
+    """
+    if curves == "general":
+        phi = 0.5 * (1 + alpha * (slenderness - 0.2) + slenderness**2)
+        chi = min(1.0, 1 / (phi + math.sqrt(max(phi**2 - slenderness**2, 0.0))))
+        return Reduction(alpha, phi, chi, 1.0, chi)
+    plateau, beta = factors.plateau, factors.beta
+    phi = 0.5 * (1 + alpha * (slenderness - plateau) + beta * slenderness**2)
+    root = math.sqrt(max(phi**2 - beta * slenderness**2, 0.0))
+    chi = min(1.0, 1 / slenderness**2, 1 / (phi + root))
+    share = 1 / math.sqrt(diagram)
+    correction = min(1.0, 1 - 0.5 * (1 - share) * (1 - 2.0 * (slenderness - 0.8) ** 2))
+    return Reduction(alpha, phi, chi, correction, min(1.0, 1 / slenderness**2, chi / correction))

@@ -1,0 +1,92 @@
+"""The stretches of a beam that may buckle sideways between the points that hold it."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from itertools import pairwise
+from typing import Literal, NamedTuple
+
+from calcpack.clauses.steel import held_points
+from calcpack.job.errors import CalcpackError
+
+Braced = Literal["ends", "at beams", "continuous"]
+
+
+class Segment(NamedTuple):
+    """A stretch between two points held sideways and against twist.
+
+    Parameters
+    ----------
+    start, end : float [m]
+    length : float [m]
+        The length its critical moment is worked out with: its own, or the longer one the job gives.
+    only_hogging : bool
+        The top flange is held all along: sagging counts as no moment at all.
+    free_tip : bool
+        It runs to the free tip of an overhang, which nothing holds.
+    """
+
+    start: float
+    end: float
+    length: float
+    only_hogging: bool = False
+    free_tip: bool = False
+
+
+def segments(
+    spans: Sequence[tuple[float, float]],
+    supports: Sequence[float],
+    *,
+    braced: Braced = "ends",
+    unbraced: float | None = None,
+    beams: Sequence[float] = (),
+    tip_held: bool = False,
+) -> tuple[Segment, ...]:
+    """Cut a beam where it is held.
+
+    Parameters
+    ----------
+    spans : sequence of (start, end) [m]
+        Overhangs included.
+    supports : sequence of float [m]
+        Every support holds the beam sideways and against twist.
+    braced : "ends", "at beams" or "continuous"
+        Held at supports alone; also where beams come down; or its top flange all along.
+    unbraced : float [m], optional
+        Distance of points held, counted from each span's start; of a span shorter than that, the length to
+        work with. Under "continuous" it is the bottom flange that is held there.
+    beams : sequence of float [m]
+        Where beams come down.
+    tip_held : bool
+        The tips of overhangs are held too.
+
+    Raises
+    ------
+    CalcpackError
+        Points held are given twice over.
+
+    Examples
+    --------
+    >>> [part[:3] for part in segments([(0, 7)], [0, 7], unbraced=3.0)]
+    [(0.0, 3.0, 3.0), (3.0, 6.0, 3.0), (6.0, 7.0, 1.0)]
+    >>> [part[:3] for part in segments([(0, 7)], [0, 7], unbraced=8.0)]
+    [(0.0, 7.0, 8.0)]
+    >>> parts = segments([(0, 6), (6, 8)], [0, 6], braced="at beams", beams=[2])
+    >>> [(part.start, part.free_tip) for part in parts]
+    [(0.0, False), (2.0, False), (6.0, True)]
+    """
+    if unbraced is not None and braced == "at beams":
+        raise CalcpackError(
+            "a beam held where beams come down takes no unbraced length",
+            remedy="leave out unbraced_length, or set braced = 'ends'",
+            key="design.unbraced_length",
+        )
+    found = []
+    for start, end in spans:
+        at = beams if braced == "at beams" else ()
+        points = [float(point) for point in held_points(start, end, every=unbraced, at=at)]
+        for first, last in pairwise(points):
+            length = max(unbraced, last - first) if unbraced and len(points) == 2 else last - first
+            free = not tip_held and any(end not in supports and end in (first, last) for end in (start, end))
+            found.append(Segment(first, last, length, braced == "continuous", free))
+    return tuple(found)
