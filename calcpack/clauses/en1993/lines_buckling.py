@@ -1,0 +1,349 @@
+"""Lateral-torsional buckling of one segment, written as lines."""
+
+from __future__ import annotations
+
+from typing import NamedTuple
+
+from calcpack.clauses.en1993.buckling import imperfection
+from calcpack.clauses.en1993.design import Buckling, Conditions
+from calcpack.clauses.en1993.lines_section import Partial, ProfileLines, modulus_line
+from calcpack.clauses.en1993.rules import CODE, CURVE_CITE, OVERHANG, OVERHANG_CITE
+from calcpack.clauses.en1993.section import Profile
+from calcpack.sheet import PI, Expression, Line, Sheet, least, number, sqrt
+
+SERNA = "Serna et al., J. Constr. Steel Res. 62 (2006), 566-580 (from memory)"
+CRITICAL = "NCCI SN003b (1), k = kw = 1; ENV 1993-1-1 (F.2) (from memory)"
+
+
+class Critical(NamedTuple):
+    """The critical moment and what it comes from."""
+
+    demand: Line
+    length: Line
+    diagram: Line  # C1
+    load: Line | None  # C2, where the load's height counts
+    critical: Line
+
+
+def critical(
+    sheet: Sheet, given: ProfileLines, found: Buckling, conditions: Conditions, origin: str = "design"
+) -> Critical:
+    """M_cr of a segment under its own diagram of moments, with the height of the load.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    given : ProfileLines
+    found : Buckling
+        From :func:`calcpack.clauses.en1993.design.design`.
+    conditions : Conditions
+    origin : str
+        The beam's design keys in the job file.
+
+    Returns
+    -------
+    Critical
+
+    Source: as ``clauses.en1993.buckling`` has it.
+    """
+    part = found.segment
+    arrangement = f"analysis, {found.arrangement.combination.name}"
+    demand = sheet.take(
+        "M_Ed,b",
+        found.demand,
+        "kN*m",
+        "Largest moment of the segment, by size",
+        arrangement,
+        given=False,
+    )
+    if part.free_tip:
+        length = _overhang_length(sheet, found, origin)
+        diagram = sheet.take(
+            "C_1", 1.0, "1", "Diagram factor, on the safe side for an overhang", "template", OVERHANG_CITE
+        )
+    else:
+        own = abs(part.length - (part.end - part.start)) < 1e-9
+        length = sheet.take(
+            "L_cr",
+            part.length,
+            "m",
+            "Length between points held sideways and against twist",
+            "segment" if own else f"{origin}.unbraced_length",
+            word="buckling length",
+            given=False,
+        )
+        diagram = (
+            sheet.take("C_1", conditions.diagram, "1", "Diagram factor, given", f"{origin}.C1")
+            if conditions.diagram
+            else _diagram(sheet, demand, found, arrangement)
+        )
+    load, term = None, None
+    if found.height:
+        load = _load_factor(sheet, demand, length, diagram, found, arrangement)
+        height = sheet.take(
+            "z_g",
+            found.height * 1000,
+            "mm",
+            "Load above the shear centre: half the depth"
+            if found.height > 0
+            else "Load below the shear centre: half the depth, negative",
+            f"{origin}.load_height",
+            word="height of the load above the shear centre",
+            given=False,
+        )
+        term = load * height
+    euler = sheet.hence(
+        "N_cr,z",
+        PI**2 * given.E * given.I_z / length**2,
+        "kN",
+        "Critical force about the weak axis over this length",
+        "Euler",
+        word="critical force, weak axis",
+    )
+    inside: Expression = given.I_w / given.I_z + given.G * given.I_t / euler
+    root = sqrt(inside + term**2) - term if term is not None else sqrt(inside)
+    value = sheet.hence(
+        "M_cr",
+        diagram * euler * root,
+        "kN*m",
+        "Critical moment" + ("" if term is None else " with the load at its height"),
+        CRITICAL,
+        word="elastic critical moment",
+    )
+    return Critical(demand, length, diagram, load, value)
+
+
+def _overhang_length(sheet: Sheet, found: Buckling, origin: str) -> Line:
+    above = found.length > found.segment.length * (1 + 1e-9)
+    reach = sheet.take(
+        "ell_o",
+        found.segment.length,
+        "m",
+        "Overhang whose tip nothing holds",
+        f"{origin}.tip_held",
+        word="length of the overhang, tip free",
+        given=False,
+    )
+    factor = OVERHANG[above]
+    return sheet.hence(
+        "L_cr",
+        number(f"{factor:g}") * reach,
+        "m",
+        f"Buckling length, load {'above' if above else 'not above'} the shear centre",
+        OVERHANG_CITE,
+        word="buckling length",
+    )
+
+
+def _diagram(sheet: Sheet, demand: Line, found: Buckling, arrangement: str) -> Line:
+    moments = found.moments
+    quarters = []
+    with sheet.columns([1, 1, 1]) as column:
+        for number_, (value, says) in enumerate(
+            (
+                (moments.quarter, "at the first quarter"),
+                (moments.middle, "at its middle"),
+                (moments.three_quarters, "at the third quarter"),
+            )
+        ):
+            if number_:
+                column()
+            quarters.append(
+                sheet.take(
+                    f"M_{number_ + 2}",
+                    value,
+                    "kN*m",
+                    f"Moment {says}" + (", sagging as none" if found.segment.only_hogging else ""),
+                    arrangement,
+                    word=f"moment {says} of the segment",
+                    given=False,
+                )
+            )
+    second, third, fourth = quarters
+    return sheet.hence(
+        "C_1",
+        sqrt(35 * demand**2 / (demand**2 + 9 * second**2 + 16 * third**2 + 9 * fourth**2)),
+        "1",
+        "Diagram factor from the segment's own moments",
+        SERNA,
+    )
+
+
+def _load_factor(
+    sheet: Sheet, demand: Line, length: Line, diagram: Line, found: Buckling, arrangement: str
+) -> Line:
+    twisting = sheet.take(
+        "F_phi",
+        found.twisting,
+        "kN",
+        "Load on the segment, each part times sin² of its place in the half wave of twist",
+        arrangement,
+        word="load times the square of the half sine wave",
+        given=False,
+    )
+    return sheet.hence(
+        "C_2",
+        diagram * length * twisting / (PI**2 * demand),
+        "1",
+        "Load factor, for its height",
+        "energy of one half sine wave; Timoshenko and Gere, ch. 6",
+        word="load factor, for the load's height",
+    )
+
+
+class BucklingLines(NamedTuple):
+    """From the slenderness to the requirement."""
+
+    slenderness: Line
+    chi: Line
+    resistance: Line
+    check: Line
+
+
+def buckling(
+    sheet: Sheet,
+    given: ProfileLines,
+    partial: Partial,
+    profile: Profile,
+    conditions: Conditions,
+    start: Critical,
+    origin: str = "design",
+) -> BucklingLines:
+    """χ_LT and M_b,Rd of a segment, and that its moment does not pass it.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    given, partial : ProfileLines, Partial
+    profile : Profile
+    conditions : Conditions
+        ``curves`` says which clause: 6.3.2.2 or 6.3.2.3.
+    start : Critical
+    origin : str
+
+    Source: EN 1993-1-1:2005, 6.3.2.1 to 6.3.2.3.
+
+    Examples
+    --------
+    >>> from calcpack.clauses.en1993.samples import IPE_330, uniform
+    >>> from calcpack.clauses.en1993.lines_section import take_factors, take_profile
+    >>> sheet, found = Sheet("B1"), uniform(5.7, 22.28, Conditions("rolled", "top", 1.127))
+    >>> sheet.section("Buckling")
+    >>> given, partial = take_profile(sheet, IPE_330), take_factors(sheet, IPE_330)
+    >>> start = critical(sheet, given, found.segments[0], found.conditions)
+    >>> lines = buckling(sheet, given, partial, IPE_330, found.conditions, start)
+    >>> round(start.critical.value), round(lines.slenderness.value, 2), round(lines.resistance.value)
+    (114, 1.29, 92)
+    """
+    modulus, words = modulus_line(given, profile)
+    slenderness = sheet.hence(
+        "lambdabar_LT",
+        sqrt(modulus * given.f_y / start.critical),
+        "1",
+        f"Slenderness, section modulus {words}",
+        f"{CODE} 6.3.2.2(1)",
+    )
+    curve, value = imperfection(profile, conditions.curves)
+    stocky = profile.shape.depth / profile.shape.width <= 2
+    alpha = sheet.take(
+        "alpha_LT",
+        value,
+        "1",
+        f"Imperfection factor, curve {curve}: h/b {'not over' if stocky else 'over'} 2",
+        "rolled I-section",
+        CURVE_CITE[conditions.curves],
+    )
+    if conditions.curves == "general":
+        chi = _general(sheet, slenderness, alpha)
+    else:
+        chi = _rolled(sheet, profile, slenderness, alpha, start.diagram, origin)
+    resistance = sheet.hence(
+        "M_b,Rd",
+        chi * modulus * given.f_y / partial.gamma_M1,
+        "kN*m",
+        "Buckling resistance",
+        f"{CODE} 6.3.2.1(3) (6.55)",
+    )
+    check = sheet.require(start.demand <= resistance, "Lateral-torsional buckling", f"{CODE} 6.3.2.1(1)")
+    return BucklingLines(slenderness, chi, resistance, check)
+
+
+def _general(sheet: Sheet, slenderness: Line, alpha: Line) -> Line:
+    phi = sheet.hence(
+        "Phi_LT",
+        0.5 * (1 + alpha * (slenderness - 0.2) + slenderness**2),
+        "1",
+        "Auxiliary value, general case",
+        f"{CODE} 6.3.2.2(1)",
+    )
+    return sheet.hence(
+        "chi_LT",
+        least(1, number(1) / (phi + sqrt(phi**2 - slenderness**2))),
+        "1",
+        "Reduction factor",
+        f"{CODE} 6.3.2.2(1) (6.56)",
+    )
+
+
+def _rolled(
+    sheet: Sheet, profile: Profile, slenderness: Line, alpha: Line, diagram: Line, origin: str
+) -> Line:
+    factors = profile.factors
+    with sheet.columns([1, 1]) as column:
+        plateau = sheet.take(
+            "lambdabar_LT,0",
+            factors.plateau,
+            "1",
+            "Plateau of rolled sections",
+            f"{origin}.plateau",
+            f"{CODE} 6.3.2.3(1), recommended 0.4",
+            word="length of the plateau",
+        )
+        column()
+        beta = sheet.take(
+            "beta",
+            factors.beta,
+            "1",
+            "Its correction",
+            f"{origin}.beta",
+            f"{CODE} 6.3.2.3(1), recommended 0.75",
+            word="correction factor of the buckling curve",
+        )
+    phi = sheet.hence(
+        "Phi_LT",
+        0.5 * (1 + alpha * (slenderness - plateau) + beta * slenderness**2),
+        "1",
+        "Auxiliary value, rolled sections",
+        f"{CODE} 6.3.2.3(1)",
+    )
+    chi = sheet.hence(
+        "chi_LT",
+        least(1, number(1) / slenderness**2, number(1) / (phi + sqrt(phi**2 - beta * slenderness**2))),
+        "1",
+        "Reduction factor",
+        f"{CODE} 6.3.2.3(1) (6.57)",
+    )
+    share = sheet.hence(
+        "k_c",
+        number(1) / sqrt(diagram),
+        "1",
+        "Correction for the diagram",
+        f"{CODE} Table 6.6 in the form of 1/√C1",
+        word="correction for the moment diagram",
+    )
+    correction = sheet.hence(
+        "f",
+        least(1, 1 - 0.5 * (1 - share) * (1 - 2 * (slenderness - 0.8) ** 2)),
+        "1",
+        "Factor for the diagram between the points held",
+        f"{CODE} 6.3.2.3(2)",
+        word="factor for the moment diagram",
+    )
+    return sheet.hence(
+        "chi_LT,mod",
+        least(1, number(1) / slenderness**2, chi / correction),
+        "1",
+        "Reduction factor, modified",
+        f"{CODE} 6.3.2.3(2) (6.58)",
+        word="buckling reduction factor, modified",
+    )
