@@ -28,7 +28,7 @@ class Parameter(Frozen):
     says: str
     type: Literal["number", "integer", "text", "choice", "true or false", "table", "quantity"]
     of: str = ""  # for a quantity its kind: "length", "stress", ...
-    choices: tuple[str, ...] = ()
+    choices: tuple[str, ...] = ()  # for a number: words that may stand in its place
     keys: dict[str, Parameter] = Field(default_factory=dict)  # for a table, its own keys
     minimum: float | None = None
     maximum: float | None = None
@@ -188,6 +188,8 @@ def _value(given: Any, parameter: Parameter, mark: str, path: str, problems: lis
             if not isinstance(given, str):
                 raise ValueError("a text is expected")
             return given
+    if isinstance(given, str) and given in parameter.choices:
+        return given
     return _number(given, parameter)
 
 
