@@ -1,0 +1,34 @@
+"""What the README shows is so."""
+
+from __future__ import annotations
+
+import re
+
+from conftest import ROOT
+
+from calcpack.framing import frame
+from calcpack.job import read_job
+
+README = (ROOT / "README.md").read_text(encoding="utf-8")
+
+
+def test_the_small_job_is_a_job(tmp_path):
+    (text,) = re.findall(r"```toml\n(.*?)```", README, flags=re.S)
+    (tmp_path / "job.toml").write_text(text, encoding="utf-8")
+    framed = frame(read_job(tmp_path / "job.toml"))
+    assert list(framed.beams) == ["B1"]
+    assert framed.applied["live"] == 36.0
+
+
+def test_the_two_commands_name_what_is_there():
+    commands = re.findall(r"<!-- (\w+) -->\n```sh\n(.*?)\n```", README, flags=re.S)
+    assert [name for name, _ in commands] == ["build", "tests"]
+    for _, command in commands:
+        assert "\n" not in command
+        assert "constraints.txt" in command
+    assert (ROOT / "examples" / "rope_walk" / "job.toml").is_file()
+
+
+def test_pinned_versions_are_pinned():
+    lines = (ROOT / "constraints.txt").read_text(encoding="utf-8").splitlines()
+    assert all(re.fullmatch(r"#.*|[A-Za-z0-9_.-]+==[^ ]+", line) for line in lines)
