@@ -185,6 +185,6 @@ class _Strip:
 
 
 def _side(found: Sequence[tuple[float, float]], start: float, end: float, worth: float) -> float:
-    """The side the part of the beam between two places deflects to: upward only where that is worth saying."""
+    """The side the part of the beam between two places deflects to: up only where worth saying."""
     inside = [value for value, at in found if start - 1e-9 <= at <= end + 1e-9]
     return -1.0 if max(inside, key=abs, default=0.0) < -worth else 1.0
