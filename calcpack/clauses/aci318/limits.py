@@ -101,7 +101,7 @@ def guard(values: Mapping[str, float], system: System, mark: str = "") -> None:
     >>> guard({"f'_c": 27579.0, "f_y": 413685.0}, "SI")
     >>> guard({"f'_c": 12000.0}, "SI", "beam B1")
     Traceback (most recent call last):
-    calcpack.job.errors.CalcpackError: beam B1: specified concrete strength 12 MPa is below 17.2 MPa; ACI \
+    calcpack.job.errors.CalcpackError: beam B1: specified concrete strength 12.0 MPa is below 17.2 MPa; ACI \
 318-19 Table 19.2.1.1
     """
     problems = []
@@ -109,18 +109,17 @@ def guard(values: Mapping[str, float], system: System, mark: str = "") -> None:
         value = values.get(limit.key)
         if value is None or limit.does != "refuse":
             continue
-        outside = (
-            value < limit.base * (1 - 1e-6) if limit.side == "least" else value > limit.base * (1 + 1e-6)
-        )
-        if outside:
-            found = show(value / 1000, "MPa", system, exact=True, shown_in=_psi(system)).replace(
-                "\u00a0", " "
+        least = limit.side == "least"
+        if value < limit.base * (1 - 1e-6) if least else value > limit.base * (1 + 1e-6):
+            found, allowed = (
+                show(each / 1000, "MPa", system, shown_in=_psi(system)).replace("\u00a0", " ")
+                for each in (value, limit.base)
             )
-            most = show(limit.base / 1000, "MPa", system, shown_in=_psi(system)).replace("\u00a0", " ")
-            relation = "below" if limit.side == "least" else "above"
             problems.append(
                 Problem(
-                    f"{limit.says} {found} is {relation} {most}", f"{CODE} {limit.cite}", mark=mark or None
+                    f"{limit.says} {found} is {'below' if least else 'above'} {allowed}",
+                    f"{CODE} {limit.cite}",
+                    mark=mark or None,
                 )
             )
     if problems:

@@ -314,7 +314,7 @@ def development_length(
     top : bool
         More than 12 in of fresh concrete below.
     small : bool
-        No. 6 (20 mm) or smaller.
+        No. 6 (19 mm) or smaller.
 
     Source: ACI 318-19, Eq. (25.4.2.4a), Table 25.4.2.5, and 25.4.2.1(b): at least 12 in.
 

@@ -1,0 +1,145 @@
+"""Materials, section and cover of a beam to ACI 318-19, as lines."""
+
+from __future__ import annotations
+
+from typing import NamedTuple
+
+from calcpack.clauses.aci318.arrangement import COVERS, least_cover
+from calcpack.clauses.aci318.limits import CODE, bound
+from calcpack.clauses.aci318.strength import INCH, PSI
+from calcpack.job.model import Material
+from calcpack.sheet import Expression, Line, Sheet, greatest, in_unit, least, number_in, quantity, sqrt
+
+Checks = tuple[tuple[str, Line], ...]
+
+
+def cite(clause: str) -> str:
+    """A clause with its standard.
+
+    Examples
+    --------
+    >>> cite("22.2.2.1")
+    'ACI 318-19 22.2.2.1'
+    """
+    return f"{CODE} {clause}"
+
+
+class Materials(NamedTuple):
+    """Material values, each a line."""
+
+    fc: Line
+    lightweight: Line
+    ec: Line
+    beta: Line
+    fy: Line
+    fyt: Line
+    es: Line
+    yield_strain: Line
+
+
+def state_materials(sheet: Sheet, material: Material) -> Materials:
+    """Concrete and bars with what the standard derives from them.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    material : Material
+        Concrete with ``fc``, ``fy`` and ``Es`` [kPa].
+
+    Source: ACI 318-19, 19.2.4.3, Table 22.2.2.4.3, 20.2.2, 21.2.2.1.
+
+    Examples
+    --------
+    >>> sheet = Sheet("B1")
+    >>> sheet.section("Materials")
+    >>> values = {"fc": 34473.79, "fy": 413685.4, "Es": 199947962.0}
+    >>> concrete = Material(key="c", kind="concrete", modulus=27.8e6, unit_weight=23.6, values=values)
+    >>> found = state_materials(sheet, concrete)
+    >>> round(found.beta.value, 3), found.fyt.shown
+    (0.8, '413.7\\xa0MPa')
+    """
+    place = f"material {material.key}"
+    values = {name: float(material.values[name]) / 1000 for name in ("fc", "fy", "Es")}
+    fc = sheet.take(
+        "f'_c", values["fc"], "MPa", "Specified concrete strength", f"{place} grade", us="psi"
+    )  # fmt: skip
+    lightweight = sheet.take(
+        "lambda", 1.0, "1", "Normalweight concrete", f"{place} unit_weight", cite("19.2.4.3")
+    )
+    ec = sheet.take("E_c", material.modulus / 1000, "MPa", "Modulus of the concrete", place, cite("19.2.2.1"))
+    fy = sheet.take("f_y", values["fy"], "MPa", "Yield strength of the bars", f"{place} bars")
+    es = sheet.take("E_s", values["Es"], "MPa", "Modulus of the bars", f"{place} bars", cite("20.2.2.2"))
+    step = 0.05 * (number_in(fc, "psi") - 4000) / 1000
+    beta = sheet.hence(
+        "beta_1",
+        greatest(0.65, least(0.85, 0.85 - step)),
+        "1",
+        "Depth of the stress block over that to the neutral axis (f'c in psi)",
+        cite("Table 22.2.2.4.3"),
+    )
+    fyt = sheet.hence(
+        "f_yt",
+        least(fy, quantity(round(bound("f_yt") / PSI), "psi")),
+        "MPa",
+        "Yield strength of the stirrups, of the same grade, as far as shear may count on it",
+        cite("Table 20.2.2.4(a)"),
+    )
+    strain = sheet.hence(
+        "epsilon_ty", fy / es, "1", "Yield strain", cite("21.2.2.1"), word="yield strain of the bars"
+    )
+    return Materials(fc, lightweight, ec, beta, fy, fyt, es, strain)
+
+
+def root(fc: Line) -> Expression:
+    """√f'c, f'c in psi, as shear, torsion and development take it: at most 100 where it would be more."""
+    plain = sqrt(number_in(fc, "psi"))
+    if fc.value * 1000 <= 10_000 * PSI * (1 + 1e-9):
+        return plain
+    return least(plain, 100)
+
+
+def psi(term: Expression) -> Expression:
+    """A bare number as a stress in psi."""
+    return in_unit(term, "psi")
+
+
+class Size(NamedTuple):
+    """The section's sizes, each a line; ``face`` and ``flange`` of a tee only."""
+
+    web: Line
+    height: Line
+    cover: Line
+    stirrup: Line
+    face: Line | None = None
+    flange: Line | None = None
+
+
+def state_cover(sheet: Sheet, cover: Line, exposure: str, stirrup: float, main: float) -> Checks:
+    """The cover over the stirrups is no less than the least one.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    cover : Line [mm]
+    exposure : str
+        A key of ``COVERS``.
+    stirrup, main : float [m]
+        Diameters.
+
+    Source: ACI 318-19, Table 20.5.1.3.1.
+
+    Examples
+    --------
+    >>> sheet = Sheet("B1")
+    >>> sheet.section("Cover")
+    >>> cover = sheet.take("c_c", 30, "mm", "Cover", "beam B1 design.cover")
+    >>> [(name, line.passes) for name, line in state_cover(sheet, cover, "inside", 0.01, 0.02)]
+    [('cover', False)]
+    """
+    inches = round(least_cover(exposure, stirrup, main) / INCH, 4)
+    line = sheet.require(
+        cover >= quantity(inches, "in"),
+        f"Cover over the stirrups, {COVERS[exposure]}",
+        cite("Table 20.5.1.3.1"),
+    )
+    return (("cover", line),)
