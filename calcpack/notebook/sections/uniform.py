@@ -191,12 +191,15 @@ def _any_shape(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKin
     for name, shape in work.shapes(span, case).items():
         force, moment = resultant(shape)
         turning.append(terms[name] * measured(moment / force, "m"))
+    about = sheet.hence(
+        f"J_{mark}",
+        summed(turning),
+        "kN*m",
+        says="Moment of the resultants about the left support",
+        word="moment of loads about the left support",
+    )
     right = sheet.hence(
-        f"R_b,{mark}",
-        summed(turning) / length,
-        "kN",
-        says="Reaction at the right support, moments about the left one",
-        cite="equilibrium",
+        f"R_b,{mark}", about / length, "kN", says="Reaction at the right support", cite="equilibrium"
     )
     left = sheet.hence(
         f"R_a,{mark}", weight - right, "kN", says="Reaction at the left support", cite="equilibrium"
