@@ -232,6 +232,8 @@ def _steady(value: float) -> float:
 
 def _deflection_limits(work: Work) -> None:
     """Span over so much, for the live and the total deflection, where the job sets limits."""
+    if any(name.startswith("deflection") for name, _ in work.checks):
+        return  # a design section has looked at them in its own way
     limits = work.given.design.get("deflection_limits") or {}
     analysed = work.study.analysed
     total_, live = analysed.deflection_total, analysed.deflection_live
