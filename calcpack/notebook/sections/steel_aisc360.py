@@ -1,0 +1,303 @@
+"""A steel beam to AISC 360-22: the sections of the sheet that design it.
+
+Worked out first (`design_beam`), so that what is shown can stand before how.
+"""
+
+from __future__ import annotations
+
+from typing import Any
+
+from calcpack.clauses.aisc360 import lines, shape_lines
+from calcpack.clauses.aisc360.design import BendingCheck
+from calcpack.clauses.steel import Arrangement
+from calcpack.figures.section import section_figure
+from calcpack.notebook.sections._steel_aisc360 import (
+    SteelBeam,
+    bending_name,
+    deflection_name,
+    force_name,
+    span_words,
+    steel_design,
+)
+from calcpack.notebook.sections._steel_aisc360_web import state_deflection, state_shear
+from calcpack.notebook.work import Work
+from calcpack.sheet import Line
+
+AISC = shape_lines.AISC
+
+
+def design_beam(work: Work) -> SteelBeam:
+    """Work the beam out, before anything is written.
+
+    Raises
+    ------
+    CalcpackError
+        The section is no rolled I-shape, the material no steel, a key of the design does not fit.
+    """
+    return SteelBeam(steel_design(work.study))
+
+
+def state_shown(work: Work, beam: SteelBeam) -> None:
+    """The schedule: each check's demand, resistance and ratio, worst first."""
+    design, sheet = beam.design, work.sheet
+    rows = sorted(_shown(work, beam), key=lambda row: -round(row["ratio"], 12))
+    sheet.ratios(rows)
+    failed = [row["says"] for row in rows if not row["passes"]]
+    if not design.covered:
+        failed.insert(0, "web not compact, bending strength not covered")
+    if failed:
+        sheet.text(f"Not satisfied: {'; '.join(failed)}.", role="unsafe")
+    else:
+        sheet.text(
+            f"All requirements are satisfied by {design.options.method} to {AISC}; {rows[0]['says']} governs."
+        )
+
+
+def _shown(work: Work, beam: SteelBeam) -> list[dict[str, Any]]:
+    design = beam.design
+    found = [(bending_name(work, each), each.demand, each.available, "kN*m") for each in beam.bending]
+    found.append(("shear", design.shear_demand.value, design.shear_available, "kN"))
+    found += [(force_name(work, each), each.force.force, each.available, "kN") for each in design.web]
+    found += [
+        (deflection_name(work, each), each.found * 1000, each.allowed * 1000, "mm")
+        for each in design.deflection
+    ]
+    return [
+        {
+            "says": says,
+            "demand": work.show(demand, unit),
+            "resistance": work.show(resistance, unit),
+            "ratio": demand / resistance,
+            "passes": demand <= resistance * (1 + 1e-9),
+        }
+        for says, demand, resistance, unit in found
+    ]
+
+
+def state_section(work: Work, beam: SteelBeam) -> None:
+    """The steel, the shape with its constants, and how slender flange and web are."""
+    sheet, given, design = work.sheet, work.given, beam.design
+    section, material = given.section, given.material
+    assert section is not None
+    assert material is not None
+    sheet.section(f"Section to {AISC}")
+    with sheet.columns([10, 13]) as column:
+        sheet.figure(
+            section_figure(section, work.study.system, mark=given.mark),
+            f"{section.designation}, to scale.",
+        )
+        column()
+        sheet.facts(_choices(work, beam))
+    steel = shape_lines.state_steel(
+        sheet, design.steel, material.grade or material.key, f"material {material.key}"
+    )
+    shape = shape_lines.state_shape(
+        sheet, design.shape, section.designation, f"section {section.key} designation", section.source
+    )
+    slender = shape_lines.state_slenderness(sheet, design.slenderness, steel, shape)
+    if not design.covered:
+        work.checks.append(("web compact", slender.web_compact))
+    beam.basis |= {"steel": steel, "shape": shape, "slender": slender}
+
+
+def _choices(work: Work, beam: SteelBeam) -> list[tuple[str, str]]:
+    """What the job or the template chose, each with where it comes from."""
+    options, design = beam.design.options, work.given.design
+    named = "as the job sets it" if design["method"] else f"from the combinations {work.given.actions.name}"
+    if options.braced == "continuous":
+        top = "held all along, as the job sets it"
+    elif options.braced == "at beams":
+        top = "braced where beams come in, as the job sets it"
+    elif options.unbraced_length is None:
+        top = "braced at supports alone (the job sets no unbraced_length)"
+    else:
+        top = (
+            f"braced every {work.show(options.unbraced_length, 'm', exact=True)} from the start of each span"
+        )
+    factor = "from the moment diagram" if options.diagram_factor is None else f"{options.diagram_factor:g}"
+    bearing = work.show(options.bearing_length * 1000, "mm")
+    return [
+        ("Method", f"{options.method}, {named}"),
+        ("Top flange", top),
+        ("Bottom flange", "braced with the top" if options.bottom_with_top else "braced at supports alone"),
+        ("C_b", f"{factor}; 1 for cantilevers"),
+        (
+            "Supports, point loads",
+            f"on the flanges over {bearing}"
+            + ("" if design["bearing_length"] else " (the template's choice)")
+            if options.seated
+            else "connected in the web: no check of J10",
+        ),
+        (
+            "Deflection",
+            f"span / {options.live_limit:g} variable load alone, span / {options.total_limit:g} service "
+            "combinations; cantilevers count twice",
+        ),
+    ]
+
+
+def state_bending(work: Work, beam: SteelBeam) -> None:
+    """Limits once, then the worst segment of each span and sense, and a table of all of them."""
+    sheet, design = work.sheet, beam.design
+    sheet.section("Bending and lateral-torsional buckling")
+    if not design.covered:
+        sheet.text(
+            "The web is not compact: F2 and F3 do not hold and no bending strength is given.", role="unsafe"
+        )
+        return
+    basis = lines.state_bending_basis(
+        sheet,
+        design.slenderness,
+        design.options.method,
+        beam.basis["steel"],
+        beam.basis["shape"],
+        beam.basis["slender"],
+    )
+    if len(design.bending) > len(beam.bending):
+        _segments(work, beam)
+    for check in beam.bending:
+        _state_segment(work, beam, basis, check)
+
+
+def _segments(work: Work, beam: SteelBeam) -> None:
+    """Every stretch between braced points with its worst arrangement."""
+    rows, strong = [], []
+    for number_, check in enumerate(beam.design.bending):
+        segment = check.segment
+        if check in beam.bending:
+            strong.append(number_)
+        rows.append(
+            [
+                span_words(work, segment.span.number),
+                f"{work.show(segment.start, 'm')} to {work.show(segment.end, 'm')}",
+                "sagging" if check.sagging else "hogging",
+                work.show(check.demand, "kN*m"),
+                "0" if segment.held else work.show(segment.unbraced, "m"),
+                work.show(check.diagram_factor, "1"),
+                work.show(check.available, "kN*m"),
+                work.show(check.ratio, "1"),
+                check.arrangement.combination.name,
+            ]
+        )
+    work.sheet.table(
+        [
+            ("", "left"),
+            ("from, to", "left"),
+            ("moment", "left"),
+            ({"math": r"M_{\text{r}}"}, "right"),
+            ({"math": r"L_{\text{b}}"}, "right"),
+            ({"math": r"C_{\text{b}}"}, "right"),
+            ({"math": r"M_{\text{c}}"}, "right"),
+            ("ratio", "right"),
+            ("under", "left"),
+        ],
+        rows,
+        caption="Stretches between braced points, each under its worst arrangement of load; the worst of "
+        "each span and sense, in bold, is worked out below.",
+        strong_rows=strong,
+    )
+
+
+def arrangement_words(work: Work, arrangement: Arrangement) -> str:
+    """A combination and where its movable load stands, in words."""
+    always, placed = work.study.analysed.factors(arrangement.combination)
+    everything = tuple(float(value) for value in always + placed)
+    name = arrangement.combination.name
+    if not placed.any():
+        return name
+    if arrangement.factors == everything:
+        return f"{name}, every span loaded"
+    sense = "sagging" if arrangement.sense > 0 else "hogging"
+    return f"{name}, placed for most {sense} at {work.show(arrangement.at, 'm')}"
+
+
+def _state_segment(work: Work, beam: SteelBeam, basis: lines.BendingBasis, check: BendingCheck) -> None:
+    sheet, segment, options = work.sheet, check.segment, beam.design.options
+    name = bending_name(work, check)
+    if len(beam.design.bending) > 1:
+        sheet.subsection(
+            f"{name[0].upper()}{name[1:]}: {work.show(segment.start, 'm')} to {work.show(segment.end, 'm')}"
+        )
+    origin = f"analysis, {arrangement_words(work, check.arrangement)}"
+
+    def moment(symbol: str, value: float, says: str, word: str) -> Line:
+        return sheet.take(symbol, abs(value), "kN*m", says, origin, given=False, word=word)
+
+    sense = "sagging" if check.sagging else "hogging"
+    demand = moment(
+        "M_r",
+        check.demand,
+        f"Largest {sense} moment, at {work.show(check.at, 'm')}",
+        "required moment strength",
+    )
+    unbraced = factor = None
+    zone = check.strength.zone
+    if segment.held:
+        sheet.text("The compression flange is held all along: no lateral-torsional buckling.", role="note")
+    else:
+        unbraced = _unbraced(work, check)
+    if zone != "yielding":
+        if segment.free:
+            factor = sheet.take("C_b", 1.0, "1", "Cantilever, its end not braced", f"{AISC} F1")
+        elif options.diagram_factor is not None:
+            factor = sheet.take(
+                "C_b", options.diagram_factor, "1", "As the job sets it", f"beam {work.given.mark} design.Cb"
+            )
+        else:
+            four = [
+                moment(
+                    f"M_{index}",
+                    value,
+                    f"Moment at {words} of the segment",
+                    f"moment at {words} of a segment",
+                )
+                for index, value, words in (
+                    ("A", check.moments.quarter, "the first quarter"),
+                    ("B", check.moments.middle, "the middle"),
+                    ("C", check.moments.three_quarters, "the third quarter"),
+                )
+            ]
+            larger = abs(check.moments.largest.value) > check.demand * (1 + 1e-9)
+            factor = lines.state_diagram_factor(
+                sheet, lines.Moments(demand, four[0], four[1], four[2], capped=larger)
+            )
+    found = lines.state_bending(
+        sheet, zone, options.method, basis, beam.basis["steel"], beam.basis["shape"], unbraced, factor
+    )
+    line = sheet.require(
+        demand <= found.available, f"Required against available strength: {name}", f"{AISC} F1"
+    )
+    work.checks.append((name, line))
+
+
+def _unbraced(work: Work, check: BendingCheck) -> Line:
+    """L_b: the span itself, or a part of it."""
+    segment = check.segment
+    if segment.unbraced == segment.span.length:
+        words = "from support to support" if segment.span.supported else "from the support to the tip"
+        return work.sheet.hence(
+            "L_b", work.lines["span", segment.span.number], "m", f"Unbraced length, {words}", f"{AISC} F1"
+        )
+    if work.given.design["braced"] == "at beams":
+        words = "between beams that come in"
+    else:
+        words = "between braced points"
+    return work.sheet.take(
+        "L_b",
+        segment.unbraced,
+        "m",
+        f"Unbraced length, {words}",
+        f"beam {work.given.mark} design.{'braced' if 'beams' in words else 'unbraced_length'}",
+        given=False,
+    )
+
+
+__all__ = [
+    "SteelBeam",
+    "design_beam",
+    "state_bending",
+    "state_deflection",
+    "state_section",
+    "state_shear",
+    "state_shown",
+]
