@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import NamedTuple
 
 from calcpack.clauses.en1993.design import Conditions, LocalForce
-from calcpack.clauses.en1993.lines_section import Partial, ProfileLines
+from calcpack.clauses.en1993.lines_profile import Partial, ProfileLines
 from calcpack.clauses.en1993.rules import PLATED, STRESS_SHARE
 from calcpack.sheet import Expression, Line, Sheet, least, number, sqrt
 
@@ -45,7 +45,7 @@ def bearing(
 
     Examples
     --------
-    >>> from calcpack.clauses.en1993.lines_section import take_factors, take_profile
+    >>> from calcpack.clauses.en1993.lines_profile import take_factors, take_profile
     >>> from calcpack.clauses.en1993.samples import IPE_330, uniform
     >>> sheet, beam = Sheet("B1"), uniform(5.7, 22.28, Conditions())
     >>> sheet.section("Bearing")
@@ -209,7 +209,7 @@ def force_beside_moment(
 
     Examples
     --------
-    >>> from calcpack.clauses.en1993.lines_section import take_factors, take_profile
+    >>> from calcpack.clauses.en1993.lines_profile import take_factors, take_profile
     >>> from calcpack.clauses.en1993.samples import IPE_330, uniform
     >>> sheet, beam = Sheet("B1"), uniform(5.7, 22.28, Conditions())
     >>> sheet.section("Bearing")

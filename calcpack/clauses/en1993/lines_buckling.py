@@ -6,7 +6,8 @@ from typing import NamedTuple
 
 from calcpack.clauses.en1993.buckling import imperfection
 from calcpack.clauses.en1993.design import Buckling, Conditions
-from calcpack.clauses.en1993.lines_section import Partial, ProfileLines, modulus_line
+from calcpack.clauses.en1993.lines_profile import Partial, ProfileLines
+from calcpack.clauses.en1993.lines_section import modulus_line
 from calcpack.clauses.en1993.rules import CODE, CURVE_CITE, OVERHANG, OVERHANG_CITE
 from calcpack.clauses.en1993.section import Profile
 from calcpack.sheet import PI, Expression, Line, Sheet, least, number, sqrt
@@ -137,28 +138,22 @@ def _overhang_length(sheet: Sheet, found: Buckling, origin: str) -> Line:
 
 def _diagram(sheet: Sheet, demand: Line, found: Buckling, arrangement: str) -> Line:
     moments = found.moments
-    quarters = []
-    with sheet.columns([1, 1, 1]) as column:
-        for number_, (value, says) in enumerate(
-            (
-                (moments.quarter, "at the first quarter"),
-                (moments.middle, "at its middle"),
-                (moments.three_quarters, "at the third quarter"),
-            )
-        ):
-            if number_:
-                column()
-            quarters.append(
-                sheet.take(
-                    f"M_{number_ + 2}",
-                    value,
-                    "kN*m",
-                    f"Moment {says}" + (", sagging as none" if found.segment.only_hogging else ""),
-                    arrangement,
-                    word=f"moment {says} of the segment",
-                    given=False,
-                )
-            )
+    quarters = [
+        sheet.take(
+            f"M_{index}",
+            value,
+            "kN*m",
+            f"Moment {says}" + (", sagging as none" if found.segment.only_hogging else ""),
+            arrangement,
+            word=f"moment {says} of the segment",
+            given=False,
+        )
+        for index, value, says in (
+            (2, moments.quarter, "at the first quarter"),
+            (3, moments.middle, "at the middle"),
+            (4, moments.three_quarters, "at the third quarter"),
+        )
+    ]
     second, third, fourth = quarters
     return sheet.hence(
         "C_1",
@@ -226,7 +221,7 @@ def buckling(
     Examples
     --------
     >>> from calcpack.clauses.en1993.samples import IPE_330, uniform
-    >>> from calcpack.clauses.en1993.lines_section import take_factors, take_profile
+    >>> from calcpack.clauses.en1993.lines_profile import take_factors, take_profile
     >>> sheet, found = Sheet("B1"), uniform(5.7, 22.28, Conditions("rolled", "top", 1.127))
     >>> sheet.section("Buckling")
     >>> given, partial = take_profile(sheet, IPE_330), take_factors(sheet, IPE_330)
@@ -289,26 +284,24 @@ def _rolled(
     sheet: Sheet, profile: Profile, slenderness: Line, alpha: Line, diagram: Line, origin: str
 ) -> Line:
     factors = profile.factors
-    with sheet.columns([1, 1]) as column:
-        plateau = sheet.take(
-            "lambdabar_LT,0",
-            factors.plateau,
-            "1",
-            "Plateau of rolled sections",
-            f"{origin}.plateau",
-            f"{CODE} 6.3.2.3(1), recommended 0.4",
-            word="length of the plateau",
-        )
-        column()
-        beta = sheet.take(
-            "beta",
-            factors.beta,
-            "1",
-            "Its correction",
-            f"{origin}.beta",
-            f"{CODE} 6.3.2.3(1), recommended 0.75",
-            word="correction factor of the buckling curve",
-        )
+    plateau = sheet.take(
+        "lambdabar_LT,0",
+        factors.plateau,
+        "1",
+        "Plateau of rolled sections",
+        f"{origin}.plateau",
+        f"{CODE} 6.3.2.3(1), recommended 0.4",
+        word="length of the plateau",
+    )
+    beta = sheet.take(
+        "beta",
+        factors.beta,
+        "1",
+        "Its correction",
+        f"{origin}.beta",
+        f"{CODE} 6.3.2.3(1), recommended 0.75",
+        word="correction factor of the buckling curve",
+    )
     phi = sheet.hence(
         "Phi_LT",
         0.5 * (1 + alpha * (slenderness - plateau) + beta * slenderness**2),

@@ -1,0 +1,246 @@
+"""What a steel sheet shows first: each check with its ratio, the conditions, and the figures."""
+
+from __future__ import annotations
+
+from typing import Any, NamedTuple
+
+from calcpack.clauses.en1993.design import SteelBeam
+from calcpack.clauses.en1993.lines_profile import RANK
+from calcpack.clauses.en1993.rules import STRESS_SHARE
+from calcpack.figures import Capacity, Governing, capacity_figure, deflected_shape, section_figure
+from calcpack.notebook.work import Work
+from calcpack.statics import Extreme
+
+SAMPLES = 120
+HALF_WIDTH = 82.0  # [mm]
+SENSE = {1: "sagging most", -1: "hogging most", 0: "everything loaded"}
+HEIGHT = {"top": "on the top flange", "centre": "at mid-depth", "bottom": "on the bottom flange"}
+HELD = {
+    "ends": "at the supports",
+    "at beams": "at the supports and where beams come down",
+    "continuous": "top flange all along, bottom flange at the supports",
+}
+
+
+class Shown(NamedTuple):
+    """One row of the schedule."""
+
+    says: str
+    demand: float
+    resistance: float
+    unit: str
+
+    @property
+    def ratio(self) -> float:
+        """Demand over resistance."""
+        return self.demand / self.resistance
+
+
+def place(work: Work, at: float) -> str:
+    """A distance from the beam's start, in words."""
+    return work.show(at, "m")
+
+
+def shown_of(work: Work, beam: SteelBeam) -> list[Shown]:
+    """The checks of the sheet before they are written, with the same numbers."""
+    bent = f"bending, at {place(work, beam.bending.at)}"
+    rows = [
+        Shown(bent, abs(beam.bending.value), beam.profile.bending, "kN*m"),
+        Shown(f"shear, at {place(work, beam.shear.at)}", beam.shear.value, beam.profile.shear, "kN"),
+    ]
+    if beam.beside is not None:
+        says = f"bending beside shear, at {place(work, beam.beside.at)}"
+        rows.append(Shown(says, beam.beside.moment, beam.beside.resistance, "kN*m"))
+    if (worst := beam.buckling) is not None:
+        part = worst.segment
+        says = f"lateral-torsional buckling, {place(work, part.start)} to {place(work, part.end)}"
+        rows.append(Shown(says, worst.demand, worst.resistance, "kN*m"))
+    if (force := beam.force) is not None:
+        rows.append(Shown(f"web, {force.says}", force.force, force.bearing.resistance, "kN"))
+    if (both := beam.interaction) is not None and both.moment:
+        rows.append(Shown(f"web with bending, {both.says}", beam.together(both), STRESS_SHARE, "1"))
+    for words, extreme, limit in deflections_of(work):
+        rows.append(Shown(f"deflection, {words}", abs(extreme.value) * 1000, limit * 1000, "mm"))
+    return rows
+
+
+def deflections_of(work: Work) -> list[tuple[str, Extreme, float]]:
+    """Words, largest deflection [m] and its limit [m], live load and total."""
+    limits = work.given.design["deflection_limits"]
+    analysed = work.study.analysed
+    found = []
+    if analysed.deflection_live and limits["live"] and "live" in work.study.cases:
+        extreme = analysed.deflection_live
+        found.append(("live", extreme, reach(work, extreme.at) / limits["live"]))
+    if analysed.deflection_total and limits["total"]:
+        extreme = analysed.deflection_total[1]
+        found.append(("total", extreme, reach(work, extreme.at) / limits["total"]))
+    return found
+
+
+def reach(work: Work, at: float) -> float:
+    """Length that a deflection at a place is measured by: the span, or twice the overhang [m]."""
+    spans = work.given.spans
+    number = next((number for number, (_, end) in enumerate(spans) if at < end), len(spans) - 1)
+    start, end = spans[number]
+    return (end - start) * (1 if work.given.between_supports(number) else 2)
+
+
+def state_steel_results(work: Work, beam: SteelBeam) -> None:
+    """The schedule of checks, what the design rests on, and resistance drawn over the envelope."""
+    sheet, given = work.sheet, work.given
+    sheet.section("Steel design: what is shown")
+    rows = shown_of(work, beam)
+    with sheet.columns([7, 17]) as column:
+        assert given.section is not None
+        figure = section_figure(given.section, work.study.system, mark=given.mark, width_mm=44)
+        sheet.figure(figure, f"{beam.profile.name}, {RANK[beam.profile.section_class]} in bending.")
+        column()
+        sheet.ratios(
+            {
+                "says": row.says,
+                "demand": work.show(row.demand, row.unit),
+                "resistance": work.show(row.resistance, row.unit),
+                "ratio": row.ratio,
+                "passes": row.ratio <= 1,
+            }
+            for row in rows
+        )
+        _verdict(work, beam, rows)
+        _conditions(work, beam)
+    _figures(work, beam)
+
+
+def _verdict(work: Work, beam: SteelBeam, rows: list[Shown]) -> None:
+    most = max(rows, key=lambda row: round(row.ratio, 12))
+    unmet = [row.says for row in rows if row.ratio > 1]
+    if beam.profile.section_class > 3:
+        unmet.insert(0, "class of the section (class 4 is not covered)")
+    if beam.profile.web_may_buckle:
+        unmet.append("slenderness of the web (shear buckling is not covered)")
+    if unmet:
+        work.sheet.text(f"Not satisfied: {'; '.join(unmet)}.", role="unsafe")
+    else:
+        work.sheet.text(f"Largest ratio: {most.says}, {most.ratio:.2f}.")
+
+
+def _conditions(work: Work, beam: SteelBeam) -> None:
+    """What the design keys settle, in words."""
+    keys: dict[str, Any] = work.given.design
+    held = HELD[keys["braced"]]
+    if keys["unbraced_length"]:
+        flange = "bottom flange" if keys["braced"] == "continuous" else "beam"
+        held += f"; {flange} every {work.show(keys['unbraced_length'], 'm')} from each span's start"
+    if any(not work.given.between_supports(number) for number in range(len(work.given.spans))):
+        held += f"; tips of overhangs {'held' if keys['tip_held'] else 'free'}"
+    limits = ", ".join(
+        f"{words} span/{keys['deflection_limits'][words]:g}"
+        for words in ("live", "total")
+        if keys["deflection_limits"][words]
+    )
+    curves = "general case, 6.3.2.2" if keys["buckling_curves"] == "general" else "rolled sections, 6.3.2.3"
+    facts = [
+        ("Held", f"{held}, sideways and against twist"),
+        ("Load acts", HEIGHT[keys["load_height"]]),
+        ("Buckling curves", curves),
+        ("Bearing", f"{work.show(keys['bearing_length'] * 1000, 'mm')} stiff; web held {keys['web_held']}"),
+    ]
+    if limits:
+        facts.append(
+            ("Deflection", f"{limits} (the template's 360 and 250 are common practice)")
+            if (keys["deflection_limits"]["live"], keys["deflection_limits"]["total"]) == (360, 250)
+            else ("Deflection", limits)
+        )
+    work.sheet.facts(facts)
+
+
+def _figures(work: Work, beam: SteelBeam) -> None:
+    """Moment and shear envelopes under their resistances, and the deflected beam."""
+    given, study = work.given, work.study
+    bearings = [(each.at, each.kind, each.mark) for each in given.bearings]
+    moment, shear = study.analysed.band("moment"), study.analysed.band("shear")
+    governing = None
+    if (worst := beam.buckling) is not None:
+        signed = worst.moments.largest
+        sign = 1.0 if signed.value >= 0 else -1.0
+        governing = [Governing(signed.at, signed.value, sign * worst.resistance)]
+    work.sheet.figure(
+        capacity_figure(
+            given.length,
+            bearings,
+            "moment",
+            (moment.upper.sample(SAMPLES), moment.lower.sample(SAMPLES)),
+            capacities(beam, given.length),
+            study.system,
+            governing=governing,
+            fixed=given.fixed,
+            mark=given.mark,
+        ),
+        "Moments of all strength combinations within the resistance: of the section, and of each segment to "
+        "buckling sideways under its worst arrangement.",
+    )
+    with work.sheet.columns([1, 1]) as column:
+        work.sheet.figure(
+            capacity_figure(
+                given.length,
+                bearings,
+                "shear",
+                (shear.upper.sample(SAMPLES), shear.lower.sample(SAMPLES)),
+                [Capacity(0.0, given.length, beam.profile.shear, beam.profile.shear)],
+                study.system,
+                fixed=given.fixed,
+                mark=given.mark,
+                width_mm=HALF_WIDTH,
+            ),
+            "Shear of all strength combinations, and the plastic shear resistance.",
+        )
+        column()
+        _deflected(work, bearings)
+
+
+def capacities(beam: SteelBeam, length: float) -> list[Capacity]:
+    """Resistance to bending along the beam, each way: no more than the section's, nor a segment's."""
+    plastic = beam.profile.bending
+    found, last = [], 0.0
+    for each in beam.segments:
+        part = each.segment
+        if part.start > last + 1e-9:
+            found.append(Capacity(last, part.start, plastic, plastic))
+        least = min(plastic, each.resistance)
+        found.append(Capacity(part.start, part.end, plastic if part.only_hogging else least, least))
+        last = part.end
+    if last < length - 1e-9:
+        found.append(Capacity(last, length, plastic, plastic))
+    return found
+
+
+def _deflected(work: Work, bearings: list[Any]) -> None:
+    """The deflection line of the worst service combination, against its limit."""
+    study, given = work.study, work.given
+    limit = given.design["deflection_limits"]["total"]
+    total = study.analysed.deflection_total
+    if total is None or not limit or not study.stiffness:
+        return
+    result = next(each for each in study.analysed.results if each.combination is total[0])
+    band = result.envelope.deflection
+    curve = band.upper if total[1].value >= 0 else band.lower
+    x, value = curve.sample(SAMPLES)
+    limits = [
+        (start, end, (end - start) * (1 if given.between_supports(number) else 2) / limit)
+        for number, (start, end) in enumerate(given.spans)
+    ]
+    work.sheet.figure(
+        deflected_shape(
+            given.length,
+            bearings,
+            x,
+            value / study.stiffness,
+            limits,
+            study.system,
+            title=f"deflection, {total[0].name}",
+            fixed=given.fixed,
+            mark=given.mark,
+            width_mm=HALF_WIDTH,
+        ),
+        f"Largest deflection at every point, {total[0].name}; limit: span over {limit:g}, twice an overhang.",
+    )
