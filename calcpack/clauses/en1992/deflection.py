@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
@@ -154,7 +155,7 @@ def deflections(
     )
     at = [int(np.argmin(np.abs(x - place))) for place in supports]
     line = np.zeros_like(x)
-    spans = list(zip(at[:-1], at[1:], strict=True))
+    spans = list(pairwise(at))
     tilts = {}
     for first, last in spans:
         tilt = -(free[last] - free[first]) / (x[last] - x[first])
@@ -165,7 +166,7 @@ def deflections(
     for number, (hold, part, which) in enumerate(ends):
         if part.stop - part.start < 2:
             continue
-        tilt = -slope[hold] if fixed[number] or fixed[1 - number] and not spans else None
+        tilt = -slope[hold] if fixed[number] or (fixed[1 - number] and not spans) else None
         if tilt is None:
             tilt = tilts[spans[which]]
         line[part] = free[part] - free[hold] + tilt * (x[part] - x[hold])

@@ -86,8 +86,8 @@ def arranged(bar: Bar, count: int, width: float, inset: float, clear: float) -> 
     Examples
     --------
     >>> from calcpack.clauses.bars import bar
-    >>> arranged(bar("20 mm"), 6, 0.3, 0.043, 0.021).layers, arranged(bar("20 mm"), 3, 0.3, 0.043, 0.021).layers
-    ((4, 2), (3,))
+    >>> [arranged(bar("20 mm"), count, 0.3, 0.043, 0.021).layers for count in (6, 3)]
+    [(4, 2), (3,)]
     """
     fit = fitting(bar, width, inset, clear)
     pitch = bar.diameter + clear
