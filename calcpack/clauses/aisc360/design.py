@@ -200,6 +200,11 @@ class SteelDesign:
         return self.slenderness.compact_web
 
     @cached_property
+    def segments(self) -> tuple[Segment, ...]:
+        """The stretches between braced points."""
+        return segments(self.demands.spans, self.options, self.demands.carried_at)
+
+    @cached_property
     def bending(self) -> tuple[BendingCheck, ...]:
         """Every segment that bends, along the beam; none where the web is not compact."""
         if not self.covered:
@@ -207,11 +212,19 @@ class SteelDesign:
         worst = self.demands.analysed.band("moment").largest_absolute.value
         found = [
             check
-            for segment in segments(self.demands.spans, self.options, self.demands.carried_at)
+            for segment in self.segments
             for sense in SENSES[segment.flange]
             if (check := self._worst(segment, sense, NOTHING * abs(worst))) is not None
         ]
         return tuple(sorted(found, key=lambda each: (each.segment.span.number, not each.sagging)))
+
+    def carries(self, segment: Segment, sagging: bool) -> float:
+        """Available strength [kNm] of a stretch: as checked, else under a uniform moment."""
+        for check in self.bending:
+            if check.segment == segment and (segment.flange == "both" or check.sagging == sagging):
+                return check.available
+        nominal = strength.bending_strength(self.shape, self.steel, segment.unbraced).nominal
+        return strength.BENDING.available(nominal, self.options.method)
 
     def _worst(self, segment: Segment, sense: int, nothing: float) -> BendingCheck | None:
         """The arrangement with the largest ratio; ties go to the first."""
@@ -263,20 +276,10 @@ class SteelDesign:
 
     @cached_property
     def web(self) -> tuple[ForceCheck, ...]:
-        """Web yielding and crippling, where each is worst: near an end and inside; supports, then loads."""
+        """Web yielding and crippling under every force; none where nothing bears on flanges."""
         if not self.options.seated:
             return ()
-        found: dict[tuple[bool, str, bool], ForceCheck] = {}
-        for force in self.demands.forces:
-            for check in self._under(force):
-                close = check.from_end <= self.shape.depth * (1.0 if check.limit == "yielding" else 0.5)
-                key = (force.support, check.limit, close)
-                if key not in found or round(check.ratio, 12) > round(found[key].ratio, 12):
-                    found[key] = check
-        return tuple(
-            found[key]
-            for key in sorted(found, key=lambda key: (not key[0], not key[2], key[1] != "yielding"))
-        )
+        return tuple(check for force in self.demands.forces for check in self._under(force))
 
     def _under(self, force: Concentrated) -> tuple[ForceCheck, ForceCheck]:
         shape, steel, options = self.shape, self.steel, self.options

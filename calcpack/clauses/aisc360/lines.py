@@ -10,7 +10,6 @@ from calcpack.clauses.aisc360.shape_lines import (
     ShapeLines,
     SlendernessLines,
     SteelLines,
-    available,
     class_of,
     state_factor,
 )
@@ -23,7 +22,7 @@ class BendingBasis(NamedTuple):
 
     factor: Line
     plastic: Line
-    first: Line
+    first: Line | None
     short: Line
     long: Line
     ratio: Line
@@ -37,26 +36,36 @@ def state_bending_basis(
     steel: SteelLines,
     shape: ShapeLines,
     slender: SlendernessLines,
+    *,
+    inelastic: bool = True,
 ) -> BendingBasis:
     """Plastic moment, moment at first yield, limiting lengths, and local buckling of the flange.
+
+    Parameters
+    ----------
+    inelastic : bool
+        Whether any segment buckles inelastically; if none does and the flange is compact, nothing draws on
+        the moment at first yield, and it is left out.
 
     Source: AISC 360-22 (F2-1), (F2-5), (F2-6), (F3-1), (F3-2).
     """
     factor = state_factor(sheet, strength.BENDING, method, "b", "bending")
     plastic = sheet.hence("M_p", steel.fy * shape.plastic, "kN*m", "Plastic moment", f"{AISC} (F2-1)")
-    first = sheet.hence(
-        "M_y",
-        0.7 * steel.fy * shape.elastic,
-        "kN*m",
-        "Where residual stresses make the first fibre yield",
-        f"{AISC} F2.2",
-        word="moment at first yield, residual stresses counted",
-    )
+    first = None
+    if inelastic or (slender.flange is not None and not ratios.slender_flange):
+        first = sheet.hence(
+            "M_y",
+            0.7 * steel.fy * shape.elastic,
+            "kN*m",
+            "Where residual stresses make the first fibre yield",
+            f"{AISC} F2.2",
+            word="moment at first yield, residual stresses counted",
+        )
     short = sheet.hence(
         "L_p",
         1.76 * shape.weak_radius * sqrt(steel.modulus / steel.fy),
         "m",
-        "Limit for yielding",
+        "Limiting length for yielding",
         f"{AISC} (F2-5)",
     )
     ratio = sheet.hence(
@@ -67,30 +76,19 @@ def state_bending_basis(
         f"{AISC} (F2-8a)",
         word="torsion against warping",
     )
-    stress = sheet.hence(
-        "e",
-        0.7 * steel.fy / steel.modulus,
-        "1",
-        "Strain at 0.7 of the yield strength",
-        f"{AISC} (F2-6)",
-        word="strain at 0.7 of the yield strength",
-    )
+    stress = 0.7 * steel.fy / steel.modulus
     long = sheet.hence(
         "L_r",
-        1.95 * (shape.shear_radius / stress) * sqrt(ratio + sqrt(ratio**2 + 6.76 * stress**2)),
+        1.95
+        * shape.shear_radius
+        * (steel.modulus / (0.7 * steel.fy))
+        * sqrt(ratio + sqrt(ratio**2 + 6.76 * stress**2)),
         "m",
-        "Limit for inelastic buckling",
+        "Limiting length for inelastic buckling",
         f"{AISC} (F2-6)",
     )
-    return BendingBasis(
-        factor,
-        plastic,
-        first,
-        short,
-        long,
-        ratio,
-        _flange(sheet, ratios, steel, shape, slender, plastic, first),
-    )
+    flange = _flange(sheet, ratios, steel, shape, slender, plastic, first)
+    return BendingBasis(factor, plastic, first, short, long, ratio, flange)
 
 
 def _flange(
@@ -100,10 +98,12 @@ def _flange(
     shape: ShapeLines,
     slender: SlendernessLines,
     plastic: Line,
-    first: Line,
+    first: Line | None,
 ) -> Line | None:
-    if slender.flange_noncompact is None:
+    """M_n of local buckling; None where the flange is compact."""
+    if slender.flange is None:
         return None
+    outstand, compact, noncompact = slender.flange
     if ratios.slender_flange:
         factor = sheet.hence(
             "k_c",
@@ -113,12 +113,11 @@ def _flange(
             f"{AISC} F3.2(b)",
             word="restraint of the flange by the web",
         )
-        term = 0.9 * steel.modulus * factor * shape.elastic / slender.flange**2
+        term: Expression = 0.9 * steel.modulus * factor * shape.elastic / outstand**2
         cite = f"{AISC} (F3-2)"
     else:
-        term = plastic - (plastic - first) * (
-            (slender.flange - slender.flange_compact) / (slender.flange_noncompact - slender.flange_compact)
-        )
+        assert first is not None
+        term = plastic - (plastic - first) * ((outstand - compact) / (noncompact - compact))
         cite = f"{AISC} (F3-1)"
     return sheet.hence(
         "M_n,f",
@@ -163,15 +162,8 @@ def state_diagram_factor(sheet: Sheet, moments: Moments) -> Line:
     return sheet.hence("C_b", term, "1", says, f"{AISC} (F1-1)")
 
 
-class BendingLines(NamedTuple):
-    """Nominal and available strength of a segment."""
-
-    nominal: Line
-    available: Line
-
-
 _ZONES: dict[Zone, str] = {
-    "yielding": "Yielding, as the unbraced length is at most the limit for yielding",
+    "yielding": "Yielding, as the unbraced length is at most the limit for it",
     "inelastic": "Inelastic buckling, as the unbraced length lies between the limits",
     "elastic": "Elastic buckling, as the unbraced length is beyond both limits",
 }
@@ -180,14 +172,13 @@ _ZONES: dict[Zone, str] = {
 def state_bending(
     sheet: Sheet,
     zone: Zone,
-    method: Method,
     basis: BendingBasis,
     steel: SteelLines,
     shape: ShapeLines,
     unbraced: Line | None,
     factor: Line | None,
-) -> BendingLines:
-    """Bending strength of a segment.
+) -> Line:
+    """Nominal bending strength of a segment.
 
     Parameters
     ----------
@@ -195,16 +186,24 @@ def state_bending(
     unbraced, factor : Line or None
         L_b and C_b; not needed for yielding.
 
+    Returns
+    -------
+    Line
+        M_n; where a compact shape yields, the line of M_p itself.
+
     Source: AISC 360-22 F2.1, (F2-2), (F2-3), (F2-4); F3 where the flange is not compact.
     """
-    says, cite = _ZONES[zone], f"{AISC} F2.1"
-    term: Expression = basis.plastic.as_expression()
+    if zone == "yielding" and basis.flange is None:
+        return basis.plastic
+    terms: list[Expression | Line] = [basis.plastic]
+    cite = f"{AISC} F2.1"
     if zone != "yielding":
         if unbraced is None or factor is None:
             raise ValueError("buckling needs an unbraced length and a factor for the diagram")
         if zone == "inelastic":
+            assert basis.first is not None
             along = (unbraced - basis.short) / (basis.long - basis.short)
-            buckling: Expression = factor * (basis.plastic - (basis.plastic - basis.first) * along)
+            terms.insert(0, factor * (basis.plastic - (basis.plastic - basis.first) * along))
             cite = f"{AISC} (F2-2)"
         else:
             slender = (unbraced / shape.shear_radius) ** 2
@@ -215,34 +214,29 @@ def state_bending(
                 "Critical stress of elastic buckling",
                 f"{AISC} (F2-4)",
             )
-            buckling, cite = stress * shape.elastic, f"{AISC} (F2-3)"
-        term = least(buckling, basis.plastic)
+            terms.insert(0, stress * shape.elastic)
+            cite = f"{AISC} (F2-3)"
+    says = _ZONES[zone]
     if basis.flange is not None:
-        term = least(*(term.args if zone != "yielding" else (term,)), basis.flange)
+        terms.append(basis.flange)
         says, cite = f"{says}; local buckling of the flange counted", f"{cite}, F3"
-    nominal = sheet.hence("M_n", term, "kN*m", says, cite)
-    return BendingLines(
-        nominal,
-        sheet.hence(
-            "M_c",
-            available(basis.factor, nominal, method),
-            "kN*m",
-            "Available strength",
-            f"{AISC} B3.{1 if method == 'LRFD' else 2}",
-            word="available moment strength",
-        ),
-    )
+    return sheet.hence("M_n", least(*terms), "kN*m", says, cite)
 
 
 class ShearLines(NamedTuple):
-    """Web area and available shear strength."""
+    """Nominal shear strength, and φ or Ω."""
 
-    area: Line
-    available: Line
+    nominal: Line
+    factor: Line
 
 
 def state_shear(
-    sheet: Sheet, shear: strength.Shear, method: Method, steel: SteelLines, shape: ShapeLines, web: Line
+    sheet: Sheet,
+    shear: strength.Shear,
+    method: Method,
+    steel: SteelLines,
+    shape: ShapeLines,
+    web: Line,
 ) -> ShearLines:
     """Shear strength of the web without stiffeners.
 
@@ -253,22 +247,20 @@ def state_shear(
 
     Source: AISC 360-22 G2.1, (G2-1) to (G2-4).
     """
-    limit = sheet.hence(
-        "lambda_v",
-        2.24 * sqrt(steel.modulus / steel.fy),
-        "1",
-        "A rolled shape's web yields in shear up to this: it does" + ("" if shear.stocky else " not"),
-        f"{AISC} G2.1(a)",
-        word="slenderness up to which the web yields in shear",
-    )
-    factor = state_factor(sheet, shear.factor, method, "v", "shear")
-    area = sheet.hence("A_w", shape.depth * shape.web, "mm^2", "Area of the web", f"{AISC} G2.1")
+    stocky, root = 2.24 * sqrt(steel.modulus / steel.fy), steel.modulus / steel.fy
     if shear.stocky:
-        coefficient = sheet.take(
-            "C_v1", 1.0, "1", f"Web shear factor, as {web.shown} is at most {limit.shown}", f"{AISC} (G2-2)"
-        )
+        sheet.require(web <= stocky, "A rolled shape's web that yields in shear", f"{AISC} G2.1(a)")
+        coefficient = sheet.take("C_v1", 1.0, "1", "Web shear factor", f"{AISC} (G2-2)")
     else:
-        buckling = sheet.take(
+        sheet.hence(
+            "lambda_v",
+            stocky,
+            "1",
+            "Up to this a rolled shape's web yields in shear: this one does not",
+            f"{AISC} G2.1(a)",
+            word="slenderness up to which a web yields in shear",
+        )
+        plate = sheet.take(
             "k_v",
             strength.PLATE_BUCKLING,
             "1",
@@ -276,21 +268,19 @@ def state_shear(
             f"{AISC} G2.1(b)(2)",
             word="plate buckling coefficient",
         )
-        root = sqrt(buckling * steel.modulus / steel.fy)
         coefficient = sheet.hence(
-            "C_v1", least(1.10 * root / web, 1), "1", "Web shear factor", f"{AISC} (G2-3), (G2-4)"
+            "C_v1",
+            least(1.10 * sqrt(plate * root) / web, 1),
+            "1",
+            "Web shear factor",
+            f"{AISC} (G2-3), (G2-4)",
         )
+    factor = state_factor(sheet, shear.factor, method, "v", "shear")
     nominal = sheet.hence(
-        "V_n", 0.6 * steel.fy * area * coefficient, "kN", "Nominal shear strength", f"{AISC} (G2-1)"
+        "V_n",
+        0.6 * steel.fy * shape.depth * shape.web * coefficient,
+        "kN",
+        "Nominal shear strength",
+        f"{AISC} (G2-1)",
     )
-    return ShearLines(
-        area,
-        sheet.hence(
-            "V_c",
-            available(factor, nominal, method),
-            "kN",
-            "Available strength",
-            f"{AISC} G1",
-            word="available shear strength",
-        ),
-    )
+    return ShearLines(nominal, factor)

@@ -18,23 +18,6 @@ class SteelLines(NamedTuple):
     modulus: Line
 
 
-class ShapeLines(NamedTuple):
-    """Dimensions of a shape and the constants that the clauses ask for."""
-
-    depth: Line
-    width: Line
-    web: Line
-    flange: Line
-    fillet: Line
-    inertia: Line
-    plastic: Line
-    elastic: Line
-    weak_radius: Line
-    torsion: Line
-    shear_radius: Line
-    apart: Line
-
-
 def state_steel(sheet: Sheet, steel: Steel, name: str, origin: str) -> SteelLines:
     """F_y and E, taken from the material.
 
@@ -48,10 +31,10 @@ def state_steel(sheet: Sheet, steel: Steel, name: str, origin: str) -> SteelLine
 
     Examples
     --------
-    >>> sheet = Sheet("B1")
+    >>> sheet = Sheet("B1", "US")
     >>> sheet.section("Steel")
     >>> state_steel(sheet, Steel(344738.0, 199947960.0), "A992", "material w50").fy.shown
-    '344.7\xa0MPa'
+    '50.0\xa0ksi'
     """
     return SteelLines(
         sheet.take("F_y", steel.yield_strength / 1000, "MPa", f"Yield strength, {name}", origin, given=False),
@@ -59,90 +42,70 @@ def state_steel(sheet: Sheet, steel: Steel, name: str, origin: str) -> SteelLine
     )
 
 
-def state_shape(sheet: Sheet, shape: ISection, name: str, origin: str, source: str) -> ShapeLines:
+class ShapeLines(NamedTuple):
+    """Dimensions of a shape and the constants that the clauses ask for."""
+
+    depth: Line
+    width: Line
+    web: Line
+    flange: Line
+    fillet: Line
+    plastic: Line
+    elastic: Line
+    weak_radius: Line
+    torsion: Line
+    shear_radius: Line
+    apart: Line
+
+
+def state_shape(sheet: Sheet, shape: ISection, name: str, origin: str) -> ShapeLines:
     """The dimensions of a rolled shape, and the constants that follow from them.
 
     Parameters
     ----------
     sheet : Sheet
     shape : ISection
-    name, origin, source : str
-        Its designation; its place in the job; where the dimensions come from.
+    name, origin : str
+        Its designation; its place in the job.
 
-    Source: statics; C_w and r_ts as in the user note of F2.2.
+    Examples
+    --------
+    >>> from calcpack.clauses.steel import i_section
+    >>> from calcpack.job.library import rolled_sections
+    >>> sheet = Sheet("B1", "US")
+    >>> sheet.section("Shape")
+    >>> found = state_shape(sheet, i_section(rolled_sections()["w18x50"]), "W18X50", "section girder")
+    >>> found.depth.shown, found.shear_radius.shown
+    ('18.00\xa0in', '1.98\xa0in')
     """
 
-    def size(symbol: str, value: float, says: str, word: str) -> Line:
-        return sheet.take(symbol, value * 1000, "mm", says, origin, word=word)
+    def size(symbol: str, value: float, says: str) -> Line:
+        return sheet.take(symbol, value * 1000, "mm", f"{says} of {name}", origin, word=says.lower())
 
     def constant(symbol: str, value: float, unit: str, says: str) -> Line:
-        return sheet.take(symbol, value, unit, says, "integration, fillets included", given=False)
+        return sheet.take(symbol, value, unit, says, "from the dimensions", given=False, word=says.lower())
 
-    depth = sheet.take(
-        "d", shape.depth * 1000, "mm", f"Depth of {name}", f"{origin}; {source}", word="depth", given=False
-    )
-    width = size("b_f", shape.width, "Flange width", "flange width")
-    web = size("t_w", shape.web, "Web thickness", "web thickness")
-    flange = size("t_f", shape.flange, "Flange thickness", "flange thickness")
-    fillet = sheet.hence(
-        "k",
-        flange + size("r", shape.root_radius, "Radius of the fillets", "radius of the fillets"),
-        "mm",
-        "From the face to the toe of the fillet",
-        word="from the flange's face to the toe of the fillet",
-    )
-    area = sheet.take(
-        "A_g", shape.area * 1e6, "mm^2", "Area", "integration, fillets included", given=False, word="area"
-    )
-    inertia = constant("I_x", shape.inertia * 1e12, "mm^4", "About the strong axis")
-    weak = constant("I_y", shape.weak_inertia * 1e12, "mm^4", "About the weak axis")
-    plastic = constant("Z_x", shape.plastic_modulus * 1e9, "mm^3", "Plastic section modulus")
-    torsion = sheet.take(
-        "J",
-        shape.torsion * 1e12,
-        "mm^4",
-        "Torsion constant",
-        "flanges, web and their joints, El Darwish and Johnston",
-        given=False,
-    )
-    elastic = sheet.hence("S_x", inertia / (depth / 2), "mm^3", "Elastic section modulus", "statics")
-    weak_radius = sheet.hence("r_y", sqrt(weak / area), "mm", "Radius of gyration, weak axis", "statics")
-    apart = sheet.hence(
-        "h_o",
-        depth - flange,
-        "mm",
-        "Between the flanges' centroids",
-        f"{AISC} F2.2",
-        word="between the flanges' centroids",
-    )
-    warping = sheet.hence("C_w", flange * width**3 * apart**2 / 24, "mm^6", "Warping constant", "statics")
-    shear_radius = sheet.hence(
-        "r_ts", sqrt(sqrt(weak * warping) / elastic), "mm", "Effective radius of gyration", f"{AISC} (F2-7)"
-    )
     return ShapeLines(
-        depth,
-        width,
-        web,
-        flange,
-        fillet,
-        inertia,
-        plastic,
-        elastic,
-        weak_radius,
-        torsion,
-        shear_radius,
-        apart,
+        size("d", shape.depth, "Depth"),
+        size("b_f", shape.width, "Flange width"),
+        size("t_w", shape.web, "Web thickness"),
+        size("t_f", shape.flange, "Flange thickness"),
+        size("k", shape.flange + shape.root_radius, "Flange and fillet"),
+        constant("Z_x", shape.plastic_modulus * 1e9, "mm^3", "Plastic section modulus"),
+        constant("S_x", shape.elastic_modulus * 1e9, "mm^3", "Elastic section modulus"),
+        constant("r_y", shape.weak_radius * 1e3, "mm", "Radius of gyration, weak axis"),
+        constant("J", shape.torsion * 1e12, "mm^4", "Torsion constant"),
+        constant("r_ts", shape.shear_radius * 1e3, "mm", "Effective radius of gyration (F2-7)"),
+        constant("h_o", shape.between_flanges * 1e3, "mm", "Between the flanges' centroids"),
     )
 
 
 class SlendernessLines(NamedTuple):
-    """Ratios of flange and web, the flange's limits, and what is required of the web."""
+    """The web's ratio and what is required of it; the flange's ratio and limits where it is not compact."""
 
-    flange: Line
-    flange_compact: Line
-    flange_noncompact: Line | None
     web: Line
     web_compact: Line
+    flange: tuple[Line, Line, Line] | None
 
 
 def state_slenderness(
@@ -152,32 +115,16 @@ def state_slenderness(
 
     Source: AISC 360-22 Table B4.1b, cases 10 and 15.
     """
-    case = f"{AISC} Table B4.1b, case 10"
-    flange = sheet.hence(
-        "lambda_f",
-        shape.width / (2 * shape.flange),
-        "1",
-        "Slenderness of the flange",
-        case,
-        word="slenderness of the flange",
-    )
-    compact = sheet.hence(
-        "lambda_pf",
-        0.38 * sqrt(steel.modulus / steel.fy),
-        "1",
-        f"Compact up to this: the flange is {class_of(ratios)}",
-        case,
-        word="limit for a compact flange",
-    )
-    noncompact = None
-    if not ratios.compact_flange:
-        noncompact = sheet.hence(
-            "lambda_rf",
-            1.0 * sqrt(steel.modulus / steel.fy),
-            "1",
-            "Noncompact up to this",
-            case,
-            word="limit for a noncompact flange",
+    cite, root = f"{AISC} Table B4.1b (10)", sqrt(steel.modulus / steel.fy)
+    outstand, flange = shape.width / (2 * shape.flange), None
+    if ratios.compact_flange:
+        sheet.require(outstand <= 0.38 * root, "The flange is compact", cite)
+    else:
+        words = ("slenderness of the flange", "limit for a compact flange", "limit for a noncompact flange")
+        flange = (
+            sheet.hence("lambda_f", outstand, "1", f"The flange is {class_of(ratios)}", cite, word=words[0]),
+            sheet.hence("lambda_pf", 0.38 * root, "1", "Compact up to this", cite, word=words[1]),
+            sheet.hence("lambda_rf", 1.0 * root, "1", "Noncompact up to this", cite, word=words[2]),
         )
     web = sheet.hence(
         "lambda_w",
@@ -187,17 +134,8 @@ def state_slenderness(
         f"{AISC} B4.1b",
         word="slenderness of the web",
     )
-    return SlendernessLines(
-        flange,
-        compact,
-        noncompact,
-        web,
-        sheet.require(
-            web <= 3.76 * sqrt(steel.modulus / steel.fy),
-            "Web compact, as F2 and F3 ask",
-            f"{AISC} Table B4.1b, case 15",
-        ),
-    )
+    compact = sheet.require(web <= 3.76 * root, "The web is compact", f"{AISC} Table B4.1b (15)")
+    return SlendernessLines(web, compact, flange)
 
 
 def class_of(ratios: Slenderness) -> str:
@@ -214,7 +152,8 @@ def state_factor(sheet: Sheet, factor: Factor, method: Method, index: str, says:
     --------
     >>> sheet = Sheet("B1")
     >>> sheet.section("Factors")
-    >>> [state_factor(sheet, strength.BENDING, each, "b", "bending").shown for each in ("LRFD", "ASD")]
+    >>> from calcpack.clauses.aisc360.strength import BENDING
+    >>> [state_factor(sheet, BENDING, each, "b", "bending").shown for each in ("LRFD", "ASD")]
     ['0.9', '1.67']
     """
     lrfd = method == "LRFD"

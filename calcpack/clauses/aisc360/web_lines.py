@@ -2,9 +2,7 @@
 
 from __future__ import annotations
 
-from calcpack.clauses.aisc360 import strength
-from calcpack.clauses.aisc360.shape_lines import AISC, ShapeLines, SteelLines, available, state_factor
-from calcpack.clauses.aisc360.strength import Method
+from calcpack.clauses.aisc360.shape_lines import AISC, ShapeLines, SteelLines
 from calcpack.clauses.steel import ISection
 from calcpack.sheet import Expression, Line, Sheet, number, sqrt
 
@@ -13,12 +11,11 @@ def state_web_yielding(
     sheet: Sheet,
     shape: ISection,
     from_end: float,
-    method: Method,
     steel: SteelLines,
     lines: ShapeLines,
     bearing: Line,
 ) -> Line:
-    """Available strength against web local yielding, R_c.
+    """Nominal strength against web local yielding, R_n.
 
     Parameters
     ----------
@@ -29,10 +26,9 @@ def state_web_yielding(
 
     Source: AISC 360-22 (J10-2), (J10-3).
     """
-    factor = state_factor(sheet, strength.WEB_YIELDING, method, "y", "web local yielding")
     inside = from_end > shape.depth
     spread = (5 if inside else number("2.5")) * lines.fillet
-    nominal = sheet.hence(
+    return sheet.hence(
         "R_n",
         steel.fy * lines.web * (spread + bearing),
         "kN",
@@ -41,7 +37,6 @@ def state_web_yielding(
         f"{AISC} (J10-{2 if inside else 3})",
         word="nominal strength under a force on the flange",
     )
-    return _available(sheet, factor, nominal, method)
 
 
 def state_web_crippling(
@@ -49,12 +44,11 @@ def state_web_crippling(
     shape: ISection,
     bearing_length: float,
     from_end: float,
-    method: Method,
     steel: SteelLines,
     lines: ShapeLines,
     bearing: Line,
 ) -> Line:
-    """Available strength against web local crippling, R_c, with Q_f = 1.
+    """Nominal strength against web local crippling, R_n, with Q_f = 1.
 
     Parameters
     ----------
@@ -65,14 +59,13 @@ def state_web_crippling(
 
     Source: AISC 360-22 (J10-4), (J10-5a), (J10-5b).
     """
-    factor = state_factor(sheet, strength.WEB_CRIPPLING, method, "n", "web local crippling")
     inside, short = from_end >= shape.depth / 2, bearing_length / shape.depth <= 0.2
     along = bearing / lines.depth
     # (J10-4) and (J10-5a) have three times the ratio, (J10-5b) another line through it
     spread: Expression = 3 * along if inside or short else 4 * along - 0.2
     thickness = (lines.web / lines.flange) ** number("1.5")
     strip = (number("0.80") if inside else number("0.40")) * lines.web**2
-    nominal = sheet.hence(
+    return sheet.hence(
         "R_n",
         strip * (1 + spread * thickness) * sqrt(steel.modulus * steel.fy * lines.flange / lines.web),
         "kN",
@@ -81,16 +74,4 @@ def state_web_crippling(
         + ("" if inside else f", bearing {'at most' if short else 'more than'} 0.2 of the depth"),
         f"{AISC} (J10-{4 if inside else '5a' if short else '5b'})",
         word="nominal strength under a force on the flange",
-    )
-    return _available(sheet, factor, nominal, method)
-
-
-def _available(sheet: Sheet, factor: Line, nominal: Line, method: Method) -> Line:
-    return sheet.hence(
-        "R_c",
-        available(factor, nominal, method),
-        "kN",
-        "Available strength",
-        f"{AISC} J10",
-        word="available strength under a force on the flange",
     )

@@ -176,6 +176,24 @@ class SteelBeam:
                 worst[key] = check
         return tuple(worst.values())
 
+    @property
+    def web(self) -> tuple[ForceCheck, ...]:
+        """The worst force for local yielding of the web, and the worst for crippling."""
+        worst: dict[str, ForceCheck] = {}
+        for check in self.design.web:
+            if check.limit not in worst or round(check.ratio, 12) > round(worst[check.limit].ratio, 12):
+                worst[check.limit] = check
+        return tuple(worst.values())
+
+    @property
+    def deflection(self) -> tuple[DeflectionCheck, ...]:
+        """The worst span under variable loads alone, and the worst under the service combinations."""
+        worst: dict[str, DeflectionCheck] = {}
+        for check in self.design.deflection:
+            if check.kind not in worst or round(check.ratio, 12) > round(worst[check.kind].ratio, 12):
+                worst[check.kind] = check
+        return tuple(worst.values())
+
 
 def bending_name(work: Work, check: BendingCheck) -> str:
     """What a bending check is called."""
@@ -191,9 +209,9 @@ def span_words(work: Work, span: int) -> str:
 
 
 def force_name(work: Work, check: ForceCheck) -> str:
-    """What a check under a force on the flange is called."""
-    name = work.sources[check.force.name].words if check.force.name in work.sources else check.force.name
-    return f"web {check.limit}, {'at' if check.force.support else 'under'} {name}"
+    """What brings a force: the support's or the load's name."""
+    name = check.force.name
+    return work.sources[name].words if not check.force.support and name in work.sources else name
 
 
 def deflection_name(work: Work, check: DeflectionCheck) -> str:

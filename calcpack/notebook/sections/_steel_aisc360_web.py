@@ -3,34 +3,39 @@
 from __future__ import annotations
 
 from calcpack.clauses.aisc360 import lines, shape_lines, strength, web_lines
+from calcpack.clauses.aisc360.design import DeflectionCheck, ForceCheck
+from calcpack.clauses.aisc360.shape_lines import AISC, available
+from calcpack.figures.deflected import deflected_shape
 from calcpack.notebook.sections._steel_aisc360 import SteelBeam, deflection_name, force_name, span_words
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line, number
 
-AISC = shape_lines.AISC
+SAMPLES = 120
 
 
 def state_shear(work: Work, beam: SteelBeam) -> None:
     """Shear of the web, and the web under forces on the flange."""
     sheet, design = work.sheet, beam.design
     method = design.options.method
-    steel, shape = beam.basis["steel"], beam.basis["shape"]
     sheet.section("Shear, and the web under forces on the flange")
-    governing = work.study.analysed.governing_shear.combination.name
     most = design.shear_demand
     demand = sheet.take(
         "V_r",
         most.value,
         "kN",
         f"Largest shear, at {work.show(most.at, 'm')}",
-        f"analysis, {governing}",
+        f"analysis, {work.study.analysed.governing_shear.combination.name}",
         given=False,
         word="required shear strength",
     )
-    found = lines.state_shear(sheet, design.shear, method, steel, shape, beam.basis["slender"].web)
+    found = lines.state_shear(
+        sheet, design.shear, method, beam.basis["steel"], beam.basis["shape"], beam.basis["slender"].web
+    )
     line = sheet.require(
-        demand <= found.available, "Required against available strength: shear", f"{AISC} G1"
+        demand <= available(found.factor, found.nominal, method),
+        "Required against available: shear",
+        f"{AISC} G1",
     )
     work.checks.append(("shear", line))
     if not design.options.seated:
@@ -38,92 +43,122 @@ def state_shear(work: Work, beam: SteelBeam) -> None:
             "Supports and point loads are connected in the web, as the job says: J10 does not apply.",
             role="note",
         )
-        return
-    _state_web(work, beam)
+    elif design.web:
+        _state_web(work, beam)
 
 
 def _state_web(work: Work, beam: SteelBeam) -> None:
     sheet, design = work.sheet, beam.design
-    method, steel, shape = design.options.method, beam.basis["steel"], beam.basis["shape"]
-    if not design.web:
-        return
+    if len(design.web) > len(beam.web):
+        _forces(work, beam)
     chosen = work.given.design["bearing_length"] is None
     bearing = sheet.take(
         "l_b",
         design.options.bearing_length * 1000,
         "mm",
         "Length of bearing along the beam",
-        "template's choice, the job sets none" if chosen else f"beam {work.given.mark} design.bearing_length",
+        "chosen by the template" if chosen else f"beam {work.given.mark} design.bearing_length",
         word="length of bearing",
     )
-    factors: dict[str, Line] = {}
     demands: dict[tuple[str, float], Line] = {}
-    for check in design.web:
-        if check.limit not in factors:
-            limit, index = (
-                (strength.WEB_YIELDING, "y") if check.limit == "yielding" else (strength.WEB_CRIPPLING, "n")
-            )
-            factors[check.limit] = shape_lines.state_factor(
-                sheet, limit, method, index, f"web local {check.limit}"
-            )
-        name, key = force_name(work, check), (check.force.name, check.force.at)
+    for check in beam.web:
+        key = (check.force.name, check.force.at)
         if key not in demands:
-            demands[key] = sheet.take(
-                f"R_r,{len(demands) + 1}",
-                check.force.force,
-                "kN",
-                f"Largest {'reaction' if check.force.support else 'load'}, {name.split(', ')[1]}, "
-                f"{work.show(check.from_end, 'm')} from the beam's end",
-                "analysis, strength combinations",
-                given=False,
-                word="required strength under a force on the flange",
-            )
-        if check.limit == "yielding":
-            found = web_lines.state_web_yielding(
-                sheet, design.shape, check.from_end, method, steel, shape, bearing, factors[check.limit]
-            )
-        else:
-            found = web_lines.state_web_crippling(
-                sheet,
-                design.shape,
-                design.options.bearing_length,
-                check.from_end,
-                method,
-                steel,
-                shape,
-                bearing,
-                factors[check.limit],
-            )
-        line = sheet.require(demands[key] <= found, f"Required against available: {name}", f"{AISC} J10")
-        work.checks.append((name, line))
+            demands[key] = _demand(work, check, len(demands) + 1)
+        _state_force(work, beam, check, demands[key], bearing)
     if any(check.ratio > 1 for check in design.web):
         sheet.text("A longer bearing or stiffeners to J10.8 are needed.", role="unsafe")
 
 
+def _forces(work: Work, beam: SteelBeam) -> None:
+    """Every force with both of its ratios."""
+    checks = beam.design.web
+    rows = [
+        [
+            ("at " if one.force.support else "under ") + force_name(work, one),
+            work.show(one.force.at, "m"),
+            work.show(one.force.force, "kN"),
+            *(
+                text
+                for each in (one, other)
+                for text in (work.show(each.available, "kN"), work.show(each.ratio, "1"))
+            ),
+        ]
+        for one, other in zip(checks[::2], checks[1::2], strict=True)
+    ]
+    work.sheet.table(
+        [
+            ("force on the flange", "left"),
+            ("from the start", "right"),
+            ("largest", "right"),
+            ("yielding", "right"),
+            ("ratio", "right"),
+            ("crippling", "right"),
+            ("ratio", "right"),
+        ],
+        rows,
+        caption="Reactions and point loads, strength combinations, and what the web can take of each; the "
+        "worst of either kind is worked out below.",
+    )
+
+
+def _demand(work: Work, check: ForceCheck, index: int) -> Line:
+    force = check.force
+    return work.sheet.take(
+        f"R_r,{index}",
+        force.force,
+        "kN",
+        f"Largest {'reaction at' if force.support else 'load of'} {force_name(work, check)}",
+        "analysis, strength",
+        given=False,
+        word="required strength under a force on the flange",
+    )
+
+
+def _state_force(work: Work, beam: SteelBeam, check: ForceCheck, demand: Line, bearing: Line) -> None:
+    sheet, design = work.sheet, beam.design
+    method, steel, shape = design.options.method, beam.basis["steel"], beam.basis["shape"]
+    if check.limit == "yielding":
+        limit, index = strength.WEB_YIELDING, "y"
+        nominal = web_lines.state_web_yielding(sheet, design.shape, check.from_end, steel, shape, bearing)
+    else:
+        limit, index = strength.WEB_CRIPPLING, "n"
+        nominal = web_lines.state_web_crippling(
+            sheet, design.shape, design.options.bearing_length, check.from_end, steel, shape, bearing
+        )
+    factor = shape_lines.state_factor(sheet, limit, method, index, f"web local {check.limit}")
+    name = f"web {check.limit}, {force_name(work, check)}"
+    line = sheet.require(
+        demand <= available(factor, nominal, method), f"Required against available: {name}", limit.cite
+    )
+    work.checks.append((name, line))
+
+
 def state_deflection(work: Work, beam: SteelBeam) -> None:
-    """Each span under the variable loads alone and under the service combinations."""
+    """The worst span under the variable loads alone and under the service combinations."""
     sheet, design = work.sheet, beam.design
     sheet.section("Deflection")
-    for check in design.deflection:
+    if len(design.deflection) > len(beam.deflection):
+        _deflections(work, beam)
+    for check in beam.deflection:
         name = deflection_name(work, check)
-        under = f"{CASE_WORDS[check.under]} alone" if check.kind == "live" else check.under  # type: ignore[index]
         found = sheet.take(
-            f"delta_{check.kind},{check.span.number + 1}",
+            f"delta_{check.kind}",
             check.found * 1000,
             "mm",
-            f"Largest deflection, {span_words(work, check.span.number)}, {under}, "
-            f"at {work.show(check.at, 'm')}",
-            "analysis, E and I of this sheet",
+            f"Largest under {_under(check)}, at {work.show(check.at, 'm')}",
+            "analysis, E and I of the shape",
             given=False,
         )
         span = work.lines["span", check.span.number]
         limit = design.options.live_limit if check.kind == "live" else design.options.total_limit
         line = sheet.require(
             found <= (span if check.span.supported else 2 * span) / number(limit),
-            f"{'Span' if check.span.supported else 'Twice the overhang'} over {limit:g}",
+            f"At most {'the span' if check.span.supported else 'twice the overhang'} over {limit:g}: {name}",
             _limit_cite(work, check.kind),
         )
         work.checks.append((name, line))
+    _figure(work, beam)
     roof = [CASE_WORDS[case] for case in work.study.cases if case in ("roof_live", "snow")]
     if roof:
         sheet.text(
@@ -133,7 +168,64 @@ def state_deflection(work: Work, beam: SteelBeam) -> None:
         )
 
 
+def _under(check: DeflectionCheck) -> str:
+    return f"{CASE_WORDS[check.under]} alone" if check.kind == "live" else check.under  # type: ignore[index]
+
+
+def _deflections(work: Work, beam: SteelBeam) -> None:
+    work.sheet.table(
+        [
+            ("", "left"),
+            ("under", "left"),
+            ("at", "right"),
+            ("found", "right"),
+            ("allowed", "right"),
+            ("ratio", "right"),
+        ],
+        [
+            [
+                span_words(work, check.span.number),
+                _under(check),
+                work.show(check.at, "m"),
+                work.show(check.found * 1000, "mm"),
+                work.show(check.allowed * 1000, "mm"),
+                work.show(check.ratio, "1"),
+            ]
+            for check in beam.design.deflection
+        ],
+        caption="Largest deflections by size, span by span; the worst of either kind is worked out below.",
+    )
+
+
+def _figure(work: Work, beam: SteelBeam) -> None:
+    """The envelope of the service combination that deflects most, with each span's limit."""
+    study, given = work.study, work.given
+    total = study.analysed.deflection_total
+    if total is None or not study.stiffness:
+        return
+    result = next(each for each in study.analysed.results if each.combination is total[0])
+    band = result.envelope.deflection
+    places, high = band.upper.sample(SAMPLES)
+    low = band.lower.values(places)
+    worst = [up if abs(up) >= abs(down) else down for up, down in zip(high, low, strict=True)]
+    figure = deflected_shape(
+        given.length,
+        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+        places,
+        [value / study.stiffness for value in worst],
+        [
+            (check.span.start, check.span.end, check.allowed)
+            for check in beam.design.deflection
+            if check.kind == "total"
+        ],
+        study.system,
+        fixed=given.fixed,
+        mark=given.mark,
+    )
+    work.sheet.figure(figure, f"Largest deflection at every point under {total[0].name}, with the limits.")
+
+
 def _limit_cite(work: Work, kind: str) -> str:
     default = {"live": 360, "total": 240}[kind]
     limit = work.given.design["deflection_limits"][kind]
-    return "common practice for floors" if limit == default else "limit set by the job"
+    return "common practice" if limit == default else "limit set by the job"

@@ -9,7 +9,9 @@ from typing import Any
 
 from calcpack.clauses.aisc360 import lines, shape_lines
 from calcpack.clauses.aisc360.design import BendingCheck
+from calcpack.clauses.aisc360.shape_lines import AISC, available
 from calcpack.clauses.steel import Arrangement
+from calcpack.figures.capacity import capacity_figure
 from calcpack.figures.section import section_figure
 from calcpack.notebook.sections._steel_aisc360 import (
     SteelBeam,
@@ -22,8 +24,9 @@ from calcpack.notebook.sections._steel_aisc360 import (
 from calcpack.notebook.sections._steel_aisc360_web import state_deflection, state_shear
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line
+from calcpack.sheet.runs import Runs
 
-AISC = shape_lines.AISC
+SAMPLES = 120
 
 
 def design_beam(work: Work) -> SteelBeam:
@@ -57,10 +60,13 @@ def _shown(work: Work, beam: SteelBeam) -> list[dict[str, Any]]:
     design = beam.design
     found = [(bending_name(work, each), each.demand, each.available, "kN*m") for each in beam.bending]
     found.append(("shear", design.shear_demand.value, design.shear_available, "kN"))
-    found += [(force_name(work, each), each.force.force, each.available, "kN") for each in design.web]
+    found += [
+        (f"web {each.limit}, {force_name(work, each)}", each.force.force, each.available, "kN")
+        for each in beam.web
+    ]
     found += [
         (deflection_name(work, each), each.found * 1000, each.allowed * 1000, "mm")
-        for each in design.deflection
+        for each in beam.deflection
     ]
     return [
         {
@@ -84,23 +90,29 @@ def state_section(work: Work, beam: SteelBeam) -> None:
     with sheet.columns([10, 13]) as column:
         sheet.figure(
             section_figure(section, work.study.system, mark=given.mark),
-            f"{section.designation}, to scale.",
+            f"{section.designation}: {section.source}.",
         )
         column()
         sheet.facts(_choices(work, beam))
+        sheet.text(
+            [
+                "Constants by integration over flanges, web and fillets; ",
+                {"math": r"C_{\text{w}} = t_{\text{f}}\,b_{\text{f}}^3\,h_{\text{o}}^2/24"},
+                "; J after El Darwish and Johnston; they can be compared with the Manual's Table 1-1.",
+            ],
+            role="note",
+        )
     steel = shape_lines.state_steel(
         sheet, design.steel, material.grade or material.key, f"material {material.key}"
     )
-    shape = shape_lines.state_shape(
-        sheet, design.shape, section.designation, f"section {section.key} designation", section.source
-    )
+    shape = shape_lines.state_shape(sheet, design.shape, section.designation, f"section {section.key}")
     slender = shape_lines.state_slenderness(sheet, design.slenderness, steel, shape)
     if not design.covered:
         work.checks.append(("web compact", slender.web_compact))
     beam.basis |= {"steel": steel, "shape": shape, "slender": slender}
 
 
-def _choices(work: Work, beam: SteelBeam) -> list[tuple[str, str]]:
+def _choices(work: Work, beam: SteelBeam) -> list[tuple[Runs, Runs]]:
     """What the job or the template chose, each with where it comes from."""
     options, design = beam.design.options, work.given.design
     named = "as the job sets it" if design["method"] else f"from the combinations {work.given.actions.name}"
@@ -120,7 +132,7 @@ def _choices(work: Work, beam: SteelBeam) -> list[tuple[str, str]]:
         ("Method", f"{options.method}, {named}"),
         ("Top flange", top),
         ("Bottom flange", "braced with the top" if options.bottom_with_top else "braced at supports alone"),
-        ("C_b", f"{factor}; 1 for cantilevers"),
+        ({"math": r"C_{\text{b}}"}, f"{factor}; 1 for cantilevers"),
         (
             "Supports, point loads",
             f"on the flanges over {bearing}"
@@ -152,11 +164,13 @@ def state_bending(work: Work, beam: SteelBeam) -> None:
         beam.basis["steel"],
         beam.basis["shape"],
         beam.basis["slender"],
+        inelastic=any(check.strength.zone == "inelastic" for check in beam.bending),
     )
     if len(design.bending) > len(beam.bending):
         _segments(work, beam)
     for check in beam.bending:
         _state_segment(work, beam, basis, check)
+    _figure(work, beam)
 
 
 def _segments(work: Work, beam: SteelBeam) -> None:
@@ -218,20 +232,19 @@ def _state_segment(work: Work, beam: SteelBeam, basis: lines.BendingBasis, check
         sheet.subsection(
             f"{name[0].upper()}{name[1:]}: {work.show(segment.start, 'm')} to {work.show(segment.end, 'm')}"
         )
-    origin = f"analysis, {arrangement_words(work, check.arrangement)}"
+    words = arrangement_words(work, check.arrangement)
 
-    def moment(symbol: str, value: float, says: str, word: str) -> Line:
+    def moment(symbol: str, value: float, says: str, word: str, origin: str) -> Line:
         return sheet.take(symbol, abs(value), "kN*m", says, origin, given=False, word=word)
 
-    sense = "sagging" if check.sagging else "hogging"
     demand = moment(
         "M_r",
         check.demand,
-        f"Largest {sense} moment, at {work.show(check.at, 'm')}",
+        f"Largest {'sagging' if check.sagging else 'hogging'} moment, at {work.show(check.at, 'm')}; {words}",
         "required moment strength",
+        "analysis",
     )
-    unbraced = factor = None
-    zone = check.strength.zone
+    zone, unbraced, factor = check.strength.zone, None, None
     if segment.held:
         sheet.text("The compression flange is held all along: no lateral-torsional buckling.", role="note")
     else:
@@ -240,32 +253,29 @@ def _state_segment(work: Work, beam: SteelBeam, basis: lines.BendingBasis, check
         if segment.free:
             factor = sheet.take("C_b", 1.0, "1", "Cantilever, its end not braced", f"{AISC} F1")
         elif options.diagram_factor is not None:
-            factor = sheet.take(
-                "C_b", options.diagram_factor, "1", "As the job sets it", f"beam {work.given.mark} design.Cb"
-            )
+            origin = f"beam {work.given.mark} design.Cb"
+            factor = sheet.take("C_b", options.diagram_factor, "1", "As the job sets it", origin)
         else:
-            four = [
-                moment(
-                    f"M_{index}",
-                    value,
-                    f"Moment at {words} of the segment",
-                    f"moment at {words} of a segment",
+            first, middle, last = (
+                moment(f"M_{index}", value, f"At {place}", f"moment at {place}", "analysis, same loads")
+                for index, value, place in (
+                    ("A", check.moments.quarter, "the first quarter of the segment"),
+                    ("B", check.moments.middle, "the middle of the segment"),
+                    ("C", check.moments.three_quarters, "the third quarter of the segment"),
                 )
-                for index, value, words in (
-                    ("A", check.moments.quarter, "the first quarter"),
-                    ("B", check.moments.middle, "the middle"),
-                    ("C", check.moments.three_quarters, "the third quarter"),
-                )
-            ]
-            larger = abs(check.moments.largest.value) > check.demand * (1 + 1e-9)
-            factor = lines.state_diagram_factor(
-                sheet, lines.Moments(demand, four[0], four[1], four[2], capped=larger)
             )
-    found = lines.state_bending(
-        sheet, zone, options.method, basis, beam.basis["steel"], beam.basis["shape"], unbraced, factor
+            larger = abs(check.moments.largest.value) > check.demand * (1 + 1e-9)
+            factor = lines.state_diagram_factor(sheet, lines.Moments(demand, first, middle, last, larger))
+    nominal = lines.state_bending(
+        sheet, zone, basis, beam.basis["steel"], beam.basis["shape"], unbraced, factor
+    )
+    yields = (
+        "; the length is at most that for yielding" if nominal is basis.plastic and not segment.held else ""
     )
     line = sheet.require(
-        demand <= found.available, f"Required against available strength: {name}", f"{AISC} F1"
+        demand <= available(basis.factor, nominal, options.method),
+        f"Required against available: {name}{yields}",
+        f"{AISC} F1",
     )
     work.checks.append((name, line))
 
@@ -290,6 +300,51 @@ def _unbraced(work: Work, check: BendingCheck) -> Line:
         f"beam {work.given.mark} design.{'braced' if 'beams' in words else 'unbraced_length'}",
         given=False,
     )
+
+
+def _figure(work: Work, beam: SteelBeam) -> None:
+    """The envelope of moments with what each stretch can carry."""
+    given, band = work.given, work.study.analysed.band("moment")
+    figure = capacity_figure(
+        given.length,
+        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+        "moment",
+        (band.upper.sample(SAMPLES), band.lower.sample(SAMPLES)),
+        _capacities(beam),
+        work.study.system,
+        governing=[
+            (check.at, check.demand if check.sagging else -check.demand, check.available)
+            for check in beam.bending
+        ],
+        fixed=given.fixed,
+        mark=given.mark,
+    )
+    work.sheet.figure(
+        figure,
+        "Envelope of the strength combinations, and what each stretch between braced points carries under "
+        "its own worst arrangement.",
+    )
+
+
+def _capacities(beam: SteelBeam) -> list[tuple[float, float, float, float]]:
+    """Stretches with what they carry sagging and hogging; where nothing was asked, with a uniform moment."""
+    design = beam.design
+    found = []
+    for segment in design.segments:
+        if segment.flange == "bottom":
+            continue
+        below = next(
+            (
+                each
+                for each in design.segments
+                if each.flange == "bottom" and each.span.number == segment.span.number
+            ),
+            segment,
+        )
+        found.append(
+            (segment.start, segment.end, design.carries(segment, True), design.carries(below, False))
+        )
+    return found
 
 
 __all__ = [
