@@ -31,6 +31,7 @@ class Buckling(NamedTuple):
     demand: float  # [kNm], by size
     length: float  # [m]
     diagram: float  # C1
+    share: float  # 1/C1² by the energy of the half wave
     twisting: float  # [kN]
     load: float  # C2
     height: float  # z_g [m]
@@ -171,7 +172,7 @@ def design(
     ... )
     >>> found = design(ipe, beam, segments([(0, 5.7)], [0, 5.7]), Conditions(curves="rolled"))
     >>> round(found.bending.value, 2), round(found.shear.value, 2), round(found.segments[0].resistance)
-    (90.48, 63.5, 93)
+    (90.48, 63.5, 92)
     """
     return SteelBeam(
         profile,
@@ -251,11 +252,15 @@ def _checked(
         moments = hogging_only(moments)
     demand = abs(moments.largest.value)
     height = height_of(profile, conditions.load_height)
-    length, diagram, twisting = part.length, 1.0, 0.0
+    length, diagram, share, twisting = part.length, 1.0, 1.0, 0.0
     if part.free_tip:
         length *= OVERHANG[conditions.load_height == "top" and not part.only_hogging]
     else:
-        diagram = conditions.diagram or buckling.diagram_factor(moments)
+        if demand and not conditions.diagram:
+            share = buckling.wave_share(arrangement.moment, part.start, part.end, demand, part.only_hogging)
+            diagram = min(buckling.quarter_points(moments), 1 / share**0.5)
+        else:
+            diagram = conditions.diagram or 1.0
         loads = [
             (load, factor)
             for each, factor in zip(analysed.sets, arrangement.factors, strict=True)
@@ -264,14 +269,14 @@ def _checked(
         ]
         if height and not part.only_hogging:
             twisting = max(buckling.twisting_load(loads, part.start, part.end), 0.0)
-    load = buckling.load_factor(diagram, length, twisting, demand)
+    load = buckling.load_factor(diagram if height > 0 else 1.0, length, twisting, demand)
     critical = buckling.critical_moment(profile, length, diagram, load * height)
     slenderness = (profile.modulus_of_section * profile.strength / critical) ** 0.5
     alpha = buckling.imperfection(profile, conditions.curves)[1]
     found = buckling.reduction(slenderness, alpha, conditions.curves, profile.factors, diagram)
     resistance = found.reduced * profile.modulus_of_section * profile.strength / profile.factors.gamma_M1
     return Buckling(
-        part, arrangement, moments, demand, length, diagram, twisting, load,
+        part, arrangement, moments, demand, length, diagram, share, twisting, load,
         height if twisting else 0.0, critical, slenderness, found, resistance,
     )  # fmt: skip
 

@@ -13,6 +13,7 @@ from calcpack.clauses.en1993.section import Profile
 from calcpack.sheet import PI, Expression, Line, Sheet, least, number, sqrt
 
 SERNA = "Serna et al., J. Constr. Steel Res. 62 (2006), 566-580 (from memory)"
+ENERGY = "energy of one half sine wave; Timoshenko and Gere, ch. 6"
 CRITICAL = "NCCI SN003b (1), k = kw = 1; ENV 1993-1-1 (F.2) (from memory)"
 
 
@@ -155,12 +156,29 @@ def _diagram(sheet: Sheet, demand: Line, found: Buckling, arrangement: str) -> L
         )
     ]
     second, third, fourth = quarters
-    return sheet.hence(
-        "C_1",
+    by_quarters = sheet.hence(
+        "C_1,q",
         sqrt(35 * demand**2 / (demand**2 + 9 * second**2 + 16 * third**2 + 9 * fourth**2)),
         "1",
-        "Diagram factor from the segment's own moments",
+        "Diagram factor from the quarter points",
         SERNA,
+        word="diagram factor from the quarter points",
+    )
+    share = sheet.take(
+        "mu",
+        found.share,
+        "1",
+        "Mean of (M/M_Ed,b)², weighted with sin² of the place in the half wave of twist",
+        arrangement,
+        word="mean square of the moments over the half wave",
+        given=False,
+    )
+    return sheet.hence(
+        "C_1",
+        least(by_quarters, number(1) / sqrt(share)),
+        "1",
+        "Diagram factor, the lesser of this and of the energy of the half wave",
+        ENERGY,
     )
 
 
@@ -178,10 +196,10 @@ def _load_factor(
     )
     return sheet.hence(
         "C_2",
-        diagram * length * twisting / (PI**2 * demand),
+        (diagram * length if found.height > 0 else length) * twisting / (PI**2 * demand),
         "1",
-        "Load factor, for its height",
-        "energy of one half sine wave; Timoshenko and Gere, ch. 6",
+        "Load factor, for its height" + ("" if found.height > 0 else "; below, as for C1 = 1"),
+        ENERGY,
         word="load factor, for the load's height",
     )
 

@@ -46,7 +46,10 @@ def state_steel_section(work: Work, beam: SteelBeam) -> tuple[ProfileLines, Part
     assert section is not None
     assert material is not None
     sheet.section("Section, steel and class")
-    given = take_profile(sheet, profile, f"section {section.key}", f"material {material.key}", section.source)
+    given = take_profile(
+        sheet, profile, f"section {section.key}", f"material {material.key}", work.lines.get("area")
+    )
+    sheet.text(f"Dimensions: {section.source}; steel: {material.source}.", role="note")
     for name, line in limits_of(sheet, given):
         _keep(work, name, line, always=False)
     partial = take_factors(sheet, profile, _origin(work))
