@@ -108,18 +108,18 @@ class Chosen(NamedTuple):
     satisfied: bool
 
 
-def candidates(cage: Cage, sizes: Sequence[str], fewest: int = 2) -> Iterable[Group]:
+def candidates(cage: Cage, sizes: Sequence[str], fewest: int = 2, most: int = MOST_BARS) -> Iterable[Group]:
     """Groups of bars: one layer before two, few bars before many, thin before thick."""
     bars = [bar(size) for size in sizes]
     for layers in (1, 2):
-        for count in range(fewest, MOST_BARS + 1):
+        for count in range(fewest, most + 1):
             for each in bars:
                 group = arranged(count, each, cage)
                 if len(group.layers) == layers and group.fits:
                     yield group
 
 
-def choose_bars(task: Task, sizes: Sequence[str], fewest: int = 2) -> Chosen:
+def choose_bars(task: Task, sizes: Sequence[str], fewest: int = 2, most: int = MOST_BARS) -> Chosen:
     """The fewest bars that satisfy the clauses, in one layer if possible; with compression bars if needed.
 
     Parameters
@@ -127,7 +127,8 @@ def choose_bars(task: Task, sizes: Sequence[str], fewest: int = 2) -> Chosen:
     task : Task
     sizes : sequence of str
         Thinnest first.
-    fewest : int
+    fewest, most : int
+        How many bars there may be.
 
     Returns
     -------
@@ -148,13 +149,13 @@ def choose_bars(task: Task, sizes: Sequence[str], fewest: int = 2) -> Chosen:
     >>> choose_bars(task, MAIN["US"]).group.words
     '2 #10'
     """
-    groups = list(candidates(task.cage, sizes, fewest))
+    groups = list(candidates(task.cage, sizes, fewest, most))
     if not groups:
         raise ValueError("no bars fit into the web")
     for group in groups:
         if task.suits(group):
             return Chosen(group, None, True)
-    for pressed in groups:
+    for pressed in groups:  # compression bars are no more than the tension bars they help
         for group in groups:
             if pressed.area <= group.area and task.suits(group, pressed):
                 return Chosen(group, pressed, True)

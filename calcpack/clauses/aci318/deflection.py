@@ -45,7 +45,7 @@ def least_depth(span: float, held: str, fy: float) -> float:
 
     Examples
     --------
-    >>> round(least_depth(240, "simply supported", 60_000), 2), round(least_depth(240, "cantilever", 40_000), 2)
+    >>> least_depth(240, "simply supported", 60_000), least_depth(240, "cantilever", 40_000)
     (15.0, 24.0)
     """
     return span / float(LEAST_DEPTH[held]) * (0.4 + fy / 100_000)
@@ -203,7 +203,7 @@ def cracked_depth(width: float, web: float, flange: float, steel: float, depth: 
     Examples
     --------
     >>> round(cracked_depth(12, 12, 0, 8 * 3.0, 17.5), 3)
-    6.601
+    6.602
     """
 
     def axis(b: float, wings: float) -> float:
@@ -222,7 +222,7 @@ def _cracked(sheet: Sheet, size: Size, gross: Gross, bent: Bent, name: Callable[
     depth = cracked_depth(
         face.value,
         size.web.value,
-        flange.value if flange else 0.0,
+        flange.value if flange is not None else 0.0,
         gross.ratio.value * bent.steel.value,
         bent.depth.value,
     )

@@ -47,7 +47,9 @@ def wing_width(slab: float, clear: float, clear_span: float, *, both: bool) -> f
     return min(8 * slab, clear / 2, clear_span / 8) if both else min(6 * slab, clear / 2, clear_span / 12)
 
 
-def state_flange(sheet: Sheet, size: Size, wings: tuple[Wing, ...], clear_span: Line, slab: Line) -> Line:
+def state_flange(
+    sheet: Sheet, size: Size, wings: tuple[Wing, ...], clear_span: Line, slab: Line, symbol: str = "b_f"
+) -> Line:
     """Effective flange width from the slab on each side.
 
     Parameters
@@ -57,6 +59,8 @@ def state_flange(sheet: Sheet, size: Size, wings: tuple[Wing, ...], clear_span: 
     wings : tuple of Wing
         One a side that has a slab; none gives the web alone.
     clear_span, slab : Line [m], [mm]
+    symbol : str
+        Of the result.
 
     Source: ACI 318-19, 6.3.2.1.
     """
@@ -69,7 +73,7 @@ def state_flange(sheet: Sheet, size: Size, wings: tuple[Wing, ...], clear_span: 
         reach = [2 * reach[0]]
     words = " and ".join(f"{wing.words}" for wing in wings)
     return sheet.hence(
-        "b_f",
+        symbol,
         total(size.web, *reach) if reach else size.web.as_expression(),
         "mm",
         f"Effective flange width; slab on {'both sides' if both else 'one side'}, clear distance to {words}"

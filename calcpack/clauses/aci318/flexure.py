@@ -36,15 +36,15 @@ class Demand(NamedTuple):
     origin : str
     face : str
         Which face is in tension: "bottom" or "top".
-    determinate_flange : bool
-        A statically determinate beam with its flange in tension (9.6.1.2).
+    flange : Line or None
+        Width of the flange where it is in tension in a statically determinate beam (9.6.1.2).
     """
 
     moment: float
     words: str
     origin: str
     face: str
-    determinate_flange: bool = False
+    flange: Line | None = None
 
 
 class BendingLines(NamedTuple):
@@ -173,8 +173,8 @@ def _least_steel(
 ) -> Checks:
     width: Expression | Line = size.web
     words = "Least bending steel (f'c and f_y in psi)"
-    if demand.determinate_flange and size.face is not None:
-        width = least(size.face, 2 * size.web)
+    if demand.flange is not None:
+        width = least(demand.flange, 2 * size.web)
         words += "; statically determinate, flange in tension"
     fy = number_in(materials.fy, "psi")
     top = bound("f_y least steel") / PSI
@@ -199,7 +199,7 @@ def _least_steel(
 
 
 def _face(size: Size) -> Line:
-    return size.face or size.web
+    return size.web if size.face is None else size.face
 
 
 def _needed(

@@ -1,0 +1,179 @@
+"""The section on bars of a concrete beam to ACI 318-19: distances, cracks, development, where they end."""
+
+from __future__ import annotations
+
+from calcpack.clauses.aci318.detailing import (
+    state_development,
+    state_end,
+    state_spacing,
+    state_top_length,
+)
+from calcpack.clauses.aci318.materials import cite
+from calcpack.clauses.aci318.strength import INCH
+from calcpack.figures import bar_layout
+from calcpack.notebook.sections.concrete_aci318_design import worst_end
+from calcpack.notebook.sections.concrete_aci318_lines import Written
+from calcpack.sheet import Line
+
+
+def state_bars(written: Written) -> None:
+    """Distances, crack control, development, length of the top bars."""
+    sheet, design = written.sheet, written.design
+    sheet.section("Bars: distances, crack control, development")
+    given = written.work.given.design["aggregate"]
+    aggregate = sheet.take(
+        "d_agg",
+        design.cage.aggregate * 1000,
+        "mm",
+        "Nominal largest size of the aggregate",
+        f"{written.mark} design.aggregate" if given else "chosen by the template, common practice",
+        word="largest size of the aggregate",
+    )
+    for name, face in (("bottom", design.bottom), ("top", design.top)):
+        if face.task is not None:
+            checks = state_spacing(
+                sheet, written.materials, written.size, face.group, aggregate, name, written.tag(name)
+            )
+            written.note(checks)
+    if design.cage.depth > 36 * INCH:
+        sheet.text(
+            "The beam is deeper than 36 in: skin reinforcement stands along both sides over half the depth "
+            "next to the tension face, spaced as for crack control (ACI 318-19 9.7.2.3).",
+            role="caution",
+        )
+    if "bottom" in written.bent:
+        _bottom(written)
+    top = _top(written) if "top" in written.bent else None
+    _figure(written, top)
+
+
+def _bottom(written: Written) -> None:
+    design, bending = written.design, written.bent["bottom"]
+    development = state_development(
+        written.sheet,
+        written.materials,
+        written.size,
+        design.bottom.group,
+        top=False,
+        tag=written.tag("bottom"),
+    )
+    ends = design.actions.ends(design.cage.cover)
+    for number, inflection in enumerate((False, True)):
+        end = worst_end(ends, bending.nominal.value, design.bottom.group, inflection=inflection)
+        if end is not None:
+            written.note(state_end(written.sheet, bending, development, end, "AB"[number]))
+    written.sheet.text(
+        "All bottom bars run into the supports by at least 6 in; that is more than the part of them that "
+        "9.7.3.8.1 and 9.7.3.8.2 ask for. Over inner supports they are spliced or continuous (9.7.7).",
+        role="note",
+    )
+
+
+def _top(written: Written) -> Line | None:
+    """Development of the top bars; how far they run, unless through."""
+    sheet, design, bending = written.sheet, written.design, written.bent["top"]
+    development = state_development(
+        sheet,
+        written.materials,
+        written.size,
+        design.top.group,
+        top=design.top_is_high,
+        tag=written.tag("top"),
+    )
+    actions, half = design.actions, design.actions.half
+    for stretch in actions.stretches:
+        if stretch.overhang and actions.hogs(stretch, stretch.supported[0]):
+            span = written.work.lines["span", stretch.number - 1]
+            line = sheet.require(
+                development.length <= (span - written.size.cover),
+                f"Development of the top bars in overhang {stretch.number}",
+                cite("9.7.3.4"),
+            )
+            written.note(((f"development, overhang {stretch.number}", line),))
+    if design.through:
+        sheet.text(
+            "The top bars run through: combinations hog over most of a span, or the bars are counted in "
+            "compression there.",
+            role="note",
+        )
+        return None
+    reaches = [
+        actions.hogging_reach(stretch, left)
+        for stretch in actions.stretches
+        if not stretch.overhang
+        for left in (True, False)
+        if actions.hogs(stretch, left)
+    ]
+    if not reaches:
+        return None
+    hogging = sheet.take(
+        "x_h",
+        max(reaches),
+        "m",
+        "How far from a support's centre a span hogs, at most",
+        "analysis, envelope of the strength combinations",
+        given=False,
+        word="reach of the hogging moment",
+    )
+    widest = sheet.take(
+        "w_2",
+        half * 1000,
+        "mm",
+        "Half the width of the supports",
+        f"{written.mark} design.support_width",
+        word="half the width of the supports",
+    )
+    clear = max((each for each in actions.stretches if not each.overhang), key=lambda each: each.clear)
+    span = written.work.lines["span", clear.number - 1]
+    return state_top_length(sheet, bending, development, hogging, span, widest)
+
+
+def _figure(written: Written, top: Line | None) -> None:
+    work, design, given = written.work, written.design, written.work.given
+    layers: list[tuple[str, float, float, str]] = []
+    if top is not None:
+        running = design.running
+        layers.append(("top", 0.0, given.length, running.words))
+        more = design.top.group.count - running.count
+        for start, end in _over_supports(written, top.value):
+            if more > 0:
+                layers.append(("top", start, end, f"{more} {design.top.group.bar.name}"))
+    else:
+        layers.append(("top", 0.0, given.length, design.top.group.words))
+    layers.append(("bottom", 0.0, given.length, design.bottom.group.words))
+    zones = [
+        (
+            zone.start,
+            zone.stop,
+            zone.spacing,
+            f"{design.stirrup.name} at {work.show(zone.spacing * 1000, 'mm', exact=True)}",
+        )
+        for zone in design.zones
+    ]
+    figure = bar_layout(
+        given.length,
+        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+        layers,
+        zones,
+        work.study.system,
+        fixed=given.fixed,
+        mark=given.mark,
+    )
+    written.sheet.figure(figure, "Bars and stirrup zones; not a bending schedule.")
+
+
+def _over_supports(written: Written, reach: float) -> list[tuple[float, float]]:
+    """Where the further top bars lie, stretches that meet put together."""
+    actions, length = written.design.actions, written.work.given.length
+    found: list[tuple[float, float]] = []
+    for stretch in actions.stretches:
+        for left in (True, False):
+            if not actions.hogs(stretch, left):
+                continue
+            at = stretch.start if left else stretch.end
+            start, end = max(at - reach, 0.0), min(at + reach, length)
+            if found and start <= found[-1][1]:
+                found[-1] = (found[-1][0], max(end, found[-1][1]))
+            else:
+                found.append((start, end))
+    return found

@@ -1,0 +1,476 @@
+"""A concrete beam to ACI 318-19 settled: what the job gives, and what is chosen where it gives nothing."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+from typing import NamedTuple
+
+from calcpack.clauses.aci318.arrangement import Cage, Group, arranged
+from calcpack.clauses.aci318.choice import (
+    CLOSEST,
+    MAIN,
+    MOST_BARS,
+    STEP,
+    STIRRUPS,
+    Chosen,
+    Strengths,
+    Task,
+    Web,
+    choose_bars,
+    legs_needed,
+    rounded_down,
+)
+from calcpack.clauses.aci318.detailing import End, available, is_small
+from calcpack.clauses.aci318.flange import Wing, wing_width
+from calcpack.clauses.aci318.limits import bound, guard
+from calcpack.clauses.aci318.strength import INCH, Bending, Block, development_length
+from calcpack.clauses.bars import Bar, bar
+from calcpack.job.errors import CalcpackError
+from calcpack.job.model import Material, Section
+from calcpack.notebook.sections.concrete_aci318_actions import Actions, Critical, Stretch, wings_of
+from calcpack.notebook.work import Work
+from calcpack.statics import Extreme
+
+HANGERS = {"US": "#4", "SI": "12 mm"}
+COVER = {
+    "US": {"inside": 1.5 * INCH, "weather": 2 * INCH, "ground": 3 * INCH},
+    "SI": {"inside": 0.040, "weather": 0.055, "ground": 0.080},
+}
+AGGREGATE = {"US": 0.75 * INCH, "SI": 0.020}
+FRESH = 12 * INCH  # concrete below top bars from which on these are "top bars", Table 25.4.2.5
+
+
+class Face(NamedTuple):
+    """The bars at one face with what bends them.
+
+    Parameters
+    ----------
+    group : Group
+    task : Task or None
+        None where no moment puts this face in tension: the bars are hangers.
+    extreme : Extreme or None
+        The moment, as an amount, and its place.
+    state : Bending or None
+        At nominal strength.
+    pressed : Group or None
+        The bars at the other face, where they are counted.
+    """
+
+    group: Group
+    task: Task | None
+    extreme: Extreme | None
+    state: Bending | None
+    pressed: Group | None
+
+
+class Zone(NamedTuple):
+    """A stretch of the beam with one stirrup spacing [m]; ``end`` says which of the two spacings it has."""
+
+    start: float
+    stop: float
+    spacing: float
+    shear: float  # [kN], largest in it
+    at_end: bool
+
+
+@dataclass(frozen=True)
+class Design:
+    """A beam with its reinforcement.
+
+    Parameters
+    ----------
+    actions : Actions
+    section : Section
+    material : Material
+    strengths : Strengths
+    cage : Cage
+    wings : tuple of Wing
+    flange_width : float or None [m]
+        Of a tee.
+    bottom, top : Face
+    through : bool
+        The top bars run through the whole beam.
+    stirrup : Bar
+    legs : int
+    spacings : (float, float) [m]
+        Near the supports and elsewhere; alike where one does for all.
+    criticals : tuple of Critical
+    zones : tuple of Zone
+    how : tuple of str
+        How what the job leaves open was chosen, and what was found missing.
+    """
+
+    actions: Actions
+    section: Section
+    material: Material
+    strengths: Strengths
+    cage: Cage
+    wings: tuple[Wing, ...]
+    flange_width: float | None
+    bottom: Face
+    top: Face
+    through: bool
+    stirrup: Bar
+    legs: int
+    spacings: tuple[float, float]
+    criticals: tuple[Critical, ...]
+    zones: tuple[Zone, ...]
+    how: tuple[str, ...]
+
+    @property
+    def top_is_high(self) -> bool:
+        """Whether top bars have more than 12 in of fresh concrete below them."""
+        return self.cage.depth - self.top.group.heights[0] - self.top.group.bar.diameter / 2 > FRESH
+
+    @property
+    def clear_span(self) -> float:
+        """The shortest clear span, of an overhang where there is no other [m]."""
+        return shortest(self.actions.stretches).clear
+
+    @property
+    def web(self) -> Web:
+        """What shear is carried with: the smaller effective depth, its steel."""
+        return _web(self.cage, self.strengths, self.bottom, self.top)
+
+    @property
+    def running(self) -> Group:
+        """The top bars in the middle of a span: all of them, or two of them."""
+        if self.through or self.top.task is None:
+            return self.top.group
+        return arranged(2, self.top.group.bar, self.cage)
+
+
+def shortest(stretches: Sequence[Stretch]) -> Stretch:
+    """The shortest clear span, of an overhang where there is no other."""
+    spans = [each for each in stretches if not each.overhang] or list(stretches)
+    return min(spans, key=lambda each: each.clear)
+
+
+def settle(work: Work) -> Design:
+    """Read the design keys of a beam, check them, and choose what they leave open.
+
+    Parameters
+    ----------
+    work : Work
+
+    Returns
+    -------
+    Design
+
+    Raises
+    ------
+    CalcpackError
+        The section or material is not one of reinforced concrete by ACI 318, a value is outside of the
+        limits, or no bars fit.
+    """
+    given, keys = work.given, work.given.design
+    section, material = _concrete(work)
+    strengths = _strengths(work, material)
+    actions = Actions(work, keys["support_width"], keys["sustained_live"])
+    if min(each.clear for each in actions.stretches) <= 0:
+        raise CalcpackError(
+            "the supports are as wide as a span", mark=f"beam {given.mark}", key="design.support_width"
+        )
+    system = work.study.system
+    how: list[str] = []
+    cover = keys["cover"]
+    if cover is None:
+        cover = COVER[system][keys["exposure"]]
+        how.append(f"cover {work.show(cover * 1000, 'mm')}: the least for this exposure, in round numbers")
+    wings = wings_of(work, section.dimensions["width"])
+    flange = _flange(section, wings, shortest(actions.stretches).clear)
+    aggregate = keys["aggregate"] or AGGREGATE[system]
+    best: Design | None = None
+    for size, more in _stirrup_trials(keys["stirrups"]["size"], system):
+        stirrup = _bar(work, size, "design.stirrups.size")
+        cage = Cage(
+            section.dimensions["width"], section.dimensions["depth"], cover, stirrup.diameter, aggregate
+        )
+        best = _with_stirrups(work, actions, section, material, strengths, cage, wings, flange, stirrup, more)
+        if keys["stirrups"]["spacing"] or best.spacings[0] >= CLOSEST[system] * (1 - 1e-9):
+            break
+    assert best is not None
+    return replace(best, how=(*how, *best.how))
+
+
+def _concrete(work: Work) -> tuple[Section, Material]:
+    section, material = work.given.section, work.given.material
+    mark = f"beam {work.given.mark}"
+    if section is None or section.shape == "rolled":
+        raise CalcpackError(
+            "this template designs rectangles and tees",
+            remedy="give a concrete section",
+            mark=mark,
+            key="section",
+        )
+    if material is None or not {"fc", "fy", "Es"} <= material.values.keys():
+        raise CalcpackError(
+            "ACI 318 needs f'c of the concrete and f_y of its bars",
+            remedy="name a grade like '4000 psi' and bars like 'Grade 60'",
+            mark=mark,
+            key="material",
+        )
+    name = work.given.actions.name
+    if "allowable" in name:
+        raise CalcpackError(
+            f"'{name}' are combinations for allowable stresses, ACI 318 designs for strength",
+            remedy="set basis.actions to 'ASCE 7-22 strength'",
+            mark=mark,
+            key="basis.actions",
+        )
+    return section, material
+
+
+def _strengths(work: Work, material: Material) -> Strengths:
+    fc, fy, es = (float(material.values[name]) for name in ("fc", "fy", "Es"))
+    guard({"f'_c": fc, "f_y": fy}, work.study.system, f"beam {work.given.mark}")
+    return Strengths(fc, fy, min(fy, bound("f_yt")), es)
+
+
+def _bar(work: Work, size: str, key: str) -> Bar:
+    try:
+        return bar(size)
+    except CalcpackError as error:
+        raise CalcpackError(
+            *(problem.at(mark=f"beam {work.given.mark}", key=key) for problem in error.problems)
+        ) from None
+
+
+def _flange(section: Section, wings: tuple[Wing, ...], clear: float) -> float | None:
+    """Width of a tee's flange as far as it acts [m]."""
+    if section.shape != "tee":
+        return None
+    if not section.effective_flange:
+        return section.dimensions["flange_width"]
+    slab = section.dimensions["flange_depth"]
+    both = len(wings) == 2
+    return section.dimensions["width"] + sum(wing_width(slab, each.clear, clear, both=both) for each in wings)
+
+
+def _stirrup_trials(given: str | None, system: str) -> list[tuple[str, int]]:
+    """Sizes of stirrups with the legs they have beyond the needed ones, in the order they are tried."""
+    sizes = (given,) if given else STIRRUPS[system]
+    return [(size, more) for more in (0, 2) for size in sizes]
+
+
+def _with_stirrups(
+    work: Work,
+    actions: Actions,
+    section: Section,
+    material: Material,
+    strengths: Strengths,
+    cage: Cage,
+    wings: tuple[Wing, ...],
+    flange: float | None,
+    stirrup: Bar,
+    more: int,
+) -> Design:
+    """The design with stirrups of one size."""
+    how: list[str] = []
+    bottom, top, through = _faces(work, actions, section, strengths, cage, flange, how)
+    web = _web(cage, strengths, bottom, top)
+    criticals = tuple(actions.critical(web.depth))
+    largest = max((each.shear for each in criticals), default=0.0)
+    keys, system = work.given.design["stirrups"], work.study.system
+    legs = keys["legs"]
+    if legs is None:
+        legs = legs_needed(web, cage, largest) + more
+        how.append(f"{legs} stirrup legs: as many as their distance across the web asks for"
+                   + (", and two more for strength" if more else ""))  # fmt: skip
+    if not keys["size"]:
+        how.append(
+            f"stirrups {stirrup.name}: the thinnest of {', '.join(STIRRUPS[system])} that need not stand "
+            f"closer than {work.show(CLOSEST[system] * 1000, 'mm')}"
+        )
+    area = legs * stirrup.area
+    if keys["spacing"]:
+        spacings = (keys["spacing"], keys["spacing"])
+    else:
+        most = min(_tie_spacing(bottom, stirrup, cage), _tie_spacing(top, stirrup, cage))
+        spacings = _spacings(web, area, largest, most, STEP[system])
+        how.append(
+            f"stirrup spacing: the widest that strength, the least stirrups and Table 9.7.6.2.2 allow, in "
+            f"steps of {work.show(STEP[system] * 1000, 'mm')}, closer near the supports only as far as the "
+            "shear asks for it; stirrups stand in the whole beam"
+        )
+    zones = _zones(actions, criticals, web, area, spacings, STEP[system])
+    return Design(
+        actions, section, material, strengths, cage, wings, flange, bottom, top, through, stirrup, legs,
+        spacings, criticals, tuple(zones), tuple(how),
+    )  # fmt: skip
+
+
+def _tie_spacing(face: Face, stirrup: Bar, cage: Cage) -> float:
+    """Spacing of stirrups about compression bars, 9.7.6.4.3 [m]."""
+    if face.pressed is None:
+        return math.inf
+    return min(16 * face.pressed.bar.diameter, 48 * stirrup.diameter, cage.width)
+
+
+def _spacings(web: Web, area: float, largest: float, most: float, step: float) -> tuple[float, float]:
+    wide = max(rounded_down(min(web.widest(0.0, area), most), step), step)
+    close = max(rounded_down(min(web.widest(largest, area), most), step), step)
+    return close, wide
+
+
+def _web(cage: Cage, strengths: Strengths, bottom: Face, top: Face) -> Web:
+    bent = [face.group for face in (bottom, top) if face.task is not None] or [bottom.group]
+    least = min(bent, key=lambda group: group.depth)
+    return Web(cage.width, least.depth, least.area / (cage.width * least.depth), strengths)
+
+
+def _faces(
+    work: Work,
+    actions: Actions,
+    section: Section,
+    strengths: Strengths,
+    cage: Cage,
+    flange: float | None,
+    how: list[str],
+) -> tuple[Face, Face, bool]:
+    """Bars at the bottom and at the top; whether the top ones run through."""
+    width = cage.width
+    sagging, hogging = actions.sagging, actions.hogging
+    face_width = flange if flange is not None else width
+    depth = section.dimensions.get("flange_depth", 0.0)
+    ends = actions.ends(cage.cover)
+
+    def developed(group: Group, state: Bending) -> bool:
+        length = _development(group, strengths, top=False)
+        return all(length <= available(end, state.nominal, group.depth, group.bar.diameter) for end in ends)
+
+    determinate = len(work.given.bearings) + sum(work.given.fixed) == 2
+    wide = min(face_width, 2 * width) if determinate else width
+    below = sagging and Task(
+        sagging.value, Block(face_width, width, depth), width, cage, strengths, developed
+    )
+    above = hogging and Task(hogging.value, Block(width, width), wide, cage, strengths)
+    first = _settled(work, "bottom", below, cage, how)
+    second = _settled(work, "top", above, cage, how)
+    keys = work.given.design
+    bottom, top = first.group, second.group
+    free = {name: not (keys[name]["count"] or keys[name]["size"]) for name in ("bottom", "top")}
+    if second.pressed is not None and free["bottom"] and second.pressed.area > bottom.area:
+        bottom = second.pressed
+        how.append(f"bottom bars: {bottom.words}, as the support section needs them in compression")
+    if first.pressed is not None and free["top"] and first.pressed.area > top.area:
+        top = first.pressed
+        how.append(f"top bars: {top.words}, as the span section needs them in compression")
+    lower, upper = _face(below, bottom, top, sagging), _face(above, top, bottom, hogging)
+    through = lower.pressed is not None or (
+        upper.task is not None
+        and any(
+            actions.hogging_reach(each, True) + actions.hogging_reach(each, False) >= 0.7 * each.length
+            for each in actions.stretches
+        )
+    )
+    return lower, upper, through
+
+
+def _development(group: Group, strengths: Strengths, *, top: bool) -> float:
+    """Development length of a group's bars [m]."""
+    edge = group.heights[0]
+    side = group.spacing / 2 if group.layers[0] > 1 else edge
+    return development_length(
+        group.bar.diameter,
+        strengths.fc,
+        strengths.fy,
+        min(edge, side) / group.bar.diameter,
+        top=top,
+        small=is_small(group),
+    )
+
+
+def _face(task: Task | None, group: Group, other: Group, extreme: Extreme | None) -> Face:
+    """A face settled: the other face's bars are counted where the section is not strong enough alone."""
+    if task is None:
+        return Face(group, None, None, None, None)
+    alone = task.state(group)
+    if task.strong(alone):
+        return Face(group, task, extreme, alone, None)
+    both = task.state(group, other)
+    if both.stress_c > 0 and (task.strong(both) or both.design > alone.design):
+        return Face(group, task, extreme, both, other)
+    return Face(group, task, extreme, alone, None)
+
+
+def _settled(work: Work, name: str, task: Task | None, cage: Cage, how: list[str]) -> Chosen:
+    """The bars of one face: the job's, or chosen ones."""
+    keys, system = work.given.design[name], work.study.system
+    count, size = keys["count"], keys["size"]
+    sizes: tuple[str, ...] = MAIN[system]
+    if size:
+        sizes = (_bar(work, size, f"design.{name}.size").name,)
+    if count and size:
+        return Chosen(arranged(count, bar(sizes[0]), cage), None, True)
+    if task is None:
+        words = "hangers for the stirrups, no moment puts this face in tension"
+        group = arranged(count or 2, bar(sizes[0] if size else HANGERS[system]), cage)
+        how.append(f"{name} bars: {group.words}, {words} (common practice)")
+        return Chosen(group, None, True)
+    try:
+        chosen = choose_bars(task, sizes, count or 2, count or MOST_BARS)
+    except ValueError:
+        raise CalcpackError(
+            "no bars fit into the web with the clear distances of 25.2.1",
+            remedy="make the section wider",
+            mark=f"beam {work.given.mark}",
+            key=f"design.{name}",
+        ) from None
+    words = (
+        "the fewest bars that satisfy strength, strain, least steel, clear distances, crack control"
+        + (" and development" if name == "bottom" else "")
+        + ", one layer before two"
+        if chosen.satisfied
+        else "nothing satisfies every clause; the strongest ductile bars stand here"
+    )
+    how.append(f"{name} bars: {chosen.group.words}; {words}")
+    return chosen
+
+
+def _zones(
+    actions: Actions,
+    criticals: Sequence[Critical],
+    web: Web,
+    area: float,
+    spacings: tuple[float, float],
+    step: float,
+) -> list[Zone]:
+    """Stretches of one stirrup spacing, span by span."""
+    close, wide = spacings
+    zones: list[Zone] = []
+    strength = web.strength(area, wide)
+    for stretch in actions.stretches:
+        ends = {each.left: each for each in criticals if each.span == stretch.number}
+        first = ends[True].at if True in ends else stretch.start
+        last = ends[False].at if False in ends else stretch.end
+        reach = {True: 0.0, False: 0.0}
+        if close < wide - 1e-9:
+            for left, each in ends.items():
+                over = actions.zone_reach(each, strength)
+                reach[left] = math.ceil(over / step - 1e-9) * step
+        left_end, right_start = stretch.start + reach[True], stretch.end - reach[False]
+        if left_end >= right_start - 1e-9:
+            shear = max((each.shear for each in ends.values()), default=0.0)
+            zones.append(Zone(stretch.start, stretch.end, close, shear, True))
+            continue
+        if reach[True]:
+            zones.append(Zone(stretch.start, left_end, close, ends[True].shear, True))
+        middle = (max(left_end, first), min(right_start, last))
+        shear = actions.largest_shear(*middle) if middle[1] > middle[0] else actions.shear_at(middle[0])
+        zones.append(Zone(left_end, right_start, wide, shear, False))
+        if reach[False]:
+            zones.append(Zone(right_start, stretch.end, close, ends[False].shear, True))
+    return zones
+
+
+def worst_end(ends: Sequence[End], nominal: float, group: Group, *, inflection: bool) -> End | None:
+    """The end with the least development length at hand, of one kind."""
+
+    def at_hand(end: End) -> float:
+        return available(end, nominal, group.depth, group.bar.diameter)
+
+    fitting = [end for end in ends if (end.kind == "inflection") == inflection and end.shear > 0]
+    return min(fitting, key=at_hand, default=None)

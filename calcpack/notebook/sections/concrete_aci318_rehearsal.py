@@ -1,0 +1,54 @@
+"""Sections written once out of sight, to know on the first page what later pages find."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import replace
+from typing import Any
+
+from calcpack.notebook.work import Work
+from calcpack.sheet import Line, Sheet, show
+
+
+class Draft(Sheet):
+    """A sheet that goes on from another one, unseen and without changing it.
+
+    Examples
+    --------
+    >>> sheet = Sheet("B1")
+    >>> sheet.section("Given")
+    >>> draft = Draft(sheet)
+    >>> draft.take("q", 3.0, "kPa", "Pressure", "job").no, len(sheet.lines)
+    ('1.01', 0)
+    """
+
+    def __init__(self, sheet: Sheet) -> None:
+        super().__init__(sheet.mark, sheet.system)
+        self.lines = dict(sheet.lines)
+        self._sections, self._count = sheet._sections, sheet._count
+        self._words = dict(sheet._words)
+
+    def show(self) -> None:
+        """Nothing is shown."""
+
+
+def draft_of(work: Work) -> Work:
+    """The same work on a draft: what is written on it is not on the sheet."""
+    return replace(work, sheet=Draft(work.sheet), lines=dict(work.lines), checks=[])
+
+
+def ratio_rows(work: Work, checks: Iterable[tuple[str, Line]]) -> list[dict[str, Any]]:
+    """Checks as rows of a schedule with bars: demand, resistance, ratio."""
+    rows = []
+    for name, line in checks:
+        check = line.check(name)
+        rows.append(
+            {
+                "says": name,
+                "demand": show(check["demand"], check["unit"], work.study.system),
+                "resistance": show(check["capacity"], check["unit"], work.study.system),
+                "ratio": check["ratio"],
+                "passes": check["passes"],
+            }
+        )
+    return rows
