@@ -2,6 +2,8 @@
 
 from calcpack.actions.analysis import AnalysedBeam, CombinationResult, LoadSet, analyse_beam
 from calcpack.actions.combinations import Combination, CombinationSet, combination_set, set_names
+from calcpack.actions.occupancies import Occupancy, OccupancyTable, occupancy_tables
+from calcpack.actions.reduction import Reduction, reduction
 
 __all__ = [
     "AnalysedBeam",
@@ -9,7 +11,12 @@ __all__ = [
     "CombinationResult",
     "CombinationSet",
     "LoadSet",
+    "Occupancy",
+    "OccupancyTable",
+    "Reduction",
     "analyse_beam",
     "combination_set",
+    "occupancy_tables",
+    "reduction",
     "set_names",
 ]

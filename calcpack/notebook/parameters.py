@@ -21,6 +21,7 @@ from calcpack.framing.types import (
 )
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Basis, Case, EquivalentKind, Frozen, Header, Material, Section, Submission
+from calcpack.notebook.tributary import Tributary, tributaries
 from calcpack.statics import Load
 
 PROGRAM = f"calcpack {calcpack.__version__}"
@@ -61,6 +62,7 @@ class BeamInput(Frozen):
     placements: tuple[Placement, ...]
     reactions: dict[Case, tuple[float, ...]]
     panels: tuple[PanelTransfer, ...]
+    tributary: tuple[Tributary, ...] = ()  # where the job asks for a live-load reduction
     plan: dict[str, Any]
     design: dict[str, Any]
     template: TemplateStamp
@@ -126,6 +128,9 @@ def beam_input(frame: Frame, mark: str, design: dict[str, Any], template: Templa
         placements=framed.placements,
         reactions={case: framed.reactions[case] for case in cases},
         panels=tuple(frame.panels[panel] for panel in framed.panels),
+        tributary=()
+        if job.basis.live_load_reduction == "none"
+        else tributaries(frame, mark, job.basis.live_load_reduction),
         plan=dict(plan_of(frame, framed)),
         design=design,
         template=template,

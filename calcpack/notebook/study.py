@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
-from dataclasses import dataclass
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Any
 
-from calcpack.actions import AnalysedBeam, LoadSet, analyse_beam
+from calcpack.actions import AnalysedBeam, LoadSet, Reduction, analyse_beam, reduction
 from calcpack.actions.combinations import PLACED
 from calcpack.equivalent import Comparison, Equivalents, comparison, equivalents, loads_on
 from calcpack.job.model import CASES, Case
@@ -118,10 +118,37 @@ class Study:
         return (*fixed, *placed)
 
     @cached_property
+    def reduction(self) -> Reduction | None:
+        """How far live load is reduced in the beam's own design; None where the job asks for none."""
+        rule = self.given.basis.live_load_reduction
+        if rule == "none":
+            return None
+        area = sum(part.area for part in self.given.tributary)
+        # A slab held along one edge only is a cantilever from this beam.
+        slabs = any(sum(transfer.supported) == 1 for transfer in self.given.panels)
+        return reduction(
+            rule, area, category=self.given.basis.occupancy, cantilever=slabs or any(self.given.free)
+        )
+
+    @cached_property
+    def reduced_sources(self) -> frozenset[str]:
+        """The panels and beams whose live load is reduced; none where the factor is 1."""
+        if self.reduction is None or self.reduction.factor == 1.0:
+            return frozenset()
+        return frozenset(part.source for part in self.given.tributary if not part.exempt)
+
+    def _lessened(self, case: Case, loads: Sequence[Load]) -> tuple[Load, ...]:
+        """Loads as the beam is designed for them: live load that may be reduced times the factor."""
+        if case != "live" or self.reduction is None or not self.reduced_sources:
+            return tuple(loads)
+        factor = self.reduction.factor
+        return tuple(_times(load, factor) if load.source in self.reduced_sources else load for load in loads)
+
+    @cached_property
     def design_sets(self) -> tuple[LoadSet, ...]:
         """The load sets the design rests on: actual, or with equivalent uniform loads in the spans."""
         if self.given.design_loads == "actual":
-            return self.actual
+            return tuple(replace(each, loads=self._lessened(each.case, each.loads)) for each in self.actual)
         return (
             *(LoadSet(case, self._uniform(case)) for case in self.cases if case not in PLACED),
             *(
@@ -140,19 +167,19 @@ class Study:
         """
         field = FIELD[self.given.equivalent]
         loads: list[Load] = []
+        given = self._lessened(case, self.given.loads[case])
         for number, (start, end) in enumerate(self.given.spans):
             if only is not None and number != only:
                 continue
             span = self.spans[number]
             if span is None:
-                inside = loads_on(self.given.loads[case], start, end)
-                loads += [_moved(load, start) for load in inside]
-            elif value := float(getattr(span.equivalents[case], field)):
+                loads += [_moved(load, start) for load in loads_on(given, start, end)]
+            elif value := float(getattr(equivalents(span.length, loads_on(given, start, end)), field)):
                 loads.append(LineLoad(start, end, value, value, f"equivalent {self.given.equivalent}"))
             ends = (start, end) if number == 0 else (end,)
             loads += [
                 load
-                for load in self.given.loads[case]
+                for load in given
                 if isinstance(load, PointLoad)
                 and any(abs(load.at - at) <= 1e-9 * self.given.length for at in ends)
             ]
@@ -185,6 +212,12 @@ class Study:
     def total(self, case: Case) -> float:
         """All of a case on the beam [kN]."""
         return sum(load.total for load in self.given.loads[case])
+
+
+def _times(load: Load, factor: float) -> Load:
+    if isinstance(load, PointLoad):
+        return replace(load, force=factor * load.force)
+    return replace(load, first=factor * load.first, last=factor * load.last)
 
 
 def _moved(load: Load, by: float) -> Load:

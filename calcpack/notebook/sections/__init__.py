@@ -6,6 +6,7 @@ from calcpack.notebook.sections.effects import state_combinations, state_effects
 from calcpack.notebook.sections.given import state_given
 from calcpack.notebook.sections.loads import state_loads
 from calcpack.notebook.sections.opening import state_basis, state_place
+from calcpack.notebook.sections.reduction import state_reduction
 from calcpack.notebook.sections.transfer import state_transfer
 from calcpack.notebook.sections.uniform import state_equivalents
 
@@ -19,6 +20,7 @@ __all__ = [
     "state_loads",
     "state_notation",
     "state_place",
+    "state_reduction",
     "state_summary",
     "state_transfer",
     "write_record",

@@ -74,7 +74,7 @@ def _symbols(work: Work) -> dict[Case, str]:
 def _by_hand(work: Work, moment: CombinationResult, shear: CombinationResult) -> None:
     """A beam on two supports: the governing values from the cases, where all loads are symmetric."""
     span, sheet = work.simple, work.sheet
-    if span is None:
+    if span is None or not _whole_or_alike(work):
         return
     if not all(work.symmetric(span, case) for case in work.study.cases):
         _by_moments(work, span, moment, shear)
@@ -101,7 +101,7 @@ def _by_hand(work: Work, moment: CombinationResult, shear: CombinationResult) ->
         (shear, "V_max", "reaction", "kN", "Largest shear, at the supports"),
     ):
         factors = [
-            (factor, work.lines[key, case])
+            (factor, _reduced(work, case, work.lines[key, case]))
             for case, factor in result.combination.factors.items()
             if case in work.study.cases
         ]
@@ -134,7 +134,12 @@ def _by_moments(work: Work, span: SpanLoads, moment: CombinationResult, shear: C
     ends = {
         end: sheet.hence(
             f"R_{letter},max",
-            summed([_times(factors[case], work.lines[end, case, span.number]) for case in factors]),
+            summed(
+                [
+                    _times(factor, _reduced(work, case, work.lines[end, case, span.number]))
+                    for case, factor in factors.items()
+                ]
+            ),
             "kN",
             says=f"Reaction at the {end} support, under {moment.combination.name}",
             cite=moment.combination.cite,
@@ -150,7 +155,8 @@ def _by_moments(work: Work, span: SpanLoads, moment: CombinationResult, shear: C
             force, turning = resultant(before(shape, most.at))
             if force:
                 arm = measured(most.at - turning / force, "m")
-                arms.append(number(factor) * measured(force, "kN") * arm)
+                acting = _reduced(work, case, measured(force, "kN"))
+                arms.append(number(factor) * acting * arm)
     sheet.hence(
         "M_max",
         ends["left"] * place - total(arms) if arms else ends["left"] * place,
@@ -161,8 +167,23 @@ def _by_moments(work: Work, span: SpanLoads, moment: CombinationResult, shear: C
     )
 
 
-def _times(factor: float, line: Line) -> Expression | Line:
-    return line if factor == 1 else number(factor) * line
+def _times(factor: float, term: Expression | Line) -> Expression | Line:
+    return term if factor == 1 else number(factor) * term
+
+
+def _whole_or_alike(work: Work) -> bool:
+    """Whether the live load is reduced not at all, or all of it by the line that says how far."""
+    reduced = work.study.reduced_sources
+    if not reduced:
+        return True
+    return "reduction" in work.lines and all(load.source in reduced for load in work.given.loads["live"])
+
+
+def _reduced(work: Work, case: Case, effect: Expression | Line) -> Expression | Line:
+    """A case's effect as the design takes it."""
+    if case == "live" and work.study.reduced_sources:
+        return work.lines["reduction"] * effect
+    return effect
 
 
 def state_effects(work: Work) -> None:

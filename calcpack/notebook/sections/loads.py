@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from calcpack.figures import load_figure
 from calcpack.job.model import Case
+from calcpack.notebook.sections.reduction import state_reduction
 from calcpack.notebook.sections.resultants import CLOSE, weight
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import LETTER, Work, summed
@@ -11,7 +12,7 @@ from calcpack.sheet import Expression, Line, measured
 
 
 def state_loads(work: Work) -> None:
-    """Load diagram of each case, the sources' resultants, and the totals."""
+    """Load diagram of each case, the sources' resultants, the totals; a live-load reduction behind them."""
     study, given = work.study, work.given
     work.sheet.section("Loads on the beam")
     uniform: dict[str, list[tuple[float, float, float]]] = {
@@ -40,6 +41,7 @@ def state_loads(work: Work) -> None:
         work.lines["total", case] = work.sheet.hence(
             f"W_{LETTER[case]}", _total(work, case), "kN", says=f"All the {CASE_WORDS[case]} on the beam"
         )
+    state_reduction(work)
 
 
 def _by_formula(work: Work) -> bool:
