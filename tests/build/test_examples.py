@@ -27,7 +27,7 @@ def test_the_folder_holds_what_it_should(name, built):
             assert (folder / "sheets" / f"{mark}.{ending}").stat().st_size > 1000
     assert (folder / "pack.pdf").read_bytes().startswith(b"%PDF-")
     assert (folder / "index.html").read_text(encoding="utf-8").startswith("<!DOCTYPE html>")
-    rows = list(csv.DictReader((folder / "schedule.csv").open(encoding="utf-8", newline="")))
+    rows = list(csv.DictReader((folder / "schedule.csv").read_text(encoding="utf-8").splitlines()))
     assert [row["mark"] for row in rows] == job["beams"]
     assert sorted(job["order"]) == sorted(job["beams"])
 
@@ -62,9 +62,9 @@ def test_beam_between_two_triangles(built):
     assert found["reactions"]["live"] == pytest.approx([2 * 3.0 * 2.25 * 4.5 / 4] * 2, rel=1e-9)
     assert found["equivalent"][0]["live"]["moment"] == pytest.approx(2 * 2 / 3 * 3.0 * 2.25, rel=1e-9)
     assert found["equivalent"][0]["live"]["shear"] == pytest.approx(2 * 1 / 2 * 3.0 * 2.25, rel=1e-9)
-    inertia, modulus = 0.3 * 0.6**3 / 12, 32.84e6  # Ecm of C30/37 to four figures, EN 1992-1-1 Table 3.1
+    inertia, modulus = 0.3 * 0.6**3 / 12, 33e6  # Ecm of C30/37, EN 1992-1-1 Table 3.1
     live_mm = 2 * 3.0 * 2.25 * 4.5**4 / (120 * modulus * inertia) * 1000
-    assert found["deflection"]["live_mm"] == pytest.approx(live_mm, rel=2e-3)
+    assert found["deflection"]["live_mm"] == pytest.approx(live_mm, rel=1e-9)
 
 
 def test_joist_comes_down_on_its_girder(built):
