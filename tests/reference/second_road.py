@@ -214,6 +214,8 @@ class Carried:
                 point = beam.bar.points[beam.bar.held[number_]]
                 for key in beam.keys:
                     size = float(beam.reactions(key)[number_])
+                    if not size:
+                        continue
                     if kind == "beam":
                         at = self._place_on(floor.bars[below], point)
                         arriving[below][key].append(Force(at, size, mark))

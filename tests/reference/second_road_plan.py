@@ -97,7 +97,7 @@ def way_of(floor: Floor, slab: Slab, sides: list[Side], held: list[bool]) -> np.
     if slab.transfer.startswith("one-way"):
         return np.array([1.0, 0.0] if slab.transfer.endswith("x") else [0.0, 1.0])
     if sum(held) == 1:
-        return sides[held.index(True)].inward
+        return None  # a cantilever slab: the one edge is the nearest of all
     square = len(sides) == 4 and all(abs(a.along @ b.along) < 1e-6 for a, b in pairwise(sides))
     if square and held in ([True, False] * 2, [False, True] * 2):
         return sides[held.index(True)].inward

@@ -18,7 +18,7 @@ from typing import Any, NamedTuple
 import openpyxl
 import pytest
 from second_road import Beam, Carried
-from second_road_job import CASES, MOVABLE, Floor
+from second_road_job import CASES, MOVABLE, Floor, Force
 
 from calcpack.framing import frame
 from calcpack.job import read_job
@@ -478,6 +478,10 @@ def test_the_floors_are_what_they_are_for(job_file):
     assert press.bearings["E1"] == [("beam", "K1"), ("beam", "K2")]
     assert [found is None for found in store.beams["F5"].equivalents] == [True, False, False, False, True]
     assert all(kind == "beam" for mark in ("F1", "F2", "F3", "F4", "F5") for kind, _ in store.bearings[mark])
+    assert {load.at for load in hall.beams["M1"].of("live") if isinstance(load, Force)} == {
+        0.0,
+        hall.beams["M1"].supports[1],  # what hangs over either end of the edge, one on an inner support
+    }
     parts = [load for load in hall.beams["L1"].of("live") if load.source == "Q1"]
     assert parts[-1].end == pytest.approx(3.1)
     assert parts[-1].last == pytest.approx(3.5 * 2.0)  # the joint is under the flat part
