@@ -145,8 +145,15 @@ class BeamCase:
     @cached_property
     def places(self) -> Floats:
         """Places to compare moments at, the envelope's breaks and extremes among them [m]."""
-        return places(self.length, [*self.moment.upper.breaks, *self.moment.lower.breaks,
-                                    self.moment.largest.at, self.moment.smallest.at])  # fmt: skip
+        return places(
+            self.length,
+            [
+                *self.moment.upper.breaks,
+                *self.moment.lower.breaks,
+                self.moment.largest.at,
+                self.moment.smallest.at,
+            ],
+        )
 
 
 def places(length: float, among: Sequence[float], step: float = STEP) -> Floats:

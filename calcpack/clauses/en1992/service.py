@@ -56,7 +56,7 @@ class SpanDeflection:
     limit: float | None
     live: float | None
     live_limit: float | None
-    moment: float  # lasting moment where the span is cracked most [kNm], by size
+    moment: float  # largest lasting moment [kNm], by size: sagging, of an overhang hogging
     zeta: float  # there
 
 
@@ -192,9 +192,10 @@ def span_deflections(
             both = short.line(case, x, rare, cracked)
             dead = short.line(case, x, service.dead.values(x), cracked)
             live = float(np.abs((both - dead)[inside]).max())
-        heavy = int(np.argmax(np.abs(moment[inside])))
-        bent = moment[inside][heavy]
-        degree = zeta[0] if bent >= 0 else zeta[1]
+        bent = moment[inside]
+        hogging = span.overhang or bent.max() <= 0
+        heavy = int(np.argmin(bent) if hogging else np.argmax(bent))
+        degree = zeta[1] if hogging else zeta[0]
         found.append(
             SpanDeflection(
                 number,
@@ -205,7 +206,7 @@ def span_deflections(
                 reach / total_factor if total_factor else None,
                 live,
                 reach / live_factor if live_factor and live is not None else None,
-                float(abs(bent)),
+                float(abs(bent[heavy])),
                 float(degree[inside][heavy]),
             )
         )

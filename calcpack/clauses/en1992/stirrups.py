@@ -22,8 +22,14 @@ from calcpack.clauses.en1992.shear import (
 )
 
 TRIED: tuple[tuple[str, int], ...] = (
-    ("8 mm", 2), ("10 mm", 2), ("12 mm", 2), ("10 mm", 4), ("12 mm", 4), ("12 mm", 6), ("16 mm", 6),
-)  # fmt: skip
+    ("8 mm", 2),
+    ("10 mm", 2),
+    ("12 mm", 2),
+    ("10 mm", 4),
+    ("12 mm", 4),
+    ("12 mm", 6),
+    ("16 mm", 6),
+)
 STEP = 0.025  # [m], spacings are multiples of it
 CLOSEST, WIDEST = 0.075, 0.300  # [m], common practice
 ROUND = 0.05  # [m], ends of zones

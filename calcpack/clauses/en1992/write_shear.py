@@ -1,0 +1,316 @@
+"""Lines: shear, stirrups, the shift rule."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from calcpack.clauses.en1992.design import Design
+from calcpack.clauses.en1992.national import STANDARD
+from calcpack.clauses.en1992.shear import ARM
+from calcpack.clauses.en1992.write_bending import FaceLines, SizeLines
+from calcpack.clauses.en1992.write_materials import StrengthLines, millimetres
+from calcpack.sheet import (
+    PI,
+    Expression,
+    Line,
+    Sheet,
+    greatest,
+    in_unit,
+    least,
+    measured,
+    number,
+    number_in,
+    quantity,
+    show,
+    sqrt,
+)
+
+
+@dataclass(frozen=True)
+class ShearLines:
+    """Lines that later ones draw on."""
+
+    arm: Line
+    cot: Line
+    shift: Line
+    area: Line  # A_sw
+    spacing: Line
+
+
+def write_shear(
+    sheet: Sheet,
+    design: Design,
+    strength: StrengthLines,
+    size: SizeLines,
+    longitudinal: FaceLines,
+    effective: Line,
+    origin: str,
+) -> tuple[ShearLines, list[tuple[str, Line]]]:
+    """Shear where the stirrups stand closest, and the struts where the shear is largest.
+
+    Parameters
+    ----------
+    design : Design
+    longitudinal : FaceLines
+        Tension bars where the shear is checked.
+    effective : Line
+        The least effective depth.
+    origin : str
+        "chosen", or the place in the job.
+
+    Returns
+    -------
+    lines, list of (name, requirement)
+
+    Source: EN 1992-1-1:2004, 6.2.1 to 6.2.3.
+    """
+    shear, case = design.shear, design.case
+    national = case.national
+    place, largest = shear.places[shear.governing], shear.places[shear.largest]
+    support, other = case.supports[place.support], case.supports[largest.support]
+    face = sheet.take(
+        "V_Ed,f",
+        largest.v_face,
+        "kN",
+        f"Largest shear at a face of a support, {other.words}, {largest.side}",
+        "analysis, envelope",
+        given=False,
+        word="design shear at the face",
+    )
+    where = f"at the face, {place.why}" if place.why else "at d from the face"
+    at = sheet.take(
+        "V_Ed",
+        place.v_at,
+        "kN",
+        f"Shear where the stirrups stand closest: {support.words}, {place.side}, {where}",
+        "analysis, envelope",
+        f"{STANDARD}, 6.2.1(8)",
+        given=False,
+    )
+    _concrete(sheet, design, strength, size, longitudinal, effective, at)
+    area, spacing = _stirrups(sheet, design, origin)
+    z = sheet.hence("z", number(ARM) * effective, "mm", "Lever arm in shear", f"{STANDARD}, 6.2.3(1)")
+    nu = sheet.hence(
+        "nu_1",
+        number(national["nu"]) * (1 - strength.fck / quantity(250, "MPa")),
+        "1",
+        "Strength factor of the struts",
+        f"{STANDARD}, 6.2.2(6) (6.6N)",
+    )
+    struts: Expression = size.width * z * nu * strength.fcd
+    if national["alpha_cw"] != 1:
+        struts = number(national["alpha_cw"]) * struts
+    cot = _cot(sheet, design, strength, size, area, spacing, nu)
+    ties = sheet.hence(
+        "V_Rd,s",
+        area / spacing * z * strength.fyd * cot,
+        "kN",
+        "Shear the stirrups carry",
+        f"{STANDARD}, 6.2.3(3) (6.8)",
+    )
+    most = sheet.hence(
+        "V_Rd,max", struts / (cot + 1 / cot), "kN", "Shear the struts carry", f"{STANDARD}, 6.2.3(3) (6.9)"
+    )
+    checks = [
+        ("shear, stirrups", sheet.require(at <= ties, "Stirrups", f"{STANDARD}, 6.2.3(3)")),
+        ("shear, struts", sheet.require(face <= most, "Struts", f"{STANDARD}, 6.2.1(8), 6.2.3(3)")),
+    ]
+    shift = sheet.hence(
+        "a_l",
+        z * cot / 2,
+        "mm",
+        "Shift of the moments, and of the force in the bars",
+        f"{STANDARD}, 9.2.1.3(2) (9.2)",
+        word="shift of the moments",
+    )
+    return ShearLines(z, cot, shift, area, spacing), checks
+
+
+def _concrete(
+    sheet: Sheet,
+    design: Design,
+    strength: StrengthLines,
+    size: SizeLines,
+    longitudinal: FaceLines,
+    effective: Line,
+    at: Line,
+) -> None:
+    national, cite = design.case.national, f"{STANDARD}, 6.2.2(1)"
+    k = sheet.hence("k", least(1 + sqrt(quantity(200, "mm") / effective), 2), "1", "Size factor", cite)
+    rho = sheet.hence(
+        "rho_l",
+        least(longitudinal.area / (size.width * effective), number("0.02")),
+        "1",
+        "Ratio of the bars in tension there",
+        cite,
+    )
+    strength_ = number_in(strength.fck, "MPa")
+    term = number(national["c_Rd"]) / strength.gamma_c * k * (100 * rho * strength_) ** (number(1) / 3)
+    floor = number(national["v_min"]) * k ** number("1.5") * sqrt(strength_)
+    carried = sheet.hence(
+        "V_Rd,c",
+        in_unit(greatest(term, floor), "MPa") * size.width * effective,
+        "kN",
+        "Shear the concrete carries without stirrups (f_ck in MPa)",
+        f"{cite} (6.2a, 6.2b, 6.3N)",
+    )
+    needs = at.value > carried.value
+    sheet.text(
+        [
+            "Stirrups by calculation are " if needs else "The least stirrups are ",
+            "needed, " if needs else "enough, ",
+            at.math,
+            " ",
+            {"math": ">" if needs else r"\le"},
+            " ",
+            carried.math,
+            " (6.2.1(3))." if needs else " (6.2.1(4)); what the truss carries is stated all the same.",
+        ],
+        role="note",
+    )
+
+
+def _stirrups(sheet: Sheet, design: Design, origin: str) -> tuple[Line, Line]:
+    stirrups = design.shear.stirrups
+    legs = sheet.take("n_w", stirrups.legs, "1", "Legs of a stirrup", origin, word="legs of a stirrup")
+    bar = next(line for line in sheet.lines.values() if line.symbol == "phi_w")
+    area = sheet.hence(
+        "A_sw",
+        legs * PI * bar**2 / 4
+        if abs(stirrups.bar.area - 3.141592653589793 * stirrups.bar.diameter**2 / 4) < 1e-12
+        else legs * measured(stirrups.bar.area * 1e6, "mm^2"),
+        "mm^2",
+        "Area of a stirrup's legs",
+        "geometry",
+        word="shear reinforcement within one spacing",
+    )
+    spacing = sheet.take(
+        "s_w",
+        millimetres(min(design.shear.spacings)),
+        "mm",
+        "Closest spacing along the beam",
+        origin,
+        word="spacing of stirrups",
+    )
+    return area, spacing
+
+
+def _cot(
+    sheet: Sheet,
+    design: Design,
+    strength: StrengthLines,
+    size: SizeLines,
+    area: Line,
+    spacing: Line,
+    nu: Line,
+) -> Line:
+    case, national = design.case, design.case.national
+    cite, word = f"{STANDARD}, 6.2.3(2) (6.7N)", "cotangent of the strut angle"
+    if case.given.cot:
+        return sheet.take(
+            "cot theta", case.given.cot, "1", "Strut angle", "beam design.cot_theta", cite, word=word
+        )
+    force: Expression = size.width * spacing * nu * strength.fcd
+    if national["alpha_cw"] != 1:
+        force = number(national["alpha_cw"]) * force
+    inside = force / (area * strength.fyd) - 1
+    low, high = number(national["cot_theta_min"]), number(national["cot_theta_max"])
+    best = sqrt(greatest(inside, 0))
+    return sheet.hence(
+        "cot theta",
+        least(greatest(best, low), high),
+        "1",
+        "Best strut angle: stirrups and struts give out together, within the limits",
+        cite,
+        word=word,
+    )
+
+
+def write_along(sheet: Sheet, design: Design) -> list[tuple[str, Line]]:
+    """Shear against the stirrups, and the shifted moments against the bars, wherever that is closest.
+
+    Source: EN 1992-1-1:2004, 6.2.3 and 9.2.1.3.
+    """
+    at, force, carried = design.shear.along
+    worst = design.along
+    system = sheet.system
+    shear = sheet.require(
+        measured(force, "kN") <= measured(carried, "kN"),
+        f"Shear along the beam, closest at {show(at, 'm', system)}",
+        f"{STANDARD}, 6.2.3(3)",
+    )
+    moment = sheet.require(
+        measured(worst.moment, "kN*m") <= measured(worst.resistance, "kN*m"),
+        f"{'Hogging' if worst.hogging else 'Sagging'} moments along the beam, shifted, closest at "
+        f"{show(worst.at, 'm', system)}",
+        f"{STANDARD}, 9.2.1.3",
+    )
+    return [("shear along the beam", shear), ("moments along the beam", moment)]
+
+
+def write_stirrup_limits(
+    sheet: Sheet, design: Design, strength: StrengthLines, size: SizeLines, lines: ShearLines, effective: Line
+) -> list[tuple[str, Line]]:
+    """Least stirrups, widest spacing along and across.
+
+    Source: EN 1992-1-1:2004, 9.2.2(5), (6), (8).
+    """
+    shear, national = design.shear, design.case.national
+    widest = max(zone.spacing for zone in shear.zones)
+    wide = sheet.take(
+        "s_w,max",
+        millimetres(widest),
+        "mm",
+        "Widest spacing along the beam",
+        "zones above",
+        word="widest spacing of stirrups",
+    )
+    ratio = sheet.hence(
+        "rho_w,min",
+        in_unit(number(national["rho_w_min"]) * sqrt(number_in(strength.fck, "MPa")), "MPa") / strength.fyk,
+        "1",
+        "Least ratio of stirrups (f_ck in MPa)",
+        f"{STANDARD}, 9.2.2(5) (9.5N)",
+        word="least ratio of stirrups",
+    )
+    found = [
+        (
+            "least stirrups",
+            sheet.require(
+                ratio <= lines.area / (wide * size.width), "Least stirrups", f"{STANDARD}, 9.2.2(5) (9.4)"
+            ),
+        ),
+        (
+            "stirrup spacing",
+            sheet.require(
+                wide <= number(national["s_l_max"]) * effective,
+                "Spacing along the beam",
+                f"{STANDARD}, 9.2.2(6) (9.6N)",
+            ),
+        ),
+        (
+            "stirrup legs",
+            sheet.require(
+                measured(shear.legs_apart * 1e3, "mm")
+                <= least(
+                    number(national["s_t_max"]) * effective, measured(millimetres(national["s_t_most"]), "mm")
+                ),
+                "Legs across the web",
+                f"{STANDARD}, 9.2.2(8) (9.8N)",
+            ),
+        ),
+    ]
+    held = [face for face in (design.bottom, design.top) if face and face.doubly and face.compression]
+    for face in held:
+        assert face.compression is not None
+        found.append(
+            (
+                "stirrups about compression bars",
+                sheet.require(
+                    wide <= 15 * measured(millimetres(face.compression.bar.diameter), "mm"),
+                    "Compression bars held by the stirrups",
+                    f"{STANDARD}, 9.2.1.2(3)",
+                ),
+            )
+        )
+    return found
