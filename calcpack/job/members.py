@@ -67,8 +67,12 @@ class Surroundings:
 
     @property
     def unit_weight(self) -> float:
-        """Unit weight of a slab that names none [kN/m3]: common practice under either family of codes."""
-        return 150 * factor("pcf") if self.basis.actions.startswith("ASCE") else 25.0
+        """Unit weight of a slab that names none [kN/m3]: common practice under either family of codes.
+
+        With combinations of the job's own the units it is shown in tell the family.
+        """
+        own = self.basis.actions == "job" and self.units == "US"
+        return 150 * factor("pcf") if own or self.basis.actions.startswith("ASCE") else 25.0
 
     def length(self, value: float) -> str:
         """A length as a message says it."""

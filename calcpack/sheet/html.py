@@ -6,6 +6,7 @@ from that, so that a dollar sign in a job's title stays one.
 
 from __future__ import annotations
 
+import base64
 import re
 from collections.abc import Mapping, Sequence
 from html import escape
@@ -77,25 +78,25 @@ def _list(block: Mapping[str, Any]) -> str:
 
 def _line(block: Mapping[str, Any]) -> str:
     rows = [" ".join(row) for row in block["rows"]]
-    formula = (block["symbol"] + " = " if block["symbol"] else "") + " = ".join(rows[:1])
-    sets = [math_html(formula, display=True)]
-    lead = r"\quad = " if block["symbol"] else r"\quad "
-    sets += [math_html(lead + row, display=True) for row in rows[1:]]
+    sides = [block["symbol"], *rows] if block["symbol"] else rows
+    between = " = " if block["symbol"] else r" \qquad "
+    formula = math_html(between.join(sides))
     drawn = "from " + ", ".join(block["from"]) if block["from"] else ""
     side = "; ".join(filter(None, (block["cite"], block["origin"], drawn)))
     verdict = {True: "satisfied", False: "not satisfied", None: ""}[block["passes"]]
     return (
         f"<p><small>{text_html(block['no'])}</small>&ensp;{runs_html(block['says'])}"
         + (f"&ensp;<small>{text_html(side)}</small>" if side else "")
+        + ("&ensp;" if block["kind"] == "take" else "<br>&emsp;")
+        + formula
+        + (f"&ensp;<strong>{verdict}</strong>" if verdict else "")
         + "</p>"
-        + "".join(sets)
-        + (f"<p><strong>{verdict}</strong></p>" if verdict else "")
     )
 
 
 def _derivation(block: Mapping[str, Any]) -> str:
     return "".join(
-        f"<p>{runs_html(step['says'])}</p>" + "".join(math_html(row, display=True) for row in step["rows"])
+        f"<p>{runs_html(step['says'])}<br>&emsp;{'&emsp;'.join(math_html(row) for row in step['rows'])}</p>"
         for step in block["steps"]
     )
 
@@ -118,7 +119,7 @@ def _table(block: Mapping[str, Any]) -> str:
 
 def _ratios(block: Mapping[str, Any]) -> str:
     rows = "".join(
-        f"<tr><td>{runs_html(row['says'])}</td><td>{text_html(row['demand'])}</td>"
+        f"<tr><td align='left'>{runs_html(row['says'])}</td><td>{text_html(row['demand'])}</td>"
         f"<td>{text_html(row['resistance'])}</td><td>{row['ratio']:.2f}</td>"
         f"<td>{'satisfied' if row['passes'] else '<strong>not satisfied</strong>'}</td></tr>"
         for row in block["rows"]
@@ -129,32 +130,39 @@ def _ratios(block: Mapping[str, Any]) -> str:
 
 def _figure(block: Mapping[str, Any]) -> str:
     caption = f"<figcaption>{runs_html(block['caption'])}</figcaption>" if block["caption"] else ""
-    return f"<figure>{block['svg']}{caption}</figure>"
+    # Jupyter takes drawings out of the page of a notebook it does not trust yet, pictures it leaves
+    picture = base64.b64encode(block["svg"].encode()).decode()
+    return f'<figure><img alt="{escape(block["alt"])}" src="data:image/svg+xml;base64,{picture}">{caption}</figure>'
 
 
 def _columns(block: Mapping[str, Any]) -> str:
-    cells = "".join(f"<td valign='top'>{blocks_html(column)}</td>" for column in block["columns"])
+    cells = "".join(
+        f'<td valign="top" align="left">{blocks_html(column)}</td>' for column in block["columns"]
+    )
     return f"<table><tr>{cells}</tr></table>"
 
 
 def _signoff(block: Mapping[str, Any]) -> str:
     keys = ("role", "name", "licence", "date")
     rows = "".join(
-        "<tr>" + "".join(f"<td>{text_html(row[key])}</td>" for key in keys) + "</tr>" for row in block["rows"]
+        "<tr>" + "".join(f'<td align="left">{text_html(row[key])}</td>' for key in keys) + "</tr>"
+        for row in block["rows"]
     )
     return f"<table>{rows}</table>"
 
 
 def _facts(block: Mapping[str, Any]) -> str:
     rows = "".join(
-        f"<tr><th>{runs_html(label)}</th><td>{runs_html(value)}</td></tr>" for label, value in block["rows"]
+        f'<tr><th align="left">{runs_html(label)}</th><td align="left">{runs_html(value)}</td></tr>'
+        for label, value in block["rows"]
     )
     return f"<table>{rows}</table>"
 
 
 def _notation(block: Mapping[str, Any]) -> str:
     rows = "".join(
-        f"<tr><td>{math_html(latex)}</td><td>{runs_html(meaning)}</td><td>{text_html(unit)}</td></tr>"
+        f'<tr><td align="left">{math_html(latex)}</td><td align="left">{runs_html(meaning)}</td>'
+        f'<td align="left">{text_html(unit)}</td></tr>'
         for latex, meaning, unit in block["rows"]
     )
     return f"<table>{rows}</table>"

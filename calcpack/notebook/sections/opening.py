@@ -11,6 +11,10 @@ from calcpack.notebook.work import Work
 from calcpack.statics import Extreme
 
 _DESIGN = {"actual": "actual load shapes", "equivalent": "equivalent uniform loads"}
+_FOLDED = (
+    " A span's equivalent load holds what beams bring to it with every span loaded; single spans of those beams are "
+    "not placed apart from it."
+)
 CARRIED_FORWARD = {
     "shear": "equal end shear",
     "moment": "equal largest moment",
@@ -127,6 +131,7 @@ def state_basis(work: Work) -> None:
     items.append(
         f"Design follows the {_DESIGN[given.design_loads]}; the equivalent load carried forward is that of "
         f"{CARRIED_FORWARD[given.equivalent]}, as the job sets it."
+        + (_FOLDED if given.design_loads == "equivalent" and given.carried else "")
     )
     items += given.template.assumptions
     if work.study.stiffness is not None:
