@@ -105,6 +105,14 @@ def templates() -> None:
     print_templates(_console())
 
 
+@app.command()
+def loads() -> None:
+    """List the imposed loads of occupancies, standard by standard, with their sources."""
+    from calcpack.overview import print_loads
+
+    print_loads(_console())
+
+
 def main() -> None:
     """Run the command line; every error a user can cause ends in plain words and status 2."""
     try:

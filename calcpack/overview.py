@@ -12,6 +12,7 @@ from rich.progress import BarColumn, MofNCompleteColumn, Progress, TaskID, TextC
 from rich.table import Table
 from rich.text import Text
 
+from calcpack.actions import occupancy_tables
 from calcpack.figures import key_plan
 from calcpack.files import write_file
 from calcpack.framing import Frame, FramedBeam, PanelTransfer
@@ -225,6 +226,18 @@ def print_templates(console: Console) -> None:
             for path, leaf in _leaves(f"design.{key}", parameter):
                 default = "" if leaf.default is None else f" (default {leaf.default})"
                 console.print(Text(f"    {path}: {leaf.says}{default}"))
+
+
+def print_loads(console: Console) -> None:
+    """Print the imposed loads by occupancy, one table a standard, each value as the standard writes it."""
+    for table in occupancy_tables():
+        rows = [
+            [use.key, use.says, use.written[0], use.written[1] or "–", use.reduced or "yes", use.cite]
+            for use in table.uses
+        ]
+        heads = [(head, "left") for head in ("use", "says", "uniform", "point", "reduced for area", "clause")]
+        console.print(_table(table.name, heads, rows))
+        console.print(Text(f"{table.source}. Reduced for area: {table.reduction}.\n"))
 
 
 def _leaves(path: str, parameter: Parameter) -> Iterator[tuple[str, Parameter]]:
