@@ -10,7 +10,6 @@ from calcpack.sheet import (
     Expression,
     Line,
     Sheet,
-    choose,
     indexed,
     measured,
     number,
@@ -60,7 +59,7 @@ def state_least_depth(sheet: Sheet, materials: Materials, size: Size, span: Line
         "h_min",
         span / number(LEAST_DEPTH[held]) * (0.4 + number_in(materials.fy, "psi") / 100_000),
         "mm",
-        f"Depth below which deflections have to be worked out, {held} (f_y in psi)",
+        f"Depth below which deflections have to be worked out, {held} (strength in psi)",
         cite("Table 9.3.1.1, 9.3.1.1.1"),
         word="depth below which deflections have to be worked out",
     )
@@ -114,7 +113,7 @@ def state_gross(sheet: Sheet, materials: Materials, size: Size) -> Gross:
         "f_r",
         psi(7.5 * materials.lightweight * sqrt(number_in(materials.fc, "psi"))),
         "MPa",
-        "Modulus of rupture (f'c in psi)",
+        "Modulus of rupture (strength in psi)",
         cite("19.2.3.1"),
         us="psi",
     )
@@ -173,15 +172,13 @@ def state_effective_inertia(sheet: Sheet, materials: Materials, size: Size, gros
     )
     cracked = _cracked(sheet, size, gross, bent, name)
     part = (number(2) / 3 * cracking / moment) ** 2
+    whole = moment.value <= 2 / 3 * cracking.value
     return sheet.hence(
         name("I_e"),
-        choose(
-            moment <= number(2) / 3 * cracking,
-            gross.inertia,
-            cracked / (1 - part * (1 - cracked / gross.inertia)),
-        ),
+        gross.inertia.as_expression() if whole else cracked / (1 - part * (1 - cracked / gross.inertia)),
         "mm^4",
-        "Effective second moment of area",
+        f"Effective second moment of area; the moment is {'no more' if whole else 'more'} than 2/3 of the "
+        "cracking moment",
         cite("Table 24.2.3.5"),
     )
 

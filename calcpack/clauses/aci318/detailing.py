@@ -8,6 +8,7 @@ from calcpack.clauses.aci318.arrangement import Group
 from calcpack.clauses.aci318.flexure import BendingLines, forty_thousand, steel_stress
 from calcpack.clauses.aci318.materials import Checks, Materials, Size, cite, root
 from calcpack.clauses.aci318.strength import grade_factor
+from calcpack.clauses.aci318.strength import root as root_of
 from calcpack.sheet import (
     Expression,
     Line,
@@ -22,9 +23,17 @@ from calcpack.sheet import (
 )
 
 
+class Layer(NamedTuple):
+    """The bars of an outermost layer."""
+
+    diameter: Line
+    spacing: Line | None  # centre to centre; None for a single bar
+    checks: Checks
+
+
 def state_spacing(
     sheet: Sheet, materials: Materials, size: Size, group: Group, aggregate: Line, face: str, tag: str = ""
-) -> Checks:
+) -> Layer:
     """Clear distances of bars, and their spacing for crack control.
 
     Parameters
@@ -45,52 +54,61 @@ def state_spacing(
     diameter = sheet.take(
         name("d_b"), group.bar.diameter * 1000, "mm", f"Diameter of {group.bar.name}", group.bar.source
     )
-    most = max(group.layers)
-    room = size.web - 2 * (size.cover + size.stirrup)
-    checks: Checks = ()
-    if most > 1:
-        clear = sheet.require(
-            (room - most * diameter) / (most - 1)
-            >= greatest(quantity(1, "in"), diameter, number(4) / 3 * aggregate),
-            f"Clear distance of the {face} bars, {most} side by side",
-            cite("25.2.1"),
-        )
-        checks = ((f"clear distance, {face} bars", clear),)
-    if group.layers[0] > 1:
-        stress = sheet.hence(
-            name("f_s"), steel_stress(materials), "MPa", "Stress under service loads", cite("24.3.2.1"),
-            word="stress of the bars under service loads",
-        )  # fmt: skip
-        ratio = forty_thousand() / stress
-        cover = size.cover + size.stirrup
-        spread = sheet.require(
-            (room - diameter) / (group.layers[0] - 1)
-            <= least(
-                quantity(15, "in") * ratio - 2.5 * cover,
-                quantity(12, "in") * ratio,
-            ),
-            f"Spacing of the {face} bars for crack control",
-            cite("Table 24.3.2"),
-        )
-        checks = (*checks, (f"crack control, {face} bars", spread))
-    return checks
+    if group.layers[0] < 2:
+        return Layer(diameter, None, ())
+    spacing = sheet.hence(
+        name("s_b"),
+        (size.web - 2 * (size.cover + size.stirrup) - diameter) / (group.layers[0] - 1),
+        "mm",
+        f"Distance of the {face} bars from centre to centre, {group.layers[0]} side by side",
+        word="distance of bars, centre to centre",
+    )
+    clear = sheet.require(
+        spacing - diameter >= greatest(quantity(1, "in"), diameter, number(4) / 3 * aggregate),
+        f"Clear distance of the {face} bars",
+        cite("25.2.1"),
+    )
+    stress = sheet.hence(
+        name("f_s"), steel_stress(materials), "MPa", "Stress under service loads", cite("24.3.2.1"),
+        word="stress of the bars under service loads",
+    )  # fmt: skip
+    ratio = forty_thousand() / stress
+    spread = sheet.require(
+        spacing
+        <= least(quantity(15, "in") * ratio - 2.5 * (size.cover + size.stirrup), quantity(12, "in") * ratio),
+        f"Distance of the {face} bars for crack control",
+        cite("Table 24.3.2"),
+    )
+    checks = ((f"clear distance, {face} bars", clear), (f"crack control, {face} bars", spread))
+    return Layer(diameter, spacing, checks)
 
 
 class Development(NamedTuple):
     """A development length with its bar's diameter."""
 
     length: Line
-    diameter: Expression
+    diameter: Line
 
 
 def state_development(
-    sheet: Sheet, materials: Materials, size: Size, group: Group, *, top: bool, tag: str = ""
+    sheet: Sheet,
+    materials: Materials,
+    size: Size,
+    group: Group,
+    layer: Layer,
+    outermost: Line,
+    *,
+    top: bool,
+    tag: str = "",
 ) -> Development:
     """Development length of straight bars in tension; no credit for stirrups (K_tr = 0).
 
     Parameters
     ----------
     group : Group
+    layer : Layer
+    outermost : Line [mm]
+        Depth of the outermost layer.
     top : bool
         More than 12 in of fresh concrete below the bars.
     tag : str
@@ -101,19 +119,15 @@ def state_development(
     def name(symbol: str) -> str:
         return indexed(symbol, tag) if tag else symbol
 
-    diameter = measured(group.bar.diameter * 1000, "mm")
-    to_face = size.cover + size.stirrup + diameter / 2
-    if group.layers[0] > 1:
-        half = (size.web - 2 * (size.cover + size.stirrup) - diameter) / (2 * (group.layers[0] - 1))
-        confined: Expression = least(to_face, half)
-    else:
-        confined = to_face
+    edge: Expression = size.height - outermost
+    if layer.spacing is not None:
+        edge = least(edge, layer.spacing / 2)
     ratio = sheet.hence(
         name("kappa_b"),
-        least(confined / diameter, 2.5),
+        least(edge / layer.diameter, 2.5),
         "1",
-        f"Confinement of {group.bar.name}: least of cover and half the spacing over the diameter, K_tr = 0",
-        cite("25.4.2.3, 25.4.2.4"),
+        f"Confinement of {group.bar.name}: concrete to its centre, or half the distance, no stirrups counted",
+        cite("25.4.2.4"),
         word="confinement term of the development length",
     )
     psi_t = "1.3" if top else "1.0"
@@ -121,15 +135,23 @@ def state_development(
     psi_g = f"{grade_factor(materials.fy.value * 1000):g}"
     stress = number_in(materials.fy, "psi") / (materials.lightweight * root(materials.fc))
     factors = number(psi_t) * number("1.0") * number(psi_s) * number(psi_g)
+    plain = number(3) / 40 * stress * factors / ratio * layer.diameter
+    short = _plain_length(materials, ratio, layer, float(psi_t) * float(psi_s) * float(psi_g)) < 12 * 25.4
     length = sheet.hence(
         name("ell_d"),
-        greatest(number(3) / 40 * stress * factors / ratio * diameter, quantity(12, "in")),
+        greatest(plain, quantity(12, "in")) if short else plain,
         "mm",
-        f"Development length; ψt = {psi_t}, ψe = 1.0, ψs = {psi_s}, ψg = {psi_g} (f'c, f_y in psi)",
+        f"Development length; ψt = {psi_t}, ψe = 1.0, ψs = {psi_s}, ψg = {psi_g} (strengths in psi)",
         cite("Eq. (25.4.2.4a), Table 25.4.2.5"),
         word="development length",
     )
-    return Development(length, diameter)
+    return Development(length, layer.diameter)
+
+
+def _plain_length(materials: Materials, ratio: Line, layer: Layer, factors: float) -> float:
+    """Development length before the least of 12 in is looked at [mm]."""
+    fc, fy = materials.fc.value * 1000, materials.fy.value * 1000
+    return 3 / 40 * fy / root_of(fc) * factors / ratio.value * layer.diameter.value
 
 
 def is_small(group: Group) -> bool:
@@ -196,7 +218,7 @@ def state_end(sheet: Sheet, bending: BendingLines, development: Development, end
     words = {
         "confined": "their ends pressed on by the reaction",
         "support": "straight ends",
-        "inflection": "running on by d or 12 d_b",
+        "inflection": "running on by d or 12 bar diameters",
     }[end.kind]
     line = sheet.require(
         development.length <= reach,

@@ -112,7 +112,7 @@ def state_bending(
         name("epsilon_t"),
         number(0.003) * (outermost - c) / c,
         "1",
-        "Net tensile strain of the outermost bars at nominal strength",
+        "Net tensile strain of the outermost bars",
         cite("22.2.1.2, 22.2.2.1"),
     )
     ductile = sheet.require(
@@ -120,9 +120,12 @@ def state_bending(
         f"The section is tension-controlled ({demand.face} bars)",
         cite("9.3.3.1, Table 21.2.2"),
     )
+    factor: Expression = 0.65 + 0.25 * (strain - materials.yield_strain) / 0.003
+    if strain.value < materials.yield_strain.value:
+        factor = greatest(factor, 0.65)
     phi = sheet.hence(
         name("phi"),
-        least(0.90, greatest(0.65, 0.65 + 0.25 * (strain - materials.yield_strain) / 0.003)),
+        least(factor, 0.90),
         "1",
         "Strength reduction factor for bending",
         cite("Table 21.2.2"),
@@ -172,7 +175,7 @@ def _least_steel(
     name: Callable[[str], str],
 ) -> Checks:
     width: Expression | Line = size.web
-    words = "Least bending steel (f'c and f_y in psi)"
+    words = "Least bending steel (strengths in psi)"
     if demand.flange is not None:
         width = least(demand.flange, 2 * size.web)
         words += "; statically determinate, flange in tension"

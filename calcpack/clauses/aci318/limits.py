@@ -1,6 +1,6 @@
 """The bounds of ACI 318-19 within which these clauses hold, as data.
 
-One table feeds the guard (:func:`guard`), the sheet (:func:`limit_rows`) and the caps inside formulas
+One table feeds the guard (:func:`guard`), the sheet (:func:`limit_words`) and the caps inside formulas
 (:func:`bound`).
 """
 
@@ -54,10 +54,18 @@ LIMITS: tuple[Limit, ...] = (
     Limit("f'_c", "specified concrete strength", "least", 2500, "psi", "Table 19.2.1.1", "refuse"),
     Limit("f_y", "yield strength of the bars", "most", 100_000, "psi", "Table 20.2.2.4(a)", "refuse"),
     Limit("f_y", "yield strength of the bars", "least", 40_000, "psi", "20.2.1.3, ASTM A615", "refuse"),
-    Limit("root f'_c", "√f'c in shear and torsion", "most", 100, "psi", "22.5.3.1, 22.7.2.1", "cap"),
-    Limit("root f'_c", "√f'c in development", "most", 100, "psi", "25.4.1.4", "cap"),
+    Limit("root f'_c", "√f′c in shear and torsion", "most", 100, "psi", "22.5.3.1, 22.7.2.1", "cap"),
+    Limit("root f'_c", "√f′c in development", "most", 100, "psi", "25.4.1.4", "cap"),
     Limit("f_yt", "yield strength of stirrups in shear", "most", 60_000, "psi", "Table 20.2.2.4(a)", "cap"),
-    Limit("f_y least steel", "f_y in the least bending steel", "most", 80_000, "psi", "9.6.1.2", "cap"),
+    Limit(
+        "f_y least steel",
+        "yield strength in the least bending steel",
+        "most",
+        80_000,
+        "psi",
+        "9.6.1.2",
+        "cap",
+    ),
 )
 
 
@@ -130,17 +138,16 @@ def _psi(system: System) -> str | None:
     return "psi" if system == "US" else None
 
 
-def limit_rows(system: System) -> list[list[str]]:
-    """The table as a sheet shows it: what, bound, clause, what happens outside.
+def limit_words(system: System) -> str:
+    """The table as a sheet says it: what, bound, clause, what happens outside.
 
     Examples
     --------
-    >>> limit_rows("US")[0]
-    ['specified concrete strength', 'at least 2500\\xa0psi', 'Table 19.2.1.1', 'refused']
+    >>> limit_words("US").split("; ")[0]
+    'specified concrete strength at least 2500\\xa0psi (Table 19.2.1.1)'
     """
-    rows = []
+    words: dict[str, list[str]] = {"refuse": [], "cap": []}
     for limit in LIMITS:
         value = show(limit.base / 1000, "MPa", system, exact=system == "US", shown_in=_psi(system))
-        words = "refused" if limit.does == "refuse" else "taken as the bound"
-        rows.append([limit.says, f"at {limit.side} {value}", limit.cite, words])
-    return rows
+        words[limit.does].append(f"{limit.says} at {limit.side} {value} ({limit.cite})")
+    return f"{'; '.join(words['refuse'])}. Taken as the bound where it is more: {'; '.join(words['cap'])}."

@@ -66,22 +66,28 @@ def state_materials(sheet: Sheet, material: Material) -> Materials:
     lightweight = sheet.take(
         "lambda", 1.0, "1", "Normalweight concrete", f"{place} unit_weight", cite("19.2.4.3")
     )
-    ec = sheet.take("E_c", material.modulus / 1000, "MPa", "Modulus of the concrete", place, cite("19.2.2.1"))
+    ec = sheet.take(
+        "E_c", material.modulus / 1000, "MPa", "Modulus of the concrete", place, cite("19.2.2.1"), given=False
+    )
     fy = sheet.take("f_y", values["fy"], "MPa", "Yield strength of the bars", f"{place} bars")
     es = sheet.take("E_s", values["Es"], "MPa", "Modulus of the bars", f"{place} bars", cite("20.2.2.2"))
-    step = 0.05 * (number_in(fc, "psi") - 4000) / 1000
+    block: Expression = 0.85 - 0.05 * (number_in(fc, "psi") - 4000) / 1000
+    if fc.value * 1000 <= 4000 * PSI:
+        block = least(block, 0.85)
+    elif fc.value * 1000 >= 8000 * PSI:
+        block = greatest(block, 0.65)
     beta = sheet.hence(
         "beta_1",
-        greatest(0.65, least(0.85, 0.85 - step)),
+        block,
         "1",
-        "Depth of the stress block over that to the neutral axis (f'c in psi)",
+        "Depth of the stress block over that to the neutral axis (strength in psi)",
         cite("Table 22.2.2.4.3"),
     )
     fyt = sheet.hence(
         "f_yt",
         least(fy, quantity(round(bound("f_yt") / PSI), "psi")),
         "MPa",
-        "Yield strength of the stirrups, of the same grade, as far as shear may count on it",
+        "Yield strength of the stirrups, of the same grade, that shear may count on",
         cite("Table 20.2.2.4(a)"),
     )
     strain = sheet.hence(

@@ -58,7 +58,7 @@ def state_concrete(
         "V_1",
         psi(materials.lightweight * root(materials.fc)) * size.web * depth,
         "kN",
-        "λ√f'c over the web (f'c in psi), of which the limits of shear are multiples",
+        "λ√f′c over the web (strength in psi); limits of shear are multiples of it",
         cite("22.5.3.1"),
         word="shear of λ√f'c over the web",
     )
@@ -76,7 +76,7 @@ def state_concrete(
         "lambda_s",
         least(sqrt(2 / (1 + number_in(depth, "in") / 10)), 1),
         "1",
-        "Size effect, less than the least stirrups being there (d in inches)",
+        "Size effect, as there are less than the least stirrups (depth in inches)",
         cite("22.5.5.1.3"),
     )
     strength = sheet.hence(
@@ -112,7 +112,7 @@ def state_least_stirrups(
         * stirrups.spacing
         / fyt,
         "mm^2",
-        "Least stirrup area at this spacing (f'c in psi)",
+        "Least stirrup area at this spacing (strength in psi)",
         cite("9.6.3.4"),
         word="least shear reinforcement",
     )
@@ -162,7 +162,7 @@ def state_zone(
         f"V_s{index}",
         least(stirrups.area * materials.fyt * depth / stirrups.spacing, 8 * unit),
         "kN",
-        f"Shear carried by the stirrups {words}, at most 8λ√f'c b d",
+        f"Shear carried by the stirrups {words}",
         cite("22.5.8.5.3, 22.5.1.2"),
     )
     design = sheet.hence(
@@ -178,7 +178,7 @@ def state_zone(
     part, most = (2, 24) if wide else (4, 12)
     along = sheet.require(
         stirrups.spacing <= least(depth / part, quantity(most, "in")),
-        f"Spacing of the stirrups {words}; V_s needed is {'at most' if wide else 'above'} 4λ√f'c b d",
+        f"Spacing of the stirrups {words}; they have to carry {'no more' if wide else 'more'} than 4λ√f′c bd",
         cite("Table 9.7.6.2.2"),
     )
     checks: Checks = ((f"shear, {words}", strong), (f"stirrup spacing, {words}", along))
@@ -219,7 +219,7 @@ def state_torsion(sheet: Sheet, materials: Materials, size: Size, phi: Line) -> 
         "T_th",
         psi(materials.lightweight * root(materials.fc)) * area**2 / edge,
         "kN*m",
-        "Threshold torsion of the web, flanges left out (f'c in psi)",
+        "Threshold torsion of the web, flanges left out (strength in psi)",
         cite("Table 22.7.4.1(a)"),
         word="threshold torsion",
     )

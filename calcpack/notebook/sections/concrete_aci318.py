@@ -7,16 +7,16 @@ from typing import Literal
 
 from calcpack.clauses.aci318.flange import state_flange, state_given_flange
 from calcpack.clauses.aci318.flexure import Demand, state_bending
-from calcpack.clauses.aci318.limits import limit_rows
+from calcpack.clauses.aci318.limits import limit_words
 from calcpack.clauses.aci318.materials import Size, state_cover, state_materials
-from calcpack.figures import capacity_figure, section_figure
+from calcpack.figures import section_figure
 from calcpack.notebook.sections.checks import state_checks
 from calcpack.notebook.sections.concrete_aci318_bars import state_bars
 from calcpack.notebook.sections.concrete_aci318_deflection import state_deflections
 from calcpack.notebook.sections.concrete_aci318_design import Design, Face, settle, shortest
 from calcpack.notebook.sections.concrete_aci318_lines import ENVELOPE, Written
 from calcpack.notebook.sections.concrete_aci318_rehearsal import draft_of, ratio_rows
-from calcpack.notebook.sections.concrete_aci318_shear import SAMPLES, state_shear
+from calcpack.notebook.sections.concrete_aci318_shear import state_shear
 from calcpack.notebook.study import Study
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line
@@ -161,17 +161,15 @@ def _state_section(work: Work, design: Design) -> Written:
     """Limits, materials, cover, effective flange."""
     sheet = work.sheet
     sheet.section("Materials, section and cover")
-    sheet.table(
-        ["limit of validity", "bound", "clause", "outside"],
-        limit_rows(work.study.system),
-        caption="Bounds within which the clauses of this sheet hold.",
-    )
+    sheet.text(f"Bounds of these clauses: {limit_words(work.study.system)}", role="note")
     materials = state_materials(sheet, design.material)
     size = _size(work, design)
     written = Written(work, design, materials, size, _clear_span(work, design))
     largest = max(face.group.bar.diameter for face in (design.bottom, design.top))
     exposure = work.given.design["exposure"]
-    written.note(state_cover(sheet, size.cover, exposure, design.stirrup.diameter, largest))
+    cover = state_cover(sheet, size.cover, exposure, design.stirrup.diameter, largest)
+    # Cover is usually the least one exactly; as a ratio of 1 it would hide what governs.
+    written.note(tuple((name, line) for name, line in cover if not line.passes))
     if design.section.shape == "tee":
         _flange(written)
     return written
@@ -255,7 +253,6 @@ def state_bending_strength(written: Written) -> None:
     for name, face in (("bottom", design.bottom), ("top", design.top)):
         if face.task is not None:
             _bending(written, name, face)
-    _moment_figure(written)
 
 
 def _bending(written: Written, name: str, face: Face) -> None:
@@ -276,22 +273,3 @@ def _bending(written: Written, name: str, face: Face) -> None:
     lines = state_bending(sheet, written.materials, size, face.group, face.pressed, face.state, demand, tag)
     written.bent[name] = lines
     written.note(lines.checks)
-
-
-def _moment_figure(written: Written) -> None:
-    work, design, given = written.work, written.design, written.work.given
-    band = work.study.analysed.band("moment")
-    strengths = [face.state.design if face.state is not None else 0.0 for face in (design.bottom, design.top)]
-    figure = capacity_figure(
-        given.length,
-        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
-        "moment",
-        (band.upper.sample(SAMPLES), band.lower.sample(SAMPLES)),
-        [(0.0, given.length, strengths[0], strengths[1])],
-        work.study.system,
-        fixed=given.fixed,
-        mark=given.mark,
-    )
-    written.sheet.figure(
-        figure, "Moments against the design strength; the hogging one as far as the top bars reach."
-    )

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from calcpack.clauses.aci318.detailing import (
+    Layer,
     state_development,
     state_end,
     state_spacing,
@@ -10,10 +11,13 @@ from calcpack.clauses.aci318.detailing import (
 )
 from calcpack.clauses.aci318.materials import cite
 from calcpack.clauses.aci318.strength import INCH
-from calcpack.figures import bar_layout
+from calcpack.figures import Figure, bar_layout, capacity_figure
 from calcpack.notebook.sections.concrete_aci318_design import worst_end
-from calcpack.notebook.sections.concrete_aci318_lines import Written
+from calcpack.notebook.sections.concrete_aci318_lines import ENVELOPE, Written
 from calcpack.sheet import Line
+
+SAMPLES = 120
+WIDTH = 150.0  # of the diagrams [mm]
 
 
 def state_bars(written: Written) -> None:
@@ -29,12 +33,13 @@ def state_bars(written: Written) -> None:
         f"{written.mark} design.aggregate" if given else "chosen by the template, common practice",
         word="largest size of the aggregate",
     )
+    layers: dict[str, Layer] = {}
     for name, face in (("bottom", design.bottom), ("top", design.top)):
         if face.task is not None:
-            checks = state_spacing(
+            layers[name] = state_spacing(
                 sheet, written.materials, written.size, face.group, aggregate, name, written.tag(name)
             )
-            written.note(checks)
+            written.note(layers[name].checks)
     if design.cage.depth > 36 * INCH:
         sheet.text(
             "The beam is deeper than 36 in: skin reinforcement stands along both sides over half the depth "
@@ -42,18 +47,20 @@ def state_bars(written: Written) -> None:
             role="caution",
         )
     if "bottom" in written.bent:
-        _bottom(written)
-    top = _top(written) if "top" in written.bent else None
+        _bottom(written, layers["bottom"])
+    top = _top(written, layers["top"]) if "top" in written.bent else None
     _figure(written, top)
 
 
-def _bottom(written: Written) -> None:
+def _bottom(written: Written, layer: Layer) -> None:
     design, bending = written.design, written.bent["bottom"]
     development = state_development(
         written.sheet,
         written.materials,
         written.size,
         design.bottom.group,
+        layer,
+        bending.outermost,
         top=False,
         tag=written.tag("bottom"),
     )
@@ -69,14 +76,16 @@ def _bottom(written: Written) -> None:
     )
 
 
-def _top(written: Written) -> Line | None:
+def _top(written: Written, layer: Layer) -> Line | None:
     """Development of the top bars; how far they run, unless through."""
     sheet, design, bending = written.sheet, written.design, written.bent["top"]
     development = state_development(
-        sheet,
+        written.sheet,
         written.materials,
         written.size,
         design.top.group,
+        layer,
+        bending.outermost,
         top=design.top_is_high,
         tag=written.tag("top"),
     )
@@ -92,8 +101,8 @@ def _top(written: Written) -> Line | None:
             written.note(((f"development, overhang {stretch.number}", line),))
     if design.through:
         sheet.text(
-            "The top bars run through: combinations hog over most of a span, or the bars are counted in "
-            "compression there.",
+            "The top bars run through: there are but two, or combinations hog over most of a span, or the "
+            "bars are counted in compression there.",
             role="note",
         )
         return None
@@ -111,7 +120,7 @@ def _top(written: Written) -> Line | None:
         max(reaches),
         "m",
         "How far from a support's centre a span hogs, at most",
-        "analysis, envelope of the strength combinations",
+        ENVELOPE,
         given=False,
         word="reach of the hogging moment",
     )
@@ -150,6 +159,7 @@ def _figure(written: Written, top: Line | None) -> None:
         )
         for zone in design.zones
     ]
+    written.sheet.figure(_moments(written, top), "Moments against the design strength of the bars there.")
     figure = bar_layout(
         given.length,
         [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
@@ -158,6 +168,7 @@ def _figure(written: Written, top: Line | None) -> None:
         work.study.system,
         fixed=given.fixed,
         mark=given.mark,
+        width_mm=WIDTH,
     )
     written.sheet.figure(figure, "Bars and stirrup zones; not a bending schedule.")
 
@@ -176,4 +187,50 @@ def _over_supports(written: Written, reach: float) -> list[tuple[float, float]]:
                 found[-1] = (found[-1][0], max(end, found[-1][1]))
             else:
                 found.append((start, end))
+    return found
+
+
+def _moments(written: Written, top: Line | None) -> Figure:
+    """Moments and their design strength, the hogging one as far as the top bars lie."""
+    work, design, given = written.work, written.design, written.work.given
+    band = work.study.analysed.band("moment")
+    sagging = design.bottom.state.design if design.bottom.state is not None else 0.0
+    hogging = design.top.state.design if design.top.state is not None else 0.0
+    less = hogging
+    if top is not None and design.top.task is not None:
+        less = design.top.task.state(design.running).design
+    capacity: list[tuple[float, ...]] = []
+    place = 0.0
+    for start, end in _over_supports(written, top.value) if top is not None else []:
+        if start > place:
+            capacity.append((place, start, sagging, less))
+        capacity.append((start, end, sagging, hogging))
+        place = end
+    if place < given.length:
+        capacity.append((place, given.length, sagging, less))
+    return capacity_figure(
+        given.length,
+        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+        "moment",
+        (band.upper.sample(SAMPLES), band.lower.sample(SAMPLES)),
+        capacity,
+        work.study.system,
+        compared=_between_faces(written),
+        fixed=given.fixed,
+        mark=given.mark,
+        width_mm=WIDTH,
+    )
+
+
+def _between_faces(written: Written) -> list[tuple[float, float]]:
+    """The beam without what lies over its columns, whose faces decide."""
+    half, length = written.design.actions.half, written.work.given.length
+    columns = [bearing.at for bearing in written.work.given.bearings if bearing.kind == "column"]
+    found, place = [], 0.0
+    for at in columns if half else []:
+        if at - half > place:
+            found.append((place, at - half))
+        place = at + half
+    if place < length:
+        found.append((place, length))
     return found

@@ -359,13 +359,13 @@ def _faces(
         top = first.pressed
         how.append(f"top bars: {top.words}, as the span section needs them in compression")
     lower, upper = _face(below, bottom, top, sagging), _face(above, top, bottom, hogging)
-    through = lower.pressed is not None or (
-        upper.task is not None
-        and any(
+    spans = [each for each in actions.stretches if not each.overhang]
+    through = lower.pressed is not None
+    if upper.task is not None and not through:
+        through = top.count <= 2 or any(
             actions.hogging_reach(each, True) + actions.hogging_reach(each, False) >= 0.7 * each.length
-            for each in actions.stretches
+            for each in spans
         )
-    )
     return lower, upper, through
 
 

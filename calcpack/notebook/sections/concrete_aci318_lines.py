@@ -10,7 +10,7 @@ from calcpack.notebook.sections.concrete_aci318_design import Design
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line, Sheet
 
-ENVELOPE = "analysis, envelope of the strength combinations"
+ENVELOPE = "analysis, strength envelope"
 
 
 @dataclass

@@ -114,6 +114,7 @@ def _figure(written: Written, strengths: dict[float, Line]) -> None:
         compared=compared(written),
         fixed=given.fixed,
         mark=given.mark,
+        width_mm=150.0,
     )
     written.sheet.figure(figure, "Shear against its design strength, between the critical sections.")
 
@@ -147,8 +148,8 @@ def _zones(written: Written, strengths: dict[float, Line]) -> None:
         [
             ("stirrup zone", "left"),
             ("spacing", "right"),
-            ("largest V_u", "right"),
-            ("φV_n", "right"),
+            ("largest shear", "right"),
+            ("design strength", "right"),
             ("ratio", "right"),
         ],
         rows,
