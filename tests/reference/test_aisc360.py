@@ -1,6 +1,6 @@
 """AISC 360-22 against the printed tables and examples of the Manual; all figures recalled from memory.
 
-Table 3-2   AISC Steel Construction Manual, 15th ed., Table 3-2, F_y = 50 ksi: φM_p and M_p/Ω [kip-ft], L_p and
+Table 3-2   AISC Steel Construction Manual, 15th ed., F_y = 50 ksi: φM_p and M_p/Ω [kip-ft], L_p and
             L_r [ft], φV_n and V_n/Ω [kip]. The 360-22 equations behind it are those of 360-16. Printed to
             three figures, from dimensions that Table 1-1 rounds: 1 % of each is allowed.
 Table 3-10  the same edition, φM_n at unbraced lengths between L_p and L_r, C_b = 1.

@@ -1,8 +1,8 @@
 """A beam that buckles sideways: own finite elements for u and φ, an eigenvalue; no code of the clauses.
 
 The energy of a doubly symmetric beam loaded at its shear centre, u sideways and φ the twist, is
-½ ∫ (E I_y u''² + E C_w φ''² + G J φ'²) dx + λ ∫ M u'' φ dx; at the critical λ it has no minimum any more. Both
-u and φ are cubic on each element, with their slopes as unknowns.
+½ ∫ (E I_y u''² + E C_w φ''² + G J φ'²) dx + λ ∫ M u'' φ dx; at the critical λ it has no minimum any more.
+Both u and φ are cubic on each element, with their slopes as unknowns.
 """
 
 from __future__ import annotations
@@ -64,10 +64,7 @@ def critical_factor(length, bending, warping, torsion, moment, *, elements=24, h
             coupled = moment((element + place) * h) * np.outer(bend, value) * dx
             load[np.ix_(u, twist)] += coupled
             load[np.ix_(twist, u)] += coupled.T
-    if tip:
-        fixed = {0, 1, 2, 3}
-    else:
-        fixed = {4 * node + each for node in (0, elements, *held) for each in (0, 2)}
+    fixed = {0, 1, 2, 3} if tip else {4 * node + each for node in (0, elements, *held) for each in (0, 2)}
     free = [each for each in range(4 * nodes) if each not in fixed]
     # load and stiffness change places: stiffness is definite, the largest eigenvalue is 1 / λ
     largest = eigh(load[np.ix_(free, free)], stiff[np.ix_(free, free)], eigvals_only=True)[-1]

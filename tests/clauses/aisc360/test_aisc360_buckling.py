@@ -1,4 +1,4 @@
-"""Lateral-torsional buckling against finite elements of its own: the equation, and C_b of the moment diagrams."""
+"""Lateral-torsional buckling against own finite elements: the equation, and C_b of the moment diagrams."""
 
 from __future__ import annotations
 
