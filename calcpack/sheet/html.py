@@ -131,8 +131,8 @@ def _ratios(block: Mapping[str, Any]) -> str:
 def _figure(block: Mapping[str, Any]) -> str:
     caption = f"<figcaption>{runs_html(block['caption'])}</figcaption>" if block["caption"] else ""
     # Jupyter takes drawings out of the page of a notebook it does not trust yet, pictures it leaves
-    picture = base64.b64encode(block["svg"].encode()).decode()
-    return f'<figure><img alt="{escape(block["alt"])}" src="data:image/svg+xml;base64,{picture}">{caption}</figure>'
+    source = "data:image/svg+xml;base64," + base64.b64encode(block["svg"].encode()).decode()
+    return f'<figure><img alt="{escape(block["alt"])}" src="{source}">{caption}</figure>'
 
 
 def _columns(block: Mapping[str, Any]) -> str:
