@@ -12,8 +12,8 @@ from calcpack.statics import Extreme
 
 _DESIGN = {"actual": "actual load shapes", "equivalent": "equivalent uniform loads"}
 _FOLDED = (
-    " A span's equivalent load holds what beams bring to it with every span loaded; single spans of those beams "
-    "are not placed apart from it."
+    " A span's equivalent load holds what beams bring to it with every span loaded; single spans of those "
+    "beams are not placed apart from it."
 )
 CARRIED_FORWARD = {
     "shear": "equal end shear",
