@@ -11,11 +11,11 @@ import numpy as np
 from calcpack.actions import AnalysedBeam, CombinationResult
 from calcpack.clauses.en1993 import bearing as local
 from calcpack.clauses.en1993 import buckling
-from calcpack.clauses.en1993.rules import OVERHANG, Curves, LoadHeight
+from calcpack.clauses.en1993.rules import LARGEST_DIAGRAM, OVERHANG, Curves, LoadHeight
 from calcpack.clauses.en1993.section import Profile
 from calcpack.clauses.en1993.segments import Segment
 from calcpack.clauses.steel import Arrangement, SegmentMoments, arrangements, segment_moments
-from calcpack.statics import Curve, Extreme, PointLoad
+from calcpack.statics import Curve, PointLoad
 
 SAMPLES = 240
 PLACES = 1e-6  # [m] within which two forces stand at one place
@@ -30,7 +30,7 @@ class Buckling(NamedTuple):
     moments: SegmentMoments
     demand: float  # [kNm], by size
     length: float  # [m]
-    diagram: float  # C1
+    diagram: float  # C1, or the factor of the held top flange
     share: float  # 1/C1² by the energy of the half wave
     twisting: float  # [kN]
     load: float  # C2
@@ -66,7 +66,7 @@ class Beside(NamedTuple):
 class LocalForce(NamedTuple):
     """A force on a flange, and the web under it."""
 
-    says: str
+    support: int | None  # counted from 0 along the beam; None for a point load
     at: float  # [m]
     force: float  # [kN]
     combination: str
@@ -230,11 +230,13 @@ def buckling_of(
     scale = max(abs(band.largest.value), abs(band.smallest.value))
     worst = []
     for part in parts:
-        tried = [
-            checked
-            for each in arrangements(analysed, part.start, part.end)
-            if (checked := _checked(profile, analysed, part, each, conditions)).demand > NOTHING * scale
-        ]
+        tried = []
+        for each in arrangements(analysed, part.start, part.end):
+            moments = segment_moments(each.moment, part.start, part.end)
+            if part.held_top:
+                moments = moments._replace(largest=moments.hogging)
+            if abs(moments.largest.value) > NOTHING * scale:
+                tried.append(_checked(profile, analysed, part, each, moments, conditions))
         if tried:
             worst.append(max(tried, key=lambda each: round(each.ratio, 12)))
     return tuple(worst)
@@ -245,35 +247,39 @@ def _checked(
     analysed: AnalysedBeam,
     part: Segment,
     arrangement: Arrangement,
+    moments: SegmentMoments,
     conditions: Conditions,
 ) -> Buckling:
-    moments = segment_moments(arrangement.moment, part.start, part.end)
-    if part.only_hogging:
-        moments = hogging_only(moments)
     demand = abs(moments.largest.value)
     height = height_of(profile, conditions.load_height)
-    length, diagram, share, twisting = part.length, 1.0, 1.0, 0.0
+    length, diagram, share, twisting, load = part.length, 1.0, 1.0, 0.0, 0.0
+    where = conditions.load_height
     if part.free_tip:
-        length *= OVERHANG[conditions.load_height == "top" and not part.only_hogging]
+        length *= OVERHANG[where == "top"]
+        critical = buckling.critical_moment(profile, length, diagram, 0.0)
+    elif part.held_top:
+        diagram = buckling.held_factor(profile, arrangement.moment, part.start, part.end, length)
+        critical = diagram * sum(buckling.held_stiffness(profile, length)) / profile.shape.depth
     else:
-        if demand and not conditions.diagram:
-            share = buckling.wave_share(arrangement.moment, part.start, part.end, demand, part.only_hogging)
-            diagram = min(buckling.quarter_points(moments), 1 / share**0.5)
+        if conditions.diagram is None:
+            share = buckling.wave_share(arrangement.moment, part.start, part.end, demand)
+            diagram = min(LARGEST_DIAGRAM, buckling.quarter_points(moments), 1 / share**0.5)
         else:
-            diagram = conditions.diagram or 1.0
+            diagram = conditions.diagram
         loads = [
             (load, factor)
             for each, factor in zip(analysed.sets, arrangement.factors, strict=True)
             if factor
             for load in each.loads
         ]
-        if height and not part.only_hogging:
-            twisting = max(buckling.twisting_load(loads, part.start, part.end), 0.0)
-    load = buckling.load_factor(diagram if height > 0 else 1.0, length, twisting, demand)
-    critical = buckling.critical_moment(profile, length, diagram, load * height)
+        if height:
+            twisting = max(buckling.twisting_load(loads, part.start, part.end, above=height > 0), 0.0)
+        load = buckling.load_factor(diagram if height > 0 else 1.0, length, twisting, demand)
+        critical = buckling.critical_moment(profile, length, diagram, load * height)
     slenderness = (profile.modulus_of_section * profile.strength / critical) ** 0.5
     alpha = buckling.imperfection(profile, conditions.curves)[1]
-    found = buckling.reduction(slenderness, alpha, conditions.curves, profile.factors, diagram)
+    even = 1.0 if part.held_top else diagram
+    found = buckling.reduction(slenderness, alpha, conditions.curves, profile.factors, even)
     resistance = found.reduced * profile.modulus_of_section * profile.strength / profile.factors.gamma_M1
     return Buckling(
         part, arrangement, moments, demand, length, diagram, share, twisting, load,
@@ -286,26 +292,6 @@ def height_of(profile: Profile, where: LoadHeight) -> float:
     return {"top": 0.5, "centre": 0.0, "bottom": -0.5}[where] * profile.shape.depth
 
 
-def hogging_only(moments: SegmentMoments) -> SegmentMoments:
-    """The diagram with its sagging parts taken as zero: there the top flange, which is held, is compressed.
-
-    Bottom flange in tension steadies the beam, so that leaving it out is on the safe side.
-    """
-
-    def below(value: float) -> float:
-        return min(value, 0.0)
-
-    return moments._replace(
-        first=below(moments.first),
-        quarter=below(moments.quarter),
-        middle=below(moments.middle),
-        three_quarters=below(moments.three_quarters),
-        last=below(moments.last),
-        largest=moments.hogging,
-        sagging=Extreme(0.0, moments.start),
-    )
-
-
 def local_forces(
     profile: Profile, analysed: AnalysedBeam, conditions: Conditions, fixed: tuple[bool, bool]
 ) -> tuple[LocalForce, ...]:
@@ -315,7 +301,7 @@ def local_forces(
         found += _reactions(profile, analysed, conditions, fixed)
     if conditions.bears_at_loads:
         found += _point_loads(profile, analysed, conditions)
-    return tuple(sorted(found, key=lambda each: (each.at, each.says)))
+    return tuple(sorted(found, key=lambda each: each.at))
 
 
 def _reactions(
@@ -337,9 +323,7 @@ def _reactions(
             beyond = max(to_end - conditions.bearing_length / 2, 0.0)
         force = result.reactions_max[number]
         if force > 0:
-            found.append(
-                _force(profile, analysed, conditions, f"support {number + 1}", at, force, result, beyond)
-            )
+            found.append(_force(profile, analysed, conditions, number, at, force, result, beyond))
     return found
 
 
@@ -372,7 +356,7 @@ def _point_loads(profile: Profile, analysed: AnalysedBeam, conditions: Condition
         to_end = min(at, analysed.line.length - at)
         beyond = max(to_end - conditions.bearing_length / 2, 0.0) if to_end < profile.web_depth else None
         if force > 0:
-            found.append(_force(profile, analysed, conditions, "point load", at, force, result, beyond))
+            found.append(_force(profile, analysed, conditions, None, at, force, result, beyond))
     return found
 
 
@@ -380,7 +364,7 @@ def _force(
     profile: Profile,
     analysed: AnalysedBeam,
     conditions: Conditions,
-    says: str,
+    support: int | None,
     at: float,
     force: float,
     result: CombinationResult,
@@ -391,7 +375,7 @@ def _force(
     if moment < NOTHING * max(abs(band.largest.value), abs(band.smallest.value)):
         moment = 0.0
     web = local.bearing(profile, conditions.bearing_length, beyond)
-    return LocalForce(says, at, force, result.combination.name, moment, beyond, web)
+    return LocalForce(support, at, force, result.combination.name, moment, beyond, web)
 
 
 def _value(curve: Curve, at: float) -> float:

@@ -195,15 +195,15 @@ def force_beside_moment(
     given: ProfileLines,
     partial: Partial,
     found: LocalForce,
-    resistance: Line | None,
     says: str,
+    lines: BearingLines | None = None,
 ) -> Line:
     """A local force together with the bending moment at its place.
 
     Parameters
     ----------
-    resistance : Line or None
-        F_Rd, where a line holds it already; else the value worked out for this place is brought in.
+    lines : BearingLines, optional
+        Force and resistance, where lines hold them already; else the values worked out are brought in.
 
     Source: EN 1993-1-5:2006, 7.2(1) (7.2) with 4.6(1), elastic section modulus.
 
@@ -214,20 +214,22 @@ def force_beside_moment(
     >>> sheet, beam = Sheet("B1"), uniform(5.7, 22.28, Conditions())
     >>> sheet.section("Bearing")
     >>> given, partial = take_profile(sheet, IPE_330), take_factors(sheet, IPE_330)
-    >>> force_beside_moment(sheet, given, partial, beam.forces[0], None, "at support 1").passes
+    >>> force_beside_moment(sheet, given, partial, beam.forces[0], "at support 1").passes
     True
     """
-    force = sheet.take(
-        "F_Ed,2", found.force, "kN", f"Force {says}", f"analysis, {found.combination}", given=False
-    )
-    moment = sheet.take(
-        "M_Ed,2", found.moment, "kN*m", "Moment there, by size", "analysis, envelope", given=False
-    )
-    if resistance is None:
+    if lines is None:
+        force = sheet.take(
+            "F_Ed,2", found.force, "kN", f"Force {says}", f"analysis, {found.combination}", given=False
+        )
         resistance = sheet.take(
             "F_Rd,2", found.bearing.resistance, "kN", "Resistance of the web there", "as in the table",
             f"{PLATED} 6.2(1)", given=False,
         )  # fmt: skip
+    else:
+        force, resistance = lines.force, lines.resistance
+    moment = sheet.take(
+        "M_Ed,2", found.moment, "kN*m", f"Moment {says}, by size", "analysis, envelope", given=False
+    )
     bent = sheet.hence(
         "eta_1",
         moment / (given.W_el * given.f_y / partial.gamma_M0),

@@ -8,12 +8,13 @@ from calcpack.clauses.en1993.buckling import imperfection
 from calcpack.clauses.en1993.design import Buckling, Conditions
 from calcpack.clauses.en1993.lines_profile import Partial, ProfileLines
 from calcpack.clauses.en1993.lines_section import modulus_line
-from calcpack.clauses.en1993.rules import CODE, CURVE_CITE, OVERHANG, OVERHANG_CITE
+from calcpack.clauses.en1993.rules import CODE, CURVE_CITE, LARGEST_DIAGRAM, OVERHANG, OVERHANG_CITE
 from calcpack.clauses.en1993.section import Profile
 from calcpack.sheet import PI, Expression, Line, Sheet, least, number, sqrt
 
 SERNA = "Serna et al., J. Constr. Steel Res. 62 (2006), 566-580 (from memory)"
 ENERGY = "energy of one half sine wave; Timoshenko and Gere, ch. 6"
+HELD = "energy of sixteen half waves of twist; Trahair, Flexural-torsional buckling, ch. 8"
 CRITICAL = "NCCI SN003b (1), k = kw = 1; ENV 1993-1-1 (F.2) (from memory)"
 
 
@@ -22,7 +23,7 @@ class Critical(NamedTuple):
 
     demand: Line
     length: Line
-    diagram: Line  # C1
+    diagram: Line | None  # C1; none where the top flange is held
     load: Line | None  # C2, where the load's height counts
     critical: Line
 
@@ -64,20 +65,13 @@ def critical(
             "C_1", 1.0, "1", "Diagram factor, on the safe side for an overhang", "template", OVERHANG_CITE
         )
     else:
-        own = abs(part.length - (part.end - part.start)) < 1e-9
-        length = sheet.take(
-            "L_cr",
-            part.length,
-            "m",
-            "Length between points held sideways and against twist",
-            "segment" if own else f"{origin}.unbraced_length",
-            word="buckling length",
-            given=False,
-        )
+        length = _length(sheet, found, origin)
+        if part.held_top:
+            return _held(sheet, given, found, demand, length, arrangement)
         diagram = (
-            sheet.take("C_1", conditions.diagram, "1", "Diagram factor, given", f"{origin}.C1")
-            if conditions.diagram
-            else _diagram(sheet, demand, found, arrangement)
+            _diagram(sheet, demand, found, arrangement)
+            if conditions.diagram is None
+            else sheet.take("C_1", conditions.diagram, "1", "Diagram factor, given", f"{origin}.C1")
         )
     load, term = None, None
     if found.height:
@@ -94,14 +88,7 @@ def critical(
             given=False,
         )
         term = load * height
-    euler = sheet.hence(
-        "N_cr,z",
-        PI**2 * given.E * given.I_z / length**2,
-        "kN",
-        "Critical force about the weak axis over this length",
-        "Euler",
-        word="critical force, weak axis",
-    )
+    euler = _euler(sheet, given, length)
     inside: Expression = given.I_w / given.I_z + given.G * given.I_t / euler
     root = sqrt(inside + term**2) - term if term is not None else sqrt(inside)
     value = sheet.hence(
@@ -113,6 +100,59 @@ def critical(
         word="elastic critical moment",
     )
     return Critical(demand, length, diagram, load, value)
+
+
+def _euler(sheet: Sheet, given: ProfileLines, length: Line) -> Line:
+    return sheet.hence(
+        "N_cr,z",
+        PI**2 * given.E * given.I_z / length**2,
+        "kN",
+        "Critical force about the weak axis over this length",
+        "Euler",
+        word="critical force, weak axis",
+    )
+
+
+def _length(sheet: Sheet, found: Buckling, origin: str) -> Line:
+    part = found.segment
+    own = abs(part.length - (part.end - part.start)) < 1e-9
+    return sheet.take(
+        "L_cr",
+        part.length,
+        "m",
+        "Length between points where the bottom flange is held"
+        if part.held_top
+        else "Length between points held sideways and against twist",
+        "segment" if own else f"{origin}.unbraced_length",
+        word="buckling length",
+        given=False,
+    )
+
+
+def _held(
+    sheet: Sheet, given: ProfileLines, found: Buckling, demand: Line, length: Line, arrangement: str
+) -> Critical:
+    """The top flange held: the bottom flange buckles as the beam twists about the held one."""
+    factor = sheet.take(
+        "C_h",
+        found.diagram,
+        "1",
+        "Factor for the hogging's own diagram, 1 if it were even; sagging left out",
+        arrangement,
+        HELD,
+        word="diagram factor, top flange held",
+        given=False,
+    )
+    euler = _euler(sheet, given, length)
+    value = sheet.hence(
+        "M_cr",
+        factor / given.h * (euler * (given.I_w / given.I_z + given.h**2 / 4) + given.G * given.I_t),
+        "kN*m",
+        "Critical hogging moment, the beam twisting about its held top flange",
+        HELD,
+        word="elastic critical moment",
+    )
+    return Critical(demand, length, None, None, value)
 
 
 def _overhang_length(sheet: Sheet, found: Buckling, origin: str) -> Line:
@@ -144,7 +184,7 @@ def _diagram(sheet: Sheet, demand: Line, found: Buckling, arrangement: str) -> L
             f"M_{index}",
             value,
             "kN*m",
-            f"Moment {says}" + (", sagging as none" if found.segment.only_hogging else ""),
+            f"Moment {says}",
             arrangement,
             word=f"moment {says} of the segment",
             given=False,
@@ -175,10 +215,10 @@ def _diagram(sheet: Sheet, demand: Line, found: Buckling, arrangement: str) -> L
     )
     return sheet.hence(
         "C_1",
-        least(by_quarters, number(1) / sqrt(share)),
+        least(by_quarters, number(1) / sqrt(share), LARGEST_DIAGRAM),
         "1",
-        "Diagram factor, the lesser of this and of the energy of the half wave",
-        ENERGY,
+        "Diagram factor, the least of this, of the energy of the half wave, and 2.7",
+        f"{ENERGY}; ENV 1993-1-1 Annex F",
     )
 
 
@@ -189,7 +229,8 @@ def _load_factor(
         "F_phi",
         found.twisting,
         "kN",
-        "Load on the segment, each part times sin² of its place in the half wave of twist",
+        "Load on the segment times sin² of its place in the half wave of twist"
+        + ("; point loads times sin" if found.height > 0 else ""),
         arrangement,
         word="load times the square of the half sine wave",
         given=False,
@@ -299,7 +340,7 @@ def _general(sheet: Sheet, slenderness: Line, alpha: Line) -> Line:
 
 
 def _rolled(
-    sheet: Sheet, profile: Profile, slenderness: Line, alpha: Line, diagram: Line, origin: str
+    sheet: Sheet, profile: Profile, slenderness: Line, alpha: Line, diagram: Line | None, origin: str
 ) -> Line:
     factors = profile.factors
     plateau = sheet.take(
@@ -334,6 +375,8 @@ def _rolled(
         "Reduction factor",
         f"{CODE} 6.3.2.3(1) (6.57)",
     )
+    if diagram is None:  # no relief for the diagram: its factor is not that of free ends
+        return chi
     share = sheet.hence(
         "k_c",
         number(1) / sqrt(diagram),

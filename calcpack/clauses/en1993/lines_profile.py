@@ -78,9 +78,7 @@ def take_profile(
         return sheet.take(symbol, value * 1e3, "mm", says, section, word=word or says.lower())
 
     def constant(symbol: str, value: float, power: int, says: str) -> Line:
-        return sheet.take(
-            symbol, value * 1e3**power, f"mm^{power}", says, f"{section}, from its dimensions", given=False
-        )
+        return sheet.take(symbol, value * 1e3**power, f"mm^{power}", says, section, given=False)
 
     def steel(symbol: str, value: float, says: str, cite: str) -> Line:
         return sheet.take(symbol, value / 1e3, "MPa", says, material, cite)
@@ -91,7 +89,7 @@ def take_profile(
     t_w = size("t_w", s.web, "Thickness of the web")
     t_f = size("t_f", s.flange, "Thickness of the flanges")
     r = size("r", s.root_radius, "Radius of the fillets")
-    A = area or constant("A", s.area, 2, "Area")
+    A = constant("A", s.area, 2, "Area") if area is None else area
     W_el = constant("W_el,y", s.elastic_modulus, 3, "Elastic section modulus")
     W_pl = constant("W_pl,y", s.plastic_modulus, 3, "Plastic section modulus")
     I_z = constant("I_z", s.weak_inertia, 4, "Second moment of area, weak axis")

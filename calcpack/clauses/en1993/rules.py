@@ -35,6 +35,7 @@ CURVE_CITE: dict[Curves, str] = {
     "rolled": f"{CODE} Tables 6.3 and 6.5",
 }
 
+LARGEST_DIAGRAM = 2.7  # C1, ENV 1993-1-1:1992, F.1.2(6)
 THICK = 0.040  # [m] up to which the first column of Table 3.1 holds
 WEB_BUCKLING = 72.0  # hw/tw over ε/η, EN 1993-1-1 6.2.6(6)
 HALF = 0.5  # of the shear resistance, up to which bending is not reduced, 6.2.8(2)

@@ -20,8 +20,8 @@ class Segment(NamedTuple):
     start, end : float [m]
     length : float [m]
         The length its critical moment is worked out with: its own, or the longer one the job gives.
-    only_hogging : bool
-        The top flange is held all along: sagging counts as no moment at all.
+    held_top : bool
+        The top flange is held all along: only hogging can make it buckle.
     free_tip : bool
         It runs to the free tip of an overhang, which nothing holds.
     """
@@ -29,7 +29,7 @@ class Segment(NamedTuple):
     start: float
     end: float
     length: float
-    only_hogging: bool = False
+    held_top: bool = False
     free_tip: bool = False
 
 

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 from calcpack.clauses.en1993.design import Buckling, LocalForce, SteelBeam
 from calcpack.clauses.en1993.lines_bearing import bearing, force_beside_moment
 from calcpack.clauses.en1993.lines_buckling import buckling, critical
@@ -15,9 +17,15 @@ from calcpack.clauses.en1993.lines_profile import (
 )
 from calcpack.clauses.en1993.lines_section import bending, bending_beside_shear, shear, shear_share
 from calcpack.notebook.sections.steel_en1993_given import design_of
-from calcpack.notebook.sections.steel_en1993_results import SENSE, place, state_steel_results
+from calcpack.notebook.sections.steel_en1993_results import (
+    SENSE,
+    force_name,
+    place,
+    state_steel_results,
+)
 from calcpack.notebook.work import Work
-from calcpack.sheet import Line
+from calcpack.sheet import Line, formula
+from calcpack.sheet.latex import symbol_latex
 
 __all__ = [
     "design_of",
@@ -28,9 +36,7 @@ __all__ = [
     "state_steel_section",
 ]
 
-
-def _origin(work: Work) -> str:
-    return f"beam {work.given.mark} design"
+ORIGIN = "design"  # the beam's own keys in the job file
 
 
 def _keep(work: Work, name: str, line: Line, *, always: bool = True) -> None:
@@ -52,7 +58,7 @@ def state_steel_section(work: Work, beam: SteelBeam) -> tuple[ProfileLines, Part
     sheet.text(f"Dimensions: {section.source}; steel: {material.source}.", role="note")
     for name, line in limits_of(sheet, given):
         _keep(work, name, line, always=False)
-    partial = take_factors(sheet, profile, _origin(work))
+    partial = take_factors(sheet, profile, ORIGIN)
     classes = classify(sheet, given, profile)
     _keep(work, "class of the section", classes.check, always=False)
     return given, partial, classes.epsilon
@@ -116,13 +122,17 @@ def state_steel_buckling(work: Work, beam: SteelBeam, given: ProfileLines, parti
         f"Line by line, {_between(work, worst)}, {worst.arrangement.combination.name}, "
         f"{SENSE[worst.arrangement.sense]}:"
     )
-    start = critical(sheet, given, worst, beam.conditions, _origin(work))
-    found = buckling(sheet, given, partial, beam.profile, beam.conditions, start, _origin(work))
+    start = critical(sheet, given, worst, beam.conditions, ORIGIN)
+    found = buckling(sheet, given, partial, beam.profile, beam.conditions, start, ORIGIN)
     _keep(work, f"lateral-torsional buckling, {_between(work, worst)}", found.check)
 
 
 def _between(work: Work, each: Buckling) -> str:
     return f"{place(work, each.segment.start)} to {place(work, each.segment.end)}"
+
+
+def _head(symbol: str) -> tuple[list[Any], str]:
+    return [formula(symbol_latex(symbol))], "right"
 
 
 def _trials(work: Work, beam: SteelBeam) -> None:
@@ -144,9 +154,15 @@ def _trials(work: Work, beam: SteelBeam) -> None:
         ]
         for each in beam.segments
     ]
-    heads = ("M_Ed", "L_cr", "C1", "C2", "M_cr", "λ_LT", "χ_LT,mod" if rolled else "χ_LT", "M_b,Rd", "ratio")
+    chi = "chi_LT,mod" if rolled else "chi_LT"
+    heads = ("M_Ed,b", "L_cr", "C_1", "C_2", "M_cr", "lambdabar_LT", chi, "M_b,Rd")
     work.sheet.table(
-        [("segment", "left"), ("worst of all tried", "left"), *((head, "right") for head in heads)],
+        [
+            ("segment", "left"),
+            ("worst of all tried", "left"),
+            *(_head(head) for head in heads),
+            ("ratio", "right"),
+        ],
         rows,
         caption="Each segment under each strength combination, live load where it sags the segment most, "
         "where it hogs it most, and everywhere: the arrangement that uses most.",
@@ -173,18 +189,18 @@ def state_steel_bearing(work: Work, beam: SteelBeam, given: ProfileLines, partia
             ("force", "left"),
             ("at", "right"),
             ("combination", "left"),
-            ("F_Ed", "right"),
-            ("k_F", "right"),
-            ("ℓ_y", "right"),
-            ("λ_F", "right"),
-            ("χ_F", "right"),
-            ("F_Rd", "right"),
+            _head("F_Ed"),
+            _head("k_F"),
+            _head("ell_y"),
+            _head("lambdabar_F"),
+            _head("chi_F"),
+            _head("F_Rd"),
             ("ratio", "right"),
             ("η2 + 0.8 η1", "right"),
         ],
         [
             [
-                each.says,
+                force_name(work, each),
                 place(work, each.at),
                 each.combination,
                 work.show(each.force, "kN"),
@@ -203,17 +219,15 @@ def state_steel_bearing(work: Work, beam: SteelBeam, given: ProfileLines, partia
         strong_rows=[beam.forces.index(worst)],
     )
     words = _where(work, worst)
-    found = bearing(sheet, given, partial, worst, beam.conditions, words, _origin(work))
+    found = bearing(sheet, given, partial, worst, beam.conditions, words, ORIGIN)
     _keep(work, f"web under the force {words}", found.check)
     if both.moment:
         words = _where(work, both)
-        line = force_beside_moment(
-            sheet, given, partial, both, found.resistance if both is worst else None, words
-        )
+        line = force_beside_moment(sheet, given, partial, both, words, found if both is worst else None)
         _keep(work, f"force with bending {words}", line)
 
 
 def _where(work: Work, force: LocalForce) -> str:
-    if force.says == "point load":
+    if force.support is None:
         return f"under the point load at {place(work, force.at)}"
-    return f"at {force.says}"
+    return f"at {force_name(work, force)}"

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Any, NamedTuple
 
-from calcpack.clauses.en1993.design import SteelBeam
+from calcpack.clauses.en1993.design import LocalForce, SteelBeam
 from calcpack.clauses.en1993.lines_profile import RANK
 from calcpack.clauses.en1993.rules import STRESS_SHARE
 from calcpack.figures import Capacity, Governing, capacity_figure, deflected_shape, section_figure
@@ -41,6 +41,14 @@ def place(work: Work, at: float) -> str:
     return work.show(at, "m")
 
 
+def force_name(work: Work, force: LocalForce) -> str:
+    """What presses on the flange: a support by its mark, or a point load."""
+    if force.support is None:
+        return "point load"
+    bearing = work.given.bearings[force.support]
+    return f"{bearing.kind} {bearing.mark}"
+
+
 def shown_of(work: Work, beam: SteelBeam) -> list[Shown]:
     """The checks of the sheet before they are written, with the same numbers."""
     bent = f"bending, at {place(work, beam.bending.at)}"
@@ -56,9 +64,11 @@ def shown_of(work: Work, beam: SteelBeam) -> list[Shown]:
         says = f"lateral-torsional buckling, {place(work, part.start)} to {place(work, part.end)}"
         rows.append(Shown(says, worst.demand, worst.resistance, "kN*m"))
     if (force := beam.force) is not None:
-        rows.append(Shown(f"web, {force.says}", force.force, force.bearing.resistance, "kN"))
+        rows.append(Shown(f"web, {force_name(work, force)}", force.force, force.bearing.resistance, "kN"))
     if (both := beam.interaction) is not None and both.moment:
-        rows.append(Shown(f"web with bending, {both.says}", beam.together(both), STRESS_SHARE, "1"))
+        rows.append(
+            Shown(f"web with bending, {force_name(work, both)}", beam.together(both), STRESS_SHARE, "1")
+        )
     for words, extreme, limit in deflections_of(work):
         rows.append(Shown(f"deflection, {words}", abs(extreme.value) * 1000, limit * 1000, "mm"))
     return rows
@@ -207,7 +217,7 @@ def capacities(beam: SteelBeam, length: float) -> list[Capacity]:
         if part.start > last + 1e-9:
             found.append(Capacity(last, part.start, plastic, plastic))
         least = min(plastic, each.resistance)
-        found.append(Capacity(part.start, part.end, plastic if part.only_hogging else least, least))
+        found.append(Capacity(part.start, part.end, plastic if part.held_top else least, least))
         last = part.end
     if last < length - 1e-9:
         found.append(Capacity(last, length, plastic, plastic))

@@ -1,0 +1,199 @@
+"""Critical moments beside eigenvalues of a beam in sideways deflection and twist: how far off, stated.
+
+The element of ``eigenvalue_en1993`` is checked first against closed solutions.
+"""
+
+import math
+
+import numpy as np
+import pytest
+from beams_en1993 import profile
+from eigenvalue_en1993 import critical_factor
+
+from calcpack.clauses.en1993.buckling import (
+    critical_moment,
+    held_factor,
+    held_stiffness,
+    load_factor,
+    quarter_points,
+    twisting_load,
+    wave_share,
+)
+from calcpack.clauses.en1993.rules import LARGEST_DIAGRAM
+from calcpack.clauses.steel import segment_moments
+from calcpack.statics import BeamLine, Curve, LineLoad, PointLoad, analyse
+
+IPE = profile("IPE 330")
+S = IPE.shape
+WEAK, WARPING, TORSION = 210e6 * S.weak_inertia, 210e6 * S.warping, 80.77e6 * S.torsion
+HALF = S.depth / 2
+
+
+def even(length):
+    return (math.pi / length) * math.sqrt(WEAK * (TORSION + WARPING * (math.pi / length) ** 2))
+
+
+def diagram(length, loads=(), start=0.0, end=0.0):
+    """Moments of a beam on two supports under loads and end moments, as one curve."""
+    curve = analyse(BeamLine(length, (0.0, length)), [list(loads) or [LineLoad(0, length, 0, 0)]]).curve(
+        "moment"
+    )
+    coefficients = curve.coefficients.copy()
+    slope = (end - start) / length
+    coefficients[:, 0] += start + slope * curve.breaks[:-1]
+    coefficients[:, 1] += slope
+    return Curve(curve.breaks, coefficients)
+
+
+def own(curve, loads, height):
+    """M_cr of the clauses under a whole diagram."""
+    length = float(curve.breaks[-1])
+    moments = segment_moments(curve, 0.0, length)
+    largest = abs(moments.largest.value)
+    share = wave_share(curve, 0.0, length, largest)
+    c1 = min(LARGEST_DIAGRAM, quarter_points(moments), 1 / math.sqrt(share))
+    twisting = twisting_load([(load, 1.0) for load in loads], 0.0, length, above=height > 0)
+    c2 = load_factor(c1 if height > 0 else 1.0, length, twisting, largest)
+    return critical_moment(IPE, length, c1, c2 * height)
+
+
+def eigenvalue(curve, loads, height, elements=12, top_held=None):
+    length = float(curve.breaks[-1])
+    largest = abs(segment_moments(curve, 0.0, length).largest.value)
+    lines = [load for load in loads if isinstance(load, LineLoad)]
+
+    def intensity(x):
+        return sum(
+            load.first + (load.last - load.first) * (x - load.start) / (load.end - load.start)
+            for load in lines
+            if load.start <= x <= load.end
+        )
+
+    points = [(load.at, load.force) for load in loads if isinstance(load, PointLoad)]
+    factor = critical_factor(
+        length, WEAK, WARPING, TORSION, curve.at, intensity, points, height,
+        elements=elements, top_held=top_held,
+    )  # fmt: skip
+    return factor * largest
+
+
+# The element itself.
+
+
+@pytest.mark.parametrize("length", [3.0, 6.0, 12.0])
+def test_element_under_an_even_moment(length):
+    found = critical_factor(length, WEAK, WARPING, TORSION, lambda x: 1.0)
+    assert found == pytest.approx(even(length), rel=1e-5)
+
+
+def test_element_cantilever_with_a_load_at_its_tip():
+    # Timoshenko and Gere: P = 4.013 sqrt(E Iz G It) / L^2 for a section that does not warp (from memory)
+    found = critical_factor(
+        4.0, WEAK, 1e-9, TORSION, lambda x: x - 4.0, held=[0.0], clamped=[0.0], elements=80
+    )
+    assert found == pytest.approx(4.013 * math.sqrt(WEAK * TORSION) / 16, rel=5e-3)
+
+
+def test_element_is_fine_enough():
+    curve = diagram(6.0, [PointLoad(3.0, 1.0)])
+    coarse, fine = (eigenvalue(curve, [PointLoad(3.0, 1.0)], HALF, elements=n) for n in (12, 48))
+    assert coarse == pytest.approx(fine, rel=1e-3)
+
+
+# The clauses beside it: lowest and highest M_cr over the eigenvalue's, over spans of 3, 6 and 12 m.
+# "hold" are end moments that hold the beam (wL^2/12, PL/8), each as a part of that.
+
+
+def shapes(length):
+    uniform = [LineLoad(0, length, 1, 1)]
+    middle = [PointLoad(length / 2, 1)]
+    thirds = [PointLoad(length / 3, 1), PointLoad(2 * length / 3, 1)]
+    gable = [LineLoad(0, length / 2, 0, 1), LineLoad(length / 2, length, 1, 0)]
+    return {
+        "uniform": (uniform, 0.0, 0.0),
+        "middle": (middle, 0.0, 0.0),
+        "thirds": (thirds, 0.0, 0.0),
+        "gable": (gable, 0.0, 0.0),
+        "uniform, held": (uniform, -(length**2) / 12, -(length**2) / 12),
+        "uniform, one end held": (uniform, 0.0, -(length**2) / 8),
+        "middle, held": (middle, -length / 8, -length / 8),
+        "middle, one end held": (middle, 0.0, -3 * length / 16),
+    }
+
+
+STATED = {
+    # shape: (lowest, highest) at the top flange, at the shear centre, at the bottom flange
+    "uniform": ((0.99, 1.01), (0.99, 1.01), (0.92, 1.00)),
+    "middle": ((0.95, 0.98), (0.93, 0.95), (0.83, 0.93)),
+    "thirds": ((0.94, 1.00), (0.99, 1.02), (0.93, 1.02)),
+    "gable": ((0.99, 1.02), (0.99, 1.01), (0.90, 1.00)),
+    "uniform, held": ((0.98, 1.01), (0.97, 1.00), (0.54, 0.75)),
+    "uniform, one end held": ((0.97, 1.00), (0.96, 0.99), (0.68, 0.85)),
+    "middle, held": ((0.91, 0.98), (0.82, 0.85), (0.57, 0.70)),
+    "middle, one end held": ((0.92, 0.97), (0.87, 0.89), (0.64, 0.78)),
+}
+
+
+@pytest.mark.parametrize("name", STATED)
+@pytest.mark.parametrize(("where", "height"), [("top", HALF), ("centre", 0.0), ("bottom", -HALF)])
+def test_shape_and_load_height_beside_the_eigenvalue(name, where, height):
+    ratios = []
+    for length in (3.0, 6.0, 12.0):
+        loads, start, end = shapes(length)[name]
+        curve = diagram(length, loads, start, end)
+        ratios.append(own(curve, loads, height) / eigenvalue(curve, loads, height))
+    low, high = STATED[name][("top", "centre", "bottom").index(where)]
+    assert low <= min(ratios), ratios
+    assert max(ratios) <= high, ratios
+
+
+@pytest.mark.parametrize("psi", [1.0, 0.75, 0.5, 0.25, 0.0, -0.25, -0.5, -0.75, -1.0])
+def test_end_moments_beside_the_eigenvalue(psi):
+    for length in (3.0, 6.0, 12.0):
+        curve = diagram(length, start=1.0, end=psi)
+        ratio = own(curve, [], 0.0) / eigenvalue(curve, [], 0.0)
+        assert 0.92 <= ratio <= 1.021
+
+
+def test_arbitrary_diagrams_beside_the_eigenvalue():
+    """End moments and two loads at random: never more than 3 % high, on top 5 %."""
+    rng = np.random.default_rng(7)
+    for _ in range(25):
+        length = float(rng.choice([3.0, 6.0, 12.0]))
+        places, forces = rng.uniform(0.1, 0.9, 2) * length, rng.uniform(0.3, 1.0, 2)
+        loads = [PointLoad(float(a), float(f)) for a, f in zip(places, forces, strict=True)]
+        start, end = (float(-value) * length / 4 for value in rng.uniform(0, 1, 2))
+        curve = diagram(length, loads, start, end)
+        for height, high in ((HALF, 1.05), (0.0, 1.03), (-HALF, 1.03)):
+            assert own(curve, loads, height) / eigenvalue(curve, loads, height) <= high
+
+
+def test_a_wrong_factor_would_be_seen():
+    """The bounds above are tight enough to fail: without C1, or with a load height left out."""
+    loads = [LineLoad(0, 6.0, 1, 1)]
+    curve = diagram(6.0, loads)
+    assert critical_moment(IPE, 6.0, 1.0, 0.0) / eigenvalue(curve, loads, 0.0) < 0.9
+    assert own(curve, loads, 0.0) / eigenvalue(curve, loads, HALF) > 1.2
+
+
+# The top flange held all along.
+
+
+@pytest.mark.parametrize("length", [3.0, 6.0, 12.0])
+@pytest.mark.parametrize("hold", [1.0, 1.2, 1.5])
+def test_top_flange_held_under_uniform_load(length, hold):
+    """Load on the held flange: beside the eigenvalue never high, and low as sagging is left out."""
+    loads = [LineLoad(0, length, 1, 1)]
+    curve = diagram(length, loads, -hold * length**2 / 12, -hold * length**2 / 12)
+    factor = held_factor(IPE, curve, 0.0, length, length)
+    found = factor * sum(held_stiffness(IPE, length)) / S.depth
+    ratio = found / eigenvalue(curve, loads, HALF, elements=24, top_held=HALF)
+    assert 0.80 <= ratio <= 1.002
+
+
+@pytest.mark.parametrize("length", [3.0, 6.0, 12.0])
+@pytest.mark.parametrize(("start", "end"), [(-1.0, -1.0), (-1.0, 0.0), (-1.0, -0.5)])
+def test_top_flange_held_under_end_moments(length, start, end):
+    curve = diagram(length, start=start, end=end)
+    found = held_factor(IPE, curve, 0.0, length, length) * sum(held_stiffness(IPE, length)) / S.depth
+    assert found == pytest.approx(eigenvalue(curve, [], 0.0, elements=24, top_held=HALF), rel=2e-3)
