@@ -121,6 +121,7 @@ def _span(work: Work, span: SpanLoads, criterion: EquivalentKind) -> None:
 def _symmetric(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKind, several: bool) -> None:
     """All responses peak at midspan or at the ends alike, so the sources' equivalents add up."""
     terms: list[Expression | Line] = []
+    curved = any(group.shape.kind != "uniform" for group in work.alike(span, case))
     for group in work.alike(span, case):
         if group.shape.kind == "uniform":
             terms.append(group.peak)
@@ -134,7 +135,7 @@ def _symmetric(work: Work, span: SpanLoads, case: Case, criterion: EquivalentKin
         summed(terms),
         "kN/m",
         says=f"Equivalent uniform {CASE_WORDS[case]}, {CARRIED_FORWARD[criterion]}",
-        cite="statics, derived above",
+        cite="statics, derived above" if curved else "uniform as it is",
     )
 
 
