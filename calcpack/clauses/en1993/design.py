@@ -13,8 +13,8 @@ from calcpack.clauses.en1993 import bearing as local
 from calcpack.clauses.en1993 import buckling
 from calcpack.clauses.en1993.rules import LARGEST_DIAGRAM, OVERHANG, Curves, LoadHeight
 from calcpack.clauses.en1993.section import Profile
-from calcpack.clauses.en1993.segments import Segment
-from calcpack.clauses.steel import Arrangement, SegmentMoments, arrangements, segment_moments
+from calcpack.clauses.en1993.segments import Segment, tried
+from calcpack.clauses.steel import Arrangement, SegmentMoments, segment_moments
 from calcpack.statics import Curve, PointLoad
 
 SAMPLES = 240
@@ -154,8 +154,8 @@ def design(
     Notes
     -----
     Bending and shear go by the envelope about all strength combinations. Each segment is tried for each
-    strength combination under the arrangements of live load that sag it most and hog it most, and with
-    every span loaded: buckling depends on the shape of a diagram, which an envelope does not have.
+    strength combination under several arrangements of live load (:func:`segments.tried`): buckling depends
+    on the shape of a diagram, which an envelope does not have.
 
     Examples
     --------
@@ -230,15 +230,15 @@ def buckling_of(
     scale = max(abs(band.largest.value), abs(band.smallest.value))
     worst = []
     for part in parts:
-        tried = []
-        for each in arrangements(analysed, part.start, part.end):
+        found = []
+        for each in tried(analysed, part):
             moments = segment_moments(each.moment, part.start, part.end)
             if part.held_top:
                 moments = moments._replace(largest=moments.hogging)
             if abs(moments.largest.value) > NOTHING * scale:
-                tried.append(_checked(profile, analysed, part, each, moments, conditions))
-        if tried:
-            worst.append(max(tried, key=lambda each: round(each.ratio, 12)))
+                found.append(_checked(profile, analysed, part, each, moments, conditions))
+        if found:
+            worst.append(max(found, key=lambda each: round(each.ratio, 12)))
     return tuple(worst)
 
 

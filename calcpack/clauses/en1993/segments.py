@@ -6,7 +6,10 @@ from collections.abc import Sequence
 from itertools import pairwise
 from typing import Literal, NamedTuple
 
-from calcpack.clauses.steel import held_points
+import numpy as np
+
+from calcpack.actions import AnalysedBeam
+from calcpack.clauses.steel import Arrangement, arrangements, held_points
 from calcpack.job.errors import CalcpackError
 
 Braced = Literal["ends", "at beams", "continuous"]
@@ -90,3 +93,41 @@ def segments(
             free = not tip_held and any(end not in supports and end in (first, last) for end in (start, end))
             found.append(Segment(first, last, length, braced == "continuous", free))
     return tuple(found)
+
+
+def tried(analysed: AnalysedBeam, part: Segment) -> tuple[Arrangement, ...]:
+    """The diagrams that a segment is tried under: each strength combination in several arrangements.
+
+    Beside those that sag and hog the segment most, and everything loaded, those that sag and hog it most at
+    its quarter points: a lower but fuller diagram may buckle it sooner.
+
+    Examples
+    --------
+    >>> from calcpack.actions import Combination, LoadSet, analyse_beam
+    >>> from calcpack.statics import BeamLine, LineLoad
+    >>> beam = analyse_beam(
+    ...     BeamLine(8.0, (0.0, 4.0, 8.0)),
+    ...     [LoadSet("live", (LineLoad(0, 4, 8, 8),)), LoadSet("live", (LineLoad(4, 8, 8, 8),))],
+    ...     [Combination("1.5 Q", "strength", {"live": 1.5})],
+    ... )
+    >>> [each.factors for each in tried(beam, Segment(0.0, 4.0, 4.0))]
+    [(1.5, 0.0), (1.5, 1.5), (0.0, 1.5)]
+    """
+    found = {
+        (each.combination.name, each.factors): each for each in arrangements(analysed, part.start, part.end)
+    }
+    response = analysed.response
+    curves = [response.curve("moment", row) for row in range(response.sets)]
+    for quarter in (0.25, 0.5, 0.75):
+        at = part.start + quarter * (part.end - part.start)
+        there = np.array([curve.at(at) for curve in curves])
+        slack = 1e-12 * np.abs(there).max(initial=0.0)
+        for result in analysed.of_limit("strength"):
+            always, placed = analysed.factors(result.combination)
+            for sense in (1, -1):
+                factors = always + np.where(sense * there > slack, placed, 0.0)
+                key = (result.combination.name, tuple(float(value) for value in factors))
+                if key not in found:
+                    moment = response.combined(factors).curve("moment")
+                    found[key] = Arrangement(result.combination, key[1], moment, sense, at)
+    return tuple(found.values())

@@ -164,8 +164,8 @@ def _trials(work: Work, beam: SteelBeam) -> None:
             ("ratio", "right"),
         ],
         rows,
-        caption="Each segment under each strength combination, live load where it sags the segment most, "
-        "where it hogs it most, and everywhere: the arrangement that uses most.",
+        caption="Each segment under each strength combination, live load where it sags or hogs the segment "
+        "most, where it does so at its quarter points, and everywhere: the arrangement that uses most.",
         strong_rows=[beam.segments.index(beam.buckling)] if beam.buckling else (),
     )
 

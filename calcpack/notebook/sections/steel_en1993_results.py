@@ -13,7 +13,7 @@ from calcpack.statics import Extreme
 
 SAMPLES = 120
 HALF_WIDTH = 82.0  # [mm]
-SENSE = {1: "sagging most", -1: "hogging most", 0: "everything loaded"}
+SENSE = {1: "placed to sag it", -1: "placed to hog it", 0: "everything loaded"}
 HEIGHT = {"top": "on the top flange", "centre": "at mid-depth", "bottom": "on the bottom flange"}
 HELD = {
     "ends": "at the supports",

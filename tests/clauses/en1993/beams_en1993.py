@@ -1,5 +1,7 @@
 """Beams to design, made by hand: no job file."""
 
+from itertools import pairwise
+
 from calcpack.actions import AnalysedBeam, Combination, LoadSet, analyse_beam
 from calcpack.clauses.en1993.rules import RECOMMENDED, Factors
 from calcpack.clauses.en1993.section import Profile, profile_of
@@ -35,7 +37,7 @@ def analysed(
     if live:
         sets += [
             LoadSet("live", (LineLoad(a, b, live, live),), f"span {n}")
-            for n, (a, b) in enumerate(zip(ends, ends[1:], strict=False))
+            for n, (a, b) in enumerate(pairwise(ends))
         ]
     combinations = [
         Combination("1.35 G + 1.5 Q", "strength", {"dead": 1.35, "live": 1.5}),
