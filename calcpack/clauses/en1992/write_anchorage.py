@@ -25,7 +25,7 @@ def write_cover(
         "mm",
         f"Least cover for durability, {case.exposure}, structural class S4",
         national.name,
-        f"{STANDARD}, 4.4.1.2(5), Table 4.4N",
+        "4.4.1.2(5), Table 4.4N",
         word="least cover for durability",
     )
     allowance = sheet.take(
@@ -34,7 +34,7 @@ def write_cover(
         "mm",
         "Allowance for deviation",
         national.name,
-        national.cite("delta_c_dev"),
+        national.values["delta_c_dev"].clause,
         word="allowance for cover",
     )
     cite = f"{STANDARD}, 4.4.1.1(2)P (4.1)"
@@ -92,7 +92,7 @@ def write_bond(
         "MPa",
         f"Bond strength, {'good' if good else 'other than good'} bond conditions"
         + (", f_ctd not above that of C60/75" if case.strength.fctk > 3100 else ""),
-        f"{STANDARD}, 8.4.2(2) (8.2)",
+        "8.4.2(2) (8.2)",
         word="bond strength",
     )
     basic = sheet.hence(
@@ -100,30 +100,24 @@ def write_bond(
         lines.bar / 4 * stress / bond,
         "mm",
         "Basic anchorage length",
-        f"{STANDARD}, 8.4.3(2) (8.3)",
+        "8.4.3(2) (8.3)",
         word="basic anchorage length",
     )
-    from_edge: Line | Expression = lines.inset
-    if lines.clear is not None:
-        from_edge = least(lines.inset, lines.clear / 2)
-    cover = sheet.hence(
-        f"c_d,{tag}",
-        from_edge,
-        "mm",
-        "Cover that counts",
-        f"{STANDARD}, 8.4.4(1), Figure 8.3",
-        word="cover that counts for bond",
-    )
+    cover: Line | Expression = lines.inset
+    apart = lines.face.clear[0] / 2
+    if lines.clear is not None and apart < lines.face.bars.inset:
+        cover = lines.clear / 2
+    counts = min(apart, lines.face.bars.inset)
     off = 3 * lines.bar if bent else lines.bar
     shape = least(greatest(1 - number("0.15") * (cover - off) / lines.bar, number("0.7")), 1)
-    hook = bent and cover.value > 3 * lines.bar.value
-    says = "Form and cover of the bar, a bend at its end" if bent else "Cover of the bar, straight"
+    hook = bent and counts > 3 * lines.face.bars.bar.diameter
+    says = "Form and cover of the bar, a bend at its end" if bent else "Cover of the straight bar"
     alpha = sheet.hence(
         f"alpha_{tag}",
         number("0.7") * shape if hook else shape,
         "1",
         says,
-        f"{STANDARD}, 8.4.4(1), Table 8.2",
+        "8.4.4(1), Table 8.2, Figure 8.3",
         word="factor of the anchorage length",
     )
     return sheet.hence(
@@ -131,7 +125,7 @@ def write_bond(
         greatest(alpha * basic, number("0.3") * basic, 10 * lines.bar, quantity(100, "mm")),
         "mm",
         "Design anchorage length, not below the least",
-        f"{STANDARD}, 8.4.4(1) (8.4, 8.6)",
+        "8.4.4(1) (8.4, 8.6)",
         word="anchorage length",
     )
 
@@ -161,27 +155,16 @@ def write_end(
         force * shear.shift / shear.arm,
         "kN",
         "Force to anchor",
-        f"{STANDARD}, 9.2.1.4(2) (9.3)",
+        "9.2.1.4(2) (9.3)",
         word="force to anchor",
     )
-    stress = sheet.hence(
-        "sigma_sd",
-        least(pull / lines.area, strength.fyd),
-        "MPa",
-        "Stress of the bars there: all run through",
-        "equilibrium",
-        word="stress to anchor",
+    line = sheet.require(
+        pull <= lines.area * strength.fyd,
+        "Bars at the end support: all run through, more than β2 of them",
+        f"{STANDARD}, 9.2.1.4(1) and (2)",
     )
-    checks = [
-        (
-            "bars at the end support",
-            sheet.require(
-                pull <= lines.area * strength.fyd,
-                "Bars at the end support",
-                f"{STANDARD}, 9.2.1.4(1) and (2)",
-            ),
-        )
-    ]
+    checks = [("bars at the end support", line)]
+    stress = least(pull / lines.area, strength.fyd)
     length = write_bond(sheet, lines, strength, stress, end.length, good=True, tag="e", bent=end.bent)
     if end.room is None:
         sheet.text(

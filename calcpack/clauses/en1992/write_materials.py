@@ -7,8 +7,8 @@ from typing import NamedTuple
 
 from calcpack.clauses.en1992.flange import FlangeSide
 from calcpack.clauses.en1992.model import Strengths
-from calcpack.clauses.en1992.national import STANDARD, National
-from calcpack.sheet import Line, Sheet, least, number, number_in, total
+from calcpack.clauses.en1992.national import RECOMMENDED, National
+from calcpack.sheet import Expression, Line, Sheet, least, number, number_in, total
 
 
 class StrengthLines(NamedTuple):
@@ -31,7 +31,11 @@ class StrengthLines(NamedTuple):
 
 
 def write_strengths(
-    sheet: Sheet, strength: Strengths, national: National, origin: str, changed: Mapping[str, str] = {}
+    sheet: Sheet,
+    strength: Strengths,
+    national: National,
+    origin: str,
+    changed: Mapping[str, str] = {},
 ) -> StrengthLines:
     """Characteristic values, partial factors, design values, factors of the stress block, limit of x/d.
 
@@ -64,12 +68,12 @@ def write_strengths(
     """
 
     def material(symbol: str, value: float, says: str, clause: str, word: str = "") -> Line:
-        cite = f"{STANDARD}, {clause}"
+        cite = clause
         return sheet.take(symbol, value / 1e3, "MPa", says, origin, cite, word=word)
 
     def parameter(key: str, symbol: str, says: str, word: str = "") -> Line:
-        place = changed.get(key, national.name)
-        return sheet.take(symbol, national[key], "1", says, place, national.cite(key), word=word)
+        place = changed.get(key, RECOMMENDED if national.name.startswith(RECOMMENDED) else national.name)
+        return sheet.take(symbol, national[key], "1", says, place, national.values[key].clause, word=word)
 
     fck = material("f_ck", strength.fck, "Concrete, characteristic strength", "Table 3.1")
     fctm = material("f_ctm", strength.fctm, "Concrete, mean tensile strength", "Table 3.1")
@@ -87,7 +91,7 @@ def write_strengths(
         "1",
         "Concrete, ultimate strain of the block",
         origin,
-        f"{STANDARD}, Table 3.1",
+        "Table 3.1",
         word="ultimate strain of concrete",
     )
     fyk = material("f_yk", strength.fyk, "Bars, characteristic yield strength", "3.2.2")
@@ -99,17 +103,17 @@ def write_strengths(
         "alpha_ct", "alpha_ct", "Long-term factor on the tensile strength", "long-term factor"
     )
     fcd = sheet.hence(
-        "f_cd", alpha_cc * fck / gamma_c, "MPa", "Concrete, design strength", f"{STANDARD}, 3.1.6(1)P (3.15)"
+        "f_cd", alpha_cc * fck / gamma_c, "MPa", "Concrete, design strength", "3.1.6(1)P (3.15)"
     )
     fctd = sheet.hence(
         "f_ctd",
         alpha_ct * fctk / gamma_c,
         "MPa",
         "Concrete, design tensile strength",
-        f"{STANDARD}, 3.1.6(2)P (3.16)",
+        "3.1.6(2)P (3.16)",
         word="tensile strength of concrete, design",
     )
-    fyd = sheet.hence("f_yd", fyk / gamma_s, "MPa", "Bars, design strength", f"{STANDARD}, 3.2.7(2)")
+    fyd = sheet.hence("f_yd", fyk / gamma_s, "MPa", "Bars, design strength", "3.2.7(2)")
     lam, eta = _block(sheet, strength, fck)
     limit = _limit(sheet, strength, national, origin, changed)
     return StrengthLines(fck, fctm, fctk, ecm, fyk, es, gamma_c, fcd, fyd, fctd, lam, eta, strain, limit)
@@ -124,8 +128,8 @@ def _block(sheet: Sheet, strength: Strengths, fck: Line) -> tuple[Line, Line]:
                 0.8,
                 "1",
                 "Depth of the stress block over that of the neutral axis",
-                "f_ck up to 50 MPa",
-                f"{STANDARD}, 3.1.7(3) (3.19)",
+                "up to C50/60",
+                "3.1.7(3) (3.19)",
                 word=words["lambda"],
             ),
             sheet.take(
@@ -133,8 +137,8 @@ def _block(sheet: Sheet, strength: Strengths, fck: Line) -> tuple[Line, Line]:
                 1.0,
                 "1",
                 "Stress of the block over the design strength",
-                "f_ck up to 50 MPa",
-                f"{STANDARD}, 3.1.7(3) (3.21)",
+                "up to C50/60",
+                "3.1.7(3) (3.21)",
                 word=words["eta"],
             ),
         )
@@ -143,16 +147,16 @@ def _block(sheet: Sheet, strength: Strengths, fck: Line) -> tuple[Line, Line]:
         "lambda",
         0.8 - over / 400,
         "1",
-        "Depth of the stress block over that of the neutral axis (f_ck in MPa)",
-        f"{STANDARD}, 3.1.7(3) (3.20)",
+        "Depth of the stress block over that of the neutral axis (strengths in MPa)",
+        "3.1.7(3) (3.20)",
         word=words["lambda"],
     )
     eta = sheet.hence(
         "eta",
         1 - over / 200,
         "1",
-        "Stress of the block over the design strength (f_ck in MPa)",
-        f"{STANDARD}, 3.1.7(3) (3.22)",
+        "Stress of the block over the design strength (strengths in MPa)",
+        "3.1.7(3) (3.22)",
         word=words["eta"],
     )
     return lam, eta
@@ -169,7 +173,7 @@ def _limit(
         "1",
         "Concrete, ultimate strain of the parabola and rectangle",
         origin,
-        f"{STANDARD}, Table 3.1",
+        "Table 3.1",
         word="ultimate strain of concrete",
     )
     k = number(national[second]) * (0.6 + number(0.0014) / strain)
@@ -178,7 +182,7 @@ def _limit(
         (1 - number(national[first])) / k,
         "1",
         "Largest x/d: linear analysis, moments not redistributed, δ = 1",
-        f"{STANDARD}, 5.5(4) ({'5.10a' if low else '5.10b'})",
+        f"5.5(4) ({'5.10a' if low else '5.10b'})",
         word="largest x/d",
     )
 
@@ -191,6 +195,7 @@ def write_flange(
     lengths: Sequence[tuple[float, Line]],
     sides: tuple[FlangeSide, FlangeSide],
     origin: str,
+    known: dict[str, Line] | None = None,
 ) -> Line:
     """Effective width of a flange.
 
@@ -206,6 +211,8 @@ def write_flange(
     sides : (FlangeSide, FlangeSide)
     origin : str
         Where b_i comes from.
+    known : dict
+        Lines of b_i that are written already; new ones are added.
 
     Returns
     -------
@@ -214,7 +221,7 @@ def write_flange(
 
     Source: EN 1992-1-1:2004, 5.3.2.1.
     """
-    cite = f"{STANDARD}, 5.3.2.1"
+    cite = "5.3.2.1"
     parts = [number(share) * span if share != 1 else span.as_expression() for share, span in lengths]
     zero = sheet.hence(
         f"l_0,{symbol}",
@@ -224,29 +231,26 @@ def write_flange(
         f"{cite}(2)",
         word="length between zero moments",
     )
-    effective = []
+    effective: list[Expression] = []
     for name, side in zip(("l", "r"), sides, strict=True):
         if side.reach <= 0:
             continue
-        reach = sheet.take(
-            f"b_{symbol},{name}",
-            side.reach * 1e3,
-            "mm",
-            f"Slab on the {'left' if name == 'l' else 'right'}: half the clear distance, or the overhang",
-            origin,
-            f"{cite}(3)",
-            given=False,
-            word="reach of the slab from the web",
-        )
-        effective.append(
-            sheet.hence(
-                f"b_eff,{symbol},{name}",
-                least(0.2 * reach + 0.1 * zero, 0.2 * zero, reach),
+        key = f"{name} {side.reach:.9g}"
+        if known is None or key not in known:
+            reach = sheet.take(
+                f"b_{name},{symbol}",
+                side.reach * 1e3,
                 "mm",
-                "Effective part of it",
-                f"{cite}(3) (5.7a, 5.7b)",
+                f"Slab on the {'left' if name == 'l' else 'right'}: half the clear distance, or the overhang",
+                origin,
+                given=False,
+                word="reach of the slab from the web",
             )
-        )
+            if known is not None:
+                known[key] = reach
+        else:
+            reach = known[key]
+        effective.append(least(0.2 * reach + 0.1 * zero, 0.2 * zero, reach))
     return sheet.hence(
         f"b_eff,{symbol}",
         total(web, *effective) if effective else web.as_expression(),

@@ -84,18 +84,18 @@ def write_shear(
         "kN",
         f"Shear where the stirrups stand closest: {support.words}, {place.side}, {where}",
         "analysis, envelope",
-        f"{STANDARD}, 6.2.1(8)",
+        "6.2.1(8)",
         given=False,
     )
     _concrete(sheet, design, strength, size, longitudinal, effective, at)
     area, spacing = _stirrups(sheet, design, origin)
-    z = sheet.hence("z", number(ARM) * effective, "mm", "Lever arm in shear", f"{STANDARD}, 6.2.3(1)")
+    z = sheet.hence("z", number(ARM) * effective, "mm", "Lever arm in shear", "6.2.3(1)")
     nu = sheet.hence(
         "nu_1",
         number(national["nu"]) * (1 - strength.fck / quantity(250, "MPa")),
         "1",
         "Strength factor of the struts",
-        f"{STANDARD}, 6.2.2(6) (6.6N)",
+        "6.2.2(6) (6.6N)",
     )
     struts: Expression = size.width * z * nu * strength.fcd
     if national["alpha_cw"] != 1:
@@ -106,11 +106,9 @@ def write_shear(
         area / spacing * z * strength.fyd * cot,
         "kN",
         "Shear the stirrups carry",
-        f"{STANDARD}, 6.2.3(3) (6.8)",
+        "6.2.3(3) (6.8)",
     )
-    most = sheet.hence(
-        "V_Rd,max", struts / (cot + 1 / cot), "kN", "Shear the struts carry", f"{STANDARD}, 6.2.3(3) (6.9)"
-    )
+    most = sheet.hence("V_Rd,max", struts / (cot + 1 / cot), "kN", "Shear the struts carry", "6.2.3(3) (6.9)")
     checks = [
         ("shear, stirrups", sheet.require(at <= ties, "Stirrups", f"{STANDARD}, 6.2.3(3)")),
         ("shear, struts", sheet.require(face <= most, "Struts", f"{STANDARD}, 6.2.1(8), 6.2.3(3)")),
@@ -120,7 +118,7 @@ def write_shear(
         z * cot / 2,
         "mm",
         "Shift of the moments, and of the force in the bars",
-        f"{STANDARD}, 9.2.1.3(2) (9.2)",
+        "9.2.1.3(2) (9.2)",
         word="shift of the moments",
     )
     return ShearLines(z, cot, shift, area, spacing), checks
@@ -135,7 +133,7 @@ def _concrete(
     effective: Line,
     at: Line,
 ) -> None:
-    national, cite = design.case.national, f"{STANDARD}, 6.2.2(1)"
+    national, cite = design.case.national, "6.2.2(1)"
     k = sheet.hence("k", least(1 + sqrt(quantity(200, "mm") / effective), 2), "1", "Size factor", cite)
     rho = sheet.hence(
         "rho_l",
@@ -151,7 +149,7 @@ def _concrete(
         "V_Rd,c",
         in_unit(greatest(term, floor), "MPa") * size.width * effective,
         "kN",
-        "Shear the concrete carries without stirrups (f_ck in MPa)",
+        "Shear the concrete carries without stirrups (strengths in MPa)",
         f"{cite} (6.2a, 6.2b, 6.3N)",
     )
     needs = at.value > carried.value
@@ -172,7 +170,7 @@ def _concrete(
 
 def _stirrups(sheet: Sheet, design: Design, origin: str) -> tuple[Line, Line]:
     stirrups = design.shear.stirrups
-    legs = sheet.take("n_w", stirrups.legs, "1", "Legs of a stirrup", origin, word="legs of a stirrup")
+    legs = number(stirrups.legs)
     bar = next(line for line in sheet.lines.values() if line.symbol == "phi_w")
     area = sheet.hence(
         "A_sw",
@@ -180,7 +178,7 @@ def _stirrups(sheet: Sheet, design: Design, origin: str) -> tuple[Line, Line]:
         if abs(stirrups.bar.area - 3.141592653589793 * stirrups.bar.diameter**2 / 4) < 1e-12
         else legs * measured(stirrups.bar.area * 1e6, "mm^2"),
         "mm^2",
-        "Area of a stirrup's legs",
+        f"Area of a stirrup's {stirrups.legs} legs",
         "geometry",
         word="shear reinforcement within one spacing",
     )
@@ -205,7 +203,7 @@ def _cot(
     nu: Line,
 ) -> Line:
     case, national = design.case, design.case.national
-    cite, word = f"{STANDARD}, 6.2.3(2) (6.7N)", "cotangent of the strut angle"
+    cite, word = "6.2.3(2) (6.7N)", "cotangent of the strut angle"
     if case.given.cot:
         return sheet.take(
             "cot theta", case.given.cot, "1", "Strut angle", "beam design.cot_theta", cite, word=word
@@ -215,7 +213,11 @@ def _cot(
         force = number(national["alpha_cw"]) * force
     inside = force / (area * strength.fyd) - 1
     low, high = number(national["cot_theta_min"]), number(national["cot_theta_max"])
-    best = sqrt(greatest(inside, 0))
+    # below the square root nothing is negative unless the stirrups outdo the struts
+    outdone = (
+        strength.fcd.value * nu.value * size.width.value * spacing.value < area.value * strength.fyd.value
+    )
+    best = sqrt(greatest(inside, 0)) if outdone else sqrt(inside)
     return sheet.hence(
         "cot theta",
         least(greatest(best, low), high),
@@ -269,8 +271,8 @@ def write_stirrup_limits(
         "rho_w,min",
         in_unit(number(national["rho_w_min"]) * sqrt(number_in(strength.fck, "MPa")), "MPa") / strength.fyk,
         "1",
-        "Least ratio of stirrups (f_ck in MPa)",
-        f"{STANDARD}, 9.2.2(5) (9.5N)",
+        "Least ratio of stirrups (strengths in MPa)",
+        "9.2.2(5) (9.5N)",
         word="least ratio of stirrups",
     )
     found = [

@@ -15,6 +15,7 @@ from calcpack.clauses.en1992.write_bending import (
     write_amount,
     write_bars,
     write_bending,
+    write_most,
     write_spacing,
 )
 from calcpack.clauses.en1992.write_materials import StrengthLines, millimetres, write_flange, write_strengths
@@ -76,7 +77,7 @@ class ConcreteBeam:
     def origin(self, key: str) -> str:
         """Where bars come from."""
         given = self.design.case.given
-        return f"{self.place} design.{key}" if getattr(given, key) else "chosen, see above"
+        return f"{self.place} design.{key}" if getattr(given, key) else "chosen"
 
     def keep(self, checks: list[tuple[str, Line]]) -> None:
         """Requirements on the beam."""
@@ -112,30 +113,30 @@ def state_shown(beam: ConcreteBeam) -> None:
     sheet, design = beam.work.sheet, beam.design
     sheet.section("What is shown, and the reinforcement")
     listed = [each for each in checks if each[0].startswith(SHOWN)]
-    sheet.ratios(ratio_rows(beam.work, listed))
     others = [line.check(name) for name, line in checks if not name.startswith(SHOWN)]
     failed = [check["name"] for check in others if not check["passes"]]
-    if failed:
-        sheet.text(f"Not satisfied besides: {', '.join(failed)}.", role="unsafe")
-    else:
-        sheet.text(
-            f"{len(others)} further requirements are satisfied: "
-            f"{', '.join(check['name'] for check in others)}.",
-            role="note",
-        )
     with sheet.columns([10, 13]) as column:
         for figure, caption in section_figures(beam.work, design):
             sheet.figure(figure, caption)
         column()
-        sheet.items(
-            [
-                bottom_words(beam.work, design),
-                *top_words(beam.work, design),
-                stirrup_words(beam.work, design),
-                f"Nationally determined parameters: {beam.about.national.name}; "
-                f"{beam.about.national.source}. Holds for {_limits()}.",
-            ]
-        )
+        sheet.ratios(ratio_rows(beam.work, listed))
+        if failed:
+            sheet.text(f"Not satisfied besides: {', '.join(failed)}.", role="unsafe")
+        else:
+            sheet.text(
+                f"{len(others)} further requirements are satisfied: "
+                f"{', '.join(check['name'] for check in others)}.",
+                role="note",
+            )
+    sheet.items(
+        [
+            bottom_words(beam.work, design),
+            " ".join(top_words(beam.work, design)),
+            stirrup_words(beam.work, design),
+            f"Nationally determined parameters: {beam.about.national.name}; {beam.about.national.source}. "
+            f"Holds for {_limits()}.",
+        ]
+    )
     sheet.figure(*bars_figure(beam.work, design))
 
 
@@ -149,6 +150,7 @@ def state_bending(beam: ConcreteBeam) -> None:
     material = work.given.material
     assert material is not None
     sheet.section("Bending")
+    sheet.text(f"Clauses without the name of a standard are those of {STANDARD}:2004 + AC:2010.", role="note")
     changed = {
         key: f"{beam.place} design.national_values.{key}"
         for key, value in work.given.design["national_values"].items()
@@ -161,21 +163,37 @@ def state_bending(beam: ConcreteBeam) -> None:
     blocks = _blocks(beam, size)
     beam.strength, beam.size = strength, size
     checks: list[tuple[str, Line]] = []
+    sheet.subsection("Span, bottom bars in tension" if case.sag else "Bottom bars")
     beam.faces["sag"] = write_bars(sheet, design.bottom, "sag", size, blocks["sag"], beam.origin("bottom"))
+    if case.sag:
+        checks += _bending(beam, "sag")
     if design.top:
+        sheet.subsection("Support, top bars in tension")
         beam.faces["hog"] = write_bars(sheet, design.top, "hog", size, blocks["hog"], beam.origin("top"))
     if not design.top or design.top.bars.count != design.through.bars.count:
+        if not design.top:
+            sheet.subsection("End supports, top bars in tension" if case.end_moment else "Top bars")
         beam.faces["end"] = write_bars(sheet, design.through, "end", size, blocks["hog"], beam.origin("top"))
-    for tag, _ in beam.tags:
-        lines = beam.faces[tag]
-        sheet.subsection("Span, bottom bars in tension" if tag == "sag" else "Support, top bars in tension")
-        checks += write_bending(sheet, lines, strength, size, "analysis, envelope", _other(beam, tag))
-        checks += write_amount(sheet, lines, strength, size)
-        checks += write_spacing(sheet, lines, size)
+    if design.top:
+        checks += _bending(beam, "hog")
     if case.end_moment:
         checks += _end_support(beam, strength, size)
+    sheet.subsection("Both faces")
+    checks += write_most(sheet, [beam.faces[tag] for tag, _ in beam.tags], size)
     checks += write_cover(sheet, design, size, list(beam.faces.values()))
     beam.keep(checks)
+
+
+def _bending(beam: ConcreteBeam, tag: str) -> list[tuple[str, Line]]:
+    """Bending, least reinforcement and spacing of a face."""
+    assert beam.strength is not None
+    assert beam.size is not None
+    sheet, lines = beam.work.sheet, beam.faces[tag]
+    return [
+        *write_bending(sheet, lines, beam.strength, beam.size, "analysis, envelope", _other(beam, tag)),
+        *write_amount(sheet, lines, beam.strength, beam.size),
+        *write_spacing(sheet, lines, beam.size),
+    ]
 
 
 def _other(beam: ConcreteBeam, tag: str) -> FaceLines | None:
@@ -187,20 +205,25 @@ def _other(beam: ConcreteBeam, tag: str) -> FaceLines | None:
 def _end_support(beam: ConcreteBeam, strength: StrengthLines, size: SizeLines) -> list[tuple[str, Line]]:
     """What an end support that is taken to turn freely may hold all the same."""
     sheet = beam.work.sheet
-    lines = beam.faces.get("end")
-    if lines is None:
-        hog = beam.faces["hog"]
-        lines = replace(hog, face=beam.design.through, tag="end")
     share = beam.design.case.national["beta_1"]
-    sheet.subsection("End supports, top bars in tension")
-    found = write_bending(
-        sheet,
-        lines,
-        strength,
-        size,
-        f"{share:g} of the largest moment of the spans, {STANDARD}, 9.2.1.2(1)",
+    origin = f"{share:g} of the spans' largest moment, 9.2.1.2(1)"
+    lines = beam.faces.get("end")
+    if lines is not None:
+        found = write_bending(sheet, lines, strength, size, origin)
+        return found + write_amount(sheet, lines, strength, size)
+    moment = sheet.take(
+        "M_Ed,end",
+        beam.design.case.end_moment,
+        "kN*m",
+        "Moment that an end support may still hold",
+        origin,
+        given=False,
     )
-    return found + write_amount(sheet, lines, strength, size)
+    resistance = next(line for line in sheet.lines.values() if line.symbol == "M_Rd,hog")
+    line = sheet.require(
+        moment <= resistance, "Bending, end support, all top bars running through", f"{STANDARD}, 9.2.1.2(1)"
+    )
+    return [("bending, end support", line)]
 
 
 def _size(beam: ConcreteBeam) -> SizeLines:
@@ -219,17 +242,26 @@ def _size(beam: ConcreteBeam) -> SizeLines:
 
     width, depth = size("width", "b", "Width of the beam"), size("depth", "h", "Depth of the beam")
     flange = size("flange_depth", "h_f", "Depth of the flange") if section.shape == "tee" else None
-    return SizeLines(
-        width,
-        depth,
-        flange,
-        detail("c_nom", design["cover"], "Nominal cover of the stirrups", f"{beam.place} design.cover",
-               "nominal cover"),
-        detail("phi_w", beam.design.shear.stirrups.bar.diameter, "Diameter of the stirrups",
-               beam.origin("stirrups"), "diameter of stirrups"),
-        detail("d_g", design["aggregate"], "Largest aggregate", f"{beam.place} design.aggregate",
-               "largest aggregate"),
-    )  # fmt: skip
+    cover = detail(
+        "c_nom",
+        design["cover"],
+        "Nominal cover of the stirrups",
+        f"{beam.place} design.cover",
+        "nominal cover",
+    )
+    stirrup = detail(
+        "phi_w",
+        beam.design.shear.stirrups.bar.diameter,
+        "Diameter of the stirrups",
+        beam.origin("stirrups"),
+        "diameter of stirrups",
+    )
+    inset = sheet.hence(
+        "c", cover + stirrup, "mm", "Cover of the bars", "geometry", word="cover of the longitudinal bars"
+    )
+    origin = f"{beam.place} design.aggregate"
+    aggregate = detail("d_g", design["aggregate"], "Largest aggregate", origin, "largest aggregate")
+    return SizeLines(width, depth, flange, cover, stirrup, inset, aggregate)
 
 
 def _blocks(beam: ConcreteBeam, size: SizeLines) -> dict[str, Line]:
@@ -241,13 +273,14 @@ def _blocks(beam: ConcreteBeam, size: SizeLines) -> dict[str, Line]:
     origin = "framing plan; neighbours as wide as this beam"
     if not section.effective_flange:
         origin = f"section {section.key} flange_width"
-    found = []
+    found: list[Line] = []
+    known: dict[str, Line] = {}
     for tag, flange in zip(("sag", "hog"), beam.about.flanges, strict=True):
         if tag == "hog" and beam.design.top is None:
             continue
         lengths = [(share, beam.work.lines["span", number]) for share, number in flange.lengths]
         found.append(
-            write_flange(beam.work.sheet, tag, flange.words, size.width, lengths, flange.sides, origin)
+            write_flange(beam.work.sheet, tag, flange.words, size.width, lengths, flange.sides, origin, known)
         )
     return {"sag": found[0], "hog": size.width}
 
@@ -269,11 +302,13 @@ def state_shear(beam: ConcreteBeam) -> None:
     _places_table(beam)
     checks += write_along(sheet, design)
     checks += write_stirrup_limits(sheet, design, strength, size, beam.shear, effective)
-    sheet.figure(*shear_figure(work, design))
     checks += write_end(sheet, design, beam.faces["sag"], strength, beam.shear)
     if design.zones:
         _stopped(beam, strength)
-    sheet.figure(*moment_figure(work, design))
+    with sheet.columns([1, 1]) as column:
+        sheet.figure(*moment_figure(work, design))
+        column()
+        sheet.figure(*shear_figure(work, design))
     beam.keep(checks)
 
 

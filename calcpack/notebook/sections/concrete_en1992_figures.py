@@ -17,6 +17,7 @@ from calcpack.figures.section import section_figure
 from calcpack.notebook.work import Work
 
 SAMPLES = 160
+HALF = 84.0  # [mm], two figures side by side
 
 
 def _bearings(work: Work) -> list[tuple[float, str, str]]:
@@ -123,6 +124,7 @@ def moment_figure(work: Work, design: Design) -> tuple[Figure, str]:
         work.study.system,
         fixed=case.fixed,
         mark=work.given.mark,
+        width_mm=HALF,
     )
     shift = work.show(design.shear.shift, "m")
     return figure, f"Moments of all strength combinations, shifted by {shift} (9.2.1.3), and the resistance."
@@ -157,6 +159,7 @@ def shear_figure(work: Work, design: Design) -> tuple[Figure, str]:
         compared=compared,
         fixed=case.fixed,
         mark=work.given.mark,
+        width_mm=HALF,
     )
     return figure, "Shear of all strength combinations and the smaller of what stirrups and struts carry."
 

@@ -154,8 +154,9 @@ def _span_depth(work: Work, design: Design, faces: Mapping[str, FaceLines], stre
         return
     found = max(design.span_depths, key=lambda each: round(each.actual / each.limit, 9))
     tag = "hog" if design.case.spans[found.number].overhang else "sag"
+    moments = (line for line in work.sheet.lines.values() if line.symbol == f"M_Ed,{tag}")
     actual, limit = write_span_depth(
-        work.sheet, faces[tag], strength, found, work.lines["span", found.number]
+        work.sheet, faces[tag], strength, found, work.lines["span", found.number], next(moments, None)
     )
     within = actual.value <= limit.value * (1 + 1e-9)
     more = " (the span that comes closest)" if len(design.span_depths) > 1 else ""
