@@ -159,9 +159,13 @@ def choose_bars(task: Task, sizes: Sequence[str], fewest: int = 2, most: int = M
         for group in groups:
             if pressed.area <= group.area and task.suits(group, pressed):
                 return Chosen(group, pressed, True)
-    ductile = [each for each in groups if task.state(each).strain >= task.strengths.yield_strain + 0.003]
-    strongest = max(ductile or groups[:1], key=lambda each: task.state(each).design)
-    return Chosen(strongest, None, False)
+    pairs: list[tuple[Group, Group | None]] = [(each, None) for each in groups]
+    pairs += [(each, each) for each in groups]  # as many bars in compression as in tension
+    ductile = [
+        pair for pair in pairs if task.state(*pair).strain >= task.strengths.yield_strain + 0.003 - 1e-12
+    ]
+    strongest = max(ductile or pairs[:1], key=lambda pair: task.state(*pair).design)
+    return Chosen(*strongest, False)
 
 
 class Web(NamedTuple):
@@ -218,7 +222,7 @@ def rounded_down(length: float, step: float) -> float:
     >>> round(rounded_down(0.2499, 0.025), 3), round(rounded_down(0.25, 0.025), 3)
     (0.225, 0.25)
     """
-    return math.floor(length / step + 1e-9) * step
+    return round(math.floor(length / step + 1e-9) * step, 12)
 
 
 def legs_needed(web: Web, cage: Cage, demand: float) -> int:

@@ -13,7 +13,8 @@ from calcpack.figures import section_figure
 from calcpack.notebook.sections.checks import state_checks
 from calcpack.notebook.sections.concrete_aci318_bars import state_bars
 from calcpack.notebook.sections.concrete_aci318_deflection import state_deflections
-from calcpack.notebook.sections.concrete_aci318_design import Design, Face, settle, shortest
+from calcpack.notebook.sections.concrete_aci318_design import Design, settle, shortest
+from calcpack.notebook.sections.concrete_aci318_faces import Face
 from calcpack.notebook.sections.concrete_aci318_lines import ENVELOPE, Written
 from calcpack.notebook.sections.concrete_aci318_rehearsal import draft_of, ratio_rows
 from calcpack.notebook.sections.concrete_aci318_shear import state_shear

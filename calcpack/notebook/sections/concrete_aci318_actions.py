@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
-from typing import NamedTuple
+from typing import Literal, NamedTuple
 
 import numpy as np
 
@@ -15,6 +15,7 @@ from calcpack.job.model import Case, Point
 from calcpack.notebook.work import Work
 from calcpack.statics import Band, Envelope, Extreme, PointLoad, envelope
 
+Side = Literal["left", "right"]
 SAMPLES = 400  # places looked at along a span
 
 
@@ -121,21 +122,20 @@ class Actions:
         places += [bearing.at for bearing in self.given.bearings if not _inside(bearing.at, windows)]
         if not _inside(least.at, windows):
             places.append(least.at)
-        values = [(min(lower.at(x), lower.at(x, "left")), x) for x in places]
-        value, at = min(values, key=lambda pair: (round(pair[0], 9), pair[1]))
+        x = np.array(places)
+        values = np.minimum(lower.values(x, "right"), lower.values(x, "left")).tolist()
+        value, at = min(zip(values, places, strict=True), key=lambda pair: (round(pair[0], 9), pair[1]))
         return Extreme(-value, at) if value < 0 else None
 
     def hogging_reach(self, stretch: Stretch, left: bool) -> float:
         """How far from an end any combination hogs [m]."""
-        lower = self.moment.lower
         xs = np.linspace(stretch.start, stretch.end, SAMPLES + 1)
+        values = self.moment.lower.values(xs, "right" if left else "left")
         if not left:
-            xs = xs[::-1]
+            values = values[::-1]
         scale = max(abs(self.moment.smallest.value), abs(self.moment.largest.value))
-        for number, x in enumerate(xs.tolist()):
-            if lower.at(x, "right" if left else "left") > -1e-6 * scale:
-                return number * stretch.length / SAMPLES
-        return stretch.length
+        over = np.flatnonzero(values > -1e-6 * scale)
+        return float(over[0]) * stretch.length / SAMPLES if len(over) else stretch.length
 
     def hogs(self, stretch: Stretch, left: bool) -> bool:
         """Whether a stretch hogs at an end."""
@@ -145,26 +145,24 @@ class Actions:
 
     # Shear
 
+    def shears(self, places: Sequence[float], sides: Sequence[Side] = ("left", "right")) -> list[float]:
+        """Largest shear at each of some places, by size [kN]; at a jump that of the side asked for."""
+        x = np.array(places, dtype=float)
+        found = [
+            np.abs(curve.values(x, side)) for curve in (self.shear.upper, self.shear.lower) for side in sides
+        ]
+        return [float(value) for value in np.max(found, axis=0)]
+
     def shear_at(self, x: float) -> float:
         """Largest shear at a place, by size [kN]."""
-        sides = ("left", "right")
-        return max(
-            abs(curve.at(x, side))  # type: ignore[arg-type]
-            for curve in (self.shear.upper, self.shear.lower)
-            for side in sides
-        )
+        return self.shears([x])[0]
 
     def largest_shear(self, start: float, end: float) -> float:
         """Largest shear over a stretch, by size [kN]."""
         breaks = [x for x in self.shear.upper.breaks.tolist() if start < x < end]
-        even = np.linspace(start, end, 60).tolist()
-        inside = max((self.shear_at(x) for x in (*breaks, *even[1:-1])), default=0.0)
-        at_ends = max(
-            abs(curve.at(x, side))  # type: ignore[arg-type]
-            for curve in (self.shear.upper, self.shear.lower)
-            for x, side in ((start, "right"), (end, "left"))
-        )
-        return max(inside, at_ends)
+        inside = self.shears([*breaks, *np.linspace(start, end, 60).tolist()[1:-1]])
+        ends: tuple[tuple[float, Side], ...] = ((start, "right"), (end, "left"))
+        return max(*inside, *(self.shears([x], [side])[0] for x, side in ends))
 
     def critical(self, depth: float) -> list[Critical]:
         """The critical section at every supported end of every stretch.
@@ -213,7 +211,7 @@ class Actions:
         """How far from the support's centre the shear is above a strength [m]; 0 if nowhere."""
         stretch = self.stretches[critical.span - 1]
         xs = np.linspace(stretch.start, stretch.end, SAMPLES + 1).tolist()
-        shears = [self.shear_at(x) if stretch.start < x < stretch.end else 0.0 for x in xs]
+        shears = self.shears(xs)
         inner = range(1, SAMPLES)
         quiet = min(inner, key=lambda n: (round(shears[n], 9), n))
         if stretch.overhang:
@@ -249,8 +247,7 @@ class Actions:
 
     def _end_shear(self, stretch: Stretch, left: bool) -> float:
         x = stretch.start if left else stretch.end
-        side = "right" if left else "left"
-        return max(abs(curve.at(x, side)) for curve in (self.shear.upper, self.shear.lower))  # type: ignore[arg-type]
+        return self.shears([x], ["right" if left else "left"])[0]
 
     def _inflection(self, stretch: Stretch, left: bool) -> float | None:
         """Where the span begins to sag, seen from an end; None where it sags from the end on or nowhere."""

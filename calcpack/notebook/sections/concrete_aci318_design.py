@@ -10,59 +10,28 @@ from typing import NamedTuple
 from calcpack.clauses.aci318.arrangement import Cage, Group, arranged
 from calcpack.clauses.aci318.choice import (
     CLOSEST,
-    MAIN,
-    MOST_BARS,
     STEP,
     STIRRUPS,
-    Chosen,
     Strengths,
-    Task,
     Web,
-    choose_bars,
     legs_needed,
     rounded_down,
 )
-from calcpack.clauses.aci318.detailing import End, available, is_small
 from calcpack.clauses.aci318.flange import Wing, wing_width
 from calcpack.clauses.aci318.limits import bound, guard
-from calcpack.clauses.aci318.strength import INCH, Bending, Block, development_length
-from calcpack.clauses.bars import Bar, bar
+from calcpack.clauses.aci318.strength import INCH
+from calcpack.clauses.bars import Bar
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Material, Section
 from calcpack.notebook.sections.concrete_aci318_actions import Actions, Critical, Stretch, wings_of
+from calcpack.notebook.sections.concrete_aci318_faces import Face, is_high, read_bar, settle_faces
 from calcpack.notebook.work import Work
-from calcpack.statics import Extreme
 
-HANGERS = {"US": "#4", "SI": "12 mm"}
 COVER = {
     "US": {"inside": 1.5 * INCH, "weather": 2 * INCH, "ground": 3 * INCH},
     "SI": {"inside": 0.040, "weather": 0.055, "ground": 0.080},
 }
 AGGREGATE = {"US": 0.75 * INCH, "SI": 0.020}
-FRESH = 12 * INCH  # concrete below top bars from which on these are "top bars", Table 25.4.2.5
-
-
-class Face(NamedTuple):
-    """The bars at one face with what bends them.
-
-    Parameters
-    ----------
-    group : Group
-    task : Task or None
-        None where no moment puts this face in tension: the bars are hangers.
-    extreme : Extreme or None
-        The moment, as an amount, and its place.
-    state : Bending or None
-        At nominal strength.
-    pressed : Group or None
-        The bars at the other face, where they are counted.
-    """
-
-    group: Group
-    task: Task | None
-    extreme: Extreme | None
-    state: Bending | None
-    pressed: Group | None
 
 
 class Zone(NamedTuple):
@@ -122,7 +91,7 @@ class Design:
     @property
     def top_is_high(self) -> bool:
         """Whether top bars have more than 12 in of fresh concrete below them."""
-        return self.cage.depth - self.top.group.heights[0] - self.top.group.bar.diameter / 2 > FRESH
+        return is_high(self.top.group)
 
     @property
     def clear_span(self) -> float:
@@ -184,7 +153,7 @@ def settle(work: Work) -> Design:
     aggregate = keys["aggregate"] or AGGREGATE[system]
     best: Design | None = None
     for size, more in _stirrup_trials(keys["stirrups"]["size"], system):
-        stirrup = _bar(work, size, "design.stirrups.size")
+        stirrup = read_bar(work, size, "design.stirrups.size")
         cage = Cage(
             section.dimensions["width"], section.dimensions["depth"], cover, stirrup.diameter, aggregate
         )
@@ -229,15 +198,6 @@ def _strengths(work: Work, material: Material) -> Strengths:
     return Strengths(fc, fy, min(fy, bound("f_yt")), es)
 
 
-def _bar(work: Work, size: str, key: str) -> Bar:
-    try:
-        return bar(size)
-    except CalcpackError as error:
-        raise CalcpackError(
-            *(problem.at(mark=f"beam {work.given.mark}", key=key) for problem in error.problems)
-        ) from None
-
-
 def _flange(section: Section, wings: tuple[Wing, ...], clear: float) -> float | None:
     """Width of a tee's flange as far as it acts [m]."""
     if section.shape != "tee":
@@ -269,7 +229,7 @@ def _with_stirrups(
 ) -> Design:
     """The design with stirrups of one size."""
     how: list[str] = []
-    bottom, top, through = _faces(work, actions, section, strengths, cage, flange, how)
+    bottom, top, through = settle_faces(work, actions, section, strengths, cage, flange, how)
     web = _web(cage, strengths, bottom, top)
     criticals = tuple(actions.critical(web.depth))
     largest = max((each.shear for each in criticals), default=0.0)
@@ -321,115 +281,6 @@ def _web(cage: Cage, strengths: Strengths, bottom: Face, top: Face) -> Web:
     return Web(cage.width, least.depth, least.area / (cage.width * least.depth), strengths)
 
 
-def _faces(
-    work: Work,
-    actions: Actions,
-    section: Section,
-    strengths: Strengths,
-    cage: Cage,
-    flange: float | None,
-    how: list[str],
-) -> tuple[Face, Face, bool]:
-    """Bars at the bottom and at the top; whether the top ones run through."""
-    width = cage.width
-    sagging, hogging = actions.sagging, actions.hogging
-    face_width = flange if flange is not None else width
-    depth = section.dimensions.get("flange_depth", 0.0)
-    ends = actions.ends(cage.cover)
-
-    def developed(group: Group, state: Bending) -> bool:
-        length = _development(group, strengths, top=False)
-        return all(length <= available(end, state.nominal, group.depth, group.bar.diameter) for end in ends)
-
-    determinate = len(work.given.bearings) + sum(work.given.fixed) == 2
-    wide = min(face_width, 2 * width) if determinate else width
-    below = sagging and Task(
-        sagging.value, Block(face_width, width, depth), width, cage, strengths, developed
-    )
-    above = hogging and Task(hogging.value, Block(width, width), wide, cage, strengths)
-    first = _settled(work, "bottom", below, cage, how)
-    second = _settled(work, "top", above, cage, how)
-    keys = work.given.design
-    bottom, top = first.group, second.group
-    free = {name: not (keys[name]["count"] or keys[name]["size"]) for name in ("bottom", "top")}
-    if second.pressed is not None and free["bottom"] and second.pressed.area > bottom.area:
-        bottom = second.pressed
-        how.append(f"bottom bars: {bottom.words}, as the support section needs them in compression")
-    if first.pressed is not None and free["top"] and first.pressed.area > top.area:
-        top = first.pressed
-        how.append(f"top bars: {top.words}, as the span section needs them in compression")
-    lower, upper = _face(below, bottom, top, sagging), _face(above, top, bottom, hogging)
-    spans = [each for each in actions.stretches if not each.overhang]
-    through = lower.pressed is not None
-    if upper.task is not None and not through:
-        through = top.count <= 2 or any(
-            actions.hogging_reach(each, True) + actions.hogging_reach(each, False) >= 0.7 * each.length
-            for each in spans
-        )
-    return lower, upper, through
-
-
-def _development(group: Group, strengths: Strengths, *, top: bool) -> float:
-    """Development length of a group's bars [m]."""
-    edge = group.heights[0]
-    side = group.spacing / 2 if group.layers[0] > 1 else edge
-    return development_length(
-        group.bar.diameter,
-        strengths.fc,
-        strengths.fy,
-        min(edge, side) / group.bar.diameter,
-        top=top,
-        small=is_small(group),
-    )
-
-
-def _face(task: Task | None, group: Group, other: Group, extreme: Extreme | None) -> Face:
-    """A face settled: the other face's bars are counted where the section is not strong enough alone."""
-    if task is None:
-        return Face(group, None, None, None, None)
-    alone = task.state(group)
-    if task.strong(alone):
-        return Face(group, task, extreme, alone, None)
-    both = task.state(group, other)
-    if both.stress_c > 0 and (task.strong(both) or both.design > alone.design):
-        return Face(group, task, extreme, both, other)
-    return Face(group, task, extreme, alone, None)
-
-
-def _settled(work: Work, name: str, task: Task | None, cage: Cage, how: list[str]) -> Chosen:
-    """The bars of one face: the job's, or chosen ones."""
-    keys, system = work.given.design[name], work.study.system
-    count, size = keys["count"], keys["size"]
-    sizes: tuple[str, ...] = MAIN[system]
-    if size:
-        sizes = (_bar(work, size, f"design.{name}.size").name,)
-    if count and size:
-        return Chosen(arranged(count, bar(sizes[0]), cage), None, True)
-    if task is None:
-        words = "hangers for the stirrups, no moment puts this face in tension"
-        group = arranged(count or 2, bar(sizes[0] if size else HANGERS[system]), cage)
-        how.append(f"{name} bars: {group.words}, {words} (common practice)")
-        return Chosen(group, None, True)
-    try:
-        chosen = choose_bars(task, sizes, count or 2, count or MOST_BARS)
-    except ValueError:
-        raise CalcpackError(
-            "no bars fit into the web with the clear distances of 25.2.1",
-            remedy="make the section wider",
-            mark=f"beam {work.given.mark}",
-            key=f"design.{name}",
-        ) from None
-    words = (
-        "the fewest bars that satisfy strength, strain, least steel, clear distances, crack control"
-        + (" and development" if name == "bottom" else "")
-        + ", one layer before two"
-        if chosen.satisfied
-        else "nothing satisfies every clause; the strongest ductile bars stand here"
-    )
-    how.append(f"{name} bars: {chosen.group.words}; {words}")
-    return chosen
-
-
 def _zones(
     actions: Actions,
     criticals: Sequence[Critical],
@@ -464,13 +315,3 @@ def _zones(
         if reach[False]:
             zones.append(Zone(right_start, stretch.end, close, ends[False].shear, True))
     return zones
-
-
-def worst_end(ends: Sequence[End], nominal: float, group: Group, *, inflection: bool) -> End | None:
-    """The end with the least development length at hand, of one kind."""
-
-    def at_hand(end: End) -> float:
-        return available(end, nominal, group.depth, group.bar.diameter)
-
-    fitting = [end for end in ends if (end.kind == "inflection") == inflection and end.shear > 0]
-    return min(fitting, key=at_hand, default=None)
