@@ -1,0 +1,203 @@
+"""Whole sheets, from a job file to the record, without a kernel."""
+
+import json
+import tomllib
+
+import pytest
+
+from calcpack.framing import frame
+from calcpack.job import read_job
+from calcpack.job.errors import CalcpackError
+from calcpack.job.house import house_folder
+from calcpack.notebook import load_sheet, sections
+from calcpack.notebook.parameters import beam_input, to_text
+from calcpack.notebook.sections import steel_en1993 as steel
+from calcpack.notebook.sections.closing import record_results
+from calcpack.notebook.sections.steel_en1993_results import shown_of
+from calcpack.notebook.templates import find_template
+
+JOB = """
+format = 1
+[job]
+number = "31"
+title = "Net loft"
+date = 2026-12-01
+units = "{units}"
+[basis]
+actions = "EN 1990"
+occupancy = "B"
+[grid]
+x = {{ A = "0 m", B = "6 m", C = "11 m" }}
+y = {{ 1 = "0 m", 2 = "3 m" }}
+[materials.s]
+grade = "{grade}"
+[sections.girder]
+shape = "{shape}"
+{size}
+[[panel]]
+mark = "P1"
+corners = ["A1", "B2"]
+thickness = "150 mm"
+live = "3 kPa"
+[[panel]]
+mark = "P2"
+corners = ["B1", "C2"]
+thickness = "150 mm"
+live = "3 kPa"
+[[wall]]
+mark = "W1"
+line = ["A2", "C2"]
+[[column]]
+mark = "C1"
+at = "A1"
+[[column]]
+mark = "C2"
+at = "B1"
+[[column]]
+mark = "C3"
+at = "C1"
+[[beam]]
+mark = "G1"
+line = ["A1", "B1", "C1"]
+section = "girder"
+material = "s"
+template = "steel_beam_en1993"
+design = {{ {design} }}
+[[beam.load]]
+case = "live"
+point = "60 kN"
+at = "0.4 m"
+"""
+
+
+def work_of(tmp_path, units="SI", grade="S275", size='designation = "IPE 330"', shape="rolled", design=""):
+    path = tmp_path / "job.toml"
+    path.write_text(JOB.format(units=units, grade=grade, size=size, shape=shape, design=design))
+    framed = frame(read_job(path))
+    template = find_template("steel_beam_en1993", tmp_path)
+    given = template.settle(framed.beams["G1"].beam.design, "G1")
+    return load_sheet(to_text(beam_input(framed, "G1", given, template.stamp)))
+
+
+def written(work):
+    for state in (
+        "place", "basis", "given", "transfer", "equivalents", "loads", "combinations", "effects",
+    ):  # fmt: skip
+        getattr(sections, f"state_{state}")(work)
+    beam = steel.design_of(work)
+    steel.state_steel_results(work, beam)
+    given, partial, epsilon = steel.state_steel_section(work, beam)
+    steel.state_steel_resistance(work, beam, given, partial, epsilon)
+    steel.state_steel_buckling(work, beam, given, partial)
+    steel.state_steel_bearing(work, beam, given, partial)
+    sections.state_checks(work)
+    sections.state_summary(work)
+    sections.state_notation(work)
+    return beam, record_results(work)
+
+
+DESIGNS = {
+    "plain": "",
+    "rolled": 'buckling_curves = "rolled", unbraced_length = "2 m", load_height = "bottom"',
+    "held": 'braced = "continuous", buckling_curves = "rolled", web_held = "at supports"',
+    "factors": 'gamma_M0 = 1.05, gamma_M1 = 1.1, C1 = 1.0, load_height = "centre", web_held = "everywhere"',
+}
+
+
+@pytest.mark.parametrize("design", DESIGNS)
+def test_both_unit_systems_agree_and_the_schedule_says_what_the_lines_say(tmp_path, design):
+    found = {}
+    for units in ("SI", "US"):
+        work = work_of(tmp_path, units, design=DESIGNS[design])
+        beam, results = written(work)
+        found[units] = results
+        # before the lines, and after them
+        shown = [row.ratio for row in shown_of(work, beam)]
+        assert shown == pytest.approx([check["ratio"] for check in results["checks"]], rel=1e-9)
+        assert [row.ratio <= 1 for row in shown_of(work, beam)] == [
+            check["passes"] for check in results["checks"]
+        ]
+    si, us = (found[units]["checks"] for units in ("SI", "US"))
+    assert [check["cite"] for check in si] == [check["cite"] for check in us]
+    assert [check["ratio"] for check in us] == pytest.approx([check["ratio"] for check in si], rel=1e-9)
+    governing = found["SI"]["governing"]
+    assert governing["ratio"] == max(check["ratio"] for check in si)
+
+
+def test_checks_are_complete(tmp_path):
+    _, results = written(work_of(tmp_path))
+    names = [check["name"] for check in results["checks"]]
+    assert names == [
+        "bending",
+        "shear",
+        "lateral-torsional buckling, 0.00\u00a0m to 6.00\u00a0m",
+        "web under the force at column C1",
+        "force with bending at column C2",
+        "deflection, live load",
+        "deflection, G + Q",
+    ]
+    assert all(check["cite"] for check in results["checks"])
+
+
+def test_deflection_limits_left_out_and_given(tmp_path):
+    work = work_of(tmp_path)
+    assert work.given.design["deflection_limits"] == {"live": 360, "total": 250}
+    assert work_of(tmp_path, design="deflection_limits = { live = 500 }").given.design[
+        "deflection_limits"
+    ] == {"live": 500, "total": 250}
+
+
+def test_a_beam_too_weak_is_finished_and_said_to_be(tmp_path):
+    work = work_of(tmp_path, size='designation = "IPE 160"')
+    _, results = written(work)
+    failing = [check["name"] for check in results["checks"] if not check["passes"]]
+    assert any(name.startswith("lateral-torsional") for name in failing)
+    assert "bending" in failing
+    assert any("Not satisfied" in json.dumps(block) for block in work.sheet.blocks)
+
+
+def test_class_4_is_not_satisfied_in_words(tmp_path):
+    """A steel of the job's own, far stronger than S460: its flanges buckle first."""
+    work = work_of(tmp_path, grade="S460", size='designation = "HE 300 A"')
+    material = work.given.material.model_copy(update={"values": {"fy": 900e3, "fy_thick": 900e3}})
+    work.study.given = work.given.model_copy(update={"material": material})
+    beam, results = written(work)
+    assert beam.profile.section_class == 4
+    unmet = {check["name"] for check in results["checks"] if not check["passes"]}
+    assert {"class of the section", "nominal yield strength"} <= unmet
+    assert "class of the section (class 4 is not covered)" in json.dumps(work.sheet.blocks)
+
+
+@pytest.mark.parametrize(
+    ("keys", "words"),
+    [
+        ({"shape": "rectangle", "size": 'width = "200 mm"\ndepth = "300 mm"'}, "needs a rolled section"),
+        ({"grade": "C30/37"}, "gives no fy"),
+        ({"design": 'braced = "at beams", unbraced_length = "2 m"'}, "takes no unbraced length"),
+    ],
+)
+def test_what_cannot_be_designed_is_refused(tmp_path, keys, words):
+    with pytest.raises(CalcpackError, match=words):
+        steel.design_of(work_of(tmp_path, **keys))
+
+
+@pytest.mark.parametrize(
+    "design", ['buckling_curves = "wild"', "eta = 1.5", "gamma_M0 = 0.5", "bearing_length = 100", "x = 1"]
+)
+def test_keys_outside_what_the_template_knows_are_refused(tmp_path, design):
+    with pytest.raises(CalcpackError, match="design"):
+        work_of(tmp_path, design=design)
+
+
+def test_wide_flanges_of_the_other_library_work_too(tmp_path):
+    _, results = written(work_of(tmp_path, "US", "A992", 'designation = "W14X30"'))
+    assert results["governing"]["ratio"] > 0
+
+
+def test_template_says_what_it_does_not_cover():
+    text = (house_folder("report_templates") / "steel_beam_en1993" / "template.toml").read_text("utf-8")
+    settings = tomllib.loads(text)
+    assert any("class 4" in each for each in settings["not_covered"])
+    assert (
+        settings["parameters"]["gamma_M0"]["default"] == settings["parameters"]["gamma_M1"]["default"] == 1.0
+    )
