@@ -120,6 +120,16 @@ def test_web(name, from_end, bearing):
     assert found.value == pytest.approx(strength.web_crippling(shape, steel, bearing, from_end), rel=EXACT)
 
 
+def test_web_beside_the_limits_of_its_equations():
+    """Bearing 0.201 of the depth, the force 0.497 of it from the end: no limit may lie a hundredth off."""
+    sheet, shape, steel, steels, shapes = begun("W18X50")
+    bearing, from_end = 0.201 * shape.depth, 0.497 * shape.depth
+    length = sheet.take("l_b", bearing * 1000, "mm", "bearing", "job")
+    found = web_lines.state_web_crippling(sheet, shape, bearing, from_end, steels, shapes, length)
+    assert found.cite == "AISC 360-22 (J10-5b)"
+    assert found.value == pytest.approx(strength.web_crippling(shape, steel, bearing, from_end), rel=EXACT)
+
+
 def test_diagram_factor():
     sheet, *_ = begun("W18X50")
     values = {"M_r": 6.0, "M_A": 2.0, "M_B": 5.0, "M_C": 8.0}
