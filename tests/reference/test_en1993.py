@@ -36,8 +36,8 @@ def profile(name: str, strength: float, shear_modulus: float = 80.77e6) -> Profi
 
 
 # Multi-storey steel buildings, part 4 (Steel Buildings in Europe, 2008), worked example A.1: simply
-# supported, laterally unrestrained beam, the same as Access Steel SX001a-EN-EU. IPE 330, S235, span 5.70 m, load on the
-# top flange; pages 4-58 to 4-62. Page 4-61 read, the others from memory.
+# supported, laterally unrestrained beam, the same as Access Steel SX001a-EN-EU. IPE 330, S235, span 5.70 m,
+# load on the top flange; pages 4-58 to 4-62. Page 4-61 read, the others from memory.
 
 
 def unrestrained():

@@ -12,10 +12,10 @@ from calcpack.clauses.en1993.rules import CODE, CURVE_CITE, LARGEST_DIAGRAM, OVE
 from calcpack.clauses.en1993.section import Profile
 from calcpack.sheet import PI, Expression, Line, Sheet, least, number, sqrt
 
-SERNA = "Serna et al., J. Constr. Steel Res. 62 (2006), 566-580 (from memory)"
-ENERGY = "energy of one half sine wave; Timoshenko and Gere, ch. 6"
-HELD = "energy of sixteen half waves of twist; Trahair, Flexural-torsional buckling, ch. 8"
-CRITICAL = "NCCI SN003b (1), k = kw = 1; ENV 1993-1-1 (F.2) (from memory)"
+SERNA = "Serna et al., JCSR 62 (2006) 566 (from memory)"
+ENERGY = "half sine wave; Timoshenko and Gere, ch. 6"
+HELD = "sixteen half waves; Trahair, Flexural-torsional buckling, ch. 8"
+CRITICAL = "NCCI SN003b (1), k = kw = 1 (from memory)"
 
 
 class Critical(NamedTuple):
@@ -208,7 +208,7 @@ def _diagram(sheet: Sheet, demand: Line, found: Buckling, arrangement: str) -> L
         "mu",
         found.share,
         "1",
-        "Mean of (M/M_Ed,b)², weighted with sin² of the place in the half wave of twist",
+        "Mean square of the moments over the largest, weighted with sin² of the half wave of twist",
         arrangement,
         word="mean square of the moments over the half wave",
         given=False,
@@ -347,18 +347,18 @@ def _rolled(
         "lambdabar_LT,0",
         factors.plateau,
         "1",
-        "Plateau of rolled sections",
+        "Plateau of rolled sections (0.4 recommended)",
         f"{origin}.plateau",
-        f"{CODE} 6.3.2.3(1), recommended 0.4",
+        f"{CODE} 6.3.2.3(1)",
         word="length of the plateau",
     )
     beta = sheet.take(
         "beta",
         factors.beta,
         "1",
-        "Its correction",
+        "Its correction (0.75 recommended)",
         f"{origin}.beta",
-        f"{CODE} 6.3.2.3(1), recommended 0.75",
+        f"{CODE} 6.3.2.3(1)",
         word="correction factor of the buckling curve",
     )
     phi = sheet.hence(
@@ -382,7 +382,7 @@ def _rolled(
         number(1) / sqrt(diagram),
         "1",
         "Correction for the diagram",
-        f"{CODE} Table 6.6 in the form of 1/√C1",
+        f"{CODE} Table 6.6, as 1/√C1",
         word="correction for the moment diagram",
     )
     correction = sheet.hence(

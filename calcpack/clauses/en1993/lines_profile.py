@@ -245,14 +245,14 @@ def take_factors(sheet: Sheet, profile: Profile, origin: str = "design") -> Part
     def take(symbol: str, value: float, says: str, cite: str, word: str = "") -> Line:
         return sheet.take(symbol, value, "1", says, f"{origin}.{symbol}", cite, word=word)
 
-    cite = f"{CODE} 6.1(1), recommended 1.0"
-    gamma_M0 = take("gamma_M0", factors.gamma_M0, "Partial factor, cross-section", cite)
-    gamma_M1 = take("gamma_M1", factors.gamma_M1, "Partial factor, instability", cite)
+    cite = f"{CODE} 6.1(1)"
+    gamma_M0 = take("gamma_M0", factors.gamma_M0, "Partial factor, cross-section (1.0 recommended)", cite)
+    gamma_M1 = take("gamma_M1", factors.gamma_M1, "Partial factor, instability (1.0 recommended)", cite)
     eta = take(
         "eta",
         factors.eta,
-        "Hardening in the shear area",
-        f"{CODE} 6.2.6(3), 1.0 on the safe side",
+        "Hardening in the shear area (1.0 on the safe side)",
+        f"{CODE} 6.2.6(3)",
         "factor of the shear area",
     )
     return Partial(gamma_M0, gamma_M1, eta)
