@@ -6,7 +6,7 @@ from typing import Any, NamedTuple
 
 from calcpack.clauses.en1993.design import LocalForce, SteelBeam
 from calcpack.clauses.en1993.lines_profile import RANK
-from calcpack.clauses.en1993.rules import STRESS_SHARE
+from calcpack.clauses.en1993.rules import LIMITS, STRESS_SHARE
 from calcpack.figures import Capacity, Governing, capacity_figure, deflected_shape, section_figure
 from calcpack.notebook.work import Work
 from calcpack.statics import Extreme
@@ -121,11 +121,25 @@ def state_steel_results(work: Work, beam: SteelBeam) -> None:
     _figures(work, beam)
 
 
+def outside(beam: SteelBeam) -> list[str]:
+    """The limits of validity that the beam lies outside of, in words."""
+    profile = beam.profile
+    values = {
+        "thickness": profile.thickness * 1e3,
+        "yield": profile.strength / 1e3,
+        "class": profile.section_class,
+    }
+    return [
+        limit.says + (" (class 4 is not covered)" if key == "class" else "")
+        for key, limit in LIMITS.items()
+        if not limit.holds(values[key])
+    ]
+
+
 def _verdict(work: Work, beam: SteelBeam, rows: list[Shown]) -> None:
     most = max(rows, key=lambda row: round(row.ratio, 12))
     unmet = [row.says for row in rows if row.ratio > 1]
-    if beam.profile.section_class > 3:
-        unmet.insert(0, "class of the section (class 4 is not covered)")
+    unmet = outside(beam) + unmet
     if beam.profile.web_may_buckle:
         unmet.append("slenderness of the web (shear buckling is not covered)")
     if unmet:

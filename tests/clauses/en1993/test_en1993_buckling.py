@@ -5,6 +5,7 @@ import math
 import pytest
 from beams_en1993 import analysed, profile
 
+from calcpack.actions import Combination, LoadSet, analyse_beam
 from calcpack.clauses.en1993.buckling import imperfection, load_factor, reduction, twisting_load
 from calcpack.clauses.en1993.design import Conditions, beside_shear, design
 from calcpack.clauses.en1993.lines_buckling import buckling, critical
@@ -13,7 +14,7 @@ from calcpack.clauses.en1993.rules import RECOMMENDED, Factors
 from calcpack.clauses.en1993.segments import segments
 from calcpack.job.errors import CalcpackError
 from calcpack.sheet import Sheet
-from calcpack.statics import LineLoad, PointLoad
+from calcpack.statics import BeamLine, LineLoad, PointLoad
 
 
 @pytest.mark.parametrize("alpha", [0.21, 0.34, 0.49, 0.76])
@@ -146,6 +147,19 @@ def test_overhang_with_a_free_tip():
     assert centre.length == 2.0
     held = worked(beam, spans, supports, Conditions(load_height="centre"), tip_held=True).segments[1]
     assert held.diagram > 1.5
+
+
+def test_cantilever_held_at_its_root_alone():
+    beam = analyse_beam(
+        BeamLine(2.0, (0.0,), fixed_start=True),
+        [LoadSet("dead", (LineLoad(0, 2, 9, 9), PointLoad(2.0, 12.0)))],
+        [Combination("1.35 G", "strength", {"dead": 1.35})],
+    )
+    found = design(IPE, beam, segments([(0, 2)], [0]), Conditions(), fixed=(True, False))
+    assert found.bending.value == pytest.approx(-1.35 * (9 * 2 + 12 * 2))
+    assert (found.segments[0].length, found.segments[0].diagram) == (5.0, 1.0)
+    # the root bears on nothing; the load at the very tip does press on the flange there
+    assert [(each.support, each.at, each.beyond) for each in found.forces] == [(None, 2.0, 0.0)]
 
 
 def test_given_diagram_factor():

@@ -156,3 +156,8 @@ def test_limits_of_validity_are_one_table():
         "yield": (200.0, 460.0),
         "class": (1, 3),
     }
+
+
+def test_factor_for_the_strength():
+    assert profile("IPE 300").epsilon == 1.0
+    assert profile("IPE 300", "S355").epsilon == pytest.approx(0.8136, abs=5e-5)  # Table 5.2 prints 0.81

@@ -165,7 +165,9 @@ def test_class_4_is_not_satisfied_in_words(tmp_path):
     assert beam.profile.section_class == 4
     unmet = {check["name"] for check in results["checks"] if not check["passes"]}
     assert {"class of the section", "nominal yield strength"} <= unmet
-    assert "class of the section (class 4 is not covered)" in json.dumps(work.sheet.blocks)
+    assert "nominal yield strength; class of the section (class 4 is not covered)" in json.dumps(
+        work.sheet.blocks
+    )
 
 
 @pytest.mark.parametrize(
