@@ -32,6 +32,7 @@ def square_feet(value):
     [
         (399.9, 1.0),
         (400, 1.0),
+        (420.25, 0.25 + 15 / 20.5),
         (625, 0.85),
         (900, 0.75),
         (1600, 0.625),
@@ -118,3 +119,9 @@ def test_cantilevers_have_half_the_influence_area():
 def test_a_one_way_slab_counts_one_and_a_half_spans():
     assert one_way_slab_area(4.0, 100.0) == 24.0
     assert one_way_slab_area(4.0, 23.9) == 23.9
+
+
+def test_each_rule_knows_only_its_own_factors():
+    assert reduction(ASCE, 80.0, category="A").psi0 == 0.0
+    assert reduction(EN, 80.0, category="E").psi0 == 0.0
+    assert reduction(EN, 80.0, category="A").influence == 80.0
