@@ -11,7 +11,7 @@ from calcpack.figures import Capacity, Governing, capacity_figure, deflected_sha
 from calcpack.notebook.work import Work
 from calcpack.statics import Extreme
 
-SAMPLES = 120
+SAMPLES = 121  # odd: the middle is one of them
 HALF_WIDTH = 82.0  # [mm]
 SENSE = {1: "placed to sag it", -1: "placed to hog it", 0: "everything loaded"}
 HEIGHT = {"top": "on the top flange", "centre": "at mid-depth", "bottom": "on the bottom flange"}

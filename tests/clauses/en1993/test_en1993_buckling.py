@@ -1,6 +1,7 @@
 """From segments to M_b,Rd: the plateau, the cap, braces, arrangements, lines against numbers."""
 
 import math
+from dataclasses import replace
 
 import pytest
 from beams_en1993 import analysed, profile
@@ -55,6 +56,12 @@ def test_curves_by_the_side_ratio(name, general, rolled):
     # IPE 200 and IPE 300 stand exactly at h/b = 2
     assert imperfection(profile(name), "general")[0] == general
     assert imperfection(profile(name), "rolled")[0] == rolled
+
+
+def test_curve_just_over_a_side_ratio_of_two():
+    ipe = profile("IPE 300")
+    over = replace(ipe, shape=ipe.shape._replace(depth=0.301))
+    assert [imperfection(each, "general") for each in (ipe, over)] == [("a", 0.21), ("b", 0.34)]
 
 
 def test_work_of_the_loads_height():

@@ -161,3 +161,41 @@ def test_limits_of_validity_are_one_table():
 def test_factor_for_the_strength():
     assert profile("IPE 300").epsilon == 1.0
     assert profile("IPE 300", "S355").epsilon == pytest.approx(0.8136, abs=5e-5)  # Table 5.2 prints 0.81
+
+
+def test_web_exactly_at_the_limit_of_shear_buckling():
+    ipe = profile("IPE 300")
+    for slenderness, buckles in ((72.0, False), (72.1, True)):
+        web = replace(ipe, shape=ipe.shape._replace(web=ipe.web_depth / slenderness))
+        assert web.web_may_buckle is buckles
+        sheet = Sheet("B1")
+        sheet.section("Section")
+        given, partial = take_profile(sheet, web), take_factors(sheet, web)
+        lines = shear(sheet, given, partial, classify(sheet, given, web).epsilon, 10.0, "shear")
+        assert lines.web.passes is not buckles
+
+
+def test_limits_on_the_sheet_exactly_at_the_bounds():
+    ipe = profile("IPE 300")
+    for thickness, strength, passes in ((0.080, 460e3, [True, True]), (0.0801, 460.5e3, [False, False])):
+        thick = replace(ipe, shape=ipe.shape._replace(flange=thickness), strength=strength)
+        sheet = Sheet("B1")
+        sheet.section("Section")
+        assert [line.passes for _, line in limits_of(sheet, take_profile(sheet, thick))] == passes
+
+
+@pytest.mark.parametrize("part", ["flange", "web"])
+def test_class_3_on_the_sheet_exactly_at_the_limit(part):
+    ipe = profile("IPE 300")
+    for factor, passes in ((1.0 - 1e-9, True), (1.001, False)):
+        if part == "flange":
+            shape = ipe.shape._replace(flange=ipe.shape.flange_outstand / (14 * factor))
+            shape = shape._replace(depth=2 * (shape.flange + shape.root_radius) + ipe.shape.flat_web)
+        else:
+            shape = ipe.shape._replace(web=ipe.shape.flat_web / (124 * factor))
+        changed = replace(ipe, shape=shape)
+        sheet = Sheet("B1")
+        sheet.section("Section")
+        found = classify(sheet, take_profile(sheet, changed), changed)
+        assert found.check.passes is passes
+        assert (changed.section_class == 4) is not passes
