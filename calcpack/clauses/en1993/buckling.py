@@ -74,15 +74,14 @@ def wave_share(moment: Curve, start: float, end: float, largest: float) -> float
     >>> round(1 / math.sqrt(wave_share(triangle, 0.0, 2.0, 1.0)), 2)
     1.37
     """
-    x, weights, values = _integrated(moment, start, end)
+    x, weights, values = _integrated(stretch(moment, start, end))
     wave = np.sin(np.pi * (x - start) / (end - start)) ** 2
     return float(2 * np.sum(weights * (values / largest) ** 2 * wave) / (end - start))
 
 
-def _integrated(moment: Curve, start: float, end: float) -> tuple[Floats, Floats, Floats]:
+def _integrated(part: Curve, bends: Sequence[float] = ()) -> tuple[Floats, Floats, Floats]:
     """Places of a segment, their weights in an integral over it, and the moments there."""
-    part = stretch(moment, start, end)
-    places = np.unique(np.concatenate([part.breaks, part.zeros()]))
+    places = np.unique(np.concatenate([part.breaks, bends]))
     middle, half = (places[1:] + places[:-1]) / 2, np.diff(places) / 2
     x = middle[:, None] + half[:, None] * _POINTS
     return x, half[:, None] * _WEIGHTS, part.values(x)
@@ -112,9 +111,10 @@ def held_factor(profile: Profile, moment: Curve, start: float, end: float, lengt
     >>> round(held_factor(IPE_330, even, 0.0, 6.0, 6.0), 9)
     1.0
     """
-    x, weights, values = _integrated(moment, start, end)
+    part = stretch(moment, start, end)
+    x, weights, values = _integrated(part, part.zeros())
     hogging = np.maximum(-values, 0.0)
-    largest = -stretch(moment, start, end).smallest.value
+    largest = -part.smallest.value
     order = np.arange(1, _HALF_WAVES + 1)
     slopes = np.cos(order[:, None, None] * np.pi * (x - start) / (end - start))
     pressed = np.einsum("xy,axy,bxy->ab", weights * hogging / largest, slopes, slopes) * 2 / (end - start)

@@ -202,6 +202,8 @@ def beside_shear(profile: Profile, analysed: AnalysedBeam) -> Beside | None:
     Both are taken from their envelopes, as if they stood there at one time.
     """
     moment, shear = analysed.band("moment"), analysed.band("shear")
+    if abs(shear.largest_absolute.value) <= profile.shear / 2:
+        return None
     curves = (moment.upper, moment.lower, shear.upper, shear.lower)
     breaks = np.unique(np.concatenate([curve.breaks for curve in curves]))
     places = np.union1d(breaks, np.linspace(breaks[0], breaks[-1], SAMPLES + 1))
