@@ -1,9 +1,13 @@
 """Imposed loads by occupancy: every entry is sound, and the tables say where they come from."""
 
+from io import StringIO
+
 import pytest
+from rich.console import Console
 
 from calcpack.actions import combination_set, occupancy_tables
 from calcpack.actions.reduction import ASCE, EN, exemption
+from calcpack.overview import print_loads
 
 TABLES = {table.name: table for table in occupancy_tables()}
 EVERY = [(table.name, use) for table in occupancy_tables() for use in table.uses]
@@ -51,3 +55,14 @@ def test_the_tables_and_the_rules_agree_on_what_is_not_reduced():
             assert exemption(ASCE, use.uniform) == "heavier than 100 psf (4.7.3)"
         elif not use.reduced:
             assert exemption(ASCE, use.uniform) == ""
+
+
+def test_the_listing_shows_every_use():
+    console = Console(width=200, record=True, file=StringIO())
+    print_loads(console)
+    text = console.export_text()
+    for table in TABLES.values():
+        assert table.source in text
+        for use in table.uses:
+            assert use.written[0] in text
+            assert use.says in text
