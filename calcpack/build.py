@@ -27,6 +27,7 @@ from calcpack.notebook.basis import basis_sections, input_sections
 from calcpack.notebook.derivations import appendix_parameters
 from calcpack.notebook.execute import execute
 from calcpack.notebook.fill import FilledNotebook, fill, sheet_metadata
+from calcpack.notebook.lightest import choose_sections
 from calcpack.notebook.parameters import PROGRAM, BeamInput, beam_input, plan_of, to_text
 from calcpack.notebook.templates import Template, find_template
 
@@ -91,7 +92,7 @@ def build_job(
     """
     folder = OutputFolder(out)
     folder.check()
-    framed = frame(read_job(job_file))
+    framed = choose_sections(frame(read_job(job_file)))
     inputs = _inputs(framed, only)
     notebooks = [
         fill(template, given.mark, to_text(given), sheet_metadata(framed.job, given.mark, template, PROGRAM))

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import csv
 import math
+import re
 import tomllib
 from dataclasses import dataclass
 from functools import lru_cache
@@ -225,7 +226,48 @@ def read_section(key: str, entry: Entry, problems: Problems) -> Section | None:
     )
 
 
+@lru_cache(maxsize=1)
+def families() -> dict[str, tuple[Section, ...]]:
+    """The rolled sections family by family, by weight; of two alike in weight the stiffer one first.
+
+    The weight is the one a designation names (W18X50: 50 lbf/ft), else the area stands for it.
+
+    Examples
+    --------
+    >>> list(families())
+    ['HEA', 'HEB', 'IPE', 'W']
+    >>> [section.designation for section in families()["IPE"][:2]]
+    ['IPE 80', 'IPE 100']
+    """
+    found: dict[str, list[tuple[float, float, Section]]] = {}
+    for section in rolled_sections().values():
+        parts = re.fullmatch(r"([A-Z]+) ?[0-9]+(?:X([0-9.]+)| ?([A-Z]*))", section.designation)
+        if parts is None:
+            continue
+        name, weight = parts[1] + (parts[3] or ""), float(parts[2]) if parts[2] else section.area
+        found.setdefault(name, []).append((weight, -section.inertia, section))
+    return {
+        name: tuple(section for _, _, section in sorted(rows, key=lambda row: row[:2]))
+        for name, rows in sorted(found.items())
+    }
+
+
+def _lightest(key: str, name: str, entry: Entry, problems: Problems) -> Section | None:
+    """A section to be chosen beam by beam."""
+    known = {_alike(family): family for family in families()}
+    family = known.get(_alike(name))
+    if family is None:
+        problems.add(
+            entry.problem(f"there is no family '{name}'", nearest(name, known.values()), "designation")
+        )
+        return None
+    change = {"key": key, "designation": f"lightest in {family}", "family": family}
+    return families()[family][0].model_copy(update=change)
+
+
 def _rolled(key: str, designation: str, entry: Entry, problems: Problems) -> Section | None:
+    if open_ := re.fullmatch(r"lightest in (.{1,40})", designation):
+        return _lightest(key, open_[1], entry, problems)
     section = rolled_sections().get(_alike(designation))
     if section:
         return section.model_copy(update={"key": key})

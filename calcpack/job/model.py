@@ -88,8 +88,20 @@ class Material(Frozen):
     source: str = ""  # where the values come from
 
 
+class Tried(Frozen):
+    """A lighter section that was tried and does not do."""
+
+    designation: str
+    fails: str  # what fails most
+    ratio: float  # of demand to resistance there
+
+
 class Section(Frozen):
-    """A cross-section with its gross properties."""
+    """A cross-section with its gross properties.
+
+    With ``family`` the job asks for the lightest of a family that does. Until one is chosen for a beam the
+    section is ``open``, with the values of the lightest of all; then ``tried`` says which lighter ones fail.
+    """
 
     key: str
     shape: Literal["rectangle", "tee", "rolled"]
@@ -100,6 +112,13 @@ class Section(Frozen):
     area: float  # [m2]; for an effective flange that of the web over the full depth
     inertia: float  # [m4], about the horizontal axis
     source: str = ""
+    family: str = ""  # "W", "IPE", "HEA", "HEB" where the lightest of it is asked for
+    tried: tuple[Tried, ...] = ()
+
+    @property
+    def open(self) -> bool:
+        """Whether a section of the family has yet to be chosen."""
+        return bool(self.family) and self.designation.startswith("lightest in ")
 
 
 class Panel(Frozen):

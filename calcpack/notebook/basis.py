@@ -102,21 +102,23 @@ def _members(sheet: Sheet, frame: Frame) -> None:
     users: dict[str, list[str]] = {}
     for mark, framed in frame.beams.items():
         if framed.beam.section is not None:
-            sections.setdefault(framed.beam.section.key, framed.beam.section)
-            users.setdefault(framed.beam.section.key, []).append(mark)
+            # the lightest of a family may be another one for each beam
+            own = f"{framed.beam.section.key} {framed.beam.section.designation}"
+            sections.setdefault(own, framed.beam.section)
+            users.setdefault(own, []).append(mark)
         if framed.beam.material is not None:
             materials.setdefault(framed.beam.material.key, framed.beam.material)
     if sections:
         rows = [
             [
-                key,
+                section.key,
                 _size(section, system),
                 show(section.area * 1e6, "mm^2", system),
                 show(section.inertia * 1e12, "mm^4", system),
-                ", ".join(users[key]),
+                ", ".join(users[own]),
                 section.source,
             ]
-            for key, section in sections.items()
+            for own, section in sections.items()
         ]
         sheet.table(
             ["section", "size", ("area", "right"), ("second moment", "right"), "beams", "source"], rows

@@ -5,8 +5,6 @@ Worked out first (`design_beam`), so that what is shown can stand before how.
 
 from __future__ import annotations
 
-from typing import Any
-
 from calcpack.clauses.aisc360 import lines, shape_lines
 from calcpack.clauses.aisc360.design import BendingCheck
 from calcpack.clauses.aisc360.shape_lines import AISC, available
@@ -16,11 +14,10 @@ from calcpack.figures.section import section_figure
 from calcpack.notebook.sections._steel_aisc360 import (
     SteelBeam,
     bending_name,
-    deflection_name,
-    force_name,
     span_words,
     steel_design,
 )
+from calcpack.notebook.sections._steel_aisc360_shown import chosen_words, state_shown, worst_of
 from calcpack.notebook.sections._steel_aisc360_web import state_deflection, state_shear
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line
@@ -38,46 +35,6 @@ def design_beam(work: Work) -> SteelBeam:
         The section is no rolled I-shape, the material no steel, a key of the design does not fit.
     """
     return SteelBeam(steel_design(work.study))
-
-
-def state_shown(work: Work, beam: SteelBeam) -> None:
-    """The schedule: each check's demand, resistance and ratio, worst first."""
-    design, sheet = beam.design, work.sheet
-    rows = sorted(_shown(work, beam), key=lambda row: -round(row["ratio"], 12))
-    sheet.ratios(rows)
-    failed = [row["says"] for row in rows if not row["passes"]]
-    if not design.covered:
-        failed.insert(0, "web not compact, bending strength not covered")
-    if failed:
-        sheet.text(f"Not satisfied: {'; '.join(failed)}.", role="unsafe")
-    else:
-        sheet.text(
-            f"All requirements are satisfied by {design.options.method} to {AISC}; {rows[0]['says']} governs."
-        )
-
-
-def _shown(work: Work, beam: SteelBeam) -> list[dict[str, Any]]:
-    design = beam.design
-    found = [(bending_name(work, each), each.demand, each.available, "kN*m") for each in beam.bending]
-    found.append(("shear", design.shear_demand.value, design.shear_available, "kN"))
-    found += [
-        (f"web {each.limit}, {force_name(work, each)}", each.force.force, each.available, "kN")
-        for each in beam.web
-    ]
-    found += [
-        (deflection_name(work, each), each.found * 1000, each.allowed * 1000, "mm")
-        for each in beam.deflection
-    ]
-    return [
-        {
-            "says": says,
-            "demand": work.show(demand, unit),
-            "resistance": work.show(resistance, unit),
-            "ratio": demand / resistance,
-            "passes": demand <= resistance * (1 + 1e-9),
-        }
-        for says, demand, resistance, unit in found
-    ]
 
 
 def state_section(work: Work, beam: SteelBeam) -> None:
@@ -102,6 +59,8 @@ def state_section(work: Work, beam: SteelBeam) -> None:
             ],
             role="note",
         )
+    if section.family:
+        sheet.text(chosen_words(section))
     steel = shape_lines.state_steel(
         sheet, design.steel, material.grade or material.key, f"material {material.key}"
     )
@@ -355,4 +314,5 @@ __all__ = [
     "state_section",
     "state_shear",
     "state_shown",
+    "worst_of",
 ]
