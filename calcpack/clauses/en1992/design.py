@@ -220,7 +220,8 @@ def _bottom(case: BeamCase, stirrup: float, more: float) -> Face:
         if not case.sag or face.alone.x <= face.limit * face.depth:
             return face
         tried = [replace(face, compression=bars) for bars in hangers]
-        return next((each for each in tried if each.resists), tried[-1])
+        deep = (each for each in tried if each.bending.x <= each.limit * each.depth * (1 + CLOSE))
+        return next(deep, tried[-1])
     if not case.sag:
         return Face(case, case.sagging, hangers[0], 0.0, 0.0)
     face = choose(case, case.sagging, case.sag, lasting, stirrup, compression=hangers)

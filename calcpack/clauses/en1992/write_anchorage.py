@@ -182,7 +182,7 @@ def write_end(
         millimetres(2 * end.support.half),
         "mm",
         "Width of the support along the beam",
-        "beam design.support_width",
+        f"beam {sheet.mark} design.support_width",
         word="width of the support",
     )
     line = sheet.require(

@@ -206,7 +206,7 @@ def _cot(
     cite, word = "6.2.3(2) (6.7N)", "cotangent of the strut angle"
     if case.given.cot:
         return sheet.take(
-            "cot theta", case.given.cot, "1", "Strut angle", "beam design.cot_theta", cite, word=word
+            "cot theta", case.given.cot, "1", "Strut angle", f"beam {sheet.mark} design.cot_theta", cite, word=word
         )
     force: Expression = size.width * spacing * nu * strength.fcd
     if national["alpha_cw"] != 1:

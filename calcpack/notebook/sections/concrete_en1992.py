@@ -163,20 +163,20 @@ def state_bending(beam: ConcreteBeam) -> None:
     blocks = _blocks(beam, size)
     beam.strength, beam.size = strength, size
     checks: list[tuple[str, Line]] = []
-    sheet.subsection("Span, bottom bars in tension" if case.sag else "Bottom bars")
+    sheet.subsection("Bars and effective depths")
     beam.faces["sag"] = write_bars(sheet, design.bottom, "sag", size, blocks["sag"], beam.origin("bottom"))
+    if design.top:
+        beam.faces["hog"] = write_bars(sheet, design.top, "hog", size, blocks["hog"], beam.origin("top"))
+    if not design.top or design.top.bars.count != design.through.bars.count:
+        beam.faces["end"] = write_bars(sheet, design.through, "end", size, blocks["hog"], beam.origin("top"))
     if case.sag:
+        sheet.subsection("Span, bottom bars in tension")
         checks += _bending(beam, "sag")
     if design.top:
         sheet.subsection("Support, top bars in tension")
-        beam.faces["hog"] = write_bars(sheet, design.top, "hog", size, blocks["hog"], beam.origin("top"))
-    if not design.top or design.top.bars.count != design.through.bars.count:
-        if not design.top:
-            sheet.subsection("End supports, top bars in tension" if case.end_moment else "Top bars")
-        beam.faces["end"] = write_bars(sheet, design.through, "end", size, blocks["hog"], beam.origin("top"))
-    if design.top:
         checks += _bending(beam, "hog")
     if case.end_moment:
+        sheet.subsection("End supports, top bars in tension")
         checks += _end_support(beam, strength, size)
     sheet.subsection("Both faces")
     checks += write_most(sheet, [beam.faces[tag] for tag, _ in beam.tags], size)
