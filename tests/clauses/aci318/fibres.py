@@ -4,31 +4,44 @@ It shares no code with the package. Concrete follows the rectangular block strip
 strip lies within β1 c), bars are elastic-plastic in their own layers, the neutral axis is found by halving.
 """
 
+import numpy as np
+
 STRIPS = 20000
 
 
-def strength(strips, bars, fc, fy, modulus, beta):
-    """Nominal moment and neutral axis; strips (width at depth, height), bars (area, depth) from the top."""
-    width_at, height = strips
-    thick = height / STRIPS
-    concrete = [((n + 0.5) * thick, width_at((n + 0.5) * thick) * thick) for n in range(STRIPS)]
+def strips(width_at, height):
+    """Depth and area of each strip of a shape given by its width at a depth."""
+    depth = (np.arange(STRIPS) + 0.5) * height / STRIPS
+    return depth, np.array([width_at(y) for y in depth]) * height / STRIPS
+
+
+def strength(width_at, height, bars, fc, fy, modulus, beta):
+    """Nominal moment and neutral axis; bars are (area, depth), depths count from the compressed face."""
+    depth, area = strips(width_at, height)
 
     def forces(c):
-        found = [(0.85 * fc * area, y) for y, area in concrete if y <= beta * c]
-        for area, y in bars:
-            strain = 0.003 * (c - y) / c  # compression positive
-            stress = max(-fy, min(fy, strain * modulus))
+        """All forces, compression positive, and their moment about the compressed face."""
+        inside = depth <= beta * c
+        force = 0.85 * fc * area[inside].sum()
+        moment = 0.85 * fc * (area[inside] * depth[inside]).sum()
+        for steel, y in bars:
+            stress = max(-fy, min(fy, 0.003 * (c - y) / c * modulus))
             if y < beta * c:
                 stress -= 0.85 * fc  # the concrete that the bar displaces
-            found.append((stress * area, y))
-        return found
+            force += stress * steel
+            moment += stress * steel * y
+        return force, moment
 
     low, high = 1e-6 * height, height
-    for _ in range(60):
+    for _ in range(50):
         c = (low + high) / 2
-        if sum(force for force, _ in forces(c)) > 0:
-            high = c
-        else:
-            low = c
-    balanced = forces(c)
-    return -sum(force * y for force, y in balanced), c
+        low, high = (low, c) if forces(c)[0] > 0 else (c, high)
+    return -forces(c)[1], c
+
+
+def properties(width_at, height):
+    """Area, centroid from the top and second moment of a shape."""
+    depth, area = strips(width_at, height)
+    whole = area.sum()
+    centre = (area * depth).sum() / whole
+    return whole, centre, (area * (depth - centre) ** 2).sum()

@@ -74,7 +74,7 @@ def test_strips_give_the_same_strength(case):
     ]
     pressed = [(other.area / INCH**2, other.centroid / INCH)] if other else []
     beta = {3000: 0.85, 4000: 0.85, 5000: 0.80, 6000: 0.75, 9000: 0.65}[fc]  # Table 22.2.2.4.3
-    moment, c = strength((width_at, depth), [*tension, *pressed], fc / 1000, fy, 29000, beta)
+    moment, c = strength(width_at, depth, [*tension, *pressed], fc / 1000, fy, 29000, beta)
     assert moment / 12 == pytest.approx(state.nominal / KIP_FT, rel=5e-4)
     assert c == pytest.approx(state.c / INCH, rel=1e-3)
 
@@ -82,7 +82,7 @@ def test_strips_give_the_same_strength(case):
 def test_the_strips_would_see_a_wrong_block():
     case = CASES[0]
     *_, state = settled(case)
-    wrong, _ = strength((lambda y: 12, 20), [(2.37, 17.625)], 4.0 * 0.9, 60, 29000, 0.85)
+    wrong, _ = strength(lambda y: 12, 20, [(2.37, 17.625)], 4.0 * 0.9, 60, 29000, 0.85)
     assert wrong / 12 != pytest.approx(state.nominal / KIP_FT, rel=2e-3)
 
 

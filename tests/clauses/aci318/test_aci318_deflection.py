@@ -3,6 +3,7 @@
 import math
 
 import pytest
+from fibres import properties
 from samples import KIP_FT, begin
 
 from calcpack.clauses.aci318.deflection import (
@@ -30,19 +31,10 @@ def section(flange=None, fc=4000, web=12, depth=20, d=17.5, steel=2.37, system="
     return sheet, materials, size, state_gross(sheet, materials, size), area, line
 
 
-def by_strips(width_at, depth, strips=40000):
-    """Area, centroid from the top and second moment of a shape given by its width."""
-    thick = depth / strips
-    parts = [((n + 0.5) * thick, width_at((n + 0.5) * thick) * thick) for n in range(strips)]
-    area = sum(a for _, a in parts)
-    centre = sum(y * a for y, a in parts) / area
-    return area, centre, sum(a * (y - centre) ** 2 for y, a in parts)
-
-
 @pytest.mark.parametrize("flange", [None, (60, 6)])
 def test_gross_section(flange):
     *_, gross, _, _ = section(flange)
-    _, centre, inertia = by_strips(lambda y: flange[0] if flange and y < flange[1] else 12, 20)
+    _, centre, inertia = properties(lambda y: flange[0] if flange and y < flange[1] else 12, 20)
     assert gross.top.value / 25.4 == pytest.approx(centre, rel=1e-6)
     assert gross.inertia.value / 25.4**4 == pytest.approx(inertia, rel=1e-6)
     assert gross.rupture.value / 6.894757293e-3 == pytest.approx(7.5 * math.sqrt(4000))
@@ -70,7 +62,7 @@ def test_cracked_and_effective_section(name, flange, top, steel):
         return wide[0] if y < wide[1] else 12
 
     c = lines["c_cr"].value / 25.4
-    area_c, centre, own = by_strips(width_at, c)
+    area_c, centre, own = properties(width_at, c)
     assert area_c * (c - centre) == pytest.approx(n * steel * (17.5 - c), rel=1e-4)  # first moments balance
     inertia = own + area_c * (c - centre) ** 2 + n * steel * (17.5 - c) ** 2
     assert lines["I_cr"].value / 25.4**4 == pytest.approx(inertia, rel=1e-4)
