@@ -1,4 +1,4 @@
-"""Whole sheets of steel beams: every check in the record, both methods, both unit systems, lightest shapes."""
+"""Whole sheets of steel beams: every check in the record, both methods, both unit systems; choice."""
 
 from __future__ import annotations
 
