@@ -305,3 +305,12 @@ def test_the_parameters_keep_the_areas(floor):
     given = study(floor(), "B2").given
     assert from_text(to_text(given)).tributary == given.tributary
     assert study(floor(rule="none"), "B2").given.tributary == ()
+
+
+def test_just_beyond_the_least_area_the_sheet_reduces(floor):
+    work = written(floor(long="35"), "B1")  # 35 ft by 6 ft, twice that: 420 ft²
+    assert work.lines["reduction"].value == pytest.approx(0.25 + 15 / math.sqrt(420), rel=1e-12)
+    assert work.study.reduction.factor == work.lines["reduction"].value
+    assert "Interior beam or edge beam" in said(work)
+    cantilever = 'free = ["end"]\nfixed = ["start"]\n'
+    assert "Cantilever, overhang" in said(written(floor(G1=cantilever, long="40"), "G1"))
