@@ -5,8 +5,8 @@ from __future__ import annotations
 from typing import NamedTuple
 
 from calcpack.clauses.aci318.arrangement import Group
-from calcpack.clauses.aci318.flexure import BendingLines, forty_thousand, steel_stress
-from calcpack.clauses.aci318.materials import Checks, Materials, Size, cite, root
+from calcpack.clauses.aci318.flexure import BendingLines
+from calcpack.clauses.aci318.materials import Checks, Materials, Size, cite, root, shared
 from calcpack.clauses.aci318.strength import grade_factor
 from calcpack.clauses.aci318.strength import root as root_of
 from calcpack.sheet import (
@@ -23,6 +23,21 @@ from calcpack.sheet import (
 )
 
 
+def state_service_stress(sheet: Sheet, materials: Materials) -> Line:
+    """Stress of the bars under service loads, as 24.3.2.1 permits: two thirds of f_y.
+
+    Source: ACI 318-19, 24.3.2.1.
+    """
+    return sheet.hence(
+        "f_s",
+        number(2) / 3 * materials.fy,
+        "MPa",
+        "Stress of the bars under service loads, without working it out",
+        cite("24.3.2.1"),
+        word="stress of the bars under service loads",
+    )
+
+
 class Layer(NamedTuple):
     """The bars of an outermost layer."""
 
@@ -32,14 +47,15 @@ class Layer(NamedTuple):
 
 
 def state_spacing(
-    sheet: Sheet, materials: Materials, size: Size, group: Group, aggregate: Line, face: str, tag: str = ""
+    sheet: Sheet, size: Size, group: Group, aggregate: Line, stress: Line, face: str, tag: str = ""
 ) -> Layer:
     """Clear distances of bars, and their spacing for crack control.
 
     Parameters
     ----------
     group : Group
-    aggregate : Line [mm]
+    aggregate, stress : Line [mm], [MPa]
+        Largest size; stress of the bars under service loads.
     face : str
         "bottom" or "top".
     tag : str
@@ -58,7 +74,7 @@ def state_spacing(
         return Layer(diameter, None, ())
     spacing = sheet.hence(
         name("s_b"),
-        (size.web - 2 * (size.cover + size.stirrup) - diameter) / (group.layers[0] - 1),
+        shared(size.web - 2 * (size.cover + size.stirrup) - diameter, group.layers[0] - 1),
         "mm",
         f"Distance of the {face} bars from centre to centre, {group.layers[0]} side by side",
         word="distance of bars, centre to centre",
@@ -68,11 +84,7 @@ def state_spacing(
         f"Clear distance of the {face} bars",
         cite("25.2.1"),
     )
-    stress = sheet.hence(
-        name("f_s"), steel_stress(materials), "MPa", "Stress under service loads", cite("24.3.2.1"),
-        word="stress of the bars under service loads",
-    )  # fmt: skip
-    ratio = forty_thousand() / stress
+    ratio = quantity(40_000, "psi") / stress
     spread = sheet.require(
         spacing
         <= least(quantity(15, "in") * ratio - 2.5 * (size.cover + size.stirrup), quantity(12, "in") * ratio),

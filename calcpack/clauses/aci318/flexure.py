@@ -19,7 +19,6 @@ from calcpack.sheet import (
     measured,
     number,
     number_in,
-    quantity,
     sqrt,
 )
 
@@ -376,13 +375,3 @@ def state_compression_ties(sheet: Sheet, size: Size, spacing: Line, pressed: Gro
         cite("9.7.6.4.3"),
     )
     return (("stirrups about compression bars", line),)
-
-
-def steel_stress(materials: Materials) -> Expression:
-    """Stress of the bars under service loads, as 24.3.2.1 permits: two thirds of f_y."""
-    return number(2) / 3 * materials.fy
-
-
-def forty_thousand() -> Expression:
-    """The stress that the rules for bar spacing are set by (Table 24.3.2)."""
-    return quantity(40_000, "psi")

@@ -104,6 +104,11 @@ def root(fc: Line) -> Expression:
     return least(plain, 100)
 
 
+def shared(length: Expression, parts: int) -> Expression:
+    """A length divided by a count, which is not written where it is one."""
+    return length / parts if parts > 1 else length
+
+
 def psi(term: Expression) -> Expression:
     """A bare number as a stress in psi."""
     return in_unit(term, "psi")
@@ -149,3 +154,12 @@ def state_cover(sheet: Sheet, cover: Line, exposure: str, stirrup: float, main: 
         cite("Table 20.5.1.3.1"),
     )
     return (("cover", line),)
+
+
+def state_not_deep(sheet: Sheet, size: Size, clear: Line) -> Checks:
+    """The beam is no deep beam, to which these clauses do not apply.
+
+    Source: ACI 318-19, 9.9.1.1.
+    """
+    line = sheet.require(clear >= 4 * size.height, "The beam is not a deep one", cite("9.9.1.1"))
+    return (("no deep beam", line),)

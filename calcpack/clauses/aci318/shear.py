@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import NamedTuple
 
-from calcpack.clauses.aci318.materials import Checks, Materials, Size, cite, psi, root
+from calcpack.clauses.aci318.materials import Checks, Materials, Size, cite, psi, root, shared
 from calcpack.clauses.bars import Bar
 from calcpack.sheet import Line, Sheet, greatest, least, measured, number, number_in, quantity, sqrt
 
@@ -201,7 +201,7 @@ def state_section_limit(
     wide = needed <= 4 * concrete.unit.value * (1 + 1e-9)
     depth = concrete.depth if wide else concrete.depth / 2
     across = sheet.require(
-        (size.web - 2 * size.cover - size.stirrup) / (stirrups.legs - 1)
+        shared(size.web - 2 * size.cover - size.stirrup, stirrups.legs - 1)
         <= least(depth, quantity(24 if wide else 12, "in")),
         f"Legs across the web, {stirrups.legs} of them",
         cite("Table 9.7.6.2.2"),

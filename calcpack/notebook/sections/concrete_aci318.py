@@ -8,7 +8,7 @@ from typing import Literal
 from calcpack.clauses.aci318.flange import state_flange, state_given_flange
 from calcpack.clauses.aci318.flexure import Demand, state_bending
 from calcpack.clauses.aci318.limits import limit_words
-from calcpack.clauses.aci318.materials import Size, state_cover, state_materials
+from calcpack.clauses.aci318.materials import Size, state_cover, state_materials, state_not_deep
 from calcpack.figures import section_figure
 from calcpack.notebook.sections.checks import state_checks
 from calcpack.notebook.sections.concrete_aci318_bars import state_bars
@@ -173,6 +173,8 @@ def _state_section(work: Work, design: Design) -> Written:
     written.note(tuple((name, line) for name, line in cover if not line.passes))
     if design.section.shape == "tee":
         _flange(written)
+    if not shortest(design.actions.stretches).overhang:
+        written.note(state_not_deep(sheet, size, written.clear))
     return written
 
 

@@ -103,7 +103,10 @@ class Actions:
     def sagging(self) -> Extreme | None:
         """The largest sagging moment, if there is any."""
         most = self.moment.largest
-        return most if most.value > 0 and self.work.study.significant(most.value, "moment") else None
+        if most.value > 0 and self.work.study.significant(most.value, "moment"):
+            return most
+        # a beam that nothing bends is looked at as one that sags, so that its sheet is whole
+        return Extreme(0.0, most.at) if self.hogging is None else None
 
     @property
     def hogging(self) -> Extreme | None:

@@ -6,6 +6,7 @@ from calcpack.clauses.aci318.detailing import (
     Layer,
     state_development,
     state_end,
+    state_service_stress,
     state_spacing,
     state_top_length,
 )
@@ -33,11 +34,12 @@ def state_bars(written: Written) -> None:
         f"{written.mark} design.aggregate" if given else "chosen by the template, common practice",
         word="largest size of the aggregate",
     )
+    stress = state_service_stress(sheet, written.materials)
     layers: dict[str, Layer] = {}
     for name, face in (("bottom", design.bottom), ("top", design.top)):
         if face.task is not None:
             layers[name] = state_spacing(
-                sheet, written.materials, written.size, face.group, aggregate, name, written.tag(name)
+                sheet, written.size, face.group, aggregate, stress, name, written.tag(name)
             )
             written.note(layers[name].checks)
     if design.cage.depth > 36 * INCH:

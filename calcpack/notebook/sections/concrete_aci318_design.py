@@ -314,4 +314,16 @@ def _zones(
         zones.append(Zone(left_end, right_start, wide, shear, False))
         if reach[False]:
             zones.append(Zone(right_start, stretch.end, close, ends[False].shear, True))
-    return zones
+    return _joined(zones)
+
+
+def _joined(zones: Sequence[Zone]) -> list[Zone]:
+    """Zones of one spacing that meet at a support as one."""
+    found: list[Zone] = []
+    for zone in zones:
+        last = found[-1] if found else None
+        if last is not None and last.spacing == zone.spacing and last.at_end == zone.at_end:
+            found[-1] = last._replace(stop=zone.stop, shear=max(last.shear, zone.shear))
+        else:
+            found.append(zone)
+    return found

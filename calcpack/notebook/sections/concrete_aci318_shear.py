@@ -65,6 +65,13 @@ def state_shear(written: Written) -> None:
     _figure(written, strengths)
     _zones(written, strengths)
     written.note(state_torsion(sheet, written.materials, written.size, concrete.phi))
+    if len(design.wings) == 1:
+        sheet.text(
+            "A slab meets this beam from one side only: where it is built in, the beam is twisted as far as "
+            "it holds the slab's edge. Such torsion is redistributed (ACI 318-19 22.7.3.2); bars against its "
+            "cracks are not worked out here.",
+            role="caution",
+        )
 
 
 def _take(written: Written, spacing: float, words: str, tag: str) -> Stirrups:

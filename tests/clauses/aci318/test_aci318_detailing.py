@@ -12,16 +12,21 @@ from calcpack.clauses.aci318.detailing import (
     available,
     state_development,
     state_end,
+    state_service_stress,
     state_spacing,
     state_top_length,
 )
 from calcpack.clauses.aci318.flange import Wing, state_flange, state_given_flange
 from calcpack.clauses.aci318.flexure import BendingLines, state_compression_ties
 from calcpack.clauses.aci318.limits import guard
-from calcpack.clauses.aci318.materials import state_cover
+from calcpack.clauses.aci318.materials import state_cover, state_not_deep
 from calcpack.clauses.aci318.strength import INCH, Block, development_length
 from calcpack.clauses.bars import Bar, bar
 from calcpack.job.errors import CalcpackError
+
+
+def layer_of(sheet, materials, size, bars, stone):
+    return state_spacing(sheet, size, bars, stone, state_service_stress(sheet, materials), "bottom")
 
 
 @pytest.mark.parametrize(
@@ -37,7 +42,7 @@ def test_clear_distance_is_the_largest_of_three(size, aggregate, needed):
     sheet, materials, box = begin(width=width - 1e-3)
     stone = sheet.take("d_agg", aggregate * 25.4, "mm", "", "test")
     three = Group(bar(size), (3,), cage(width - 1e-3, 20, aggregate=aggregate))
-    checks = dict(state_spacing(sheet, materials, box, three, stone, "bottom").checks)
+    checks = dict(layer_of(sheet, materials, box, three, stone).checks)
     assert not checks["clear distance, bottom bars"].passes
     assert checks["clear distance, bottom bars"].check("x")["demand"] == pytest.approx(needed * 25.4)
 
@@ -51,13 +56,19 @@ def test_crack_control(fy, cover):
     sheet, materials, size = begin(fy=fy, width=20, cover=cover)
     stone = sheet.take("d_agg", 19.05, "mm", "", "test")
     bars = group(2, "#8", 20, 20, cover)
-    line = dict(state_spacing(sheet, materials, size, bars, stone, "bottom").checks)[
-        "crack control, bottom bars"
-    ]
+    line = dict(layer_of(sheet, materials, size, bars, stone).checks)["crack control, bottom bars"]
     check = line.check("x")
     assert check["capacity"] / 25.4 == pytest.approx(by_hand)
     assert check["demand"] / 25.4 == pytest.approx(20 - 2 * clear - 1)
     assert line.passes is (20 - 2 * clear - 1 <= by_hand)
+
+
+@pytest.mark.parametrize(("clear", "passes"), [(80.0, True), (79.9, False)])
+def test_a_deep_beam_is_none_of_these(clear, passes):
+    sheet, _, size = begin()
+    span = sheet.take("ell_n", clear * 0.0254, "m", "", "test")
+    ((_, line),) = state_not_deep(sheet, size, span)
+    assert line.passes is passes
 
 
 def test_layers_from_the_face():
@@ -104,7 +115,7 @@ def developed(size, count, width=12, fc=4000, fy=60, top=False):
     sheet, materials, box = begin(fc, fy, width=width)
     bars = group(count, size, width, 20)
     stone = sheet.take("d_agg", 19.05, "mm", "", "test")
-    layer = state_spacing(sheet, materials, box, bars, stone, "bottom")
+    layer = layer_of(sheet, materials, box, bars, stone)
     lines = bent(sheet, depth=bars.depth / INCH)
     return sheet, lines, bars, state_development(sheet, materials, box, bars, layer, lines.outermost, top=top)
 

@@ -111,6 +111,7 @@ CASES = {
     "cantilever": beam('["C1", "D1"]', more='fixed = ["start"]\nfree = ["end"]\n') + columns("C1"),
     "held ends": beam('["A1", "B1"]', more='fixed = ["start", "end"]\n') + columns("A1", "B1"),
     "roof": beam('["A1", "B1"]', loads=(("dead", "1 klf"), ("snow", "1 klf"))) + columns("A1", "B1"),
+    "self weight": beam('["A1", "B1"]', loads=()) + columns("A1", "B1"),
     "dead only": beam('["A1", "B1"]', loads=(("dead", "1 klf"),)) + columns("A1", "B1"),
 }
 
