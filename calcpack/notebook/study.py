@@ -233,6 +233,8 @@ def results_of(study: Study) -> dict[str, Any]:
     shear = max((abs(each.shear_max.value) for each in analysed.of_limit("strength")), default=0.0)
     return {
         "spans": [end - start for start, end in given.spans],
+        "supports": [bearing.at for bearing in given.bearings],
+        "fixed": list(given.fixed),
         "loads": {case: [_load(load) for load in given.loads[case]] for case in study.cases},
         "total": {case: study.total(case) for case in study.cases},
         "reactions": {
