@@ -190,6 +190,15 @@ def test_passes_and_fails():
     assert not design(two_spans(live=60.0)).passes
 
 
+def test_passing_ends_at_one():
+    base = design(two_spans(live=5.0))
+    total = max(each.ratio for each in base.deflection if each.kind == "total")
+    for ratio, passes in ((0.999, True), (1.0, True), (1.001, False)):
+        found = design(two_spans(live=5.0), total_limit=240 * ratio / total)
+        assert max(found.ratios) == pytest.approx(ratio, rel=1e-9)
+        assert found.passes == passes
+
+
 def test_a_web_that_is_not_compact_passes_nothing():
     thin = SteelDesign(SHAPE._replace(web=0.003), Steel(1.5e6, 200e6), Options("LRFD"), two_spans(live=1.0))
     assert (thin.covered, thin.bending, thin.passes) == (False, (), False)
