@@ -131,3 +131,7 @@ def test_lines_say_what_the_numbers_say(name, beyond, stiff):
     for known in (lines, None):
         both = force_beside_moment(sheet, given, partial, force, "at the end", known)
         assert both.check("both")["ratio"] == pytest.approx(ratio, rel=1e-12)
+
+
+def test_no_effective_length_inside_the_beam():
+    assert bearing(IPE, 0.1, None).effective == 0.0

@@ -197,3 +197,10 @@ def test_top_flange_held_under_end_moments(length, start, end):
     curve = diagram(length, start=start, end=end)
     found = held_factor(IPE, curve, 0.0, length, length) * sum(held_stiffness(IPE, length)) / S.depth
     assert found == pytest.approx(eigenvalue(curve, [], 0.0, elements=24, top_held=HALF), rel=2e-3)
+
+
+def test_even_moment_has_the_share_of_one_and_its_size_does_not_matter():
+    assert wave_share(diagram(5.0, start=7.0, end=7.0), 0.0, 5.0, 7.0) == pytest.approx(1.0, rel=1e-12)
+    small, large = (diagram(5.0, start=-size, end=0.3 * size) for size in (1e-3, 1e3))
+    one, other = (held_factor(IPE, curve, 0.0, 5.0, 5.0) for curve in (small, large))
+    assert one == pytest.approx(other, rel=1e-9)

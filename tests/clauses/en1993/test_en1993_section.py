@@ -199,3 +199,8 @@ def test_class_3_on_the_sheet_exactly_at_the_limit(part):
         found = classify(sheet, take_profile(sheet, changed), changed)
         assert found.check.passes is passes
         assert (changed.section_class == 4) is not passes
+
+
+def test_shear_just_below_half_takes_nothing_away():
+    ipe = profile("IPE 300")
+    assert ipe.bending_with_shear(0.498 * ipe.shear) == ipe.bending
