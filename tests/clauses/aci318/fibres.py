@@ -10,9 +10,9 @@ STRIPS = 20000
 
 
 def strips(width_at, height):
-    """Depth and area of each strip of a shape given by its width at a depth."""
+    """Depth and area of each strip of a shape given by its width at (many) depths."""
     depth = (np.arange(STRIPS) + 0.5) * height / STRIPS
-    return depth, np.array([width_at(y) for y in depth]) * height / STRIPS
+    return depth, width_at(depth) * np.full(STRIPS, height / STRIPS)
 
 
 def strength(width_at, height, bars, fc, fy, modulus, beta):

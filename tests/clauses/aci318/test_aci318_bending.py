@@ -1,5 +1,6 @@
 """Bending: the strips of a second road, the closed forms of the sheet, the solver; and what must hold."""
 
+import numpy as np
 import pytest
 from fibres import strength
 from samples import ES, KIP_FT, KSI, PSI, begin, group
@@ -45,8 +46,8 @@ def written(case, system="SI", share=0.8):
 
 @pytest.mark.parametrize("case", CASES, ids=lambda case: case[0])
 def test_the_sheet_and_the_solver_are_two_roads_to_one_strength(case):
-    _, lines, state = written(case)
-    by = {line.symbol: line for line in lines_of(lines, case)}
+    sheet, lines, state = written(case)
+    by = {line.symbol: line for line in sheet.lines.values()}
     assert by["c"].value == pytest.approx(state.c * 1000, rel=1e-9)
     assert by["a"].value == pytest.approx(state.a * 1000, rel=1e-9)
     assert by["epsilon_t"].value == pytest.approx(state.strain, rel=1e-8)
@@ -56,17 +57,13 @@ def test_the_sheet_and_the_solver_are_two_roads_to_one_strength(case):
         assert by["f'_s"].value == pytest.approx(state.stress_c / 1000, rel=1e-9)
 
 
-def lines_of(lines, case):
-    return written(case)[0].lines.values()
-
-
 @pytest.mark.parametrize("case", CASES, ids=lambda case: case[0])
 def test_strips_give_the_same_strength(case):
     _, fc, fy, web, depth, flange, _, _ = case
     bars, other, _, state = settled(case)
 
     def width_at(y):
-        return flange[0] if flange and y < flange[1] else web
+        return np.where(y < flange[1], flange[0], web) if flange else web
 
     tension = [
         (number * bars.bar.area / INCH**2, depth - height / INCH)

@@ -2,6 +2,7 @@
 
 import math
 
+import numpy as np
 import pytest
 from fibres import properties
 from samples import KIP_FT, begin
@@ -34,7 +35,7 @@ def section(flange=None, fc=4000, web=12, depth=20, d=17.5, steel=2.37, system="
 @pytest.mark.parametrize("flange", [None, (60, 6)])
 def test_gross_section(flange):
     *_, gross, _, _ = section(flange)
-    _, centre, inertia = properties(lambda y: flange[0] if flange and y < flange[1] else 12, 20)
+    _, centre, inertia = properties(lambda y: np.where(y < flange[1], flange[0], 12) if flange else 12, 20)
     assert gross.top.value / 25.4 == pytest.approx(centre, rel=1e-6)
     assert gross.inertia.value / 25.4**4 == pytest.approx(inertia, rel=1e-6)
     assert gross.rupture.value / 6.894757293e-3 == pytest.approx(7.5 * math.sqrt(4000))
@@ -59,7 +60,7 @@ def test_cracked_and_effective_section(name, flange, top, steel):
     wide = flange if flange and not top else (12, 0)
 
     def width_at(y):
-        return wide[0] if y < wide[1] else 12
+        return np.where(y < wide[1], wide[0], 12)
 
     c = lines["c_cr"].value / 25.4
     area_c, centre, own = properties(width_at, c)
