@@ -149,7 +149,11 @@ def test_deflection_limits_left_out_and_given(tmp_path):
 
 def test_a_beam_too_weak_is_finished_and_said_to_be(tmp_path):
     work = work_of(tmp_path, size='designation = "IPE 160"')
-    _, results = written(work)
+    beam, results = written(work)
+    assert beam.beside is not None
+    ratios = {check["name"]: check["ratio"] for check in results["checks"]}
+    assert ratios["bending beside shear"] == pytest.approx(beam.beside.moment / beam.beside.resistance)
+    assert [row.ratio for row in shown_of(work, beam)] == pytest.approx(list(ratios.values()), rel=1e-9)
     failing = [check["name"] for check in results["checks"] if not check["passes"]]
     assert any(name.startswith("lateral-torsional") for name in failing)
     assert "bending" in failing
