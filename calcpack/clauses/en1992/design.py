@@ -10,7 +10,7 @@ from typing import NamedTuple
 from calcpack.clauses.en1992.along import TopZone, Worst, nearest, resistance, shifted, top_zones
 from calcpack.clauses.en1992.anchorage import Anchorage, anchorage, good_bond
 from calcpack.clauses.en1992.case import BeamCase, Floats, SupportCase
-from calcpack.clauses.en1992.faces import HANGERS, Face, bars_of, candidates, choose
+from calcpack.clauses.en1992.faces import HANGERS, SIZES, THINNER, Face, bars_of, candidates, choose
 from calcpack.clauses.en1992.model import Bars, Stirrups
 from calcpack.clauses.en1992.service import SpanDeflection, SpanDepth, span_deflections, span_depths
 from calcpack.clauses.en1992.stirrups import CLOSEST, ShearDesign, shear_design, stirrup_sizes
@@ -137,6 +137,11 @@ class Design:
             default=None,
         )
 
+    @property
+    def anchored(self) -> bool:
+        """Room for the bottom bars at every end support whose width is given."""
+        return all(each.room is None or each.length.length <= each.room * (1 + CLOSE) for each in self.ends)
+
     @cached_property
     def span_depths(self) -> tuple[SpanDepth, ...]:
         """Span over depth, span by span."""
@@ -181,9 +186,23 @@ def design_beam(case: BeamCase) -> Design:
 
 
 def _with(case: BeamCase, stirrups: Stirrups) -> Design:
+    """With stirrups of one size; thinner bottom bars where an end support has no room to anchor others."""
+    first = _deflecting(case, stirrups, SIZES)
+    if first.anchored or case.given.bottom:
+        return first
+    for sizes in THINNER:
+        design = _deflecting(case, stirrups, sizes)
+        face = design.bottom
+        if design.anchored and face.resists and face.fits and face.cracks_fine:
+            return design
+    return first
+
+
+def _deflecting(case: BeamCase, stirrups: Stirrups, sizes: Sequence[Sequence[str]]) -> Design:
+    """With as many more bottom bars as the deflection asks for."""
     first: Design | None = None
     for more in MORE if case.given.bottom is None else MORE[:1]:
-        design = _faces(case, stirrups, more)
+        design = _faces(case, stirrups, more, sizes)
         first = first or design
         if not case.sag or design.deflects_fine:
             return design
@@ -191,9 +210,9 @@ def _with(case: BeamCase, stirrups: Stirrups) -> Design:
     return first
 
 
-def _faces(case: BeamCase, stirrups: Stirrups, more: float) -> Design:
+def _faces(case: BeamCase, stirrups: Stirrups, more: float, sizes: Sequence[Sequence[str]]) -> Design:
     diameter = stirrups.bar.diameter
-    bottom = _bottom(case, diameter, more)
+    bottom = _bottom(case, diameter, more, sizes)
     top, through = _top(case, diameter, bottom)
     if bottom.compression is not None:
         bottom = replace(bottom, compression=through.bars)
@@ -211,7 +230,7 @@ def _lasting(case: BeamCase) -> tuple[float, float]:
     return max(case.lasting.largest.value, 0.0), max(-case.lasting.smallest.value, 0.0)
 
 
-def _bottom(case: BeamCase, stirrup: float, more: float) -> Face:
+def _bottom(case: BeamCase, stirrup: float, more: float, sizes: Sequence[Sequence[str]]) -> Face:
     lasting, _ = _lasting(case)
     hangers = _hangers(case, stirrup)
     if case.given.bottom:
@@ -224,10 +243,12 @@ def _bottom(case: BeamCase, stirrup: float, more: float) -> Face:
         return next(deep, tried[-1])
     if not case.sag:
         return Face(case, case.sagging, hangers[0], 0.0, 0.0)
-    face = choose(case, case.sagging, case.sag, lasting, stirrup, compression=hangers)
+    face = choose(case, case.sagging, case.sag, lasting, stirrup, compression=hangers, sizes=sizes)
     if more > 1:
         least = more * face.required[0]
-        face = choose(case, case.sagging, case.sag, lasting, stirrup, compression=hangers, least=least)
+        face = choose(
+            case, case.sagging, case.sag, lasting, stirrup, compression=hangers, least=least, sizes=sizes
+        )
     return face
 
 

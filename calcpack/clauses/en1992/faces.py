@@ -15,6 +15,10 @@ from calcpack.clauses.en1992.model import Bars, Outline
 
 # Sizes to choose from; the thickest only where the others do not fit.
 SIZES: tuple[tuple[str, ...], ...] = (("12 mm", "16 mm", "20 mm", "25 mm"), ("32 mm",))
+# Where an end support leaves little room, in turn.
+THINNER: tuple[tuple[tuple[str, ...], ...], ...] = tuple(
+    (SIZES[0][:number],) for number in range(len(SIZES[0]) - 1, 0, -1)
+)
 HANGERS: tuple[tuple[str, ...], ...] = (("12 mm", "16 mm", "20 mm", "25 mm"),)
 MOST_BARS = 16
 CLOSE = 1e-9  # as a requirement on a sheet counts two sides as equal
@@ -137,9 +141,10 @@ class Face:
 
     @property
     def fits(self) -> bool:
-        """Clear distances."""
+        """Clear distances, and cover enough for bond."""
         clear, rule = self.clear
-        return rule <= clear * (1 + CLOSE)
+        bond = self.bars.bar.diameter + self.case.national["delta_c_dev"]
+        return rule <= clear * (1 + CLOSE) and bond <= self.bars.inset * (1 + CLOSE)
 
     @property
     def cracks_fine(self) -> bool:

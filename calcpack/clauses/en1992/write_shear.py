@@ -205,9 +205,8 @@ def _cot(
     case, national = design.case, design.case.national
     cite, word = "6.2.3(2) (6.7N)", "cotangent of the strut angle"
     if case.given.cot:
-        return sheet.take(
-            "cot theta", case.given.cot, "1", "Strut angle", f"beam {sheet.mark} design.cot_theta", cite, word=word
-        )
+        origin = f"beam {sheet.mark} design.cot_theta"
+        return sheet.take("cot theta", case.given.cot, "1", "Strut angle", origin, cite, word=word)
     force: Expression = size.width * spacing * nu * strength.fcd
     if national["alpha_cw"] != 1:
         force = number(national["alpha_cw"]) * force

@@ -242,11 +242,12 @@ def _size(beam: ConcreteBeam) -> SizeLines:
 
     width, depth = size("width", "b", "Width of the beam"), size("depth", "h", "Depth of the beam")
     flange = size("flange_depth", "h_f", "Depth of the flange") if section.shape == "tee" else None
+    given = design["cover"] is not None
     cover = detail(
         "c_nom",
-        design["cover"],
+        beam.design.case.cover,
         "Nominal cover of the stirrups",
-        f"{beam.place} design.cover",
+        f"{beam.place} design.cover" if given else f"chosen for {design['exposure']}, 30 mm at least",
         "nominal cover",
     )
     stirrup = detail(

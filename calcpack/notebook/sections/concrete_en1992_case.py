@@ -11,6 +11,7 @@ import numpy as np
 from calcpack.actions import CombinationResult
 from calcpack.clauses.bars import bar
 from calcpack.clauses.en1992.case import BeamCase, Given, Service, SpanCase, SupportCase
+from calcpack.clauses.en1992.detailing import nominal_cover
 from calcpack.clauses.en1992.flange import (
     FlangeSide,
     Segment,
@@ -27,6 +28,7 @@ from calcpack.statics import Curve, PointLoad
 
 LASTING = "quasi-permanent"
 NEAR = 1e-9
+LEAST_CHOSEN = 0.030  # [m], cover where the job gives none; common practice
 
 
 @dataclass(frozen=True)
@@ -79,7 +81,7 @@ def particulars(work: Work) -> Particulars:
         hogging=outline(given.section, widths[1]).turned,
         strength=strength,
         national=parameters,
-        cover=design["cover"],
+        cover=_cover(design, parameters),
         aggregate=design["aggregate"],
         exposure=design["exposure"],
         creep=design["creep"],
@@ -98,6 +100,13 @@ def particulars(work: Work) -> Particulars:
     )
     _guard(case)
     return Particulars(case, parameters, flanges, lasting, design["support_width"])
+
+
+def _cover(design: Mapping[str, Any], parameters: National) -> float:
+    """The given nominal cover, or what the exposure asks for about stirrups of 12 mm, 30 mm at least."""
+    if design["cover"] is not None:
+        return float(design["cover"])
+    return max(LEAST_CHOSEN, nominal_cover(0.012, design["exposure"], parameters))
 
 
 def _guard(case: BeamCase) -> None:

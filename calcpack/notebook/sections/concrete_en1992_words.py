@@ -37,7 +37,8 @@ def bottom_words(work: Work, design: Design) -> str:
         return f"Bottom: {bars}, to hold the stirrups; no moment stretches them."
     return (
         f"Bottom, chosen: {bars}; {_asked(work, face)}. Rule: {_rule()}; more, up to half as much "
-        "again, where the deflection asks for it."
+        "again, where the deflection asks for it, and thinner ones where an end support has no room to "
+        "anchor them."
     )
 
 
