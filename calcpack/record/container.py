@@ -29,10 +29,10 @@ def padding_flaw(gap: bytes, container: bytes) -> str:
 
     Examples
     --------
-    >>> padding_flaw(b"<0a000000>", bytes([10])), padding_flaw(b"<0A000000>", bytes([10]))
+    >>> padding_flaw(b"<0A000000>", bytes([10])), padding_flaw(b"<0a000000>", bytes([10]))
     ('', "the signature's container was altered: its digits are not as written")
     """
-    digits = container.hex().encode()
+    digits = container.hex().upper().encode()
     if gap != b"<" + digits.ljust(len(gap) - 2, b"0") + b">":
         return f"{ALTERED}: its digits are not as written"
     return ""

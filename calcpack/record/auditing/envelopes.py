@@ -68,15 +68,10 @@ class Worst:
         scaled = found * h[:, None] ** np.arange(found.shape[-1])
         sets, elements = scaled.shape[:2]
         changes = zeros(scaled).transpose(1, 0, 2).reshape(elements, -1)
-        low: list[Floats] = []
-        high: list[Floats] = []
-        owner: list[int] = []
-        for element in range(elements):
-            knots = np.unique(np.concatenate([[0.0], changes[element], [1.0]]))
-            low.append(knots[:-1])
-            high.append(knots[1:])
-            owner += [element] * (len(knots) - 1)
-        a, b, own = np.concatenate(low), np.concatenate(high), np.array(owner)
+        edge = np.zeros((elements, 1))
+        knots = np.sort(np.concatenate([edge, changes, edge + 1.0], axis=1), axis=1)
+        own, first = np.nonzero(np.diff(knots, axis=1) > 0)
+        a, b = knots[own, first], knots[own, first + 1]
         if sets * len(a) > MOST:
             raise CalcpackError("more loads than an audit takes on")
         parts = _between(scaled[:, own], a, b - a)
@@ -84,24 +79,22 @@ class Worst:
         positive = (value(parts, np.array(0.5)) > 0).astype(float)
         return _Pieces(start, (b - a) * h[own], parts, positive)
 
-    def extremes(
-        self, quantity: Quantity, always: Floats, placed: Floats
-    ) -> tuple[Extreme, Extreme]:
-        """Largest and smallest value of a combination.
+    def extremes(self, quantity: Quantity, always: Floats, placed: Floats) -> list[tuple[Extreme, Extreme]]:
+        """Largest and smallest value of each of several combinations.
 
         Parameters
         ----------
         quantity : str
-        always, placed : (sets,)
+        always, placed : (combinations, sets)
             Factors of what is there, and of what may be there or not.
         """
         pieces = self._pieces(quantity)
+        if always.size * len(pieces.start) > MOST:
+            raise CalcpackError("more loads than an audit takes on")
         steady = np.tensordot(always, pieces.coefficients, axes=1)
-        there = placed[:, None] * pieces.positive
-        away = placed[:, None] * (1 - pieces.positive)
-        upper = steady + np.einsum("sp,spd->pd", there, pieces.coefficients)
-        lower = steady + np.einsum("sp,spd->pd", away, pieces.coefficients)
-        return _extreme(pieces, upper, 1.0), _extreme(pieces, lower, -1.0)
+        upper = steady + np.tensordot(placed, pieces.positive[..., None] * pieces.coefficients, axes=1)
+        lower = steady + np.tensordot(placed, (1 - pieces.positive[..., None]) * pieces.coefficients, axes=1)
+        return list(zip(_extremes(pieces, upper, 1.0), _extremes(pieces, lower, -1.0), strict=True))
 
     def reactions(self, always: Floats, placed: Floats) -> tuple[Floats, Floats]:
         """Largest and smallest reaction of each support [kN]."""
@@ -123,18 +116,23 @@ def _between(coefficients: Floats, start: Floats, length: Floats) -> Floats:
     return moved
 
 
-def _extreme(pieces: _Pieces, curve: Floats, sign: float) -> Extreme:
-    """The largest (sign 1) or smallest (sign -1) value with all its places."""
-    turns = zeros(slope(curve))
-    t = np.concatenate([np.zeros((len(curve), 1)), turns, np.ones((len(curve), 1))], axis=1)
-    values = value(curve[:, None, :], t)
-    best = float((sign * values).max())
-    slack = SAME * max(float(np.abs(values).max()), 1e-300)
-    reached = sign * values >= best - slack
-    places = (pieces.start[:, None] + t * pieces.length[:, None])[reached]
-    flat = reached.all(axis=1) & (sign * value(curve, np.full(len(curve), 0.37)) >= best - slack)
-    stretches = tuple(
-        (float(start), float(start + length))
-        for start, length in zip(pieces.start[flat], pieces.length[flat], strict=True)
-    )
-    return Extreme(sign * best, tuple(float(place) for place in np.unique(places)), stretches)
+def _extremes(pieces: _Pieces, curves: Floats, sign: float) -> list[Extreme]:
+    """The largest (sign 1) or smallest (sign -1) value of each curve, with all its places."""
+    turns = zeros(slope(curves))
+    edge = np.zeros((*curves.shape[:-1], 1))
+    t = np.concatenate([edge, turns, edge + 1.0], axis=-1)
+    values = value(curves[..., None, :], t)
+    inside = sign * value(curves, np.full(curves.shape[:-1], 0.37))
+    found = []
+    for row in range(len(curves)):
+        best = float((sign * values[row]).max())
+        slack = SAME * max(float(np.abs(values[row]).max()), 1e-300)
+        reached = sign * values[row] >= best - slack
+        places = (pieces.start[:, None] + t[row] * pieces.length[:, None])[reached]
+        flat = reached.all(axis=1) & (inside[row] >= best - slack)
+        stretches = tuple(
+            (float(start), float(start + length))
+            for start, length in zip(pieces.start[flat], pieces.length[flat], strict=True)
+        )
+        found.append(Extreme(sign * best, tuple(np.unique(places).tolist()), stretches))
+    return found

@@ -146,5 +146,5 @@ def groups_of(audits: Iterable[SheetAudit]) -> Sequence[str]:
     return [group for group in GROUPS if group in there]
 
 
-GROUPS = ("lines", "results", "loads", "panels", "second copy", "pages", "provenance", "pack")
+GROUPS = ("lines", "origins", "results", "loads", "panels", "second copy", "pages", "provenance", "pack")
 """The groups of findings, in the order they are shown."""

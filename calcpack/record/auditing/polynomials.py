@@ -6,13 +6,14 @@ import numpy as np
 from numpy.typing import NDArray
 
 Floats = NDArray[np.float64]
-_HALVINGS = 60
+_STEPS = 60
+_CLOSE = 4e-16
 
 
 def value(coefficients: Floats, t: Floats) -> Floats:
     """Ascending powers, last axis, at ``t`` (which broadcasts against the other axes)."""
-    result = np.zeros(np.broadcast_shapes(coefficients.shape[:-1], t.shape))
-    for power in range(coefficients.shape[-1] - 1, -1, -1):
+    result: Floats = coefficients[..., -1] + 0.0 * t
+    for power in range(coefficients.shape[-1] - 2, -1, -1):
         result = result * t + coefficients[..., power]
     return result
 
@@ -50,16 +51,39 @@ def zeros(coefficients: Floats) -> Floats:
     degree = coefficients.shape[-1] - 1
     if degree == 0:
         return np.ones((*coefficients.shape[:-1], 0))
-    # Between the turning points a polynomial is monotone: one sign change at most, found by halving.
-    turns = zeros(slope(coefficients))
+    # Between its turning points a polynomial is monotone: one sign change at most.
+    rates = slope(coefficients)
+    turns = zeros(rates)
     edge = np.zeros((*coefficients.shape[:-1], 1))
     knots = np.concatenate([edge, turns, edge + 1.0], axis=-1)
-    low, high = knots[..., :-1].copy(), knots[..., 1:].copy()
-    spread = coefficients[..., None, :]
-    at_low, at_high = value(spread, low), value(spread, high)
-    crosses = at_low * at_high < 0
-    for _ in range(_HALVINGS):
-        middle = (low + high) / 2
-        before = value(spread, middle) * at_low > 0
-        low, high = np.where(before, middle, low), np.where(before, high, middle)
-    return np.sort(np.where(crosses, (low + high) / 2, 1.0), axis=-1)
+    ends = value(coefficients[..., None, :], knots)
+    crosses = ends[..., :-1] * ends[..., 1:] < 0
+    found = np.ones(crosses.shape)
+    if crosses.any():
+        place = np.nonzero(crosses)
+        found[place] = _crossings(
+            coefficients[place[:-1]],
+            rates[place[:-1]],
+            knots[..., :-1][place],
+            knots[..., 1:][place],
+            ends[..., :-1][place],
+        )
+    return np.sort(found, axis=-1)
+
+
+def _crossings(coefficients: Floats, rates: Floats, low: Floats, high: Floats, at_low: Floats) -> Floats:
+    """The one sign change of each polynomial between two places: Newton's steps, halving where they leave."""
+    t = (low + high) / 2
+    for _ in range(_STEPS):
+        here = value(coefficients, t)
+        before = here * at_low > 0
+        low, high = np.where(before, t, low), np.where(before, high, t)
+        rate = value(rates, t)
+        step = t - here / np.where(rate == 0, 1.0, rate)
+        inside = (step > low) & (step < high) & (rate != 0)
+        following = np.where(here == 0, t, np.where(inside, step, (low + high) / 2))
+        settled = np.abs(following - t) <= _CLOSE
+        t = following
+        if settled.all():
+            break
+    return t

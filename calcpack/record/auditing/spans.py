@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from calcpack.record.auditing.beam import Load, Solution, part_of, solve
+from calcpack.record.auditing.beam import Load, part_of, solve
 from calcpack.record.auditing.envelopes import Worst
 
 FIELDS = ("shear", "moment", "deflection", "fixed_end_moment", "total")
@@ -33,11 +33,24 @@ def span_equivalents(start: float, end: float, sets: Sequence[Sequence[Load]]) -
     own = [[_inside(load, span) for load in loads] for loads in own]
     simple = solve(span, (0.0, span), (False, False), own)
     held = solve(span, (0.0, span), (True, True), own)
+    each_alone, nothing = np.eye(len(own)), np.zeros((len(own), len(own)))
+    worst = Worst(simple)
+    moments = worst.extremes("moment", each_alone, nothing)
+    deflections = worst.extremes("deflection", each_alone, nothing)
     found = []
     for row, loads in enumerate(own):
-        one = np.zeros(len(own))
-        one[row] = 1.0
-        found.append(_equivalents(span, loads, simple, held, row, one))
+        moment, sag = (
+            _farther(*(each.value for each in extremes[row])) for extremes in (moments, deflections)
+        )
+        found.append(
+            {
+                "shear": 2 * _farther(*map(float, simple.reactions[row])) / span,
+                "moment": 8 * moment / span**2,
+                "deflection": 384 * sag / (5 * span**4),
+                "fixed_end_moment": 12 * _farther(*(-float(end) for end in held.end_moments[row])) / span**2,
+                "total": sum(load.total for load in loads) / span,
+            }
+        )
     return found
 
 
@@ -45,22 +58,6 @@ def _inside(load: Load, span: float) -> Load:
     return Load(
         max(load.start, 0.0), min(load.end, span), load.first, load.last, load.source, load.point
     )
-
-
-def _equivalents(
-    span: float, loads: Sequence[Load], simple: Solution, held: Solution, row: int, one: np.ndarray
-) -> dict[str, float]:
-    nothing = np.zeros_like(one)
-    worst = Worst(simple)
-    moment = _farther(*(each.value for each in worst.extremes("moment", one, nothing)))
-    sag = _farther(*(each.value for each in worst.extremes("deflection", one, nothing)))
-    return {
-        "shear": 2 * _farther(*map(float, simple.reactions[row])) / span,
-        "moment": 8 * moment / span**2,
-        "deflection": 384 * sag / (5 * span**4),
-        "fixed_end_moment": 12 * _farther(*(-float(value) for value in held.end_moments[row])) / span**2,
-        "total": sum(load.total for load in loads) / span,
-    }
 
 
 def _farther(*values: float) -> float:

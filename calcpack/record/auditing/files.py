@@ -1,0 +1,255 @@
+"""What there is to audit: a folder, a record, a sheet's PDF or a pack, with whatever lies beside it."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass, field
+from pathlib import Path, PurePosixPath
+from typing import Any
+
+from calcpack.job.errors import CalcpackError
+from calcpack.record.auditing.pages import attached_files, page_texts, sheet_pages
+from calcpack.record.auditing.reading import read_json
+
+LARGEST_FILE = 400_000_000
+
+
+@dataclass(frozen=True)
+class SheetFiles:
+    """One sheet's files.
+
+    Parameters
+    ----------
+    record : bytes
+    record_name : str
+        For messages.
+    notebook : Path, bytes or None
+    pdf : Path or None
+        The sheet's own PDF.
+    pages : tuple of str or None
+        Its pages' text, where they stand in a pack.
+    """
+
+    record: bytes
+    record_name: str
+    notebook: Path | bytes | None = None
+    notebook_name: str = ""
+    pdf: Path | None = None
+    pages: tuple[str, ...] | None = None
+
+    def notebook_bytes(self) -> bytes | None:
+        """The notebook's content."""
+        return read_file(self.notebook) if isinstance(self.notebook, Path) else self.notebook
+
+    def page_texts(self) -> tuple[str, ...] | None:
+        """The visible text, page by page; None where there is no PDF."""
+        if self.pages is not None or self.pdf is None:
+            return self.pages
+        return page_texts(read_file(self.pdf), self.pdf.name)
+
+
+@dataclass(frozen=True)
+class Target:
+    """All files of an audit.
+
+    Parameters
+    ----------
+    name : str
+    sheets : tuple of SheetFiles
+    folder : Path or None
+        An output folder.
+    whole : bool
+        Every sheet of the pack is here, so that sheets can be held against each other.
+    job_json : mapping or None
+    manifest : mapping of file name to SHA-256, or None
+    pack : Path or None
+    attached : mapping of name to bytes
+        What the PDF carries.
+    inputs : mapping of name to bytes
+        The job file first, then its tables.
+    """
+
+    name: str
+    sheets: tuple[SheetFiles, ...]
+    folder: Path | None = None
+    whole: bool = False
+    job_json: Mapping[str, Any] | None = None
+    manifest: Mapping[str, str] | None = None
+    pack: Path | None = None
+    attached: Mapping[str, bytes] = field(default_factory=dict)
+    inputs: Mapping[str, bytes] = field(default_factory=dict)
+    job_folder: Path | None = None
+
+
+def read_file(path: Path) -> bytes:
+    """A file's content.
+
+    Raises
+    ------
+    CalcpackError
+        It cannot be read, or is larger than any pack.
+    """
+    try:
+        if path.stat().st_size > LARGEST_FILE:
+            raise CalcpackError("it is larger than any file of a pack", file=str(path))
+        return path.read_bytes()
+    except OSError as error:
+        raise CalcpackError(f"it cannot be read: {error.strerror}", file=str(path)) from None
+
+
+def find_target(path: Path, *, records: Path | None = None, job: Path | None = None) -> Target:
+    """Find what is to be audited.
+
+    Parameters
+    ----------
+    path : Path
+        An output folder, a record, a sheet's PDF, a pack.
+    records : Path
+        Folder with the records, for a PDF that carries none.
+    job : Path
+        The job file, where it does not come with the target.
+
+    Raises
+    ------
+    CalcpackError
+        There is nothing of the kind.
+    """
+    if path.is_dir():
+        target = _folder(path)
+    elif not path.is_file():
+        raise CalcpackError(
+            f"there is no '{path}'", remedy="name an output folder, a record, a sheet's PDF or a pack"
+        )
+    elif path.suffix.lower() == ".pdf":
+        target = _pdf(path, records)
+    else:
+        target = _record(path)
+    if job is not None:
+        inputs = _job_inputs(job)
+        target = Target(**{**vars(target), "inputs": inputs, "job_folder": job.resolve().parent})
+    return target
+
+
+def _job_inputs(job: Path) -> dict[str, bytes]:
+    """The job file and the tables beside it that a table key may name."""
+    found = {job.name: read_file(job)}
+    for path in sorted(job.resolve().parent.rglob("*")):
+        if path.suffix.lower() in (".csv", ".xlsx") and path.is_file():
+            name = path.relative_to(job.resolve().parent).as_posix()
+            if name.encode() in found[job.name]:
+                found[name] = read_file(path)
+    return found
+
+
+def _folder(path: Path) -> Target:
+    sheets = path / "sheets" if (path / "sheets").is_dir() else path
+    records = sorted(sheets.glob("*.json"))
+    if sheets == path:
+        records = [each for each in records if each.name != "job.json"]
+    if not records:
+        raise CalcpackError(f"there is no record in '{sheets}'", remedy="name the folder of a pack")
+    home = path if sheets != path else path.parent
+    job_json = _job_json(home / "job.json")
+    order = {str(mark): place for place, mark in enumerate((job_json or {}).get("beams") or ())}
+    records.sort(key=lambda each: (order.get(each.stem, len(order)), each.stem))
+    pack = home / "pack.pdf"
+    attached = attached_files(read_file(pack), pack.name) if pack.is_file() else {}
+    return Target(
+        name=str(path),
+        sheets=tuple(_beside(each) for each in records),
+        folder=home,
+        whole=True,
+        job_json=job_json,
+        manifest=_manifest(home / "manifest.sha256"),
+        pack=pack if pack.is_file() else None,
+        attached=attached,
+        inputs=_inputs(attached),
+    )
+
+
+def _record(path: Path) -> Target:
+    home = path.resolve().parent.parent
+    return Target(
+        name=str(path),
+        sheets=(_beside(path),),
+        folder=home if (home / "manifest.sha256").is_file() else None,
+        manifest=_manifest(home / "manifest.sha256"),
+    )
+
+
+def _beside(record: Path) -> SheetFiles:
+    notebook, pdf = record.with_suffix(".ipynb"), record.with_suffix(".pdf")
+    return SheetFiles(
+        record=read_file(record),
+        record_name=record.name,
+        notebook=notebook if notebook.is_file() else None,
+        notebook_name=notebook.name,
+        pdf=pdf if pdf.is_file() else None,
+    )
+
+
+def _job_json(path: Path) -> Mapping[str, Any] | None:
+    if not path.is_file():
+        return None
+    data = read_json(read_file(path), path.name, 8_000_000)
+    return data if isinstance(data, dict) else None
+
+
+def _manifest(path: Path) -> dict[str, str] | None:
+    if not path.is_file():
+        return None
+    try:
+        lines = read_file(path).decode("utf-8").splitlines()
+    except UnicodeDecodeError:
+        raise CalcpackError("it is no text", file=path.name) from None
+    pairs = (line.split("  ", 1) for line in lines if "  " in line)
+    return {name: digest for digest, name in pairs}
+
+
+def _pdf(path: Path, records: Path | None) -> Target:
+    content = read_file(path)
+    attached = attached_files(content, path.name)
+    found = {name: data for name, data in attached.items() if name.endswith(".json")}
+    if records is not None:
+        if not records.is_dir():
+            raise CalcpackError(f"'{records}' is no folder", remedy="name the folder that holds the records")
+        held = records / "sheets" if (records / "sheets").is_dir() else records
+        found = {each.name: read_file(each) for each in held.glob("*.json") if each.name != "job.json"}
+    if not found:
+        raise CalcpackError(
+            "it carries no record",
+            file=str(path),
+            remedy="name the folder that holds the records with --record",
+        )
+    pages = page_texts(content, path.name)
+    by_mark = sheet_pages(pages)
+    return Target(
+        name=str(path),
+        sheets=tuple(
+            SheetFiles(
+                record=data,
+                record_name=name,
+                notebook=attached.get(f"{PurePosixPath(name).stem}.ipynb"),
+                notebook_name=f"{PurePosixPath(name).stem}.ipynb",
+                pages=by_mark.get(PurePosixPath(name).stem, pages if len(found) == 1 else ()),
+            )
+            for name, data in sorted(found.items(), key=lambda each: _first_page(by_mark, each[0]))
+        ),
+        whole=len(found) > 1,
+        pack=path,
+        attached=attached,
+        inputs=_inputs(attached),
+    )
+
+
+def _first_page(by_mark: Mapping[str, tuple[str, ...]], name: str) -> tuple[int, str]:
+    marks = list(by_mark)
+    stem = PurePosixPath(name).stem
+    return (marks.index(stem) if stem in by_mark else len(marks), stem)
+
+
+def _inputs(attached: Mapping[str, bytes]) -> dict[str, bytes]:
+    """The job file and its tables among the files a pack carries."""
+    names: Iterable[str] = [name for name in attached if name.endswith(".toml")]
+    tables = [name for name in attached if name.lower().endswith((".csv", ".xlsx"))]
+    return {name: attached[name] for name in (*names, *tables)}

@@ -1,0 +1,223 @@
+"""Whether a value brought in is what its origin holds: the panel, the section, the material, the beam."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator, Mapping, Sequence
+from itertools import pairwise
+from typing import Any
+
+from calcpack.record.auditing.findings import Finding, Verdict, good, wrong
+from calcpack.record.auditing.given import Given
+from calcpack.record.auditing.lines import WorkedLine
+from calcpack.record.auditing.reading import Record, RecordLine
+from calcpack.record.auditing.units import unit
+
+AGREEMENT = 1e-9
+_GROUP = "origins"
+_NAMED = re.compile(r"(panel|section|material|beam|sheet) (.+)")
+_LOAD = re.compile(r"load [0-9]+")
+_LETTERS = {"g": "dead", "q": "live", "r": "roof_live", "s": "snow"}
+_TOTAL = re.compile(r"W_([gqrs])")
+_EQUIVALENT = re.compile(r"w_eq,([gqrs])([0-9]*)")
+
+
+def numbers(data: object) -> Iterator[float]:
+    """Every number in nested data."""
+    if isinstance(data, Mapping):
+        for each in data.values():
+            yield from numbers(each)
+    elif isinstance(data, Sequence) and not isinstance(data, str):
+        for each in data:
+            yield from numbers(each)
+    elif isinstance(data, int | float) and not isinstance(data, bool):
+        yield float(data)
+
+
+def audit_origins(record: Record, given: Given | None, lines: Sequence[WorkedLine]) -> tuple[Finding, ...]:
+    """Hold each value brought in against what its origin names.
+
+    Parameters
+    ----------
+    record : Record
+    given : Given or None
+    lines : sequence of WorkedLine
+
+    Returns
+    -------
+    tuple of Finding
+        One a line; those whose origin lies outside the job are named together.
+    """
+    taken = [line for line in lines if line.line.kind == "take"]
+    if given is None:
+        return (
+            Finding(
+                _GROUP,
+                "values brought in",
+                f"{len(taken)} lines",
+                verdict=Verdict.OPEN,
+                remark="no notebook at hand that holds the job's values",
+            ),
+        )
+    findings, outside = [], []
+    for line in taken:
+        origin = line.line.origin or ""
+        if origin.startswith("analysis") and _from_results(line.line, record):
+            findings.append(good(_GROUP, f"line {line.line.no}", "equals a figure of the results"))
+            continue
+        pool, sure = _pool(origin, given)
+        found = _held(line, pool)
+        if found.verdict is Verdict.AGREES or sure:
+            findings.append(found)
+        else:
+            outside.append(line.line)
+    if outside:
+        origins = dict.fromkeys(each.origin or "nothing" for each in outside)
+        findings.append(
+            Finding(
+                _GROUP,
+                "lines " + ", ".join(each.no for each in outside),
+                "brought in from: " + ", ".join(origins),
+                verdict=Verdict.OPEN,
+                remark="neither the job nor the results name a figure to hold them against",
+            )
+        )
+    try:
+        findings += _shared(record, given, lines)
+    except (ValueError, AttributeError, TypeError) as error:
+        findings.append(wrong(_GROUP, "results", f"they are not written as results ({error})"))
+    return tuple(findings)
+
+
+def _held(line: WorkedLine, pool: Sequence[float]) -> Finding:
+    try:
+        size = line.line.value * float(unit(line.line.unit).size)
+    except ValueError:
+        size = line.line.value
+    near = min(pool, key=lambda each: abs(each - size), default=None)
+    agrees = near is not None and abs(near - size) <= AGREEMENT * max(abs(near), abs(size)) + 1e-15
+    return Finding(
+        _GROUP,
+        f"line {line.line.no}",
+        line.line.says,
+        line.line.shown,
+        line.line.origin or "",
+        "",
+        Verdict.AGREES if agrees else Verdict.WRONG,
+        "" if agrees else f"'{(line.line.origin or '')[:60]}' holds no such value",
+    )
+
+
+def _pool(origin: str, given: Given) -> tuple[list[float], bool]:
+    """The numbers that an origin may stand for, in kN and m, and whether it must be one of them.
+
+    A value that a clause or a table derives from a grade, a section or a design key need not be.
+    """
+    if origin.startswith(("design.", f"beam {given.mark} design.")):
+        return list(numbers(given.data.get("design") or {})), False
+    match = _NAMED.match(origin)
+    if not match:
+        return [], False
+    kind, rest = match[1], match[2]
+    if kind == "panel":
+        return _panel(rest, given), True
+    if kind == "sheet":
+        return _carried(rest.split(",")[0], given), True
+    if kind == "beam":
+        return _beam(rest, given)
+    held = given.section if kind == "section" else given.material
+    if held is None or not re.match(re.escape(str(held["key"])) + r"(?:\s|$)", rest):
+        return [], True
+    return list(numbers(held)), bool(rest[len(str(held["key"])) :].strip())
+
+
+def _panel(rest: str, given: Given) -> list[float]:
+    ranked = sorted(given.panels, key=lambda each: -len(str(each["panel"]["mark"])))
+    for transfer in ranked:
+        mark = str(transfer["panel"]["mark"])
+        if not re.match(re.escape(mark) + r"(?:[\s,]|$)", rest):
+            continue
+        key = rest[len(mark) :].strip(" ,")
+        panel = transfer["panel"]
+        if key in panel and isinstance(panel[key], int | float):
+            return [float(panel[key])]
+        return [*numbers(transfer), *_legs(panel["corners"])]
+    return []
+
+
+def _legs(corners: Sequence[Sequence[float]]) -> Iterator[float]:
+    for a, b in pairwise([*corners, corners[0]]):
+        yield abs(float(a[0]) - float(b[0]))
+        yield abs(float(a[1]) - float(b[1]))
+
+
+def _carried(mark: str, given: Given) -> list[float]:
+    return [value for each in given.carried if each["mark"] == mark for value in numbers(each["reactions"])]
+
+
+def _beam(rest: str, given: Given) -> tuple[list[float], bool]:
+    loads = [load for rows in given.loads.values() for load in rows]
+    if (named := _LOAD.search(rest)) is not None:
+        own = [load for load in loads if load.source == named[0]]
+        return [value for load in own for value in (load.start, load.end, load.first, load.last)], True
+    places = [float(each["at"]) for each in given.carried if rest.startswith(f"{each['mark']} ")]
+    if places:
+        return places, True
+    if rest.startswith(f"{given.mark} line"):
+        ends = [each for span in given.spans for each in span]
+        return [given.length, *ends, *(end - start for start, end in given.spans)], True
+    return [], False
+
+
+def _from_results(line: RecordLine, record: Record) -> bool:
+    """Whether a value brought in from the analysis is one of the figures of the results."""
+    try:
+        size = abs(line.value) * float(unit(line.unit).size)
+    except ValueError:
+        return False
+    near = 1e-9 * size + 1e-15
+    return any(
+        abs(abs(each) - size) <= near or abs(abs(each) / 1000 - size) <= near  # deflections stand in mm
+        for each in numbers(record.results)
+    )
+
+
+def _shared(record: Record, given: Given | None, lines: Sequence[WorkedLine]) -> Iterator[Finding]:
+    """Lines that say what a figure of the results says."""
+    results = record.results
+    for worked in lines:
+        line = worked.line
+        if line.kind != "hence":
+            continue
+        if (match := _TOTAL.fullmatch(line.symbol)) is not None:
+            case = _LETTERS[match[1]]
+            stated = (results.get("total") or {}).get(case)
+            yield _equal(line, stated, f"results.total.{case}")
+        elif (match := _EQUIVALENT.fullmatch(line.symbol)) is not None and given is not None:
+            case = _LETTERS[match[1]]
+            field = given.equivalent.replace("-", " ").replace(" ", "_")
+            rows = results.get("equivalent") or []
+            between = [number for number, row in enumerate(rows) if isinstance(row, dict)]
+            number = int(match[2]) - 1 if match[2] else between[0] if between else 0
+            row = rows[number] if number < len(rows) and isinstance(rows[number], dict) else {}
+            path = f"results.equivalent[{number}].{case}.{field}"
+            yield _equal(line, (row.get(case) or {}).get(field), path)
+
+
+def _equal(line: RecordLine, stated: object, path: str) -> Finding:
+    size = line.value * float(unit(line.unit).size)
+    agrees = (
+        isinstance(stated, int | float)
+        and not isinstance(stated, bool)
+        and abs(stated - size) <= AGREEMENT * max(abs(stated), abs(size)) + 1e-12
+    )
+    return Finding(
+        _GROUP,
+        f"line {line.no}",
+        f"equals {path}",
+        line.shown,
+        f"{stated!r:.40}",
+        "",
+        Verdict.AGREES if agrees else Verdict.WRONG,
+        "" if agrees else f"{path} is another value",
+    )

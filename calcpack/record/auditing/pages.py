@@ -1,0 +1,170 @@
+"""What a PDF shows and carries: the text of its pages, the files inside; nothing in it is run."""
+
+from __future__ import annotations
+
+import io
+import re
+import unicodedata
+from collections.abc import Mapping, Sequence
+
+import pypdf
+import pypdfium2  # type: ignore[import-untyped]
+
+from calcpack.job.errors import CalcpackError
+from calcpack.record.auditing.findings import Finding, Verdict, unchecked, wrong
+from calcpack.record.auditing.reading import Record, RecordLine
+
+MOST_PAGES = 20_000
+_FOOT = re.compile(r"^(?P<mark>.{1,200}) page (?P<page>[0-9]+) of [0-9]+$", re.M)
+_BEGINS = re.compile(r"(?m)^([0-9]{1,3}\.[0-9]{2,3})(?=\s)")
+_SPACE = re.compile(r"\s+")
+_WORDS = 12  # letters of a line's words that tell it from a number
+
+
+def attached_files(content: bytes, name: str) -> dict[str, bytes]:
+    """The files that a PDF carries inside, by name.
+
+    Raises
+    ------
+    CalcpackError
+        It is no PDF, or is encrypted.
+    """
+    try:
+        reader = pypdf.PdfReader(io.BytesIO(content))
+        if reader.is_encrypted:
+            raise CalcpackError("it is encrypted", file=name)
+        return {key: bytes(files[0]) for key, files in reader.attachments.items() if files}
+    except (
+        pypdf.errors.PyPdfError,
+        OSError,
+        ValueError,
+        KeyError,
+        TypeError,
+        AttributeError,
+        IndexError,
+        RecursionError,
+        AssertionError,
+        MemoryError,
+    ):
+        raise CalcpackError("it is no readable PDF", file=name) from None
+
+
+def page_texts(content: bytes, name: str) -> tuple[str, ...]:
+    """The visible text of a PDF, page by page.
+
+    Raises
+    ------
+    CalcpackError
+        It is no PDF.
+    """
+    try:
+        document = pypdfium2.PdfDocument(content)
+    except pypdfium2.PdfiumError:
+        raise CalcpackError("it is no readable PDF", file=name) from None
+    try:
+        if len(document) > MOST_PAGES:
+            raise CalcpackError(f"it has more than {MOST_PAGES} pages", file=name)
+        texts = []
+        for number in range(len(document)):
+            page = document[number]
+            text_page = page.get_textpage()
+            texts.append(text_page.get_text_range().replace("\r\n", "\n"))
+            text_page.close()
+            page.close()
+        return tuple(texts)
+    except pypdfium2.PdfiumError:
+        raise CalcpackError("a page of it cannot be read", file=name) from None
+    finally:
+        document.close()
+
+
+def sheet_pages(pages: Sequence[str]) -> dict[str, tuple[str, ...]]:
+    """The pages of each sheet of a pack, by the mark at their foot.
+
+    Examples
+    --------
+    >>> found = sheet_pages(["cover", "...\\nB1 page 1 of 2", "...\\nB1 page 2 of 2", "B2 page 1 of 1"])
+    >>> {mark: len(pages) for mark, pages in found.items()}
+    {'B1': 2, 'B2': 1}
+    """
+    found: dict[str, list[str]] = {}
+    for text in pages:
+        marks = list(_FOOT.finditer(text))
+        if marks:
+            found.setdefault(marks[-1]["mark"], []).append(text)
+    return {mark: tuple(texts) for mark, texts in found.items()}
+
+
+def _bare(text: str) -> str:
+    """Without any space and with plain letters: how a PDF spaces and slants them says nothing."""
+    return _SPACE.sub("", unicodedata.normalize("NFKC", text.replace("·", "\ue000"))).replace("\ue000", "·")
+
+
+def audit_pages(record: Record, pages: Sequence[str] | None) -> tuple[Finding, ...]:
+    """Whether the visible pages show each line with its printed value.
+
+    Parameters
+    ----------
+    record : Record
+    pages : sequence of str or None
+
+    Returns
+    -------
+    tuple of Finding
+        One a line.
+    """
+    if pages is None:
+        return (unchecked("pages", "PDF", "there is no PDF of this sheet at hand"),)
+    if not pages:
+        return (wrong("pages", "PDF", "the PDF has no pages of this sheet"),)
+    by_line = _parts("\n".join(_without_foot(page) for page in pages), record)
+    return tuple(_shown_on(line, by_line) for line in record.lines)
+
+
+def _without_foot(page: str) -> str:
+    match = None
+    for match in _FOOT.finditer(page):  # noqa: B007 - the last one counts
+        pass
+    return page if match is None else page[: match.start()]
+
+
+def _parts(text: str, record: Record) -> dict[str, list[str]]:
+    """What follows each line's number and words, up to the next line.
+
+    A number at the beginning of a row is that of a line where the line's words follow it; else it is
+    a number in a fraction.
+    """
+    says = {line.no: _bare(line.says)[:_WORDS] for line in record.lines}
+    begins = [
+        match
+        for match in _BEGINS.finditer(text)
+        if match[1] in says and _bare(text[match.end() : match.end() + 6 * _WORDS]).startswith(says[match[1]])
+    ]
+    found: dict[str, list[str]] = {}
+    for place, match in enumerate(begins):
+        end = begins[place + 1].start() if place + 1 < len(begins) else len(text)
+        found.setdefault(match[1], []).append(_bare(text[match.end() : end]))
+    return found
+
+
+def _shown_on(line: RecordLine, by_line: Mapping[str, Sequence[str]]) -> Finding:
+    parts = by_line.get(line.no, ())
+    shown = _bare(line.shown)
+    place = f"line {line.no}"
+    if not parts:
+        return wrong("pages", place, "the pages do not show a line of this number and these words", says=line.says, printed=line.shown)
+    if line.kind == "require":
+        right = any(shown in part and ("notsatisfied" in part) == (line.passes is False) for part in parts)
+    else:
+        whole = re.compile(re.escape("=" + shown) + r"(?![0-9.])")
+        right = any(whole.search(part) for part in parts)
+    if right:
+        return Finding("pages", place, line.says, line.shown)
+    return Finding(
+        "pages",
+        place,
+        line.says,
+        line.shown,
+        verdict=Verdict.WRONG,
+        remark="the pages show this line with another value",
+    )
