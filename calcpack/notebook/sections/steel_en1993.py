@@ -155,7 +155,8 @@ def _trials(work: Work, beam: SteelBeam) -> None:
         for each in beam.segments
     ]
     chi = "chi_LT,mod" if rolled else "chi_LT"
-    heads = ("M_Ed,b", "L_cr", "C_1", "C_2", "M_cr", "lambdabar_LT", chi, "M_b,Rd")
+    factor = "C_h" if any(each.segment.held_top for each in beam.segments) else "C_1"
+    heads = ("M_Ed,b", "L_cr", factor, "C_2", "M_cr", "lambdabar_LT", chi, "M_b,Rd")
     work.sheet.table(
         [
             ("segment", "left"),

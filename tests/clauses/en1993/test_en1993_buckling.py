@@ -220,3 +220,9 @@ def test_lines_say_what_the_numbers_say(name, system):
         assert lines.chi.value == pytest.approx(each.reduction.reduced, rel=1e-9)
         assert lines.resistance.value == pytest.approx(each.resistance, rel=1e-9)
         assert lines.check.check("LTB")["ratio"] == pytest.approx(each.ratio, rel=1e-9)
+
+
+def test_modified_reduction_is_never_above_one():
+    assert reduction(0.45, 0.34, "rolled", RECOMMENDED, 2.5).reduced == 1.0
+    assert reduction(0.3, 0.34, "rolled", RECOMMENDED, 1.0).chi == 1.0
+    assert reduction(0.1, 0.34, "general", RECOMMENDED, 1.0).reduced == 1.0
