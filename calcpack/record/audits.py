@@ -34,4 +34,5 @@ def audit(path: Path) -> AuditResult:
         report = target(path)
     except CalcpackError as error:
         return AuditResult(None, f"not audited: {error.problems[0]}")
-    return AuditResult(bool(report.passes), "the audit passes" if report.passes else "the audit does not pass")
+    says = "the audit passes" if report.passes else "the audit does not pass"
+    return AuditResult(bool(report.passes), says)

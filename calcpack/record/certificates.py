@@ -135,5 +135,7 @@ def read_certificates(data: bytes, file: str) -> list[x509.Certificate]:
         for certificate in found:
             _ = certificate.subject.native, certificate.public_key.sha256
     except (ValueError, TypeError, KeyError) as error:
-        raise CalcpackError(f"'{file}' holds no certificate: {error}", remedy="give a PEM or DER file") from None
+        raise CalcpackError(
+            f"'{file}' holds no certificate: {error}", remedy="give a PEM or DER file"
+        ) from None
     return found

@@ -1,8 +1,9 @@
 """Whether the container of a signature is exactly as it was written.
 
-A signature proves the document; parts of its own container (RFC 5652) are not under it: padding, the spelling of
-the hexadecimal digits, versions, lists of algorithms, unsigned attributes. Nobody can change the document there,
-but a changed byte would go unnoticed. Containers that calcpack wrote have one form only, so it is asked for.
+A signature proves the document; parts of its own container (RFC 5652) are not under it: padding, the
+spelling of the hexadecimal digits, versions, lists of algorithms, unsigned attributes. Nobody can change the
+document there, but a changed byte would go unnoticed. Containers that calcpack wrote have one form only, so
+it is asked for.
 """
 
 from __future__ import annotations

@@ -1,19 +1,28 @@
-"""What a person declares with a detached signature, under the signature: the content hints of RFC 2634, 2.9."""
+"""What a person declares with a detached signature, under it: the content hints of RFC 2634, 2.9."""
 
 from __future__ import annotations
 
+import datetime
 from collections.abc import Iterable
 
 from asn1crypto import cms, core
-from pyhanko.sign.attributes import CMSAttributeProvider, SignedAttributeProviderSpec, SigningTimeProvider
-from pyhanko.sign.attributes import SigningCertificateV2Provider as CertificateProvider
+from pyhanko.sign.attributes import (
+    CMSAttributeProvider,
+    SignedAttributeProviderSpec,
+    SigningCertificateV2Provider,
+    SigningTimeProvider,
+)
+from pyhanko.sign.signers import Signer
 
 _OID = "1.2.840.113549.1.9.16.2.4"
 _NAME = "content_hint"
 
 
 class _ContentHints(core.Sequence):  # type: ignore[misc, unused-ignore]
-    _fields = [("content_description", core.UTF8String, {"optional": True}), ("content_type", cms.ContentType)]  # noqa: RUF012
+    _fields = (
+        ("content_description", core.UTF8String, {"optional": True}),
+        ("content_type", cms.ContentType),
+    )
 
 
 class _SetOfContentHints(core.SetOf):  # type: ignore[misc, unused-ignore]
@@ -45,14 +54,16 @@ class Declaring(SignedAttributeProviderSpec):
         "checked: I checked this calculation."
     """
 
-    def __init__(self, signer: object, time: object, text: str) -> None:
+    def __init__(self, signer: Signer, time: datetime.datetime, text: str) -> None:
         self._providers = [
-            CertificateProvider(signer.signing_cert),  # type: ignore[attr-defined]
+            SigningCertificateV2Provider(signer.signing_cert),
             SigningTimeProvider(time),
             _Hint(text),
         ]
 
-    def signed_attr_providers(self, data_digest: bytes, digest_algorithm: str) -> Iterable[CMSAttributeProvider]:
+    def signed_attr_providers(
+        self, data_digest: bytes, digest_algorithm: str
+    ) -> Iterable[CMSAttributeProvider]:
         """The attributes, in order."""
         return self._providers
 

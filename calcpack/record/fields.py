@@ -96,7 +96,7 @@ def _reference(element: Any, update: Update) -> generic.IndirectObject:
 
 
 def _signing_cells(tree: Any, count: int) -> list[Any]:
-    """The empty last cells of the sign-off table's rows; the document's own element where there is no such table."""
+    """The empty last cells of the sign-off table's rows; without such a table the document's own element."""
     for table in itertools.islice(_elements(tree, "/Table"), 4):  # the cover comes first
         for body in _elements(table, "/TBody"):
             rows = [list(_elements(row, "/TD")) for row in _elements(body, "/TR")]

@@ -1,7 +1,7 @@
 """Who may sign as what: the order of the roles, the persons, the level of checking.
 
-Source: EN 1990:2002 Annex B, Table B4 (design supervision levels: self-checking, checking by different persons
-than those originally responsible, third-party checking by a different organisation).
+Source: EN 1990:2002 Annex B, Table B4, from memory (design supervision levels: self-checking, checking by
+other persons than those originally responsible, third-party checking by another organisation).
 """
 
 from __future__ import annotations
@@ -107,7 +107,9 @@ def _organisations(before: Certificate, certificate: Certificate, problems: list
 
 
 def same_name(named: str, signed: str) -> bool:
-    """Whether a certificate's name can be that of the person a job names: order, accents, titles and initials aside.
+    """Whether a certificate's name can be that of the person a job names.
+
+    Order, accents, titles and initials aside.
 
     Examples
     --------

@@ -130,7 +130,9 @@ def sign_file(path: Path, signing: Signing) -> Signed:
     if path.suffix.lower() in (".html", ".htm"):
         with locked(path, "r+b"):
             return _sign_page(path, signing)
-    raise CalcpackError(f"'{path}' is neither a pack nor a sheet for the screen", remedy="name a .pdf or .html")
+    raise CalcpackError(
+        f"'{path}' is neither a pack nor a sheet for the screen", remedy="name a .pdf or .html"
+    )
 
 
 def _sign_pack(path: Path, signing: Signing) -> Signed:
@@ -142,7 +144,7 @@ def _sign_pack(path: Path, signing: Signing) -> Signed:
     found, notes = _cleared(path, statement, signing, signatures)
     signed = asyncio.run(_pack_signed(data, statement, signing, found))
     after = open_pdf(signed, path.name)
-    if any(each.damage for each in pdf_signatures(signed, after, Trust((), signing.now))):
+    if any(each.damage for each in pdf_signatures(signed, after, Trust((), signing.now), later=False)):
         raise CalcpackError(f"'{path}' would not be valid once signed; it was left as it was")
     write_file(path, signed)
     sync_folder(path.parent)
@@ -258,7 +260,9 @@ def _failed(error: Exception) -> CalcpackError:
 
 
 def _references(update: Update) -> list[Any]:
-    fields = update.root["/AcroForm"]["/Fields"] if "/AcroForm" in update.root else []
+    if "/AcroForm" not in update.root:
+        return []
+    fields = update.root["/AcroForm"]["/Fields"]
     return [fields.raw_get(index) for index in range(len(fields))]
 
 
@@ -320,7 +324,8 @@ def page_statement(page: Path) -> Statement:
     """
     folder = output_folder(page)
     assert folder is not None  # as_built has found it
-    records = [page.with_suffix(".json")] if page.parent != folder else sorted((folder / "sheets").glob("*.json"))
+    single = page.absolute().parent != folder
+    records = [page.with_suffix(".json")] if single else sorted((folder / "sheets").glob("*.json"))
     try:
         job_file = folder / "job.json"
         job = json.loads(job_file.read_bytes())

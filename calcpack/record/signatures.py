@@ -11,7 +11,7 @@ from typing import Any
 
 from asn1crypto import cms, x509
 from pyhanko.pdf_utils.reader import PdfFileReader
-from pyhanko.sign.diff_analysis import ModificationLevel
+from pyhanko.sign.diff_analysis import DiffResult, ModificationLevel
 from pyhanko.sign.general import extract_certificate_info
 from pyhanko.sign.validation import EmbeddedPdfSignature
 from pyhanko.sign.validation.generic_cms import async_validate_detached_cms
@@ -109,7 +109,9 @@ def signed_from(reader: PdfFileReader) -> int | None:
     return min(starts, default=None)
 
 
-def pdf_signatures(data: bytes, reader: PdfFileReader, trust: Trust) -> tuple[SignatureReport, ...]:
+def pdf_signatures(
+    data: bytes, reader: PdfFileReader, trust: Trust, *, later: bool = True
+) -> tuple[SignatureReport, ...]:
     """Reports on all signatures of a PDF, in the order they were made.
 
     Parameters
@@ -118,9 +120,13 @@ def pdf_signatures(data: bytes, reader: PdfFileReader, trust: Trust) -> tuple[Si
     reader : PdfFileReader
         On the same data.
     trust : Trust
+    later : bool
+        Look into what was appended after each signature, too; that takes seconds for a large pack.
     """
     return tuple(
-        _pdf_signature(data, each, trust) for each in reader.embedded_signatures if _kind(each) == "/Sig"
+        _pdf_signature(data, each, trust, later)
+        for each in reader.embedded_signatures
+        if _kind(each) == "/Sig"
     )
 
 
@@ -145,7 +151,9 @@ def _kind(signature: EmbeddedPdfSignature) -> str:
     return str(signature.sig_object_type)
 
 
-def _pdf_signature(data: bytes, signature: EmbeddedPdfSignature, trust: Trust) -> SignatureReport:
+def _pdf_signature(
+    data: bytes, signature: EmbeddedPdfSignature, trust: Trust, later: bool
+) -> SignatureReport:
     entries = signature.sig_object
     reason, _, despite = str(entries.get("/Reason", "")).partition(DESPITE)
     try:
@@ -154,12 +162,17 @@ def _pdf_signature(data: bytes, signature: EmbeddedPdfSignature, trust: Trust) -
         own = False
 
     async def validate(context: ValidationContext) -> Any:
-        return await async_validate_pdf_signature(signature, context, key_usage_settings=_USAGE)
+        return await async_validate_pdf_signature(
+            signature, context, key_usage_settings=_USAGE, skip_diff=True
+        )
 
     try:
         status, stamped = _validated(validate, trust)
         damage = _damage(status)
-        damage += _pdf_damage(status, signature)
+        if signature.coverage not in _WHOLE:
+            damage.append("it covers a part of the file only")
+        elif not damage and later and not _only_allowed_since(signature):
+            damage.append("the file was changed after it in a way it does not allow")
         if own:
             first, length, rest, _ = (int(part) for part in signature.byte_range)
             container = cms.ContentInfo.load(signature.pkcs7_content).dump()
@@ -237,13 +250,13 @@ def _damage(status: Any) -> list[str]:
     return damage
 
 
-def _pdf_damage(status: Any, signature: EmbeddedPdfSignature) -> list[str]:
-    if signature.coverage not in _WHOLE:
-        return ["it covers a part of the file only"]
-    level = status.modification_level
-    if level is ModificationLevel.OTHER or status.docmdp_ok is False:
-        return ["the file was changed after it in a way it does not allow"]
-    return []
+def _only_allowed_since(signature: EmbeddedPdfSignature) -> bool:
+    """Whether what was appended after a signature is what the certification allows: other signatures."""
+    if signature.coverage is SignatureCoverageLevel.ENTIRE_FILE:
+        return True
+    signature.compute_integrity_info()
+    found = signature.summarise_integrity_info()
+    return found["docmdp_ok"] is True and isinstance(found["diff_result"], DiffResult)
 
 
 def _unreadable(role: str, error: Exception) -> SignatureReport:
@@ -271,7 +284,10 @@ def _doubt(
             f" {shown_date(status.revocation_details.revocation_date.date())}"
         )
     if not status.trusted:
-        return f"none of the trusted certificates vouches for {certificate.name} (issued by {certificate.issuer})"
+        return (
+            f"none of the trusted certificates vouches for {certificate.name}"
+            f" (issued by {certificate.issuer})"
+        )
     return ""
 
 

@@ -143,7 +143,8 @@ def _parts(text: str, record: Record) -> dict[str, list[str]]:
     found: dict[str, list[str]] = {}
     for place, match in enumerate(begins):
         end = begins[place + 1].start() if place + 1 < len(begins) else len(text)
-        found.setdefault(match[1], []).append(_bare(text[match.end() : end]))
+        rows = text[match.end() : end].split("\n")
+        found.setdefault(match[1], []).append("\n".join(map(_bare, rows)))
     return found
 
 
@@ -154,9 +155,10 @@ def _shown_on(line: RecordLine, by_line: Mapping[str, Sequence[str]]) -> Finding
     if not parts:
         return wrong("pages", place, "the pages do not show a line of this number and these words", says=line.says, printed=line.shown)
     if line.kind == "require":
-        right = any(shown in part and ("notsatisfied" in part) == (line.passes is False) for part in parts)
+        flat = [part.replace("\n", "") for part in parts]
+        right = any(shown in part and ("notsatisfied" in part) == (line.passes is False) for part in flat)
     else:
-        whole = re.compile(re.escape("=" + shown) + r"(?![0-9.])")
+        whole = re.compile(r"=\n?" + re.escape(shown) + r"(?![0-9.])")
         right = any(whole.search(part) for part in parts)
     if right:
         return Finding("pages", place, line.says, line.shown)

@@ -392,7 +392,7 @@ def _checks(book: Book, record: Record, lines: Sequence[WorkedLine]) -> None:
         faults = _check_faults(check, ranked[0]) if ranked else {"": "no line requires anything"}
         if ranked and len(faults) < 3:
             taken.add(ranked[0].line.no)
-        for key in ("demand", "capacity", "unit", "ratio", "passes", "cite"):
+        for key in ("name", "demand", "capacity", "unit", "ratio", "passes", "cite"):
             book.seen(f"results.checks[{number}].{key}")
         key = next(iter(faults), "")
         path = f"results.checks[{number}]"

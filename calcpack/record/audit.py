@@ -1,0 +1,219 @@
+"""The audit of a target: every sheet by itself, in several processes where there are many, then all together."""
+
+from __future__ import annotations
+
+import multiprocessing
+import os
+from collections.abc import Callable, Iterator, Mapping
+from concurrent.futures import ProcessPoolExecutor
+from dataclasses import dataclass, replace
+from pathlib import Path
+from typing import Any
+
+import calcpack
+from calcpack.job.errors import CalcpackError
+from calcpack.record.auditing.copies import audit_copies
+from calcpack.record.auditing.files import SheetFiles, Target, find_target
+from calcpack.record.auditing.findings import Audit, Finding, SheetAudit
+from calcpack.record.auditing.given import Given, Notebook, read_notebook
+from calcpack.record.auditing.inputs import audit_job, job_facts
+from calcpack.record.auditing.lines import WorkedLine, work_lines
+from calcpack.record.auditing.origins import audit_origins
+from calcpack.record.auditing.pages import audit_pages
+from calcpack.record.auditing.provenance import audit_manifest, audit_provenance, input_digests
+from calcpack.record.auditing.reading import Record, read_record
+from calcpack.record.auditing.results import audit_results
+from calcpack.record.auditing.sources import audit_sources
+from calcpack.record.auditing.together import Digest, audit_together, digest_of
+
+Follow = Callable[[str, int, int], None]  # stage, steps done, steps in all
+FEW = 12  # sheets that one process does as fast as several
+
+
+@dataclass(frozen=True)
+class OpenedSheet:
+    """A sheet read and its lines worked out again, for whoever asks after a line."""
+
+    record: Record
+    notebook: Notebook | None
+    lines: tuple[WorkedLine, ...]
+
+    @property
+    def given(self) -> Given | None:
+        """The notebook's parameters."""
+        return self.notebook.given if self.notebook is not None else None
+
+
+@dataclass(frozen=True)
+class _Common:
+    """What all sheets of a target share."""
+
+    digests: frozenset[str]
+    facts: Mapping[str, Any] | None
+    job_folder: Path | None
+
+
+def open_sheet(files: SheetFiles) -> OpenedSheet:
+    """Read a sheet and work its lines out again.
+
+    Raises
+    ------
+    CalcpackError
+        Record or notebook cannot be read, or is beyond all bounds.
+    """
+    record = read_record(files.record, files.record_name)
+    content = files.notebook_bytes()
+    notebook = None if content is None else read_notebook(content, files.notebook_name)
+    return OpenedSheet(record, notebook, work_lines(record))
+
+
+def choose_sheet(target: Target, mark: str | None) -> SheetFiles:
+    """The one sheet of a target that is asked after.
+
+    Raises
+    ------
+    CalcpackError
+        There are several and none is named, or none of that mark.
+    """
+    marks = [read_record(each.record, each.record_name).mark for each in target.sheets]
+    if mark is None and len(marks) == 1:
+        return target.sheets[0]
+    if mark is None:
+        raise CalcpackError(f"'{target.name}' has {len(marks)} sheets", remedy="name one with --sheet")
+    if mark not in marks:
+        from calcpack.job.errors import nearest
+
+        raise CalcpackError(f"there is no sheet '{mark}'", remedy=nearest(mark, marks))
+    return target.sheets[marks.index(mark)]
+
+
+def audit_sheet(
+    files: SheetFiles,
+    *,
+    digests: frozenset[str] = frozenset(),
+    facts: Mapping[str, Any] | None = None,
+    job_folder: Path | None = None,
+) -> tuple[SheetAudit, Digest]:
+    """Audit one sheet.
+
+    Parameters
+    ----------
+    files : SheetFiles
+    digests : set of str
+        Hashes that the job's input may have.
+    facts : mapping
+        What the job file says, from ``job_facts``.
+    job_folder : Path
+        Where the job's own templates may lie.
+
+    Returns
+    -------
+    SheetAudit, Digest
+        What was found, and what the other sheets need to know.
+
+    Raises
+    ------
+    CalcpackError
+        Something cannot be read, or is beyond all bounds.
+    """
+    opened = open_sheet(files)
+    record, notebook, given, lines = opened.record, opened.notebook, opened.given, opened.lines
+    results, _ = audit_results(record, given, lines)
+    findings: list[Finding] = [line.finding for line in lines]
+    findings += audit_origins(record, given, lines)
+    findings += results
+    if given is not None:
+        findings += audit_sources(given)
+    findings += audit_job(given, facts)
+    findings += audit_copies(record, notebook, lines)
+    findings += audit_pages(record, files.page_texts())
+    findings += audit_provenance(record, notebook, digests, job_folder)
+    stated = str(notebook.metadata.get("input", "")) if notebook is not None else ""
+    try:
+        digest = digest_of(record, given, stated)
+    except (KeyError, TypeError, ValueError):
+        digest = Digest(record.mark, record.data["job"], stated)
+    audit = SheetAudit(
+        record.mark, tuple(findings), str(record.data["revision"]), str(record.data["job"].get("title", ""))
+    )
+    return audit, digest
+
+
+def audit_target(
+    path: Path,
+    *,
+    records: Path | None = None,
+    job: Path | None = None,
+    only: str | None = None,
+    follow: Follow = lambda _stage, _done, _of: None,
+    processes: int | None = None,
+) -> Audit:
+    """Audit an output folder, a record, a sheet's PDF or a pack.
+
+    Parameters
+    ----------
+    path : Path
+    records : Path
+        Folder with the records, for a PDF that carries none.
+    job : Path
+        The job file, where it does not come with the target.
+    only : str
+        Mark of the one sheet wanted.
+    follow : callable
+        Told of the progress.
+    processes : int
+        How many sheets at a time; as many as the machine has cores if left out.
+
+    Returns
+    -------
+    Audit
+
+    Raises
+    ------
+    CalcpackError
+        Something cannot be read.
+    """
+    follow("reading the files", 0, 1)
+    target = find_target(path, records=records, job=job)
+    if only is not None:
+        target = replace(target, sheets=(choose_sheet(target, only),), whole=False)
+    common = _Common(input_digests(target.inputs), job_facts(target), target.job_folder)
+    follow("reading the files", 1, 1)
+    audits, digests = [], []
+    count = len(target.sheets)
+    follow("auditing the sheets", 0, count)
+    for audit, digest in _each(target, common, processes):
+        audits.append(audit)
+        digests.append(digest)
+        follow("auditing the sheets", len(audits), count)
+    together = (*audit_together(target, digests), *audit_manifest(target))
+    return Audit(
+        target=target.name,
+        sheets=tuple(audits),
+        together=SheetAudit("", together),
+        program=f"calcpack {calcpack.__version__}",
+    )
+
+
+def _each(target: Target, common: _Common, processes: int | None) -> Iterator[tuple[SheetAudit, Digest]]:
+    workers = processes or os.cpu_count() or 1
+    if workers == 1 or len(target.sheets) <= FEW:
+        _prepare(common)
+        yield from map(_audited, target.sheets)
+        return
+    # Started afresh rather than forked: a progress display has its thread running already.
+    context = multiprocessing.get_context("spawn")
+    with ProcessPoolExecutor(workers, mp_context=context, initializer=_prepare, initargs=(common,)) as pool:
+        yield from pool.map(_audited, target.sheets, chunksize=4)
+
+
+_COMMON: list[_Common] = []
+
+
+def _prepare(common: _Common) -> None:
+    _COMMON[:] = [common]
+
+
+def _audited(files: SheetFiles) -> tuple[SheetAudit, Digest]:
+    (common,) = _COMMON
+    return audit_sheet(files, digests=common.digests, facts=common.facts, job_folder=common.job_folder)

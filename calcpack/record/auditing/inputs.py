@@ -1,0 +1,116 @@
+"""The job file read again, and whether a sheet's parameters are what it says."""
+
+from __future__ import annotations
+
+import tempfile
+from collections.abc import Iterator, Mapping
+from pathlib import Path, PurePosixPath
+from typing import Any
+
+from calcpack.job.errors import CalcpackError
+from calcpack.record.auditing.beam import Load
+from calcpack.record.auditing.copies import differences
+from calcpack.record.auditing.files import Target
+from calcpack.record.auditing.findings import Finding, good, wrong
+from calcpack.record.auditing.given import Given
+
+_GROUP = "origins"
+
+
+def job_facts(target: Target) -> dict[str, Any] | None:
+    """What the job file says, as plain data; None where it is not at hand or cannot be read.
+
+    Parameters
+    ----------
+    target : Target
+        Its ``inputs`` are laid into an empty folder and read from there, as data.
+    """
+    if not target.inputs:
+        return None
+    from calcpack.job import read_job
+
+    names = list(target.inputs)
+    if any(".." in PurePosixPath(name).parts or PurePosixPath(name).is_absolute() for name in names):
+        return None
+    with tempfile.TemporaryDirectory(prefix="calcpack-") as folder:
+        for name, data in target.inputs.items():
+            path = Path(folder) / name
+            path.parent.mkdir(parents=True, exist_ok=True)
+            path.write_bytes(data)
+        try:
+            job = read_job(Path(folder) / names[0])
+        except CalcpackError:
+            return None
+    return {
+        "header": job.job.model_dump(mode="json"),
+        "basis": job.basis.model_dump(mode="json"),
+        "submission": job.submission.model_dump(mode="json"),
+        "panels": {each.mark: each.model_dump(mode="json", exclude={"place"}) for each in job.panels},
+        "beams": {each.mark: each.model_dump(mode="json") for each in job.beams},
+    }
+
+
+def audit_job(given: Given | None, facts: Mapping[str, Any] | None) -> tuple[Finding, ...]:
+    """Hold a notebook's parameters against the job file.
+
+    Parameters
+    ----------
+    given : Given or None
+    facts : mapping or None
+        From :func:`job_facts`.
+    """
+    if given is None or facts is None:
+        return ()
+    beam = facts["beams"].get(given.mark)
+    if beam is None:
+        return (wrong(_GROUP, f"job file, beam {given.mark[:60]}", "the job file has no such beam"),)
+    return (
+        *_same("title block", given.data.get("header"), facts["header"]),
+        *_same("basis", given.data.get("basis"), facts["basis"]),
+        *_panels(given, facts),
+        *_same("section", given.data.get("section"), beam["section"]),
+        *_same("material", given.data.get("material"), beam["material"]),
+        *_same("line", given.data.get("points"), beam["points"]),
+        *_same("fixed", given.data.get("fixed"), [beam["fixed_start"], beam["fixed_end"]]),
+        *_same("free", given.data.get("free"), [beam["free_start"], beam["free_end"]]),
+        *_same("equivalent", given.equivalent, beam["equivalent"]),
+        *_same("design_loads", given.design_loads, beam["design_loads"]),
+        *_own_loads(given, beam["loads"]),
+    )
+
+
+def _same(says: str, ours: object, theirs: object) -> Iterator[Finding]:
+    # What only one of the two knows is a matter of the program's version, not of the job.
+    both = (each for each in differences(ours, theirs, "") if "nothing" not in each[1:])
+    first = next(both, None)
+    if first is None:
+        yield good(_GROUP, f"job file, {says}", "the parameters are what the job file says")
+        return
+    place = f"job file, {says} {first[0]}".strip()
+    yield wrong(_GROUP, place, "the parameters are not what the job file says", printed=first[1], other=first[2])
+
+
+def _panels(given: Given, facts: Mapping[str, Any]) -> Iterator[Finding]:
+    for transfer in given.panels:
+        panel = {key: each for key, each in transfer["panel"].items() if key != "place"}
+        yield from _same(f"panel {panel['mark']}", panel, facts["panels"].get(panel["mark"]))
+
+
+def _own_loads(given: Given, stated: list[Mapping[str, Any]]) -> Iterator[Finding]:
+    """Loads given on the beam itself."""
+    for number, each in enumerate(stated, start=1):
+        source = f"load {number}"
+        found = [load for load in given.loads.get(each["case"], ()) if load.source == source]
+        if each["point"] is not None:
+            at = min(each["at"] or 0.0, given.length)
+            again = Load(at, at, each["point"], each["point"], source, point=True)
+        else:
+            first = each["line"] or 0.0
+            last = first if each["line_end"] is None else each["line_end"]
+            end = given.length if each["end"] is None else min(each["end"], given.length)
+            again = Load(each["start"], end, first, last, source)
+        place = f"job file, {source}"
+        if found == [again]:
+            yield good(_GROUP, place, "the load is what the job file says")
+        else:
+            yield wrong(_GROUP, place, "the load on the beam is not what the job file says")
