@@ -133,10 +133,7 @@ def audit_sheet(
         digest = digest_of(record, given, stated)
     except (KeyError, TypeError, ValueError):
         digest = Digest(record.mark, record.data["job"], stated)
-    audit = SheetAudit(
-        record.mark, tuple(findings), str(record.data["revision"]), str(record.data["job"].get("title", ""))
-    )
-    return audit, digest
+    return SheetAudit(record.mark, tuple(findings), record.data["job"]), digest
 
 
 def audit_target(

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import datetime
 from dataclasses import dataclass
+from pathlib import Path
 
 from asn1crypto import pem, x509
 
@@ -119,6 +120,21 @@ def _other_purpose(certificate: x509.Certificate) -> str:
     if purposes and purposes <= _OTHER_PURPOSES.keys():
         return ", ".join(_OTHER_PURPOSES[purpose] for purpose in sorted(purposes))
     return ""
+
+
+def read_certificate_file(path: Path) -> list[x509.Certificate]:
+    """Certificates of a file on disk.
+
+    Raises
+    ------
+    CalcpackError
+        It cannot be read, or holds none.
+    """
+    try:
+        data = path.read_bytes()
+    except OSError as error:
+        raise CalcpackError(f"'{path}' cannot be read: {error.strerror}") from None
+    return read_certificates(data, str(path))
 
 
 def read_certificates(data: bytes, file: str) -> list[x509.Certificate]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import datetime
+import os
 from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
@@ -15,9 +16,11 @@ from cryptography.hazmat.primitives.serialization import BestAvailableEncryption
 from cryptography.x509.oid import NameOID
 from pyhanko.sign.signers import Signer, SimpleSigner
 
+from calcpack.files import write_file
 from calcpack.job.errors import CalcpackError
 from calcpack.record.certificates import TEST_UNIT, Certificate
 
+VARIABLE = "CALCPACK_PASSPHRASE"
 Passphrase = Callable[[str], str]  # what it is for -> the passphrase
 
 
@@ -27,6 +30,28 @@ class Identity:
 
     signer: Signer
     certificate: Certificate
+
+
+def read_passphrase(descriptor: int | None) -> str | None:
+    """A passphrase from a file descriptor, else from the environment; None where neither has one.
+
+    Parameters
+    ----------
+    descriptor : int or None
+        Its first line is read.
+
+    Raises
+    ------
+    CalcpackError
+        The descriptor cannot be read.
+    """
+    if descriptor is None:
+        return os.environ.get(VARIABLE)
+    try:
+        with open(descriptor, encoding="utf-8", closefd=False) as file:
+            return file.readline().rstrip("\r\n")
+    except (OSError, ValueError) as error:
+        raise CalcpackError(f"file descriptor {descriptor} cannot be read: {error}") from None
 
 
 def load_identity(source: str, passphrase: Passphrase) -> Identity:
@@ -169,3 +194,44 @@ def new_identity(
         name.encode(), key, certificate, None, BestAvailableEncryption(passphrase.encode())
     )
     return stored, certificate.public_bytes(Encoding.PEM)
+
+
+def write_identity(
+    out: Path,
+    name: str,
+    passphrase: str,
+    now: datetime.datetime,
+    *,
+    organisation: str = "",
+    licence: str = "",
+    days: int = 365,
+) -> Path:
+    """Write a new test identity and, beside it, its certificate; both must be new.
+
+    Parameters
+    ----------
+    out : Path
+    name, passphrase, now, organisation, licence, days
+        As ``new_identity`` takes them.
+
+    Returns
+    -------
+    Path
+        Of the certificate, for those who are to trust it.
+
+    Raises
+    ------
+    CalcpackError
+        One of the files is there already or cannot be written, or ``new_identity`` refuses.
+    """
+    beside = out.with_suffix(".pem")
+    for path in (out, beside):
+        if path.exists():
+            raise CalcpackError(f"'{path}' is there already", remedy="name a new file")
+    stored, certificate = new_identity(
+        name, passphrase, now, organisation=organisation, licence=licence, days=days
+    )
+    write_file(out, stored)
+    os.chmod(out, 0o600)
+    write_file(beside, certificate)
+    return beside

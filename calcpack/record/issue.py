@@ -8,7 +8,7 @@ from pathlib import Path
 
 from calcpack.files import OutputFolder, digest
 from calcpack.job.errors import CalcpackError, Problem
-from calcpack.record.audits import audit
+from calcpack.record.numbers import audited
 from calcpack.record.folder import MANIFEST, PACK
 from calcpack.record.pdf_update import built_length, open_pdf
 from calcpack.record.register import Entry, EntrySignature, Register, last_of
@@ -67,10 +67,10 @@ def issue(out: Path, purpose: str, now: datetime.datetime, record: Path | None =
         raise CalcpackError("an issue needs a purpose", remedy='say --purpose "for permit"')
     register = Register(record or out.absolute().parent / RECORD)
     ready = _ready(out, now)
-    audited = audit(out / PACK)
-    if audited.passes is False:
-        raise CalcpackError(f"'{out}' is not issued: {audited.says}", remedy="see 'calcpack audit'")
-    notes = [] if audited.passes else [audited.says]
+    numbers = audited(out / PACK)
+    if numbers.passes is False:
+        raise CalcpackError(f"'{out}' is not issued: {numbers.says}", remedy="see 'calcpack audit'")
+    notes = [] if numbers.passes else [numbers.says]
     notes += [
         f"{each.name} signed with a test identity, which has no legal force"
         for each in ready.signatures

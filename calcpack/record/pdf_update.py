@@ -41,7 +41,7 @@ class Update(IncrementalPdfFileWriter):  # type: ignore[misc, unused-ignore]
     def bytes(self) -> bytes:
         """The file with its addition."""
         written = io.BytesIO()
-        self.write(written)
+        self.write(written)  # type: ignore[no-untyped-call]
         return written.getvalue()
 
 

@@ -255,3 +255,19 @@ class Register:
 def last_of(entries: Sequence[Entry], job: str) -> Entry | None:
     """The entry issued last for a job, None where there is none."""
     return next((entry for entry in reversed(entries) if entry.job == job), None)
+
+
+def open_register(folder: Path | None) -> Register:
+    """The register of a folder, ``record`` here by default.
+
+    Raises
+    ------
+    CalcpackError
+        There is none.
+    """
+    register = Register(folder or Path("record"))
+    if not register.file.is_file():
+        raise CalcpackError(
+            f"'{register.folder}' holds no register", remedy="name its folder with --record, or issue a pack"
+        )
+    return register

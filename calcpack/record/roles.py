@@ -9,6 +9,17 @@ ROLES: tuple[Role, ...] = get_args(Role)
 PERSON: dict[Role, str] = {"prepared": "preparer", "checked": "checker", "approved": "approver"}
 
 
+def as_role(text: str) -> Role:
+    """A role by its name.
+
+    Examples
+    --------
+    >>> as_role("checked")
+    'checked'
+    """
+    return next(role for role in ROLES if role == text)
+
+
 def needed_roles(check_level: str, approver: str) -> tuple[Role, ...]:
     """Roles that must have signed before a pack is issued.
 

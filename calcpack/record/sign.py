@@ -26,7 +26,7 @@ from calcpack.files import write_file
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Header, Submission
 from calcpack.record.appearance import appearance
-from calcpack.record.audits import audit
+from calcpack.record.numbers import audited
 from calcpack.record.declaration import Declaring
 from calcpack.record.folder import as_built, output_folder
 from calcpack.record.identity import Identity
@@ -171,15 +171,15 @@ def _cleared(
 ) -> tuple[tuple[str, ...], tuple[str, ...]]:
     """What it is signed despite, and notes; refused where something stands against it."""
     found = hindrances(statement, signing.role, signing.identity.certificate, signatures)
-    audited = audit(path)
-    if audited.passes is False:
-        raise CalcpackError(f"'{path}' is not signed: {audited.says}", remedy="see 'calcpack audit'")
+    numbers = audited(path)
+    if numbers.passes is False:
+        raise CalcpackError(f"'{path}' is not signed: {numbers.says}", remedy="see 'calcpack audit'")
     if found and not signing.despite:
         raise CalcpackError(
             *(f"'{path.name}' is not signed: {text}" for text in found),
             remedy='sign --despite "REASON" if you answer for it',
         )
-    notes = () if audited.passes else (audited.says,)
+    notes = () if numbers.passes else (numbers.says,)
     return found, notes
 
 

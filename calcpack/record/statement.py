@@ -108,7 +108,7 @@ def put_statement(update: Update, statement: Statement) -> None:
     )
     pieces = generic.DictionaryObject({name("calcpack"): update.add_object(data)})
     update.root[name("PieceInfo")] = update.add_object(pieces)
-    update.update_root()
+    update.update_root()  # type: ignore[no-untyped-call]
 
 
 def read_statement(reader: PdfFileReader, file: str) -> Statement:

@@ -10,7 +10,7 @@ from typing import Any
 from calcpack.files import digest
 from calcpack.job.errors import CalcpackError
 from calcpack.record.appearance import shown_time
-from calcpack.record.audits import AuditResult, audit
+from calcpack.record.numbers import NumbersResult, audited
 from calcpack.record.pdf_update import built_length, open_pdf
 from calcpack.record.register import FILES, REGISTER, Register, last_of
 from calcpack.record.roles import PERSON, Role, needed_roles
@@ -109,7 +109,7 @@ def _as_data(signature: SignatureReport) -> dict[str, Any]:
     }
 
 
-def verify_file(path: Path, trust: Trust, *, record: Path | None = None, audited: bool = True) -> FileReport:
+def verify_file(path: Path, trust: Trust, *, record: Path | None = None, with_audit: bool = True) -> FileReport:
     """Verify a signed file.
 
     Parameters
@@ -119,7 +119,7 @@ def verify_file(path: Path, trust: Trust, *, record: Path | None = None, audited
     trust : Trust
     record : Path or None
         The register to look it up in; None looks beside and around the file.
-    audited : bool
+    with_audit : bool
         Audit the numbers, too.
 
     Raises
@@ -133,18 +133,18 @@ def verify_file(path: Path, trust: Trust, *, record: Path | None = None, audited
     except OSError as error:
         raise CalcpackError(f"'{page}' cannot be read: {error.strerror}") from None
     if data.startswith(b"%PDF") or page.suffix.lower() == ".pdf":
-        return _pack_report(page, data, trust, record, audited)
+        return _pack_report(page, data, trust, record, with_audit)
     if page.suffix.lower() in (".html", ".htm"):
         signatures = page_signatures(page, data, trust)
         findings = list(_integrity(signatures, ()))
         findings += _people(None, signatures)
-        if audited and all(finding.holds is not False for finding in findings):
-            findings.append(_audited(audit(page)))
+        if with_audit and all(finding.holds is not False for finding in findings):
+            findings.append(_numbers(audited(page)))
         return FileReport(str(path), digest(data), None, signatures, tuple(findings))
     raise CalcpackError(f"'{path}' is nothing that calcpack signs", remedy="name a .pdf, .html or .p7s")
 
 
-def _pack_report(path: Path, data: bytes, trust: Trust, record: Path | None, audited: bool) -> FileReport:
+def _pack_report(path: Path, data: bytes, trust: Trust, record: Path | None, with_audit: bool) -> FileReport:
     try:
         reader = open_pdf(data, path.name)
         statement = read_statement(reader, path.name)
@@ -160,8 +160,8 @@ def _pack_report(path: Path, data: bytes, trust: Trust, record: Path | None, aud
     findings += _people(statement, signatures)
     if statement.unmet:
         findings.append(Finding("requirements", None, f"not satisfied: {'; '.join(statement.unmet)}"))
-    if audited and all(finding.holds is not False for finding in findings if finding.about == "integrity"):
-        findings.append(_audited(audit(path)))
+    if with_audit and all(finding.holds is not False for finding in findings if finding.about == "integrity"):
+        findings.append(_numbers(audited(path)))
     findings.append(_registered(path, data, built, statement, record))
     return FileReport(str(path), digest(data), statement, signatures, tuple(findings))
 
@@ -170,7 +170,7 @@ def _damaged(path: Path, data: bytes, says: str) -> FileReport:
     return FileReport(str(path), digest(data), None, (), (Finding("integrity", False, says),))
 
 
-def _audited(result: AuditResult) -> Finding:
+def _numbers(result: NumbersResult) -> Finding:
     return Finding("audit", result.passes, result.says)
 
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, field
 from enum import StrEnum
 from typing import Any
@@ -80,8 +80,7 @@ class SheetAudit:
 
     mark: str
     findings: tuple[Finding, ...]
-    revision: str = ""
-    title: str = ""
+    header: Mapping[str, Any] = field(default_factory=dict)  # its title block, as stated
 
     @property
     def wrong(self) -> tuple[Finding, ...]:
@@ -93,6 +92,12 @@ class SheetAudit:
         """What could not be checked."""
         return tuple(each for each in self.findings if each.verdict is Verdict.OPEN)
 
+    @property
+    def farthest(self) -> float:
+        """The largest difference between a figure that agrees and its recomputation, as a part of it."""
+        apart = (each.difference for each in self.findings if each.verdict is Verdict.AGREES)
+        return max((float(each) for each in apart if each), default=0.0)
+
     def count(self, group: str) -> tuple[int, int]:
         """How many of a group agree, of how many that were checked."""
         found = Counter(each.verdict for each in self.findings if each.group == group)
@@ -102,7 +107,7 @@ class SheetAudit:
         """As plain data."""
         return {
             "mark": self.mark,
-            "revision": self.revision,
+            "revision": str(self.header.get("revision", "")),
             "wrong": len(self.wrong),
             "not_checkable": len(self.open),
             "findings": [each.data() for each in self.findings],

@@ -95,9 +95,14 @@ def sheet_pages(pages: Sequence[str]) -> dict[str, tuple[str, ...]]:
     return {mark: tuple(texts) for mark, texts in found.items()}
 
 
+def _upright(text: str) -> str:
+    """With plain letters: how a PDF slants and raises them says nothing."""
+    return unicodedata.normalize("NFKC", text.replace("·", "\ue000")).replace("\ue000", "·")
+
+
 def _bare(text: str) -> str:
-    """Without any space and with plain letters: how a PDF spaces and slants them says nothing."""
-    return _SPACE.sub("", unicodedata.normalize("NFKC", text.replace("·", "\ue000"))).replace("\ue000", "·")
+    """Upright, and without any space: how a PDF spaces its letters says nothing either."""
+    return _SPACE.sub("", _upright(text))
 
 
 def audit_pages(record: Record, pages: Sequence[str] | None) -> tuple[Finding, ...]:
@@ -143,22 +148,21 @@ def _parts(text: str, record: Record) -> dict[str, list[str]]:
     found: dict[str, list[str]] = {}
     for place, match in enumerate(begins):
         end = begins[place + 1].start() if place + 1 < len(begins) else len(text)
-        rows = text[match.end() : end].split("\n")
-        found.setdefault(match[1], []).append("\n".join(map(_bare, rows)))
+        found.setdefault(match[1], []).append(_upright(text[match.end() : end]))
     return found
 
 
 def _shown_on(line: RecordLine, by_line: Mapping[str, Sequence[str]]) -> Finding:
     parts = by_line.get(line.no, ())
-    shown = _bare(line.shown)
-    place = f"line {line.no}"
+    place, shown = f"line {line.no}", _bare(line.shown)
     if not parts:
         return wrong("pages", place, "the pages do not show a line of this number and these words", says=line.says, printed=line.shown)
     if line.kind == "require":
-        flat = [part.replace("\n", "") for part in parts]
+        flat = [_SPACE.sub("", part) for part in parts]
         right = any(shown in part and ("notsatisfied" in part) == (line.passes is False) for part in flat)
     else:
-        whole = re.compile(r"=\n?" + re.escape(shown) + r"(?![0-9.])")
+        words = r"\s*".join(map(re.escape, _upright(line.shown).split()))
+        whole = re.compile(rf"=\s*{words}(?![0-9.])")
         right = any(whole.search(part) for part in parts)
     if right:
         return Finding("pages", place, line.says, line.shown)
