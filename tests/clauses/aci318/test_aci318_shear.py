@@ -72,6 +72,15 @@ def test_stirrups_by_their_yield_strength(fy, fyt):
     assert web.strength(0.22 * INCH**2, 8 * INCH) == pytest.approx(design.value)
 
 
+@pytest.mark.parametrize(("share", "passes"), [(0.9999, True), (1.0001, False)])
+def test_strength_is_what_the_concrete_and_the_stirrups_carry(share, passes):
+    sheet, materials, size, stirrups, found = concrete_of()
+    shear = 0.75 * (2 * math.sqrt(4000) * 240 / 1000 + 0.22 * 60 * 20 / 8)
+    demand = sheet.take("V_u", share * shear * KIP, "kN", "V_u", "test")
+    _, checks = state_zone(sheet, materials, size, found, demand, stirrups, "here")
+    assert checks[0][1].passes is passes
+
+
 def test_stirrups_carry_no_more_than_eight_roots():
     sheet, materials, size, stirrups, found = concrete_of(spacing=1.0, legs=6)
     demand = sheet.take("V_u", 40 * KIP, "kN", "V_u", "test")
@@ -154,6 +163,7 @@ def test_threshold_torsion():
     by_hand = 0.75 * math.sqrt(4000) * (12 * 20) ** 2 / (2 * (12 + 20)) / 12000  # [kip ft]
     assert line.check("x")["capacity"] / (12 * KIP * INCH) == pytest.approx(by_hand)
     assert line.passes
+    assert line.check("x")["demand"] == 0
 
 
 def test_si_and_us_sheets_agree():
