@@ -7,7 +7,7 @@ import pytest
 from beams_en1993 import profile
 
 from calcpack.clauses.en1993.lines_profile import classify, limits_of, take_factors, take_profile
-from calcpack.clauses.en1993.lines_section import bending, bending_beside_shear, shear
+from calcpack.clauses.en1993.lines_section import bending, bending_beside_shear, shear, shear_share
 from calcpack.clauses.en1993.rules import LIMITS, OUTSTAND, WEB, Factors
 from calcpack.clauses.en1993.section import part_class, profile_of, yield_strength
 from calcpack.job.errors import CalcpackError
@@ -204,3 +204,23 @@ def test_class_3_on_the_sheet_exactly_at_the_limit(part):
 def test_shear_just_below_half_takes_nothing_away():
     ipe = profile("IPE 300")
     assert ipe.bending_with_shear(0.498 * ipe.shear) == ipe.bending
+
+
+@pytest.mark.parametrize(("share", "words"), [(0.499, "not above 0.5"), (0.501, ": above 0.5")])
+def test_words_on_the_share_of_the_shear(share, words):
+    ipe = profile("IPE 300")
+    sheet = Sheet("B1")
+    sheet.section("Section")
+    given, partial = take_profile(sheet, ipe), take_factors(sheet, ipe)
+    epsilon = classify(sheet, given, ipe).epsilon
+    found = shear(sheet, given, partial, epsilon, share * ipe.shear, "shear")
+    assert words in shear_share(sheet, found).says
+
+
+@pytest.mark.parametrize(("grade", "equation"), [("S235", "(6.13)"), ("S355", "(6.14)")])
+def test_equation_of_the_class(grade, equation):
+    hea = profile("HE 300 A", grade)
+    sheet = Sheet("B1")
+    sheet.section("Section")
+    given, partial = take_profile(sheet, hea), take_factors(sheet, hea)
+    assert bending(sheet, given, partial, hea, 10.0, "moment").resistance.cite.endswith(equation)
