@@ -110,7 +110,7 @@ def test_least_depth(held, fy):
     assert found.value / 25.4 == pytest.approx(240 / part * (0.4 + fy / 100))
     assert least_depth(240.0, held, fy * 1000) == pytest.approx(found.value / 25.4)
     said = str(sheet.blocks[-1]["runs"])
-    assert ("are no less than this" in said) is (240 / part * (0.4 + fy / 100) <= 20)
+    assert ("no less than this" in said) is (240 / part * (0.4 + fy / 100) <= 20)
 
 
 @pytest.mark.parametrize(("duration", "xi"), [("3 months", 1.0), ("6 months", 1.2), ("12 months", 1.4),
