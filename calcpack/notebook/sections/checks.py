@@ -147,7 +147,7 @@ def _three_moments(work: Work) -> None:
             if moments[at]
         ]
         bent = sheet.hence(
-            f"C_{left.number}",
+            f"T_M{left.number}",
             summed([2 * measured(moments[left.end], "kN*m") * (one + other), *outer]),
             "kN*m^2",
             says=f"Three-moment equation {words}: turning by the support moments",
@@ -155,7 +155,7 @@ def _three_moments(work: Work) -> None:
             word="turning by support moments, times 6 EI",
         )
         loaded = sheet.hence(
-            f"D_{left.number}",
+            f"T_w{left.number}",
             one * (measured(a, "kN*m") + 2 * measured(b, "kN*m"))
             + other * (2 * measured(c, "kN*m") + measured(d, "kN*m")),
             "kN*m^2",
@@ -270,7 +270,7 @@ def _deflection_limits(work: Work) -> None:
             found <= reach / number(limit),
             says=f"Deflection under {words}: at most "
             f"{'twice the overhang' if overhang else 'span'} over {limit:g}",
-            cite="limit set by the job",
+            cite="limit as given",
         )
         work.checks.append((f"deflection, {words}", line))
 
