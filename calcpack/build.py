@@ -30,6 +30,8 @@ from calcpack.notebook.fill import FilledNotebook, fill, sheet_metadata
 from calcpack.notebook.lightest import choose_sections
 from calcpack.notebook.parameters import PROGRAM, BeamInput, beam_input, plan_of, to_text
 from calcpack.notebook.templates import Template, find_template
+from calcpack.record.fields import ready_to_sign
+from calcpack.record.statement import statement_of
 
 APPENDIX = "Appendix"
 APPENDIX_TEMPLATE = "derivations"
@@ -292,7 +294,9 @@ def _files(
     if "html" in formats:
         files["index.html"] = index_html(pack, mathematics).encode()
     if "pdf" in formats:
-        files["pack.pdf"] = build_pack(pack, mathematics).pdf
+        built = build_pack(pack, mathematics)
+        statement = statement_of(pack.header, pack.submission, [content.record for content in sheets])
+        files["pack.pdf"] = ready_to_sign(built.pdf, built.signing, statement)
     return files
 
 
@@ -300,6 +304,7 @@ def _job_json(framed: Frame) -> bytes:
     data = {
         "format": 1,
         "job": framed.job.job.model_dump(mode="json"),
+        "submission": framed.job.submission.model_dump(mode="json"),
         "supports": framed.supports,
         "applied": framed.applied,
         "beams": list(framed.beams),

@@ -19,10 +19,10 @@ _NAME = "content_hint"
 
 
 class _ContentHints(core.Sequence):  # type: ignore[misc, unused-ignore]
-    _fields = (
+    _fields = [  # noqa: RUF012 - asn1crypto completes the list
         ("content_description", core.UTF8String, {"optional": True}),
         ("content_type", cms.ContentType),
-    )
+    ]
 
 
 class _SetOfContentHints(core.SetOf):  # type: ignore[misc, unused-ignore]

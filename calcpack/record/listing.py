@@ -5,7 +5,11 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from markupsafe import escape
+from rich.console import Console
+from rich.table import Table
+from rich.text import Text
 
+from calcpack.export.text import clean
 from calcpack.record.register import Entry
 
 HEADS = (
@@ -50,6 +54,16 @@ def _unmet(entry: Entry) -> str:
     return f"{len(entry.unmet)}: {despite}" if despite else str(len(entry.unmet))
 
 
+def print_table(heads: Sequence[str], rows: Sequence[Sequence[str]], console: Console) -> None:
+    """Print rows under their heads; text is shown as it is."""
+    table = Table(box=None, pad_edge=False)
+    for head in heads:
+        table.add_column(Text(head, style="bold"), overflow="fold")
+    for row in rows:
+        table.add_row(*(Text(clean(cell)) for cell in row))
+    console.print(table)
+
+
 _PAGE = """<!doctype html>
 <html lang="en">
 <head>
@@ -59,7 +73,8 @@ _PAGE = """<!doctype html>
 <style>
 body {{ font: 15px/1.5 Georgia, serif; color: #1b232d; margin: 2rem; }}
 table {{ border-collapse: collapse; }}
-th, td {{ text-align: left; vertical-align: top; padding: .3rem .8rem .3rem 0; border-bottom: 1px solid #a9b2bb; }}
+th, td {{ text-align: left; vertical-align: top; padding: .3rem .8rem .3rem 0; }}
+th, td {{ border-bottom: 1px solid #a9b2bb; }}
 th {{ border-bottom-color: #1b232d; }}
 td:last-child {{ font-family: monospace; }}
 </style>

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from calcpack.job.errors import CalcpackError
-from calcpack.record.folder import MANIFEST
+from calcpack.record.folder import MANIFEST, PACK
 
 
 @dataclass(frozen=True)
@@ -18,7 +18,7 @@ class NumbersResult:
 
 
 def audited(path: Path) -> NumbersResult:
-    """Audit a pack, or the record behind a sheet for the screen; the whole folder for its first page.
+    """Audit a pack, or the record behind a sheet for the screen; the pack for the folder's first page.
 
     Parameters
     ----------
@@ -29,7 +29,7 @@ def audited(path: Path) -> NumbersResult:
     target, records = path, None
     if path.suffix.lower() != ".pdf":
         record = path.with_suffix(".json")
-        target = record if record.is_file() else path.parent
+        target = record if record.is_file() else path.with_name(PACK)
     elif (path.parent / MANIFEST).is_file() and (path.parent / "sheets").is_dir():
         records = path.parent
     try:

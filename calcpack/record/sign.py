@@ -26,11 +26,11 @@ from calcpack.files import write_file
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Header, Submission
 from calcpack.record.appearance import appearance
-from calcpack.record.numbers import audited
 from calcpack.record.declaration import Declaring
 from calcpack.record.folder import as_built, output_folder
 from calcpack.record.identity import Identity
 from calcpack.record.locking import locked, sync_folder
+from calcpack.record.numbers import audited
 from calcpack.record.pdf_update import Update, built_length, open_pdf
 from calcpack.record.roles import ROLES, Role
 from calcpack.record.rules import hindrances, same_name

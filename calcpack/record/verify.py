@@ -109,7 +109,9 @@ def _as_data(signature: SignatureReport) -> dict[str, Any]:
     }
 
 
-def verify_file(path: Path, trust: Trust, *, record: Path | None = None, with_audit: bool = True) -> FileReport:
+def verify_file(
+    path: Path, trust: Trust, *, record: Path | None = None, with_audit: bool = True
+) -> FileReport:
     """Verify a signed file.
 
     Parameters
