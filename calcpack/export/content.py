@@ -5,14 +5,14 @@ from __future__ import annotations
 import json
 import re
 import types
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from typing import Any
 
 import nbformat
 from pydantic import BaseModel, ConfigDict, ValidationError
 
-from calcpack.export.blocks import Block, Line, every, levelled, read_blocks
+from calcpack.export.blocks import Block, Line, every, levelled, plain_text, read_blocks
 from calcpack.export.markdown import markdown_blocks
 from calcpack.export.svg import size_mm
 from calcpack.export.text import clean
@@ -179,11 +179,22 @@ def sheet_content(notebook: nbformat.NotebookNode) -> SheetContent:
         input_digest=metadata.input,
         program=metadata.program,
         numbers=metadata.sheets,
-        blocks=levelled(blocks),
+        blocks=(*_unmet(blocks), *levelled(blocks)),
         record=None if record is None else types.MappingProxyType(_plain(record)),
         notebook=notebook_bytes(notebook),
         changed=frozenset(metadata.changed),
     )
+
+
+def _unmet(blocks: Sequence[Block]) -> tuple[Block, ...]:
+    """What a sheet says first where a requirement does not hold."""
+    lines = [block for block in every(blocks) if isinstance(block, Line) and block.passes is False]
+    if not lines:
+        return ()
+    runs: list[Any] = ["Not satisfied: "]
+    for number, line in enumerate(lines):
+        runs += ["; " if number else "", f"{plain_text(line.says)} (line ", {"line": line.no}, ")"]
+    return read_blocks([{"type": "text", "role": "unsafe", "runs": [*filter(None, runs), "."]}])
 
 
 def _metadata(notebook: nbformat.NotebookNode) -> _Metadata:

@@ -20,7 +20,8 @@ def kinds(content):
 def test_every_kind_of_block_arrives_in_order():
     content = sheet_content(samples.ordinary(markdown="## Own words\n\nand *more*.", plain=True))
     found = kinds(content)
-    assert found[:5] == ["heading", "text", "heading", "columns", "figure"]
+    # what is not satisfied comes first
+    assert found[:6] == ["text", "heading", "text", "heading", "columns", "figure"]
     assert set(found) == {
         "heading",
         "text",
@@ -147,3 +148,25 @@ def test_record_is_the_same_from_memory_and_from_the_file():
     assert sheet_content(node).notebook == sheet_content(again).notebook
     with pytest.raises(ValueError, match="JSON compliant"):
         record_bytes({"value": float("nan")})
+
+
+def requirements(notebook):
+    for cell in notebook.cells:
+        for output in cell.get("outputs", []):
+            for block in (
+                output.get("data", {}).get("application/vnd.calcpack.blocks+json", {}).get("blocks", [])
+            ):
+                if block["type"] == "line" and block["kind"] == "require":
+                    yield block
+
+
+def test_an_unmet_requirement_is_the_first_thing_said():
+    notebook = samples.ordinary()
+    (stated, *_) = requirements(notebook)
+    stated["passes"] = False
+    first = sheet_content(notebook).blocks[0]
+    assert first.role == "unsafe"
+    assert stated["no"] in [run.text for run in first.runs]
+    for block in requirements(notebook):
+        block["passes"] = True
+    assert sheet_content(notebook).blocks[0].type == "heading"
