@@ -188,7 +188,7 @@ def print_influence(
                 line.says,
                 f"{line.symbol} = {line.shown}",
                 f"{influence:+.3f} %",
-                f"{derivative:.4g} {values.get(line.no, '')}".strip(),
+                f"{derivative:.4g} {values.get(line.no, '').strip()}".strip(),
             ],
         )
     console.print(table)
