@@ -78,6 +78,12 @@ def test_at_the_limiting_lengths():
     assert beyond.nominal == pytest.approx(175.0, rel=2e-3)
 
 
+def test_zones_end_at_their_limits():
+    lengths = strength.Lengths(2.0, 6.0)
+    zones = [strength.zone_of(length, lengths) for length in (2.0, 2.001, 6.0, 6.001)]
+    assert zones == ["yielding", "inelastic", "inelastic", "elastic"]
+
+
 def test_held_all_along():
     assert strength.bending_strength(SHAPE, STEEL, 0.0).nominal == pytest.approx(300.0, rel=EXACT)
 
