@@ -145,6 +145,17 @@ def test_block_and_fibres(fck, n, eps_c2, most, area):
     assert block != pytest.approx(fibres(outline, strength, 1.06 * area, 0.55, n, eps_c2), rel=most)
 
 
+def test_block_that_reaches_into_the_web():
+    """Flange 500 x 60 on a web of 300: 0.8 x = (1304.3 - 240)/6000 m; each part's force times its arm."""
+    area, outline = 3.0e-3, Outline(0.3, 0.6, 0.5, 0.06)
+    tie, wings = area * 500e3 / 1.15, 20e3 * 0.2 * 0.06
+    deep = (tie - wings) / (20e3 * 0.3)
+    found = bending(outline, C30, area, 0.53)
+    assert 0.8 * found.x == pytest.approx(deep, rel=1e-9)
+    by_hand = wings * (0.53 - 0.03) + 20e3 * 0.3 * deep * (0.53 - deep / 2)
+    assert found.moment == pytest.approx(by_hand, rel=1e-9)
+
+
 def test_tension_bars_that_do_not_yield():
     """Equilibrium by hand: eta fcd lam b x = As Es eps_cu (d - x)/x, a quadratic in x."""
     area, depth = 6e-3, 0.45

@@ -113,7 +113,7 @@ def write_bond(
     hook = bent and counts > 3 * lines.face.bars.bar.diameter
     says = "Form and cover of the bar, a bend at its end" if bent else "Cover of the straight bar"
     alpha = sheet.hence(
-        f"alpha_{tag}",
+        f"alpha_{tag},a",
         number("0.7") * shape if hook else shape,
         "1",
         says,

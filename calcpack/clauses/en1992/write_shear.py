@@ -301,17 +301,16 @@ def write_stirrup_limits(
             ),
         ),
     ]
-    held = [face for face in (design.bottom, design.top) if face and face.doubly and face.compression]
-    for face in held:
-        assert face.compression is not None
-        found.append(
-            (
-                "stirrups about compression bars",
-                sheet.require(
-                    wide <= 15 * measured(millimetres(face.compression.bar.diameter), "mm"),
-                    "Compression bars held by the stirrups",
-                    f"{STANDARD}, 9.2.1.2(3)",
-                ),
-            )
+    held = [
+        face.compression.bar.diameter
+        for face in (design.bottom, design.top)
+        if face and face.doubly and face.compression
+    ]
+    if held:
+        line = sheet.require(
+            wide <= 15 * measured(millimetres(min(held)), "mm"),
+            "Compression bars held by the stirrups",
+            f"{STANDARD}, 9.2.1.2(3)",
         )
+        found.append(("stirrups about compression bars", line))
     return found

@@ -24,7 +24,7 @@ units = "{units}"
 actions = "EN 1990"
 occupancy = "B"
 [grid]
-x = {{ A = "0 m", B = "7 m", C = "12 m", D = "14 m" }}
+x = {{ A = "0 m", B = "7.5 m", C = "12.5 m", D = "14.5 m" }}
 y = {{ 1 = "0 m", 2 = "5 m", 3 = "10 m" }}
 [materials.c30]
 grade = "C30/37"
@@ -85,7 +85,7 @@ BEAMS = {
     "simple": ('["A1", "B1"]', "", "r", "c30", "", 20, 12),
     "slab": (
         '["A2", "B2", "C2"]', "", "t", "c30",
-        'support_width = "400 mm"\ntop = { count = 6, size = "20" }', 4, 3,
+        'support_width = "400 mm"\ntop = { count = 8, size = "20" }', 4, 3,
     ),
     "tip": (
         '["A3", "B3", "C3", "D3"]', 'free = ["end"]', "r", "c70",
@@ -95,6 +95,7 @@ BEAMS = {
 TRIALS = {
     "heavy": ("low", "c30", "", 30, 30),
     "thin": ("thin", "c30", 'cot_theta = 1.75\nexposure = "XC3"', 28, 20),
+    "full": ("thin", "c30", 'cover = "35 mm"', 35, 26),
     "given": (
         "low", "c30",
         'bottom = { count = 6, size = "25 mm" }\ntop = { count = 4, size = "20 mm" }\nalpha_cc = 0.85\n'
@@ -102,7 +103,7 @@ TRIALS = {
         'cover = "30 mm"',
         22, 12,
     ),
-    "strong": ("r", "c70", "national_values = { gamma_C = 1.4 }", 50, 30),
+    "strong": ("r", "c70", "national_values = { gamma_C = 1.4 }", 40, 25),
 }  # fmt: skip
 
 
