@@ -130,6 +130,16 @@ def test_legs_across_the_web(width, roots, passes):
     assert checks["stirrup legs across"].passes is passes
 
 
+@pytest.mark.parametrize(("roots", "most"), [(4.0, 20), (4.001, 10)])
+def test_three_legs_stand_half_as_far_apart(roots, most):
+    sheet, _, size, stirrups, found = concrete_of(width=30, legs=3)
+    shear = 0.75 * (2 + roots) * math.sqrt(4000) * 30 * 20 / 1000
+    demand = sheet.take("V_u", shear * KIP, "kN", "V_u", "test")
+    check = dict(state_section_limit(sheet, size, found, demand, stirrups))["stirrup legs across"].check("x")
+    assert check["demand"] / 25.4 == pytest.approx((30 - 3.375) / 2)
+    assert check["capacity"] / 25.4 == pytest.approx(most)
+
+
 @pytest.mark.parametrize(("share", "passes"), [(0.9999, True), (1.0001, False)])
 def test_the_web_is_too_small_beyond_ten_roots(share, passes):
     sheet, _, size, stirrups, found = concrete_of()
