@@ -30,7 +30,10 @@ from calcpack.notebook.fill import FilledNotebook, fill, sheet_metadata
 from calcpack.notebook.lightest import choose_sections
 from calcpack.notebook.parameters import PROGRAM, BeamInput, beam_input, plan_of, to_text
 from calcpack.notebook.templates import Template, find_template
+from calcpack.record.comments import comments_section
+from calcpack.record.editions import Edition
 from calcpack.record.fields import ready_to_sign
+from calcpack.record.since import mark_changes
 from calcpack.record.statement import statement_of
 
 APPENDIX = "Appendix"
@@ -69,6 +72,7 @@ def build_job(
     *,
     only: Sequence[str] = (),
     formats: frozenset[str] = ALL_FORMATS,
+    since: Edition | None = None,
     follow: Follow = lambda _stage, _done, _of: None,
 ) -> BuiltJob:
     """Make a job's sheets and bind its pack.
@@ -80,6 +84,8 @@ def build_job(
         Marks of the beams wanted; none for all.
     formats : set of "pdf", "html", "notebook"
         The record of a sheet is always written; the pack where "pdf" is wanted.
+    since : Edition
+        An earlier edition: what changed is listed and marked, unchanged sheets are kept where they can be.
     follow : callable
         Told of the progress.
 
@@ -102,8 +108,18 @@ def build_job(
     ]
     notebooks.append(_appendix(framed, [given for given, _ in inputs]))
     contents = _executed(notebooks, follow)
-    pack = _pack(framed, inputs, contents)
-    files = _files(framed, pack, {each.mark: node for each, node in contents}, formats, follow)
+    front: list[Section] = []
+    kept_sheets: Mapping[str, tuple[SheetContent, Any]] = {}
+    if since is not None:
+        later = mark_changes(since, contents)
+        contents, kept_sheets = list(later.contents), later.kept
+        front.append(later.section)
+    lines = {content.mark: content.line_numbers for content, _ in contents}
+    if answers := comments_section(Path(framed.job.folder), lines):
+        front.append(answers)
+    pack = replace(_pack(framed, inputs, contents), front=tuple(front))
+    nodes = {content.mark: node for content, node in contents}
+    files = _files(framed, pack, nodes, formats, follow, kept_sheets)
     kept = folder.write(files, keep=bool(only))
     main = next((ending for name, ending in _ENDINGS if name in formats), "json")
     return BuiltJob(
@@ -250,9 +266,17 @@ def _inputs_attached(job: Job) -> tuple[Attached, ...]:
 
 
 def _files(
-    framed: Frame, pack: Pack, nodes: Mapping[str, Any], formats: frozenset[str], follow: Follow
+    framed: Frame,
+    pack: Pack,
+    nodes: Mapping[str, Any],
+    formats: frozenset[str],
+    follow: Follow,
+    kept: Mapping[str, tuple[SheetContent, Any]],
 ) -> dict[str, bytes]:
-    """Every file of the folder by name; sheets are numbered before they are written."""
+    """Every file of the folder by name; sheets are numbered before they are written.
+
+    A sheet of ``kept`` stays as it was issued where its number in the pack is the same.
+    """
     mathematics = Mathematics()
     names = [
         f"sheets/{content.mark}.{ending}"
@@ -268,6 +292,8 @@ def _files(
     contents = {}
     for content in pack.bound:
         node = nodes[content.mark]
+        if content.mark in kept and kept[content.mark][0].numbers == numbers[content.mark]:
+            content, node = kept[content.mark]
         node.metadata["calcpack"]["sheets"] = numbers[content.mark].model_dump()
         content = replace(content.numbered(numbers[content.mark]), notebook=notebook_bytes(node))
         contents[content.mark] = content

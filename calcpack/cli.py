@@ -94,14 +94,25 @@ def build(
         list[Format] | None,
         typer.Option("--format", help="Only this form of sheet; may be given several times."),
     ] = None,
+    since: Annotated[
+        str, typer.Option(metavar="OLD", help="An earlier folder, pack or revision: mark what changed.")
+    ] = "",
+    record: Annotated[Path | None, typer.Option(metavar="DIR", help="The folder of the register.")] = None,
 ) -> None:
     """Make the calculation sheets of a job and bind them into a pack."""
     from calcpack.build import build_job
     from calcpack.overview import print_summary, print_unmet, progress
+    from calcpack.record.editions import read_edition
 
+    old = read_edition(since, record) if since else None
     with progress(Console(stderr=True)) as follow:
         built = build_job(
-            job, out, only=tuple(only or ()), formats=frozenset(map(str, formats or Format)), follow=follow
+            job,
+            out,
+            only=tuple(only or ()),
+            formats=frozenset(map(str, formats or Format)),
+            since=old,
+            follow=follow,
         )
     print_summary(built, _console())
     if print_unmet(built, Console(stderr=True, highlight=False, soft_wrap=True)):
@@ -267,6 +278,27 @@ def issue(
     )
     for text in issued.notes:
         typer.echo(f"  note: {text}", err=True)
+
+
+@app.command()
+def compare(
+    old: Annotated[str, typer.Argument(metavar="OLD", help="A folder, a pack, or a revision: A, or JOB:A.")],
+    new: Annotated[str, typer.Argument(metavar="NEW", help="Likewise.")],
+    record: RecordFolder = None,
+    as_csv: Annotated[
+        Path | None, typer.Option("--csv", metavar="FILE.csv", help="Write every changed line as a table.")
+    ] = None,
+) -> None:
+    """Say what changed between two editions of a pack: beams, inputs, lines, requirements."""
+    from calcpack.files import write_file
+    from calcpack.record import changes
+    from calcpack.record.compare import compare as compared
+    from calcpack.record.editions import read_edition
+
+    comparison = compared(read_edition(old, record), read_edition(new, record))
+    if as_csv is not None:
+        write_file(as_csv, changes.as_csv(comparison).encode())
+    typer.echo(changes.as_text(comparison, lines=as_csv is None))
 
 
 @app.command()

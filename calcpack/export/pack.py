@@ -262,6 +262,8 @@ def _part(identity: str, mark: str, title: str, pack: Pack) -> Data:
         "title": title,
         "foot": foot([pack.program], pack.input_digest),
         "running": identity != "cover",
+        "revision": with_known_letters(pack.header.revision),
+        "date": shown_date(pack.header.date),
         "sheet": None,
         "hangs": False,
         "narrow": False,
@@ -269,12 +271,18 @@ def _part(identity: str, mark: str, title: str, pack: Pack) -> Data:
 
 
 def _general(identity: str, title: str, sections: Sequence[Section], pack: Pack, paper: Paper) -> Data:
-    """Sections that follow each other without a new page."""
+    """Sections that follow each other without a new page; their text can lead to every sheet and line."""
+    elsewhere = {content.mark: f"{place}/" for place, content in enumerate(pack.bound)}
+    elsewhere |= {
+        f"{content.mark} {line}": f"{place}/{line}"
+        for place, content in enumerate(pack.bound)
+        for line in content.line_numbers
+    }
     return _part(identity, "", title, pack) | {
         "sections": [
             {
                 "title": with_known_letters(section.title),
-                "blocks": paper.part(f"{identity}{number}", section.blocks),
+                "blocks": paper.part(f"{identity}{number}", section.blocks, elsewhere=elsewhere),
             }
             for number, section in enumerate(sections)
         ]
@@ -335,7 +343,13 @@ def index_html(pack: Pack, mathematics: Mathematics | None = None) -> str:
     """
     sections = [*_sections(pack), *pack.annex]
     blocks = [block for section in sections for block in section.blocks]
-    screen = Screen(mathematics or Mathematics(), blocks, frozenset())
+    addresses = {content.mark: sheet_address(content.mark, "html") for content in pack.bound}
+    addresses |= {
+        f"{content.mark} {line}": Markup("{}#line-{}").format(sheet_address(content.mark, "html"), line)
+        for content in pack.bound
+        for line in content.line_numbers
+    }
+    screen = Screen(mathematics or Mathematics(), blocks, frozenset(), addresses)
     sheets = [
         {
             "mark": content.mark,

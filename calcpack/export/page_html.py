@@ -6,7 +6,8 @@ import base64
 import functools
 import hashlib
 import re
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
+from types import MappingProxyType
 
 import jinja2
 from markupsafe import Markup, escape
@@ -27,6 +28,7 @@ _FACES = (
     ("Libertinus Serif", "LibertinusSerif-Italic", 400, "italic"),
     ("Libertinus Math", "LibertinusMath-Regular", 400, "normal"),
 )
+_NOWHERE: Mapping[str, Markup] = MappingProxyType({})
 _TAG = re.compile(r"<[^<>]*>")
 _SHORT = 60  # characters a formula may have to stand on one line
 _LARGER = 1.25  # a figure's lettering on the screen, whose text is larger than the paper's
@@ -87,11 +89,20 @@ class Screen:
     mathematics : Mathematics
     lines : frozenset of str
         Lines that can be linked to.
+    addresses : mapping
+        Sheets and lines of other pages by what the text calls them: "B7", "B7 3.05".
     """
 
-    def __init__(self, mathematics: Mathematics, blocks: Sequence[Block], lines: frozenset[str]) -> None:
+    def __init__(
+        self,
+        mathematics: Mathematics,
+        blocks: Sequence[Block],
+        lines: frozenset[str],
+        addresses: Mapping[str, Markup] = _NOWHERE,
+    ) -> None:
         self._mathematics = mathematics
         self._lines = lines
+        self._addresses = addresses
         self._drawings = 0
         self._sections = {
             id(block): f"section-{number}"
@@ -143,6 +154,8 @@ class Screen:
 
     def link(self, number: str) -> Markup:
         """A line's number, leading to the line if there is one."""
+        if number in self._addresses:
+            return Markup('<a href="{}">{}</a>').format(self._addresses[number], number)
         if number not in self._lines:
             return escape(number)
         return Markup('<a href="#line-{0}">{0}</a>').format(number)

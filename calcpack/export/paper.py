@@ -9,8 +9,9 @@ from __future__ import annotations
 import base64
 import binascii
 import re
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
+from types import MappingProxyType
 from typing import Any
 
 from calcpack.export import blocks as kinds
@@ -23,6 +24,7 @@ from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Header, Person
 
 Data = dict[str, Any]
+_NOWHERE: Mapping[str, str] = MappingProxyType({})
 PAPERS = {"A4": "a4", "Letter": "us-letter"}
 _TEXT = re.compile(r"(<text\b[^>]*>)(.*?)(</text>)", re.S)
 _BETWEEN_TAGS = re.compile(r"[^<>]+(?=<|$)")
@@ -51,10 +53,11 @@ class Paper:
         blocks: Sequence[Block],
         lines: frozenset[str] = frozenset(),
         changed: frozenset[str] = frozenset(),
+        elsewhere: Mapping[str, str] = _NOWHERE,
     ) -> list[Data]:
-        """A part's blocks; ``lines`` are the lines of it that can be linked to."""
+        """A part's blocks; its own ``lines`` can be linked to, and what stands ``elsewhere`` by its label."""
         self._mathematics.learn(formulas_of(blocks))
-        place = _Place(identity, lines, changed)
+        place = _Place(identity, lines, changed, elsewhere)
         return [self._block(block, place) for block in blocks]
 
     def runs(self, runs: Iterable[Run], place: _Place | None = None) -> list[list[Any]]:
@@ -65,8 +68,7 @@ class Paper:
                 formula = self._mathematics[run.text]
                 found.append(["m", self.formula(run.text), with_known_letters(formula.spoken)])
             elif run.kind == "line":
-                known = place is not None and run.text in place.lines
-                label = place.label(run.text) if place and known else None
+                label = place.known(run.text) if place is not None else None
                 found.append(["l", with_known_letters(run.text), label])
             else:
                 for number, piece in enumerate(pieces(with_known_letters(run.text))):
@@ -221,9 +223,14 @@ class _Place:
     identity: str
     lines: frozenset[str]
     changed: frozenset[str]
+    elsewhere: Mapping[str, str]
 
     def label(self, number: str) -> str:
         return f"{self.identity}/{number}"
+
+    def known(self, text: str) -> str | None:
+        """The label of a line here, or of a sheet or a sheet's line elsewhere: "B7", "B7 3.05"."""
+        return self.label(text) if text in self.lines else self.elsewhere.get(text)
 
 
 def kept_blanks(line: str) -> str:
@@ -324,6 +331,8 @@ def sheet_part(content: SheetContent, paper: Paper, identity: str = "0") -> Data
         "mark": mark,
         "title": title,
         "name": f"{mark} {title}",
+        "revision": with_known_letters(content.header.revision),
+        "date": shown_date(content.header.date),
         "foot": foot_of(content),
         "running": True,
         "hangs": True,
