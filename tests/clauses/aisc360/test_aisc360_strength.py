@@ -146,6 +146,7 @@ def test_shear_at_its_limits():
         (2.24 * ROOT, True, 1.0),
         (2.24 * ROOT * 1.001, False, 1.0),
         (1.10 * math.sqrt(5.34) * ROOT, False, 1.0),
+        (1.10 * math.sqrt(5.34) * ROOT * 1.005, False, 1 / 1.005),
         (1.10 * math.sqrt(5.34) * ROOT * 1.25, False, 0.8),
     ):
         found = strength.shear_strength(with_web(slenderness), STEEL)
