@@ -5,7 +5,7 @@ import math
 import numpy as np
 import pytest
 from fibres import properties
-from samples import KIP_FT, begin
+from aci_samples import KIP_FT, begin
 
 from calcpack.clauses.aci318.deflection import (
     DURATIONS,

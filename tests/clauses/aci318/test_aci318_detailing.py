@@ -3,7 +3,7 @@
 import math
 
 import pytest
-from samples import KIP, KIP_FT, KSI, PSI, begin, cage, group
+from aci_samples import KIP, KIP_FT, KSI, PSI, begin, cage, group
 
 from calcpack.clauses.aci318.arrangement import Group, arranged, crack_spacing, least_cover
 from calcpack.clauses.aci318.choice import Strengths, Task, choose_bars, rounded_down

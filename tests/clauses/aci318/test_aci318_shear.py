@@ -3,7 +3,7 @@
 import math
 
 import pytest
-from samples import KIP, begin
+from aci_samples import KIP, begin
 
 from calcpack.clauses.aci318.choice import Strengths, Web
 from calcpack.clauses.aci318.shear import (
