@@ -82,6 +82,26 @@ def built_length(data: bytes, signed_from: int | None) -> int:
     return ends[-1] if ends else 0
 
 
+def grown_from(data: bytes, sha256: str) -> bool:
+    """Whether a PDF is one of that hash with additions appended, as signatures are.
+
+    Parameters
+    ----------
+    data : bytes
+    sha256 : str
+        In hexadecimal.
+
+    Examples
+    --------
+    >>> first = b"... startxref 9 %%EOF" + bytes([10])
+    >>> grown_from(first + b"signature", hashlib.sha256(first).hexdigest())
+    True
+    >>> grown_from(b"%" + first, hashlib.sha256(first).hexdigest())
+    False
+    """
+    return any(hashlib.sha256(data[: match.end()]).hexdigest() == sha256 for match in _END.finditer(data))
+
+
 def name(text: str) -> generic.NameObject:
     """A name of a PDF: ``name("Type")`` is /Type."""
     return pdf_name(f"/{text}")
