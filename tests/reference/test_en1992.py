@@ -29,6 +29,7 @@ from calcpack.clauses.en1992.model import Outline, Strengths, block_factors, str
 from calcpack.clauses.en1992.national import merge, national
 from calcpack.clauses.en1992.samples import C30
 from calcpack.clauses.en1992.shear import (
+    ARM,
     best_cot,
     concrete_shear,
     largest_leg_spacing,
@@ -240,6 +241,13 @@ def test_struts(fck, flat, steep):
     for cot, printed in ((2.5, flat), (1.0, steep)):
         _, most = truss(0.3, 0.45, 1e-3, cot, concrete(fck), NATIONAL)
         assert most / (0.3 * 0.45) / 1e3 == pytest.approx(printed, abs=0.0101)
+
+
+def test_size_factor_and_lever_arm():
+    """k stays at 2.0 below d = 200 mm; z = 0.9 d (6.2.3(1))."""
+    by_hand = 0.12 * 2.0 * 30 ** (1 / 3) * 0.3 * 0.15 * 1e3
+    assert concrete_shear(0.3, 0.15, 0.01 * 0.3 * 0.15, C30, NATIONAL) == pytest.approx(by_hand, rel=1e-12)
+    assert ARM == 0.9
 
 
 def test_stirrups_by_hand():

@@ -5,7 +5,14 @@ import json
 import pytest
 from beams_en1992 import ALL, BEAM, COLUMN, HEAD, worked, written
 
-from calcpack.clauses.en1992.shear import concrete_shear, truss
+from calcpack.clauses.en1992.detailing import nominal_cover
+from calcpack.clauses.en1992.shear import (
+    concrete_shear,
+    largest_leg_spacing,
+    largest_spacing,
+    least_stirrups,
+    truss,
+)
 from calcpack.job.errors import CalcpackError
 from calcpack.sheet.runs import plain_text
 
@@ -59,6 +66,45 @@ def test_lines_and_numbers_agree(mark):
     closest = max(design.span_depths, key=lambda each: each.actual / each.limit)
     assert line(work, "lambda_lim").value == pytest.approx(closest.limit, rel=SAME)
     assert line(work, "lambda_s").value == pytest.approx(closest.actual, rel=SAME)
+
+
+@pytest.mark.parametrize("mark", ALL)
+def test_detailing_agrees(mark):
+    work, beam = written(mark)
+    design, case, found = beam.design, beam.design.case, checks(work)
+    shear, national = design.shear, case.national
+    widest = max(zone.spacing for zone in shear.zones)
+    least = least_stirrups(case.sagging.web, case.strength, national)
+    thick = max(face.bars.bar.diameter for face in (design.bottom, design.top, design.through) if face)
+    areas = [face.bars.area for _, face in beam.tags]
+    stirrup = shear.stirrups.bar.diameter
+    expected = {
+        "cover": (nominal_cover(stirrup, case.exposure, national) * 1e3, case.cover * 1e3),
+        "cover for bond": (thick * 1e3 + 10, (case.cover + stirrup) * 1e3),
+        "most reinforcement": (max(areas) * 1e6, 0.04 * case.sagging.area * 1e6),
+        "stirrup spacing": (widest * 1e3, largest_spacing(shear.depth, national) * 1e3),
+        "stirrup legs": (shear.legs_apart * 1e3, largest_leg_spacing(shear.depth, national) * 1e3),
+        "least stirrups": (least / case.sagging.web, shear.stirrups.area / widest / case.sagging.web),
+        "shear along the beam": shear.along[1:],
+        "moments along the beam": (design.along.moment, design.along.resistance),
+    }
+    if design.end is not None and design.end.room is not None:
+        expected["anchorage at the end support"] = (design.end.length.length * 1e3, design.end.room * 1e3)
+    if design.end is not None:
+        force = design.bottom.bars.area * case.strength.fyd
+        expected["bars at the end support"] = (design.end.force, force)
+    for name, sides in expected.items():
+        assert (found[name]["demand"], found[name]["capacity"]) == pytest.approx(sides, rel=SAME), name
+        assert found[name]["passes"] == (found[name]["demand"] <= found[name]["capacity"] * (1 + SAME)), name
+
+
+def test_effective_flange_agrees():
+    work, beam = written("slab")
+    case = beam.design.case
+    assert line(work, "b_eff,sag").value == pytest.approx(case.sagging.width * 1e3, rel=SAME)
+    assert line(work, "b_eff,hog").value == pytest.approx(case.hogging.width * 1e3, rel=SAME)
+    # shorter span 5 m, a slab of 5 m on one side: b_i = 2.35 m, l_0 = 0.85 x 5 m
+    assert case.sagging.width == pytest.approx(0.3 + min(0.2 * 2.35 + 0.1 * 4.25, 0.2 * 4.25))
 
 
 @pytest.mark.parametrize("mark", ALL)
