@@ -1,4 +1,4 @@
-"""The audit of a target: every sheet by itself, in several processes where there are many, then all together."""
+"""The audit of a target: every sheet by itself, many of them in several processes, then all together."""
 
 from __future__ import annotations
 
@@ -16,7 +16,7 @@ from calcpack.record.auditing.copies import audit_copies
 from calcpack.record.auditing.files import SheetFiles, Target, find_target
 from calcpack.record.auditing.findings import Audit, Finding, SheetAudit
 from calcpack.record.auditing.given import Given, Notebook, read_notebook
-from calcpack.record.auditing.inputs import audit_job, job_facts
+from calcpack.record.auditing.inputs import audit_job, job_facts, left_at_earlier_revision
 from calcpack.record.auditing.lines import WorkedLine, work_lines
 from calcpack.record.auditing.origins import audit_origins
 from calcpack.record.auditing.pages import audit_pages
@@ -127,7 +127,8 @@ def audit_sheet(
     findings += audit_job(given, facts)
     findings += audit_copies(record, notebook, lines)
     findings += audit_pages(record, files.page_texts())
-    findings += audit_provenance(record, notebook, digests, job_folder)
+    earlier = facts is not None and left_at_earlier_revision(record.data["job"], facts["header"])
+    findings += audit_provenance(record, notebook, digests, job_folder, earlier)
     stated = str(notebook.metadata.get("input", "")) if notebook is not None else ""
     try:
         digest = digest_of(record, given, stated)

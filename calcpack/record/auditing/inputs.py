@@ -11,7 +11,7 @@ from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.beam import Load
 from calcpack.record.auditing.copies import differences
 from calcpack.record.auditing.files import Target
-from calcpack.record.auditing.findings import Finding, good, wrong
+from calcpack.record.auditing.findings import Finding, good, unchecked, wrong
 from calcpack.record.auditing.given import Given
 
 _GROUP = "origins"
@@ -50,6 +50,37 @@ def job_facts(target: Target) -> dict[str, Any] | None:
     }
 
 
+def left_at_earlier_revision(header: object, now: object) -> bool:
+    """Whether a title block is that of a sheet left unchanged since an earlier revision of the job.
+
+    Such a sheet keeps its letter, its date and the hash of the input it was made from; all else is as now.
+
+    Examples
+    --------
+    >>> now = {"number": "7", "revision": "B", "date": "2026-12-10"}
+    >>> left_at_earlier_revision(now | {"revision": "A", "date": "2026-12-01"}, now)
+    True
+    >>> left_at_earlier_revision(now | {"number": "8", "revision": "A", "date": "2026-12-01"}, now)
+    False
+    """
+    if not isinstance(header, Mapping) or not isinstance(now, Mapping) or header == now:
+        return False
+    dated = {key: now.get(key) for key in ("revision", "date")}
+    return (
+        header.get("revision") != now.get("revision")
+        and str(header.get("date")) <= str(now.get("date"))
+        and {**header, **dated} == {**now}
+    )
+
+
+def _title_block(header: object, now: Mapping[str, Any]) -> Iterator[Finding]:
+    if left_at_earlier_revision(header, now):
+        says = f"left as it was at revision {str(dict(header)['revision'])[:20]}"  # type: ignore[call-overload]
+        yield unchecked(_GROUP, "job file, title block", f"{says}: letter and date are that revision's")
+    else:
+        yield from _same("title block", header, now)
+
+
 def audit_job(given: Given | None, facts: Mapping[str, Any] | None) -> tuple[Finding, ...]:
     """Hold a notebook's parameters against the job file.
 
@@ -65,7 +96,7 @@ def audit_job(given: Given | None, facts: Mapping[str, Any] | None) -> tuple[Fin
     if beam is None:
         return (wrong(_GROUP, f"job file, beam {given.mark[:60]}", "the job file has no such beam"),)
     return (
-        *_same("title block", given.data.get("header"), facts["header"]),
+        *_title_block(given.data.get("header"), facts["header"]),
         *_same("basis", given.data.get("basis"), facts["basis"]),
         *_panels(given, facts),
         *_same("section", given.data.get("section"), beam["section"]),
@@ -87,7 +118,9 @@ def _same(says: str, ours: object, theirs: object) -> Iterator[Finding]:
         yield good(_GROUP, f"job file, {says}", "the parameters are what the job file says")
         return
     place = f"job file, {says} {first[0]}".strip()
-    yield wrong(_GROUP, place, "the parameters are not what the job file says", printed=first[1], other=first[2])
+    yield wrong(
+        _GROUP, place, "the parameters are not what the job file says", printed=first[1], other=first[2]
+    )
 
 
 def _panels(given: Given, facts: Mapping[str, Any]) -> Iterator[Finding]:

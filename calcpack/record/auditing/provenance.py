@@ -23,7 +23,11 @@ _GROUP = "provenance"
 
 
 def audit_provenance(
-    record: Record, notebook: Notebook | None, input_digests: frozenset[str], job_folder: Path | None
+    record: Record,
+    notebook: Notebook | None,
+    input_digests: frozenset[str],
+    job_folder: Path | None,
+    earlier: bool = False,
 ) -> tuple[Finding, ...]:
     """Hold the stated hashes against the files they are of.
 
@@ -35,10 +39,12 @@ def audit_provenance(
         SHA-256 of the job's input, in whatever order its files were read; empty where it is not at hand.
     job_folder : Path or None
         Where the job's own templates may lie.
+    earlier : bool
+        The sheet was left as it was at an earlier revision, made from that one's input.
     """
     return (
         *_template(record.data["template"], job_folder),
-        *_input(notebook, input_digests),
+        *_input(notebook, input_digests, earlier),
         *_program(notebook),
     )
 
@@ -52,7 +58,10 @@ def _template(stated: Mapping[str, Any], job_folder: Path | None) -> Iterator[Fi
     found = [
         folder / name
         for folder in folders
-        if name and ".." not in parts and not Path(name).is_absolute() and (folder / name / "template.toml").is_file()
+        if name
+        and ".." not in parts
+        and not Path(name).is_absolute()
+        and (folder / name / "template.toml").is_file()
     ]
     if not found:
         yield unchecked(_GROUP, place, "there is no template of this name here to hold its hash against")
@@ -110,13 +119,15 @@ def input_digests(inputs: Mapping[str, bytes]) -> frozenset[str]:
     )
 
 
-def _input(notebook: Notebook | None, digests: frozenset[str]) -> Iterator[Finding]:
+def _input(notebook: Notebook | None, digests: frozenset[str], earlier: bool) -> Iterator[Finding]:
     if notebook is None:
         yield unchecked(_GROUP, "input", "no notebook at hand that states the hash of its input")
         return
     stated = str(notebook.metadata.get("input", ""))
     if not digests:
         yield unchecked(_GROUP, "input", "the job file and its tables are not at hand; name them with --job")
+    elif earlier:
+        yield unchecked(_GROUP, "input", "left as it was at an earlier revision, made from that one's input")
     elif stated in digests:
         yield Finding(_GROUP, "input", "hash of job file and tables", stated[:16], stated[:16])
     else:

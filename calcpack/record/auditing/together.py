@@ -10,8 +10,9 @@ from typing import Any
 from calcpack.record.auditing.beam import Load, solve
 from calcpack.record.auditing.book import figure
 from calcpack.record.auditing.files import Target
-from calcpack.record.auditing.findings import Finding, Verdict, good, unchecked, wrong
+from calcpack.record.auditing.findings import Finding, Verdict, unchecked, wrong
 from calcpack.record.auditing.given import Given
+from calcpack.record.auditing.inputs import left_at_earlier_revision
 from calcpack.record.auditing.reading import Record
 from calcpack.record.auditing.sources import SELF_WEIGHT, pressure_of
 
@@ -68,7 +69,9 @@ def digest_of(record: Record, given: Given | None, input_hash: str) -> Digest:
     for each in given.placements:
         for load in each.loads:
             if load.point and load.source in above:
-                carried_placed.setdefault((each.case, each.beam, each.span, load.source), []).append(load.first)
+                carried_placed.setdefault((each.case, each.beam, each.span, load.source), []).append(
+                    load.first
+                )
     panels = {
         str(transfer["panel"]["mark"]): {
             "walls": [
@@ -136,13 +139,14 @@ def _one_job(target: Target, digests: Sequence[Digest]) -> Iterator[Finding]:
         if sheet.record_name != f"{each.mark}.json":
             yield wrong(_GROUP, sheet.record_name, f"it is the record of beam {each.mark[:60]}")
     headers = [each.header for each in digests]
-    usual = max(headers, key=headers.count)
+    usual = max(headers, key=lambda header: (str(header.get("date", "")), headers.count(header)))
+    left = {each.mark for each in digests if left_at_earlier_revision(each.header, usual)}
     for each in digests:
-        if each.header != usual:
+        if each.header != usual and each.mark not in left:
             yield wrong(_GROUP, f"beam {each.mark}", "its title block is not that of the other sheets")
-    inputs = [each.input for each in digests if each.input]
+    inputs = [each.input for each in digests if each.input and each.mark not in left]
     for each in digests:
-        if each.input and each.input != max(inputs, key=inputs.count):
+        if each.mark not in left and each.input and each.input != max(inputs, key=inputs.count):
             yield wrong(_GROUP, f"beam {each.mark}", "it was made from another input than the other sheets")
     if target.job_json is None:
         return
@@ -171,9 +175,13 @@ def _carried(digests: Sequence[Digest]) -> Iterator[Finding]:
         for source in sources:
             above = by_mark.get(source)
             if above is None:
-                yield unchecked(_GROUP, f"beam {source} on {below.mark}", f"no notebook of beam {source} at hand")
+                yield unchecked(
+                    _GROUP, f"beam {source} on {below.mark}", f"no notebook of beam {source} at hand"
+                )
                 continue
-            on = [number for number, bearing in enumerate(above.bearings) if bearing[1:] == ("beam", below.mark)]
+            on = [
+                number for number, bearing in enumerate(above.bearings) if bearing[1:] == ("beam", below.mark)
+            ]
             pairs: list[tuple[str, list[float], list[float]]] = []
             cases = dict.fromkeys(case for mark, _, case, _ in below.carried if mark == source)
             for case in cases:
