@@ -345,7 +345,9 @@ def audit(
     record: Annotated[
         Path | None, typer.Option(metavar="DIR", help="Folder with the records, for a PDF that carries none.")
     ] = None,
-    job: Annotated[Path | None, typer.Option(metavar="JOB", help="The job file the sheets were made from.")] = None,
+    job: Annotated[
+        Path | None, typer.Option(metavar="JOB", help="The job file the sheets were made from.")
+    ] = None,
     sheet: Annotated[str | None, typer.Option(metavar="MARK", help="Only this sheet.")] = None,
     everything: Annotated[bool, typer.Option("--all", help="Every line and figure.")] = False,
     as_json: Annotated[bool, typer.Option("--json", help="As JSON on the output.")] = False,

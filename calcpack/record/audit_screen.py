@@ -9,9 +9,9 @@ from rich.table import Table
 from rich.text import Text
 from rich.tree import Tree
 
+from calcpack.record.audit_trace import Branch
 from calcpack.record.auditing.findings import Audit, Finding, SheetAudit, Verdict, groups_of
 from calcpack.record.auditing.reading import RecordLine
-from calcpack.record.audit_trace import Branch
 
 COLUMNS = ("line", "says", "printed", "recomputed", "difference", "verdict")
 ELSEWHERE = "files together"
@@ -112,7 +112,9 @@ def open_rows(audit: Audit) -> list[tuple[str, str]]:
 
 
 def _what(finding: Finding) -> str:
-    return "values brought in from outside the job" if finding.place.startswith("lines ") else finding.place
+    if not finding.place.startswith("lines "):
+        return finding.place
+    return "values brought in from outside the job" if finding.says.startswith("brought") else finding.says
 
 
 def _listed(marks: Sequence[str]) -> str:
@@ -179,7 +181,11 @@ def print_influence(
     values : mapping
         Line number -> unit of the derivative.
     """
-    table = _table(title, ["line", "given value", "is", "1 % more gives", "derivative"], ["is", "1 % more gives", "derivative"])
+    table = _table(
+        title,
+        ["line", "given value", "is", "1 % more gives", "derivative"],
+        ["is", "1 % more gives", "derivative"],
+    )
     for line, influence, derivative in rows:
         _row(
             table,

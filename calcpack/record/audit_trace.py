@@ -141,7 +141,7 @@ def job_text(origin: str, job: Mapping[str, Any] | None) -> str | None:
     kind, rest = match["kind"], match["rest"]
     if kind in _TABLES:
         table = job.get(_TABLES[kind])
-        entries = table.items() if isinstance(table, dict) else ()
+        entries: list[tuple[Any, Any]] = list(table.items()) if isinstance(table, dict) else []
     else:
         rows = job.get(kind)
         held = rows if isinstance(rows, list) else ()

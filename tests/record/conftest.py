@@ -1,4 +1,4 @@
-"""A small job with all that an audit looks at, built once: a continuous beam, a joist on it, a strength sheet."""
+"""A small job with all that an audit looks at, built once: a continuous beam, on it a joist with its strength."""
 
 from __future__ import annotations
 
@@ -96,7 +96,7 @@ def loft(tmp_path_factory) -> Path:
 
 @pytest.fixture(scope="session")
 def opened(loft):
-    """Everything of the pack that single sheets are audited with: files with their pages' text, hashes, facts."""
+    """What single sheets are audited with: their files with the pages' text, hashes of the input, the job."""
     from dataclasses import replace
 
     from calcpack.record.auditing.files import find_target

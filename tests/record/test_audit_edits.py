@@ -16,8 +16,9 @@ from calcpack.record.auditing.copies import differences
 from calcpack.record.auditing.given import RECORD
 from calcpack.record.auditing.reading import canonical
 
-EDITS = 330
-FORGED = 150
+EDITS = 300
+FORGED = 60
+RELINKED = 20
 
 
 def other_digit(text: str, place: int, chance: random.Random) -> str:
@@ -82,8 +83,8 @@ def numeric_places(data, path=()):
     elif isinstance(data, float) and abs(data) > 1e-9 and path[0] in ("lines", "results"):
         yield path
     elif isinstance(data, str) and path[0] == "lines" and re.search("[0-9]", data):
-        if path[-1] in ("shown", "no", "number", "quantity", "measured") or "inputs" in path:
-            yield path
+        recomputed = path[-1] in ("shown", "no", "number", "quantity", "measured") or "inputs" in path
+        yield from [path] if recomputed else []
 
 
 def forged(data, path, chance):
@@ -128,30 +129,36 @@ def test_a_digit_changed_in_record_and_notebook_alike_is_found_by_recomputing(op
         files = replace(
             sheets[mark], record=canonical(after), notebook=with_copy(sheets[mark].notebook, after)
         )
-        if not audited(files, opened):
+        if not audited(files, opened) and not named_as_open(files, opened, after, path):
             lost.append((mark, path))
     assert lost == []
 
 
+def named_as_open(files, opened, record, path):
+    """A figure of the analysis beyond its printed digits: the audit says that nothing checks it."""
+    audit, _ = audit_sheet(files, digests=opened[1], facts=opened[2])
+    no = record["lines"][path[1]]["no"]
+    places = [each.place for each in audit.open if "inside their formulas" in each.says]
+    return path[-1] == "measured" and any(no in place for place in places)
+
+
 def test_a_digit_on_the_printed_page_is_found(opened):
     chance = random.Random(3)
-    sheets = opened[0]
-    for mark, files in sheets.items():
-        lines = [line for line in json.loads(files.record)["lines"] if line["kind"] == "hence"]
-        for line in chance.sample(lines, 6):
-            shown = line["shown"].replace("\u00a0", " ")
-            pages = []
-            for page in files.pages:
-                page = page.replace("\u00a0", " ")
-                at = page.find(f"{line['no']} {line['says'][:8]}")
-                tail = page.find(f"= {shown}", at) if at >= 0 else -1
-                if tail >= 0:
-                    digit = next(i for i in range(tail, len(page)) if page[i].isdigit())
-                    page = other_digit(page, digit, chance)
-                pages.append(page)
-            assert tuple(pages) != files.pages
+    for mark, files in opened[0].items():
+        text = "\f".join(files.pages).replace("\u00a0", " ")
+        lines = json.loads(files.record)["lines"]
+        starts = [text.find(f"{line['no']} {line['says'][:8]}") for line in lines] + [len(text)]
+        hence = [place for place, line in enumerate(lines) if line["kind"] == "hence"]
+        for place in chance.sample(hence, 6):
+            shown = "= " + lines[place]["shown"].replace("\u00a0", " ")
+            part = text[starts[place] : starts[place + 1]]
+            digit = next(at for at, letter in enumerate(shown) if letter.isdigit())
+            changed = part.replace(shown, other_digit(shown, digit, chance))
+            assert changed != part
+            pages = (text[: starts[place]] + changed + text[starts[place + 1] :]).split("\f")
             found = audited(replace(files, pages=tuple(pages)), opened)
-            assert any(f"line {line['no']} the pages" in each for each in found), (mark, line["no"])
+            no = lines[place]["no"]
+            assert any(f"line {no} the pages" in each for each in found), (mark, no)
 
 
 def rewritten(files, change):
@@ -183,7 +190,8 @@ def test_an_input_taken_from_another_line_is_found_also_where_the_value_is_the_s
         for symbol, no in line["inputs"].items():
             value = next(each["value"] for each in lines if each["no"] == no)
             for other in lines[:place]:
-                if other["value"] == value and other["no"] != no and other["kind"] != "require":
+                fits = other["value"] == value and other["no"] != no and other["kind"] != "require"
+                if fits and done < RELINKED:
 
                     def relink(data, place=place, symbol=symbol, other=other):
                         data["lines"][place]["inputs"][symbol] = other["no"]
@@ -191,7 +199,7 @@ def test_an_input_taken_from_another_line_is_found_also_where_the_value_is_the_s
                     found = audited(rewritten(files, relink), opened)
                     assert any(each.startswith(f"line {line['no']} '{symbol}' is taken") for each in found)
                     done += 1
-    assert done > 5
+    assert done == RELINKED
 
 
 @pytest.mark.parametrize("where", ["template", "input", "manifest", "job.json", "notebook"])

@@ -154,16 +154,15 @@ def solve(
 
 def _merged(places: Sequence[float], slack: float) -> Floats:
     ordered = np.sort(np.asarray(places, dtype=float))
-    return ordered[np.concatenate([[True], np.diff(ordered) > slack])]
+    found: Floats = ordered[np.concatenate([[True], np.diff(ordered) > slack])]
+    return found
 
 
 def _nearest(nodes: Floats, place: float) -> int:
     return int(np.abs(nodes - place).argmin())
 
 
-def _loading(
-    nodes: Floats, at: dict[float, int], sets: Sequence[Sequence[Load]]
-) -> tuple[Floats, Floats]:
+def _loading(nodes: Floats, at: dict[float, int], sets: Sequence[Sequence[Load]]) -> tuple[Floats, Floats]:
     """Forces on the nodes (2 n, sets), and each element's load: its start value and its slope."""
     h = np.diff(nodes)
     forces = np.zeros((2 * len(nodes), len(sets)))

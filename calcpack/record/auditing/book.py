@@ -109,9 +109,7 @@ class Book:
         for path in paths:
             self.seen(path)
         count = f"{len(paths)} figures" if len(paths) > 1 else "one figure"
-        self.findings.append(
-            Finding("results", prefix, says or count, verdict=Verdict.OPEN, remark=remark)
-        )
+        self.findings.append(Finding("results", prefix, says or count, verdict=Verdict.OPEN, remark=remark))
 
     def close(self) -> tuple[Finding, ...]:
         """All findings; a leaf that nobody has looked at is named as not checkable."""

@@ -25,7 +25,9 @@ _TERM = re.compile(
 _RAISED = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻", "0123456789-")
 
 
-def audit_copies(record: Record, notebook: Notebook | None, lines: Sequence[WorkedLine]) -> tuple[Finding, ...]:
+def audit_copies(
+    record: Record, notebook: Notebook | None, lines: Sequence[WorkedLine]
+) -> tuple[Finding, ...]:
     """Hold a record against its notebook, and against itself as bytes.
 
     Parameters

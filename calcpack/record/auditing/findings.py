@@ -59,7 +59,9 @@ class Finding:
         }
 
 
-def wrong(group: str, place: str, remark: str, *, says: str = "", printed: str = "", other: str = "") -> Finding:
+def wrong(
+    group: str, place: str, remark: str, *, says: str = "", printed: str = "", other: str = ""
+) -> Finding:
     """A finding that is wrong for a reason in words."""
     return Finding(group, place, says, printed, other, "", Verdict.WRONG, remark)
 

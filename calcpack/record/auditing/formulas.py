@@ -342,7 +342,9 @@ def _power(part: Part, values: list[Value]) -> Value:
         return Value(size, slack)
     exact = _constant(part.args[1])
     if exact is None or exact.denominator > 12 or abs(exact) > 12:
-        raise ValueError(f"{dimension_words(*base.dimension)} is raised to something else than a small number")
+        raise ValueError(
+            f"{dimension_words(*base.dimension)} is raised to something else than a small number"
+        )
     return Value(size, slack, base.force * exact, base.length * exact)
 
 

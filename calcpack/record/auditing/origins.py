@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
+import bisect
 import re
 from collections.abc import Iterator, Mapping, Sequence
 from itertools import pairwise
-from typing import Any
 
 from calcpack.record.auditing.findings import Finding, Verdict, good, wrong
 from calcpack.record.auditing.given import Given
@@ -82,6 +82,7 @@ def audit_origins(record: Record, given: Given | None, lines: Sequence[WorkedLin
                 remark="neither the job nor the results name a figure to hold them against",
             )
         )
+    findings += _handed_on(record, given, lines)
     try:
         findings += _shared(record, given, lines)
     except (ValueError, AttributeError, TypeError) as error:
@@ -167,6 +168,33 @@ def _beam(rest: str, given: Given) -> tuple[list[float], bool]:
         ends = [each for span in given.spans for each in span]
         return [given.length, *ends, *(end - start for start, end in given.spans)], True
     return [], False
+
+
+def _handed_on(record: Record, given: Given, lines: Sequence[WorkedLine]) -> Iterator[Finding]:
+    """Figures of the analysis that stand inside formulas: those that results and loads do not have."""
+    known = sorted({abs(each) for each in (*numbers(record.results), *numbers(given.data))})
+    loose = []
+    for worked in lines:
+        if worked.line.kind == "take":
+            continue
+        for part in worked.formula.walk():
+            if part.op == "measured" and not _is_known(float(part.text) * float(unit(part.unit).size), known):
+                loose.append(worked.line.no)
+                break
+    if loose:
+        yield Finding(
+            _GROUP,
+            "lines " + ", ".join(loose),
+            "figures of the analysis inside their formulas",
+            verdict=Verdict.OPEN,
+            remark="no result has them: they are held only against what the notebook shows, as far as printed",
+        )
+
+
+def _is_known(size: float, known: Sequence[float]) -> bool:
+    slack = AGREEMENT * abs(size) + 1e-15
+    place = bisect.bisect_left(known, abs(size) - slack)
+    return place < len(known) and known[place] <= abs(size) + slack
 
 
 def _from_results(line: RecordLine, record: Record) -> bool:

@@ -156,7 +156,13 @@ def _shown_on(line: RecordLine, by_line: Mapping[str, Sequence[str]]) -> Finding
     parts = by_line.get(line.no, ())
     place, shown = f"line {line.no}", _bare(line.shown)
     if not parts:
-        return wrong("pages", place, "the pages do not show a line of this number and these words", says=line.says, printed=line.shown)
+        return wrong(
+            "pages",
+            place,
+            "the pages do not show a line of this number and these words",
+            says=line.says,
+            printed=line.shown,
+        )
     if line.kind == "require":
         flat = [_SPACE.sub("", part) for part in parts]
         right = any(shown in part and ("notsatisfied" in part) == (line.passes is False) for part in flat)

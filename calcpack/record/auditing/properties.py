@@ -27,7 +27,10 @@ def section_properties(section: Mapping[str, Any]) -> dict[str, float] | None:
     if section["shape"] in ("rectangle", "tee"):
         wide = sizes.get("flange_width", sizes["width"])
         thick = sizes.get("flange_depth", 0.0) if "flange_width" in sizes else 0.0
-        parts = [(wide, thick, thick / 2), (sizes["width"], sizes["depth"] - thick, (sizes["depth"] + thick) / 2)]
+        parts = [
+            (wide, thick, thick / 2),
+            (sizes["width"], sizes["depth"] - thick, (sizes["depth"] + thick) / 2),
+        ]
         whole = sum(b * h for b, h, _ in parts)
         middle = sum(b * h * y for b, h, y in parts) / whole
         inertia = sum(b * h**3 / 12 + b * h * (y - middle) ** 2 for b, h, y in parts)

@@ -119,7 +119,9 @@ def _geometry(book: Book, beam: Beam) -> None:
     """Spans against the supports; where only the record says them, they are what everything rests on."""
     for number, (start, end) in enumerate(beam.spans):
         if beam.supports is not None:
-            book.compare(f"results.spans[{number}]", end - start, "m", f"span {number + 1}", scale=beam.length)
+            book.compare(
+                f"results.spans[{number}]", end - start, "m", f"span {number + 1}", scale=beam.length
+            )
     if beam.given is None:
         return
     for number, at in enumerate(beam.given.supports):
@@ -130,7 +132,9 @@ def _geometry(book: Book, beam: Beam) -> None:
     for number, fixed in enumerate(beam.given.fixed):
         path = f"results.fixed[{number}]"
         if path in book.stated:
-            book.settle(path, book.stated[path] is fixed, "the notebook says otherwise", "end held", str(fixed))
+            book.settle(
+                path, book.stated[path] is fixed, "the notebook says otherwise", "end held", str(fixed)
+            )
 
 
 def _loads(book: Book, beam: Beam, record: Record) -> None:
@@ -186,9 +190,7 @@ def _one_load(book: Book, path: str, ours: Load, theirs: Load) -> None:
 def _said(load: Load) -> str:
     if load.point:
         return f"{figure(load.first)} kN at {figure(load.start)} m"
-    return (
-        f"{figure(load.first)} to {figure(load.last)} kN/m, {figure(load.start)} to {figure(load.end)} m"
-    )
+    return f"{figure(load.first)} to {figure(load.last)} kN/m, {figure(load.start)} to {figure(load.end)} m"
 
 
 def _totals(book: Book, beam: Beam) -> None:
@@ -294,9 +296,7 @@ def _combinations(book: Book, beam: Beam, record: Record) -> None:
         book.compare(f"{base}.moment_min", low.value, "kNm", f"{name}: smallest moment", scale=turning)
         shear = max(abs(each.value) for each in shears[number])
         book.compare(f"{base}.shear_max", shear, "kN", f"{name}: largest shear", scale=force)
-        for side, forces in zip(
-            ("max", "min"), worst.reactions(always[number], placed[number]), strict=True
-        ):
+        for side, forces in zip(("max", "min"), worst.reactions(always[number], placed[number]), strict=True):
             for place, each in enumerate(forces.tolist()):
                 path = f"{base}.reactions_{side}[{place}]"
                 if side == "max" or path in book.stated:
@@ -334,7 +334,11 @@ def _envelope(
         where = sorted({round(place, 9) for each in close for place in each.places})
         said = " or ".join(figure(place) for place in where[:4])
         book.settle(
-            f"{path}_at", fits or not agrees and at is not None, f"it is reached at {said} m", "its place [m]", said
+            f"{path}_at",
+            fits or (not agrees and at is not None),
+            f"it is reached at {said} m",
+            "its place [m]",
+            said,
         )
     shear = max(abs(each.value) for row in shears for each in row)
     book.compare("results.envelope.shear_max", shear, "kN", "largest shear, all placements", scale=force)

@@ -105,7 +105,9 @@ def _panels(given: Given) -> Iterator[Finding]:
             place = f"panel {mark} to {share['carrier_kind']} {share['carrier']}"
             region = area([(float(x), float(y)) for x, y in share["region"]]) if share["region"] else 0.0
             depth = _integral(share["depth"]) + math.fsum(float(size) for _, size in share["ends"])
-            yield _held("panels", place, "outline of what drains there", float(share["area"]), region, "m²", whole)
+            yield _held(
+                "panels", place, "outline of what drains there", float(share["area"]), region, "m²", whole
+            )
             yield _held("panels", place, "depth along the carrier", float(share["area"]), depth, "m²", whole)
         for edge in sorted(again.keys() | stated_by_edge.keys()):
             yield _held(
@@ -190,7 +192,9 @@ def _panel_loads(given: Given) -> Iterator[Finding]:
                     force = pressure * float(size)
                     again.append(Load(float(at), float(at), force, force, point=True))
             if again or _of_source(given, case, panel["mark"]):
-                yield _against(given, case, panel["mark"], again, f"panel {panel['mark']}, pressure times depth")
+                yield _against(
+                    given, case, panel["mark"], again, f"panel {panel['mark']}, pressure times depth"
+                )
 
 
 def _own_weight(given: Given) -> Iterator[Finding]:

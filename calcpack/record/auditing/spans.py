@@ -55,9 +55,7 @@ def span_equivalents(start: float, end: float, sets: Sequence[Sequence[Load]]) -
 
 
 def _inside(load: Load, span: float) -> Load:
-    return Load(
-        max(load.start, 0.0), min(load.end, span), load.first, load.last, load.source, load.point
-    )
+    return Load(max(load.start, 0.0), min(load.end, span), load.first, load.last, load.source, load.point)
 
 
 def _farther(*values: float) -> float:
