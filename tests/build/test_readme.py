@@ -3,12 +3,12 @@
 from __future__ import annotations
 
 import re
-
-from conftest import ROOT
+from pathlib import Path
 
 from calcpack.framing import frame
 from calcpack.job import read_job
 
+ROOT = Path(__file__).parent.parent.parent
 README = (ROOT / "README.md").read_text(encoding="utf-8")
 
 
