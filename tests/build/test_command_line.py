@@ -48,7 +48,7 @@ line = ["A2", "B2"]
 REFUSED = {
     "nothing under a point": (
         ('line = ["A1", "B1"]', 'line = ["A1", "B1", ["6 m", "0 m"]]'),
-        "job.toml:22: beam B1: line: nothing stands under (6 m, 0 m): no column, no wall and no beam; support",
+        "job.toml:22: beam B1: line: nothing stands under (6 m, 0 m): no column, no wall and no beam",
     ),
     "panel edge held in part": (
         ('line = ["A2", "B2"]', 'line = ["A2", ["2 m", "4 m"]]'),
@@ -64,7 +64,8 @@ REFUSED = {
     ),
     "unknown design key": (
         ('material = "m"\n', 'material = "m"\n[beam.design]\ndeflection_limit = { live = 360 }\n'),
-        "job.toml:26: beam B1: design.deflection_limit: there is no such key; did you mean 'deflection_limits'?",
+        "job.toml:26: beam B1: design.deflection_limit: there is no such key; "
+        "did you mean 'deflection_limits'?",
     ),
     "design value of the wrong kind": (
         ('material = "m"\n', 'material = "m"\n[beam.design]\ndeflection_limits = { live = "360" }\n'),
@@ -173,7 +174,9 @@ def test_templates_are_listed(run):
 def test_a_deflection_limit_that_is_not_kept(run, job, tmp_path):
     import json
 
-    text = SMALL.replace('material = "m"\n', 'material = "m"\n[beam.design]\ndeflection_limits = { total = 1e6 }\n')
+    text = SMALL.replace(
+        'material = "m"\n', 'material = "m"\n[beam.design]\ndeflection_limits = { total = 1e6 }\n'
+    )
     job.write_text(text, encoding="utf-8")
     status, _, err = run("build", job, "--out", tmp_path / "out", "--format", "notebook")
     record = json.loads((tmp_path / "out" / "sheets" / "B1.json").read_text(encoding="utf-8"))

@@ -68,4 +68,3 @@ def test_a_write_that_fails_leaves_no_part(tmp_path):
     with pytest.raises(CalcpackError, match="cannot be written"):
         write_file(tmp_path / "b", b"")
     assert [path.name for path in tmp_path.iterdir()] == ["b"]
-
