@@ -1,0 +1,120 @@
+"""Small packs to sign, people to sign them, and a way to die in the middle."""
+
+from __future__ import annotations
+
+import datetime
+import functools
+import json
+import os
+import random
+import signal
+import time
+from collections.abc import Callable
+from pathlib import Path
+
+from calcpack.export.pack import BuiltPack, Pack, Section, build_pack
+from calcpack.files import OutputFolder
+from calcpack.job.model import Header, Person, Submission
+from calcpack.record.fields import ready_to_sign
+from calcpack.record.identity import Identity, load_identity, new_identity
+from calcpack.record.sign import Signing
+from calcpack.record.signatures import Trust
+from calcpack.record.statement import statement_of
+
+NOW = datetime.datetime(2026, 12, 1, 9, 5, tzinfo=datetime.UTC)
+DAY = datetime.timedelta(days=1)
+PASSPHRASE = "correct horse"
+
+
+@functools.lru_cache(maxsize=32)
+def person(name: str, organisation: str = "", begins: int = -1, days: int = 365) -> Identity:
+    """A test identity, valid from so many days after NOW."""
+    stored, _ = new_identity(
+        name, PASSPHRASE, NOW + begins * DAY, organisation=organisation, licence="SE 1184", days=days
+    )
+    path = Path(os.environ["PYTEST_TMP"]) / f"{abs(hash((name, organisation, begins, days)))}.p12"
+    path.write_bytes(stored)
+    return load_identity(str(path), lambda _what: PASSPHRASE)
+
+
+def signing(role: str, identity: Identity, **more: object) -> Signing:
+    return Signing(**{"role": role, "identity": identity, "now": NOW} | more)
+
+
+def trust(*people: Identity, now: datetime.datetime = NOW) -> Trust:
+    return Trust(tuple(each.signer.signing_cert for each in people), now)
+
+
+@functools.lru_cache(maxsize=8)
+def _built(header: Header, level: str, markup: bool) -> BuiltPack:
+    note = Section.of("Basis", [{"type": "text", "runs": "Nothing but a place to sign."}])
+    submission = Submission(check_level=level, allow_markup=markup, attachments=False)
+    return build_pack(Pack(header, submission, "calcpack 0", "ab" * 32, sheets=(), basis=(note,)))
+
+
+class Frozen(Header):
+    """A title block that can be a key."""
+
+    def __hash__(self) -> int:
+        return hash(self.model_dump_json())
+
+
+def out_folder(
+    path: Path,
+    *,
+    number: str = "7",
+    revision: str = "A",
+    level: str = "second person",
+    markup: bool = False,
+    fails: bool = False,
+    prepared: str = "",
+    approved: str = "",
+    more: str = "",
+) -> Path:
+    """An output folder as a build leaves it: pack, one sheet, job.json, manifest."""
+    header = Frozen(
+        number=number,
+        title="Kiosk roof",
+        revision=revision,
+        date=datetime.date(2026, 12, 1),
+        prepared=Person(name=prepared, licence="PE 77" if prepared else ""),
+        approved=Person(name=approved),
+    )
+    built = _built(header, level, markup)
+    line = {"no": "4.02", "kind": "require", "says": "Deflection", "passes": not fails}
+    record = {"format": 1, "mark": "B1", "revision": revision, "lines": [line], "more": more}
+    submission = Submission(check_level=level, allow_markup=markup, attachments=False)
+    job = {
+        "format": 1,
+        "job": header.model_dump(mode="json"),
+        "submission": submission.model_dump(mode="json"),
+    }
+    statement = statement_of(header, submission, [record])
+    files = {
+        "pack.pdf": ready_to_sign(built.pdf, built.signing, statement),
+        "job.json": json.dumps(job).encode(),
+        "sheets/B1.json": json.dumps(record).encode(),
+        "sheets/B1.html": f"<!doctype html><title>B1</title><p>{revision} {more}</p>\n".encode(),
+    }
+    path.mkdir(parents=True, exist_ok=True)
+    OutputFolder(path).write(files)
+    return path
+
+
+def killed_at_random(work: Callable[[], object], longest: float, chance: random.Random) -> bool:
+    """Run work in a process of its own and kill it there after a random while; whether it was killed."""
+    child = os.fork()
+    if child == 0:  # pragma: no cover - the child's own life
+        try:
+            work()
+        finally:
+            os._exit(0)
+    time.sleep(chance.random() * longest)
+    os.kill(child, signal.SIGKILL)
+    return os.WIFSIGNALED(os.waitpid(child, 0)[1])
+
+
+def time_of(work: Callable[[], object]) -> float:
+    begun = time.monotonic()
+    work()
+    return time.monotonic() - begun
