@@ -12,15 +12,15 @@ from calcpack.record.audit_screen import COLUMNS, open_rows, summary_rows, wrong
 from calcpack.record.auditing.findings import Audit, Verdict
 
 ROADS = (
-    "Lines: each stored formula read within bounds and worked out in thirty digits, with an evaluator, a unit "
-    "table and a reading of printed texts that are the audit's own; value to 1e-9, dimension, links, order; the "
-    "printed text as the value (twelve significant digits, halves away from zero) rounded at its last "
-    "digit; every requirement decided again.",
+    "Lines: each stored formula read within bounds and worked out in thirty digits, with an evaluator, a "
+    "unit table and a reading of printed texts that are the audit's own; value to 1e-9, dimension, links, "
+    "order; the printed text as the value (twelve significant digits, halves away from zero) rounded "
+    "at its last digit; every requirement decided again.",
     "Results: the beam solved again by finite elements from its loads; spans taken alone; combinations with "
     "live load placed where it is worst; reactions handed on from beam to beam; supports against what is "
     "applied.",
-    "Loads: panels divided again among their edges; pressure times depth; sections from their dimensions; the "
-    "job file read again where it is at hand.",
+    "Loads: panels divided again among their edges; pressure times depth; sections from their dimensions; "
+    "the job file read again where it is at hand.",
     "Papers: the notebook's copy of the record and what it shows of each line; the visible text of the PDF; "
     "hashes of template, input and files.",
 )

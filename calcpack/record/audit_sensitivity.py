@@ -77,10 +77,7 @@ def sensitivity(record: Record, lines: Sequence[WorkedLine]) -> Sensitivity:
     if faulty := [line.line.no for line in lines if line.faults]:
         raise CalcpackError(f"line {faulty[0]} is wrong: what rests on it says nothing", file=record.name)
     target, says, shown = _target(record, lines)
-    if target.line.kind == "require":
-        of = "1"
-    else:
-        of = target.line.unit
+    of = "1" if target.line.kind == "require" else target.line.unit
     behind = _behind(lines, target.line.no)
     exact = _carried(behind, {})
     base = _result(target, exact)

@@ -1,4 +1,4 @@
-"""A small job with all that an audit looks at, built once: a continuous beam, on it a joist with its strength."""
+"""A small job with all that an audit looks at, built once: a continuous beam and a joist that it carries."""
 
 from __future__ import annotations
 

@@ -23,33 +23,12 @@ CONTEXT.dps = 30
 Real = Any  # mpmath.mpf
 
 ARGUMENTS: dict[str, tuple[int, int]] = {
-    "add": (2, 2),
-    "sub": (2, 2),
-    "mul": (2, 2),
-    "div": (2, 2),
-    "pow": (2, 2),
-    "neg": (1, 1),
-    "abs": (1, 1),
-    "sqrt": (1, 1),
-    "sum": (1, 200),
-    "min": (2, 40),
-    "max": (2, 40),
-    "sin": (1, 1),
-    "cos": (1, 1),
-    "tan": (1, 1),
-    "atan": (1, 1),
-    "log": (1, 1),
-    "exp": (1, 1),
-    "pi": (0, 0),
-    "eq": (2, 2),
-    "le": (2, 2),
-    "lt": (2, 2),
-    "ge": (2, 2),
-    "gt": (2, 2),
-    "choose": (3, 3),
-    "number_in": (1, 1),
-    "in_unit": (1, 1),
-}
+    "add": (2, 2), "sub": (2, 2), "mul": (2, 2), "div": (2, 2), "pow": (2, 2), "neg": (1, 1), "abs": (1, 1),
+    "sqrt": (1, 1), "sum": (1, 200), "min": (2, 40), "max": (2, 40), "pi": (0, 0),
+    "sin": (1, 1), "cos": (1, 1), "tan": (1, 1), "atan": (1, 1), "log": (1, 1), "exp": (1, 1),
+    "eq": (2, 2), "le": (2, 2), "lt": (2, 2), "ge": (2, 2), "gt": (2, 2), "choose": (3, 3),
+    "number_in": (1, 1), "in_unit": (1, 1),
+}  # fmt: skip
 COMPARISONS = frozenset({"eq", "le", "lt", "ge", "gt"})
 DEEPEST = 60
 LARGEST = 1_000  # parts of a formula

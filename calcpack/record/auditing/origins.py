@@ -187,7 +187,7 @@ def _handed_on(record: Record, given: Given, lines: Sequence[WorkedLine]) -> Ite
             "lines " + ", ".join(loose),
             "figures of the analysis inside their formulas",
             verdict=Verdict.OPEN,
-            remark="no result has them: they are held only against what the notebook shows, as far as printed",
+            remark="no result has them: they are held against what the notebook shows, as far as printed",
         )
 
 

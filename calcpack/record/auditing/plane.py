@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Mapping, Sequence
+from itertools import pairwise
 
 Point = tuple[float, float]
 Outline = Sequence[Point]
@@ -92,7 +93,7 @@ def strip_areas(corners: Outline, supported: Sequence[bool], direction: Point) -
     widest = max(map(across, corners)) - min(map(across, corners))
     levels = sorted(map(across, corners))
     found: dict[int, float] = {}
-    for low, high in zip(levels, levels[1:], strict=False):
+    for low, high in pairwise(levels):
         if high - low <= 1e-9 * widest:
             continue
         middle = (low + high) / 2

@@ -86,7 +86,8 @@ def _template(stated: Mapping[str, Any], job_folder: Path | None) -> Iterator[Fi
         yield unchecked(
             _GROUP,
             place,
-            f"the sheet was made with version {version[:40]}, here is version {here}: the hash cannot be compared",
+            f"the sheet was made with version {version[:40]}, here is version {here}: "
+            "the hash cannot be compared",
         )
         return
     yield Finding(
