@@ -73,7 +73,11 @@ def test_lines_can_be_linked_to_and_links_lead_somewhere(page):
     assert "#line-9.99" not in targets  # named as a source, but not on this sheet
     assert "9.99" in found.text
     sources = page[page.index('id="line-3.02"') : page.index('id="line-3.03"')]
-    assert 'from <a href="#line-2.02">2.02</a>, <a href="#line-2.03">2.03</a>' in sources
+    links = re.sub(r' title="[^"]*"', "", sources)
+    assert 'from <a href="#line-2.02">2.02</a>, <a href="#line-2.03">2.03</a>' in links
+    # whoever points at a link is told what the line says
+    assert sources.count(' title="') == 2
+    assert ": " in sources.split(' title="')[1].split('"')[0]
 
 
 def test_landmarks_language_and_alternatives(page):
