@@ -13,7 +13,7 @@ import pytest
 
 from calcpack.clauses.bars import bar
 from calcpack.clauses.en1992.along import resistance, shifted, top_zones
-from calcpack.clauses.en1992.anchorage import anchorage
+from calcpack.clauses.en1992.anchorage import anchorage, good_bond
 from calcpack.clauses.en1992.bending import bending, block_force, depth_limit, least_steel, steel_for
 from calcpack.clauses.en1992.cracking import crack_width, elastic
 from calcpack.clauses.en1992.deflection import (
@@ -325,6 +325,30 @@ def test_bent_bars_and_least_length():
     assert anchorage(0.016, C30.fyd, 1.0, True, C30).alpha == 0.7
 
 
+@pytest.mark.parametrize(
+    ("depth", "below", "good"),
+    [
+        (0.25, 0.21, True), (0.2501, 0.2501, False), (0.40, 0.25, True), (0.40, 0.2501, False),
+        (0.60, 0.2501, False), (0.61, 0.3099, True), (0.61, 0.3101, False), (0.90, 0.59, True),
+        (0.90, 0.61, False),
+    ],
+)  # fmt: skip
+def test_bond_conditions(depth, below, good):
+    """Figure 8.2: good up to h = 250; in the lower 250 up to h = 600; but in the upper 300 beyond."""
+    assert good_bond(True, depth, below) == good
+    assert good_bond(False, depth, below)
+
+
+def test_parts_of_the_anchorage_length():
+    """25 mm bent, c_d = 90: 0.7 x (1 - 0.15 x 15/25); 0.3 l_b,rqd; 40 mm: eta_2 = 0.92."""
+    bent = anchorage(0.025, C30.fyd, 0.090, True, C30, bent=True)
+    assert bent.alpha == pytest.approx(0.7 * (1 - 0.15 * 15 / 25), rel=1e-12)
+    assert bent.least == pytest.approx(0.3 * bent.basic, rel=1e-12)
+    assert bent.length == pytest.approx(bent.alpha * 0.025 / 4 * C30.fyd / 3000, rel=1e-12)
+    assert anchorage(0.032, C30.fyd, 0.05, True, C30).bond == pytest.approx(3000, rel=1e-12)
+    assert anchorage(0.040, C30.fyd, 0.05, True, C30).bond == pytest.approx(0.92 * 3000, rel=1e-12)
+
+
 def test_bond_is_not_better_than_that_of_c60():
     high = replace(concrete(70), fctk=3200.0, fctd=3200.0 / 1.5)
     assert anchorage(0.016, high.fyd, 0.016, True, high).bond == pytest.approx(2.25 * 3100 / 1.5)
@@ -359,6 +383,15 @@ def test_crack_width_from_strips():
     near = crack_width(outline, C30, section, moment, area, depth, (0.025, 0.04, 0.2625), NATIONAL)
     assert far.spacing == pytest.approx(1.3 * (0.6 - x), rel=1e-4)
     assert near.spacing == found.spacing
+
+
+def test_cracked_rectangle_by_hand():
+    """b x2/2 = alpha As (d - x), I = b x3/3 + alpha As (d - x)2; 300 x 450, 1000 mm2, alpha = 200/33."""
+    section = elastic(Outline(0.3, 0.5, 0.3, 0.0), C30, 1.0e-3, 0.45, 0.0)
+    steel = 200 / 33 * 1e-3
+    x = (-steel + math.sqrt(steel**2 + 2 * 0.3 * steel * 0.45)) / 0.3
+    assert section.x_2 == pytest.approx(x, rel=1e-12)
+    assert section.inertia_2 == pytest.approx(0.1 * x**3 + steel * (0.45 - x) ** 2, rel=1e-12)
 
 
 # EN 1992-1-1, Table 7.2N, w_k = 0.3 mm: stress [MPa] and largest bar [mm].
