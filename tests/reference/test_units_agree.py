@@ -234,6 +234,8 @@ def results_backwards(results: Results) -> Results:
         loads = {case: [load_backwards(load, length) for load in row] for case, row in each["loads"].items()}
         beams[mark] = each | {
             "spans": each["spans"][::-1],
+            "supports": [length - at for at in each["supports"][::-1]],
+            "fixed": each["fixed"][::-1],
             "loads": loads,
             "reactions": {case: row[::-1] for case, row in each["reactions"].items()},
             "equivalent": each["equivalent"][::-1],
