@@ -67,7 +67,8 @@ def audit_origins(record: Record, given: Given | None, lines: Sequence[WorkedLin
             continue
         pool, sure = _pool(origin, given)
         found = _held(line, pool)
-        if found.verdict is Verdict.AGREES or sure:
+        # A plain number is a factor that a clause gives for what the origin holds, not a value of it.
+        if found.verdict is Verdict.AGREES or (sure and line.line.unit != "1"):
             findings.append(found)
         else:
             outside.append(line.line)
@@ -172,7 +173,8 @@ def _beam(rest: str, given: Given) -> tuple[list[float], bool]:
 
 def _handed_on(record: Record, given: Given, lines: Sequence[WorkedLine]) -> Iterator[Finding]:
     """Figures of the analysis that stand inside formulas: those that results and loads do not have."""
-    known = sorted({abs(each) for each in (*numbers(record.results), *numbers(given.data))})
+    held = {key: each for key, each in given.data.items() if key != "plan"}
+    known = sorted({abs(each) for each in (*numbers(record.results), *numbers(held))})
     loose = []
     for worked in lines:
         if worked.line.kind == "take":
