@@ -76,6 +76,12 @@ def test_strips_give_the_same_strength(case):
     assert c == pytest.approx(state.c / INCH, rel=1e-3)
 
 
+@pytest.mark.parametrize(("share", "passes"), [(0.9999, True), (1.0001, False)])
+def test_strength_is_phi_times_nominal(share, passes):
+    _, lines, _ = written(CASES[0], share=share)
+    assert dict(lines.checks)["bending, sagging"].passes is passes
+
+
 def test_the_strips_would_see_a_wrong_block():
     case = CASES[0]
     *_, state = settled(case)
