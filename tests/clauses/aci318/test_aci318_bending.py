@@ -2,8 +2,8 @@
 
 import numpy as np
 import pytest
-from fibres import strength
 from aci_samples import ES, KIP_FT, KSI, PSI, begin, group
+from fibres import strength
 
 from calcpack.clauses.aci318.flexure import Demand, state_bending
 from calcpack.clauses.aci318.strength import INCH, Block, Steel, bending

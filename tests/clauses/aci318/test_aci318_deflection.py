@@ -4,8 +4,8 @@ import math
 
 import numpy as np
 import pytest
-from fibres import properties
 from aci_samples import KIP_FT, begin
+from fibres import properties
 
 from calcpack.clauses.aci318.deflection import (
     DURATIONS,
