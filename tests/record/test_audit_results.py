@@ -4,12 +4,14 @@ from __future__ import annotations
 
 import json
 import math
+import time
 
 import numpy as np
 import pytest
 
 from calcpack.framing import frame
 from calcpack.job import read_job
+from calcpack.job.errors import CalcpackError
 from calcpack.notebook.parameters import beam_input, to_text
 from calcpack.notebook.study import Study, results_of
 from calcpack.notebook.templates import find_template
@@ -318,3 +320,36 @@ def test_what_is_wrong_is_named(tmp_path, path, value, named):
     findings, _ = audit_results(changed(record, path, value), given, ())
     places = [each.place for each in findings if each.verdict is not Verdict.AGREES]
     assert any(place.startswith(named) for place in places) if named else places == []
+
+
+def crowded(spans, loads, case="dead"):
+    """A record with as many spans and loads as somebody may write down."""
+    rows = [
+        {"from": 0.001 * number, "to": 0.001 * number + 5.0, "start": 1.0, "end": 2.0, "source": "x"}
+        for number in range(loads)
+    ]
+    results = {
+        "spans": [10.0 / spans] * spans,
+        "supports": [10.0 / spans * number for number in range(spans + 1)],
+        "fixed": [False, False],
+        "loads": {case: rows},
+    }
+    record = {
+        "format": 1, "job": {}, "mark": "B1", "revision": "A",
+        "template": {"name": "", "version": "", "sha256": ""}, "lines": [], "results": results,
+    }  # fmt: skip
+    return read_record(canonical(record), "B1.json")
+
+
+@pytest.mark.parametrize(
+    ("spans", "loads", "case"), [(300, 10, "dead"), (1, 3000, "dead"), (2, 10, "wind"), (2, 10, "x" * 99)]
+)
+def test_results_that_no_beam_has_are_refused(spans, loads, case):
+    with pytest.raises(CalcpackError, match=r"B1\.json: results: "):
+        audit_results(crowded(spans, loads, case), None, ())
+
+
+def test_results_as_crowded_as_may_be_are_done_in_two_seconds():
+    began = time.process_time()
+    audit_results(crowded(55, 950), None, ())
+    assert time.process_time() - began < 2.0

@@ -16,7 +16,10 @@ from numpy.typing import NDArray
 from scipy import sparse
 from scipy.sparse.linalg import splu
 
+from calcpack.job.errors import CalcpackError
+
 Floats = NDArray[np.float64]
+MOST = 200_000  # sets times places: more is no beam
 SAME = 1e-9  # of the length: places closer together are one
 
 
@@ -119,6 +122,8 @@ def solve(
     ------
     ValueError
         The beam is a mechanism, or a load lies off it.
+    CalcpackError
+        More loads than any beam has.
 
     Examples
     --------
@@ -134,6 +139,8 @@ def solve(
             places += (load.start, load.end)
     nodes = _merged(places, SAME * length)
     count = len(nodes)
+    if len(sets) * len(nodes) > MOST:
+        raise CalcpackError("more loads than an audit takes on")
     at = {place: _nearest(nodes, place) for place in dict.fromkeys(places)}
     h = np.diff(nodes)
     forces, intensity = _loading(nodes, at, sets)

@@ -10,10 +10,9 @@ from typing import Any
 import numpy as np
 
 from calcpack.record.auditing.beam import SAME, Floats, Load, part_of
-from calcpack.record.auditing.given import Given
+from calcpack.record.auditing.given import CASES, Given
 from calcpack.record.auditing.spans import span_equivalents
 
-CASES = ("dead", "live", "roof_live", "snow")
 MOVABLE = ("live", "roof_live")
 FIELD = {"fixed-end moment": "fixed_end_moment"}
 _FOOT = 0.3048

@@ -17,7 +17,8 @@ BLOCKS = "application/vnd.calcpack.blocks+json"
 RECORD = "application/vnd.calcpack.record+json"
 # The cell is a name and one raw string without its own quotes inside: what stands between them is the text.
 _CELL = re.compile(r"\s*[A-Z]+\s*=\s*r(?P<quote>'''|\"\"\")(?P<text>.*)(?P=quote)\s*", re.S)
-MOST_LOADS = 2_000
+MOST_LOADS = 1_000
+CASES = ("dead", "live", "roof_live", "snow")
 
 
 @dataclass(frozen=True, slots=True)
@@ -78,7 +79,7 @@ class Given:
             self.basis: Mapping[str, Any] = data["basis"]
             self.combinations: Sequence[Mapping[str, Any]] = data["actions"]["combinations"]
             self.tributary: Sequence[Mapping[str, Any]] = data.get("tributary", ())
-            if not self.length > 0 or not self.bearings:
+            if not self.length > 0 or not self.bearings or not set(self.loads) <= set(CASES):
                 raise ValueError
         except (KeyError, TypeError, ValueError, IndexError, AttributeError):
             raise CalcpackError(
@@ -135,6 +136,8 @@ def recorded_loads(data: object) -> dict[str, tuple[Load, ...]]:
     try:
         found = {}
         for case, rows in data.items():  # type: ignore[attr-defined]
+            if case not in CASES:
+                raise ValueError
             found[str(case)] = _loads(
                 [
                     row

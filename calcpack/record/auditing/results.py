@@ -13,13 +13,13 @@ from calcpack.record.auditing.checks import audit_checks
 from calcpack.record.auditing.demands import Demand, design_demand
 from calcpack.record.auditing.envelopes import Extreme, Worst
 from calcpack.record.auditing.findings import Finding, Verdict
-from calcpack.record.auditing.given import Given, recorded_loads
+from calcpack.record.auditing.given import MOST_LOADS, Given, recorded_loads
 from calcpack.record.auditing.lines import WorkedLine
 from calcpack.record.auditing.reading import Record
 from calcpack.record.auditing.spans import FIELDS, span_equivalents
 
 MOST_COMBINATIONS = 200
-MOST_SPANS = 100
+MOST_SPANS = 60
 _NEEDS_NOTEBOOK = "only the sheet's notebook says how live load is placed on this beam and those above"
 _NO_GEOMETRY = "neither record nor notebook says where the beam stands"
 _PLACE = 1e-7  # of the length
@@ -54,7 +54,7 @@ class Beam:
                     "spans, supports or loads are not written as such", file=record.name, key="results"
                 ) from None
         self.cases = tuple(self.loads)
-        if len(self.spans) > MOST_SPANS or sum(map(len, self.loads.values())) > 2_000:
+        if len(self.spans) > MOST_SPANS or sum(map(len, self.loads.values())) > MOST_LOADS:
             raise CalcpackError("more spans or loads than a beam has", file=record.name, key="results")
 
     @property

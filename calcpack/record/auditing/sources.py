@@ -9,9 +9,9 @@ from typing import Any
 
 from calcpack.record.auditing.beam import Load
 from calcpack.record.auditing.book import figure
-from calcpack.record.auditing.demands import CASES, MOVABLE
+from calcpack.record.auditing.demands import MOVABLE
 from calcpack.record.auditing.findings import Finding, Verdict
-from calcpack.record.auditing.given import Given
+from calcpack.record.auditing.given import CASES, Given
 from calcpack.record.auditing.lines import relative
 from calcpack.record.auditing.plane import area, nearest_areas, strip_areas
 from calcpack.record.auditing.properties import section_properties
