@@ -234,6 +234,7 @@ def many(loft, tmp_path):
     return folder.parent
 
 
+@pytest.mark.slow
 def test_two_hundred_sheets_are_audited_in_twenty_seconds(many):
     began = time.process_time()  # of one process alone, whatever else the machine does
     audit = audit_target(many, processes=1)

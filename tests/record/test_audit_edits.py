@@ -53,6 +53,7 @@ def test_untouched_sheets_are_not_blamed(opened):
         assert audited(files, opened) == []
 
 
+@pytest.mark.slow
 def test_any_single_digit_of_a_record_is_found_and_named(opened):
     chance = random.Random(20261201)
     sheets = opened[0]
