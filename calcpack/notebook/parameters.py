@@ -104,14 +104,15 @@ def beam_input(frame: Frame, mark: str, design: dict[str, Any], template: Templa
     """
     job, framed = frame.job, frame.beams[mark]
     beam = framed.beam
-    cases = tuple(case for case, loads in framed.loads.items() if loads)
+    # a beam that carries nothing at all still has a dead load, of nothing
+    cases: tuple[Case, ...] = tuple(case for case, loads in framed.loads.items() if loads) or ("dead",)
     return BeamInput(
         mark=mark,
         header=job.job,
         submission=job.submission,
         basis=job.basis,
         actions=combination_set(
-            job.basis.actions, cases or ("dead",), occupancy=job.basis.occupancy, own=job.combinations
+            job.basis.actions, cases, occupancy=job.basis.occupancy, own=job.combinations
         ),
         length=framed.length,
         bearings=framed.bearings,
@@ -123,10 +124,10 @@ def beam_input(frame: Frame, mark: str, design: dict[str, Any], template: Templa
         design_loads=beam.design_loads,
         section=beam.section,
         material=beam.material,
-        loads={case: framed.loads[case] for case in cases},
+        loads={case: framed.loads.get(case, ()) for case in cases},
         carried=framed.carried,
         placements=framed.placements,
-        reactions={case: framed.reactions[case] for case in cases},
+        reactions={case: framed.reactions.get(case, (0.0,) * len(framed.bearings)) for case in cases},
         panels=tuple(frame.panels[panel] for panel in framed.panels),
         tributary=()
         if job.basis.live_load_reduction == "none"

@@ -195,6 +195,11 @@ class Study:
         """The response to each case with every span loaded, one row a case, actual loads."""
         return analyse(self.line, [self.given.loads[case] for case in self.cases])
 
+    @property
+    def unloaded(self) -> bool:
+        """Whether nothing at all stands on the beam."""
+        return not any(self.given.loads.values())
+
     @cached_property
     def _scale(self) -> float:
         """All the load on the beam [kN], to tell a value from rounding."""

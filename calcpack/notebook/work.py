@@ -16,6 +16,10 @@ from calcpack.sheet import Expression, Line, Sheet, show, total
 
 LETTER: dict[Case, str] = {"dead": "g", "live": "q", "roof_live": "r", "snow": "s"}
 SELF_WEIGHT = "self weight"
+NOTHING = (
+    "Nothing stands on this beam: no panel drains to it, no beam comes down on it, it has no load of its own "
+    "and no section and material to weigh it by."
+)
 
 
 @dataclass(frozen=True)

@@ -185,3 +185,23 @@ def test_a_deflection_limit_that_is_not_kept(run, job, tmp_path):
     assert check["ratio"] > 1
     assert status == 1
     assert "B1" in err
+
+
+def test_a_beam_that_carries_nothing_has_its_sheet(run, job, tmp_path):
+    bare = """
+[[beam]]
+mark = "B2"
+line = [["0 m", "8 m"], ["4 m", "8 m"]]
+[[column]]
+mark = "C1"
+at = ["0 m", "8 m"]
+[[column]]
+mark = "C2"
+at = ["4 m", "8 m"]
+"""
+    job.write_text(SMALL + bare, encoding="utf-8")
+    status, _, err = run("build", job, "--out", tmp_path / "out", "--only", "B2", "--format", "html")
+    assert (status, err) == (0, "")
+    assert "Nothing stands on this beam" in (tmp_path / "out" / "sheets" / "B2.html").read_text(
+        encoding="utf-8"
+    )

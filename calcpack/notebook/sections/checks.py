@@ -7,7 +7,7 @@ from typing import Any
 
 from calcpack.equivalent import loads_on, responses
 from calcpack.notebook.study import CASE_WORDS
-from calcpack.notebook.work import Work, summed
+from calcpack.notebook.work import NOTHING, Work, summed
 from calcpack.sheet import Expression, Line, absolute, measured, number
 from calcpack.statics import LineLoad, PointLoad
 from calcpack.statics.stiffness import stiffness_check
@@ -16,6 +16,9 @@ from calcpack.statics.stiffness import stiffness_check
 def state_checks(work: Work) -> None:
     """Equilibrium case by case, the second method, deflection limits."""
     work.sheet.section("Checks")
+    if work.study.unloaded:
+        work.sheet.text(NOTHING)
+        return
     work.lines["agreement"] = work.sheet.take(
         "epsilon",
         1e-6,

@@ -8,7 +8,7 @@ from calcpack.figures.response import CurveData, Quantity
 from calcpack.job.model import Case
 from calcpack.notebook.sections.resultants import CLOSE, before, midspan_moment, resultant
 from calcpack.notebook.study import CASE_WORDS, SpanLoads
-from calcpack.notebook.work import LETTER, Work, summed
+from calcpack.notebook.work import LETTER, NOTHING, Work, summed
 from calcpack.sheet import Expression, Line, measured, number, total
 
 SAMPLES = 120
@@ -18,6 +18,9 @@ def state_combinations(work: Work) -> None:
     """Every combination with its extremes, the governing ones marked."""
     study, analysed = work.study, work.study.analysed
     work.sheet.section("Combinations")
+    if study.unloaded:
+        work.sheet.text(NOTHING)
+        return
     moment, shear = analysed.governing_moment, analysed.governing_shear
     supports = range(len(work.given.bearings))
     listed = supports if len(supports) <= 4 else ()
@@ -190,6 +193,9 @@ def state_effects(work: Work) -> None:
     """Diagrams with the envelope and the governing combination, and the reactions."""
     study, given, analysed = work.study, work.given, work.study.analysed
     work.sheet.section("Reactions, shear, moment and deflection")
+    if study.unloaded:
+        work.sheet.text(NOTHING)
+        return
     governing = analysed.governing_moment
     figure = response_figure(
         given.length,

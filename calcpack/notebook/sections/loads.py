@@ -7,7 +7,7 @@ from calcpack.job.model import Case
 from calcpack.notebook.sections.reduction import state_reduction
 from calcpack.notebook.sections.resultants import CLOSE, weight
 from calcpack.notebook.study import CASE_WORDS
-from calcpack.notebook.work import LETTER, Work, summed
+from calcpack.notebook.work import LETTER, NOTHING, Work, summed
 from calcpack.sheet import Expression, Line, measured
 
 
@@ -15,6 +15,9 @@ def state_loads(work: Work) -> None:
     """Load diagram of each case, the sources' resultants, the totals; a live-load reduction behind them."""
     study, given = work.study, work.given
     work.sheet.section("Loads on the beam")
+    if study.unloaded:
+        work.sheet.text(NOTHING)
+        return
     uniform: dict[str, list[tuple[float, float, float]]] = {
         case: [
             (span.start, span.end, work.lines["equivalent", case, span.number].value)

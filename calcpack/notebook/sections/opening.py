@@ -33,7 +33,8 @@ def state_place(work: Work) -> None:
         sheet.figure(figure, "Framing plan; what drains to this beam is hatched.")
         column()
         sheet.facts(_particulars(work))
-        _schedule(work)
+        if not work.study.unloaded:
+            _schedule(work)
 
 
 def _particulars(work: Work) -> list[tuple[str, str]]:

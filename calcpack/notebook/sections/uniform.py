@@ -12,7 +12,7 @@ from calcpack.job.model import Case, EquivalentKind
 from calcpack.notebook.sections.opening import CARRIED_FORWARD
 from calcpack.notebook.sections.resultants import before, resultant, resultant_term
 from calcpack.notebook.study import CASE_WORDS, SpanLoads
-from calcpack.notebook.work import LETTER, Alike, Work, summed
+from calcpack.notebook.work import LETTER, NOTHING, Alike, Work, summed
 from calcpack.sheet import (
     Expression,
     Line,
@@ -67,6 +67,9 @@ def state_equivalents(work: Work) -> None:
     """Derivation for the shapes that occur, the numbers of each span, and the comparison."""
     spans = [span for span in work.study.spans if span is not None]
     work.sheet.section("Equivalent uniform loads")
+    if work.study.unloaded:
+        work.sheet.text(NOTHING)
+        return
     if not spans:
         work.sheet.text("The beam has no span between two supports, so there is nothing to make uniform.")
         return
