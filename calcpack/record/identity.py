@@ -54,6 +54,15 @@ def read_passphrase(descriptor: int | None) -> str | None:
         raise CalcpackError(f"file descriptor {descriptor} cannot be read: {error}") from None
 
 
+def token_errors() -> tuple[type[Exception], ...]:
+    """What a token may raise while it signs."""
+    try:
+        from pkcs11.exceptions import PKCS11Error
+    except ImportError:
+        return ()
+    return (PKCS11Error,)
+
+
 def load_identity(source: str, passphrase: Passphrase) -> Identity:
     """The identity of a PKCS#12 file or of a token.
 
@@ -113,6 +122,8 @@ def _token(uri: str, passphrase: Passphrase) -> Identity:
         session = open_pkcs11_session(module, token_criteria=criteria, user_pin=pin or None)
         signer = PKCS11Signer(session, cert_label=label)
         certificate = signer.signing_cert
+        # Tokens that sign a hash with an elliptic curve are more than those that hash themselves.
+        signer.use_raw_mechanism = certificate is not None and certificate.public_key.algorithm == "ec"
     except Exception as error:  # what a vendor's module may raise is not to be foreseen
         said = str(error) or type(error).__name__
         raise CalcpackError(f"the token '{token}' cannot be used: {said}") from None

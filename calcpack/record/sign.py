@@ -28,7 +28,7 @@ from calcpack.job.model import Header, Submission
 from calcpack.record.appearance import appearance
 from calcpack.record.declaration import Declaring
 from calcpack.record.folder import as_built, output_folder
-from calcpack.record.identity import Identity
+from calcpack.record.identity import Identity, token_errors
 from calcpack.record.locking import locked, sync_folder
 from calcpack.record.numbers import audited
 from calcpack.record.pdf_update import Update, built_length, open_pdf
@@ -46,6 +46,7 @@ from calcpack.record.signatures import (
 from calcpack.record.statement import Statement, read_statement, statement_of
 
 DIGEST = "sha256"
+_FAILURES = (SigningError, TimestampRequestError, PathError, PdfError, OSError, *token_errors())
 REASONS: dict[Role, str] = {
     "prepared": "I prepared this calculation.",
     "checked": "I checked this calculation.",
@@ -247,9 +248,6 @@ async def _pack_signed(data: bytes, statement: Statement, signing: Signing, foun
     except _FAILURES as error:
         raise _failed(error) from None
     return written.getvalue()
-
-
-_FAILURES = (SigningError, TimestampRequestError, PathError, PdfError, OSError)
 
 
 def _failed(error: Exception) -> CalcpackError:

@@ -5,6 +5,8 @@ from __future__ import annotations
 import datetime
 import functools
 import json
+import multiprocessing
+import multiprocessing.process
 import os
 import random
 import signal
@@ -14,10 +16,11 @@ from pathlib import Path
 
 from calcpack.export.pack import BuiltPack, Pack, Section, build_pack
 from calcpack.files import OutputFolder
+from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Header, Person, Submission
 from calcpack.record.fields import ready_to_sign
 from calcpack.record.identity import Identity, load_identity, new_identity
-from calcpack.record.sign import Signing
+from calcpack.record.sign import Signing, sign_file
 from calcpack.record.signatures import Trust
 from calcpack.record.statement import statement_of
 
@@ -112,6 +115,27 @@ def killed_at_random(work: Callable[[], object], longest: float, chance: random.
     time.sleep(chance.random() * longest)
     os.kill(child, signal.SIGKILL)
     return os.WIFSIGNALED(os.waitpid(child, 0)[1])
+
+
+# Signing sets type in threads, which a plain fork of a process that has used them would not survive.
+FRESH = multiprocessing.get_context("forkserver")
+FRESH.set_forkserver_preload(["signing_packs", "calcpack.record.audit"])
+
+
+def signed_by(pack: str, role: str, identity: str) -> None:
+    """Sign in a process of its own; exit status 3 where it is refused."""
+    try:
+        sign_file(Path(pack), signing(role, load_identity(identity, lambda _what: PASSPHRASE)))
+    except CalcpackError:
+        os._exit(3)
+
+
+def signer(pack: Path, role: str, name: str) -> multiprocessing.process.BaseProcess:
+    """A process that will sign."""
+    path = pack.parent.parent / f"{name}.p12"
+    if not path.exists():
+        path.write_bytes(new_identity(name, PASSPHRASE, NOW - DAY)[0])
+    return FRESH.Process(target=signed_by, args=(str(pack), role, str(path)))
 
 
 def time_of(work: Callable[[], object]) -> float:
