@@ -46,7 +46,14 @@ from calcpack.record.signatures import (
 from calcpack.record.statement import Statement, read_statement, statement_of
 
 DIGEST = "sha256"
-_FAILURES = (SigningError, TimestampRequestError, PathError, PdfError, OSError, *token_errors())
+_FAILURES: tuple[type[Exception], ...] = (
+    SigningError,
+    TimestampRequestError,
+    PathError,
+    PdfError,
+    OSError,
+    *token_errors(),
+)
 REASONS: dict[Role, str] = {
     "prepared": "I prepared this calculation.",
     "checked": "I checked this calculation.",
