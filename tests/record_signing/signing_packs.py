@@ -14,6 +14,7 @@ import time
 from collections.abc import Callable
 from pathlib import Path
 
+from calcpack.build import build_job
 from calcpack.export.pack import BuiltPack, Pack, Section, build_pack
 from calcpack.files import OutputFolder
 from calcpack.job.errors import CalcpackError
@@ -128,6 +129,11 @@ def signed_by(pack: str, role: str, identity: str) -> None:
         sign_file(Path(pack), signing(role, load_identity(identity, lambda _what: PASSPHRASE)))
     except CalcpackError:
         os._exit(3)
+
+
+def build_pages(job: str, out: str) -> None:
+    """Build the pages for the screen of a job."""
+    build_job(Path(job), Path(out), formats=frozenset({"html", "notebook"}))
 
 
 def signer(pack: Path, role: str, name: str) -> multiprocessing.process.BaseProcess:

@@ -133,7 +133,9 @@ def test_a_certificate_that_is_not_valid_yet(pack):
 def test_a_certificate_made_for_something_else(pack, tmp_path, usage, purposes, words):
     other = identity(certificate("Web Server", usage=usage, purposes=purposes), tmp_path)
     said = refusal(sign_file, pack, packs.signing("prepared", other))
-    assert said.startswith("the certificate of Web Server is not made for signing documents: it was issued for ")
+    assert said.startswith(
+        "the certificate of Web Server is not made for signing documents: it was issued for "
+    )
     assert set(words.split(", ")) == set(said.rpartition("issued for ")[2].split(", "))
 
 

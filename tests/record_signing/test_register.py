@@ -89,7 +89,10 @@ def test_a_further_signature_may_follow(ready, who):
     out = ready("out")
     issue(out, "for permit", packs.NOW)
     sign_file(out / "pack.pdf", packs.signing("approved", packs.person("Ana Lind")))
-    assert [each.role for each in issue(out, "for permit", packs.NOW).entry.signatures] == ["prepared", "approved"]
+    assert [each.role for each in issue(out, "for permit", packs.NOW).entry.signatures] == [
+        "prepared",
+        "approved",
+    ]
 
 
 def test_a_revision_is_not_used_again(ready):
@@ -140,7 +143,9 @@ def test_what_is_not_issued(ready, tmp_path, who):
 
 
 def test_numbers_that_do_not_pass_are_not_issued(ready, monkeypatch):
-    monkeypatch.setattr(issue_module, "audited", lambda _path: NumbersResult(False, "the audit does not pass"))
+    monkeypatch.setattr(
+        issue_module, "audited", lambda _path: NumbersResult(False, "the audit does not pass")
+    )
     assert "is not issued: the audit does not pass" in refusal(issue, ready("out"), "for permit", packs.NOW)
 
 
@@ -233,7 +238,10 @@ def test_of_two_that_issue_one_revision_one_is_told_why(ready, tmp_path):
 
 def trusted(pack, *names):
     """Whom the signers of a pack are to be known by."""
-    people = [load_identity(str(pack.parent.parent / f"{name}.p12"), lambda _what: packs.PASSPHRASE) for name in names]
+    people = [
+        load_identity(str(pack.parent.parent / f"{name}.p12"), lambda _what: packs.PASSPHRASE)
+        for name in names
+    ]
     return packs.trust(*people)
 
 

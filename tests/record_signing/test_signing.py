@@ -141,8 +141,14 @@ def test_the_appearance_says_who_what_when_and_why(tmp_path):
     sign_file(pack, packs.signing("prepared", who, reason="Worked out from drawing 14."))
     widget = pypdf.PdfReader(pack).trailer["/Root"]["/AcroForm"]["/Fields"][0].get_object()
     if shutil.which("pdftotext"):
-        shown = subprocess.run(["pdftotext", "-l", "1", pack, "-"], capture_output=True, text=True, check=True)
-        for words in ("Ravn, Maria · PE 77", "prepared · 1 Dec 2026 09:05 UTC", "Worked out from drawing 14."):
+        shown = subprocess.run(
+            ["pdftotext", "-l", "1", pack, "-"], capture_output=True, text=True, check=True
+        )
+        for words in (
+            "Ravn, Maria · PE 77",
+            "prepared · 1 Dec 2026 09:05 UTC",
+            "Worked out from drawing 14.",
+        ):
             assert words in shown.stdout
     assert widget["/V"]["/Reason"] == "Worked out from drawing 14."
 
@@ -152,7 +158,12 @@ def test_what_was_built_is_still_there_unchanged(tmp_path, people):
     before = pack.read_bytes()
     sign_file(pack, packs.signing("prepared", people[0]))
     assert pack.read_bytes().startswith(before)
-    assert sorted(path.name for path in pack.parent.iterdir()) == ["job.json", "manifest.sha256", "pack.pdf", "sheets"]
+    assert sorted(path.name for path in pack.parent.iterdir()) == [
+        "job.json",
+        "manifest.sha256",
+        "pack.pdf",
+        "sheets",
+    ]
 
 
 def test_the_places_to_sign_are_the_same_bytes_for_the_same_pack(tmp_path):
@@ -193,7 +204,9 @@ def test_the_letter_case_of_a_digit_is_caught(signed, people, tmp_path):
 def test_any_changed_value_of_a_field_is_caught(signed, people, tmp_path, key, role):
     update = Update(signed.read_bytes())
     fields = update.root["/AcroForm"]["/Fields"]
-    field = next(each.get_object() for each in map(fields.raw_get, range(3)) if each.get_object()["/T"] == role)
+    field = next(
+        each.get_object() for each in map(fields.raw_get, range(3)) if each.get_object()["/T"] == role
+    )
     values = {
         "TU": generic.TextStringObject("Signature: somebody"),
         "T": generic.TextStringObject("other"),
@@ -234,9 +247,13 @@ def test_a_pack_without_a_signature_does_not_pass(tmp_path, people):
 
 def test_first_prepared_then_checked_then_approved(tmp_path, people):
     pack = packs.out_folder(tmp_path / "out") / "pack.pdf"
-    assert "nobody has signed this as prepared yet" in refusal(sign_file, pack, packs.signing("checked", people[1]))
+    assert "nobody has signed this as prepared yet" in refusal(
+        sign_file, pack, packs.signing("checked", people[1])
+    )
     sign_file(pack, packs.signing("prepared", people[0]))
-    assert "nobody has signed this as checked yet" in refusal(sign_file, pack, packs.signing("approved", people[2]))
+    assert "nobody has signed this as checked yet" in refusal(
+        sign_file, pack, packs.signing("approved", people[2])
+    )
     assert "Maria Ravn has signed this as prepared already" in refusal(
         sign_file, pack, packs.signing("prepared", people[1])
     )
@@ -253,10 +270,14 @@ def test_nobody_checks_his_own_work_unless_agreed(tmp_path, people):
 
 
 def test_a_third_party_is_of_another_organisation(tmp_path):
-    one, same, other = (packs.person(*each) for each in (("A B", "Slip & Co"), ("C D", "Slip & Co"), ("E F", "Quay")))
+    one, same, other = (
+        packs.person(*each) for each in (("A B", "Slip & Co"), ("C D", "Slip & Co"), ("E F", "Quay"))
+    )
     pack = packs.out_folder(tmp_path / "out", level="third party") / "pack.pdf"
     sign_file(pack, packs.signing("prepared", one))
-    assert "preparer and checker are both of Slip & Co" in refusal(sign_file, pack, packs.signing("checked", same))
+    assert "preparer and checker are both of Slip & Co" in refusal(
+        sign_file, pack, packs.signing("checked", same)
+    )
     sign_file(pack, packs.signing("checked", other))
 
 
@@ -307,7 +328,9 @@ def test_a_file_that_is_not_what_was_built_is_not_signed(tmp_path, people):
     lonely = tmp_path / "lonely" / "deep" / "deeper" / "pack.pdf"
     lonely.parent.mkdir(parents=True)
     shutil.copy(packs.out_folder(tmp_path / "other", level="self") / "pack.pdf", lonely)
-    assert "no manifest.sha256 stands beside" in refusal(sign_file, lonely, packs.signing("prepared", people[0]))
+    assert "no manifest.sha256 stands beside" in refusal(
+        sign_file, lonely, packs.signing("prepared", people[0])
+    )
 
 
 def test_a_signed_pack_proves_itself_where_it_is_sent_on_alone(tmp_path, people):
@@ -341,7 +364,9 @@ def test_neither_a_sheet_nor_another_file_is_signed(tmp_path, people):
 
 def test_a_sheet_for_the_screen_gets_a_signature_beside_it(tmp_path, people):
     page = packs.out_folder(tmp_path / "out") / "sheets" / "B1.html"
-    assert "nobody has signed this as prepared" in refusal(sign_file, page, packs.signing("checked", people[1]))
+    assert "nobody has signed this as prepared" in refusal(
+        sign_file, page, packs.signing("checked", people[1])
+    )
     sign_file(page, packs.signing("prepared", people[0]))
     sign_file(page, packs.signing("checked", people[1], reason="Seen line by line."))
     report = verify_file(page, packs.trust(*people))
@@ -367,7 +392,9 @@ def test_a_sheet_for_the_screen_gets_a_signature_beside_it(tmp_path, people):
         assert not verify_file(page, packs.trust(*people)).passes
     container.unlink()
     signature_file(page, "prepared").rename(signature_file(page, "approved"))
-    assert "it was signed as prepared, not as approved" in " ".join(says(verify_file(page, packs.trust(*people))))
+    assert "it was signed as prepared, not as approved" in " ".join(
+        says(verify_file(page, packs.trust(*people)))
+    )
 
 
 def test_the_hash_of_a_page_is_what_the_report_gives(tmp_path, people):
