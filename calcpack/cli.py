@@ -161,12 +161,11 @@ def _passphrase(descriptor: int | None, *, confirm: bool = False) -> Callable[[s
         given = read_passphrase(descriptor)
         if given is not None:
             return given
-        try:
-            return str(typer.prompt(says, hide_input=True, confirmation_prompt=confirm, err=True))
-        except typer.Abort:
+        if not sys.stdin.isatty():
             raise CalcpackError(
                 "no passphrase was given", remedy="type it, or use --passphrase-fd or CALCPACK_PASSPHRASE"
-            ) from None
+            )
+        return str(typer.prompt(says, hide_input=True, confirmation_prompt=confirm, err=True))
 
     return ask
 

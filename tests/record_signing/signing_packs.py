@@ -28,6 +28,43 @@ from calcpack.record.statement import statement_of
 NOW = datetime.datetime(2026, 12, 1, 9, 5, tzinfo=datetime.UTC)
 DAY = datetime.timedelta(days=1)
 PASSPHRASE = "correct horse"
+KIOSK = """\
+format = 1
+[job]
+number = "7"
+title = "Kiosk roof"
+date = 2026-12-01
+prepared = { name = "M. Ravn", licence = "SE 1184" }
+checked = { name = "I. Okoro", licence = "SE 0972" }
+[grid]
+x = { A = "0 m", B = "4 m" }
+y = { 1 = "0 m", 2 = "4 m" }
+[sections.s]
+shape = "rectangle"
+width = "200 mm"
+depth = "400 mm"
+[materials.m]
+grade = "C25/30"
+[[panel]]
+mark = "P1"
+corners = ["A1", "B2"]
+thickness = "150 mm"
+live = "2 kPa"
+[[beam]]
+mark = "B1"
+line = ["A1", "B1"]
+section = "s"
+material = "m"
+[[wall]]
+mark = "W1"
+line = ["A1", "A2"]
+[[wall]]
+mark = "W2"
+line = ["B1", "B2"]
+[[wall]]
+mark = "W3"
+line = ["A2", "B2"]
+"""
 
 
 @functools.lru_cache(maxsize=32)

@@ -1,4 +1,4 @@
-"""People's certificates: each fault in a sentence of its own; time stamps; tokens; the identity for trying out."""
+"""Certificates: each fault in a sentence of its own; time stamps; tokens; the identity for trying out."""
 
 from __future__ import annotations
 
@@ -302,8 +302,8 @@ def test_a_token(pack, tmp_path, monkeypatch):
     )
     (tmp_path / "key.pem").write_bytes(key)
     subprocess.run(
-        ["softhsm2-util", "--import", tmp_path / "key.pem", "--token", "card", "--label", "sign", "--id", "01",
-         "--pin", "1234"],
+        ["softhsm2-util", "--import", tmp_path / "key.pem", "--token", "card", "--label", "sign",
+         "--id", "01", "--pin", "1234"],
         check=True, capture_output=True, env=dict(os.environ),
     )  # fmt: skip
     der = made[0].public_bytes(serialization.Encoding.DER)

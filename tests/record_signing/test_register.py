@@ -114,7 +114,8 @@ def test_no_way_back(ready, who):
 @pytest.mark.parametrize(
     ("revision", "issued", "fine"),
     [
-        ("B", ["A"], True), ("A", ["B"], False), ("AA", ["Z"], True), ("10", ["9"], True), ("9", ["10"], False),
+        ("B", ["A"], True), ("A", ["B"], False), ("AA", ["Z"], True), ("10", ["9"], True),
+        ("9", ["10"], False),
         ("P02", ["P1"], True), ("C1", ["P3"], True), ("P4", ["P3", "C1"], False), ("b", ["A"], True),
         ("second", ["first issue!"], True), ("B", ["A", "C"], False), ("A", ["3"], True),
     ],
@@ -191,7 +192,8 @@ def test_the_list_is_read_by_people(ready):
     done = issue(ready("out", more="<b>", fails=False), "for <permit>", packs.NOW)
     (row,) = rows(done.register.entries())
     assert row[:7] == (
-        "1", "2026-12-01 09:05:00 UTC", "7", "Kiosk roof", "A", "for <permit>", "prepared Maria Ravn (test identity)",
+        "1", "2026-12-01 09:05:00 UTC", "7", "Kiosk roof", "A", "for <permit>",
+        "prepared Maria Ravn (test identity)",
     )  # fmt: skip
     shown = page(done.register.entries())
     assert "for &lt;permit&gt;" in shown

@@ -1,4 +1,4 @@
-"""Signatures in a pack: valid for others too, in order, by the right people, and whatever changes is caught."""
+"""Signatures: valid for others too, in order, by the right people; whatever changes is caught."""
 
 from __future__ import annotations
 
