@@ -19,8 +19,10 @@ from calcpack.export.pack import BuiltPack, Pack, Section, build_pack
 from calcpack.files import OutputFolder
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Header, Person, Submission
+from calcpack.record import sign as sign_module
 from calcpack.record.fields import ready_to_sign
 from calcpack.record.identity import Identity, load_identity, new_identity
+from calcpack.record.numbers import NumbersResult
 from calcpack.record.sign import Signing, sign_file
 from calcpack.record.signatures import Trust
 from calcpack.record.statement import statement_of
@@ -157,11 +159,12 @@ def killed_at_random(work: Callable[[], object], longest: float, chance: random.
 
 # Signing sets type in threads, which a plain fork of a process that has used them would not survive.
 FRESH = multiprocessing.get_context("forkserver")
-FRESH.set_forkserver_preload(["signing_packs", "calcpack.record.audit"])
+FRESH.set_forkserver_preload(["signing_packs"])
 
 
 def signed_by(pack: str, role: str, identity: str) -> None:
-    """Sign in a process of its own; exit status 3 where it is refused."""
+    """Sign in a process of its own, without the audit; exit status 3 where it is refused."""
+    sign_module.audited = lambda _path: NumbersResult(True, "the audit passes")
     try:
         sign_file(Path(pack), signing(role, load_identity(identity, lambda _what: PASSPHRASE)))
     except CalcpackError:
