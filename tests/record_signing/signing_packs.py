@@ -159,7 +159,7 @@ def killed_at_random(work: Callable[[], object], longest: float, chance: random.
 
 # Signing sets type in threads, which a plain fork of a process that has used them would not survive.
 FRESH = multiprocessing.get_context("forkserver")
-FRESH.set_forkserver_preload(["signing_packs"])
+FRESH.set_forkserver_preload(["calcpack.record.sign", "calcpack.build"])
 
 
 def signed_by(pack: str, role: str, identity: str) -> None:

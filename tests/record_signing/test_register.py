@@ -290,7 +290,7 @@ def test_killed_while_signing(tmp_path):
     whole()
     pack.write_bytes(built)
     longest, killed = packs.time_of(whole), 0
-    for _ in range(8):
+    for _ in range(10):
         pack.write_bytes(built)
         each = packs.signer(pack, "prepared", "Maria Ravn")
         each.start()
