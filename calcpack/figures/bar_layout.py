@@ -23,7 +23,7 @@ from calcpack.figures.drawing import (
 )
 from calcpack.figures.figure import Figure
 from calcpack.figures.lettering import shorten, text_width
-from calcpack.figures.parts import DIMENSION, length, line_height
+from calcpack.figures.parts import free_row, length, line_height, ticked_line
 from calcpack.sheet.display import System
 
 HEIGHT = 11.0  # of the drawn beam [mm]; its depth is not to scale
@@ -115,10 +115,8 @@ def bar_layout(
     low = _drawn_out(sheet, axis, levels["bottom"], low - 1.6, -1.0, system)
     foot = beam_row(axis, system)
     top = foot.extent()[3]
-    guides = {0.0, length_m, *(bearing[0] for bearing in bearings)}
     foot_y = low - 2.4 - top
-    for at in guides:
-        sheet.line([(axis.x(at), above), (axis.x(at), foot_y)], Stroke(HAIR, GREY, (1.2, 1.6)), HATCHING)
+    axis.guides(sheet, above, foot_y)
     sheet.paste(foot, 0.0, foot_y)
     return sheet.finish(width_mm, _spoken(bars, zones, mark, system))
 
@@ -211,12 +209,9 @@ def _zones(sheet: Drawing, axis: BeamAxis, zones: Sequence[Zone], top: float, sy
     if not zones:
         return top + 1.0
     height = line_height(SMALL)
-    rows: list[float] = []
+    rows: list[float] = []  # where the last label of each row under the lengths ends
     y = top - height - 0.6
-    sheet.line([(axis.x(zones[0].start) - 0.8, y), (axis.x(zones[-1].end) + 0.8, y)], DIMENSION)
-    for at in sorted({end for zone in zones for end in (zone.start, zone.end)}):
-        x = axis.x(at)
-        sheet.line([(x - 0.6, y - 0.6), (x + 0.6, y + 0.6)], Stroke(THIN))
+    ticked_line(sheet, sorted({axis.x(end) for zone in zones for end in (zone.start, zone.end)}), (0.0, y))
     for zone in zones:
         left, right = axis.x(zone.start), axis.x(zone.end)
         size = length(zone.end - zone.start, system)
@@ -225,19 +220,16 @@ def _zones(sheet: Drawing, axis: BeamAxis, zones: Sequence[Zone], top: float, sy
         if max(text_width(text, SMALL), text_width(size, SMALL)) + 1.0 <= right - left:
             sheet.text(middle, y + 0.5 + height / 2, text, SMALL, level="box", mask=True)
             sheet.text(middle, y - 0.6 - height / 2, size, SMALL, level="box", tone=GREY, mask=True)
-            rows[:1] = [max(rows[0] if rows else 0.0, right)]
             continue
         # Too narrow: both hang under the chain, led to their zone.
         both = f"{text}, {size}"
         half = text_width(both, SMALL) / 2
         place = min(max(middle, 0.4 + half), axis.width - 0.4 - half)
-        row = next((n for n, last in enumerate(rows) if n and last + 1.6 <= place - half), max(len(rows), 1))
-        rows += [0.0] * (row + 1 - len(rows))
-        rows[row] = place + half
+        row = free_row(rows, place - half, place + half, 1.6) + 1
         foot = y - 0.6 - height * (row + 0.5)
         sheet.line([(middle, y), (place, foot + height / 2)], Stroke(HAIR, GREY), HATCHING)
         sheet.text(place, foot, both, SMALL, level="box", mask=True)
-    return y - 0.8 - height * len(rows)
+    return y - 0.8 - height * (1 + len(rows))
 
 
 def _spoken(bars: Sequence[Bars], zones: Sequence[Zone], mark: str, system: System) -> str:

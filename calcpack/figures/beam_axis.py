@@ -61,10 +61,24 @@ class BeamAxis:
         """A distance from the beam's start [m] on paper [mm]."""
         return SIDE + at * self.scale
 
+    @property
+    def stops(self) -> list[float]:
+        """The ends and what stands under the beam, in order [m]."""
+        return sorted({0.0, self.length, *(bearing[0] for bearing in self.bearings)})
+
+    @property
+    def spans(self) -> list[tuple[float, float]]:
+        """From one stop to the next, overhangs included [m]."""
+        return list(itertools.pairwise(self.stops))
+
     def at_bearing(self, at: float) -> bool:
         """Whether a place is over a bearing or at an end, where it needs no saying."""
-        places = [0.0, self.length, *(bearing[0] for bearing in self.bearings)]
-        return any(abs(at - place) < 1e-6 * max(self.length, 1.0) for place in places)
+        return any(abs(at - place) < 1e-6 * max(self.length, 1.0) for place in self.stops)
+
+    def guides(self, drawing: Drawing, top: float, foot: float) -> None:
+        """Faint upright lines through the ends and what stands under the beam."""
+        for at in self.stops:
+            drawing.line([(self.x(at), top), (self.x(at), foot)], GUIDE, HATCHING)
 
     def bounds(self) -> tuple[float, float, float, float]:
         """Between what labels keep: the paper's sides."""
@@ -95,10 +109,9 @@ def beam_row(axis: BeamAxis, system: System, notes: Sequence[Sequence[str]] = ()
         blocks.append(lines + [(text, SMALL) for text in (notes[number] if number < len(notes) else ())])
     if any(blocks):
         low = _under(drawing, axis, low, blocks)
-    places = sorted({0.0, axis.length, *(bearing[0] for bearing in axis.bearings)})
     line = low - 4.0
     span_dimensions(
-        drawing, places, axis.scale, (axis.x(0.0), line), system, (0.5 - SIDE, axis.width - SIDE - 0.5)
+        drawing, axis.stops, axis.scale, (axis.x(0.0), line), system, (0.5 - SIDE, axis.width - SIDE - 0.5)
     )
     return drawing
 
@@ -150,7 +163,6 @@ def stacked(
         box = sheet.text(0.5, y, foot_title, SMALL, anchor="left", bold=True, level="under")
         y = box.bounds()[1] - 0.6 - foot.extent()[3]
     if strips:
-        for at in {0.0, axis.length, *(bearing[0] for bearing in axis.bearings)}:
-            sheet.line([(axis.x(at), -line_height(SMALL)), (axis.x(at), y)], GUIDE, HATCHING)
+        axis.guides(sheet, -line_height(SMALL), y)
     sheet.paste(foot, 0.0, y)
     return sheet

@@ -5,19 +5,18 @@ from __future__ import annotations
 import itertools
 import math
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
 from typing import Any, Literal, NamedTuple
 
 import numpy as np
 
 from calcpack.figures.beam_axis import BeamAxis, Bearing, beam_row, stacked
-from calcpack.figures.callout import call_out
-from calcpack.figures.drawing import HAIR, HEAVY, INK, LINES, SMALL, WASH, Drawing, Stroke
+from calcpack.figures.diagram import Diagram, between
+from calcpack.figures.drawing import HAIR, HEAVY, INK, LINES, SMALL, WASH, Stroke
 from calcpack.figures.figure import Figure
 from calcpack.figures.labels import Box, Placer
 from calcpack.figures.lettering import text_width
 from calcpack.figures.parts import arrow, line_height
-from calcpack.figures.shapes import Array, simplified
+from calcpack.figures.shapes import Array
 from calcpack.sheet.display import System, show, shown_number
 
 Force = Literal["moment", "shear"]
@@ -203,7 +202,7 @@ def _worst(
                 low, high = max(stretch.start, start), min(stretch.end, end)
                 if high < low:
                     continue
-                x, y = _piece(xs, ys, low, high, length)
+                x, y = between(xs, ys, low, high)
                 first, last = _ends(stretch, sign)
                 held = first + (last - first) * (x - stretch.start) / (stretch.end - stretch.start)
                 asked = np.maximum(y * sign, 0.0)
@@ -216,30 +215,13 @@ def _worst(
             yield best
 
 
-def _piece(xs: Array, ys: Array, low: float, high: float, length: float) -> tuple[Array, Array]:
-    """A curve's points between two places, these included, on the inner side of a jump there."""
-    inside = (xs > low + 1e-9 * length) & (xs < high - 1e-9 * length)
-    # The last point at or before the start and the first at or after the end are the inner sides.
-    first = int(np.searchsorted(xs, low + 1e-9 * length, side="right")) - 1
-    last = int(np.searchsorted(xs, high - 1e-9 * length, side="left"))
-    x, y = [], []
-    for index, other, place in ((first, first + 1, low), (last, last - 1, high)):
-        index, other = (min(max(n, 0), len(xs) - 1) for n in (index, other))
-        step = xs[other] - xs[index]
-        part = 0.0 if abs(step) < 1e-12 else (place - xs[index]) / step
-        x.append(place)
-        y.append(float(ys[index] + (ys[other] - ys[index]) * min(max(part, 0.0), 1.0)))
-    return np.array([x[0], *xs[inside], x[1]]), np.array([y[0], *ys[inside], y[1]])
+class _Strip(Diagram):
+    """Demand and resistance over y = 0."""
 
-
-@dataclass
-class _Strip:
-    """The diagram over y = 0."""
-
-    axis: BeamAxis
-    quantity: Force
-    system: System
-    cut: bool = False  # a resistance is drawn smaller than it is
+    def __init__(self, axis: BeamAxis, quantity: Force, system: System) -> None:
+        super().__init__(axis, system)
+        self.quantity: Force = quantity
+        self.cut = False  # a resistance is drawn smaller than it is
 
     def draw(
         self,
@@ -250,15 +232,13 @@ class _Strip:
         places: Sequence[Governing],
     ) -> None:
         """Demand filled, capacity heavy over it, what is beyond it hatched; then the words."""
-        self.drawing, self.placer = Drawing(), Placer(self.axis.bounds())
-        ends = [0.0, float(upper[1].max()), float(lower[1].min())]
+        ends = [float(upper[1].max()), float(lower[1].min())]
         needed = max(abs(value) for value in ends)
         held = [value for stretch in stretches for sign in (1.0, -1.0) for value in _ends(stretch, sign)]
         # A resistance far beyond the demand would flatten it: it is cut, and said.
         cut = 3.0 * needed if needed > 0 else math.inf
         ends += [max(min(value, cut), -cut) for value in held]
-        upward = -1.0 if self.quantity == "moment" else 1.0
-        self.scale = upward * HEIGHT / ((max(ends) - min(ends)) or 1.0)
+        self.fit(ends, HEIGHT, -1.0 if self.quantity == "moment" else 1.0)
         self.axis.baseline(self.drawing)
         for line in (upper, lower):
             self._demand(*line)
@@ -271,9 +251,7 @@ class _Strip:
         self._key(stretches, cut)
 
     def _demand(self, x: Array, y: Array) -> None:
-        points = np.column_stack([self.axis.x(0.0) + x * self.axis.scale, y * self.scale])
-        line = simplified(points)
-        ring = np.vstack([[self.axis.x(float(x[0])), 0.0], line, [self.axis.x(float(x[-1])), 0.0]])
+        ring = self.closed(x, y)
         self.drawing.area(ring, WASH)
         self.drawing.line(ring, Stroke(0.6), LINES)
         self.placer.block_line(ring)
@@ -282,7 +260,7 @@ class _Strip:
         points: list[tuple[float, float]] = []
         for stretch in stretches:
             for at, value in zip((stretch.start, stretch.end), _ends(stretch, sign), strict=True):
-                points.append((self.axis.x(at), max(min(value, cut), -cut) * self.scale))
+                points.append(self.at(at, max(min(value, cut), -cut)))
         first, last = points[0][0], points[-1][0]
         line = [(first, 0.0), *points, (last, 0.0)]
         self.drawing.line(line, CAPACITY, HEAVY)
@@ -301,7 +279,7 @@ class _Strip:
                 low, high = max(stretch.start, start), min(stretch.end, end)
                 if high - low < 1e-9:
                     continue
-                x, y = _piece(*line, low, high, self.axis.length)
+                x, y = between(*line, low, high)
                 fine = np.unique(np.concatenate([x, np.linspace(low, high, STEPS // 4)]))
                 first, last = _ends(stretch, sign)
                 held = first + (last - first) * (fine - stretch.start) / (stretch.end - stretch.start)
@@ -316,22 +294,17 @@ class _Strip:
 
     def _place(self, place: Governing, bold: bool) -> None:
         """The ratio where it is worst, with an arrow from nothing to the demand."""
-        x, y = self.axis.x(place.at), place.demand * self.scale
+        x, y = self.at(place.at, place.demand)
         unit = UNITS[self.quantity]
         asked = shown_number(abs(place.demand), unit, self.system)
         words = [
             f"ratio {ratio_text(place.ratio)}",
             f"({asked} of {show(abs(place.capacity), unit, self.system)})",
         ]
-        if not self.axis.at_bearing(place.at):
-            words.insert(1, f"at {show(place.at, 'm', self.system)}")
         if abs(y) > 2.0:
             arrow(self.drawing, (x, 0.0), (x, y), Stroke(HAIR, INK), 1.4)
         self.placer.block_line([(x, 0.0), (x, y)])
-        # Inside the diagram there is room beside the arrow; outside, beyond the capacity.
-        call_out(
-            self.drawing, self.placer, (x, y), words, self.axis.width, out=1.0 if y > 0 else -1.0, bold=bold
-        )
+        self.value(place.at, place.demand, words, bold=bold)
 
     def _key(self, stretches: Sequence[Capacity], cut: float) -> None:
         """Each capacity's value at its line, in the stretch's middle where there is room."""

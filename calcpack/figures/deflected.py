@@ -2,25 +2,20 @@
 
 from __future__ import annotations
 
-import itertools
 from collections.abc import Sequence
 from typing import Any, NamedTuple
 
 import numpy as np
 
 from calcpack.figures.beam_axis import BeamAxis, Bearing, beam_row, stacked
-from calcpack.figures.callout import call_out
-from calcpack.figures.drawing import GREY, HAIR, HATCHING, HEAVY, INK, LINES, SMALL, WASH, Drawing, Stroke
+from calcpack.figures.diagram import FAR, Diagram, between, largest
+from calcpack.figures.drawing import GREY, HAIR, HATCHING, HEAVY, LINES, WASH, Stroke
 from calcpack.figures.figure import Figure
-from calcpack.figures.labels import Box, Placer
-from calcpack.figures.lettering import text_width
-from calcpack.figures.parts import line_height
-from calcpack.figures.shapes import Array, simplified
+from calcpack.figures.shapes import Array
 from calcpack.sheet.display import System, show
 
 HEIGHT = 15.0  # of a whole strip [mm]
 WORTH = 0.04  # of the largest deflection: a span's own is not written where it is less
-FAR = 3.0  # a limit farther off than so many times the largest deflection is said, not drawn
 
 Limit = tuple[float, float, float]  # from, to [m], limit [m]
 
@@ -102,12 +97,11 @@ def deflected_shape(
     return sheet.finish(width_mm, f"{head}.")
 
 
-class _Strip:
+class _Strip(Diagram):
     """One deflected beam over y = 0."""
 
     def __init__(self, axis: BeamAxis, system: System) -> None:
-        self.axis, self.system = axis, system
-        self.drawing, self.placer = Drawing(), Placer(axis.bounds())
+        super().__init__(axis, system)
         self.far: list[str] = []  # limits too far off to be drawn
         self.words: list[str] = []
 
@@ -117,71 +111,35 @@ class _Strip:
             raise ValueError(f"a deflected beam of {len(x)} places and {len(y)} deflections")
         if any(not limit[2] > 0 for limit in limits):
             raise ValueError("a limit of deflection is a positive amount")
-        largest = float(np.abs(y).max())
-        found = [self._span(x, y, start, end) for start, end in self._spans()]
-        worth = WORTH * largest
+        most = float(np.abs(y).max())
+        found = [largest(*between(x, y, *span)) for span in self.axis.spans]
+        worth = WORTH * most
         sided = [(start, end, _side(found, start, end, worth) * value) for start, end, value in limits]
-        near = [limit for limit in sided if abs(limit[2]) <= FAR * largest]
-        ends = [0.0, float(y.max()), float(y.min()), *(value for *_, value in near)]
-        self.scale = -HEIGHT / ((max(ends) - min(ends)) or 1.0)
-        start, end = (self.axis.x(0.0), 0.0), (self.axis.x(self.axis.length), 0.0)
-        self.drawing.line([start, end], Stroke(HAIR, GREY, (3.0, 1.6)), LINES)
-        self.placer.block_line([start, end])
-        line = simplified(np.column_stack([self.axis.x(0.0) + x * self.axis.scale, y * self.scale]))
-        self.drawing.area(np.vstack([[start], line, [end]]), WASH)
+        near = [limit for limit in sided if abs(limit[2]) <= FAR * most]
+        self.fit([float(y.max()), float(y.min()), *(value for *_, value in near)], HEIGHT, -1.0)
+        self.drawing.line(self.ends, Stroke(HAIR, GREY, (3.0, 1.6)), LINES)
+        self.placer.block_line(self.ends)
+        line = self.line(x, y)
+        self.drawing.area(self.closed(x, y), WASH)
         self.drawing.line(line, Stroke(1.3, cap="round"), HEAVY)
         self.placer.block_line(line)
-        for limit in sided:
-            self._limit(limit, drawn=limit in near)
+        for start, end, value in near:
+            self.limit(start, end, value, f"limit {self._shown(abs(value))}")
+        self.far = [self._shown(abs(limit[2])) for limit in sided if limit not in near]
         for value, at in sorted(found, key=lambda pair: -abs(pair[0])):
             if abs(value) > max(worth, 1e-9):
                 self._value(value, at, limits)
-
-    def _spans(self) -> list[tuple[float, float]]:
-        stops = sorted({0.0, self.axis.length, *(bearing[0] for bearing in self.axis.bearings)})
-        return list(itertools.pairwise(stops))
-
-    def _span(self, x: Array, y: Array, start: float, end: float) -> tuple[float, float]:
-        """The largest deflection of a span, and its place."""
-        inside = np.flatnonzero((x >= start - 1e-9) & (x <= end + 1e-9))
-        if not len(inside):
-            return 0.0, start
-        n = inside[int(np.abs(y[inside]).argmax())]
-        return float(y[n]), float(x[n])
-
-    def _limit(self, limit: Limit, drawn: bool) -> None:
-        start, end, value = limit
-        text = f"limit {self._shown(abs(value))}"
-        if not drawn:
-            self.far.append(self._shown(abs(value)))
-            return
-        y = value * self.scale
-        line = [(self.axis.x(start) + 0.4, y), (self.axis.x(end) - 0.4, y)]
-        self.drawing.line(line, Stroke(0.6, INK, (3.0, 1.4)), LINES)
-        self.placer.block_line(line)
-        width, height = text_width(text, SMALL, italic=True), line_height(SMALL)
-        middle, half = (line[0][0] + line[1][0]) / 2, (line[1][0] - line[0][0]) / 2
-        out = -1.0 if y < 0 else 1.0
-        box = self.placer.choose(
-            Box(middle + part * (half - width / 2), y + side * (height / 2 + 0.3), width, height)
-            for side in (out, -out)
-            for part in (0.9, -0.9, 0.5, -0.5, 0.0)
-        )
-        self.drawing.text(box.x, box.y, text, SMALL, level="box", italic=True, tone=GREY)
 
     def _shown(self, value: float) -> str:
         return show(round(value * 1000, 9), "mm", self.system)
 
     def _value(self, value: float, at: float, limits: Sequence[Limit]) -> None:
-        words = [self._shown(value)]
-        if not self.axis.at_bearing(at):
-            words.append(f"at {show(at, 'm', self.system)}")
-        said = " ".join(words)
+        said = self._shown(value)
+        words = said if self.axis.at_bearing(at) else f"{said} at {show(at, 'm', self.system)}"
         own = next((limit for start, end, limit in limits if start - 1e-9 <= at <= end + 1e-9), None)
-        self.words.append(f"{said} (limit {self._shown(own)})" if own is not None else said)
-        point = self.axis.x(at), value * self.scale
-        self.drawing.line([(point[0], 0.0), point], Stroke(HAIR, GREY), HATCHING)
-        call_out(self.drawing, self.placer, point, words, self.axis.width, out=-1.0 if value > 0 else 1.0)
+        self.words.append(f"{words} (limit {self._shown(own)})" if own is not None else words)
+        self.drawing.line([self.at(at, 0.0), self.at(at, value)], Stroke(HAIR, GREY), HATCHING)
+        self.value(at, value, [said])
 
 
 def _side(found: Sequence[tuple[float, float]], start: float, end: float, worth: float) -> float:

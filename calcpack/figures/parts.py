@@ -60,6 +60,41 @@ def length(value: float, system: System) -> str:
     return full if len(decimals) <= (3 if system == "SI" else 2) else show(value, "m", system)
 
 
+def free_row(rows: list[float], left: float, right: float, gap: float) -> int:
+    """The first row whose last label ends clear of a new one; the new one is entered.
+
+    Parameters
+    ----------
+    rows : list of float [mm]
+        Where the last label of each row ends; changed.
+    left, right : float [mm]
+        Of the new label; labels come from left to right.
+    gap : float [mm]
+
+    Examples
+    --------
+    >>> rows: list[float] = []
+    >>> [free_row(rows, left, left + 5.0, 1.0) for left in (0.0, 4.0, 7.0)], rows
+    ([0, 1, 0], [12.0, 9.0])
+    """
+    row = next((n for n, last in enumerate(rows) if last + gap <= left), len(rows))
+    rows[row : row + 1] = [right]
+    return row
+
+
+def ticked_line(
+    drawing: Drawing, ticks: Sequence[float], origin: Pair = (0.0, 0.0), cos: float = 1.0, sin: float = 0.0
+) -> None:
+    """A dimension line with a slash at each tick [mm], rising along its direction."""
+
+    def at(along: float, off: float) -> Pair:
+        return origin[0] + along * cos - off * sin, origin[1] + along * sin + off * cos
+
+    drawing.line([at(ticks[0] - 0.8, 0), at(ticks[-1] + 0.8, 0)], DIMENSION)
+    for tick in ticks:
+        drawing.line([at(tick - 0.6, -0.6), at(tick + 0.6, 0.6)], Stroke(THIN))
+
+
 def dimension_chain(
     drawing: Drawing,
     ticks: Sequence[float],
@@ -94,9 +129,7 @@ def dimension_chain(
     def at(along: float, off: float) -> Pair:
         return origin[0] + along * cos - off * sin, origin[1] + along * sin + off * cos
 
-    drawing.line([at(ticks[0] - 0.8, 0), at(ticks[-1] + 0.8, 0)], DIMENSION)
-    for tick in ticks:
-        drawing.line([at(tick - 0.6, -0.6), at(tick + 0.6, 0.6)], Stroke(THIN))
+    ticked_line(drawing, ticks, origin, cos, sin)
     rows: list[float] = []  # where the last label of each row below the line ends
     step = line_height(size) + 0.2
     reading = upright(angle)
@@ -107,8 +140,7 @@ def dimension_chain(
             off = 0.5 + step / 2
         else:
             middle = min(max(middle, bounds[0] + width / 2), bounds[1] - width / 2)
-            row = next((n for n, last in enumerate(rows) if last + 1.2 <= middle - width / 2), len(rows))
-            rows[row : row + 1] = [middle + width / 2]
+            row = free_row(rows, middle - width / 2, middle + width / 2, 1.2)
             off = -0.5 - step * (row + 0.5)
         drawing.text(*at(middle, off), label, size, angle=reading, italic=italic)
     return 0.8 + step * len(rows)

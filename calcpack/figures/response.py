@@ -10,24 +10,10 @@ from typing import Any, Literal
 import numpy as np
 
 from calcpack.figures.beam_axis import BeamAxis, Bearing, beam_row, stacked
-from calcpack.figures.drawing import (
-    GREY,
-    HAIR,
-    HATCHING,
-    HEAVY,
-    INK,
-    LINES,
-    SIGNS,
-    SMALL,
-    WASH,
-    Drawing,
-    Stroke,
-)
+from calcpack.figures.diagram import FAR, Diagram, between
+from calcpack.figures.drawing import HEAVY, INK, LINES, WASH, Stroke
 from calcpack.figures.figure import Figure
-from calcpack.figures.labels import Box, Placer, lead_foot
-from calcpack.figures.lettering import text_width
-from calcpack.figures.parts import line_height
-from calcpack.figures.shapes import Array, Pair, simplified
+from calcpack.figures.shapes import Array, Pair
 from calcpack.sheet.display import System, show
 
 Quantity = Literal["shear", "moment", "deflection"]
@@ -54,7 +40,6 @@ MANNERS: Mapping[Quantity, Manner] = {
     "deflection": Manner("deflection", "deflection", "mm", 1000.0, -1, 12.0),
 }
 WORTH = 0.06  # of the largest value: what is smaller is not written unless asked for
-LIMIT = 3.0  # a limit farther off than so many times the diagram is said, not drawn
 
 
 def response_figure(
@@ -138,14 +123,12 @@ def response_figure(
     return sheet.finish(width_mm, _spoken(axis, found, reactions, mark, system))
 
 
-class _Strip:
+class _Strip(Diagram):
     """One diagram over y = 0."""
 
     def __init__(self, axis: BeamAxis, manner: Manner, system: System) -> None:
-        self.axis, self.manner, self.system = axis, manner, system
-        self.drawing = Drawing()
-        self.placer = Placer(axis.bounds())
-        self.scale = 1.0
+        super().__init__(axis, system)
+        self.manner = manner
         self.remark = ""
 
     def draw(
@@ -156,34 +139,26 @@ class _Strip:
     ) -> None:
         """The areas, the lines, then the labels, the largest first."""
         largest = max(float(np.abs(y).max()) for _, y, _ in curves)
-        near = [limit for limit in limits if abs(limit[2]) <= LIMIT * largest]
-        ends = [
-            0.0,
-            *(float(end) for _, y, _ in curves for end in (y.min(), y.max())),
-            *(v for *_, v in near),
-        ]
-        if largest > 0:
-            self.scale = self.manner.upward * self.manner.height / (max(ends) - min(ends))
+        near = [limit for limit in limits if abs(limit[2]) <= FAR * largest]
+        ends = [float(end) for _, y, _ in curves for end in (y.min(), y.max())]
+        self.fit([*ends, *(value for *_, value in near)], self.manner.height, self.manner.upward)
         self.axis.baseline(self.drawing)
-        self.placer.block_line([(self.axis.x(0.0), 0.0), (self.axis.x(self.axis.length), 0.0)])
+        self.placer.block_line(self.ends)
         self._curves(curves)
-        for limit in near:
-            self._limit(*limit)
+        for start, end, value in near:
+            self.limit(start, end, value, f"limit {self._shown(value)}")
         far = [self._shown(limit[2]) for limit in limits if limit not in near]
         self.remark = ", ".join(f"limit {text}" for text in dict.fromkeys(far))
         for value, at in sorted(extremes, key=lambda extreme: -abs(extreme[0])):
             if abs(value) > 1e-9 * max(largest, 1e-12):
-                self._extreme(value, at)
-
-    def _line(self, x: Array, y: Array) -> Array:
-        return simplified(np.column_stack([self.axis.x(0.0) + x * self.axis.scale, y * self.scale]))
+                self.value(at, value, [self._shown(value)])
 
     def _curves(self, curves: Sequence[tuple[Array, Array, Role]]) -> None:
         lines = {
-            role: [self._line(x, y) for x, y, which in curves if which == role]
+            role: [self.line(x, y) for x, y, which in curves if which == role]
             for role in ("upper", "lower", "line")
         }
-        start, end = (self.axis.x(0.0), 0.0), (self.axis.x(self.axis.length), 0.0)
+        start, end = self.ends
         bounds = [*lines["upper"], *lines["lower"]]
         if lines["upper"] and lines["lower"]:
             self.drawing.area(np.vstack([lines["upper"][0], lines["lower"][0][::-1]]), WASH)
@@ -199,71 +174,20 @@ class _Strip:
             self.drawing.line(line, Stroke(0.5, INK, (3.0, 1.4)), LINES)
             self.placer.block_line(line)
 
-    def _limit(self, start: float, end: float, value: float) -> None:
-        y = value * self.scale
-        line = [(self.axis.x(start), y), (self.axis.x(end), y)]
-        self.drawing.line(line, Stroke(0.5, INK, (1.2, 1.2)), LINES)
-        self.placer.block_line(line)
-        text = f"limit {self._shown(value)}"
-        width, height = text_width(text, SMALL, italic=True), line_height(SMALL)
-        middle, half = (line[0][0] + line[1][0]) / 2, (line[1][0] - line[0][0]) / 2
-        box = self.placer.choose(
-            Box(middle + part * (half - width / 2), y + side * (height / 2 + 0.3), width, height)
-            for side in (-1, 1)
-            for part in (0.0, 0.5, -0.5, 1.0, -1.0)
-        )
-        self.drawing.text(box.x, box.y, text, SMALL, level="box", italic=True, tone=GREY)
-
     def _shown(self, value: float) -> str:
         return show(value * self.manner.factor, self.manner.unit, self.system)
-
-    def _extreme(self, value: float, at: float) -> None:
-        """A value with its place, close to its point or led to it."""
-        x, y = self.axis.x(at), value * self.scale
-        words = [self._shown(value)]
-        if not self.axis.at_bearing(at):
-            words.append(f"at {show(at, 'm', self.system)}")
-        options = list(_places(x, y, 1.0 if y > 0 else -1.0, words, self.axis.width))
-        number, box = self.placer.pick((box for box, _ in options), 0.02, (x, y))
-        lines = options[number][1]
-        self.placer.block(box)
-        self.drawing.disc(x, y, 0.45, INK, SIGNS)
-        foot, top = lead_foot(box, (x, y)), box.bounds()[3]
-        if abs(foot[0] - x) > 0.5 or abs(foot[1] - y) > 1.6:
-            self.drawing.line([foot, (x, y)], Stroke(HAIR, GREY), HATCHING)
-            self.placer.block_line([foot, (x, y)])
-        height = line_height(SMALL)
-        for row, line in enumerate(lines):
-            self.drawing.text(box.x, top - (row + 0.5) * height, line, SMALL, level="box", mask=True)
-
-
-def _places(
-    x: float, y: float, out: float, words: list[str], width: float
-) -> Iterator[tuple[Box, list[str]]]:
-    """Where a label may stand: outside the curve, in one line or two, aside, farther off, at last inside."""
-    layouts = [[" ".join(words)], words] if len(words) > 1 else [words]
-    height = line_height(SMALL)
-    for side, rows in ((out, (0, 1, 2, 3, 4)), (-out, (0, 1))):
-        for row in rows:
-            for lines in layouts:
-                wide, high = max(text_width(line, SMALL) for line in lines), height * len(lines)
-                low, far = 0.4 + wide / 2, width - 0.4 - wide / 2
-                for shift in (0.0, 0.25, -0.25, 0.5, -0.5):
-                    middle = min(max(x + shift * (wide + 1.2), low), far)
-                    yield Box(middle, y + side * (0.8 + high / 2 + row * height), wide + 0.8, high), lines
 
 
 def _worst(axis: BeamAxis, curves: Mapping[Quantity, Sequence[CurveData]]) -> Iterator[Extreme]:
     """What is worth writing: in every span the value farthest out, and those at its ends that stand out."""
-    stops = sorted({0.0, axis.length, *(bearing[0] for bearing in axis.bearings)})
     for quantity, data in curves.items():
         enveloped = any(role != "line" for *_, role in data)
         largest = max((float(np.abs(y).max()) for _, y, _ in data), default=0.0)
         seen: list[Pair] = []
-        for (start, end), (xs, ys, role) in itertools.product(itertools.pairwise(stops), data):
+        for (start, end), (xs, ys, role) in itertools.product(axis.spans, data):
             if enveloped and role == "line":
                 continue
-            x, y = _between(np.asarray(xs, float), np.asarray(ys, float), start, end)
+            x, y = between(np.asarray(xs, float), np.asarray(ys, float), start, end)
             for sign, other in ((1.0, "lower"), (-1.0, "upper")):
                 if role == other or len(y) < 2:
                     continue
@@ -276,13 +200,6 @@ def _worst(axis: BeamAxis, curves: Mapping[Quantity, Sequence[CurveData]]) -> It
                     if new and out[n] > WORTH * largest:
                         seen.append((value, at))
                         yield quantity, value, at
-
-
-def _between(x: Array, y: Array, start: float, end: float) -> tuple[Array, Array]:
-    """The points of a span; where the curve jumps at its ends, the side that belongs to it."""
-    first = int(np.searchsorted(x, start + 1e-9, side="right")) - 1
-    last = int(np.searchsorted(x, end - 1e-9, side="left"))
-    return x[max(first, 0) : last + 1], y[max(first, 0) : last + 1]
 
 
 def _reaction_lines(reaction: float | tuple[float, float], system: System) -> list[str]:
