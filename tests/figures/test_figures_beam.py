@@ -185,8 +185,8 @@ def test_a_limit_far_off_is_said_not_drawn():
     curves = {"deflection": [(x, 0.002 * np.sin(np.pi * x / 6), "line")]}
     near = response_figure(6.0, TWO, curves, limits=[("deflection", 0, 6, 0.004)])
     far = response_figure(6.0, TWO, curves, limits=[("deflection", 0, 6, 0.024)])
-    assert any(stroke.dashed and stroke.weight == 0.5 for stroke in strokes(near))
-    assert not any(stroke.dashed and stroke.weight == 0.5 for stroke in strokes(far))
+    assert any(stroke.dashed and stroke.weight == 0.6 for stroke in strokes(near))
+    assert not any(stroke.dashed and stroke.weight == 0.6 for stroke in strokes(far))
     assert f"limit 24.0{NBSP}mm" in words(far)
 
 
