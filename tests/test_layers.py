@@ -22,6 +22,7 @@ LAYERS = [
     "export",
     "record",
     "build",
+    "verification",
     "overview",
     "cli",
 ]

@@ -2,68 +2,39 @@
 
 Direct stiffness of this package; direct stiffness in rational arithmetic, without any rounding; finite
 elements (scikit-fem); collocation of the differential equation (SciPy); singularity functions (SymPy).
+How many beams and how close: shared/verification/statics.toml.
 """
 
 from __future__ import annotations
 
-import random
 from dataclasses import replace
-from fractions import Fraction
-from itertools import pairwise
 
 import numpy as np
 import pytest
-import scipy.integrate
 import skfem
-import sympy
 from skfem.helpers import dd as second
 from skfem.helpers import ddot
-from sympy.physics.continuum_mechanics.beam import Beam
 
 from calcpack.statics import BeamLine, LineLoad, Load, PointLoad, analyse
 from calcpack.statics.stiffness import stiffness_check
+from calcpack.verification.beam_methods import (
+    BEAMS,
+    collocation,
+    direct_stiffness,
+    random_beam,
+    rational_stiffness,
+    seeds,
+    symbolic_pairs,
+    worst_difference,
+)
+from calcpack.verification.tables import find_topic
 
-
-def random_beam(seed: int, most_spans: int = 6) -> tuple[BeamLine, list[Load]]:
-    """A beam of every kind, on a grid of centimetres so that its numbers are exact decimals."""
-    draw = random.Random(seed)
-
-    def length() -> int:
-        return draw.randint(80, 900)
-
-    first, last = draw.choice(["free", "pinned", "fixed"]), draw.choice(["free", "pinned", "fixed"])
-    places = [length() if first == "free" else 0]
-    for _ in range(draw.randint(1, most_spans)):
-        places.append(places[-1] + length())
-    total = places[-1] + (length() if last == "free" else 0)
-    if draw.random() < 0.1:
-        places, first, last = [0], "fixed", "free"
-    line = BeamLine(total / 100, tuple(place / 100 for place in places), first == "fixed", last == "fixed")
-    loads: list[Load] = []
-    for _ in range(draw.randint(1, 6)):
-        start, end = sorted(draw.sample(range(total + 1), 2))
-        loads.append(
-            LineLoad(start / 100, end / 100, draw.randint(-200, 900) / 10, draw.randint(0, 900) / 10)
-        )
-        at = draw.choice([0, total, *places, draw.randint(0, total)])
-        loads.append(PointLoad(at / 100, draw.randint(-100, 900) / 10))
-    return line, loads
-
-
-def apart(values, others) -> float:
-    """Largest difference, as a part of the largest value."""
-    values, others = np.asarray(values, dtype=float), np.asarray(others, dtype=float)
-    return float(np.abs(values - others).max() / max(np.abs(others).max(), 1e-9))
-
-
-def worst_difference(line, loads, nodes, deflections, rotations, reactions) -> float:
-    """Of the analysis to what another method found."""
-    response = analyse(line, [loads])
-    return max(
-        apart(response.curve("deflection").values(np.asarray(nodes)), deflections),
-        apart(response.curve("rotation").values(np.asarray(nodes)), rotations),
-        apart(response.reactions[0], reactions),
-    )
+STATICS = find_topic("statics")
+DIRECT_STIFFNESS = STATICS.find_method("direct stiffness")
+RATIONAL = STATICS.find_method("rational arithmetic")
+FINITE_ELEMENTS = STATICS.find_method("finite elements")
+COLLOCATION = STATICS.find_method("collocation")
+SINGULARITY = STATICS.find_method("singularity functions")
 
 
 def heavier(loads: list[Load]) -> list[Load]:
@@ -76,17 +47,17 @@ def heavier(loads: list[Load]) -> list[Load]:
 # ---- direct stiffness ------------------------------------------------------------------------------
 
 
-@pytest.mark.parametrize("seed", range(60))
+@pytest.mark.parametrize("seed", seeds(DIRECT_STIFFNESS))
 def test_direct_stiffness(seed):
     line, loads = random_beam(seed)
     other = stiffness_check(line, loads)
     response = analyse(line, [loads])
-    found = other.nodes, other.deflections, other.rotations, other.reactions
-    assert worst_difference(line, loads, *found) < 1e-8
+    found = direct_stiffness(line, loads)
+    assert worst_difference(line, loads, found) < DIRECT_STIFFNESS.within
     moment = np.abs(response.moment[0, :, 0]).max()
     np.testing.assert_allclose(response.support_moments[0], other.support_moments, atol=1e-8 * moment)
     np.testing.assert_allclose(response.end_moments[0], other.end_moments, atol=1e-8 * moment)
-    assert worst_difference(line, heavier(loads), *found) > 1e-8
+    assert worst_difference(line, heavier(loads), found) > DIRECT_STIFFNESS.within
 
 
 def test_direct_stiffness_on_thirty_spans():
@@ -94,9 +65,7 @@ def test_direct_stiffness_on_thirty_spans():
     loads: list[Load] = [
         LineLoad(5.0 * number, 5.0 * number + 3.3, 4.0, 9.0 + number) for number in range(30)
     ]
-    other = stiffness_check(line, loads)
-    found = other.nodes, other.deflections, other.rotations, other.reactions
-    assert worst_difference(line, loads, *found) < 1e-8
+    assert worst_difference(line, loads, direct_stiffness(line, loads)) < DIRECT_STIFFNESS.within
 
 
 def test_direct_stiffness_does_not_mind_loads_that_begin_close_together():
@@ -105,83 +74,16 @@ def test_direct_stiffness_does_not_mind_loads_that_begin_close_together():
         LineLoad(2.0, 10.0, 5.0, 5.0), LineLoad(2.0 + 1e-5, 6.0 - 1e-5, 3.0, 4.0), PointLoad(6.0 + 1e-5, 9.0),
         PointLoad(10.0, 1.0), PointLoad(0.0, 4.0),
     ]  # fmt: skip
-    other = stiffness_check(line, loads)
-    found = other.nodes, other.deflections, other.rotations, other.reactions
-    assert worst_difference(line, loads, *found) < 1e-10
+    assert worst_difference(line, loads, direct_stiffness(line, loads)) < 1e-10
 
 
-# ---- direct stiffness in rational numbers ----------------------------------------------------------
-
-
-def exact(number: float) -> Fraction:
-    """The decimal meant."""
-    return Fraction(round(number * 1000), 1000)
-
-
-def rational_stiffness(line: BeamLine, loads: list[Load]):
-    """Deflections and rotations at all breaks, and reactions, without rounding.
-
-    Nodes at all breaks, so that each element has one linear load, whose nodal forces are the fixed end
-    ones: (7a + 3b)L/20 and (3a + 2b)L²/60 at the end with intensity a.
-    """
-    places = {Fraction(0), exact(line.length), *map(exact, line.supports)}
-    for load in loads:
-        places |= {exact(load.at)} if isinstance(load, PointLoad) else {exact(load.start), exact(load.end)}
-    nodes = sorted(places)
-    size = 2 * len(nodes)
-    matrix = [[Fraction(0)] * size for _ in range(size)]
-    acting = [Fraction(0)] * size
-    for load in loads:
-        if isinstance(load, PointLoad):
-            acting[2 * nodes.index(exact(load.at))] += exact(load.force)
-    for number, (left, right) in enumerate(pairwise(nodes)):
-        h = right - left
-        element = (
-            (12, 6 * h, -12, 6 * h), (6 * h, 4 * h * h, -6 * h, 2 * h * h),
-            (-12, -6 * h, 12, -6 * h), (6 * h, 2 * h * h, -6 * h, 4 * h * h),
-        )  # fmt: skip
-        for row in range(4):
-            for column in range(4):
-                matrix[2 * number + row][2 * number + column] += element[row][column] / h**3
-        for load in loads:
-            if isinstance(load, PointLoad) or exact(load.start) > left or exact(load.end) < right:
-                continue
-            start, end, first, last = map(exact, (load.start, load.end, load.first, load.last))
-            a, b = (first + (last - first) * (x - start) / (end - start) for x in (left, right))
-            acting[2 * number] += (7 * a + 3 * b) * h / 20
-            acting[2 * number + 1] += (3 * a + 2 * b) * h * h / 60
-            acting[2 * number + 2] += (3 * a + 7 * b) * h / 20
-            acting[2 * number + 3] -= (2 * a + 3 * b) * h * h / 60
-    supported = [2 * nodes.index(exact(place)) for place in line.supports]
-    held = {*supported, *([1] if line.fixed_start else []), *([size - 1] if line.fixed_end else [])}
-    free = [number for number in range(size) if number not in held]
-    rows = [[matrix[i][j] for j in free] + [acting[i]] for i in free]
-    band = 6  # freedoms of neighbouring nodes only are coupled
-    for pivot in range(len(rows)):
-        for below in range(pivot + 1, min(pivot + band, len(rows))):
-            factor = rows[below][pivot] / rows[pivot][pivot]
-            if factor:
-                for column in (*range(pivot, min(pivot + band, len(rows))), len(rows)):
-                    rows[below][column] -= factor * rows[pivot][column]
-    solved = [Fraction(0)] * len(rows)
-    for pivot in reversed(range(len(rows))):
-        known = sum(rows[pivot][j] * solved[j] for j in range(pivot + 1, min(pivot + band, len(rows))))
-        solved[pivot] = (rows[pivot][-1] - known) / rows[pivot][pivot]
-    moved = [Fraction(0)] * size
-    for number, value in zip(free, solved, strict=True):
-        moved[number] = value
-    reactions = [acting[i] - sum(matrix[i][j] * moved[j] for j in range(size)) for i in supported]
-    return nodes, moved[0::2], [-turn for turn in moved[1::2]], reactions
-
-
-@pytest.mark.parametrize("seed", range(100, 125))
+@pytest.mark.parametrize("seed", seeds(RATIONAL))
 def test_rational_arithmetic(seed):
     """Nothing but the last digits may differ."""
     line, loads = random_beam(seed)
-    nodes, deflections, rotations, reactions = rational_stiffness(line, loads)
-    found = [float(node) for node in nodes], deflections, rotations, reactions
-    assert worst_difference(line, loads, *found) < 1e-13
-    assert worst_difference(line, heavier(loads), *found) > 1e-8
+    found = rational_stiffness(line, loads)
+    assert worst_difference(line, loads, found) < RATIONAL.within
+    assert worst_difference(line, heavier(loads), found) > 1e-8
 
 
 # ---- finite elements: scikit-fem -------------------------------------------------------------------
@@ -228,133 +130,44 @@ def finite_elements(line: BeamLine, loads: list[Load]):
     return mesh.p[0], moved[sinks], -moved[turns], (acting - stiffness @ moved)[supported]
 
 
-@pytest.mark.parametrize("seed", range(200, 230))
+@pytest.mark.parametrize("seed", seeds(FINITE_ELEMENTS))
 def test_finite_elements(seed):
     line, loads = random_beam(seed, most_spans=8)
     found = finite_elements(line, loads)
-    assert worst_difference(line, loads, *found) < 1e-7
-    assert worst_difference(line, heavier(loads), *found) > 1e-7
+    assert worst_difference(line, loads, found) < FINITE_ELEMENTS.within
+    assert worst_difference(line, heavier(loads), found) > FINITE_ELEMENTS.within
 
 
 # ---- collocation of the differential equation: SciPy -----------------------------------------------
 
 
-def collocation(line: BeamLine, loads: list[Load]):
-    """All pieces stretched to 0..1 and solved side by side, coupled by their ends.
-
-    Unknowns of a piece: deflection, slope dv/dx, moment, shear. Point loads and reactions make the
-    shear jump; over a support the jump is unknown and the deflection known instead.
-    """
-    places = {0.0, line.length, *line.supports}
-    for load in loads:
-        places |= {load.at} if isinstance(load, PointLoad) else {load.start, load.end}
-    nodes = np.array(sorted(places))
-    widths, count = np.diff(nodes), len(nodes) - 1
-
-    def slopes(t, y):
-        sink, turn, moment, shear = y.reshape(4, count, -1)
-        del sink
-        x = nodes[:-1, None] + widths[:, None] * t
-        pressing = np.zeros_like(x)
-        for load in loads:
-            if isinstance(load, LineLoad):
-                there = (nodes[:-1] >= load.start) & (nodes[1:] <= load.end)
-                along = (x - load.start) / (load.end - load.start)
-                pressing += np.where(there[:, None], load.first + (load.last - load.first) * along, 0.0)
-        h = widths[:, None]
-        return np.concatenate([turn * h, -moment * h, shear * h, -pressing * h])
-
-    def conditions(left, right):
-        left, right = left.reshape(4, count), right.reshape(4, count)
-        unmet = []
-        for number, node in enumerate(nodes):
-            standing = sum(load.force for load in loads if isinstance(load, PointLoad) and load.at == node)
-            before = right[:, number - 1] if number else None
-            after = left[:, number] if number < count else None
-            held = node in line.supports
-            if before is not None and after is not None:
-                unmet += [after[0] - before[0], after[1] - before[1], after[2] - before[2]]
-                unmet.append(after[0] if held else after[3] - before[3] + standing)
-                continue
-            end = after if before is None else before
-            fixed = line.fixed_start if before is None else line.fixed_end
-            assert end is not None
-            unmet.append(end[1] if fixed else end[2])
-            unmet.append(end[0] if held else end[3] + (standing if before is None else -standing))
-        return np.array(unmet)
-
-    grid = np.linspace(0.0, 1.0, 41)
-    solved = scipy.integrate.solve_bvp(slopes, conditions, grid, np.zeros((4 * count, 41)), tol=1e-6)
-    assert solved.success
-    start, end = solved.sol(0.0).reshape(4, count), solved.sol(1.0).reshape(4, count)
-    reactions = []
-    for place in line.supports:
-        number = int(np.argmin(np.abs(nodes - place)))
-        standing = sum(load.force for load in loads if isinstance(load, PointLoad) and load.at == place)
-        before = end[3, number - 1] if number else 0.0
-        after = start[3, number] if number < count else 0.0
-        reactions.append(after - before + standing)
-    deflections = np.append(start[0], end[0, -1])
-    return nodes, deflections, -np.append(start[1], end[1, -1]), reactions
-
-
-BEAMS: list[tuple[BeamLine, list[Load]]] = [
-    (BeamLine(5.0, (0.0, 5.0)), [LineLoad(1.0, 4.0, 2.0, 9.0), PointLoad(4.0, 3.0)]),
-    (BeamLine(5.0, (0.0, 5.0), fixed_end=True), [LineLoad(0.0, 2.0, 0.0, 8.0), LineLoad(2.0, 5.0, 8.0, 1.0)]),
-    (BeamLine(6.0, (0.0, 6.0), True, True), [LineLoad(2.0, 5.0, 4.0, 4.0), PointLoad(2.0, -7.0)]),
-    (BeamLine(3.0, (0.0,), fixed_start=True), [LineLoad(1.0, 3.0, 4.0, 2.0), PointLoad(3.0, 5.0)]),
-    (
-        BeamLine(9.5, (1.5, 5.0, 9.5)),
-        [LineLoad(0.0, 5.0, 3.0, 6.0), PointLoad(5.0, 8.0), PointLoad(0.0, 2.0)],
-    ),
-]
-
-
-@pytest.mark.parametrize("number", range(len(BEAMS)))
+@pytest.mark.parametrize("number", range(COLLOCATION.cases))
 def test_collocation(number):
+    assert len(BEAMS) == COLLOCATION.cases
     line, loads = BEAMS[number]
     found = collocation(line, loads)
-    assert worst_difference(line, loads, *found) < 1e-6
-    assert worst_difference(line, heavier(loads), *found) > 1e-6
+    assert worst_difference(line, loads, found) < COLLOCATION.within
+    assert worst_difference(line, heavier(list(loads)), found) > COLLOCATION.within
 
 
 # ---- singularity functions: SymPy ------------------------------------------------------------------
 
 
 def test_singularity_functions_continuous_beam():
-    beam = Beam(8, 1, 1)
-    unknown = [beam.apply_support(place, "roller") for place in (0, 4, 8)]
-    beam.apply_load(10, 0, 0, end=3)
-    beam.apply_load(sympy.Rational(3), 1, 1, end=3)
-    beam.apply_load(5, 6, -1)
-    loads: list[Load] = [LineLoad(0, 3, 10, 10), LineLoad(1, 3, 0, 6), PointLoad(6, 5)]
-    compare_symbolic(beam, unknown, BeamLine(8.0, (0.0, 4.0, 8.0)), loads)
+    compare_symbolic(0)
 
 
 def test_singularity_functions_propped_beam_with_overhang():
-    beam = Beam(7, 1, 1)
-    reaction, moment = beam.apply_support(0, "fixed")
-    unknown = [reaction, beam.apply_support(5, "roller")]
-    beam.apply_load(6, 2, 0, end=7)
-    beam.apply_load(4, 7, -1)
-    loads: list[Load] = [LineLoad(2, 7, 6, 6), PointLoad(7, 4)]
-    line = BeamLine(7.0, (0.0, 5.0), fixed_start=True)
-    compare_symbolic(beam, unknown, line, loads, [moment])
+    compare_symbolic(1)
 
 
-def compare_symbolic(beam, unknown, line, loads, moments=()):
-    """SymPy with load down as positive: its reactions come out negative, the rest as here."""
-    beam.solve_for_reaction_loads(*unknown, *moments)
-    x = beam.variable
-    response = analyse(line, [loads])
-    reactions = [-float(beam.reaction_loads[symbol]) for symbol in unknown]
-    assert response.reactions[0] == pytest.approx(reactions, rel=1e-12)
-    for place in (sympy.Rational(1, 2), sympy.Rational(5, 2), sympy.Rational(13, 2)):
-        for quantity, expression, sign in (
-            ("shear", beam.shear_force(), 1),
-            ("moment", beam.bending_moment(), 1),
-            ("rotation", beam.slope(), -1),
-            ("deflection", beam.deflection(), 1),
-        ):
-            expected = sign * float(expression.subs(x, place))
-            assert response.curve(quantity).at(float(place)) == pytest.approx(expected, rel=1e-11)
+def test_every_symbolic_beam_is_compared():
+    assert SINGULARITY.cases == 2
+
+
+def compare_symbolic(number):
+    pairs = list(symbolic_pairs(number))
+    assert len(pairs) >= 14
+    for ours, theirs in pairs:
+        assert ours == pytest.approx(theirs, rel=SINGULARITY.within)
+        assert ours * (1 + 1e-5) != pytest.approx(theirs, rel=SINGULARITY.within)

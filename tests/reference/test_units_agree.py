@@ -17,10 +17,14 @@ from calcpack.job.model import Beam, BeamLoad, Job, Point
 from calcpack.notebook.parameters import beam_input
 from calcpack.notebook.study import Study, results_of
 from calcpack.notebook.templates import find_template
+from calcpack.verification.tables import find_topic
 
 FLOORS = Path(__file__).parent / "floors"
 NAMES = ("press_floor", "turned_hall")
-SAME = 1e-9  # of the largest of its kind
+OTHER_UNITS = find_topic("floors").find_method("other units")
+MOVED = find_topic("floors").find_method("moved")
+SAME = OTHER_UNITS.within  # of the largest of its kind
+TURNS = (17.3, 90.0, 201.0)  # [degrees]
 
 FOOT, POUND = 0.3048, 4.4482216152605e-3  # [m], [kN], exact by definition
 US_UNITS = {
@@ -110,6 +114,13 @@ def in_us_units(text: str, factor: float = 1.0) -> str:
     return text.replace("date = 2026-12-01", 'date = 2026-12-01\nunits = "US"')
 
 
+def test_as_many_floors_as_the_manual_says():
+    assert len(NAMES) == OTHER_UNITS.cases
+    assert len(NAMES) + len(TURNS) + len(NAMES) == MOVED.cases  # mirrored, turned, walked backwards
+    assert MOVED.within == SAME
+    assert all(f"{degrees:g}°" in MOVED.says for degrees in TURNS)
+
+
 @pytest.mark.parametrize("name", NAMES)
 def test_us_units(floors, tmp_path, name):
     text = in_us_units((FLOORS / f"{name}.toml").read_text(encoding="utf-8"))
@@ -183,7 +194,7 @@ def test_mirrored(floors, name):
     assert too_far(differences(ordered(results), ordered(found))) == {}
 
 
-@pytest.mark.parametrize("degrees", [17.3, 90.0, 201.0])
+@pytest.mark.parametrize("degrees", TURNS)
 def test_turned_and_shifted(floors, degrees):
     """Only a floor whose panels name no direction of the plan."""
     job, results = floors["press_floor"]

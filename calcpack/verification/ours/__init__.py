@@ -1,0 +1,1 @@
+"""What the program itself makes of every row of every table."""
