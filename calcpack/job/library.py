@@ -6,6 +6,7 @@ import csv
 import math
 import re
 import tomllib
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from functools import lru_cache
 from typing import Any
@@ -16,6 +17,8 @@ from calcpack.job.house import house_folder
 from calcpack.job.model import Material, Section
 from calcpack.job.raw import CONCRETE_VALUES, STEEL_VALUES, RawMaterial, RawSection
 from calcpack.job.units import factor
+
+STEEL = 7850 * 2.2046226218487757 * 0.3048  # of a metre's volume [m2]: pounds a foot
 
 
 @dataclass(frozen=True)
@@ -28,7 +31,7 @@ class Grade:
     source: str
 
 
-def _alike(name: str) -> str:
+def alike(name: str) -> str:
     """A name as it is compared: "W18x50" is "W 18X50", "S 355" is "s355"."""
     return "".join(name.split()).casefold()
 
@@ -47,7 +50,7 @@ def grades() -> dict[str, Grade]:
         table = tomllib.loads(path.read_text(encoding="utf-8"))
         common = {key: value for key, value in table.items() if key not in ("source", "kind", "grades")}
         for name, values in table["grades"].items():
-            found[_alike(name)] = Grade(name, table["kind"], common | values, table["source"])
+            found[alike(name)] = Grade(name, table["kind"], common | values, table["source"])
     return found
 
 
@@ -75,7 +78,7 @@ def rolled_sections() -> dict[str, Section]:
             if "k_design" in sizes:
                 sizes["root_radius"] = sizes.pop("k_design") - sizes["flange"]
             area, inertia = rolled_area_and_inertia(**sizes)
-            found[_alike(designation)] = Section(
+            found[alike(designation)] = Section(
                 key=designation,
                 shape="rolled",
                 designation=designation,
@@ -117,17 +120,20 @@ def rolled_area_and_inertia(
     return area, inertia
 
 
-def read_material(key: str, entry: Entry, problems: Problems) -> Material | None:
+def read_material(
+    key: str, entry: Entry, problems: Problems, known: Catalogue | None = None
+) -> Material | None:
     """A material of the job: its grades' values with the job's own put over them."""
+    named = (known or office()).grades
     given = dict(entry.data)
     merged: dict[str, Any] = {}
     sources: list[str] = []
     for name, kinds in (("grade", ("concrete", "steel")), ("bars", ("bars",))):
         if not isinstance(given.get(name), str):
             continue
-        grade = grades().get(_alike(given[name]))
+        grade = named.get(alike(given[name]))
         if grade is None or grade.kind not in kinds:
-            choices = [each.name for each in grades().values() if each.kind in kinds]
+            choices = [each.name for each in named.values() if each.kind in kinds]
             problems.add(
                 entry.problem(f"there is no grade '{given[name]}'", nearest(given[name], choices), name)
             )
@@ -188,8 +194,10 @@ NEEDED: dict[str, tuple[str, ...]] = {
 }
 
 
-def read_section(key: str, entry: Entry, problems: Problems) -> Section | None:
-    """A section of the job with its gross properties."""
+def read_section(
+    key: str, entry: Entry, problems: Problems, known: Catalogue | None = None
+) -> Section | None:
+    """A section of the job with its gross properties; rolled ones are known by the office unless given."""
     raw = validated(RawSection, entry, problems)
     if raw is None:
         return None
@@ -208,7 +216,7 @@ def read_section(key: str, entry: Entry, problems: Problems) -> Section | None:
     if len(problems.found) > count:
         return None
     if raw.shape == "rolled":
-        return _rolled(key, raw.designation or "", entry, problems)
+        return _rolled(key, raw.designation or "", entry, problems, known or office())
     if raw.shape == "tee" and _faulty_tee(given, entry, problems):
         return None
     effective = given.get("flange_width") == "effective"
@@ -226,11 +234,64 @@ def read_section(key: str, entry: Entry, problems: Problems) -> Section | None:
     )
 
 
+def _families(named: Iterable[tuple[str, Section]]) -> dict[str, tuple[Section, ...]]:
+    """Sections of given families by weight; of two alike in weight the stiffer one first.
+
+    The weight is the one a designation names (W18X50: 50 lbf/ft), else that of the area in steel.
+    """
+    found: dict[str, list[tuple[float, float, Section]]] = {}
+    for family, section in named:
+        nominal = re.fullmatch(r"[A-Z]+ ?[0-9]+X([0-9.]+)", section.designation)
+        weight = float(nominal[1]) if nominal else section.area * STEEL
+        found.setdefault(family, []).append((weight, -section.inertia, section))
+    return {
+        name: tuple(section for _, _, section in sorted(rows, key=lambda row: row[:2]))
+        for name, rows in sorted(found.items())
+    }
+
+
+def _family(designation: str) -> str:
+    """The family a designation names: "IPE 300" is of IPE, "HE 200 B" of HEB; "" if it names none."""
+    parts = re.fullmatch(r"([A-Z]+) ?[0-9]+(?:X[0-9.]+| ?([A-Z]*))", designation)
+    return parts[1] + (parts[2] or "") if parts else ""
+
+
+@dataclass(frozen=True)
+class Catalogue:
+    """Grades and rolled sections by their names without spaces and capitals, sections family by family."""
+
+    grades: Mapping[str, Grade]
+    sections: Mapping[str, Section]
+    families: Mapping[str, tuple[Section, ...]]
+
+    def over(self, sections: Sequence[tuple[str, Section]], grades: Sequence[Grade]) -> Catalogue:
+        """This one with others, sections with their families, put over it."""
+        if not sections and not grades:
+            return self
+        own = {alike(section.designation): section for _, section in sections}
+        kept = [
+            (family, section)
+            for family, rows in self.families.items()
+            for section in rows
+            if alike(section.designation) not in own
+        ]
+        named = [(family or _family(section.designation), section) for family, section in sections]
+        return Catalogue(
+            {**self.grades, **{alike(grade.name): grade for grade in grades}},
+            {**self.sections, **own},
+            _families((*kept, *(each for each in named if each[0]))),
+        )
+
+
+@lru_cache(maxsize=1)
+def office() -> Catalogue:
+    """What shared/materials and shared/sections hold."""
+    return Catalogue(grades(), rolled_sections(), families())
+
+
 @lru_cache(maxsize=1)
 def families() -> dict[str, tuple[Section, ...]]:
-    """The rolled sections family by family, by weight; of two alike in weight the stiffer one first.
-
-    The weight is the one a designation names (W18X50: 50 lbf/ft), else the area stands for it.
+    """The rolled sections of shared/sections family by family, by weight.
 
     Examples
     --------
@@ -239,39 +300,33 @@ def families() -> dict[str, tuple[Section, ...]]:
     >>> [section.designation for section in families()["IPE"][:2]]
     ['IPE 80', 'IPE 100']
     """
-    found: dict[str, list[tuple[float, float, Section]]] = {}
-    for section in rolled_sections().values():
-        parts = re.fullmatch(r"([A-Z]+) ?[0-9]+(?:X([0-9.]+)| ?([A-Z]*))", section.designation)
-        if parts is None:
-            continue
-        name, weight = parts[1] + (parts[3] or ""), float(parts[2]) if parts[2] else section.area
-        found.setdefault(name, []).append((weight, -section.inertia, section))
-    return {
-        name: tuple(section for _, _, section in sorted(rows, key=lambda row: row[:2]))
-        for name, rows in sorted(found.items())
-    }
+    return _families(
+        (family, section)
+        for section in rolled_sections().values()
+        if (family := _family(section.designation))
+    )
 
 
-def _lightest(key: str, name: str, entry: Entry, problems: Problems) -> Section | None:
+def _lightest(key: str, name: str, entry: Entry, problems: Problems, catalogue: Catalogue) -> Section | None:
     """A section to be chosen beam by beam."""
-    known = {_alike(family): family for family in families()}
-    family = known.get(_alike(name))
+    known = {alike(family): family for family in catalogue.families}
+    family = known.get(alike(name))
     if family is None:
         problems.add(
             entry.problem(f"there is no family '{name}'", nearest(name, known.values()), "designation")
         )
         return None
     change = {"key": key, "designation": f"lightest in {family}", "family": family}
-    return families()[family][0].model_copy(update=change)
+    return catalogue.families[family][0].model_copy(update=change)
 
 
-def _rolled(key: str, designation: str, entry: Entry, problems: Problems) -> Section | None:
+def _rolled(key: str, designation: str, entry: Entry, problems: Problems, known: Catalogue) -> Section | None:
     if open_ := re.fullmatch(r"lightest in (.{1,40})", designation):
-        return _lightest(key, open_[1], entry, problems)
-    section = rolled_sections().get(_alike(designation))
+        return _lightest(key, open_[1], entry, problems, known)
+    section = known.sections.get(alike(designation))
     if section:
         return section.model_copy(update={"key": key})
-    names = [each.designation for each in rolled_sections().values()]
+    names = [each.designation for each in known.sections.values()]
     problems.add(
         entry.problem(f"there is no section '{designation}'", nearest(designation, names), "designation")
     )

@@ -218,4 +218,6 @@ class Job(Frozen):
     columns: tuple[Column, ...]
     walls: tuple[Wall, ...]
     combinations: tuple[OwnCombination, ...] = ()
+    # what "lightest in FAMILY" chooses from: family -> its sections by weight, the job's own among them
+    candidates: dict[str, tuple[Section, ...]] = {}
     lines: dict[str, int] = {}  # "beam B1 section" -> line in the job file, for errors found later

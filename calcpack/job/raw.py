@@ -90,6 +90,34 @@ class RawSection(Raw):
     designation: str | None = None
 
 
+class RawRolled(Raw):
+    """A rolled section of the job's own table."""
+
+    designation: str
+    family: str = ""
+    depth: Size
+    width: Size
+    web: Size
+    flange: Size
+    root_radius: Length = 0.0
+    source: str = ""
+
+
+class RawGrade(Raw):
+    """A steel grade of the job's own table."""
+
+    name: str
+    kind: Literal["steel"] = "steel"
+    modulus: Stress
+    unit_weight: UnitWeight
+    fy: Stress
+    fu: Stress | None = None
+    fy_thick: Stress | None = None
+    fu_thick: Stress | None = None
+    G: Stress | None = None
+    source: str = ""
+
+
 class RawPanel(Raw):
     """A slab panel."""
 

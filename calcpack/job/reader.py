@@ -23,6 +23,7 @@ from calcpack.job.members import (
     read_wall,
 )
 from calcpack.job.model import Basis, Column, Header, Job, OwnCombination, Submission
+from calcpack.job.own_tables import catalogue
 from calcpack.job.plan import CLOSE, Grid, distance
 from calcpack.job.raw import RawGrid
 from calcpack.job.source import Document, FileBytes, KeyPath, parse_toml, read_bytes
@@ -32,7 +33,8 @@ from calcpack.job.tables import load, read_table
 MEMBERS = ("panel", "beam", "column", "wall")
 SINGLE = ("job", "submission", "basis", "grid")
 NAMED = {"materials": "material", "sections": "section"}
-TABLES = {f"{kind}s": kind for kind in MEMBERS} | {"beam_loads": "beam load"}
+OWN = {"rolled_sections": "rolled section", "grades": "grade"}
+TABLES = {f"{kind}s": kind for kind in MEMBERS} | {"beam_loads": "beam load"} | OWN
 TOP = ("format", *SINGLE, *NAMED, *MEMBERS, "combination", *TABLES)
 OCCUPANCIES = tuple("ABCDEFGH")
 
@@ -85,14 +87,19 @@ class _Reader:
         loads = self._loads(entries["beam"])
         self._check_marks(entries)
         grid = self._grid()
+        own = {key: list(self._table(key)) if key in self.data else [] for key in OWN}
+        known = catalogue(own["rolled_sections"], own["grades"], self.problems)
+        sections = {
+            key: read_section(key, each, self.problems, known) for key, each in self._named("sections")
+        }
         around = Surroundings(
             grid=grid,
             basis=basis,
             units=header.units if header else "SI",
             materials={
-                key: read_material(key, each, self.problems) for key, each in self._named("materials")
+                key: read_material(key, each, self.problems, known) for key, each in self._named("materials")
             },
-            sections={key: read_section(key, each, self.problems) for key, each in self._named("sections")},
+            sections=sections,
             problems=self.problems,
         )
         panels = [read_panel(each, around) for each in entries["panel"]]
@@ -119,6 +126,11 @@ class _Reader:
             columns=_sound(columns),
             walls=_sound(walls),
             combinations=combinations,
+            candidates={
+                each.family: known.families[each.family]
+                for each in sections.values()
+                if each is not None and each.open
+            },
             lines=self.lines,
         )
 
@@ -243,7 +255,9 @@ class _Reader:
         kind, name = TABLES[key], self.data[key]
         if not isinstance(name, str):
             example = f'{key} = "{key}.csv"'
-            singly = "" if kind == "beam load" else f", or write each {kind} as [[{kind}]]"
+            singly = (
+                "" if key not in (f"{each}s" for each in MEMBERS) else f", or write each {kind} as [[{kind}]]"
+            )
             self._problem("this key names a table file", f"write for example {example}{singly}", key)
             return
         try:
@@ -261,7 +275,7 @@ class _Reader:
             self.files.append(file)
         for entry in entries:
             sweep(entry, self.problems)
-            if entry.mark and kind != "beam load":
+            if entry.mark and kind in MEMBERS:
                 self._keep_lines(entry.mark, entry)
             yield entry
 

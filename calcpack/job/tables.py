@@ -13,6 +13,7 @@ from typing import Any, NamedTuple
 
 from calcpack.job.entries import Entry, Problems
 from calcpack.job.errors import CalcpackError, Problem, nearest
+from calcpack.job.raw import STEEL_VALUES
 from calcpack.job.source import FileBytes, read_bytes
 from calcpack.job.units import KINDS, dimension, kind_of
 
@@ -58,7 +59,27 @@ COLUMNS: dict[str, dict[str, str]] = {
         "point": "force",
         "at": "length",
     },
+    "rolled section": {
+        "designation": "text",
+        "family": "text",
+        "depth": "length",
+        "width": "length",
+        "web": "length",
+        "flange": "length",
+        "root_radius": "length",
+        "source": "text",
+    },
+    "grade": {
+        "name": "text",
+        "kind": "text",
+        "modulus": "stress",
+        "unit_weight": "unit weight",
+        **dict.fromkeys(STEEL_VALUES, "stress"),
+        "source": "text",
+    },
 }
+# The column that says what a row is about.
+SAYS = {"beam load": "beam", "rolled section": "designation", "grade": "name"}
 
 Row = tuple[int, list[Any]]  # line (or row of the sheet), cells
 
@@ -133,7 +154,7 @@ def read_table(file: FileBytes, kind: str, problems: Problems) -> list[Entry]:
 
 def _spoken(kind: str, data: dict[str, Any]) -> str | None:
     """What a row is about: "beam B1"."""
-    mark = data.get("beam" if kind == "beam load" else "mark")
+    mark = data.get(SAYS.get(kind, "mark"))
     return f"{kind.removesuffix(' load')} {mark}" if mark else None
 
 

@@ -15,7 +15,6 @@ from typing import Any, NamedTuple
 from calcpack.framing import Frame, FramedBeam, frame
 from calcpack.framing.carry import SELF_WEIGHT
 from calcpack.job.errors import CalcpackError, Problem
-from calcpack.job.library import families
 from calcpack.job.model import Job, Section, Tried
 from calcpack.notebook.parameters import beam_input
 from calcpack.notebook.study import Study
@@ -128,7 +127,7 @@ def choose_sections(framed: Frame, judge: Judge | None = None) -> Frame:
     for mark in framed.order:
         section = framed.beams[mark].beam.section
         if section is not None and section.open:
-            chosen = lightest(framed, mark, families()[section.family], judge or _by_template)
+            chosen = lightest(framed, mark, framed.job.candidates[section.family], judge or _by_template)
             framed = frame(_with_section(framed.job, mark, chosen))
     return framed
 
