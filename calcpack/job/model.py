@@ -112,8 +112,9 @@ class Section(Frozen):
     area: float  # [m2]; for an effective flange that of the web over the full depth
     inertia: float  # [m4], about the horizontal axis
     source: str = ""
-    family: str = ""  # "W", "IPE", "HEA", "HEB" where the lightest of it is asked for
+    family: str = ""  # "W", "IPE", one of the job's own, where the lightest of it is asked for
     tried: tuple[Tried, ...] = ()
+    fits: bool = True  # False where none of the family does and this one comes nearest
 
     @property
     def open(self) -> bool:

@@ -24,6 +24,7 @@ from calcpack.statics import LineLoad
 # Template -> module with worst_of(study) -> (words, ratio): the check that is used most.
 CHOOSERS = {
     "steel_beam_aisc360": "calcpack.notebook.sections.steel_aisc360",
+    "steel_beam_en1993": "calcpack.notebook.sections.steel_en1993",
 }
 
 
@@ -67,7 +68,8 @@ def lightest(frame_: Frame, mark: str, candidates: Sequence[Section], judge: Jud
             return _chosen(frame_, mark, candidate, found)
         found.append((candidate, worst))
     nearest = min(found, key=lambda each: round(each[1].ratio, 12))
-    return _chosen(frame_, mark, nearest[0], [each for each in found if each is not nearest])
+    others = [each for each in found if each is not nearest]
+    return _chosen(frame_, mark, nearest[0], others).model_copy(update={"fits": False})
 
 
 def _chosen(frame_: Frame, mark: str, section: Section, found: Sequence[tuple[Section, Worst]]) -> Section:

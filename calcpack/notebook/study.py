@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Any
@@ -147,27 +147,31 @@ class Study:
     @cached_property
     def design_sets(self) -> tuple[LoadSet, ...]:
         """The load sets the design rests on: actual, or with equivalent uniform loads in the spans."""
+        return self._sets(self._lessened)
+
+    def _sets(self, taken: Callable[[Case, Sequence[Load]], tuple[Load, ...]]) -> tuple[LoadSet, ...]:
+        """The load sets of the design with each case's loads as taken."""
         if self.given.design_loads == "actual":
-            return tuple(replace(each, loads=self._lessened(each.case, each.loads)) for each in self.actual)
+            return tuple(replace(each, loads=taken(each.case, each.loads)) for each in self.actual)
+        whole = {case: taken(case, self.given.loads[case]) for case in self.cases}
         return (
-            *(LoadSet(case, self._uniform(case)) for case in self.cases if case not in PLACED),
+            *(LoadSet(case, self._uniform(whole[case])) for case in self.cases if case not in PLACED),
             *(
-                LoadSet(case, self._uniform(case, number), f"{self.given.mark} span {number + 1}")
+                LoadSet(case, self._uniform(whole[case], number), f"{self.given.mark} span {number + 1}")
                 for case in self.cases
                 if case in PLACED
                 for number in range(len(self.spans))
             ),
         )
 
-    def _uniform(self, case: Case, only: int | None = None) -> tuple[Load, ...]:
-        """A case with its spans' loads made uniform, on all spans or on one.
+    def _uniform(self, given: Sequence[Load], only: int | None = None) -> tuple[Load, ...]:
+        """A case's loads made uniform in the spans, on all spans or on one.
 
         Overhangs keep their actual load, and point loads at span ends stay where they are: at
         the end of the span before them.
         """
         field = FIELD[self.given.equivalent]
         loads: list[Load] = []
-        given = self._lessened(case, self.given.loads[case])
         for number, (start, end) in enumerate(self.given.spans):
             if only is not None and number != only:
                 continue
@@ -189,6 +193,17 @@ class Study:
     def analysed(self) -> AnalysedBeam:
         """The beam under all its combinations."""
         return analyse_beam(self.line, self.design_sets, self.given.actions.combinations, self.stiffness)
+
+    @cached_property
+    def handed_on(self) -> AnalysedBeam:
+        """The beam with its live load in full: what stands below it applies its own reduction.
+
+        The same as ``analysed`` where nothing is reduced.
+        """
+        if not self.reduced_sources:
+            return self.analysed
+        full = self._sets(lambda _, loads: tuple(loads))
+        return analyse_beam(self.line, full, self.given.actions.combinations)
 
     @cached_property
     def by_case(self) -> Response:

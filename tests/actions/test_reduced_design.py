@@ -20,6 +20,7 @@ from calcpack.notebook.sections import (
     state_loads,
     state_transfer,
 )
+from calcpack.notebook.sections.closing import state_summary
 from calcpack.notebook.study import Study, results_of
 from calcpack.notebook.templates import find_template
 from calcpack.notebook.work import Work
@@ -314,3 +315,59 @@ def test_just_beyond_the_least_area_the_sheet_reduces(floor):
     assert "Interior beam or edge beam" in said(work)
     cantilever = 'free = ["end"]\nfixed = ["start"]\n'
     assert "Cantilever, overhang" in said(written(floor(G1=cantilever, long="40"), "G1"))
+
+
+def reaction_table(work):
+    return next(
+        block
+        for block in work.sheet.blocks
+        if block["type"] == "table" and str(block["caption"]).startswith("Reactions, upward")
+    )
+
+
+def test_what_is_handed_on_is_not_reduced(floor):
+    """Two supports, all loads symmetric: 1.2 D + 1.6 L of each case's reaction, L in full."""
+    work = written(floor(), "B2")
+    given, full = work.study.given, work.study.handed_on
+    dead, live = (given.reactions[case] for case in ("dead", "live"))
+    for at in (0, 1):
+        largest = max(each.reactions_max[at] for each in full.of_limit("strength"))
+        own = max(each.reactions_max[at] for each in work.study.analysed.of_limit("strength"))
+        assert largest == pytest.approx(1.2 * dead[at] + 1.6 * live[at], rel=1e-9)
+        assert own == pytest.approx(1.2 * dead[at] + 1.6 * B2_FACTOR * live[at], rel=1e-9)
+    table = reaction_table(work)
+    assert [str(column["head"]) for column in table["columns"]][-4:] == [
+        "largest, strength, live in full", "smallest, strength, live in full",
+        "largest, own design", "smallest, own design",
+    ]  # fmt: skip
+    number = work.lines["reduction"].no
+    assert f"This beam's own reduction of live load (line {number}) is not handed on" in said(work)
+    state_summary(work)
+    assert "The live load handed on is in full" in said(work)
+    # what comes down on the girder is what B2 hands on
+    girder = study(floor(), "G1")
+    assert [each.reactions["live"] for each in girder.given.carried if each.mark == "B2"] == pytest.approx(
+        [live[0]]
+    )
+
+
+def test_without_reduction_one_pair_of_strength_reactions(floor):
+    work = written(floor(rule="none"), "B2")
+    assert work.study.handed_on is work.study.analysed
+    assert len(reaction_table(work)["columns"]) == 6
+    assert "own design" not in said(work)
+
+
+def test_equivalent_loads_are_handed_on_in_full_too(floor):
+    framed = floor()
+    found = study(framed, "B2")
+    given = found.given.model_copy(update={"design_loads": "equivalent"})
+    even = type(found)(given)
+    live = [
+        load
+        for each in even._sets(lambda _, loads: tuple(loads))
+        if each.case == "live"
+        for load in each.loads
+    ]
+    reduced = [load for each in even.design_sets if each.case == "live" for load in each.loads]
+    assert reduced[0].first == pytest.approx(B2_FACTOR * live[0].first, rel=1e-9)

@@ -6,7 +6,6 @@ from typing import Any
 
 from calcpack.clauses.aisc360 import strength
 from calcpack.clauses.aisc360.shape_lines import AISC
-from calcpack.job.model import Section
 from calcpack.notebook.sections._steel_aisc360 import (
     SteelBeam,
     bending_name,
@@ -68,6 +67,11 @@ def worst_of(study: Study) -> tuple[str, float]:
     """The check that is used most, by name, with its ratio of demand to resistance.
 
     A shape whose plastic moment is too small already is not looked at any further.
+
+    Raises
+    ------
+    CalcpackError
+        The section is no rolled I-shape, the material no steel, a key of the design does not fit.
     """
     beam = SteelBeam(steel_design(study))
     design = beam.design
@@ -82,27 +86,3 @@ def worst_of(study: Study) -> tuple[str, float]:
     rows = _rows(Work(study, Sheet(study.given.mark, study.system)), beam)
     name, demand, resistance, _ = max(rows, key=lambda row: round(row[1] / row[2], 12))
     return name, demand / resistance
-
-
-def chosen_words(section: Section) -> str:
-    """How a section came to be the one: what is lighter, and what fails with it.
-
-    Examples
-    --------
-    >>> from calcpack.job.library import rolled_sections
-    >>> from calcpack.job.model import Tried
-    >>> tried = tuple(Tried(designation=name, fails="shear", ratio=1.234) for name in ("W8X10", "W10X12"))
-    >>> words = chosen_words(rolled_sections()["w12x14"].model_copy(update={"family": "W", "tried": tried}))
-    >>> print(words.partition("resistance: ")[2])
-    shear: W8X10 (1.23), W10X12 (1.23).
-    """
-    reasons: dict[str, list[str]] = {}
-    for each in section.tried:
-        reasons.setdefault(each.fails, []).append(f"{each.designation} ({each.ratio:.2f})")
-    if not section.tried:
-        return f"{section.designation} is the lightest {section.family} shape of all."
-    others = "; ".join(f"{fails}: {', '.join(names)}" for fails, names in reasons.items())
-    return (
-        f"{section.designation} is the lightest {section.family} shape that passes all checks of this sheet. "
-        f"Tried before it and failing, by what fails most, with the ratio of demand to resistance: {others}."
-    )

@@ -31,6 +31,8 @@ def state_summary(work: Work) -> None:
             for row, case in enumerate(study.cases)
         )
         parts.append(f"To {bearing.kind} {bearing.mark}: {loads}.")
+    if study.reduced_sources:
+        parts.append("The live load handed on is in full, not reduced.")
     if not unmet:
         parts.append("All checks on this sheet are satisfied.")
     sheet.text(" ".join(parts))

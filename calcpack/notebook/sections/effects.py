@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from calcpack.actions import CombinationResult
+from calcpack.actions import AnalysedBeam, CombinationResult
 from calcpack.figures import response_figure
 from calcpack.figures.response import CurveData, Quantity
 from calcpack.job.model import Case
@@ -55,11 +55,19 @@ def state_combinations(work: Work) -> None:
         ],
         rows,
         caption="Largest moments, shear (by size) and reactions of each combination, live load where it is "
-        f"worst for each; all but strength are service combinations.{_names(work)}",
+        f"worst for each{_lessened(work)}; all but strength are service combinations.{_names(work)}",
         strong_rows=strong,
     )
     if study.given.design_loads == "actual":
         _by_hand(work, moment, shear)
+
+
+def _lessened(work: Work) -> str:
+    """That the live load of the combinations is the reduced one, where it is."""
+    factor = work.lines.get("reduction")
+    if not work.study.reduced_sources:
+        return ""
+    return f" and reduced as in line {factor.no}" if factor is not None else " and reduced"
 
 
 def _names(work: Work) -> str:
@@ -263,9 +271,12 @@ def extremes_of(work: Work) -> list[tuple[Quantity, float, float]]:
 
 
 def _reactions(work: Work) -> None:
-    """What each support gets: case by case, every span loaded, and the worst of the combinations."""
-    study, given, analysed = work.study, work.given, work.study.analysed
-    strength = analysed.of_limit("strength")
+    """What each support gets: case by case, every span loaded, and the worst of the combinations.
+
+    What is handed on holds the live load in full; a beam that reduces its own says its own reactions apart.
+    """
+    study, given = work.study, work.given
+    own = [study.analysed] if study.reduced_sources else []
     rows: list[list[str]] = []
     for at, bearing in enumerate(given.bearings):
         rows.append(
@@ -276,19 +287,42 @@ def _reactions(work: Work) -> None:
                     work.show(float(study.by_case.reactions[row][at]), "kN")
                     for row in range(len(study.cases))
                 ),
-                work.show(max(each.reactions_max[at] for each in strength), "kN"),
-                work.show(min(each.reactions_min[at] for each in strength), "kN"),
+                *(
+                    work.show(value, "kN")
+                    for analysed in (study.handed_on, *own)
+                    for value in _strength(analysed, at)
+                ),
             ]
         )
+    full = "strength, live in full" if own else "strength"
     work.sheet.table(
         [
             ("", "left"),
             ("passed on to", "left"),
             *((CASE_WORDS[case], "right") for case in study.cases),
-            ("largest, strength", "right"),
-            ("smallest, strength", "right"),
+            (f"largest, {full}", "right"),
+            (f"smallest, {full}", "right"),
+            *((f"{each}, own design", "right") for each in ("largest", "smallest") if own),
         ],
         rows,
-        caption="Reactions, upward: unfactored with every span loaded, and the worst of the strength "
-        "combinations.",
+        caption=_reaction_words(work),
+    )
+
+
+def _strength(analysed: AnalysedBeam, at: int) -> tuple[float, float]:
+    """The largest and the smallest reaction of a support under the strength combinations [kN]."""
+    strength = analysed.of_limit("strength")
+    return max(each.reactions_max[at] for each in strength), min(each.reactions_min[at] for each in strength)
+
+
+def _reaction_words(work: Work) -> str:
+    words = "Reactions, upward: unfactored, case by case, with every span loaded; and the worst of the "
+    if not work.study.reduced_sources:
+        return words + "strength combinations."
+    factor = work.lines.get("reduction")
+    line = f" (line {factor.no})" if factor is not None else ""
+    return (
+        words + "strength combinations with the live load in full. This beam's own reduction of live load"
+        f"{line} is not handed on: what takes these reactions applies the reduction of its own area. Own "
+        "design: with this beam's reduction, for its bearings alone."
     )

@@ -17,8 +17,9 @@ from calcpack.notebook.sections._steel_aisc360 import (
     span_words,
     steel_design,
 )
-from calcpack.notebook.sections._steel_aisc360_shown import chosen_words, state_shown, worst_of
+from calcpack.notebook.sections._steel_aisc360_shown import state_shown, worst_of
 from calcpack.notebook.sections._steel_aisc360_web import state_deflection, state_shear
+from calcpack.notebook.sections.steel_chosen import chosen_words
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line
 from calcpack.sheet.runs import Runs

@@ -16,12 +16,14 @@ from calcpack.clauses.en1993.lines_profile import (
     take_profile,
 )
 from calcpack.clauses.en1993.lines_section import bending, bending_beside_shear, shear, shear_share
+from calcpack.notebook.sections.steel_chosen import chosen_words
 from calcpack.notebook.sections.steel_en1993_given import design_of
 from calcpack.notebook.sections.steel_en1993_results import (
     SENSE,
     force_name,
     place,
     state_steel_results,
+    worst_of,
 )
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line, formula
@@ -34,6 +36,7 @@ __all__ = [
     "state_steel_resistance",
     "state_steel_results",
     "state_steel_section",
+    "worst_of",
 ]
 
 ORIGIN = "design"  # the beam's own keys in the job file
@@ -52,6 +55,8 @@ def state_steel_section(work: Work, beam: SteelBeam) -> tuple[ProfileLines, Part
     assert section is not None
     assert material is not None
     sheet.section("Section, steel and class")
+    if section.family:
+        sheet.text(chosen_words(section))
     given = take_profile(
         sheet, profile, f"section {section.key}", f"material {material.key}", work.lines.get("area")
     )

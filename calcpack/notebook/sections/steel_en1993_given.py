@@ -6,7 +6,7 @@ from typing import Any
 
 from calcpack.clauses.en1993.design import Conditions, SteelBeam, design
 from calcpack.clauses.en1993.rules import Factors
-from calcpack.clauses.en1993.section import profile_of
+from calcpack.clauses.en1993.section import Profile, profile_of
 from calcpack.clauses.en1993.segments import segments
 from calcpack.notebook.work import Work
 
@@ -26,8 +26,6 @@ def design_of(work: Work) -> SteelBeam:
     """
     given = work.given
     keys: dict[str, Any] = given.design
-    factors = Factors(keys["gamma_M0"], keys["gamma_M1"], keys["eta"], keys["plateau"], keys["beta"])
-    profile = profile_of(given.section, given.material, factors)
     parts = segments(
         given.spans,
         [bearing.at for bearing in given.bearings],
@@ -45,4 +43,17 @@ def design_of(work: Work) -> SteelBeam:
         bears_at_supports=held not in ("at supports", "everywhere"),
         bears_at_loads=held not in ("at loads", "everywhere"),
     )
-    return design(profile, work.study.analysed, parts, conditions, given.fixed)
+    return design(profile_in(work), work.study.analysed, parts, conditions, given.fixed)
+
+
+def profile_in(work: Work) -> Profile:
+    """The beam's section with its steel and the factors of the job.
+
+    Raises
+    ------
+    CalcpackError
+        The section is no rolled one, or the material no steel.
+    """
+    keys: dict[str, Any] = work.given.design
+    factors = Factors(keys["gamma_M0"], keys["gamma_M1"], keys["eta"], keys["plateau"], keys["beta"])
+    return profile_of(work.given.section, work.given.material, factors)

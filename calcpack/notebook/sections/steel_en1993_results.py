@@ -6,9 +6,13 @@ from typing import Any, NamedTuple
 
 from calcpack.clauses.en1993.design import LocalForce, SteelBeam
 from calcpack.clauses.en1993.lines_profile import RANK
-from calcpack.clauses.en1993.rules import LIMITS, STRESS_SHARE
+from calcpack.clauses.en1993.rules import LIMITS, STRESS_SHARE, WEB_BUCKLING
+from calcpack.clauses.en1993.section import Profile
 from calcpack.figures import Capacity, Governing, capacity_figure, deflected_shape, section_figure
+from calcpack.notebook.sections.steel_en1993_given import design_of, profile_in
+from calcpack.notebook.study import Study
 from calcpack.notebook.work import Work
+from calcpack.sheet import Sheet
 from calcpack.statics import Extreme
 
 SAMPLES = 121  # odd: the middle is one of them
@@ -121,14 +125,44 @@ def state_steel_results(work: Work, beam: SteelBeam) -> None:
     _figures(work, beam)
 
 
-def outside(beam: SteelBeam) -> list[str]:
-    """The limits of validity that the beam lies outside of, in words."""
-    profile = beam.profile
-    values = {
+def worst_of(study: Study) -> tuple[str, float]:
+    """The check that is used most, by name, with its ratio of demand to resistance.
+
+    A section outside the limits of validity, or whose bending resistance is too small already, is not looked
+    at any further.
+
+    Raises
+    ------
+    CalcpackError
+        The section is no rolled one, the material no steel, or points held are given twice.
+    """
+    work = Work(study, Sheet(study.given.mark, study.system))
+    profile = profile_in(work)
+    for key, value in values_of(profile).items():
+        if not LIMITS[key].holds(value):
+            return LIMITS[key].says, max(value / LIMITS[key].largest, LIMITS[key].least / value)
+    slender = profile.web_depth / profile.shape.web / (WEB_BUCKLING * profile.epsilon / profile.factors.eta)
+    if profile.web_may_buckle:
+        return "slenderness of the web", slender
+    moment = abs(study.analysed.governing_moment.moment_governing.value)
+    if moment > profile.bending:
+        return "bending", moment / profile.bending
+    worst = max(shown_of(work, design_of(work)), key=lambda row: round(row.ratio, 12))
+    return worst.says, worst.ratio
+
+
+def values_of(profile: Profile) -> dict[str, float]:
+    """What the limits of validity bound: by their keys, each in the limit's unit."""
+    return {
         "thickness": profile.thickness * 1e3,
         "yield": profile.strength / 1e3,
         "class": profile.section_class,
     }
+
+
+def outside(beam: SteelBeam) -> list[str]:
+    """The limits of validity that the beam lies outside of, in words."""
+    values = values_of(beam.profile)
     return [
         limit.says + (" (class 4 is not covered)" if key == "class" else "")
         for key, limit in LIMITS.items()

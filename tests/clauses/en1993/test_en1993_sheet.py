@@ -9,7 +9,9 @@ from calcpack.framing import frame
 from calcpack.job import read_job
 from calcpack.job.errors import CalcpackError
 from calcpack.job.house import house_folder
+from calcpack.job.library import families
 from calcpack.notebook import load_sheet, sections
+from calcpack.notebook.lightest import choose_sections
 from calcpack.notebook.parameters import beam_input, to_text
 from calcpack.notebook.sections import steel_en1993 as steel
 from calcpack.notebook.sections.closing import record_results
@@ -207,3 +209,82 @@ def test_template_says_what_it_does_not_cover():
     assert (
         settings["parameters"]["gamma_M0"]["default"] == settings["parameters"]["gamma_M1"]["default"] == 1.0
     )
+
+
+# The lightest section of a family
+
+
+def loft(tmp_path, designation, grade="S275", design="", more="", live="60 kN"):
+    path = tmp_path / "job.toml"
+    text = JOB.format(
+        units="SI", grade=grade, size=f'designation = "{designation}"', shape="rolled", design=design
+    )
+    path.write_text(more + text.replace("60 kN", live))
+    return frame(read_job(path))
+
+
+def ratio_with(tmp_path, designation, **changes):
+    work = started(loft(tmp_path, designation, **changes))
+    beam = steel.design_of(work)
+    return max(row.ratio for row in shown_of(work, beam))
+
+
+def started(framed):
+    template = find_template("steel_beam_en1993", framed.job.folder)
+    given = template.settle(framed.beams["G1"].beam.design, "G1")
+    return load_sheet(to_text(beam_input(framed, "G1", given, template.stamp)))
+
+
+@pytest.mark.parametrize("family", ["IPE", "HEA", "HEB", "W"])
+def test_the_lightest_that_passes_is_chosen(tmp_path, family):
+    settled = choose_sections(loft(tmp_path, f"lightest in {family}"))
+    chosen = settled.beams["G1"].beam.section
+    rows = [each.designation for each in families()[family]]
+    place = rows.index(chosen.designation)
+    assert [each.designation for each in chosen.tried] == rows[:place]
+    assert chosen.fits
+    assert place > 0
+    assert ratio_with(tmp_path, chosen.designation) <= 1
+    for each in chosen.tried[-3:]:
+        assert each.ratio > 1
+        found = ratio_with(tmp_path, each.designation)
+        # outside the limits of validity a section fails whatever its ratios
+        assert found == pytest.approx(each.ratio, rel=1e-9) or each.fails in ("bending", CLASS)
+    work = started(settled)
+    _, results = written(work)
+    assert all(check["passes"] for check in results["checks"])
+    said = " ".join(str(block) for block in work.sheet.blocks)
+    assert f"{chosen.designation} is the lightest {family} section that passes" in said
+    assert f"Next lighter: {chosen.tried[-1].designation}, " in said
+
+
+CLASS = "class of the section"
+
+
+def test_a_section_of_class_4_is_never_chosen(tmp_path):
+    """A web 482 mm high and 2.5 mm thick is far beyond 124 ε."""
+    (tmp_path / "own.csv").write_text(
+        "designation,family,depth [mm],width [mm],web [mm],flange [mm],root_radius [mm]\n"
+        "thin,own,500,200,2.5,9,10\nstout,own,500,200,9,14,21\n"
+    )
+    own = 'rolled_sections = "own.csv"\n'
+    work = started(loft(tmp_path, "thin", more=own, live="1 kN"))
+    says, ratio = steel.worst_of(work.study)
+    assert says == CLASS
+    assert ratio == pytest.approx(4 / 3)
+    chosen = choose_sections(loft(tmp_path, "lightest in own", more=own)).beams["G1"].beam.section
+    assert (chosen.designation, chosen.tried[0].fails) == ("stout", CLASS)
+
+
+def test_where_none_passes_the_nearest_is_shown_with_what_it_lacks(tmp_path):
+    settled = choose_sections(loft(tmp_path, "lightest in IPE", live="6000 kN"))
+    chosen = settled.beams["G1"].beam.section
+    assert not chosen.fits
+    assert len(chosen.tried) == len(families()["IPE"]) - 1
+    work = started(settled)
+    _, results = written(work)
+    assert not all(check["passes"] for check in results["checks"])
+    said = " ".join(str(block) for block in work.sheet.blocks)
+    assert f"None of the {len(families()['IPE'])} IPE sections passes all checks" in said
+    assert "is the lightest" not in said
+    assert "Not satisfied" in said
