@@ -314,7 +314,9 @@ def test_chosen_by_the_template(tmp_path):
     beam = steel_aisc360.design_beam(work)
     sections.state_given(work)
     steel_aisc360.state_section(work, beam)
-    said = next(str(block["runs"]) for block in work.sheet.blocks if "is the lightest W section" in str(block))
+    said = next(
+        str(block["runs"]) for block in work.sheet.blocks if "is the lightest W section" in str(block)
+    )
     assert f"The {len(chosen.tried)} lighter ones were tried and fail" in said
     assert f"Next lighter: {chosen.tried[-1].designation}, {chosen.tried[-1].fails}" in said
 
