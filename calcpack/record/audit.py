@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import multiprocessing
 import os
-from collections.abc import Callable, Iterator, Mapping
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from concurrent.futures import ProcessPoolExecutor
 from dataclasses import dataclass, replace
 from pathlib import Path
@@ -14,9 +14,9 @@ import calcpack
 from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.copies import audit_copies
 from calcpack.record.auditing.files import SheetFiles, Target, find_target
-from calcpack.record.auditing.findings import Audit, Finding, SheetAudit
+from calcpack.record.auditing.findings import Audit, Finding, SheetAudit, unchecked
 from calcpack.record.auditing.given import Given, Notebook, read_notebook
-from calcpack.record.auditing.inputs import audit_job, job_facts, left_at_earlier_revision
+from calcpack.record.auditing.inputs import JobFacts, audit_job, job_facts, left_at_earlier_revision
 from calcpack.record.auditing.lines import WorkedLine, work_lines
 from calcpack.record.auditing.origins import audit_origins
 from calcpack.record.auditing.pages import audit_pages
@@ -27,6 +27,14 @@ from calcpack.record.auditing.sources import audit_sources
 from calcpack.record.auditing.together import Digest, audit_together, digest_of
 
 Follow = Callable[[str, int, int], None]  # stage, steps done, steps in all
+_UNLIKE_A_SHEET = (
+    ArithmeticError,
+    AttributeError,
+    LookupError,
+    RuntimeError,  # a recursion without end among them
+    TypeError,
+    ValueError,
+)
 FEW = 12  # sheets that one process does as fast as several
 
 
@@ -102,7 +110,7 @@ def audit_sheet(
     digests : set of str
         Hashes that the job's input may have.
     facts : mapping
-        What the job file says, from ``job_facts``.
+        What the job file says: the data of ``job_facts``.
     job_folder : Path
         Where the job's own templates may lie.
 
@@ -117,6 +125,23 @@ def audit_sheet(
         Something cannot be read, or is beyond all bounds.
     """
     opened = open_sheet(files)
+    try:
+        return _audited_sheet(opened, files.page_texts(), digests, facts, job_folder)
+    except _UNLIKE_A_SHEET as error:
+        # Whoever made the files decides what is in them: where they are like no sheet's, that is their fault.
+        raise CalcpackError(
+            f"it is not written as a sheet's files are, and the audit ends here ({type(error).__name__})",
+            file=files.record_name,
+        ) from error
+
+
+def _audited_sheet(
+    opened: OpenedSheet,
+    pages: Sequence[str] | None,
+    digests: frozenset[str],
+    facts: Mapping[str, Any] | None,
+    job_folder: Path | None,
+) -> tuple[SheetAudit, Digest]:
     record, notebook, given, lines = opened.record, opened.notebook, opened.given, opened.lines
     results, _ = audit_results(record, given, lines)
     findings: list[Finding] = [line.finding for line in lines]
@@ -126,7 +151,7 @@ def audit_sheet(
         findings += audit_sources(given)
     findings += audit_job(given, facts)
     findings += audit_copies(record, notebook, lines)
-    findings += audit_pages(record, files.page_texts())
+    findings += audit_pages(record, pages)
     earlier = facts is not None and left_at_earlier_revision(record.data["job"], facts["header"])
     findings += audit_provenance(record, notebook, digests, job_folder, earlier)
     stated = str(notebook.metadata.get("input", "")) if notebook is not None else ""
@@ -175,7 +200,8 @@ def audit_target(
     target = find_target(path, records=records, job=job)
     if only is not None:
         target = replace(target, sheets=(choose_sheet(target, only),), whole=False)
-    common = _Common(input_digests(target.inputs), job_facts(target), target.job_folder)
+    job_file = job_facts(target)
+    common = _Common(input_digests(target.inputs), job_file.data, target.job_folder)
     follow("reading the files", 1, 1)
     audits, digests = [], []
     count = len(target.sheets)
@@ -184,13 +210,20 @@ def audit_target(
         audits.append(audit)
         digests.append(digest)
         follow("auditing the sheets", len(audits), count)
-    together = (*audit_together(target, digests), *audit_manifest(target))
+    together = (*_unread(job_file), *audit_together(target, digests), *audit_manifest(target))
     return Audit(
         target=target.name,
         sheets=tuple(audits),
         together=SheetAudit("", together),
         program=f"calcpack {calcpack.__version__}",
     )
+
+
+def _unread(job_file: JobFacts) -> Iterator[Finding]:
+    """A job file that is at hand and cannot be read is said, not passed over."""
+    if job_file.fault:
+        remark = f"it cannot be read, so that no sheet is held against it ({job_file.fault})"
+        yield unchecked("pack", "job file", remark)
 
 
 def _each(target: Target, common: _Common, processes: int | None) -> Iterator[tuple[SheetAudit, Digest]]:

@@ -15,6 +15,7 @@ from calcpack.record.auditing.reading import RecordLine
 
 COLUMNS = ("line", "says", "printed", "recomputed", "difference", "verdict")
 ELSEWHERE = "files together"
+MOST_WRONG = 60  # rows shown unless all are asked for
 
 
 def _table(title: str, columns: Sequence[str], right: Sequence[str] = ()) -> Table:
@@ -43,7 +44,7 @@ def print_audit(audit: Audit, console: Console, *, every: bool = False) -> None:
         for sheet in audit.all:
             _print_all(sheet, console)
     _print_summary(audit, console)
-    _print_wrong(audit, console)
+    _print_wrong(audit, console, None if every else MOST_WRONG)
     _print_open(audit, console)
     wrong = sum(len(sheet.wrong) for sheet in audit.all)
     checked = sum(len(sheet.findings) - len(sheet.open) for sheet in audit.all)
@@ -91,15 +92,20 @@ def wrong_rows(audit: Audit) -> Iterator[list[str]]:
             ]
 
 
-def _print_wrong(audit: Audit, console: Console) -> None:
-    rows = list(wrong_rows(audit))
-    if not rows:
+def _print_wrong(audit: Audit, console: Console, most: int | None) -> None:
+    found = list(wrong_rows(audit))
+    if not found:
         return
     console.print()
+    rows = found[:most]
     table = _table("What is wrong", ["sheet", "where", "says", "stated", "recomputed", "what is wrong"])
     for row in rows:
         _row(table, row)
     console.print(table)
+    if len(found) > len(rows):
+        console.print(
+            Text(f"... and {len(found) - len(rows)} more; --all, --json and --report have them all.")
+        )
 
 
 def open_rows(audit: Audit) -> list[tuple[str, str]]:

@@ -11,7 +11,7 @@ from typing import Any
 from pydantic import BaseModel, ConfigDict, Field, ValidationError
 
 from calcpack.job.errors import CalcpackError
-from calcpack.record.auditing.pages import attached_files
+from calcpack.record.auditing.confined import READING
 from calcpack.record.register import Entry, open_register
 
 
@@ -86,7 +86,7 @@ def read_edition(source: str, record: Path | None = None) -> Edition:
         files = {each.name: _read(each) for each in sorted(sheets.glob("*")) if each.is_file()}
         return _edition(source, files)
     if path.is_file():
-        return _edition(source, attached_files(_read(path), path.name))
+        return _edition(source, READING.attached(_read(path), path.name))
     register = open_register(record)
     entry = _entry(source, register.entries())
     kept = {

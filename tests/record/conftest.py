@@ -110,4 +110,4 @@ def opened(loft):
         )
         for sheet in target.sheets
     }
-    return sheets, input_digests(target.inputs), job_facts(target)
+    return sheets, input_digests(target.inputs), job_facts(target).data

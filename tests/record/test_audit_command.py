@@ -90,7 +90,7 @@ def test_unreadable_input_ends_with_status_2(loft, tmp_path, monkeypatch, capsys
     assert run(monkeypatch, capsys, "audit", broken)[::2] == (2, "error: x.json: it is no JSON\n")
     (tmp_path / "x.pdf").write_bytes(b"%PDF-1.7 nothing")
     status, _, err = run(monkeypatch, capsys, "audit", tmp_path / "x.pdf")
-    assert (status, err) == (2, "error: x.pdf: it is no readable PDF\n")
+    assert (status, err) == (2, "error: x.pdf: it is no readable PDF: it is cut off or damaged\n")
     status, _, err = run(monkeypatch, capsys, "audit", tmp_path / "none")
     assert status == 2
     assert "there is no '" in err

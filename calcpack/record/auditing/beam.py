@@ -151,7 +151,10 @@ def solve(
         raise ValueError("the beam is a mechanism")
     free = np.setdiff1d(np.arange(2 * count), held)
     turned = np.zeros((2 * count, len(sets)))
-    turned[free] = splu(stiff[free][:, free].tocsc()).solve(forces[free])
+    try:
+        turned[free] = splu(stiff[free][:, free].tocsc()).solve(forces[free])
+    except RuntimeError:  # what scipy says of a singular matrix
+        raise ValueError("spans so unlike each other that the beam cannot be solved") from None
     residual = stiff @ turned - forces
     reactions = -residual[[2 * at[place] for place in supports]].T
     shear, moment, deflection = _recovered(h, turned, intensity)

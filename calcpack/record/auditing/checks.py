@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping, Sequence
 from typing import Any
 
+from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.book import Book
 from calcpack.record.auditing.findings import Finding, Verdict
 from calcpack.record.auditing.formulas import factor
@@ -13,6 +14,7 @@ from calcpack.record.auditing.reading import Record
 
 # The ratio stated for a demand without any resistance.
 NO_RESISTANCE = 1.0e6
+MOST_CHECKS = 60
 
 
 def audit_checks(book: Book, record: Record, lines: Sequence[WorkedLine]) -> None:
@@ -24,10 +26,17 @@ def audit_checks(book: Book, record: Record, lines: Sequence[WorkedLine]) -> Non
         Where the findings go.
     record : Record
     lines : sequence of WorkedLine
+
+    Raises
+    ------
+    CalcpackError
+        There are more checks than any sheet has.
     """
     checks = record.results.get("checks")
     if not isinstance(checks, list):
         return
+    if len(checks) > MOST_CHECKS:
+        raise CalcpackError(f"more than {MOST_CHECKS} checks", file=record.name, key="results.checks")
     required = [line for line in lines if line.sides is not None]
     taken: set[str] = set()
     for number, check in enumerate(checks):

@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 from pathlib import Path, PurePosixPath
 from typing import Any
 
 from calcpack.job.errors import CalcpackError
-from calcpack.record.auditing.pages import attached_files, page_texts, sheet_pages
+from calcpack.record.auditing.confined import READING
+from calcpack.record.auditing.pages import sheet_pages
 from calcpack.record.auditing.reading import read_json
 
 LARGEST_FILE = 400_000_000
@@ -45,7 +47,7 @@ class SheetFiles:
         """The visible text, page by page; None where there is no PDF."""
         if self.pages is not None or self.pdf is None:
             return self.pages
-        return page_texts(read_file(self.pdf), self.pdf.name)
+        return READING.texts(read_file(self.pdf), self.pdf.name)
 
 
 @dataclass(frozen=True)
@@ -87,14 +89,59 @@ def read_file(path: Path) -> bytes:
     Raises
     ------
     CalcpackError
-        It cannot be read, or is larger than any pack.
+        It cannot be read, is a folder or a device, or is larger than any pack.
     """
     try:
+        if not path.is_file():
+            raise CalcpackError("it is no file", file=str(path))
         if path.stat().st_size > LARGEST_FILE:
             raise CalcpackError("it is larger than any file of a pack", file=str(path))
         return path.read_bytes()
     except OSError as error:
         raise CalcpackError(f"it cannot be read: {error.strerror}", file=str(path)) from None
+
+
+def stays_below(name: str) -> bool:
+    """Whether a file's name taken from data is that of a file below the folder it is looked for in.
+
+    Examples
+    --------
+    >>> [stays_below(name) for name in ("sheets/B1.json", "../B1.json", "/etc/hosts", "", "a\\0b")]
+    [True, False, False, False, False]
+    """
+    parts = PurePosixPath(name).parts
+    plain = bool(parts) and not re.search(r"[\\:\x00-\x1f]", name)
+    return (
+        plain and not name.startswith("/") and ".." not in parts and all(len(part) <= 200 for part in parts)
+    )
+
+
+def is_file(path: Path) -> bool:
+    """Whether there is such a file; a name that no file can have is none."""
+    try:
+        return path.is_file()
+    except (OSError, ValueError):
+        return False
+
+
+def leads_out(path: Path, folder: Path) -> bool:
+    """Whether a file of a folder is a link to a place outside of it."""
+    return not path.resolve().is_relative_to(folder.resolve())
+
+
+def _own(path: Path, folder: Path) -> Path | None:
+    """A file of a folder, None where there is none.
+
+    Raises
+    ------
+    CalcpackError
+        It is a link that leads out of the folder.
+    """
+    if not path.is_file():
+        return None
+    if leads_out(path, folder):
+        raise CalcpackError("it is a link that leads out of the folder", file=path.name)
+    return path
 
 
 def find_target(path: Path, *, records: Path | None = None, job: Path | None = None) -> Target:
@@ -152,8 +199,8 @@ def _folder(path: Path) -> Target:
     job_json = _job_json(home / "job.json")
     order = {str(mark): place for place, mark in enumerate((job_json or {}).get("beams") or ())}
     records.sort(key=lambda each: (order.get(each.stem, len(order)), each.stem))
-    pack = home / "pack.pdf"
-    attached = attached_files(read_file(pack), pack.name) if pack.is_file() else {}
+    pack = _own(home / "pack.pdf", home)
+    attached = READING.attached(read_file(pack), pack.name) if pack else {}
     return Target(
         name=str(path),
         sheets=tuple(_beside(each) for each in records),
@@ -161,7 +208,7 @@ def _folder(path: Path) -> Target:
         whole=True,
         job_json=job_json,
         manifest=_manifest(home / "manifest.sha256"),
-        pack=pack if pack.is_file() else None,
+        pack=pack,
         attached=attached,
         inputs=_inputs(attached),
     )
@@ -178,13 +225,14 @@ def _record(path: Path) -> Target:
 
 
 def _beside(record: Path) -> SheetFiles:
-    notebook, pdf = record.with_suffix(".ipynb"), record.with_suffix(".pdf")
+    folder = record.parent
+    notebook = record.with_suffix(".ipynb")
     return SheetFiles(
-        record=read_file(record),
+        record=read_file(_own(record, folder) or record),
         record_name=record.name,
-        notebook=notebook if notebook.is_file() else None,
+        notebook=_own(notebook, folder),
         notebook_name=notebook.name,
-        pdf=pdf if pdf.is_file() else None,
+        pdf=_own(record.with_suffix(".pdf"), folder),
     )
 
 
@@ -208,7 +256,7 @@ def _manifest(path: Path) -> dict[str, str] | None:
 
 def _pdf(path: Path, records: Path | None) -> Target:
     content = read_file(path)
-    attached = attached_files(content, path.name)
+    attached = READING.attached(content, path.name)
     found = {name: data for name, data in attached.items() if name.endswith(".json")}
     if records is not None:
         if not records.is_dir():
@@ -221,7 +269,7 @@ def _pdf(path: Path, records: Path | None) -> Target:
             file=str(path),
             remedy="name the folder that holds the records with --record",
         )
-    pages = page_texts(content, path.name)
+    pages = READING.texts(content, path.name)
     by_mark = sheet_pages(pages)
     return Target(
         name=str(path),

@@ -12,6 +12,7 @@ from typing import Any
 from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.beam import Load
 from calcpack.record.auditing.reading import LARGEST_NOTEBOOK, read_json
+from calcpack.record.auditing.shapes import Each, Few, Maybe, misfit
 
 BLOCKS = "application/vnd.calcpack.blocks+json"
 RECORD = "application/vnd.calcpack.record+json"
@@ -19,6 +20,47 @@ RECORD = "application/vnd.calcpack.record+json"
 _CELL = re.compile(r"\s*[A-Z]+\s*=\s*r(?P<quote>'''|\"\"\")(?P<text>.*)(?P=quote)\s*", re.S)
 MOST_LOADS = 1_000
 CASES = ("dead", "live", "roof_live", "snow")
+LONGEST = 10_000.0  # beam [m]
+MOST_PANELS = 200  # that load one beam
+MOST_CUTS = 2_000_000  # dividing a panel again takes its corners to the third
+MOST_CORNERS = 60  # of a panel, and of what drains to one of its edges
+_LOADS = [{"source": str}]
+_SHARE = {
+    "edge": int, "carrier": str, "carrier_kind": str, "area": float,
+    "region": Few((float, float), MOST_CORNERS), "depth": Few((float, float), MOST_CORNERS),
+    "ends": Few((float, float), MOST_CORNERS),
+}  # fmt: skip
+_PANEL = {
+    "mark": str, "corners": Few((float, float), MOST_CORNERS), "thickness": float, "unit_weight": float,
+    **dict.fromkeys(CASES, float),
+}  # fmt: skip
+_PARAMETERS = {
+    "mark": str,
+    "length": float,
+    "bearings": [{"at": float, "kind": str, "mark": str}],
+    "fixed": (bool, bool),
+    "free": (bool, bool),
+    "equivalent": str,
+    "design_loads": str,
+    "loads": Each(_LOADS),
+    "placements": [{"case": str, "beam": str, "span": int, "loads": _LOADS}],
+    "section": Maybe(
+        {"key": str, "shape": str, "dimensions": Each(float), "area": float, "inertia": float},
+    ),
+    "material": Maybe({"key": str, "modulus": float, "unit_weight": float}),
+    "panels": Few(
+        {
+            "panel": _PANEL, "area": float, "sides": [float], "transfer": str,
+            "direction": Maybe((float, float)), "supported": [bool], "continuous": [bool],
+            "shares": Few(_SHARE, MOST_CORNERS),
+        },
+        MOST_PANELS,
+    ),
+    "carried": [{"mark": str, "at": float, "reactions": Each(float)}],
+    "basis": {"dividing_lines": str, "live_load_reduction": Maybe(str), "occupancy": Maybe(str)},
+    "actions": {"combinations": [{"name": str, "limit": str, "factors": Each(float)}]},
+    "tributary": Maybe([{"area": float, "source": str, "exempt": str}]),
+}  # fmt: skip
 
 
 @dataclass(frozen=True, slots=True)
@@ -57,6 +99,14 @@ class Given:
     def __init__(self, data: Mapping[str, Any], name: str) -> None:
         self.data = data
         self.name = name
+        if fault := misfit(data, _PARAMETERS):
+            raise CalcpackError(
+                f"its parameters are not those of a beam: {fault}",
+                file=name,
+                remedy="audit the record without it",
+            )
+        if sum(len(each["panel"]["corners"]) ** 3 for each in data["panels"]) > MOST_CUTS:
+            raise CalcpackError("more panels and corners than load a beam", file=name)
         try:
             self.mark = str(data["mark"])
             self.length = float(data["length"])
@@ -78,8 +128,11 @@ class Given:
             self.carried: Sequence[Mapping[str, Any]] = data["carried"]
             self.basis: Mapping[str, Any] = data["basis"]
             self.combinations: Sequence[Mapping[str, Any]] = data["actions"]["combinations"]
-            self.tributary: Sequence[Mapping[str, Any]] = data.get("tributary", ())
-            if not self.length > 0 or not self.bearings or not set(self.loads) <= set(CASES):
+            self.tributary: Sequence[Mapping[str, Any]] = data.get("tributary") or ()
+            within = all(0.0 <= bearing.at <= self.length for bearing in self.bearings)
+            if not 0.0 < self.length <= LONGEST or not self.bearings or not within:
+                raise ValueError
+            if not set(self.loads) <= set(CASES):
                 raise ValueError
         except (KeyError, TypeError, ValueError, IndexError, AttributeError):
             raise CalcpackError(
@@ -110,19 +163,20 @@ def _loads(data: Sequence[Mapping[str, Any]]) -> tuple[Load, ...]:
     return tuple(_load(each) for each in data)
 
 
+_POINT = {"at": float, "force": float, "source": str}
+_SEGMENT = {"start": float, "end": float, "first": float, "last": float, "source": str}
+
+
 def _load(data: Mapping[str, Any]) -> Load:
+    if fault := misfit(data, _POINT if "at" in data else _SEGMENT):
+        raise ValueError(fault)
     if "at" in data:
         at, force = float(data["at"]), float(data["force"])
-        return Load(at, at, force, force, str(data["source"]), point=True)
+        return Load(at, at, force, force, data["source"], point=True)
     if not data["end"] > data["start"]:
         raise ValueError
-    return Load(
-        float(data["start"]),
-        float(data["end"]),
-        float(data["first"]),
-        float(data["last"]),
-        str(data["source"]),
-    )
+    ends = float(data["start"]), float(data["end"])
+    return Load(*ends, float(data["first"]), float(data["last"]), data["source"])
 
 
 def recorded_loads(data: object) -> dict[str, tuple[Load, ...]]:
@@ -179,7 +233,8 @@ class Notebook:
 
     def _outputs(self) -> Iterator[Mapping[str, Any]]:
         for cell in self.cells:
-            for output in cell.get("outputs") or ():
+            outputs = cell.get("outputs")
+            for output in outputs if isinstance(outputs, list) else ():
                 data = output.get("data") if isinstance(output, dict) else None
                 if isinstance(data, dict):
                     yield data
@@ -219,7 +274,7 @@ class Notebook:
             if cell.get("cell_type") != "code" or not isinstance(tags, list) or "parameters" not in tags:
                 continue
             source = cell.get("source")
-            text = "".join(source) if isinstance(source, list) else str(source)
+            text = "".join(map(str, source)) if isinstance(source, list) else str(source)
             match = _CELL.fullmatch(text)
             if not match or match["quote"] in match["text"]:
                 raise CalcpackError("its parameters are not one string of data", file=self.name)

@@ -4,21 +4,38 @@ from __future__ import annotations
 
 import tempfile
 from collections.abc import Iterator, Mapping
-from pathlib import Path, PurePosixPath
+from dataclasses import dataclass
+from pathlib import Path
 from typing import Any
 
 from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.beam import Load
 from calcpack.record.auditing.copies import differences
-from calcpack.record.auditing.files import Target
+from calcpack.record.auditing.files import Target, stays_below
 from calcpack.record.auditing.findings import Finding, good, unchecked, wrong
 from calcpack.record.auditing.given import Given
 
 _GROUP = "origins"
 
 
-def job_facts(target: Target) -> dict[str, Any] | None:
-    """What the job file says, as plain data; None where it is not at hand or cannot be read.
+@dataclass(frozen=True)
+class JobFacts:
+    """What the job file says.
+
+    Parameters
+    ----------
+    data : mapping or None
+        As plain data; None where it is not at hand or cannot be read.
+    fault : str
+        Why it cannot be read.
+    """
+
+    data: Mapping[str, Any] | None = None
+    fault: str = ""
+
+
+def job_facts(target: Target) -> JobFacts:
+    """What the job file of a target says.
 
     Parameters
     ----------
@@ -26,28 +43,32 @@ def job_facts(target: Target) -> dict[str, Any] | None:
         Its ``inputs`` are laid into an empty folder and read from there, as data.
     """
     if not target.inputs:
-        return None
+        return JobFacts()
     from calcpack.job import read_job
 
     names = list(target.inputs)
-    if any(".." in PurePosixPath(name).parts or PurePosixPath(name).is_absolute() for name in names):
-        return None
+    if strange := [name for name in names if not stays_below(name)]:
+        return JobFacts(fault=f"'{strange[0][:60]}' is no name of a file beside it")
     with tempfile.TemporaryDirectory(prefix="calcpack-") as folder:
-        for name, data in target.inputs.items():
-            path = Path(folder) / name
-            path.parent.mkdir(parents=True, exist_ok=True)
-            path.write_bytes(data)
         try:
+            for name, data in target.inputs.items():
+                path = Path(folder) / name
+                path.parent.mkdir(parents=True, exist_ok=True)
+                path.write_bytes(data)
             job = read_job(Path(folder) / names[0])
-        except CalcpackError:
-            return None
-    return {
-        "header": job.job.model_dump(mode="json"),
-        "basis": job.basis.model_dump(mode="json"),
-        "submission": job.submission.model_dump(mode="json"),
-        "panels": {each.mark: each.model_dump(mode="json", exclude={"place"}) for each in job.panels},
-        "beams": {each.mark: each.model_dump(mode="json") for each in job.beams},
-    }
+        except CalcpackError as error:
+            return JobFacts(fault=str(error.problems[0]))
+        except OSError as error:
+            return JobFacts(fault=f"its files cannot be laid out: {error.strerror}")
+    return JobFacts(
+        {
+            "header": job.job.model_dump(mode="json"),
+            "basis": job.basis.model_dump(mode="json"),
+            "submission": job.submission.model_dump(mode="json"),
+            "panels": {each.mark: each.model_dump(mode="json", exclude={"place"}) for each in job.panels},
+            "beams": {each.mark: each.model_dump(mode="json") for each in job.beams},
+        }
+    )
 
 
 def left_at_earlier_revision(header: object, now: object) -> bool:
@@ -88,7 +109,7 @@ def audit_job(given: Given | None, facts: Mapping[str, Any] | None) -> tuple[Fin
     ----------
     given : Given or None
     facts : mapping or None
-        From :func:`job_facts`.
+        The data of :func:`job_facts`.
     """
     if given is None or facts is None:
         return ()

@@ -216,9 +216,10 @@ def _link_faults(line: RecordLine, formula: Part, earlier: Mapping[str, RecordLi
             faults.append(f"'{symbol[:40]}' is taken from line {no}, which gives no value")
         elif source.symbol != symbol:
             faults.append(f"'{symbol[:40]}' is taken from line {no}, which gives '{source.symbol[:40]}'")
-    if drawn := [symbol for symbol in formula.symbols if symbol not in line.inputs]:
+    symbols = formula.symbols
+    if drawn := [symbol for symbol in symbols if symbol not in line.inputs]:
         faults.append(f"the formula's '{drawn[0][:40]}' comes from no line")
-    if idle := [symbol for symbol in line.inputs if symbol not in formula.symbols]:
+    if idle := [symbol for symbol in line.inputs if symbol not in symbols]:
         faults.append(f"the formula does not use '{idle[0][:40]}'")
     return faults
 

@@ -34,6 +34,72 @@ def numbers(data: object) -> Iterator[float]:
         yield float(data)
 
 
+class _Pools:
+    """The numbers that an origin may stand for, gathered once for all the lines that name it.
+
+    Parameters
+    ----------
+    given : Given
+    """
+
+    def __init__(self, given: Given) -> None:
+        self.given = given
+        panels = sorted(given.panels, key=lambda each: -len(str(each["panel"]["mark"])))
+        self.panels = {str(each["panel"]["mark"]): each for each in panels}
+        self._whole: dict[str, list[float]] = {}
+
+    def of(self, origin: str) -> tuple[list[float], bool]:
+        """Numbers in kN and m, ascending, and whether the value must be one of them.
+
+        A value that a clause or a table derives from a grade, a section or a design key need not be.
+        """
+        given = self.given
+        if origin.startswith(("design.", f"beam {given.mark} design.")):
+            return self._once("design", given.data.get("design") or {}), False
+        match = _NAMED.match(origin)
+        if not match:
+            return [], False
+        kind, rest = match[1], match[2]
+        if kind == "panel":
+            return self._panel(rest), True
+        if kind == "sheet":
+            return sorted(_carried(rest.split(",")[0], given)), True
+        if kind == "beam":
+            values, sure = _beam(rest, given)
+            return sorted(values), sure
+        held = given.section if kind == "section" else given.material
+        if held is None or not _begins(rest, str(held["key"])):
+            return [], True
+        return self._once(kind, held), bool(rest[len(str(held["key"])) :].strip())
+
+    def _once(self, name: str, data: object) -> list[float]:
+        if name not in self._whole:
+            self._whole[name] = sorted(numbers(data))
+        return self._whole[name]
+
+    def _panel(self, rest: str) -> list[float]:
+        for mark, transfer in self.panels.items():
+            if not _begins(rest, mark):
+                continue
+            panel = transfer["panel"]
+            value = panel.get(rest[len(mark) :].strip(" ,"))
+            if isinstance(value, int | float):
+                return [float(value)]
+            return self._once(f"panel {mark}", [transfer, list(_legs(panel["corners"]))])
+        return []
+
+
+def _begins(rest: str, name: str) -> bool:
+    """Whether what follows "panel" or the like is of that name."""
+    return rest.startswith(name) and rest[len(name) : len(name) + 1] in ("", " ", ",")
+
+
+def _nearest(pool: Sequence[float], size: float) -> float | None:
+    """The number of an ascending pool nearest to a size."""
+    place = bisect.bisect_left(pool, size)
+    return min(pool[max(0, place - 1) : place + 1], key=lambda each: abs(each - size), default=None)
+
+
 def audit_origins(record: Record, given: Given | None, lines: Sequence[WorkedLine]) -> tuple[Finding, ...]:
     """Hold each value brought in against what its origin names.
 
@@ -60,12 +126,13 @@ def audit_origins(record: Record, given: Given | None, lines: Sequence[WorkedLin
             ),
         )
     findings, outside = [], []
+    pools, results = _Pools(given), sorted(map(abs, numbers(record.results)))
     for line in taken:
         origin = line.line.origin or ""
-        if origin.startswith("analysis") and _from_results(line.line, record):
+        if origin.startswith("analysis") and _from_results(line.line, results):
             findings.append(good(_GROUP, f"line {line.line.no}", "equals a figure of the results"))
             continue
-        pool, sure = _pool(origin, given)
+        pool, sure = pools.of(origin)
         found = _held(line, pool)
         # A plain number is a factor that a clause gives for what the origin holds, not a value of it.
         if found.verdict is Verdict.AGREES or (sure and line.line.unit != "1"):
@@ -96,7 +163,7 @@ def _held(line: WorkedLine, pool: Sequence[float]) -> Finding:
         size = line.line.value * float(unit(line.line.unit).size)
     except ValueError:
         size = line.line.value
-    near = min(pool, key=lambda each: abs(each - size), default=None)
+    near = _nearest(pool, size)
     agrees = near is not None and abs(near - size) <= AGREEMENT * max(abs(near), abs(size)) + 1e-15
     return Finding(
         _GROUP,
@@ -108,43 +175,6 @@ def _held(line: WorkedLine, pool: Sequence[float]) -> Finding:
         Verdict.AGREES if agrees else Verdict.WRONG,
         "" if agrees else f"'{(line.line.origin or '')[:60]}' holds no such value",
     )
-
-
-def _pool(origin: str, given: Given) -> tuple[list[float], bool]:
-    """The numbers that an origin may stand for, in kN and m, and whether it must be one of them.
-
-    A value that a clause or a table derives from a grade, a section or a design key need not be.
-    """
-    if origin.startswith(("design.", f"beam {given.mark} design.")):
-        return list(numbers(given.data.get("design") or {})), False
-    match = _NAMED.match(origin)
-    if not match:
-        return [], False
-    kind, rest = match[1], match[2]
-    if kind == "panel":
-        return _panel(rest, given), True
-    if kind == "sheet":
-        return _carried(rest.split(",")[0], given), True
-    if kind == "beam":
-        return _beam(rest, given)
-    held = given.section if kind == "section" else given.material
-    if held is None or not re.match(re.escape(str(held["key"])) + r"(?:\s|$)", rest):
-        return [], True
-    return list(numbers(held)), bool(rest[len(str(held["key"])) :].strip())
-
-
-def _panel(rest: str, given: Given) -> list[float]:
-    ranked = sorted(given.panels, key=lambda each: -len(str(each["panel"]["mark"])))
-    for transfer in ranked:
-        mark = str(transfer["panel"]["mark"])
-        if not re.match(re.escape(mark) + r"(?:[\s,]|$)", rest):
-            continue
-        key = rest[len(mark) :].strip(" ,")
-        panel = transfer["panel"]
-        if key in panel and isinstance(panel[key], int | float):
-            return [float(panel[key])]
-        return [*numbers(transfer), *_legs(panel["corners"])]
-    return []
 
 
 def _legs(corners: Sequence[Sequence[float]]) -> Iterator[float]:
@@ -199,17 +229,13 @@ def _is_known(size: float, known: Sequence[float]) -> bool:
     return place < len(known) and known[place] <= abs(size) + slack
 
 
-def _from_results(line: RecordLine, record: Record) -> bool:
-    """Whether a value brought in from the analysis is one of the figures of the results."""
+def _from_results(line: RecordLine, results: Sequence[float]) -> bool:
+    """Whether a value brought in from the analysis is one of the figures of the results, in size."""
     try:
         size = abs(line.value) * float(unit(line.unit).size)
     except ValueError:
         return False
-    near = 1e-9 * size + 1e-15
-    return any(
-        abs(abs(each) - size) <= near or abs(abs(each) / 1000 - size) <= near  # deflections stand in mm
-        for each in numbers(record.results)
-    )
+    return _is_known(size, results) or _is_known(1000 * size, results)  # deflections stand in mm
 
 
 def _shared(record: Record, given: Given | None, lines: Sequence[WorkedLine]) -> Iterator[Finding]:
@@ -226,7 +252,8 @@ def _shared(record: Record, given: Given | None, lines: Sequence[WorkedLine]) ->
         elif (match := _EQUIVALENT.fullmatch(line.symbol)) is not None and given is not None:
             case = _LETTERS[match[1]]
             field = given.equivalent.replace("-", " ").replace(" ", "_")
-            rows = results.get("equivalent") or []
+            rows = results.get("equivalent")
+            rows = rows if isinstance(rows, list) else []
             between = [number for number, row in enumerate(rows) if isinstance(row, dict)]
             number = int(match[2]) - 1 if match[2] else between[0] if between else 0
             row = rows[number] if number < len(rows) and isinstance(rows[number], dict) else {}

@@ -1,81 +1,18 @@
-"""What a PDF shows and carries: the text of its pages, the files inside; nothing in it is run."""
+"""What the pages of a PDF show, held against the record."""
 
 from __future__ import annotations
 
-import io
 import re
 import unicodedata
 from collections.abc import Mapping, Sequence
 
-import pypdf
-import pypdfium2  # type: ignore[import-untyped]
-
-from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.findings import Finding, Verdict, unchecked, wrong
 from calcpack.record.auditing.reading import Record, RecordLine
 
-MOST_PAGES = 20_000
 _FOOT = re.compile(r"^(?P<mark>.{1,200}) page (?P<page>[0-9]+) of [0-9]+$", re.M)
 _BEGINS = re.compile(r"(?m)^([0-9]{1,3}\.[0-9]{2,3})(?=\s)")
 _SPACE = re.compile(r"\s+")
 _WORDS = 12  # letters of a line's words that tell it from a number
-
-
-def attached_files(content: bytes, name: str) -> dict[str, bytes]:
-    """The files that a PDF carries inside, by name.
-
-    Raises
-    ------
-    CalcpackError
-        It is no PDF, or is encrypted.
-    """
-    try:
-        reader = pypdf.PdfReader(io.BytesIO(content))
-        if reader.is_encrypted:
-            raise CalcpackError("it is encrypted", file=name)
-        return {key: bytes(files[0]) for key, files in reader.attachments.items() if files}
-    except (
-        pypdf.errors.PyPdfError,
-        OSError,
-        ValueError,
-        KeyError,
-        TypeError,
-        AttributeError,
-        IndexError,
-        RecursionError,
-        AssertionError,
-        MemoryError,
-    ):
-        raise CalcpackError("it is no readable PDF", file=name) from None
-
-
-def page_texts(content: bytes, name: str) -> tuple[str, ...]:
-    """The visible text of a PDF, page by page.
-
-    Raises
-    ------
-    CalcpackError
-        It is no PDF.
-    """
-    try:
-        document = pypdfium2.PdfDocument(content)
-    except pypdfium2.PdfiumError:
-        raise CalcpackError("it is no readable PDF", file=name) from None
-    try:
-        if len(document) > MOST_PAGES:
-            raise CalcpackError(f"it has more than {MOST_PAGES} pages", file=name)
-        texts = []
-        for number in range(len(document)):
-            page = document[number]
-            text_page = page.get_textpage()
-            texts.append(text_page.get_text_range().replace("\r\n", "\n"))
-            text_page.close()
-            page.close()
-        return tuple(texts)
-    except pypdfium2.PdfiumError:
-        raise CalcpackError("a page of it cannot be read", file=name) from None
-    finally:
-        document.close()
 
 
 def sheet_pages(pages: Sequence[str]) -> dict[str, tuple[str, ...]]:

@@ -11,7 +11,7 @@ from typing import Any
 
 import calcpack
 from calcpack.job.house import house_folder
-from calcpack.record.auditing.files import Target, read_file
+from calcpack.record.auditing.files import Target, is_file, leads_out, read_file, stays_below
 from calcpack.record.auditing.findings import Finding, Verdict, good, unchecked, wrong
 from calcpack.record.auditing.given import Notebook
 from calcpack.record.auditing.reading import Record
@@ -20,6 +20,7 @@ from calcpack.record.pdf_update import grown_from
 
 MOST_TABLES = 6
 _GROUP = "provenance"
+_SETTINGS = "template.toml"
 
 
 def audit_provenance(
@@ -54,21 +55,13 @@ def _template(stated: Mapping[str, Any], job_folder: Path | None) -> Iterator[Fi
     place = f"template {name[:60]}"
     folders = [house_folder("report_templates")] + ([job_folder] if job_folder else [])
     # A template's name is data: only a plain name, or a path that stays below, is looked up.
-    parts = Path(name).parts
-    found = [
-        folder / name
-        for folder in folders
-        if name
-        and ".." not in parts
-        and not Path(name).is_absolute()
-        and (folder / name / "template.toml").is_file()
-    ]
+    found = [folder / name for folder in folders if stays_below(name) and is_file(folder / name / _SETTINGS)]
     if not found:
         yield unchecked(_GROUP, place, "there is no template of this name here to hold its hash against")
         return
     try:
         notebook = read_file(found[0] / "notebook.ipynb")
-        settings = read_file(found[0] / "template.toml")
+        settings = read_file(found[0] / _SETTINGS)
         here = str(tomllib.loads(settings.decode("utf-8")).get("version", ""))
     except ValueError:
         yield unchecked(_GROUP, place, "the template here cannot be read")
@@ -166,7 +159,7 @@ def audit_manifest(target: Target) -> Iterator[Finding]:
         if only is not None and name not in only:
             continue
         path = target.folder / name
-        if ".." in Path(name).parts or Path(name).is_absolute() or not path.is_file():
+        if not stays_below(name) or not is_file(path) or leads_out(path, target.folder):
             yield wrong("pack", name[:120], "the manifest names it, and it is not there")
             continue
         content = read_file(path)
@@ -184,7 +177,7 @@ def audit_manifest(target: Target) -> Iterator[Finding]:
             yield wrong("pack", f"sheets/{sheet.record_name}", "the manifest does not name it")
     for name, data in target.attached.items():
         path = target.folder / "sheets" / name
-        if "/" in name or not path.is_file():
+        if "/" in name or not stays_below(name) or not is_file(path):
             continue
         if read_file(path) == data:
             yield good("pack", f"{name} in the pack", "equals the file")

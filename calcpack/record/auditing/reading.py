@@ -5,6 +5,7 @@ from __future__ import annotations
 import json
 import math
 import re
+from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
@@ -13,7 +14,9 @@ from calcpack.job.errors import CalcpackError
 
 LARGEST_RECORD = 2_000_000  # bytes; the largest sheets have a tenth of it
 LARGEST_NOTEBOOK = 8_000_000
-MOST_LINES = 5_000
+MOST_ENTRIES = 300_000  # commas and opening brackets: it is they that cost memory
+MOST_LINES = 3_000
+MOST_INPUTS = 200  # of a line
 _NUMBER = re.compile(r"[0-9]{1,3}\.[0-9]{2,3}")
 
 
@@ -82,8 +85,8 @@ def read_json(content: bytes, name: str, largest: int = LARGEST_RECORD) -> Any:
     def once(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
         found = dict(pairs)
         if len(found) != len(pairs):
-            keys = [key for key, _ in pairs]
-            twice = next(key for key in keys if keys.count(key) > 1)
+            keys = Counter(key for key, _ in pairs)
+            twice = next(key for key, count in keys.items() if count > 1)
             raise CalcpackError(f"the key '{twice[:40]}' stands twice", file=name)
         return found
 
@@ -97,10 +100,14 @@ def read_json(content: bytes, name: str, largest: int = LARGEST_RECORD) -> Any:
         raise CalcpackError(
             f"it has {len(content):,} bytes, more than the {largest:,} that are read", file=name
         )
+    if content.count(b",") + content.count(b"[") + content.count(b"{") > MOST_ENTRIES:
+        raise CalcpackError(f"it has more than the {MOST_ENTRIES:,} entries that are read", file=name)
     try:
-        return json.loads(
-            content.decode("utf-8"), object_pairs_hook=once, parse_float=finite, parse_constant=finite
-        )
+        text = content.decode("utf-8")
+        data = json.loads(text, object_pairs_hook=once, parse_float=finite, parse_constant=finite)
+        if "\\ud" in text.lower():  # half of a letter is no text that a file can hold
+            json.dumps(data, ensure_ascii=False).encode("utf-8")
+        return data
     except (ValueError, RecursionError):
         raise CalcpackError("it is no JSON", file=name) from None
 
@@ -176,6 +183,8 @@ def _line(data: object, name: str, place: int) -> RecordLine:
     inputs = data.get("inputs")
     if not isinstance(inputs, dict) or any(not isinstance(no, str) for no in inputs.values()):
         raise CalcpackError("symbols with line numbers are expected", file=name, mark=at, key="inputs")
+    if len(inputs) > MOST_INPUTS:
+        raise CalcpackError(f"more than {MOST_INPUTS} symbols", file=name, mark=at, key="inputs")
     if not isinstance(data.get("expression"), dict):
         raise CalcpackError("a formula is expected", file=name, mark=at, key="expression")
     origin, passes = data.get("origin"), data.get("passes")

@@ -13,9 +13,10 @@ from calcpack.record.auditing.checks import audit_checks
 from calcpack.record.auditing.demands import Demand, design_demand
 from calcpack.record.auditing.envelopes import Extreme, Worst
 from calcpack.record.auditing.findings import Finding, Verdict
-from calcpack.record.auditing.given import MOST_LOADS, Given, recorded_loads
+from calcpack.record.auditing.given import LONGEST, MOST_LOADS, Given, recorded_loads
 from calcpack.record.auditing.lines import WorkedLine
 from calcpack.record.auditing.reading import Record
+from calcpack.record.auditing.shapes import Maybe, misfit
 from calcpack.record.auditing.spans import FIELDS, span_equivalents
 
 MOST_COMBINATIONS = 200
@@ -23,6 +24,7 @@ MOST_SPANS = 60
 _NEEDS_NOTEBOOK = "only the sheet's notebook says how live load is placed on this beam and those above"
 _NO_GEOMETRY = "neither record nor notebook says where the beam stands"
 _PLACE = 1e-7  # of the length
+_STANDS = {"spans": [float], "supports": Maybe([float]), "fixed": Maybe((bool, bool))}
 
 
 class Beam:
@@ -43,15 +45,21 @@ class Beam:
             self.loads: Mapping[str, tuple[Load, ...]] = given.loads
         else:
             try:
-                self.length = math.fsum(float(each) for each in results["spans"])
+                if fault := misfit(results, _STANDS):
+                    raise ValueError(fault)
+                self.length = math.fsum(map(float, results["spans"]))
                 places = results.get("supports")
-                self.supports = None if places is None else tuple(float(each) for each in places)
+                self.supports = None if places is None else tuple(map(float, places))
                 ends = results.get("fixed") or (False, False)
-                self.fixed = (bool(ends[0]), bool(ends[1]))
+                self.fixed = (ends[0], ends[1])
                 self.loads = recorded_loads(results.get("loads"))
-            except (KeyError, TypeError, ValueError, IndexError):
+                if not 0.0 < self.length <= LONGEST:
+                    raise ValueError(f"no beam is {self.length:g} m long")
+            except ValueError as error:
                 raise CalcpackError(
-                    "spans, supports or loads are not written as such", file=record.name, key="results"
+                    f"spans, supports or loads are not written as such: {error}",
+                    file=record.name,
+                    key="results",
                 ) from None
         self.cases = tuple(self.loads)
         if len(self.spans) > MOST_SPANS or sum(map(len, self.loads.values())) > MOST_LOADS:

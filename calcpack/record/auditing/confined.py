@@ -1,0 +1,91 @@
+"""The child process that reads PDFs, as its parent sees it."""
+
+from __future__ import annotations
+
+import atexit
+import contextlib
+import json
+import os
+import subprocess
+import sys
+from typing import IO
+
+from calcpack.job.errors import CalcpackError
+
+_TOO_DEAR = "it takes more time or memory to read than any pack of its size"
+_MODULE = "calcpack.record.auditing.pdf_reading"
+
+
+class PdfReading:
+    """A child that reads PDFs, started when it is first asked and again when a PDF has been the end of it."""
+
+    def __init__(self) -> None:
+        self._child: subprocess.Popen[bytes] | None = None
+        self._owner = 0
+
+    def texts(self, content: bytes, name: str) -> tuple[str, ...]:
+        """The visible text of a PDF, page by page.
+
+        Raises
+        ------
+        CalcpackError
+            It is no readable PDF, or would cost more than any pack of its size.
+        """
+        return tuple(part.decode("utf-8") for _, part in self._ask("texts", content, name))
+
+    def attached(self, content: bytes, name: str) -> dict[str, bytes]:
+        """The files that a PDF carries inside, by name.
+
+        Raises
+        ------
+        CalcpackError
+            It is no readable PDF, is encrypted, or would cost more than any pack of its size.
+        """
+        return dict(self._ask("attached", content, name))
+
+    def _ask(self, ask: str, content: bytes, name: str) -> list[tuple[str, bytes]]:
+        questions, answers = self._pipes()
+        try:
+            questions.write(json.dumps({"ask": ask, "size": len(content)}).encode() + b"\n")
+            questions.write(content)
+            questions.flush()
+            head = json.loads(answers.readline())
+            if "fault" not in head:
+                return [
+                    (each, answers.read(size))
+                    for each, size in zip(head["names"], head["sizes"], strict=True)
+                ]
+        except (OSError, ValueError):  # it has ended in the middle
+            self.close()
+            raise CalcpackError(_TOO_DEAR, file=name) from None
+        raise CalcpackError(head["fault"], file=name)
+
+    def _pipes(self) -> tuple[IO[bytes], IO[bytes]]:
+        if self._child is None or self._owner != os.getpid() or self._child.poll() is not None:
+            self._child = subprocess.Popen(
+                [sys.executable, "-m", _MODULE],
+                stdin=subprocess.PIPE,
+                stdout=subprocess.PIPE,
+                stderr=subprocess.DEVNULL,
+            )
+            self._owner = os.getpid()
+        assert self._child.stdin is not None
+        assert self._child.stdout is not None
+        return self._child.stdin, self._child.stdout
+
+    def close(self) -> None:
+        """End the child."""
+        child, self._child = self._child, None
+        if child is None or self._owner != os.getpid():
+            return
+        child.kill()
+        child.wait()
+        for pipe in (child.stdin, child.stdout):
+            if pipe is not None:
+                with contextlib.suppress(OSError):
+                    pipe.close()
+
+
+READING = PdfReading()
+"""The one child of this process."""
+atexit.register(READING.close)

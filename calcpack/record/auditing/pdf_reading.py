@@ -1,0 +1,164 @@
+"""A PDF's texts and attached files, read in a process of its own that may not use more than a PDF is worth.
+
+Whoever sends a PDF decides what its streams grow into. So reading it is left to a child with a limit of
+memory and time by the size of the file; where that child ends, so does nothing else. Nothing of a PDF is run.
+
+``python -m calcpack.record.auditing.pdf_reading`` answers, until its input ends, questions of a line of JSON
+and the PDF after it: ``{"ask": "texts" | "attached", "size": bytes}``. The answer is a line of JSON,
+``{"names": [...], "sizes": [...]}`` with what is named after it, or ``{"fault": words}``.
+"""
+
+from __future__ import annotations
+
+import io
+import json
+import re
+import sys
+from collections.abc import Iterable
+from typing import BinaryIO
+
+import pypdf
+import pypdfium2  # type: ignore[import-untyped]
+
+MOST_PAGES = 20_000
+MOST_ATTACHED = 5_000
+MEMORY, MEMORY_EACH = 200_000_000, 6  # bytes: for any PDF, and for each of its bytes
+SECONDS, SECONDS_EACH = 1.5, 0.3e-6  # of one processor; a pack takes a tenth of it
+UNREADABLE = "it is no readable PDF"
+TOO_DEAR = "it takes more time or memory to read than any pack of its size"
+# A PDF ends with the place of its table of objects; without it a reader would have to guess.
+_END = re.compile(rb"startxref\s+([0-9]{1,12})\s+%%EOF\s*\Z")
+_TABLE = re.compile(rb"\s*(?:xref\b|[0-9]+ [0-9]+ obj\b)")
+_BROKEN = (
+    pypdf.errors.PyPdfError,
+    pypdfium2.PdfiumError,
+    ArithmeticError,
+    AssertionError,
+    AttributeError,
+    LookupError,
+    MemoryError,
+    OSError,
+    RecursionError,
+    TypeError,
+    ValueError,
+)
+
+
+class Refused(Exception):
+    """What is wrong with a PDF, in words."""
+
+
+def _see_whole(content: bytes) -> None:
+    end = _END.search(content, max(0, len(content) - 1_100))
+    if not end or not _TABLE.match(content, int(end[1])):
+        raise Refused(f"{UNREADABLE}: it is cut off or damaged")
+
+
+def attached_files(content: bytes) -> list[tuple[str, bytes]]:
+    """The files that a PDF carries inside, with their names.
+
+    Raises
+    ------
+    Refused
+        It is no PDF, is encrypted, or carries too much.
+    """
+    _see_whole(content)
+    reader = pypdf.PdfReader(io.BytesIO(content))
+    if reader.is_encrypted:
+        raise Refused("it is encrypted")
+    names = list(reader.attachments)
+    if len(names) > MOST_ATTACHED:
+        raise Refused(f"it carries more than {MOST_ATTACHED} files")
+    found, room = [], MEMORY // 4 + MEMORY_EACH * len(content)
+    for name in names:
+        data = bytes(next(iter(reader.attachments[name]), b""))
+        room -= len(data)
+        if room < 0:
+            raise Refused(TOO_DEAR)
+        found.append((name, data))
+    return found
+
+
+def page_texts(content: bytes) -> list[str]:
+    """The visible text of a PDF, page by page.
+
+    Raises
+    ------
+    Refused
+        It is no PDF, or has too many pages.
+    """
+    _see_whole(content)
+    document = pypdfium2.PdfDocument(content)
+    try:
+        if len(document) > MOST_PAGES:
+            raise Refused(f"it has more than {MOST_PAGES} pages")
+        texts = []
+        for number in range(len(document)):
+            page = document[number]
+            text_page = page.get_textpage()
+            texts.append(text_page.get_text_range().replace("\r\n", "\n"))
+            text_page.close()
+            page.close()
+        return texts
+    finally:
+        document.close()
+
+
+def _confine(size: int) -> None:
+    """Let this process use no more memory and time from here on than a PDF of a size is worth."""
+    if sys.platform == "win32":  # pragma: no cover - no such limits there
+        return
+    import resource
+
+    used = resource.getrusage(resource.RUSAGE_SELF)
+    end = int(used.ru_utime + used.ru_stime + SECONDS + SECONDS_EACH * size) + 1
+    _, most = resource.getrlimit(resource.RLIMIT_CPU)
+    resource.setrlimit(resource.RLIMIT_CPU, (end if most < 0 else min(end, most), most))
+    _, most = resource.getrlimit(resource.RLIMIT_AS)
+    room = _mapped() + MEMORY + MEMORY_EACH * size
+    resource.setrlimit(resource.RLIMIT_AS, (room if most < 0 else min(room, most), most))
+    resource.setrlimit(resource.RLIMIT_CORE, (0, 0))
+
+
+def _mapped() -> int:
+    """Memory this process has mapped by now [bytes]."""
+    try:
+        with open("/proc/self/statm", "rb") as file:
+            return int(file.read().split()[0]) * 4096
+    except OSError:  # pragma: no cover - another system than Linux
+        return 1_000_000_000
+
+
+def answer(ask: str, content: bytes) -> tuple[dict[str, object], Iterable[bytes]]:
+    """The answer to a question: its line, and what comes after it."""
+    try:
+        if ask == "texts":
+            parts = [text.encode("utf-8", "replace") for text in page_texts(content)]
+            names = [""] * len(parts)
+        else:
+            attached = attached_files(content)
+            names, parts = [name for name, _ in attached], [data for _, data in attached]
+    except Refused as fault:
+        return {"fault": str(fault)}, ()
+    except MemoryError:
+        return {"fault": TOO_DEAR}, ()
+    except _BROKEN:
+        return {"fault": UNREADABLE}, ()
+    return {"names": names, "sizes": [len(part) for part in parts]}, parts
+
+
+def serve(questions: BinaryIO, answers: BinaryIO) -> None:
+    """Answer questions until there are no more."""
+    while line := questions.readline():
+        asked = json.loads(line)
+        content = questions.read(asked["size"])
+        _confine(len(content))
+        head, parts = answer(asked["ask"], content)
+        answers.write(json.dumps(head).encode() + b"\n")
+        for part in parts:
+            answers.write(part)
+        answers.flush()
+
+
+if __name__ == "__main__":
+    serve(sys.stdin.buffer, sys.stdout.buffer)
