@@ -43,6 +43,13 @@ class SigningRole(StrEnum):
     APPROVED = "approved"
 
 
+class Paper(StrEnum):
+    """Size of a page."""
+
+    A4 = "A4"
+    LETTER = "Letter"
+
+
 def _version(asked: bool) -> None:
     if asked:
         typer.echo(f"calcpack {calcpack.__version__}")
@@ -377,6 +384,27 @@ def audit(
         svg=svg,
     )
     if not run_audit(asked, _console(), Console(stderr=True)):
+        raise typer.Exit(1)
+
+
+@app.command()
+def verification(
+    out: Annotated[Path | None, typer.Option(metavar="MANUAL.pdf", help="Write the manual here.")] = None,
+    as_json: Annotated[bool, typer.Option("--json", help="Print every comparison as JSON.")] = False,
+    tables: Annotated[
+        Path | None,
+        typer.Option(metavar="DIR", help="Your own tables, in place of the shipped ones."),
+    ] = None,
+    paper: Annotated[Paper, typer.Option(help="Size of the manual's pages.")] = Paper.A4,
+) -> None:
+    """Compare the program with published values, and make the verification manual."""
+    from calcpack.overview import progress
+    from calcpack.verification.command import Asked, print_failing, run_verification
+
+    with progress(Console(stderr=True)) as follow:
+        found = run_verification(Asked(out, as_json, tables, paper.value), _console(), follow)
+    if not found.holds:
+        print_failing(found, Console(stderr=True, highlight=False, soft_wrap=True))
         raise typer.Exit(1)
 
 

@@ -7,6 +7,7 @@ import re
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
 from decimal import Decimal
+from functools import cached_property
 from typing import Any
 
 from calcpack.verification.arithmetic import worked_out
@@ -77,6 +78,11 @@ class Allowed:
         return cls(size, size)
 
 
+def _finite(value: float | str) -> float | str | None:
+    """A value as JSON can hold it."""
+    return value if isinstance(value, str) or math.isfinite(value) else None
+
+
 @dataclass(frozen=True)
 class Comparison:
     """One published value and ours.
@@ -128,7 +134,7 @@ class Comparison:
         """Whether the source has a formula in place of a number."""
         return self.published.startswith("=")
 
-    @property
+    @cached_property
     def value(self) -> float:
         """The published number, or what the published formula gives."""
         if self.is_formula:
@@ -140,7 +146,7 @@ class Comparison:
         cells = self.row.cells.items()
         return {key: float(cell) for key, cell in cells if isinstance(cell, int | float)}
 
-    @property
+    @cached_property
     def allowed(self) -> Allowed:
         """How far ours may be."""
         return Allowed.of(self.rule, self.published, self.value)
@@ -150,7 +156,7 @@ class Comparison:
         """Ours less theirs; not a number for words."""
         return math.nan if isinstance(self.ours, str) else self.ours - self.value
 
-    @property
+    @cached_property
     def share(self) -> float:
         """The difference as a part of what is allowed; 1 is the most. Of words 0 or infinity."""
         if self.in_words:
@@ -193,8 +199,8 @@ class Comparison:
             "from_memory": self.row.from_memory,
             "published": self.published,
             "value": None if words else self.value,
-            "ours": self.ours,
-            "difference": None if words else self.difference,
+            "ours": _finite(self.ours),
+            "difference": None if words else _finite(self.difference),
             "allowed": None if words else [-self.allowed.below, self.allowed.above],
             "tolerance": self.rule,
             "holds": self.holds,

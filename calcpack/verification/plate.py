@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from functools import cache
+from functools import cache, cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -77,6 +77,7 @@ class Plate:
         long, short = self.sides
         return 2 * long + 2 * short - 4 * self.corner - self.ratio
 
+    @cached_property
     def beam_moments(self) -> tuple[float, float]:
         """Largest moment of a simple beam under a long and a short side, over q a³."""
         places = (np.arange(400) + 0.5) / 400

@@ -191,6 +191,11 @@ class Row:
         """Whether none of its sources was at hand."""
         return all(source.known == "from memory" for source, _ in self.sources)
 
+    @property
+    def by_hand(self) -> bool:
+        """Whether it was worked out by hand, or is stated by ourselves."""
+        return all(source.known == "by hand" for source, _ in self.sources)
+
     def number(self, column: str) -> float:
         """A cell's number; a formula, where the cell is text."""
         cell = self.cells[column]

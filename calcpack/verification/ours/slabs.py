@@ -178,7 +178,7 @@ def share_row(row: Row) -> Ours:
 def moment_row(row: Row) -> Ours:
     """The rule's largest moment of a simple beam under a side over the plate's."""
     ratio = row.number("ratio")
-    long, short = plate(ratio).beam_moments()
+    long, short = plate(ratio).beam_moments
     return {
         "long side": under_panel("moment", 1.0, 1.0, ratio, under_long=True) * ratio**2 / 8 / long,
         "short side": under_panel("moment", 1.0, 1.0, ratio, under_long=False) / 8 / short,
