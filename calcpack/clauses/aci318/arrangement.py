@@ -47,7 +47,7 @@ class Cage:
         """How many bars fit side by side."""
         room = self.width - 2 * (self.cover + self.stirrup)
         need = self.clear_needed(bar)
-        return max(int((room + need) / (bar.diameter + need) + 1e-9), 0)
+        return int((room + need) / (bar.diameter + need) + 1e-9)
 
 
 @dataclass(frozen=True)
@@ -88,20 +88,13 @@ class Group:
     def words(self) -> str:
         """ "4 #8", "5 #8 in two layers"."""
         return f"{self.count} {self.bar.name if self.bar.name[0] == '#' else '⌀' + self.bar.name}" + (
-            " in two layers" if len(self.layers) > 1 else ""
+            " in two layers" if self.layers[1:] else ""
         )
 
     @property
     def fits(self) -> bool:
         """Whether every layer has its clear distances."""
         return len(self.layers) <= MOST_LAYERS and max(self.layers) <= self.cage.most(self.bar)
-
-    @property
-    def clear(self) -> float:
-        """Clear distance of the bars of the fullest layer [m]; negative where they do not go in."""
-        number = max(self.layers)
-        room = self.cage.width - 2 * (self.cage.cover + self.cage.stirrup) - number * self.bar.diameter
-        return room / max(number - 1, 1)
 
     @property
     def spacing(self) -> float:
@@ -159,9 +152,10 @@ def arranged(count: int, bar: Bar, cage: Cage) -> Group:
     most = cage.most(bar)
     if count <= most:
         return Group(bar, (count,), cage)
-    if count <= 2 * most:
+    if count - most <= most:
         return Group(bar, (most, count - most), cage)
-    return Group(bar, (count - count // 2, count // 2) if count > 1 else (count,), cage)
+    half = count // 2
+    return Group(bar, (count - half, half) if half else (count,), cage)
 
 
 def crack_spacing(stress: float, cover: float) -> float:

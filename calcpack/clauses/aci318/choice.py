@@ -22,6 +22,7 @@ from calcpack.clauses.aci318.strength import (
     stirrup_limits,
 )
 from calcpack.clauses.bars import bar
+from calcpack.sheet.evaluation import holds
 
 MOST_BARS = 20
 # Sizes that beams are usually reinforced with, thinnest first (common practice).
@@ -84,10 +85,16 @@ class Task:
         """Least tension steel [m2]."""
         return least_steel(self.strengths.fc, self.strengths.fy, self.least_width, group.depth)
 
+    def ductile(self, state: Bending) -> bool:
+        """Whether the section is tension-controlled.
+
+        Source: ACI 318-19, Table 21.2.2 and 9.3.3.1.
+        """
+        return holds("ge", state.strain, self.strengths.yield_strain + 0.003)
+
     def strong(self, state: Bending) -> bool:
         """Whether the section carries its moment, tension-controlled."""
-        ductile = state.strain >= self.strengths.yield_strain + 0.003 - 1e-12
-        return ductile and state.design >= self.demand * (1 - 1e-12)
+        return self.ductile(state) and holds("ge", state.design, self.demand)
 
     def suits(self, group: Group, pressed: Group | None = None) -> bool:
         """Whether bars satisfy every clause that this choice looks at."""
@@ -108,7 +115,7 @@ class Chosen(NamedTuple):
     satisfied: bool
 
 
-def candidates(cage: Cage, sizes: Sequence[str], fewest: int = 2, most: int = MOST_BARS) -> Iterable[Group]:
+def candidates(cage: Cage, sizes: Sequence[str], fewest: int, most: int) -> Iterable[Group]:
     """Groups of bars: one layer before two, few bars before many, thin before thick."""
     bars = [bar(size) for size in sizes]
     for layers in (1, 2):
@@ -161,9 +168,7 @@ def choose_bars(task: Task, sizes: Sequence[str], fewest: int = 2, most: int = M
                 return Chosen(group, pressed, True)
     pairs: list[tuple[Group, Group | None]] = [(each, None) for each in groups]
     pairs += [(each, each) for each in groups]  # as many bars in compression as in tension
-    ductile = [
-        pair for pair in pairs if task.state(*pair).strain >= task.strengths.yield_strain + 0.003 - 1e-12
-    ]
+    ductile = [pair for pair in pairs if task.ductile(task.state(*pair))]
     strongest = max(ductile or pairs[:1], key=lambda pair: task.state(*pair).design)
     return Chosen(*strongest, False)
 
@@ -187,7 +192,7 @@ class Web(NamedTuple):
     def enough(self, area: float, spacing: float) -> bool:
         """Whether stirrups are no less than the least ones."""
         least = least_stirrups(self.strengths.fc, self.strengths.fyt, self.width)
-        return area / spacing >= least * (1 - 1e-9)
+        return holds("ge", area / spacing, least)
 
     def concrete(self, with_least: bool = True) -> float:
         """V_c [kN]."""

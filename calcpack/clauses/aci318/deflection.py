@@ -16,6 +16,7 @@ from calcpack.sheet import (
     number_in,
     sqrt,
 )
+from calcpack.sheet.evaluation import holds
 
 # Time-dependent factor of sustained loads by their duration.
 # Source: ACI 318-19, Table 24.2.4.1.3.
@@ -63,7 +64,7 @@ def state_least_depth(sheet: Sheet, materials: Materials, size: Size, span: Line
         cite("Table 9.3.1.1, 9.3.1.1.1"),
         word="depth below which deflections have to be worked out",
     )
-    kept = size.height.value >= line.value * (1 - 1e-9)
+    kept = holds("ge", size.height.value, line.value)
     sheet.text(
         ["The beam's ", size.height.shown, " are ", "no less than this" if kept else "less than this",
          "; deflections are worked out all the same."],
@@ -189,7 +190,7 @@ def cracked_depth(width: float, web: float, flange: float, steel: float, depth: 
     Parameters
     ----------
     width, web, flange : float
-        Of the compressed side; flange 0 without one.
+        Of the compressed side; without a flange its depth does not matter, the width is the web's.
     steel : float
         Transformed area n A_s of the tension bars.
     depth : float
@@ -208,23 +209,23 @@ def cracked_depth(width: float, web: float, flange: float, steel: float, depth: 
         return float((-lead + (lead**2 + 2 * b * (steel * depth + wings * flange**2 / 2)) ** 0.5) / b)
 
     first = axis(width, 0.0)
-    return first if flange <= 0 or first <= flange else axis(web, width - web)
+    return first if first <= flange else axis(web, width - web)
 
 
 def _cracked(sheet: Sheet, size: Size, gross: Gross, bent: Bent, name: Callable[[str], str]) -> Line:
     """Cracked second moment of area; a flange counts on the compressed side only."""
     face = size.web if bent.top or size.face is None else size.face
-    flange = size.flange if face is not size.web else None
+    flange = bent.depth if face is size.web or size.flange is None else size.flange
     steel = gross.ratio * bent.steel
     depth = cracked_depth(
         face.value,
         size.web.value,
-        flange.value if flange is not None else 0.0,
+        flange.value,
         gross.ratio.value * bent.steel.value,
         bent.depth.value,
     )
     words = "Neutral axis of the cracked section, compression bars left out"
-    if flange is None or depth <= flange.value:
+    if depth <= flange.value:
         axis = sheet.hence(
             name("c_cr"),
             (sqrt(steel**2 + 2 * face * steel * bent.depth) - steel) / face,
@@ -261,7 +262,7 @@ def state_average(sheet: Sheet, sagging: Line, hogging: Sequence[Line]) -> Line:
     if not hogging:
         return sagging
     ends: Expression | Line = hogging[0]
-    if len(hogging) > 1:
+    if hogging[1:]:
         ends = (hogging[0] + hogging[1]) / 2
     return sheet.hence(
         "I_e", (sagging + ends) / 2, "mm^4", "Average of the critical sections", cite("24.2.3.6")

@@ -6,9 +6,8 @@ from typing import NamedTuple
 
 from calcpack.clauses.aci318.arrangement import Group
 from calcpack.clauses.aci318.flexure import BendingLines
-from calcpack.clauses.aci318.materials import Checks, Materials, Size, cite, root, shared
-from calcpack.clauses.aci318.strength import grade_factor
-from calcpack.clauses.aci318.strength import root as root_of
+from calcpack.clauses.aci318.materials import Checks, Materials, Size, cite, in_kpa, root, shared
+from calcpack.clauses.aci318.strength import INCH, LEAST_DEVELOPMENT, development_length, grade_factor
 from calcpack.sheet import (
     Expression,
     Line,
@@ -144,26 +143,28 @@ def state_development(
     )
     psi_t = "1.3" if top else "1.0"
     psi_s = "0.8" if is_small(group) else "1.0"
-    psi_g = f"{grade_factor(materials.fy.value * 1000):g}"
+    psi_g = f"{grade_factor(in_kpa(materials.fy)):g}"
     stress = number_in(materials.fy, "psi") / (materials.lightweight * root(materials.fc))
     factors = number(psi_t) * number("1.0") * number(psi_s) * number(psi_g)
     plain = number(3) / 40 * stress * factors / ratio * layer.diameter
-    short = _plain_length(materials, ratio, layer, float(psi_t) * float(psi_s) * float(psi_g)) < 12 * 25.4
+    known = development_length(
+        group.bar.diameter,
+        in_kpa(materials.fc),
+        in_kpa(materials.fy),
+        ratio.value,
+        top=top,
+        small=is_small(group),
+    )
+    short = known == LEAST_DEVELOPMENT * INCH
     length = sheet.hence(
         name("ell_d"),
-        greatest(plain, quantity(12, "in")) if short else plain,
+        greatest(plain, quantity(LEAST_DEVELOPMENT, "in")) if short else plain,
         "mm",
         f"Development length; ψt = {psi_t}, ψe = 1.0, ψs = {psi_s}, ψg = {psi_g} (strengths in psi)",
         cite("Eq. (25.4.2.4a), Table 25.4.2.5"),
         word="development length",
     )
     return Development(length, layer.diameter)
-
-
-def _plain_length(materials: Materials, ratio: Line, layer: Layer, factors: float) -> float:
-    """Development length before the least of 12 in is looked at [mm]."""
-    fc, fy = materials.fc.value * 1000, materials.fy.value * 1000
-    return 3 / 40 * fy / root_of(fc) * factors / ratio.value * layer.diameter.value
 
 
 def is_small(group: Group) -> bool:
@@ -221,8 +222,8 @@ def state_end(sheet: Sheet, bending: BendingLines, development: Development, end
     shear = sheet.take(
         f"V_u,{tag}", end.shear, "kN", f"Factored shear at the {end.words}", "analysis, envelope", given=False
     )
-    factor = 1.3 if end.kind == "confined" else 1
-    rise = factor * bending.nominal / shear if factor != 1 else bending.nominal / shear
+    nominal = 1.3 * bending.nominal if end.kind == "confined" else bending.nominal
+    rise = nominal / shear
     if end.kind == "inflection":
         reach: Expression = rise + greatest(bending.depth, 12 * development.diameter)
     else:

@@ -4,10 +4,12 @@ from __future__ import annotations
 
 from typing import NamedTuple
 
+from calcpack.clauses.aci318 import strength
 from calcpack.clauses.aci318.arrangement import COVERS, least_cover
 from calcpack.clauses.aci318.limits import CODE, bound
 from calcpack.clauses.aci318.strength import INCH, PSI
 from calcpack.job.model import Material
+from calcpack.job.units import factor
 from calcpack.sheet import Expression, Line, Sheet, greatest, in_unit, least, number_in, quantity, sqrt
 
 Checks = tuple[tuple[str, Line], ...]
@@ -72,9 +74,9 @@ def state_materials(sheet: Sheet, material: Material) -> Materials:
     fy = sheet.take("f_y", values["fy"], "MPa", "Yield strength of the bars", f"{place} bars")
     es = sheet.take("E_s", values["Es"], "MPa", "Modulus of the bars", f"{place} bars", cite("20.2.2.2"))
     block: Expression = 0.85 - 0.05 * (number_in(fc, "psi") - 4000) / 1000
-    if fc.value * 1000 <= 4000 * PSI:
+    if in_kpa(fc) <= 4000 * PSI:
         block = least(block, 0.85)
-    elif fc.value * 1000 >= 8000 * PSI:
+    elif in_kpa(fc) >= 8000 * PSI:
         block = greatest(block, 0.65)
     beta = sheet.hence(
         "beta_1",
@@ -96,17 +98,23 @@ def state_materials(sheet: Sheet, material: Material) -> Materials:
     return Materials(fc, lightweight, ec, beta, fy, fyt, es, strain)
 
 
+def in_kpa(stress: Line) -> float:
+    """A line's stress [kPa]."""
+    return stress.value * factor(stress.unit)
+
+
 def root(fc: Line) -> Expression:
-    """√f'c, f'c in psi, as shear, torsion and development take it: at most 100 where it would be more."""
-    plain = sqrt(number_in(fc, "psi"))
-    if fc.value * 1000 <= 10_000 * PSI * (1 + 1e-9):
-        return plain
-    return least(plain, 100)
+    """√f'c, f'c in psi, as shear, torsion and development take it: its bound is written where it counts.
+
+    Source: ACI 318-19, 22.5.3.1, 22.7.2.1, 25.4.1.4.
+    """
+    plain, most = sqrt(number_in(fc, "psi")), bound("root f'_c")
+    return plain if strength.root(in_kpa(fc)) < most else least(plain, round(most / PSI))
 
 
 def shared(length: Expression, parts: int) -> Expression:
     """A length divided by a count, which is not written where it is one."""
-    return length / parts if parts > 1 else length
+    return length if parts == 1 else length / parts
 
 
 def psi(term: Expression) -> Expression:
@@ -157,9 +165,9 @@ def state_cover(sheet: Sheet, cover: Line, exposure: str, stirrup: float, main: 
 
 
 def state_not_deep(sheet: Sheet, size: Size, clear: Line) -> Checks:
-    """The beam is no deep beam, to which these clauses do not apply.
+    """The beam is no deep beam, to which these clauses do not apply: its clear span exceeds four depths.
 
     Source: ACI 318-19, 9.9.1.1.
     """
-    line = sheet.require(clear >= 4 * size.height, "The beam is not a deep one", cite("9.9.1.1"))
+    line = sheet.require(clear > 4 * size.height, "The beam is not a deep one", cite("9.9.1.1"))
     return (("no deep beam", line),)

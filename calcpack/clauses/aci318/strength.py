@@ -15,6 +15,7 @@ PSI = factor("psi")  # [kPa]
 INCH = factor("inch")  # [m]
 CRUSHING = 0.003  # 22.2.2.1
 PHI_SHEAR = 0.75  # Table 21.2.1
+LEAST_DEVELOPMENT = 12  # [in], 25.4.2.1(b)
 
 
 @dataclass(frozen=True)
@@ -325,18 +326,26 @@ def development_length(
     """
     psi_t, psi_s, psi_g = 1.3 if top else 1.0, 0.8 if small else 1.0, grade_factor(fy)
     length = 3 / 40 * fy / root(fc) * psi_t * psi_s * psi_g / min(confinement, 2.5) * bar
-    return max(length, 12 * INCH)
+    return max(length, LEAST_DEVELOPMENT * INCH)
 
 
 def grade_factor(fy: float) -> float:
-    """Reinforcement grade factor ψg.
+    """Reinforcement grade factor ψg, by the yield strength of the grade.
 
-    Source: ACI 318-19, Table 25.4.2.5.
+    Grade 420 of metric orders is Grade 60, though 420 MPa are 60.9 ksi; 550 MPa are 79.8 ksi.
+
+    Parameters
+    ----------
+    fy : float [kPa]
+
+    Source: ACI 318-19, Table 25.4.2.5; ACI 318M-19 says it by the metric grades.
 
     Examples
     --------
     >>> [grade_factor(ksi * 1000 * PSI) for ksi in (40, 60, 80, 100)]
     [1.0, 1.0, 1.15, 1.3]
+    >>> [grade_factor(mpa * 1000) for mpa in (280, 420, 550, 690)]
+    [1.0, 1.0, 1.15, 1.3]
     """
     ksi = fy / (1000 * PSI)
-    return 1.0 if ksi <= 60.001 else 1.15 if ksi <= 80.001 else 1.3
+    return 1.0 if ksi <= 61 else 1.15 if ksi <= 81 else 1.3

@@ -6,6 +6,7 @@ from calcpack.clauses.aci318.strength import INCH, PSI
 from calcpack.clauses.bars import bar
 from calcpack.job.model import Material
 from calcpack.sheet import Sheet
+from calcpack.sheet.expression import Operation, walk
 
 KSI = 1000 * PSI
 ES = 29000 * KSI
@@ -19,6 +20,11 @@ def cage(width, depth, cover=1.5, stirrup=0.375, aggregate=0.75):
 
 def group(count, size, *args, **keys):
     return arranged(count, bar(size), cage(*args, **keys))
+
+
+def bounded(line):
+    """Whether a line's formula has a least or a greatest value in it."""
+    return any(isinstance(each, Operation) and each.name in ("min", "max") for each in walk(line.expression))
 
 
 def begin(fc=4000, fy=60, width=12, depth=20, flange=None, system="SI", cover=1.5, stirrup=0.375):

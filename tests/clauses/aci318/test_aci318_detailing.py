@@ -63,8 +63,9 @@ def test_crack_control(fy, cover):
     assert line.passes is (20 - 2 * clear - 1 <= by_hand)
 
 
-@pytest.mark.parametrize(("clear", "passes"), [(80.0, True), (79.9, False)])
+@pytest.mark.parametrize(("clear", "passes"), [(80.1, True), (80.0, False), (79.9, False)])
 def test_a_deep_beam_is_none_of_these(clear, passes):
+    """9.9.1.1: a deep beam's clear span does not exceed four times its depth of 20 in."""
     sheet, _, size = begin()
     span = sheet.take("ell_n", clear * 0.0254, "m", "", "test")
     ((_, line),) = state_not_deep(sheet, size, span)
