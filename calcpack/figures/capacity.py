@@ -59,8 +59,8 @@ class Governing(NamedTuple):
 
     @property
     def ratio(self) -> float:
-        """Demand over capacity; infinite without any."""
-        return self.demand / self.capacity if self.capacity else math.inf
+        """Demand over capacity, by size; infinite without any."""
+        return abs(self.demand / self.capacity) if self.capacity else math.inf
 
 
 def ratio_text(ratio: float) -> str:

@@ -138,6 +138,13 @@ class Work:
             return self.study.spans[0]
         return None
 
+    def stated(self, key: Hashable, value: float) -> Line | None:
+        """The line under a key, if it says this value (by size) already."""
+        line = self.lines.get(key)
+        if line is None or abs(abs(line.value) - abs(value)) > 1e-9 * abs(value):
+            return None
+        return line
+
 
 def load_sheet(parameters: str) -> Work:
     """Begin the sheet of a beam.

@@ -359,3 +359,13 @@ def test_names_of_the_bars_are_text():
     assert len(inks(strong("section"))) >= 9
     assert WHITE in strong("section").svg
     assert len({hashlib.sha256(strong(name).svg.encode()).digest() for name in STRENGTH}) == len(STRENGTH)
+
+
+@pytest.mark.parametrize("sign", [1.0, -1.0])
+def test_a_hogging_moment_has_a_ratio_by_size(sign):
+    figure = capacity_figure(
+        6.0, TWO, "moment", ((PARABOLA, SINE), (PARABOLA, -80 * SINE)), MOMENTS[:1],
+        governing=[(3.0, -80.0, sign * 100.0)],
+    )  # fmt: skip
+    assert "ratio 0.80" in figure.alt
+    assert "ratio 0.80" in " ".join(words(figure))

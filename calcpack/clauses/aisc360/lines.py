@@ -18,14 +18,18 @@ from calcpack.sheet import PI, Expression, Line, Sheet, greatest, least, sqrt
 
 
 class BendingBasis(NamedTuple):
-    """What the bending strength of every segment draws on; ``flange`` where local buckling counts."""
+    """What the bending strength of every segment draws on.
+
+    ``first`` where a segment buckles inelastically, ``short``, ``long`` and ``ratio`` where one is not held
+    all along, ``flange`` where local buckling counts.
+    """
 
     factor: Line
     plastic: Line
     first: Line | None
-    short: Line
-    long: Line
-    ratio: Line
+    short: Line | None
+    long: Line | None
+    ratio: Line | None
     flange: Line | None
 
 
@@ -38,6 +42,7 @@ def state_bending_basis(
     slender: SlendernessLines,
     *,
     inelastic: bool = True,
+    lengths: bool = True,
 ) -> BendingBasis:
     """Plastic moment, moment at first yield, limiting lengths, and local buckling of the flange.
 
@@ -46,6 +51,8 @@ def state_bending_basis(
     inelastic : bool
         Whether any segment buckles inelastically; if none does and the flange is compact, nothing draws on
         the moment at first yield, and it is left out.
+    lengths : bool
+        Whether any segment may buckle sideways; if none may, nothing draws on the limiting lengths.
 
     Source: AISC 360-22 (F2-1), (F2-5), (F2-6), (F3-1), (F3-2).
     """
@@ -61,6 +68,13 @@ def state_bending_basis(
             f"{AISC} F2.2",
             word="moment at first yield, residual stresses counted",
         )
+    short, ratio, long = _lengths(sheet, steel, shape) if lengths else (None, None, None)
+    flange = _flange(sheet, ratios, steel, shape, slender, plastic, first)
+    return BendingBasis(factor, plastic, first, short, long, ratio, flange)
+
+
+def _lengths(sheet: Sheet, steel: SteelLines, shape: ShapeLines) -> tuple[Line, Line, Line]:
+    """L_p, torsion against warping, L_r."""
     short = sheet.hence(
         "L_p",
         1.76 * shape.weak_radius * sqrt(steel.modulus / steel.fy),
@@ -87,8 +101,7 @@ def state_bending_basis(
         "Limiting length for inelastic buckling",
         f"{AISC} (F2-6)",
     )
-    flange = _flange(sheet, ratios, steel, shape, slender, plastic, first)
-    return BendingBasis(factor, plastic, first, short, long, ratio, flange)
+    return short, ratio, long
 
 
 def _flange(
@@ -202,10 +215,13 @@ def state_bending(
             raise ValueError("buckling needs an unbraced length and a factor for the diagram")
         if zone == "inelastic":
             assert basis.first is not None
+            assert basis.short is not None
+            assert basis.long is not None
             along = (unbraced - basis.short) / (basis.long - basis.short)
             terms.insert(0, factor * (basis.plastic - (basis.plastic - basis.first) * along))
             cite = f"{AISC} (F2-2)"
         else:
+            assert basis.ratio is not None
             slender = (unbraced / shape.shear_radius) ** 2
             stress = sheet.hence(
                 "F_cr",

@@ -25,6 +25,15 @@ def modulus_line(given: ProfileLines, profile: Profile) -> tuple[Line, str]:
     return given.W_el, f"elastic, {RANK[profile.section_class]}"
 
 
+def _demand(
+    sheet: Sheet, symbol: str, value: float, unit: str, says: str, origin: str, stated: Line | None
+) -> Line:
+    """A force of the analysis, drawn from the line that says it where there is one."""
+    if stated is not None:
+        return sheet.hence(symbol, stated, unit, says)
+    return sheet.take(symbol, abs(value), unit, says, origin, given=False)
+
+
 def bending(
     sheet: Sheet,
     given: ProfileLines,
@@ -33,8 +42,11 @@ def bending(
     demand: float,
     says: str,
     origin: str = "analysis",
+    stated: Line | None = None,
 ) -> Resistance:
     """Bending resistance of the section, and that the moment [kNm], by size, does not pass it.
+
+    ``stated`` is a line of the sheet that says the moment already.
 
     Source: EN 1993-1-1:2005, 6.2.5, (6.12) to (6.14).
 
@@ -49,7 +61,7 @@ def bending(
     >>> round(found.resistance.value, 1), found.check.passes
     (189.0, True)
     """
-    moment = sheet.take("M_Ed", abs(demand), "kN*m", says, origin, given=False)
+    moment = _demand(sheet, "M_Ed", demand, "kN*m", says, origin, stated)
     modulus, words = modulus_line(given, profile)
     equation = "(6.13)" if profile.section_class <= 2 else "(6.14)"
     resistance = sheet.hence(
@@ -81,8 +93,11 @@ def shear(
     demand: float,
     says: str,
     origin: str = "analysis",
+    stated: Line | None = None,
 ) -> ShearLines:
     """Plastic shear resistance, and that the web needs no look at shear buckling.
+
+    ``stated`` is a line of the sheet that says the shear already.
 
     Source: EN 1993-1-1:2005, 6.2.6(2), (3) a) and (6).
 
@@ -97,7 +112,7 @@ def shear(
     >>> round(found.area.value), round(found.resistance.value), found.web.passes
     (3081, 418, True)
     """
-    force = sheet.take("V_Ed", abs(demand), "kN", says, origin, given=False)
+    force = _demand(sheet, "V_Ed", demand, "kN", says, origin, stated)
     area = sheet.hence(
         "A_v",
         greatest(

@@ -177,6 +177,11 @@ class SteelBeam:
         return tuple(worst.values())
 
     @property
+    def governing(self) -> BendingCheck:
+        """The segment whose bending strength is used most."""
+        return max(self.bending, key=lambda each: round(each.ratio, 12))
+
+    @property
     def web(self) -> tuple[ForceCheck, ...]:
         """The worst force for local yielding of the web, and the worst for crippling."""
         worst: dict[str, ForceCheck] = {}

@@ -5,13 +5,11 @@ from __future__ import annotations
 from calcpack.clauses.aisc360 import lines, shape_lines, strength, web_lines
 from calcpack.clauses.aisc360.design import DeflectionCheck, ForceCheck
 from calcpack.clauses.aisc360.shape_lines import AISC, available
-from calcpack.figures.deflected import deflected_shape
 from calcpack.notebook.sections._steel_aisc360 import SteelBeam, deflection_name, force_name, span_words
+from calcpack.notebook.sections.steel_figures import deflected_figure, shear_figure, state_ponding
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line, number
-
-SAMPLES = 120
 
 
 def state_shear(work: Work, beam: SteelBeam) -> None:
@@ -20,15 +18,13 @@ def state_shear(work: Work, beam: SteelBeam) -> None:
     method = design.options.method
     sheet.section("Shear, and the web under forces on the flange")
     most = design.shear_demand
-    demand = sheet.take(
-        "V_r",
-        most.value,
-        "kN",
-        f"Largest shear, at {work.show(most.at, 'm')}",
-        f"analysis, {work.study.analysed.governing_shear.combination.name}",
-        given=False,
-        word="required shear strength",
-    )
+    says, word = f"Largest shear, at {work.show(most.at, 'm')}", "required shear strength"
+    stated = work.stated("reaction", most.value)
+    if stated is not None:
+        demand = sheet.hence("V_r", stated, "kN", says, word=word)
+    else:
+        origin = f"analysis, {work.study.analysed.governing_shear.combination.name}"
+        demand = sheet.take("V_r", most.value, "kN", says, origin, given=False, word=word)
     found = lines.state_shear(
         sheet, design.shear, method, beam.basis["steel"], beam.basis["shape"], beam.basis["slender"].web
     )
@@ -158,14 +154,8 @@ def state_deflection(work: Work, beam: SteelBeam) -> None:
             _limit_cite(work, check.kind),
         )
         work.checks.append((name, line))
-    _figure(work, beam)
-    roof = [CASE_WORDS[case] for case in work.study.cases if case in ("roof_live", "snow")]
-    if roof:
-        sheet.text(
-            f"This beam carries {' and '.join(roof)}: a roof that drains towards it or is nearly flat has to "
-            f"be looked at for ponding, {AISC} B3.10 and ASCE 7-22 chapter 8; ponded water is not in it.",
-            role="caution",
-        )
+    _figures(work, beam)
+    state_ponding(work, f"{AISC} B3.10 and ASCE 7-22 chapter 8")
 
 
 def _under(check: DeflectionCheck) -> str:
@@ -197,32 +187,23 @@ def _deflections(work: Work, beam: SteelBeam) -> None:
     )
 
 
-def _figure(work: Work, beam: SteelBeam) -> None:
-    """The envelope of the service combination that deflects most, with each span's limit."""
-    study, given = work.study, work.given
-    total = study.analysed.deflection_total
-    if total is None or not study.stiffness:
-        return
-    result = next(each for each in study.analysed.results if each.combination is total[0])
-    band = result.envelope.deflection
-    places, high = band.upper.sample(SAMPLES)
-    low = band.lower.values(places)
-    worst = [up if abs(up) >= abs(down) else down for up, down in zip(high, low, strict=True)]
-    figure = deflected_shape(
-        given.length,
-        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
-        places,
-        [value / study.stiffness for value in worst],
-        [
-            (check.span.start, check.span.end, check.allowed)
-            for check in beam.design.deflection
-            if check.kind == "total"
-        ],
-        study.system,
-        fixed=given.fixed,
-        mark=given.mark,
-    )
-    work.sheet.figure(figure, f"Largest deflection at every point under {total[0].name}, with the limits.")
+def _figures(work: Work, beam: SteelBeam) -> None:
+    """Shear in its strength, and the deflected beam in its limits."""
+    options = beam.design.options
+
+    def limit(under: str, number: int) -> float | None:
+        start, end = work.given.spans[number]
+        reach = (end - start) * (1 if work.given.between_supports(number) else 2)
+        return reach / (options.total_limit if under == "total" else options.live_limit)
+
+    with work.sheet.columns([1, 1]) as column:
+        work.sheet.figure(
+            shear_figure(work, beam.design.shear_available),
+            "Shear of all strength combinations, and the available strength.",
+        )
+        column()
+        if (figure := deflected_figure(work, limit)) is not None:
+            work.sheet.figure(figure, "Each span as its worst placement of load bends it, with its limit.")
 
 
 def _limit_cite(work: Work, kind: str) -> str:

@@ -52,14 +52,14 @@ def state_summary(work: Work) -> None:
 def state_notation(work: Work) -> None:
     """The symbols of this sheet, and what it was made from."""
     given, sheet = work.given, work.sheet
-    sheet.section("Notation and provenance")
-    sheet.notation()
+    sheet.section("Provenance and notation")
     template = given.template
     sheet.text(
         f"Made by {given.program} with the template {template.name} {template.version} (SHA-256 "
         f"{template.sha256[:16]}…) from {given.job_file} (SHA-256 of all input {given.input[:16]}…).",
         role="note",
     )
+    sheet.notation()
 
 
 def write_record(work: Work) -> None:

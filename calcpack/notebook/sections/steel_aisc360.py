@@ -8,6 +8,7 @@ from __future__ import annotations
 from calcpack.clauses.aisc360 import lines, shape_lines
 from calcpack.clauses.aisc360.design import BendingCheck
 from calcpack.clauses.aisc360.shape_lines import AISC, available
+from calcpack.clauses.aisc360.strength import Zone
 from calcpack.clauses.steel import Arrangement
 from calcpack.figures.capacity import capacity_figure
 from calcpack.figures.section import section_figure
@@ -45,9 +46,9 @@ def state_section(work: Work, beam: SteelBeam) -> None:
     assert section is not None
     assert material is not None
     sheet.section(f"Section to {AISC}")
-    with sheet.columns([10, 13]) as column:
+    with sheet.columns([7, 17]) as column:
         sheet.figure(
-            section_figure(section, work.study.system, mark=given.mark),
+            section_figure(section, work.study.system, mark=given.mark, width_mm=44),
             f"{section.designation}: {section.source}.",
         )
         column()
@@ -60,8 +61,8 @@ def state_section(work: Work, beam: SteelBeam) -> None:
             ],
             role="note",
         )
-    if section.family:
-        sheet.text(chosen_words(section))
+        if section.family:
+            sheet.text(chosen_words(section))
     steel = shape_lines.state_steel(
         sheet, design.steel, material.grade or material.key, f"material {material.key}"
     )
@@ -109,7 +110,7 @@ def _choices(work: Work, beam: SteelBeam) -> list[tuple[Runs, Runs]]:
 
 
 def state_bending(work: Work, beam: SteelBeam) -> None:
-    """Limits once, then the worst segment of each span and sense, and a table of all of them."""
+    """Limits once, a table of all segments, and line by line the one that is used most."""
     sheet, design = work.sheet, beam.design
     sheet.section("Bending and lateral-torsional buckling")
     if not design.covered:
@@ -117,6 +118,7 @@ def state_bending(work: Work, beam: SteelBeam) -> None:
             "The web is not compact: F2 and F3 do not hold and no bending strength is given.", role="unsafe"
         )
         return
+    governing = beam.governing
     basis = lines.state_bending_basis(
         sheet,
         design.slenderness,
@@ -124,32 +126,38 @@ def state_bending(work: Work, beam: SteelBeam) -> None:
         beam.basis["steel"],
         beam.basis["shape"],
         beam.basis["slender"],
-        inelastic=any(check.strength.zone == "inelastic" for check in beam.bending),
+        inelastic=governing.strength.zone == "inelastic",
+        lengths=any(not check.segment.held for check in design.bending),
     )
-    if len(design.bending) > len(beam.bending):
+    if len(design.bending) > 1:
         _segments(work, beam)
-    for check in beam.bending:
-        _state_segment(work, beam, basis, check)
+    _state_segment(work, beam, basis, governing)
     _figure(work, beam)
+
+
+ZONES: dict[Zone, str] = {
+    "yielding": "yielding",
+    "inelastic": "inelastic buckling",
+    "elastic": "elastic buckling",
+}
 
 
 def _segments(work: Work, beam: SteelBeam) -> None:
     """Every stretch between braced points with its worst arrangement."""
-    rows, strong = [], []
-    for number_, check in enumerate(beam.design.bending):
+    rows = []
+    for check in beam.design.bending:
         segment = check.segment
-        if check in beam.bending:
-            strong.append(number_)
         rows.append(
             [
                 span_words(work, segment.span.number),
                 f"{work.show(segment.start, 'm')} to {work.show(segment.end, 'm')}",
                 "sagging" if check.sagging else "hogging",
                 work.show(check.demand, "kN*m"),
-                "0" if segment.held else work.show(segment.unbraced, "m"),
-                work.show(check.diagram_factor, "1"),
+                "held" if segment.held else work.show(segment.unbraced, "m"),
+                "–" if segment.held else f"{check.diagram_factor:.3f}",
+                ZONES[check.strength.zone],
                 work.show(check.available, "kN*m"),
-                work.show(check.ratio, "1"),
+                f"{check.ratio:.2f}",
                 check.arrangement.combination.name,
             ]
         )
@@ -161,14 +169,16 @@ def _segments(work: Work, beam: SteelBeam) -> None:
             ({"math": r"M_{\text{r}}"}, "right"),
             ({"math": r"L_{\text{b}}"}, "right"),
             ({"math": r"C_{\text{b}}"}, "right"),
+            ("limit", "left"),
             ({"math": r"M_{\text{c}}"}, "right"),
             ("ratio", "right"),
             ("under", "left"),
         ],
         rows,
-        caption="Stretches between braced points, each under its worst arrangement of load; the worst of "
-        "each span and sense, in bold, is worked out below.",
-        strong_rows=strong,
+        caption="Stretches between braced points, each under its worst arrangement of load: required moment, "
+        "unbraced length, factor for the diagram, available strength. The one in bold governs and is worked "
+        "out below; the others go by the same formulas.",
+        strong_rows=[beam.design.bending.index(beam.governing)],
     )
 
 
@@ -197,13 +207,14 @@ def _state_segment(work: Work, beam: SteelBeam, basis: lines.BendingBasis, check
     def moment(symbol: str, value: float, says: str, word: str, origin: str) -> Line:
         return sheet.take(symbol, abs(value), "kN*m", says, origin, given=False, word=word)
 
-    demand = moment(
-        "M_r",
-        check.demand,
-        f"Largest {'sagging' if check.sagging else 'hogging'} moment, at {work.show(check.at, 'm')}; {words}",
-        "required moment strength",
-        "analysis",
+    says = (
+        f"Largest {'sagging' if check.sagging else 'hogging'} moment, at {work.show(check.at, 'm')}; {words}"
     )
+    stated = work.stated("moment", check.demand)
+    if stated is not None:
+        demand = sheet.hence("M_r", stated, "kN*m", says, word="required moment strength")
+    else:
+        demand = moment("M_r", check.demand, says, "required moment strength", "analysis")
     zone, unbraced, factor = check.strength.zone, None, None
     if segment.held:
         sheet.text("The compression flange is held all along: no lateral-torsional buckling.", role="note")
@@ -273,8 +284,9 @@ def _figure(work: Work, beam: SteelBeam) -> None:
         _capacities(beam),
         work.study.system,
         governing=[
-            (check.at, check.demand if check.sagging else -check.demand, check.available)
+            (check.at, sign * check.demand, sign * check.available)
             for check in beam.bending
+            for sign in (1.0 if check.sagging else -1.0,)
         ],
         fixed=given.fixed,
         mark=given.mark,

@@ -84,6 +84,7 @@ def state_steel_resistance(
         moment.value,
         f"Largest moment, {'sagging' if moment.value >= 0 else 'hogging'}, at {place(work, moment.at)}",
         f"analysis, {moment.combination}",
+        work.stated("moment", moment.value),
     )
     _keep(work, "bending", bent.check)
     sheared = shear(
@@ -94,6 +95,7 @@ def state_steel_resistance(
         force.value,
         f"Largest shear, at {place(work, force.at)}",
         f"analysis, {force.combination}",
+        work.stated("reaction", force.value),
     )
     _keep(work, "shear", sheared.check)
     _keep(work, "slenderness of the web", sheared.web, always=False)

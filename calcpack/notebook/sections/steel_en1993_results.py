@@ -2,21 +2,23 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from typing import Any, NamedTuple
 
 from calcpack.clauses.en1993.design import LocalForce, SteelBeam
 from calcpack.clauses.en1993.lines_profile import RANK
 from calcpack.clauses.en1993.rules import LIMITS, STRESS_SHARE, WEB_BUCKLING
 from calcpack.clauses.en1993.section import Profile
-from calcpack.figures import Capacity, Governing, capacity_figure, deflected_shape, section_figure
+from calcpack.figures import Capacity, Figure, Governing, capacity_figure, section_figure
 from calcpack.notebook.sections.steel_en1993_given import design_of, profile_in
+from calcpack.notebook.sections.steel_figures import HALF_WIDTH, deflected_figure, shear_figure, state_ponding
 from calcpack.notebook.study import Study
 from calcpack.notebook.work import Work
 from calcpack.sheet import Sheet
 from calcpack.statics import Extreme
 
 SAMPLES = 121  # odd: the middle is one of them
-HALF_WIDTH = 82.0  # [mm]
+WIDTH = 170.0  # of a figure over the whole page [mm]
 SENSE = {1: "placed to sag it", -1: "placed to hog it", 0: "everything loaded"}
 HEIGHT = {"top": "on the top flange", "centre": "at mid-depth", "bottom": "on the bottom flange"}
 HELD = {
@@ -103,7 +105,7 @@ def reach(work: Work, at: float) -> float:
 def state_steel_results(work: Work, beam: SteelBeam) -> None:
     """The schedule of checks, what the design rests on, and resistance drawn over the envelope."""
     sheet, given = work.sheet, work.given
-    sheet.section("Steel design: what is shown")
+    sheet.section("Steel design: summary of checks")
     rows = shown_of(work, beam)
     with sheet.columns([7, 17]) as column:
         assert given.section is not None
@@ -123,6 +125,7 @@ def state_steel_results(work: Work, beam: SteelBeam) -> None:
         _verdict(work, beam, rows)
         _conditions(work, beam)
     _figures(work, beam)
+    state_ponding(work, "EN 1990 A1.4.3 and EN 1991-1-3")
 
 
 def worst_of(study: Study) -> tuple[str, float]:
@@ -213,47 +216,64 @@ def _conditions(work: Work, beam: SteelBeam) -> None:
 
 
 def _figures(work: Work, beam: SteelBeam) -> None:
-    """Moment and shear envelopes under their resistances, and the deflected beam."""
-    given, study = work.given, work.study
-    bearings = [(each.at, each.kind, each.mark) for each in given.bearings]
-    moment, shear = study.analysed.band("moment"), study.analysed.band("shear")
+    """Moment and shear envelopes under their resistances, and the deflected beam; two fit side by side."""
+    width = HALF_WIDTH if len(work.given.spans) == 1 else WIDTH
+    moment = (
+        _moment_figure(work, beam, width),
+        (
+            "Moments of all strength combinations within the resistance: of the section, and of each segment to "
+            "buckling sideways under its worst arrangement."
+        ),
+    )
+    shear = (
+        shear_figure(work, beam.profile.shear),
+        "Shear of all strength combinations, and the plastic shear resistance.",
+    )
+    drawn = [moment, shear]
+    if (deflected := deflected_figure(work, _limit(work))) is not None:
+        drawn.append((deflected, "Each span as its worst placement of load bends it, with its limit."))
+    if width > HALF_WIDTH:
+        work.sheet.figure(*drawn.pop(0))
+    for pair in [drawn[n : n + 2] for n in range(0, len(drawn), 2)]:
+        with work.sheet.columns([1, 1]) as column:
+            for number, (figure, caption) in enumerate(pair):
+                if number:
+                    column()
+                work.sheet.figure(figure, caption)
+
+
+def _moment_figure(work: Work, beam: SteelBeam, width: float) -> Figure:
+    given, band = work.given, work.study.analysed.band("moment")
     governing = None
     if (worst := beam.buckling) is not None:
         signed = worst.moments.largest
         sign = 1.0 if signed.value >= 0 else -1.0
         governing = [Governing(signed.at, signed.value, sign * worst.resistance)]
-    work.sheet.figure(
-        capacity_figure(
-            given.length,
-            bearings,
-            "moment",
-            (moment.upper.sample(SAMPLES), moment.lower.sample(SAMPLES)),
-            capacities(beam, given.length),
-            study.system,
-            governing=governing,
-            fixed=given.fixed,
-            mark=given.mark,
-        ),
-        "Moments of all strength combinations within the resistance: of the section, and of each segment to "
-        "buckling sideways under its worst arrangement.",
+    return capacity_figure(
+        given.length,
+        [(each.at, each.kind, each.mark) for each in given.bearings],
+        "moment",
+        (band.upper.sample(SAMPLES), band.lower.sample(SAMPLES)),
+        capacities(beam, given.length),
+        work.study.system,
+        governing=governing,
+        fixed=given.fixed,
+        mark=given.mark,
+        width_mm=width,
     )
-    with work.sheet.columns([1, 1]) as column:
-        work.sheet.figure(
-            capacity_figure(
-                given.length,
-                bearings,
-                "shear",
-                (shear.upper.sample(SAMPLES), shear.lower.sample(SAMPLES)),
-                [Capacity(0.0, given.length, beam.profile.shear, beam.profile.shear)],
-                study.system,
-                fixed=given.fixed,
-                mark=given.mark,
-                width_mm=HALF_WIDTH,
-            ),
-            "Shear of all strength combinations, and the plastic shear resistance.",
-        )
-        column()
-        _deflected(work, bearings)
+
+
+def _limit(work: Work) -> Callable[[str, int], float | None]:
+    """What a span may deflect, live load alone or in total [m]."""
+    limits: dict[str, float] = work.given.design["deflection_limits"]
+
+    def limit(under: str, number: int) -> float | None:
+        if not limits.get(under):
+            return None
+        start, end = work.given.spans[number]
+        return (end - start) * (1 if work.given.between_supports(number) else 2) / limits[under]
+
+    return limit
 
 
 def capacities(beam: SteelBeam, length: float) -> list[Capacity]:
@@ -270,35 +290,3 @@ def capacities(beam: SteelBeam, length: float) -> list[Capacity]:
     if last < length - 1e-9:
         found.append(Capacity(last, length, plastic, plastic))
     return found
-
-
-def _deflected(work: Work, bearings: list[Any]) -> None:
-    """The deflection line of the worst service combination, against its limit."""
-    study, given = work.study, work.given
-    limit = given.design["deflection_limits"]["total"]
-    total = study.analysed.deflection_total
-    if total is None or not limit or not study.stiffness:
-        return
-    result = next(each for each in study.analysed.results if each.combination is total[0])
-    band = result.envelope.deflection
-    curve = band.upper if total[1].value >= 0 else band.lower
-    x, value = curve.sample(SAMPLES)
-    limits = [
-        (start, end, (end - start) * (1 if given.between_supports(number) else 2) / limit)
-        for number, (start, end) in enumerate(given.spans)
-    ]
-    work.sheet.figure(
-        deflected_shape(
-            given.length,
-            bearings,
-            x,
-            value / study.stiffness,
-            limits,
-            study.system,
-            title=f"deflection, {total[0].name}",
-            fixed=given.fixed,
-            mark=given.mark,
-            width_mm=HALF_WIDTH,
-        ),
-        f"Largest deflection at every point, {total[0].name}; limit: span over {limit:g}, twice an overhang.",
-    )

@@ -43,14 +43,20 @@ def _panel(work: Work, transfer: PanelTransfer) -> None:
             )
         _pressure(work, transfer)
         depth = _depth(work, transfer, share)
+        if depth is not None:
+            _peaks(work, transfer, share, depth)
         column()
         figure = panel_drainage(_drawn(transfer), work.study.system, width_mm=54)
         sheet.figure(figure, f"How panel {panel.mark} drains.")
     if depth is None:
         _general(work, transfer, share)
-        return
+
+
+def _peaks(work: Work, transfer: PanelTransfer, share: EdgeShare, depth: Line) -> None:
+    """Pressure times depth, case by case."""
+    panel, index = transfer.panel, work.sources[transfer.panel.mark].index
     for case in _cases(work, transfer):
-        work.lines["peak", case, panel.mark] = sheet.hence(
+        work.lines["peak", case, panel.mark] = work.sheet.hence(
             f"w_{LETTER[case]}{index}",
             work.lines[f"pressure {case}", panel.mark] * depth,
             "kN/m",

@@ -3,6 +3,7 @@
 import json
 import tomllib
 
+import numpy as np
 import pytest
 
 from calcpack.framing import frame
@@ -14,6 +15,7 @@ from calcpack.notebook import load_sheet, sections
 from calcpack.notebook.lightest import choose_sections
 from calcpack.notebook.parameters import beam_input, to_text
 from calcpack.notebook.sections import steel_en1993 as steel
+from calcpack.notebook.sections import steel_figures
 from calcpack.notebook.sections.closing import record_results
 from calcpack.notebook.sections.steel_en1993_results import shown_of
 from calcpack.notebook.templates import find_template
@@ -288,3 +290,64 @@ def test_where_none_passes_the_nearest_is_shown_with_what_it_lacks(tmp_path):
     assert f"None of the {len(families()['IPE'])} IPE sections passes all checks" in said
     assert "is the lightest" not in said
     assert "Not satisfied" in said
+
+
+# Figures and words the sheets of both steel templates share
+
+
+def test_the_deflected_shape_has_no_jump_and_ends_at_its_supports(tmp_path):
+    work = work_of(tmp_path)
+    (combination, extreme) = work.study.analysed.deflection_total
+    result = next(each for each in work.study.analysed.results if each.combination is combination)
+    x, y = steel_figures._shape(work, result.envelope.deflection)
+    most = abs(y).max()
+    assert most == pytest.approx(abs(extreme.value), rel=1e-3)
+    for at in (0.0, 6.0, 11.0):
+        assert abs(y[abs(x - at) < 1e-9]).max() < 1e-9 * most
+    assert abs(np.diff(y)).max() < 0.08 * most
+    assert np.all(np.diff(x) >= 0)
+
+
+def test_both_deflections_are_drawn_with_their_limits(tmp_path):
+    work = work_of(tmp_path)
+    written(work)
+    (figure,) = [
+        str(block) for block in figures_of(work.sheet.blocks) if "deflection, live load alone" in str(block)
+    ]
+    assert "limit 16.7 mm" in figure
+    assert "limit 24.0 mm" in figure
+
+
+def figures_of(blocks):
+    for block in blocks:
+        if block["type"] == "figure":
+            yield block["alt"]
+        elif block["type"] == "columns":
+            for column in block["columns"]:
+                yield from figures_of(column)
+
+
+def test_snow_asks_for_a_look_at_ponding(tmp_path):
+    loft(tmp_path, "IPE 330")
+    text = (tmp_path / "job.toml").read_text().replace('case = "live"', 'case = "snow"')
+    (tmp_path / "job.toml").write_text(text)
+    work = started(frame(read_job(tmp_path / "job.toml")))
+    written(work)
+    assert "ponding, EN 1990 A1.4.3" in str(work.sheet.blocks)
+    plain = work_of(tmp_path)
+    written(plain)
+    assert "ponding" not in str(plain.sheet.blocks)
+
+
+def test_demands_are_drawn_from_the_lines_that_state_them(tmp_path):
+    """A beam on two supports: M_Ed is M_max of the combinations, not a second figure of the analysis."""
+    path = tmp_path / "job.toml"
+    loft(tmp_path, "IPE 330")
+    text = path.read_text().partition("[[beam.load]]")[0].replace('["A1", "B1", "C1"]', '["A1", "B1"]')
+    cut = text.index('[[panel]]\nmark = "P2"')
+    path.write_text(text[:cut] + text[text.index("[[wall]]") :].replace('["A2", "C2"]', '["A2", "B2"]'))
+    work = started(frame(read_job(path)))
+    written(work)
+    symbols = {line.symbol: line for line in work.sheet.lines.values()}
+    assert symbols["M_Ed"].kind == symbols["V_Ed"].kind == "hence"
+    assert symbols["M_Ed"].value == pytest.approx(symbols["M_max"].value, rel=1e-12)
