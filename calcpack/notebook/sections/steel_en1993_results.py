@@ -221,8 +221,8 @@ def _figures(work: Work, beam: SteelBeam) -> None:
     moment = (
         _moment_figure(work, beam, width),
         (
-            "Moments of all strength combinations within the resistance: of the section, and of each segment to "
-            "buckling sideways under its worst arrangement."
+            "Moments of all strength combinations within the resistance: of the section, and of each segment "
+            "to buckling sideways under its worst arrangement."
         ),
     )
     shear = (
