@@ -65,6 +65,7 @@ class LoadStrip:
         self.drawing = Drawing()
         self.placer = Placer(axis.bounds())
         self.surface: list[list[Pair]] = []
+        self.even: list[list[Pair]] = []  # the dashed lines of the equivalents
         self.remark = ""
 
     def draw(
@@ -79,6 +80,7 @@ class LoadStrip:
             line = [(self.axis.x(start), value * self.scale), (self.axis.x(end), value * self.scale)]
             self.drawing.line(line, Stroke(MEDIUM, INK, (4.0, 2.0)), HEAVY)
             self.placer.block_line(line)
+            self.even.append(line)
         points = point_loads(loads)
         for at, _ in points:
             x = self.axis.x(at)
@@ -170,15 +172,17 @@ class LoadStrip:
             self.placer.block_line([(side, 0.0), (side, top)])
 
     def _lying(self, texts: Sequence[tuple[float, list[str]]]) -> list[Flag]:
-        """Names over the arrows in at most two rows; none at all where that leaves no room between them."""
+        """Names over the arrows, clear of dashed lines, in few rows; none where there is no room for one."""
         flags: list[Flag] = []
         trial = Placer(self.axis.bounds())
+        for line in self.even:
+            trial.block_line(line)
         for x, lines in texts:
             width = max(text_width(line, SMALL) for line in lines)
             height = line_height(SMALL)
             middle = min(max(x, 0.5 + width / 2), self.axis.width - 0.5 - width / 2)
             foot = self._top(middle - width / 2, middle + width / 2) + ARROW
-            for row in range(2):
+            for row in range(2 + len(self.even)):
                 low = foot + row * height
                 block = Box(middle, low + height * len(lines) / 2, width + 1.6, height * len(lines))
                 if trial.cost(block) == 0 and not trial.covered((x, 0.0), (x, low - 0.2)):
@@ -252,7 +256,7 @@ class LoadStrip:
 
     def _along(self, start: float, end: float, value: float, text: str) -> None:
         """A dashed line's value, over it or under it."""
-        width, height = text_width(text, SMALL, italic=True), line_height(SMALL)
+        width, height = text_width(text, SMALL, italic=True) + 1.6, line_height(SMALL)
         places = [
             Box(self.axis.x(start + (end - start) * part), value * self.scale + off, width, height)
             for off in (height / 2 + 0.5, -height / 2 - 0.5)

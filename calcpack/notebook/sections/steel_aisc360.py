@@ -46,9 +46,9 @@ def state_section(work: Work, beam: SteelBeam) -> None:
     assert section is not None
     assert material is not None
     sheet.section(f"Section to {AISC}")
-    with sheet.columns([7, 17]) as column:
+    with sheet.columns([6, 18]) as column:
         sheet.figure(
-            section_figure(section, work.study.system, mark=given.mark, width_mm=44),
+            section_figure(section, work.study.system, mark=given.mark, width_mm=34),
             f"{section.designation}: {section.source}.",
         )
         column()
