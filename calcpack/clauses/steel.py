@@ -197,6 +197,17 @@ class SegmentMoments(NamedTuple):
 def stretch(curve: Curve, start: float, end: float) -> Curve:
     """The part of a curve between two places.
 
+    Parameters
+    ----------
+    curve : Curve
+    start, end : float [m]
+        Beyond the curve's ends they count as these.
+
+    Raises
+    ------
+    ValueError
+        There is nothing between them.
+
     Examples
     --------
     >>> line = Curve(np.array([0.0, 4.0]), np.array([[0.0, 2.0]]))
@@ -329,6 +340,17 @@ def held_points(start: float, end: float, *, every: float | None = None, at: Seq
     """Where a span is held sideways: at its ends, and every so far from its start or at given places [m].
 
     Places outside the span and places that stand at its ends are left out.
+
+    Parameters
+    ----------
+    start, end : float [m]
+    every : float [m], optional
+    at : sequence of float [m]
+
+    Raises
+    ------
+    ValueError
+        ``every`` is not more than nothing.
 
     Examples
     --------

@@ -44,7 +44,7 @@ class Cage:
         return max(INCH, bar.diameter)
 
     def most(self, bar: Bar) -> int:
-        """How many bars fit side by side."""
+        """How many bars fit side by side. Source: ACI 318-19, 25.2.1."""
         room = self.width - 2 * (self.cover + self.stirrup)
         need = self.clear_needed(bar)
         return int((room + need) / (bar.diameter + need) + 1e-9)

@@ -82,7 +82,7 @@ class Task:
         return bending(self.block, steel, strengths.fc, strengths.fy, strengths.modulus)
 
     def least(self, group: Group) -> float:
-        """Least tension steel [m2]."""
+        """Least tension steel [m2]. Source: ACI 318-19, 9.6.1.2."""
         return least_steel(self.strengths.fc, self.strengths.fy, self.least_width, group.depth)
 
     def ductile(self, state: Bending) -> bool:
@@ -93,11 +93,14 @@ class Task:
         return holds("ge", state.strain, self.strengths.yield_strain + 0.003)
 
     def strong(self, state: Bending) -> bool:
-        """Whether the section carries its moment, tension-controlled."""
+        """Whether the section carries its moment, tension-controlled. Source: 9.5.1.1, 9.3.3.1."""
         return self.ductile(state) and holds("ge", state.design, self.demand)
 
     def suits(self, group: Group, pressed: Group | None = None) -> bool:
-        """Whether bars satisfy every clause that this choice looks at."""
+        """Whether bars satisfy every clause that this choice looks at.
+
+        Source: ACI 318-19, 25.2.1, 9.6.1.2, Table 24.3.2, 9.3.3.1, 9.5.1.1.
+        """
         if not group.fits or group.area < self.least(group):
             return False
         clear_cover = self.cage.cover + self.cage.stirrup
@@ -190,17 +193,20 @@ class Web(NamedTuple):
     strengths: Strengths
 
     def enough(self, area: float, spacing: float) -> bool:
-        """Whether stirrups are no less than the least ones."""
+        """Whether stirrups of an area [m2] at a spacing [m] are no less than the least. Source: 9.6.3.4."""
         least = least_stirrups(self.strengths.fc, self.strengths.fyt, self.width)
         return holds("ge", area / spacing, least)
 
     def concrete(self, with_least: bool = True) -> float:
-        """V_c [kN]."""
+        """V_c [kN], of a web with the least stirrups or less. Source: ACI 318-19, Table 22.5.5.1."""
         fc = self.strengths.fc
         return shear_of_concrete(fc, self.width, self.depth, self.steel_ratio, with_least=with_least)
 
     def strength(self, area: float, spacing: float) -> float:
-        """φ V_n with stirrups of an area [m2] at a spacing [m], bounded by 22.5.1.2 [kN]."""
+        """φ V_n with stirrups of an area [m2] at a spacing [m] [kN].
+
+        Source: ACI 318-19, 22.5.1.1, 22.5.8.5.3, bounded by 22.5.1.2.
+        """
         carried = area * self.strengths.fyt * self.depth / spacing
         carried = min(carried, 8 * root(self.strengths.fc) * self.width * self.depth)
         return PHI_SHEAR * (self.concrete(self.enough(area, spacing)) + carried)
@@ -210,7 +216,10 @@ class Web(NamedTuple):
         return PHI_SHEAR * root(self.strengths.fc) * self.width * self.depth
 
     def widest(self, demand: float, area: float) -> float:
-        """Largest spacing that strength, the least stirrups and Table 9.7.6.2.2 allow [m]."""
+        """Largest spacing that a shear [kN] allows stirrups of an area [m2] [m].
+
+        Source: ACI 318-19, 22.5.8.5.3, 9.6.3.4, Table 9.7.6.2.2.
+        """
         needed = demand / PHI_SHEAR - self.concrete()
         along, _ = stirrup_limits(self.strengths.fc, self.width, self.depth, needed)
         spacing = min(along, area / least_stirrups(self.strengths.fc, self.strengths.fyt, self.width))
@@ -220,7 +229,7 @@ class Web(NamedTuple):
 
 
 def rounded_down(length: float, step: float) -> float:
-    """A length cut to whole steps.
+    """A length cut to whole steps, in the unit of both.
 
     Examples
     --------
@@ -231,7 +240,17 @@ def rounded_down(length: float, step: float) -> float:
 
 
 def legs_needed(web: Web, cage: Cage, demand: float) -> int:
-    """Legs across the web that keep to Table 9.7.6.2.2."""
+    """How many legs a web needs.
+
+    Parameters
+    ----------
+    web : Web
+    cage : Cage
+    demand : float [kN]
+        V_u.
+
+    Source: ACI 318-19, Table 9.7.6.2.2.
+    """
     needed = demand / PHI_SHEAR - web.concrete()
     _, across = stirrup_limits(web.strengths.fc, web.width, web.depth, needed)
     room = cage.width - 2 * cage.cover - cage.stirrup

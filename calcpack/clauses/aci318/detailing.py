@@ -168,7 +168,7 @@ def state_development(
 
 
 def is_small(group: Group) -> bool:
-    """Whether a bar is No. 6 (19 mm) or smaller."""
+    """Whether a bar is No. 6 (19 mm) or smaller. Source: ACI 318-19, Table 25.4.2.5, ψs."""
     return group.bar.diameter <= 0.0191
 
 

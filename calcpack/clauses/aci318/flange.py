@@ -6,6 +6,7 @@ from typing import NamedTuple
 
 from calcpack.clauses.aci318.materials import Checks, Size, cite
 from calcpack.sheet import Expression, Line, Sheet, least, measured, total
+from calcpack.sheet.evaluation import holds
 
 
 class Wing(NamedTuple):
@@ -69,7 +70,7 @@ def state_flange(
     reach: list[Expression] = []
     for wing in wings:
         reach.append(least(deep * slab, measured(wing.clear, "m") / 2, clear_span / part))
-    if both and abs(wings[0].clear - wings[1].clear) < 1e-9:
+    if both and holds("eq", wings[0].clear, wings[1].clear):
         reach = [2 * reach[0]]
     words = " and ".join(f"{wing.words}" for wing in wings)
     return sheet.hence(

@@ -118,6 +118,11 @@ def beta_1(fc: float) -> float:
 def phi_bending(strain: float, yield_strain: float) -> float:
     """Strength reduction factor of a section by its net tensile strain, stirrups other than spirals.
 
+    Parameters
+    ----------
+    strain, yield_strain : float
+        ε_t of the outermost bars, and ε_ty.
+
     Source: ACI 318-19, Table 21.2.2.
 
     Examples
@@ -180,6 +185,10 @@ def bending(block: Block, steel: Steel, fc: float, fy: float, modulus: float) ->
 def root(fc: float) -> float:
     """√f'c as shear and development take it [kPa]; at most 100 psi.
 
+    Parameters
+    ----------
+    fc : float [kPa]
+
     Source: ACI 318-19, 22.5.3.1 and 25.4.1.4.
 
     Examples
@@ -211,7 +220,12 @@ def least_steel(fc: float, fy: float, width: float, depth: float) -> float:
 
 
 def size_effect(depth: float) -> float:
-    """Size effect factor of shear.
+    """Size effect factor λs of shear.
+
+    Parameters
+    ----------
+    depth : float [m]
+        Effective depth.
 
     Source: ACI 318-19, 22.5.5.1.3.
 
@@ -275,6 +289,12 @@ def stirrup_limits(fc: float, width: float, depth: float, carried: float) -> tup
 def least_stirrups(fc: float, fyt: float, width: float) -> float:
     """Least stirrup area over its spacing [m2/m].
 
+    Parameters
+    ----------
+    fc, fyt : float [kPa]
+    width : float [m]
+        Of the web.
+
     Source: ACI 318-19, 9.6.3.4.
 
     Examples
@@ -286,7 +306,14 @@ def least_stirrups(fc: float, fyt: float, width: float) -> float:
 
 
 def effective_inertia(moment: float, cracking: float, gross: float, cracked: float) -> float:
-    """Effective second moment of area, in the unit of the two given.
+    """Effective second moment of area I_e, in the unit of the two given.
+
+    Parameters
+    ----------
+    moment, cracking : float [kNm]
+        M_a of the service loads, and M_cr.
+    gross, cracked : float [m4]
+        I_g and I_cr.
 
     Source: ACI 318-19, Table 24.2.3.5.
 

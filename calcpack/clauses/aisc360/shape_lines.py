@@ -29,6 +29,8 @@ def state_steel(sheet: Sheet, steel: Steel, name: str, origin: str) -> SteelLine
     name, origin : str
         What it is called; its place in the job.
 
+    Source: AISC 360-22 A3.1, the material's grade.
+
     Examples
     --------
     >>> sheet = Sheet("B1", "US")
@@ -67,6 +69,8 @@ def state_shape(sheet: Sheet, shape: ISection, name: str, origin: str) -> ShapeL
     shape : ISection
     name, origin : str
         Its designation; its place in the job.
+
+    Source: `calcpack.clauses.steel.i_section`; r_ts and h_o by AISC 360-22 F2.2.
 
     Examples
     --------
@@ -139,14 +143,16 @@ def state_slenderness(
 
 
 def class_of(ratios: Slenderness) -> str:
-    """The flange in a word: compact, noncompact or slender."""
+    """The flange in a word: compact, noncompact or slender. Source: AISC 360-22 B4.1."""
     if ratios.compact_flange:
         return "compact"
     return "slender" if ratios.slender_flange else "noncompact"
 
 
 def state_factor(sheet: Sheet, factor: Factor, method: Method, index: str, says: str) -> Line:
-    """φ or Ω of a limit state, as the method asks.
+    """φ or Ω of a limit state, as the method asks; the factor names its clause.
+
+    Source: AISC 360-22 B3.1, B3.2.
 
     Examples
     --------
@@ -168,5 +174,5 @@ def state_factor(sheet: Sheet, factor: Factor, method: Method, index: str, says:
 
 
 def available(factor: Line, nominal: Line, method: Method) -> Expression:
-    """φ R_n, or R_n / Ω."""
+    """φ R_n, or R_n / Ω. Source: AISC 360-22 (B3-1), (B3-2)."""
     return factor * nominal if method == "LRFD" else nominal / factor

@@ -28,7 +28,10 @@ class Factor(NamedTuple):
     cite: str
 
     def available(self, nominal: float, method: Method) -> float:
-        """Design strength φ R_n or allowable strength R_n / Ω, in the unit of the nominal one."""
+        """Design strength φ R_n or allowable strength R_n / Ω, in the unit of the nominal one.
+
+        Source: AISC 360-22 (B3-1), (B3-2).
+        """
         return self.phi * nominal if method == "LRFD" else nominal / self.omega
 
 
@@ -63,17 +66,17 @@ class Slenderness(NamedTuple):
 
     @property
     def compact_flange(self) -> bool:
-        """Whether the flange can yield throughout."""
+        """Whether the flange can yield throughout. Source: AISC 360-22 B4.1."""
         return self.flange <= self.flange_compact * (1 + 1e-9)
 
     @property
     def slender_flange(self) -> bool:
-        """Whether the flange buckles before it yields."""
+        """Whether the flange buckles before it yields. Source: AISC 360-22 B4.1."""
         return self.flange > self.flange_noncompact * (1 + 1e-9)
 
     @property
     def compact_web(self) -> bool:
-        """Whether the web is compact in bending, as F2 and F3 ask."""
+        """Whether the web is compact in bending, as F2 and F3 ask. Source: AISC 360-22 B4.1."""
         return self.web <= self.web_compact * (1 + 1e-9)
 
 
@@ -139,7 +142,17 @@ def limiting_lengths(shape: ISection, steel: Steel) -> Lengths:
 
 
 def critical_stress(shape: ISection, steel: Steel, unbraced: float, diagram_factor: float) -> float:
-    """F_cr [kPa] of elastic lateral-torsional buckling. Source: AISC 360-22 (F2-4), with c = 1."""
+    """F_cr [kPa] of elastic lateral-torsional buckling.
+
+    Parameters
+    ----------
+    unbraced : float [m]
+        L_b.
+    diagram_factor : float
+        C_b.
+
+    Source: AISC 360-22 (F2-4), with c = 1.
+    """
     slender = (unbraced / shape.shear_radius) ** 2
     ratio = shape.torsion / (shape.elastic_modulus * shape.between_flanges)
     return diagram_factor * math.pi**2 * steel.modulus / slender * math.sqrt(1 + 0.078 * ratio * slender)
@@ -188,7 +201,16 @@ class Bending(NamedTuple):
 
 
 def zone_of(unbraced: float, lengths: Lengths) -> Zone:
-    """Where an unbraced length [m] stands against the limiting ones; at a limit, below it."""
+    """Where an unbraced length stands against the limiting ones; at a limit, below it.
+
+    Parameters
+    ----------
+    unbraced : float [m]
+        L_b.
+    lengths : Lengths
+
+    Source: AISC 360-22 F2.2.
+    """
     if unbraced <= lengths.plastic * (1 + 1e-12):
         return "yielding"
     return "inelastic" if unbraced <= lengths.elastic * (1 + 1e-12) else "elastic"
@@ -251,7 +273,14 @@ def _flange_strength(shape: ISection, steel: Steel, ratios: Slenderness) -> floa
 
 
 def flange_factor(web_slenderness: float) -> float:
-    """k_c, from 0.35 to 0.76. Source: AISC 360-22 F3.2(b).
+    """k_c, the web's restraint of a slender flange, from 0.35 to 0.76.
+
+    Parameters
+    ----------
+    web_slenderness : float
+        h / t_w.
+
+    Source: AISC 360-22 F3.2(b).
 
     Examples
     --------
@@ -309,6 +338,13 @@ def web_yielding(shape: ISection, steel: Steel, bearing_length: float, from_end:
 
 def web_crippling(shape: ISection, steel: Steel, bearing_length: float, from_end: float) -> float:
     """Web local crippling under a force on the flange [kN], Q_f = 1.
+
+    Parameters
+    ----------
+    bearing_length : float [m]
+        Along the beam.
+    from_end : float [m]
+        The force's distance from the beam's nearer end.
 
     Source: AISC 360-22 (J10-4) at half the depth from the end or farther, else (J10-5a), (J10-5b).
 

@@ -3,7 +3,7 @@
 import pytest
 from aci_samples import KSI, PSI, begin, bounded
 
-from calcpack.clauses.aci318.flange import Wing, state_flange, wing_width
+from calcpack.clauses.aci318.flange import Wing, state_flange, state_given_flange, wing_width
 from calcpack.clauses.aci318.limits import LIMITS, bound, guard, limit_words
 from calcpack.clauses.aci318.materials import root, shared, state_materials
 from calcpack.clauses.aci318.strength import beta_1, grade_factor, phi_bending
@@ -155,3 +155,11 @@ def test_sides_that_differ_are_added_one_by_one():
         wings = (Wing(50 * 0.0254, "beam"), Wing(other * 0.0254, "beam"))
         found = state_flange(sheet, size, wings, line, size.flange, f"b_{round(width)}{round(other)}")
         assert found.value / 25.4 == pytest.approx(width)
+
+
+@pytest.mark.parametrize(("most", "passes"), [(60.0, True), (59.9, False)])
+def test_a_given_width_is_no_more_than_what_acts(most, passes):
+    sheet, _, size = begin(flange=(60, 6))
+    line = sheet.take("b_max", most * 25.4, "mm", "", "test")
+    ((name, found),) = state_given_flange(sheet, size, line)
+    assert (name, found.passes) == ("flange width", passes)
