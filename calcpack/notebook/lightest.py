@@ -21,7 +21,7 @@ from calcpack.notebook.study import Study
 from calcpack.notebook.templates import find_template
 from calcpack.statics import LineLoad
 
-# Template -> module with worst_of(study) -> (words, ratio): the check that is used most.
+# Template -> module with worst_of(study) -> (words, ratio, whole), as in Worst.
 CHOOSERS = {
     "steel_beam_aisc360": "calcpack.notebook.sections.steel_aisc360",
     "steel_beam_en1993": "calcpack.notebook.sections.steel_en1993",
@@ -29,10 +29,19 @@ CHOOSERS = {
 
 
 class Worst(NamedTuple):
-    """The check of a beam that is used most, and its ratio of demand to resistance."""
+    """The check of a beam that is used most, and its ratio of demand to resistance.
+
+    Parameters
+    ----------
+    name : str
+    ratio : float
+    whole : bool
+        Whether all checks were looked at; a section that fails the first of them need not be.
+    """
 
     name: str
     ratio: float
+    whole: bool = True
 
     @property
     def passes(self) -> bool:
@@ -59,7 +68,8 @@ def lightest(frame_: Frame, mark: str, candidates: Sequence[Section], judge: Jud
     Returns
     -------
     Section
-        With the lighter ones in ``tried``. If none passes, the one that comes nearest, with all others.
+        With the lighter ones in ``tried``. If none passes, the one that comes nearest, of those that were
+        looked at whole if there are any; with all others.
     """
     found: list[tuple[Section, Worst]] = []
     for candidate in candidates:
@@ -67,7 +77,7 @@ def lightest(frame_: Frame, mark: str, candidates: Sequence[Section], judge: Jud
         if worst.passes:
             return _chosen(frame_, mark, candidate, found)
         found.append((candidate, worst))
-    nearest = min(found, key=lambda each: round(each[1].ratio, 12))
+    nearest = min(found, key=lambda each: (not each[1].whole, round(each[1].ratio, 12)))
     others = [each for each in found if each is not nearest]
     return _chosen(frame_, mark, nearest[0], others).model_copy(update={"fits": False})
 

@@ -63,8 +63,8 @@ def _rows(work: Work, beam: SteelBeam) -> list[tuple[str, float, float, str]]:
     return found
 
 
-def worst_of(study: Study) -> tuple[str, float]:
-    """The check that is used most, by name, with its ratio of demand to resistance.
+def worst_of(study: Study) -> tuple[str, float, bool]:
+    """The check that is used most, its ratio of demand to resistance, and whether all were looked at.
 
     A shape whose plastic moment is too small already is not looked at any further.
 
@@ -76,13 +76,13 @@ def worst_of(study: Study) -> tuple[str, float]:
     beam = SteelBeam(steel_design(study))
     design = beam.design
     if not design.covered:
-        return "web not compact", design.slenderness.web / design.slenderness.web_compact
+        return "web not compact", design.slenderness.web / design.slenderness.web_compact, False
     moment = abs(study.analysed.band("moment").largest_absolute.value)
     plastic = strength.BENDING.available(
         strength.plastic_moment(design.shape, design.steel), design.options.method
     )
     if moment > plastic:
-        return "plastic moment", moment / plastic
+        return "plastic moment", moment / plastic, False
     rows = _rows(Work(study, Sheet(study.given.mark, study.system)), beam)
     name, demand, resistance, _ = max(rows, key=lambda row: round(row[1] / row[2], 12))
-    return name, demand / resistance
+    return name, demand / resistance, True

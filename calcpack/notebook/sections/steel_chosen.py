@@ -10,7 +10,7 @@ REASONS = 3  # so many are told apart when many sections fail
 
 
 def chosen_words(section: Section) -> str:
-    """How a section came to be the one: how many lighter ones were tried, the next lighter, the nearest.
+    """How a section came to be the one: how many lighter ones were tried, what fails with the next lighter.
 
     Parameters
     ----------
@@ -26,18 +26,16 @@ def chosen_words(section: Section) -> str:
     >>> found = rolled_sections()["w12x14"].model_copy(update={"family": "W", "tried": tuple(tried)})
     >>> print(chosen_words(found))
     W12X14 is the lightest W section that passes all checks of this sheet. The 2 lighter ones were tried and \
-fail (1 most in bending, span; 1 most in shear). Next lighter: W10X12, bending, span, ratio 1.23.
+fail (1 in bending, span; 1 in shear). Next lighter: W10X12, bending, span, ratio 1.23.
     >>> print(chosen_words(found.model_copy(update={"fits": False})))
-    None of the 3 W sections passes all checks of this sheet; W12X14 comes nearest. After it: W10X12, \
-bending, span, ratio 1.23.
+    None of the 3 W sections passes all checks of this sheet; W12X14 comes nearest and is shown with what it \
+lacks.
     """
     family, tried = section.family, section.tried
     if not section.fits:
-        rest = min(tried, key=lambda each: round(each.ratio, 12), default=None)
-        after = f" After it: {_said(rest)}." if rest else ""
         return (
             f"None of the {len(tried) + 1} {family} sections passes all checks of this sheet; "
-            f"{section.designation} comes nearest.{after}"
+            f"{section.designation} comes nearest and is shown with what it lacks."
         )
     if not tried:
         return (
@@ -45,7 +43,7 @@ bending, span, ratio 1.23.
             "sheet."
         )
     counted = Counter(each.fails for each in tried).most_common()
-    reasons = "; ".join(f"{count} most in {fails}" for fails, count in sorted(counted[:REASONS]))
+    reasons = "; ".join(f"{count} in {fails}" for fails, count in sorted(counted[:REASONS]))
     others = sum(count for _, count in counted[REASONS:])
     reasons += f"; {others} in other checks" if others else ""
     lighter = (
@@ -53,11 +51,9 @@ bending, span, ratio 1.23.
         if len(tried) == 1
         else (f"The {len(tried)} lighter ones were tried and fail")
     )
-    nearest = min(tried, key=lambda each: round(each.ratio, 12))
-    closest = f" Nearest to passing: {_said(nearest)}." if nearest != tried[-1] else ""
     return (
         f"{section.designation} is the lightest {family} section that passes all checks of this sheet. "
-        f"{lighter} ({reasons}). Next lighter: {_said(tried[-1])}.{closest}"
+        f"{lighter} ({reasons}). Next lighter: {_said(tried[-1])}."
     )
 
 

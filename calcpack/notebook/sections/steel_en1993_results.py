@@ -128,8 +128,8 @@ def state_steel_results(work: Work, beam: SteelBeam) -> None:
     state_ponding(work, "EN 1990 A1.4.3 and EN 1991-1-3")
 
 
-def worst_of(study: Study) -> tuple[str, float]:
-    """The check that is used most, by name, with its ratio of demand to resistance.
+def worst_of(study: Study) -> tuple[str, float, bool]:
+    """The check that is used most, its ratio of demand to resistance, and whether all were looked at.
 
     A section outside the limits of validity, or whose bending resistance is too small already, is not looked
     at any further.
@@ -143,15 +143,15 @@ def worst_of(study: Study) -> tuple[str, float]:
     profile = profile_in(work)
     for key, value in values_of(profile).items():
         if not LIMITS[key].holds(value):
-            return LIMITS[key].says, max(value / LIMITS[key].largest, LIMITS[key].least / value)
+            return LIMITS[key].says, max(value / LIMITS[key].largest, LIMITS[key].least / value), False
     slender = profile.web_depth / profile.shape.web / (WEB_BUCKLING * profile.epsilon / profile.factors.eta)
     if profile.web_may_buckle:
-        return "slenderness of the web", slender
+        return "slenderness of the web", slender, False
     moment = abs(study.analysed.governing_moment.moment_governing.value)
     if moment > profile.bending:
-        return "bending", moment / profile.bending
+        return "bending", moment / profile.bending, False
     worst = max(shown_of(work, design_of(work)), key=lambda row: round(row.ratio, 12))
-    return worst.says, worst.ratio
+    return worst.says, worst.ratio, True
 
 
 def values_of(profile: Profile) -> dict[str, float]:

@@ -303,6 +303,13 @@ def test_none_passes(tmp_path):
     assert len(chosen.tried) == len(families()["IPE"]) - 1
 
 
+def test_a_section_looked_at_whole_comes_nearer_than_one_that_was_not(tmp_path):
+    framed = frame(job(tmp_path, small="lightest in IPE"))
+    found = iter([Worst("plastic moment", 1.05, whole=False), Worst("deflection", 1.6), Worst("shear", 1.4)])
+    chosen = lightest(framed, "F1", families()["IPE"][:3], lambda *_: next(found))
+    assert (chosen.designation, chosen.fits) == ("IPE 120", False)
+
+
 def test_chosen_by_the_template(tmp_path):
     """The shape chosen passes, each lighter one of the family fails, and its weight is carried down."""
     open_ = frame(job(tmp_path, small="lightest in W"))
