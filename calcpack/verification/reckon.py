@@ -13,6 +13,7 @@ from calcpack.verification.ours import (
     beams,
     en1992,
     en1993,
+    en1993_eigenvalues,
     equivalent,
     sections,
     slabs,
@@ -29,7 +30,7 @@ RECKONERS: Mapping[str, Mapping[str, Reckoner]] = {
     "aci318": aci318.RECKONERS,
     "en1992": en1992.RECKONERS,
     "aisc360": aisc360.RECKONERS,
-    "en1993": en1993.RECKONERS,
+    "en1993": {**en1993.RECKONERS, "eigenvalues": en1993_eigenvalues.eigenvalue_row},
 }
 """Name of a topic's file -> key of a table -> what makes ours of a row."""
 

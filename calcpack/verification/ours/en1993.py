@@ -149,6 +149,14 @@ def printed_constants_row(row: Row) -> Ours:
     }
 
 
+GRADES = {"S235": 235e3, "S355": 355e3, "S460": 460e3}  # [kPa]
+
+
+def class_row(row: Row) -> Ours:
+    """Class of a section in bending."""
+    return {"class": str(profile(row.text("section"), GRADES[row.text("grade")]).section_class)}
+
+
 RECKONERS = {
     "unrestrained beam": example_row,
     "unrestrained beam, own factors": own_factors_row,
@@ -157,4 +165,5 @@ RECKONERS = {
     "end moments": end_moments_row,
     "loads": loads_row,
     "printed constants": printed_constants_row,
+    "section classes": class_row,
 }

@@ -14,6 +14,7 @@ from calcpack.job.errors import CalcpackError
 from calcpack.job.library import rolled_sections
 from calcpack.job.model import Material
 from calcpack.sheet import Sheet
+from calcpack.verification.reckon import compare_row, rows
 
 STEEL = Material(
     key="s", kind="steel", modulus=210e6, unit_weight=78.5, values={"fy": 355e3, "fy_thick": 335e3}
@@ -31,24 +32,11 @@ def test_exactly_at_a_class_limit(limits, bounds, epsilon):
         assert part_class(bound * epsilon * 1.0001, epsilon, limits) == rank + 1
 
 
-# Classes of rolled sections in bending, as printed in the section tables of the European mills (from memory).
-@pytest.mark.parametrize(
-    ("name", "grade", "printed"),
-    [
-        ("IPE 300", "S235", 1),
-        ("IPE 300", "S355", 1),
-        ("IPE 600", "S355", 1),
-        ("HE 200 A", "S235", 1),
-        ("HE 200 A", "S355", 2),
-        ("HE 260 A", "S355", 3),
-        ("HE 300 A", "S355", 3),
-        ("HE 300 A", "S235", 1),
-        ("HE 300 B", "S460", 1),
-        ("HE 280 A", "S460", 3),
-    ],
-)
-def test_class_of_rolled_sections(name, grade, printed):
-    assert profile(name, grade).section_class == printed
+# As printed in the section tables of the European mills: shared/verification/en1993.toml.
+@pytest.mark.parametrize("row", rows("en1993", "section classes"), ids=lambda row: row.label)
+def test_class_of_rolled_sections(row):
+    assert all(each.holds for each in compare_row(row))
+    assert profile(row.text("section"), row.text("grade")).section_class == int(row.text("class"))
 
 
 def test_yield_strength_at_40_mm():
