@@ -17,7 +17,7 @@ _TWO: dict[type[ast.operator], Callable[[float, float], float]] = {
 
 
 def worked_out(formula: str, letters: Mapping[str, float]) -> float:
-    """Value of a formula of numbers, letters, ``+ - * / **``, ``sqrt`` and ``pi``.
+    """Value of a formula of numbers, letters, ``+ - * / **``, ``sqrt``, ``log`` (natural) and ``pi``.
 
     Parameters
     ----------
@@ -57,6 +57,6 @@ def _value(node: ast.expr, letters: Mapping[str, float]) -> float:
             return -_value(inner, letters)
         case ast.BinOp(left=left, op=op, right=right) if type(op) in _TWO:
             return _TWO[type(op)](_value(left, letters), _value(right, letters))
-        case ast.Call(func=ast.Name(id="sqrt"), args=[inner], keywords=[]):
-            return math.sqrt(_value(inner, letters))
+        case ast.Call(func=ast.Name(id="sqrt" | "log" as name), args=[inner], keywords=[]):
+            return (math.sqrt if name == "sqrt" else math.log)(_value(inner, letters))
     raise ValueError(f"'{ast.unparse(node)}' is no part of a formula")

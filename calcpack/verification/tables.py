@@ -58,7 +58,7 @@ class Noticed(Frozen):
     column: str = ""
     times: float
     says: str
-    rows: int = 0  # at least so many rows; 0 for all
+    rows: int = 0  # at least so many rows where it cannot be all, a value of 0 say; 0 for all
 
 
 class Table(Frozen):

@@ -45,6 +45,14 @@ from calcpack.verification.tables import find_topic
 NATIONAL = national()
 
 
+# Concrete ---------------------------------------------------------------------------------------------
+
+
+@pytest.mark.parametrize("row", published("en1992", "concrete grades"))
+def test_concrete_grades(row):
+    assert wrong(row) == []
+
+
 # Bending -------------------------------------------------------------------------------------------------
 
 

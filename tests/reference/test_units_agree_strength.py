@@ -6,7 +6,7 @@ import json
 from typing import Any
 
 import pytest
-from test_units_agree import SAME, in_us_units
+from test_units_agree import in_us_units
 
 from calcpack.framing import frame
 from calcpack.job import read_job
@@ -15,6 +15,10 @@ from calcpack.notebook.lightest import choose_sections
 from calcpack.notebook.parameters import beam_input, to_text
 from calcpack.notebook.sections.closing import record_results
 from calcpack.notebook.templates import find_template
+from calcpack.verification.tables import find_topic
+
+STRENGTH = find_topic("floors").find_method("strength in other units")
+SAME = STRENGTH.within
 
 # A girder of two spans and an overhang under a slab, with a secondary beam and a point load.
 JOB = """\
@@ -137,6 +141,10 @@ def results_of_sheet(folder: Any, text: str) -> dict[str, Any]:
 
 def ratios(results: dict[str, Any]) -> list[float]:
     return [check["ratio"] for check in results["checks"]]
+
+
+def test_as_many_templates_as_the_manual_says():
+    assert len(MEMBERS) == STRENGTH.cases
 
 
 @pytest.mark.parametrize("template", MEMBERS)

@@ -2,16 +2,20 @@
 
 from __future__ import annotations
 
+import math
+from collections.abc import Callable
+
 from calcpack.actions import LoadSet, analyse_beam
 from calcpack.actions.combinations import Combination
 from calcpack.clauses.aisc360 import strength
 from calcpack.clauses.aisc360.design import Demands, Options, SpanOf, SteelDesign
 from calcpack.clauses.aisc360.strength import Steel
-from calcpack.clauses.steel import ISection, i_section
+from calcpack.clauses.steel import ISection, SegmentMoments, i_section
 from calcpack.job.library import rolled_sections
 from calcpack.job.units import factor
-from calcpack.statics import BeamLine, Load
+from calcpack.statics import BeamLine, Extreme, Load
 from calcpack.verification.comparison import Ours
+from calcpack.verification.eigenvalues import critical_factor
 from calcpack.verification.ours.beams import loads_of
 from calcpack.verification.tables import Row
 
@@ -109,6 +113,52 @@ def constants_row(row: Row) -> Ours:
     }
 
 
+LENGTH = 9.0  # [m], elastic
+SHEAR_MODULUS = 11200 * KSI  # AISC 360-22, symbols
+DIAGRAMS: dict[str, Callable[[float], float]] = {  # moment at a part of the length
+    "uniform": lambda x: 1.0,
+    "one end moment": lambda x: 1 - x,
+    "end moments, one half of the other": lambda x: 1 - x / 2,
+    "end moments that bend it to and fro": lambda x: 1 - 2 * x,
+    "uniform load": lambda x: 4 * x * (1 - x),
+    "point load at midspan": lambda x: 1 - abs(2 * x - 1),
+    "point load at the quarter": lambda x: min(4 * x, (1 - x) * 4 / 3),
+    "uniform load, both ends fixed": lambda x: 6 * x - 1 - 6 * x**2,
+    "uniform load, one end fixed": lambda x: 8 * (3 / 8 * x - x**2 / 2),
+}
+
+
+def segment_of(moment: Callable[[float], float]) -> SegmentMoments:
+    """A whole length's moments as the clause takes them."""
+    start, quarter, middle, three_quarters, end = (moment(part / 4) for part in range(5))
+    fine = [moment(part / 2000) for part in range(2001)]
+    most, least = max(fine), min(fine)
+    return SegmentMoments(
+        0.0,
+        LENGTH,
+        start,
+        quarter,
+        middle,
+        three_quarters,
+        end,
+        Extreme(most if most >= -least else least, 0.0),
+        Extreme(max(most, 0.0), 0.0),
+        Extreme(min(least, 0.0), 0.0),
+    )
+
+
+def eigenvalue_row(row: Row) -> Ours:
+    """C_b of (F1-1) over the eigenvalue's, in per cent more."""
+    section, moment = shape("W18X50"), DIAGRAMS[row.text("diagram")]
+    weak, warping = (GRADE_50.modulus * value for value in (section.weak_inertia, section.warping))
+    torsion, k = SHEAR_MODULUS * section.torsion, math.pi / LENGTH
+    even = k * math.sqrt(weak * (torsion + k**2 * warping))
+    segment = segment_of(moment)
+    factor = critical_factor(LENGTH, weak, warping, torsion, lambda x: moment(x / LENGTH))
+    exact = factor * abs(segment.largest.value) / even
+    return {"Cb": 100 * (strength.diagram_factor(segment) / exact - 1)}
+
+
 RECKONERS = {
     "table 3-2": table_3_2,
     "table 3-10": bending_row,
@@ -116,4 +166,5 @@ RECKONERS = {
     "examples of bending": bending_row,
     "example of shear": shear_row,
     "table 1-1": constants_row,
+    "eigenvalues": eigenvalue_row,
 }

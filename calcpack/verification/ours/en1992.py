@@ -20,6 +20,8 @@ from calcpack.clauses.en1992.shear import (
     least_stirrups,
     truss,
 )
+from calcpack.job.library import grades
+from calcpack.job.units import parse_quantity
 from calcpack.verification.comparison import Ours
 from calcpack.verification.tables import Row
 
@@ -181,7 +183,19 @@ def flange_row(row: Row) -> Ours:
     return {"l0": zero, "b_eff,i": effective_side(row.number("bi"), zero).effective}
 
 
+def grade_row(row: Row) -> Ours:
+    """Strengths [MPa], modulus [GPa] and ultimate strain [‰] of a grade of shared/materials."""
+    values = grades()[row.text("grade").casefold()].values
+    return {
+        "fcm": parse_quantity(values["fcm"], "stress") / 1e3,
+        "fctm": parse_quantity(values["fctm"], "stress") / 1e3,
+        "Ecm": parse_quantity(values["modulus"], "stress") / 1e6,
+        "εcu2": values["eps_cu2"] * 1e3,
+    }
+
+
 RECKONERS = {
+    "concrete grades": grade_row,
     "lever arms": lever_row,
     "steel for a moment": design_row,
     "moment of a section": resistance_row,

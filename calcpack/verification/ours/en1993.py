@@ -157,6 +157,17 @@ def class_row(row: Row) -> Ours:
     return {"class": str(profile(row.text("section"), GRADES[row.text("grade")]).section_class)}
 
 
+def constants_row(row: Row) -> Ours:
+    """Torsion constant and the other constants of a section [cm]."""
+    s = profile(row.text("section"), 235e3).shape
+    return {
+        "Iz": s.weak_inertia * 1e8,
+        "Wpl": s.plastic_modulus * 1e6,
+        "It": s.torsion * 1e8,
+        "Iw": s.warping * 1e9,
+    }
+
+
 RECKONERS = {
     "unrestrained beam": example_row,
     "unrestrained beam, own factors": own_factors_row,
@@ -166,4 +177,5 @@ RECKONERS = {
     "loads": loads_row,
     "printed constants": printed_constants_row,
     "section classes": class_row,
+    "constants": constants_row,
 }

@@ -14,6 +14,7 @@ from calcpack.clauses.aisc360.strength import Steel
 from calcpack.clauses.steel import ISection, SegmentMoments, i_section
 from calcpack.job.library import rolled_sections
 from calcpack.statics import Extreme
+from calcpack.verification.reckon import compare_row, rows
 
 STEEL = Steel(250e3, 200e6)  # [kPa]; E / F_y = 800
 # d 400, b 200, t_w 8, t_f 16, r 12 mm; Z 1.2e-3, S 1.0e-3 m3, r_y 45 mm, J 5e-7 m4, r_ts 55 mm, h_o 384 mm
@@ -223,20 +224,14 @@ def test_constants_against_thin_plates():
     assert found.plastic_modulus < with_fillets.plastic_modulus < 1.04 * found.plastic_modulus
 
 
-# EN 10365 and producers' tables, from memory: I_z [cm4], W_pl,y [cm3], I_t [cm4], I_w [1000 cm6]
-EUROPEAN = {
-    "IPE 300": (603.8, 628.4, 20.12, 125.9),
-    "IPE 600": (3387, 3512, 165.4, 2846),
-    "HE 200 A": (1336, 429.5, 20.98, 108.0),
-    "HE 300 B": (8563, 1869, 185.0, 1688),
-}
-
-
-@pytest.mark.parametrize("name", EUROPEAN)
-def test_european_constants(name):
-    s = i_section(rolled_sections()["".join(name.split()).casefold()])
+# EN 10365 and producers' tables: shared/verification/en1993.toml
+@pytest.mark.parametrize("row", rows("en1993", "constants"), ids=lambda row: row.label)
+def test_european_constants(row):
+    s = i_section(rolled_sections()["".join(row.label.split()).casefold()])
     found = (s.weak_inertia * 1e8, s.plastic_modulus * 1e6, s.torsion * 1e8, s.warping * 1e9)
-    assert found == pytest.approx(EUROPEAN[name], rel=1e-3)
+    printed = [float(row.text(column)) for column in ("Iz", "Wpl", "It", "Iw")]
+    assert found == pytest.approx(printed, rel=1e-3)
+    assert all(each.holds for each in compare_row(row))
 
 
 def test_no_i_section():
