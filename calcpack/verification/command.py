@@ -22,7 +22,7 @@ HEADS = (
     "topic",
     "values",
     "from memory",
-    "by hand",
+    "by hand, own",
     "largest, of what is allowed",
     "other methods",
     "verdict",

@@ -128,7 +128,7 @@ def table_blocks(found: Table, comparisons: Sequence[Comparison]) -> list[Data]:
     notes = [found.note] if found.note else []
     reasons = _tolerance_lines(found, comparisons)
     if reasons:
-        notes.append("Wider than the printed rounding: " + "; ".join(reasons) + ".")
+        notes.append("Allowed is not half a printed unit for " + "; ".join(reasons) + ".")
     if slip := _notices(found, comparisons):
         notes.append(slip[0].upper() + slip[1:] + ".")
     blocks = [heading(found.title), text(*words)]

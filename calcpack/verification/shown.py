@@ -59,7 +59,7 @@ def ours(each: Comparison) -> str:
         return each.ours
     if each.is_formula:
         return signed(f"{each.ours:.6g}")
-    return signed(f"{each.ours:.{_places(each.published) + 2}f}")
+    return signed(f"{each.ours:z.{_places(each.published) + 2}f}")
 
 
 def difference(each: Comparison) -> str:
@@ -88,7 +88,8 @@ def allowed(each: Comparison) -> str:
     if each.rule.startswith("rounded up"):
         return f"{signed(f'{-room.below:g}')} to 0"
     if room.below != room.above:
-        return f"{signed(f'{-room.below:g}')} to +{room.above:g}"
+        low = signed(f"-{room.below:g}") if room.below else "0"
+        return f"{low} to +{room.above:g}" if room.above else f"{low} to 0"
     return f"±{short(room.above)}"
 
 

@@ -18,7 +18,7 @@ from calcpack.job.house import house_folder
 from calcpack.job.model import Frozen
 from calcpack.verification.arithmetic import worked_out
 
-Known = Literal["from memory", "read on the page", "read in a transcription", "by hand"]
+Known = Literal["from memory", "read on the page", "read in a transcription", "by hand", "own method"]
 Cell = str | float | int | bool
 
 
@@ -194,7 +194,7 @@ class Row:
     @property
     def by_hand(self) -> bool:
         """Whether it was worked out by hand, or is stated by ourselves."""
-        return all(source.known == "by hand" for source, _ in self.sources)
+        return all(source.known in ("by hand", "own method") for source, _ in self.sources)
 
     def number(self, column: str) -> float:
         """A cell's number; a formula, where the cell is text."""
