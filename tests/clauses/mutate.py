@@ -148,6 +148,7 @@ class Theatre:
     def __init__(self, files: list[Path], tests: list[str]) -> None:
         self.connection, other = Pipe()
         if os.fork() == 0:
+            self.connection.close()
             for path in files:
                 sys.meta_path.insert(0, Replaced(module_of(path), path.resolve(), telling(path.resolve())))
             os._exit(_run_tests(tests, [Stage(other)]))

@@ -131,7 +131,7 @@ class Group:
         half = self.cage.width / 2 - self.cage.cover - self.cage.stirrup - self.bar.diameter / 2
         for number, height in zip(self.layers, self.heights, strict=True):
             step = 2 * half / max(number - 1, 1)
-            found += [(-half + step * place if number > 1 else 0.0, height) for place in range(number)]
+            found += [(0.0 if number == 1 else -half + step * place, height) for place in range(number)]
         return found
 
 

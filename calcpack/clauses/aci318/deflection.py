@@ -341,7 +341,7 @@ def state_deflection(
     )  # fmt: skip
     growth = sheet.hence(
         "lambda_Delta",
-        xi / (1 + 50 * compression) if compression is not None else xi / (1 + 50 * measured(0.0, "1")),
+        xi / (1 + 50 * (measured(0.0, "1") if compression is None else compression)),
         "1",
         "Multiplier for creep and shrinkage"
         + (

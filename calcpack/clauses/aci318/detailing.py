@@ -6,7 +6,7 @@ from typing import NamedTuple
 
 from calcpack.clauses.aci318.arrangement import Group
 from calcpack.clauses.aci318.flexure import BendingLines
-from calcpack.clauses.aci318.materials import Checks, Materials, Size, cite, in_kpa, root, shared
+from calcpack.clauses.aci318.materials import Checks, Materials, Size, bare, cite, root, shared
 from calcpack.clauses.aci318.strength import INCH, LEAST_DEVELOPMENT, development_length, grade_factor
 from calcpack.sheet import (
     Expression,
@@ -143,14 +143,14 @@ def state_development(
     )
     psi_t = "1.3" if top else "1.0"
     psi_s = "0.8" if is_small(group) else "1.0"
-    psi_g = f"{grade_factor(in_kpa(materials.fy)):g}"
+    psi_g = f"{grade_factor(bare(materials.fy)):g}"
     stress = number_in(materials.fy, "psi") / (materials.lightweight * root(materials.fc))
     factors = number(psi_t) * number("1.0") * number(psi_s) * number(psi_g)
     plain = number(3) / 40 * stress * factors / ratio * layer.diameter
     known = development_length(
         group.bar.diameter,
-        in_kpa(materials.fc),
-        in_kpa(materials.fy),
+        bare(materials.fc),
+        bare(materials.fy),
         ratio.value,
         top=top,
         small=is_small(group),

@@ -7,7 +7,7 @@ from typing import NamedTuple
 
 from calcpack.clauses.aci318.arrangement import Group
 from calcpack.clauses.aci318.limits import bound
-from calcpack.clauses.aci318.materials import Checks, Materials, Size, cite
+from calcpack.clauses.aci318.materials import Checks, Materials, Size, bare, cite
 from calcpack.clauses.aci318.strength import PSI, Bending
 from calcpack.sheet import (
     Expression,
@@ -21,6 +21,7 @@ from calcpack.sheet import (
     number_in,
     sqrt,
 )
+from calcpack.sheet.evaluation import holds
 
 
 class Demand(NamedTuple):
@@ -101,7 +102,7 @@ def state_bending(
         group.bar.source,
     )
     depth, outermost = _depths(sheet, size, group, name)
-    checks = _least_steel(sheet, materials, size, steel, depth, moment, demand, name)
+    checks = _least_steel(sheet, materials, size, steel, depth, moment, demand, state.design, name)
     block = _Block(sheet, materials, size, steel, depth, state, name)
     if pressed is not None and state.stress_c:
         block.press(pressed)
@@ -171,16 +172,19 @@ def _least_steel(
     depth: Line,
     moment: Line,
     demand: Demand,
+    design: float,
     name: Callable[[str], str],
 ) -> Checks:
+    """The least steel; less than it where it is a third more than a moment within the strength needs."""
     width: Expression | Line = size.web
     words = "Least bending steel (strengths in psi)"
     if demand.flange is not None:
         width = least(demand.flange, 2 * size.web)
         words += "; statically determinate, flange in tension"
-    fy = number_in(materials.fy, "psi")
-    top = bound("f_y least steel") / PSI
-    strength: Expression = fy if materials.fy.value * 1000 / PSI <= top else number(round(top))
+    most = bound("f_y least steel")
+    strength: Expression = number_in(materials.fy, "psi")
+    if bare(materials.fy) > most:
+        strength = number(round(most / PSI))
     steel_least = sheet.hence(
         name("A_s,min"),
         greatest(3 * sqrt(number_in(materials.fc, "psi")), 200) / strength * width * depth,
@@ -188,8 +192,7 @@ def _least_steel(
         words,
         cite("9.6.1.2"),
     )
-    radicand = depth.value**2 - 2 * moment.value * 1e6 / (0.9 * 0.85 * materials.fc.value * _face(size).value)
-    if steel.value < steel_least.value * (1 - 1e-9) and radicand > 0:
+    if holds("lt", steel.value, steel_least.value) and holds("le", demand.moment, design):
         needed = _needed(sheet, materials, size, depth, moment, name)
         line = sheet.require(
             steel >= number(4) / 3 * needed,
@@ -250,11 +253,11 @@ class _Block:
         self.pressed: Line | None = None
         self.cover: Line | None = None
         self.stress: Line | None = None
-        flange = size.flange.value / 1000 if size.flange is not None and size.face is not None else 0.0
+        flange = bare(size.flange) if size.flange is not None and size.face is not None else 0.0
         self.winged = 0 < flange < state.a
         self.width = size.web if self.winged or size.face is None else size.face
-        self.yields = state.stress >= materials.fy.value * 1000 * (1 - 1e-9)
-        self.yields_c = state.stress_c >= materials.fy.value * 1000 * (1 - 1e-9)
+        self.yields = holds("ge", state.stress, bare(materials.fy))
+        self.yields_c = holds("ge", state.stress_c, bare(materials.fy))
 
     def press(self, group: Group) -> None:
         """Count compression bars."""

@@ -74,9 +74,9 @@ def state_materials(sheet: Sheet, material: Material) -> Materials:
     fy = sheet.take("f_y", values["fy"], "MPa", "Yield strength of the bars", f"{place} bars")
     es = sheet.take("E_s", values["Es"], "MPa", "Modulus of the bars", f"{place} bars", cite("20.2.2.2"))
     block: Expression = 0.85 - 0.05 * (number_in(fc, "psi") - 4000) / 1000
-    if in_kpa(fc) <= 4000 * PSI:
+    if bare(fc) <= 4000 * PSI:
         block = least(block, 0.85)
-    elif in_kpa(fc) >= 8000 * PSI:
+    elif bare(fc) >= 8000 * PSI:
         block = greatest(block, 0.65)
     beta = sheet.hence(
         "beta_1",
@@ -98,9 +98,9 @@ def state_materials(sheet: Sheet, material: Material) -> Materials:
     return Materials(fc, lightweight, ec, beta, fy, fyt, es, strain)
 
 
-def in_kpa(stress: Line) -> float:
-    """A line's stress [kPa]."""
-    return stress.value * factor(stress.unit)
+def bare(line: Line) -> float:
+    """A line's value in kN and m."""
+    return line.value * factor(line.unit)
 
 
 def root(fc: Line) -> Expression:
@@ -109,7 +109,7 @@ def root(fc: Line) -> Expression:
     Source: ACI 318-19, 22.5.3.1, 22.7.2.1, 25.4.1.4.
     """
     plain, most = sqrt(number_in(fc, "psi")), bound("root f'_c")
-    return plain if strength.root(in_kpa(fc)) < most else least(plain, round(most / PSI))
+    return plain if strength.root(bare(fc)) < most else least(plain, round(most / PSI))
 
 
 def shared(length: Expression, parts: int) -> Expression:

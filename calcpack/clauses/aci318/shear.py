@@ -7,6 +7,7 @@ from typing import NamedTuple
 from calcpack.clauses.aci318.materials import Checks, Materials, Size, cite, psi, root, shared
 from calcpack.clauses.bars import Bar
 from calcpack.sheet import Line, Sheet, greatest, least, measured, number, number_in, quantity, sqrt
+from calcpack.sheet.evaluation import holds
 
 
 class Stirrups(NamedTuple):
@@ -26,6 +27,11 @@ class Concrete(NamedTuple):
     strength: Line
     unit: Line  # b_w d √f'c, the force that limits are multiples of
     checks: Checks
+
+    def leaves_little(self, demand: Line) -> bool:
+        """Whether stirrups have to carry no more than 4 λ √f'c b_w d. Source: ACI 318-19, Table 9.7.6.2.2."""
+        needed = demand.value / self.phi.value - self.strength.value
+        return holds("le", needed, 4 * self.unit.value)
 
 
 def state_concrete(
@@ -173,8 +179,7 @@ def state_zone(
         cite("22.5.1.1"),
     )
     strong = sheet.require(demand <= design, f"Shear strength {words}", cite("9.5.1.1"))
-    needed = demand.value / 0.75 - strength.value
-    wide = needed <= 4 * unit.value * (1 + 1e-9)
+    wide = concrete.leaves_little(demand)
     part, most = (2, 24) if wide else (4, 12)
     along = sheet.require(
         stirrups.spacing <= least(depth / part, quantity(most, "in")),
@@ -197,8 +202,7 @@ def state_section_limit(
         "Size of the web for the largest shear",
         cite("22.5.1.2"),
     )
-    needed = demand.value / 0.75 - concrete.strength.value
-    wide = needed <= 4 * concrete.unit.value * (1 + 1e-9)
+    wide = concrete.leaves_little(demand)
     depth = concrete.depth if wide else concrete.depth / 2
     across = sheet.require(
         shared(size.web - 2 * size.cover - size.stirrup, stirrups.legs - 1)

@@ -26,6 +26,7 @@ from calcpack.clauses.steel import (
     stretch,
 )
 from calcpack.job.model import CASES, Case
+from calcpack.sheet.evaluation import holds
 from calcpack.statics import Extreme, envelope
 from calcpack.statics.curve import farthest
 
@@ -327,7 +328,7 @@ class SteelDesign:
     @property
     def passes(self) -> bool:
         """Whether all that is checked holds."""
-        return self.covered and all(ratio <= 1 + 1e-9 for ratio in self.ratios)
+        return self.covered and all(holds("le", ratio, 1.0) for ratio in self.ratios)
 
 
 def segments(spans: Sequence[SpanOf], options: Options, carried_at: Sequence[float]) -> tuple[Segment, ...]:

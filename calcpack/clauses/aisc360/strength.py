@@ -9,6 +9,7 @@ import math
 from typing import Literal, NamedTuple
 
 from calcpack.clauses.steel import ISection, SegmentMoments
+from calcpack.sheet.evaluation import holds
 
 Method = Literal["LRFD", "ASD"]
 Zone = Literal["yielding", "inelastic", "elastic"]
@@ -67,17 +68,17 @@ class Slenderness(NamedTuple):
     @property
     def compact_flange(self) -> bool:
         """Whether the flange can yield throughout. Source: AISC 360-22 B4.1."""
-        return self.flange <= self.flange_compact * (1 + 1e-9)
+        return holds("le", self.flange, self.flange_compact)
 
     @property
     def slender_flange(self) -> bool:
         """Whether the flange buckles before it yields. Source: AISC 360-22 B4.1."""
-        return self.flange > self.flange_noncompact * (1 + 1e-9)
+        return holds("gt", self.flange, self.flange_noncompact)
 
     @property
     def compact_web(self) -> bool:
         """Whether the web is compact in bending, as F2 and F3 ask. Source: AISC 360-22 B4.1."""
-        return self.web <= self.web_compact * (1 + 1e-9)
+        return holds("le", self.web, self.web_compact)
 
 
 def slenderness(shape: ISection, steel: Steel) -> Slenderness:
@@ -211,9 +212,9 @@ def zone_of(unbraced: float, lengths: Lengths) -> Zone:
 
     Source: AISC 360-22 F2.2.
     """
-    if unbraced <= lengths.plastic * (1 + 1e-12):
+    if holds("le", unbraced, lengths.plastic):
         return "yielding"
-    return "inelastic" if unbraced <= lengths.elastic * (1 + 1e-12) else "elastic"
+    return "inelastic" if holds("le", unbraced, lengths.elastic) else "elastic"
 
 
 def bending_strength(shape: ISection, steel: Steel, unbraced: float, diagram_factor: float = 1.0) -> Bending:
@@ -313,9 +314,9 @@ def shear_strength(shape: ISection, steel: Steel) -> Shear:
     (True, 192)
     """
     ratio = shape.flat_web / shape.web
-    stocky = ratio <= 2.24 * steel.root * (1 + 1e-12)
+    stocky = holds("le", ratio, 2.24 * steel.root)
     limit = 1.10 * math.sqrt(PLATE_BUCKLING) * steel.root
-    coefficient = 1.0 if stocky or ratio <= limit * (1 + 1e-12) else limit / ratio
+    coefficient = 1.0 if stocky else min(limit / ratio, 1.0)
     nominal = 0.6 * steel.yield_strength * shape.depth * shape.web * coefficient
     return Shear(stocky, coefficient, nominal, SHEAR_STOCKY if stocky else SHEAR)
 

@@ -171,6 +171,22 @@ def test_f_y_counts_up_to_80_ksi_in_the_least_steel():
     assert found[80] == found[100]
 
 
+@pytest.mark.parametrize(("fy", "counted"), [(79.5, 79.5), (80, 80), (80.5, 80)])
+def test_the_least_steel_by_hand_about_80_ksi(fy, counted):
+    """9.6.1.2: 3 √6000 = 232.379 psi over f_y, on 12 in by 17.625 in."""
+    case = ("", 6000, fy, 12, 20, None, (3, "#8"), None)
+    found = dict(written(case)[1].checks)["least steel, sagging"].check("x")["demand"]
+    assert found / 25.4**2 == pytest.approx(0.232379 / counted * 12 * 17.625, rel=1e-5)
+
+
+def test_less_than_the_least_steel_does_not_carry_more_than_its_strength():
+    """9.6.1.3 is for a moment within the strength; beyond it the least steel itself is asked for."""
+    checks, _ = least_of(2, "#4", share=1.01)
+    assert checks["least steel, sagging"].cite == "ACI 318-19 9.6.1.2"
+    checks, _ = least_of(2, "#4", share=0.999)
+    assert checks["least steel, sagging"].cite == "ACI 318-19 9.6.1.3"
+
+
 def test_a_section_exactly_tension_controlled_passes():
     yield_strain = 60 / 29000
     depth = 17.625
