@@ -230,7 +230,7 @@ def _needed(
         0.85 * materials.fc * face * block / materials.fy,
         "mm^2",
         "Steel that the moment needs",
-        cite("22.2"),
+        cite("22.2.1.1"),
         word="tension reinforcement needed",
     )
 
@@ -253,8 +253,7 @@ class _Block:
         self.pressed: Line | None = None
         self.cover: Line | None = None
         self.stress: Line | None = None
-        flange = bare(size.flange) if size.flange is not None and size.face is not None else 0.0
-        self.winged = 0 < flange < state.a
+        self.winged = size.face is not None and size.flange is not None and bare(size.flange) < state.a
         self.width = size.web if self.winged or size.face is None else size.face
         self.yields = holds("ge", state.stress, bare(materials.fy))
         self.yields_c = holds("ge", state.stress_c, bare(materials.fy))

@@ -32,9 +32,7 @@ def width_at(height):
 def over_the_section(integrand):
     top = DEPTH / 2 - FLANGE
     edges = (0.0, top - RADIUS, top, DEPTH / 2)
-    return 2 * sum(
-        quad(integrand, a, b, epsabs=1e-15, epsrel=1e-11)[0] for a, b in itertools.pairwise(edges)
-    )
+    return 2 * sum(quad(integrand, a, b, epsabs=1e-15, epsrel=1e-11)[0] for a, b in itertools.pairwise(edges))
 
 
 def test_fillets_in_the_weak_inertia():
