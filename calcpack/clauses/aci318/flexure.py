@@ -269,9 +269,9 @@ class _Block:
         )
         self.cover = self.sheet.hence(
             self.name("d'"),
-            self.size.cover + self.size.stirrup + measured(group.bar.diameter * 1000, "mm") / 2
-            if len(group.layers) == 1
-            else measured(group.centroid * 1000, "mm"),
+            measured(group.centroid * 1000, "mm")
+            if group.layers[1:]
+            else self.size.cover + self.size.stirrup + measured(group.bar.diameter * 1000, "mm") / 2,
             "mm",
             "Their depth from the compressed face",
             word="depth of the compression reinforcement",

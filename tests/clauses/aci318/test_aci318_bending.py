@@ -18,6 +18,7 @@ CASES = [
     ("block below the flange", 3000, 60, 10, 30, (28, 6), (6, "#10"), None),
     ("compression bars elastic", 4000, 60, 12, 24, None, (5, "#9"), (2, "#8")),
     ("compression bars yield", 4000, 60, 14, 32, None, (7, "#10"), (2, "#9")),
+    ("compression bars in two layers", 4000, 60, 12, 30, None, (8, "#10"), (5, "#8")),
     ("flange and compression bars", 3000, 60, 10, 30, (20, 4), (6, "#10"), (2, "#9")),
     ("over-reinforced", 3000, 80, 18, 18, None, (5, "#11"), None),
     ("over-reinforced, compression bars", 3000, 100, 18, 18, None, (5, "#11"), (2, "#8")),
