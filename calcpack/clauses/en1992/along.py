@@ -109,6 +109,13 @@ def top_zones(
 def resistance(x: Floats, zones: Sequence[TopZone], through: float, full: float) -> Floats:
     """Hogging resistance along the beam [kNm]; within l_bd of a bar's end it grows in proportion.
 
+    Parameters
+    ----------
+    x : array [m]
+    zones : sequence of TopZone
+    through, full : float [kNm]
+        Resistance of the bars that run through, and of all bars.
+
     Source: EN 1992-1-1:2004, 9.2.1.3(3).
 
     Examples
@@ -131,7 +138,18 @@ def resistance(x: Floats, zones: Sequence[TopZone], through: float, full: float)
 
 
 def nearest(x: Floats, moment: Floats, resisted: Floats, hogging: bool) -> Worst:
-    """The place with the largest ratio; the first where several tie."""
+    """The place with the largest ratio; the first where several tie.
+
+    Parameters
+    ----------
+    x : array [m]
+    moment, resisted : array [kNm]
+        Shifted moments by size, and the line of resistance.
+    hogging : bool
+        For the words.
+
+    Source: EN 1992-1-1:2004, 9.2.1.3(1)P: the line of resistance covers the shifted moments.
+    """
     ratio = moment / resisted
     number = int(np.argmax(ratio >= ratio.max() * (1 - 1e-9)))
     return Worst(float(x[number]), float(moment[number]), float(resisted[number]), hogging)

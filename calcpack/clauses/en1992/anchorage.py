@@ -48,6 +48,13 @@ def good_bond(top: bool, depth: float, below: float) -> bool:
 def bond_strength(diameter: float, good: bool, strength: Strengths) -> float:
     """f_bd [kPa]; fctd not above that of C60/75.
 
+    Parameters
+    ----------
+    diameter : float [m]
+    good : bool
+        Bond conditions.
+    strength : Strengths
+
     Source: EN 1992-1-1:2004, 8.4.2(2), (8.2).
 
     Examples

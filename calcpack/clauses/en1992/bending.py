@@ -38,6 +38,12 @@ class Bending:
 def block_force(outline: Outline, strength: Strengths, x: float) -> tuple[float, float]:
     """Force of the block [kN] and its moment about the face in compression [kNm], neutral axis at x [m].
 
+    Parameters
+    ----------
+    outline : Outline
+    strength : Strengths
+    x : float [m]
+
     Source: EN 1992-1-1:2004, 3.1.7(3).
 
     Examples
@@ -120,6 +126,12 @@ def bending(
 
 def depth_limit(strength: Strengths, national: National) -> float:
     """Largest x/d of a section whose moments come from linear analysis without redistribution.
+
+    Parameters
+    ----------
+    strength : Strengths
+        fck [kPa], ε_cu2 plain.
+    national : National
 
     Returns
     -------

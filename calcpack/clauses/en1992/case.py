@@ -159,6 +159,15 @@ class BeamCase:
 def places(length: float, among: Sequence[float], step: float = STEP) -> Floats:
     """Places from 0 to a length, certain ones among them.
 
+    Parameters
+    ----------
+    length : float [m]
+    among : sequence of float [m]
+    step : float [m]
+        At most, between neighbours.
+
+    Source: geometry.
+
     Examples
     --------
     >>> places(1.0, [0.3], 0.5)

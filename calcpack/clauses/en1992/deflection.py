@@ -49,6 +49,12 @@ def basic_span_depth(ratio: float, ratio_2: float, factor: float, strength: Stre
 def span_factor(left: str, right: str, national: National) -> float:
     """K by the way a span is held: "simple", "continuous" (fixed ends too) or "free".
 
+    Parameters
+    ----------
+    left, right : str
+    national : National
+        K [1] of each way.
+
     Source: EN 1992-1-1:2004, 7.4.2, Table 7.4N.
 
     Examples

@@ -175,6 +175,8 @@ def design_beam(case: BeamCase) -> Design:
     Stirrups: the thinnest and fewest legs that carry the shear at a practical spacing. Bars: fewest layers,
     then fewest bars, then least area. Bottom bars beyond what strength asks for, up to half as much again,
     only where the deflection asks for them.
+
+    Source: EN 1992-1-1:2004, as each function of this package names its clause; lengths in m, forces in kN.
     """
     found: Design | None = None
     for stirrups in stirrup_sizes(case):

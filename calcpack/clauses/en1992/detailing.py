@@ -55,6 +55,18 @@ def nominal_cover(diameter: float, exposure: str, national: National) -> float:
 def fitting(bar: Bar, width: float, inset: float, clear: float) -> int:
     """How many bars lie side by side in a layer.
 
+    Parameters
+    ----------
+    bar : Bar
+    width : float [m]
+        Of the web.
+    inset : float [m]
+        Cover and stirrup.
+    clear : float [m]
+        Least clear distance.
+
+    Source: geometry, with the clear distance of EN 1992-1-1:2004, 8.2(2).
+
     Examples
     --------
     >>> from calcpack.clauses.bars import bar
@@ -83,6 +95,8 @@ def arranged(bar: Bar, count: int, width: float, inset: float, clear: float) -> 
     Bars
         In two even layers where two cannot hold them either.
 
+    Source: EN 1992-1-1:2004, 8.2(3): bars of two layers lie above each other.
+
     Examples
     --------
     >>> from calcpack.clauses.bars import bar
@@ -101,6 +115,14 @@ def arranged(bar: Bar, count: int, width: float, inset: float, clear: float) -> 
 
 def clear_between(bars: Bars, width: float) -> float:
     """Clear distance across in the outermost layer [m].
+
+    Parameters
+    ----------
+    bars : Bars
+    width : float [m]
+        Of the web.
+
+    Source: geometry, for EN 1992-1-1:2004, 8.2(2).
 
     Examples
     --------

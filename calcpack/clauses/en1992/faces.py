@@ -153,13 +153,34 @@ class Face:
 
 
 def bars_of(case: BeamCase, size: Bar, count: int, stirrup: float) -> Bars:
-    """Bars of a face, in layers as they fit inside stirrups of a diameter [m]."""
+    """Bars of a face, in layers as they fit inside stirrups of a diameter [m].
+
+    Parameters
+    ----------
+    case : BeamCase
+    size : Bar
+    count : int
+    stirrup : float [m]
+        Diameter.
+
+    Source: EN 1992-1-1:2004, 8.2(2) and (3).
+    """
     clear = clear_distance(size.diameter, case.aggregate, case.national)
     return arranged(size, count, case.sagging.web, case.cover + stirrup, clear)
 
 
 def candidates(case: BeamCase, stirrup: float, sizes: Sequence[Sequence[str]] = SIZES) -> Iterator[Bars]:
-    """Bars to try: fewest layers, then fewest bars, then least area; thick sizes last."""
+    """Bars to try: fewest layers, then fewest bars, then least area; thick sizes last.
+
+    Parameters
+    ----------
+    case : BeamCase
+    stirrup : float [m]
+        Diameter.
+    sizes : sequence of groups of sizes
+
+    Source: common practice.
+    """
     for group in sizes:
         found = [
             bars_of(case, bar(size), count, stirrup) for size in group for count in range(2, MOST_BARS + 1)
@@ -197,6 +218,8 @@ def choose(
     Face
         If nothing does everything: the first that resists and fits; else the one with most resistance
         among those that fit.
+
+    Source: EN 1992-1-1:2004, 6.1, 5.5(4), 7.3.4, 8.2(2), 9.2.1.1; the order is common practice.
     """
     found: list[Face] = []
     for other in (None, *compression):

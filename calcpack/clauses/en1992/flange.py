@@ -67,6 +67,10 @@ def span_zero_moments(length: float, left: str, right: str) -> tuple[float, floa
 def support_zero_moments(left: float, right: float) -> float:
     """l_0 about an inner support from the lengths on both sides [m]; 0 where there is none.
 
+    Parameters
+    ----------
+    left, right : float [m]
+
     Source: EN 1992-1-1:2004, 5.3.2.1(2), Figure 5.2.
 
     Examples

@@ -38,6 +38,12 @@ LIMITS = {
 def guard(name: str, value: float) -> float:
     """The value, if it lies within its limits.
 
+    Parameters
+    ----------
+    name : str
+        "fck" or "fyk".
+    value : float [MPa]
+
     Raises
     ------
     CalcpackError
@@ -191,6 +197,10 @@ def strengths(material: Material, national: National) -> Strengths:
 def mean_tensile_strength(fck: float) -> float:
     """fctm [MPa] from fck [MPa], for a concrete that is given by its strength alone.
 
+    Parameters
+    ----------
+    fck : float [MPa]
+
     Source: EN 1992-1-1:2004, Table 3.1, last column.
 
     Examples
@@ -277,10 +287,19 @@ class Outline:
 def outline(section: Section, flange_width: float) -> Outline:
     """The outline of a job's section with its top in compression.
 
+    Parameters
+    ----------
+    section : Section
+        Dimensions in m.
+    flange_width : float [m]
+        Effective, of a tee.
+
     Raises
     ------
     CalcpackError
         The section is no rectangle or tee.
+
+    Source: EN 1992-1-1:2004, 5.3.2.1(1)P for the width of the flange.
     """
     sizes = section.dimensions
     if section.shape == "rolled":

@@ -63,6 +63,12 @@ class SpanDeflection:
 def span_depths(case: BeamCase, bottom: Face, top: Face | None) -> tuple[SpanDepth, ...]:
     """Span over depth of every span that has a sagging moment, and of every overhang.
 
+    Parameters
+    ----------
+    case : BeamCase
+    bottom, top : Face
+        Bars of the spans and of the supports; lengths in m, moments in kNm.
+
     Source: EN 1992-1-1:2004, 7.4.2(2).
     """
     found = []
@@ -139,7 +145,19 @@ class Stiffness:
 def stiffness(
     case: BeamCase, bottom: Face, top: Face | None, through: Face, zones: tuple[TopZone, ...], creep: float
 ) -> Stiffness:
-    """The sections for a load that creeps by so much; without creep without shrinkage."""
+    """The sections for a load that creeps by so much; without creep without shrinkage.
+
+    Parameters
+    ----------
+    case : BeamCase
+    bottom, top, through : Face
+    zones : tuple of TopZone
+        Where all the top bars lie [m].
+    creep : float
+        φ(∞, t0).
+
+    Source: EN 1992-1-1:2004, 7.4.3(5), (7.20), and (6).
+    """
     over = top or through
 
     def section(face: Face) -> Elastic:
@@ -214,7 +232,17 @@ def span_deflections(
 
 
 def grid(case: BeamCase, service: Service, points: int) -> Floats:
-    """Places to integrate over: even within every span, supports and breaks of the moment among them."""
+    """Places to integrate over: even within every span, supports and breaks of the moment among them.
+
+    Parameters
+    ----------
+    case : BeamCase
+    service : Service
+    points : int
+        Intervals of the shortest span.
+
+    Source: geometry.
+    """
     curves: list[Curve] = [service.lasting]
     ends = sorted({each.start for each in case.spans} | {each.end for each in case.spans})
     step = min(each.length for each in case.spans) / points

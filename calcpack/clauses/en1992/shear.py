@@ -39,6 +39,12 @@ def concrete_shear(web: float, depth: float, area: float, strength: Strengths, n
 def strut_factor(strength: Strengths, national: National) -> float:
     """ν_1 = ν, the strength factor of concrete cracked in shear.
 
+    Parameters
+    ----------
+    strength : Strengths
+        fck [kPa].
+    national : National
+
     Source: EN 1992-1-1:2004, 6.2.2(6), (6.6N), and 6.2.3(3), note 1.
 
     Examples
@@ -108,6 +114,13 @@ def best_cot(web: float, stirrups: float, strength: Strengths, national: Nationa
 def least_stirrups(web: float, strength: Strengths, national: National) -> float:
     """Least A_sw/s [m2/m].
 
+    Parameters
+    ----------
+    web : float [m]
+    strength : Strengths
+        fck, fyk [kPa].
+    national : National
+
     Source: EN 1992-1-1:2004, 9.2.2(5), (9.4) and (9.5N).
 
     Examples
@@ -123,6 +136,12 @@ def least_stirrups(web: float, strength: Strengths, national: National) -> float
 def largest_spacing(depth: float, national: National) -> float:
     """Largest spacing of stirrups along the beam [m].
 
+    Parameters
+    ----------
+    depth : float [m]
+        d.
+    national : National
+
     Source: EN 1992-1-1:2004, 9.2.2(6), (9.6N), upright stirrups.
 
     Examples
@@ -136,6 +155,12 @@ def largest_spacing(depth: float, national: National) -> float:
 
 def largest_leg_spacing(depth: float, national: National) -> float:
     """Largest spacing of the legs across the web [m].
+
+    Parameters
+    ----------
+    depth : float [m]
+        d.
+    national : National
 
     Source: EN 1992-1-1:2004, 9.2.2(8), (9.8N).
 

@@ -194,7 +194,16 @@ def _shear(case: BeamCase, at: float, side: str) -> float:
 
 
 def checked_shear(case: BeamCase, x: np.ndarray, at: Sequence[ShearPlace]) -> np.ndarray:
-    """Shear by size [kN] at places [m], between a support and its place of check that of the place."""
+    """Shear by size [kN] at places [m], between a support and its place of check that of the place.
+
+    Parameters
+    ----------
+    case : BeamCase
+    x : array [m]
+    at : sequence of ShearPlace
+
+    Source: EN 1992-1-1:2004, 6.2.1(8).
+    """
     both = [
         np.maximum(np.abs(case.shear.upper.values(x, side)), np.abs(case.shear.lower.values(x, side)))
         for side in ("left", "right")
@@ -212,7 +221,19 @@ def checked_shear(case: BeamCase, x: np.ndarray, at: Sequence[ShearPlace]) -> np
 
 
 def spacing_limit(case: BeamCase, stirrups: Stirrups, depth: float, held: float | None) -> float:
-    """Widest legal spacing [m]: least ratio, 0.75 d, and 15 diameters of counted compression bars."""
+    """Widest legal spacing [m]: least ratio, 0.75 d, and 15 diameters of counted compression bars.
+
+    Parameters
+    ----------
+    case : BeamCase
+    stirrups : Stirrups
+    depth : float [m]
+        d.
+    held : float [m] or None
+        Diameter of compression bars that are counted.
+
+    Source: EN 1992-1-1:2004, 9.2.2(5) and (6), 9.2.1.2(3).
+    """
     limits = [
         stirrups.area / least_stirrups(case.sagging.web, case.strength, case.national),
         largest_spacing(depth, case.national),
@@ -237,6 +258,8 @@ def shear_design(case: BeamCase, stirrups: Stirrups, depth: float, held: float |
     -------
     ShearDesign
         Where no spacing is enough it has the closest one, and does not pass.
+
+    Source: EN 1992-1-1:2004, 6.2.3 and 9.2.2.
     """
     at = shear_places(case, depth)
     widest = spacing_limit(case, stirrups, depth, held)
@@ -333,7 +356,15 @@ def _up(length: float) -> float:
 
 
 def stirrup_sizes(case: BeamCase) -> list[Stirrups]:
-    """Stirrups to try, the given ones alone where the job gives them; legs near enough to each other."""
+    """Stirrups to try, the given ones alone where the job gives them; legs near enough to each other.
+
+    Parameters
+    ----------
+    case : BeamCase
+        Web and cover in m.
+
+    Source: EN 1992-1-1:2004, 9.2.2(8).
+    """
     if case.given.stirrups:
         legs, size, _ = case.given.stirrups
         return [Stirrups(size, legs)]

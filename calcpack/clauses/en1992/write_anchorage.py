@@ -16,6 +16,13 @@ def write_cover(
 ) -> list[tuple[str, Line]]:
     """Nominal cover of stirrups and bars.
 
+    Parameters
+    ----------
+    sheet : Sheet
+    design : Design
+    size : SizeLines [mm]
+    bars : list of FaceLines [mm]
+
     Source: EN 1992-1-1:2004, 4.4.1.
     """
     case, national = design.case, design.case.national
@@ -134,6 +141,15 @@ def write_end(
     sheet: Sheet, design: Design, lines: FaceLines, strength: StrengthLines, shear: ShearLines
 ) -> list[tuple[str, Line]]:
     """Anchorage of the bottom bars at the end support that asks most of it.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    design : Design
+    lines : FaceLines [mm]
+        Of the bottom bars.
+    strength : StrengthLines [MPa]
+    shear : ShearLines
 
     Source: EN 1992-1-1:2004, 9.2.1.4.
     """

@@ -274,6 +274,13 @@ def write_amount(
 ) -> list[tuple[str, Line]]:
     """Least reinforcement of a face.
 
+    Parameters
+    ----------
+    sheet : Sheet
+    lines : FaceLines [mm]
+    strength : StrengthLines [MPa]
+    size : SizeLines [mm]
+
     Source: EN 1992-1-1:2004, 9.2.1.1(1).
     """
     face, national, symbol = lines.face, lines.face.case.national, lines.symbol
@@ -301,6 +308,12 @@ def write_amount(
 def write_most(sheet: Sheet, faces: Sequence[FaceLines], size: SizeLines) -> list[tuple[str, Line]]:
     """Most reinforcement at a face.
 
+    Parameters
+    ----------
+    sheet : Sheet
+    faces : sequence of FaceLines [mm]
+    size : SizeLines [mm]
+
     Source: EN 1992-1-1:2004, 9.2.1.1(3).
     """
     outline = faces[0].face.outline
@@ -317,6 +330,13 @@ def write_most(sheet: Sheet, faces: Sequence[FaceLines], size: SizeLines) -> lis
 
 def write_spacing(sheet: Sheet, lines: FaceLines, size: SizeLines) -> list[tuple[str, Line]]:
     """Clear distance between the bars of the outermost layer.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    lines : FaceLines [mm]
+        Their clear distance is set.
+    size : SizeLines [mm]
 
     Source: EN 1992-1-1:2004, 8.2(2).
     """

@@ -263,6 +263,10 @@ def write_flange(
 def millimetres(value: float) -> float:
     """A length [m] in mm, without what binary fractions leave over.
 
+    Parameters
+    ----------
+    value : float [m]
+
     Examples
     --------
     >>> millimetres(0.035), millimetres(0.0003)

@@ -37,6 +37,14 @@ class ElasticLines:
 def write_creep(sheet: Sheet, design: Design, strength: StrengthLines, origin: str) -> tuple[Line, Line]:
     """Effective modulus of the concrete and ratio of the moduli.
 
+    Parameters
+    ----------
+    sheet : Sheet
+    design : Design
+    strength : StrengthLines [MPa]
+    origin : str
+        Where the creep coefficient comes from.
+
     Source: EN 1992-1-1:2004, 7.4.3(5), (7.20).
     """
     creep = sheet.take(
@@ -69,6 +77,14 @@ def write_creep(sheet: Sheet, design: Design, strength: StrengthLines, origin: s
 
 def write_cracked(sheet: Sheet, lines: FaceLines, size: SizeLines, creep: tuple[Line, Line]) -> ElasticLines:
     """Neutral axis and second moment of area of the cracked section.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    lines : FaceLines [mm]
+    size : SizeLines [mm]
+    creep : (Line, Line)
+        Effective modulus [MPa] and ratio of the moduli, from :func:`write_creep`.
 
     Source: equilibrium of the cracked section; EN 1992-1-1:2004, 7.1(2).
     """
@@ -138,6 +154,17 @@ def write_crack(
     combination: str,
 ) -> Line:
     """Crack width of a face.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    lines : FaceLines [mm]
+    strength : StrengthLines [MPa]
+    size : SizeLines [mm]
+    elastic : ElasticLines
+        From :func:`write_cracked`.
+    combination : str
+        In words.
 
     Returns
     -------
@@ -226,6 +253,16 @@ def write_span_depth(
     design_moment: Line | None = None,
 ) -> tuple[Line, Line]:
     """Span over depth of one span, and up to which a deflection need not be worked out.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    lines : FaceLines [mm]
+    strength : StrengthLines [MPa]
+    found : SpanDepth
+    span : Line [m]
+    design_moment : Line [kNm], optional
+        Where the sheet holds the span's moment already.
 
     Source: EN 1992-1-1:2004, 7.4.2(2), (7.16.a) and (7.16.b).
     """
@@ -324,6 +361,18 @@ def write_curvature(
 ) -> Line:
     """Curvature where a span is bent most, between the uncracked and the cracked one.
 
+    Parameters
+    ----------
+    sheet : Sheet
+    design : Design
+    lines : FaceLines [mm]
+    strength : StrengthLines [MPa]
+    elastic : ElasticLines
+        From :func:`write_cracked`.
+    moment : Line [kNm]
+    origin : str
+        Where the shrinkage strain comes from.
+
     Source: EN 1992-1-1:2004, 7.4.3(3) to (6), (7.18) to (7.21).
     """
     face, symbol = lines.face, lines.symbol
@@ -397,5 +446,16 @@ def write_curvature(
 
 
 def limit_term(span: Line, reach: float, factor: float) -> Expression:
-    """Span over a number, twice an overhang over it."""
+    """Span over a number, twice an overhang over it.
+
+    Parameters
+    ----------
+    span : Line [m]
+    reach : float
+        Over the span: 2 for an overhang.
+    factor : float
+        Span over ...
+
+    Source: EN 1992-1-1:2004, 7.4.1(4), for an overhang twice its length.
+    """
     return (2 * span if reach > 1 else span) / number(factor)

@@ -230,6 +230,12 @@ def _cot(
 def write_along(sheet: Sheet, design: Design) -> list[tuple[str, Line]]:
     """Shear against the stirrups, and the shifted moments against the bars, wherever that is closest.
 
+    Parameters
+    ----------
+    sheet : Sheet
+    design : Design
+        Places in m, shear in kN, moments in kNm.
+
     Source: EN 1992-1-1:2004, 6.2.3 and 9.2.1.3.
     """
     at, force, carried = design.shear.along
@@ -253,6 +259,16 @@ def write_stirrup_limits(
     sheet: Sheet, design: Design, strength: StrengthLines, size: SizeLines, lines: ShearLines, effective: Line
 ) -> list[tuple[str, Line]]:
     """Least stirrups, widest spacing along and across.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    design : Design
+    strength : StrengthLines [MPa]
+    size : SizeLines [mm]
+    lines : ShearLines [mm, mm2]
+    effective : Line [mm]
+        The least effective depth.
 
     Source: EN 1992-1-1:2004, 9.2.2(5), (6), (8).
     """

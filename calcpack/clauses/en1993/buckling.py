@@ -41,6 +41,10 @@ _POINTS, _WEIGHTS = np.polynomial.legendre.leggauss(48)
 def quarter_points(moments: SegmentMoments) -> float:
     """C1 after Serna et al. from the moments at the quarters of a segment and the largest one in it.
 
+    Parameters
+    ----------
+    moments : SegmentMoments [kNm]
+
     Source: Serna et al. (2006): √(35 Mmax² / (Mmax² + 9 M2² + 16 M3² + 9 M4²)).
 
     Examples
@@ -65,6 +69,8 @@ def wave_share(moment: Curve, start: float, end: float, largest: float) -> float
         [kNm]
     start, end : float [m]
     largest : float [kNm]
+
+    Source: Timoshenko and Gere, Theory of elastic stability, chapter 6: energy of one half wave.
 
     Examples
     --------
@@ -125,7 +131,15 @@ def held_factor(profile: Profile, moment: Curve, start: float, end: float, lengt
 
 
 def held_stiffness(profile: Profile, length: float) -> tuple[float, float]:
-    """π² E (Iw + Iz h²/4) / L² and G It [kNm2]: what resists twist about the held top flange."""
+    """π² E (Iw + Iz h²/4) / L² and G It [kNm2]: what resists twist about the held top flange.
+
+    Parameters
+    ----------
+    profile : Profile
+    length : float [m]
+
+    Source: Trahair, Flexural-torsional buckling of structures, chapter 8.
+    """
     s = profile.shape
     about_top = s.warping + s.weak_inertia * s.depth**2 / 4
     return math.pi**2 * profile.modulus * about_top / length**2, profile.shear_modulus * s.torsion
@@ -147,6 +161,8 @@ def twisting_load(
         The segment, where the wave is zero.
     above : bool
         Whether the loads stand above the shear centre.
+
+    Source: work of the load at its height, Timoshenko and Gere, Theory of elastic stability, chapter 6.
 
     Examples
     --------
@@ -190,6 +206,8 @@ def load_factor(diagram: float, length: float, twisting: float, moment: float) -
     moment : float [kNm]
         Largest by size.
 
+    Source: the same half sine wave as :func:`twisting_load`.
+
     Examples
     --------
     10 kN/m over 6 m, for which ENV 1993-1-1:1992, Table F.1.2 prints 0.459:
@@ -232,6 +250,13 @@ class Reduction(NamedTuple):
 
 def imperfection(profile: Profile, curves: Curves) -> tuple[str, float]:
     """Buckling curve and α_LT of a rolled I-section, Tables 6.3 to 6.5.
+
+    Parameters
+    ----------
+    profile : Profile
+    curves : "general" or "rolled"
+
+    Source: EN 1993-1-1:2005, 6.3.2.2(1) with Tables 6.3 and 6.4, 6.3.2.3(1) with Table 6.5.
 
     Examples
     --------

@@ -157,6 +157,8 @@ def design(
     strength combination under several arrangements of live load (:func:`segments.tried`): buckling depends
     on the shape of a diagram, which an envelope does not have.
 
+    Source: EN 1993-1-1:2005, 6.2.5, 6.2.6, 6.2.8, 6.3.2; EN 1993-1-5:2006, 6 and 7.2.
+
     Examples
     --------
     >>> from calcpack.actions import Combination, LoadSet, analyse_beam
@@ -199,7 +201,14 @@ def _shear(analysed: AnalysedBeam) -> Effect:
 def beside_shear(profile: Profile, analysed: AnalysedBeam) -> Beside | None:
     """The place where moment and shear together use most, if the shear passes half its resistance anywhere.
 
+    Parameters
+    ----------
+    profile : Profile
+    analysed : AnalysedBeam [m, kN, kNm]
+
     Both are taken from their envelopes, as if they stood there at one time.
+
+    Source: EN 1993-1-1:2005, 6.2.8.
     """
     moment, shear = analysed.band("moment"), analysed.band("shear")
     if abs(shear.largest_absolute.value) <= profile.shear / 2:
@@ -227,7 +236,17 @@ def _used(beside: Beside) -> float:
 def buckling_of(
     profile: Profile, analysed: AnalysedBeam, parts: Sequence[Segment], conditions: Conditions
 ) -> tuple[Buckling, ...]:
-    """The worst arrangement of each segment that bends at all."""
+    """The worst arrangement of each segment that bends at all.
+
+    Parameters
+    ----------
+    profile : Profile
+    analysed : AnalysedBeam [m, kN, kNm]
+    parts : sequence of Segment
+    conditions : Conditions
+
+    Source: EN 1993-1-1:2005, 6.3.2.
+    """
     band = analysed.band("moment")
     scale = max(abs(band.largest.value), abs(band.smallest.value))
     worst = []
@@ -290,14 +309,33 @@ def _checked(
 
 
 def height_of(profile: Profile, where: LoadHeight) -> float:
-    """z_g: how far above the shear centre the load stands [m]."""
+    """z_g: how far above the shear centre the load stands [m].
+
+    Parameters
+    ----------
+    profile : Profile
+    where : "top", "centre" or "bottom"
+
+    Source: geometry; z_g as in ENV 1993-1-1:1992, F.1.2.
+    """
     return {"top": 0.5, "centre": 0.0, "bottom": -0.5}[where] * profile.shape.depth
 
 
 def local_forces(
     profile: Profile, analysed: AnalysedBeam, conditions: Conditions, fixed: tuple[bool, bool]
 ) -> tuple[LocalForce, ...]:
-    """Forces on the flanges at supports and under point loads, each with the web's resistance."""
+    """Forces on the flanges at supports and under point loads, each with the web's resistance.
+
+    Parameters
+    ----------
+    profile : Profile
+    analysed : AnalysedBeam [m, kN, kNm]
+    conditions : Conditions
+    fixed : (bool, bool)
+        Ends held against rotation.
+
+    Source: EN 1993-1-5:2006, 6.1 and Figure 6.1.
+    """
     found = []
     if conditions.bears_at_supports:
         found += _reactions(profile, analysed, conditions, fixed)

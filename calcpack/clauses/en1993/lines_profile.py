@@ -107,6 +107,13 @@ def take_profile(
 def limits_of(sheet: Sheet, given: ProfileLines) -> list[tuple[str, Line]]:
     """What the clauses hold for: thickness and strength; from ``rules.LIMITS``.
 
+    Parameters
+    ----------
+    sheet : Sheet
+    given : ProfileLines [mm, MPa]
+
+    Source: EN 1993-1-1:2005, Table 3.1.
+
     Examples
     --------
     >>> from calcpack.clauses.en1993.samples import IPE_330
@@ -147,6 +154,12 @@ class ClassLines(NamedTuple):
 
 def classify(sheet: Sheet, given: ProfileLines, profile: Profile) -> ClassLines:
     """Class of flange and web, bending about the strong axis; class 4 fails its requirement.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    given : ProfileLines [mm, MPa]
+    profile : Profile
 
     Source: EN 1993-1-1:2005, 5.5.2 and Table 5.2.
 
@@ -229,6 +242,14 @@ class Partial(NamedTuple):
 
 def take_factors(sheet: Sheet, profile: Profile, origin: str = "design") -> Partial:
     """γM0, γM1 and η, as the job sets them, beside the recommended values.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    profile : Profile
+        Its factors are plain numbers.
+    origin : str
+        The beam's design keys in the job file.
 
     Source: EN 1993-1-1:2005, 6.1(1) and 6.2.6(3).
 

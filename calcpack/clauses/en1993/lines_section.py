@@ -19,7 +19,15 @@ class Resistance(NamedTuple):
 
 
 def modulus_line(given: ProfileLines, profile: Profile) -> tuple[Line, str]:
-    """The section modulus that the class allows, and its words."""
+    """The section modulus that the class allows, and its words.
+
+    Parameters
+    ----------
+    given : ProfileLines [mm3]
+    profile : Profile
+
+    Source: EN 1993-1-1:2005, 6.2.5(2) and 6.3.2.1(3).
+    """
     if profile.section_class <= 2:
         return given.W_pl, f"plastic, {RANK[profile.section_class]}"
     return given.W_el, f"elastic, {RANK[profile.section_class]}"
@@ -46,7 +54,16 @@ def bending(
 ) -> Resistance:
     """Bending resistance of the section, and that the moment [kNm], by size, does not pass it.
 
-    ``stated`` is a line of the sheet that says the moment already.
+    Parameters
+    ----------
+    sheet : Sheet
+    given, partial : ProfileLines [mm, MPa], Partial
+    profile : Profile
+    demand : float [kNm]
+    says, origin : str
+        What the moment is, and where it comes from.
+    stated : Line, optional
+        A line of the sheet that says the moment already.
 
     Source: EN 1993-1-1:2005, 6.2.5, (6.12) to (6.14).
 
@@ -97,7 +114,16 @@ def shear(
 ) -> ShearLines:
     """Plastic shear resistance, and that the web needs no look at shear buckling.
 
-    ``stated`` is a line of the sheet that says the shear already.
+    Parameters
+    ----------
+    sheet : Sheet
+    given, partial : ProfileLines [mm, MPa], Partial
+    epsilon : Line
+    demand : float [kN]
+    says, origin : str
+        What the shear is, and where it comes from.
+    stated : Line, optional
+        A line of the sheet that says the shear already.
 
     Source: EN 1993-1-1:2005, 6.2.6(2), (3) a) and (6).
 
@@ -205,6 +231,13 @@ def bending_beside_shear(
 
 def shear_share(sheet: Sheet, found: ShearLines) -> Line:
     """V_Ed/V_pl,Rd, which says whether bending is reduced.
+
+    Parameters
+    ----------
+    sheet : Sheet
+    found : ShearLines [kN]
+
+    Source: EN 1993-1-1:2005, 6.2.8(2).
 
     Examples
     --------

@@ -118,6 +118,14 @@ class Profile:
 def part_class(slenderness: float, epsilon: float, limits: ClassLimits) -> int:
     """Class of a part from its c/t, 1 to 4; exactly at a limit it is still in the better class.
 
+    Parameters
+    ----------
+    slenderness : float
+        c/t.
+    epsilon : float
+        ε = √(235 MPa/f_y).
+    limits : ClassLimits
+
     Source: EN 1993-1-1:2005, Table 5.2.
 
     Examples
@@ -131,6 +139,12 @@ def part_class(slenderness: float, epsilon: float, limits: ClassLimits) -> int:
 
 def yield_strength(material: Material, thickness: float) -> float:
     """f_y for the thickness [m] of the thickest part [kPa].
+
+    Parameters
+    ----------
+    material : Material
+        fy and fy_thick [kPa].
+    thickness : float [m]
 
     Source: EN 1993-1-1:2005, Table 3.1: one value up to 40 mm, one from there to 80 mm.
 
@@ -153,10 +167,20 @@ def yield_strength(material: Material, thickness: float) -> float:
 def profile_of(section: Section | None, material: Material | None, factors: Factors = RECOMMENDED) -> Profile:
     """A section and a material of the job as a profile.
 
+    Parameters
+    ----------
+    section : Section
+        A rolled one; dimensions in m.
+    material : Material
+        A steel; strengths in kPa.
+    factors : Factors
+
     Raises
     ------
     CalcpackError
         The section is not a rolled one, or the material not a steel.
+
+    Source: EN 1993-1-1:2005, Table 3.1 and 3.2.6.
 
     Examples
     --------

@@ -68,6 +68,8 @@ def segments(
     CalcpackError
         Points held are given twice over.
 
+    Source: EN 1993-1-1:2005, 6.3.2.1: between points held sideways and against twist.
+
     Examples
     --------
     >>> [part[:3] for part in segments([(0, 7)], [0, 7], unbraced=3.0)]
@@ -98,8 +100,15 @@ def segments(
 def tried(analysed: AnalysedBeam, part: Segment) -> tuple[Arrangement, ...]:
     """The diagrams that a segment is tried under: each strength combination in several arrangements.
 
+    Parameters
+    ----------
+    analysed : AnalysedBeam [m, kNm]
+    part : Segment [m]
+
     Beside those that sag and hog the segment most, and everything loaded, those that sag and hog it most at
     its quarter points: a lower but fuller diagram may buckle it sooner.
+
+    Source: EN 1990:2002, 6.4.3.1: live load placed where it is least favourable.
 
     Examples
     --------
