@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 from calcpack.clauses.en1992.model import Outline, Strengths
@@ -108,20 +109,18 @@ def bending(
         _, stress, _, stress_2 = steel(x)
         return block_force(outline, strength, x)[0] + area_2 * stress_2 - area * stress
 
-    low, high = 1e-9 * outline.depth, outline.depth / strength.lam
-    for _ in range(200):
-        middle = (low + high) / 2
-        if surplus(middle) < 0:
-            low = middle
-        else:
-            high = middle
-        if high - low <= 1e-16:
-            break
-    x = (low + high) / 2
+    x = _root(surplus, 0.0, outline.depth / strength.lam)
     strain, stress, strain_2, stress_2 = steel(x)
     _, about_face = block_force(outline, strength, x)
     moment = area * stress * depth - about_face - area_2 * stress_2 * depth_2
     return Bending(x, moment / (area * stress), moment, strain, stress, strain_2, stress_2)
+
+
+def _root(rising: Callable[[float], float], low: float, high: float) -> float:
+    """Where a rising function is zero, halved until no number lies between the ends."""
+    while low < (middle := (low + high) / 2) < high:
+        low, high = (middle, high) if rising(middle) < 0 else (low, middle)
+    return middle
 
 
 def depth_limit(strength: Strengths, national: National) -> float:
@@ -191,10 +190,8 @@ def steel_for(
         stress_2 = min(max(strain_2 * strength.es, 1e-6), strength.fyd)
         push = (moment - most) / (depth - depth_2)
         return (force + push) / strength.fyd, push / stress_2
-    for _ in range(100):
-        middle = (low + high) / 2
-        low, high = (middle, high) if resisted(middle) < moment else (low, middle)
-    return block_force(outline, strength, high)[0] / strength.fyd, 0.0
+    x = _root(lambda x: resisted(x) - moment, low, high)
+    return block_force(outline, strength, x)[0] / strength.fyd, 0.0
 
 
 def least_steel(outline: Outline, strength: Strengths, depth: float, national: National) -> float:

@@ -173,7 +173,7 @@ def places(length: float, among: Sequence[float], step: float = STEP) -> Floats:
     >>> places(1.0, [0.3], 0.5)
     array([0. , 0.3, 0.5, 1. ])
     """
-    even = np.linspace(0.0, length, max(int(np.ceil(length / step - 1e-9)), 2) + 1)
+    even = np.linspace(0.0, length, max(int(np.ceil(round(length / step, 9))), 2) + 1)
     found = np.unique(np.concatenate([even, np.clip(np.asarray(among, dtype=float), 0.0, length)]))
     clear = np.concatenate([[True], np.diff(found) > 1e-9 * length])
     return np.asarray(found[clear])

@@ -86,9 +86,9 @@ def interpolation(moment: Floats, cracking: float, beta: float) -> Floats:
     >>> interpolation(np.array([10.0, 20.0, 40.0]), 20.0, 0.5)
     array([0.   , 0.5  , 0.875])
     """
-    size = np.maximum(np.abs(moment), 1e-12 + 1e-12 * cracking)
-    cracked = size >= cracking * (1 - 1e-12)
-    return np.where(cracked, 1 - beta * (cracking / size) ** 2, 0.0)
+    size = np.abs(moment)
+    over = cracking / np.maximum(size, cracking)
+    return np.where(size >= cracking, 1 - beta * over**2, 0.0)
 
 
 def curvature(moment: Floats, zeta: Floats, section: Elastic, modulus: float, shrinkage: float) -> Floats:

@@ -11,11 +11,10 @@ from calcpack.clauses.en1992.along import TopZone, Worst, nearest, resistance, s
 from calcpack.clauses.en1992.anchorage import Anchorage, anchorage, good_bond
 from calcpack.clauses.en1992.case import BeamCase, Floats, SupportCase
 from calcpack.clauses.en1992.faces import HANGERS, SIZES, THINNER, Face, bars_of, candidates, choose
-from calcpack.clauses.en1992.model import Bars, Stirrups
+from calcpack.clauses.en1992.model import Bars, Stirrups, within
 from calcpack.clauses.en1992.service import SpanDeflection, SpanDepth, span_deflections, span_depths
 from calcpack.clauses.en1992.stirrups import CLOSEST, ShearDesign, shear_design, stirrup_sizes
 
-CLOSE = 1e-9
 MORE = (1.0, 1.15, 1.3, 1.5)  # bottom bars over those that strength asks for, until deflection is satisfied
 
 
@@ -140,7 +139,7 @@ class Design:
     @property
     def anchored(self) -> bool:
         """Room for the bottom bars at every end support whose width is given."""
-        return all(each.room is None or each.length.length <= each.room * (1 + CLOSE) for each in self.ends)
+        return all(each.room is None or within(each.length.length, each.room) for each in self.ends)
 
     @cached_property
     def span_depths(self) -> tuple[SpanDepth, ...]:
@@ -155,7 +154,7 @@ class Design:
     @property
     def deflects_fine(self) -> bool:
         """The total deflection of every span within its limit."""
-        return all(each.limit is None or each.total <= each.limit * (1 + CLOSE) for each in self.deflections)
+        return all(each.limit is None or within(each.total, each.limit) for each in self.deflections)
 
 
 def design_beam(case: BeamCase) -> Design:
@@ -241,7 +240,7 @@ def _bottom(case: BeamCase, stirrup: float, more: float, sizes: Sequence[Sequenc
         if not case.sag or face.alone.x <= face.limit * face.depth:
             return face
         tried = [replace(face, compression=bars) for bars in hangers]
-        deep = (each for each in tried if each.bending.x <= each.limit * each.depth * (1 + CLOSE))
+        deep = (each for each in tried if within(each.bending.x, each.limit * each.depth))
         return next(deep, tried[-1])
     if not case.sag:
         return Face(case, case.sagging, hangers[0], 0.0, 0.0)
@@ -294,7 +293,6 @@ def _top(case: BeamCase, stirrup: float, bottom: Face) -> tuple[Face | None, Fac
 
 
 def _shear_fine(shear: ShearDesign) -> bool:
-    close = CLOSEST - CLOSE
-    fine = all(shear.ratio(number) <= 1 + CLOSE for number in range(len(shear.places)))
+    fine = all(within(shear.ratio(number), 1) for number in range(len(shear.places)))
     _, force, carried = shear.along
-    return fine and force <= carried * (1 + CLOSE) and min(shear.spacings) >= close
+    return fine and within(force, carried) and within(CLOSEST, min(shear.spacings))

@@ -11,7 +11,7 @@ from calcpack.clauses.en1992.bending import Bending, bending, depth_limit, least
 from calcpack.clauses.en1992.case import BeamCase
 from calcpack.clauses.en1992.cracking import Crack, Elastic, crack_width, elastic
 from calcpack.clauses.en1992.detailing import arranged, clear_between, clear_distance
-from calcpack.clauses.en1992.model import Bars, Outline
+from calcpack.clauses.en1992.model import Bars, Outline, within
 
 # Sizes to choose from; the thickest only where the others do not fit.
 SIZES: tuple[tuple[str, ...], ...] = (("12 mm", "16 mm", "20 mm", "25 mm"), ("32 mm",))
@@ -21,7 +21,6 @@ THINNER: tuple[tuple[tuple[str, ...], ...], ...] = tuple(
 )
 HANGERS: tuple[tuple[str, ...], ...] = (("12 mm", "16 mm", "20 mm", "25 mm"),)
 MOST_BARS = 16
-CLOSE = 1e-9  # as a requirement on a sheet counts two sides as equal
 
 
 @dataclass(frozen=True)
@@ -65,7 +64,7 @@ class Face:
     @property
     def doubly(self) -> bool:
         """Whether the compression bars are counted."""
-        return self.compression is not None and self.alone.x > self.limit * self.depth * (1 + CLOSE)
+        return self.compression is not None and not within(self.alone.x, self.limit * self.depth)
 
     @cached_property
     def bending(self) -> Bending:
@@ -131,12 +130,11 @@ class Face:
     def resists(self) -> bool:
         """Moment, x/d, least and most bars."""
         found = self.bending
-        slack = 1 + CLOSE
         return (
-            self.moment <= found.moment * slack
-            and found.x <= self.limit * self.depth * slack
-            and self.least <= self.bars.area * slack
-            and self.bars.area <= self.most * slack
+            within(self.moment, found.moment)
+            and within(found.x, self.limit * self.depth)
+            and within(self.least, self.bars.area)
+            and within(self.bars.area, self.most)
         )
 
     @property
@@ -144,12 +142,12 @@ class Face:
         """Clear distances, and cover enough for bond."""
         clear, rule = self.clear
         bond = self.bars.bar.diameter + self.case.national["delta_c_dev"]
-        return rule <= clear * (1 + CLOSE) and bond <= self.bars.inset * (1 + CLOSE)
+        return within(rule, clear) and within(bond, self.bars.inset)
 
     @property
     def cracks_fine(self) -> bool:
         """Width of cracks."""
-        return self.crack.width <= self.case.crack_limit * (1 + CLOSE)
+        return within(self.crack.width, self.case.crack_limit)
 
 
 def bars_of(case: BeamCase, size: Bar, count: int, stirrup: float) -> Bars:
@@ -237,4 +235,4 @@ def choose(
 
 def _nearest(face: Face) -> tuple[bool, float]:
     bent = face.bending
-    return bent.x <= face.limit * face.depth * (1 + CLOSE), bent.moment
+    return within(bent.x, face.limit * face.depth), bent.moment

@@ -11,6 +11,19 @@ from calcpack.clauses.en1992.national import STANDARD, National
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Material, Section
 
+CLOSE = 1e-9  # [m] within which two places are one; as a part, two sides of a requirement
+
+
+def within(demand: float, capacity: float) -> bool:
+    """Whether a demand does not pass a capacity; as on a sheet, two that are equal but for rounding do not.
+
+    Examples
+    --------
+    >>> within(0.1 + 0.2, 0.3), within(0.3001, 0.3)
+    (True, False)
+    """
+    return demand <= capacity * (1 + CLOSE)
+
 
 class Limit(NamedTuple):
     """Within what a value has to lie for the clauses to hold."""

@@ -107,8 +107,9 @@ def best_cot(web: float, stirrups: float, strength: Strengths, national: Nationa
     (2.5, 1.626)
     """
     struts = national["alpha_cw"] * web * strut_factor(strength, national) * strength.fcd
-    square = max(struts / (stirrups * strength.fyd) - 1, 0.0)
-    return min(max(math.sqrt(square), national["cot_theta_min"]), national["cot_theta_max"])
+    least, most = national["cot_theta_min"], national["cot_theta_max"]
+    square = struts / (stirrups * strength.fyd) - 1
+    return math.sqrt(min(max(square, least**2), most**2))
 
 
 def least_stirrups(web: float, strength: Strengths, national: National) -> float:

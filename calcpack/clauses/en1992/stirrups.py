@@ -11,7 +11,7 @@ import numpy as np
 
 from calcpack.clauses.bars import bar
 from calcpack.clauses.en1992.case import BeamCase, places
-from calcpack.clauses.en1992.model import Stirrups
+from calcpack.clauses.en1992.model import CLOSE, Stirrups, within
 from calcpack.clauses.en1992.shear import (
     ARM,
     best_cot,
@@ -33,7 +33,6 @@ TRIED: tuple[tuple[str, int], ...] = (
 STEP = 0.025  # [m], spacings are multiples of it
 CLOSEST, WIDEST = 0.075, 0.300  # [m], common practice
 ROUND = 0.05  # [m], ends of zones
-CLOSE = 1e-9
 
 
 class ShearPlace(NamedTuple):
@@ -115,7 +114,7 @@ class ShearDesign:
     @property
     def governing(self) -> int:
         """Of the places with the closest spacing the one with the largest ratio."""
-        closest = [at for at, each in enumerate(self.spacings) if each <= min(self.spacings) + CLOSE]
+        closest = [at for at, each in enumerate(self.spacings) if within(each, min(self.spacings))]
         return max(closest, key=lambda number: round(self.ratio(number), 9))
 
     @property
@@ -371,6 +370,6 @@ def stirrup_sizes(case: BeamCase) -> list[Stirrups]:
     found = [Stirrups(bar(size), legs) for size, legs in TRIED]
     most = largest_leg_spacing(0.8 * case.sagging.depth, case.national)
     inside = case.sagging.web - 2 * case.cover
-    return [
-        each for each in found if (inside - each.bar.diameter) / (each.legs - 1) <= most * (1 + CLOSE)
-    ] or found[-1:]
+    return [each for each in found if within((inside - each.bar.diameter) / (each.legs - 1), most)] or found[
+        -1:
+    ]

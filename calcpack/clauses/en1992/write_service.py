@@ -404,7 +404,7 @@ def write_curvature(
         "Moment at which the section cracks, gross concrete",
         f"{cite}(4)",
     )
-    if moment.value < cracking.value * (1 - 1e-12):
+    if moment.value < section.cracking:
         zeta = sheet.take(
             "zeta", 0.0, "1", "Uncracked", "M below M_cr", f"{cite}(3)", word="part that is cracked"
         )
