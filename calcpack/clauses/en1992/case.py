@@ -11,7 +11,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from calcpack.clauses.bars import Bar
-from calcpack.clauses.en1992.model import Outline, Strengths
+from calcpack.clauses.en1992.model import CLOSE, Outline, Strengths
 from calcpack.clauses.en1992.national import National
 from calcpack.statics import Band, Curve
 
@@ -36,6 +36,10 @@ class SpanCase(NamedTuple):
     def overhang(self) -> bool:
         """One end is free."""
         return "free" in (self.left, self.right)
+
+    def holds(self, x: Floats) -> NDArray[np.bool_]:
+        """Which of some places [m] lie within, the ends included."""
+        return (x >= self.start - CLOSE) & (x <= self.end + CLOSE)
 
 
 class SupportCase(NamedTuple):

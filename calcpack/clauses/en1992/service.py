@@ -20,6 +20,7 @@ from calcpack.clauses.en1992.deflection import (
     span_factor,
 )
 from calcpack.clauses.en1992.faces import Face
+from calcpack.clauses.en1992.model import within
 from calcpack.statics import Curve
 
 POINTS = 400  # intervals a span
@@ -77,7 +78,7 @@ def span_depths(case: BeamCase, bottom: Face, top: Face | None) -> tuple[SpanDep
         if face is None:
             continue
         x = case.places
-        inside = (x >= span.start - 1e-9) & (x <= span.end + 1e-9)
+        inside = span.holds(x)
         values = -case.moment.lower.values(x) if span.overhang else case.moment.upper.values(x)
         moment = float(values[inside].max())
         depth_2 = face.compression.centroid if face.compression else face.bars.inset
@@ -89,7 +90,7 @@ def span_depths(case: BeamCase, bottom: Face, top: Face | None) -> tuple[SpanDep
         factor = span_factor(span.left, span.right, case.national)
         basic = basic_span_depth(ratio, ratio_2, factor, case.strength)
         stress = min(500e3 / case.strength.fyk * face.bars.area / required, 1.5)
-        flanged = 0.8 if width > 3 * face.outline.web else 1.0
+        flanged = 1.0 if within(width, 3 * face.outline.web) else 0.8
         long = min(LONG / span.length, 1.0)
         limit = basic * stress * flanged * long
         found.append(
@@ -199,7 +200,7 @@ def span_deflections(
         moment = service.lasting.values(x)
         zeta = lasting.zeta(moment, LASTING)
         line = lasting.line(case, x, moment, zeta)
-        inside = (x >= span.start - 1e-9) & (x <= span.end + 1e-9)
+        inside = span.holds(x)
         own, places_in = line[inside], x[inside]
         most = int(np.argmax(np.abs(own)))
         reach = 2 * span.length if span.overhang else span.length

@@ -33,6 +33,7 @@ TRIED: tuple[tuple[str, int], ...] = (
 STEP = 0.025  # [m], spacings are multiples of it
 CLOSEST, WIDEST = 0.075, 0.300  # [m], common practice
 ROUND = 0.05  # [m], ends of zones
+FINE = 0.01  # [m], between places where zones may end
 
 
 class ShearPlace(NamedTuple):
@@ -134,15 +135,14 @@ class ShearDesign:
 
         Between the faces of supports and d beyond them only what stands above the checked shear is left out.
         """
-        worst = (0.0, 0.0, 1.0)
+        found = []
         for zone in self.zones:
             ties, _ = self.capacity(zone.spacing)
-            x = places(zone.end - zone.start, [], 0.05) + zone.start
+            x = places(zone.end - zone.start, []) + zone.start
             shear = checked_shear(self.case, x, self.places)
             most = int(np.argmax(shear))
-            if shear[most] / ties > worst[1] / worst[2]:
-                worst = (float(x[most]), float(shear[most]), ties)
-        return worst
+            found.append((float(x[most]), float(shear[most]), ties))
+        return max(found, key=lambda each: each[1] / each[2])
 
 
 def shear_places(case: BeamCase, depth: float) -> tuple[ShearPlace, ...]:
@@ -313,7 +313,7 @@ def _zones(design: ShearDesign, practical: float) -> tuple[Zone, ...]:
     case, zones = design.case, []
     enough, _ = design.capacity(practical)
     for span in case.spans:
-        x = places(span.length, [], 0.01) + span.start
+        x = places(span.length, [], FINE) + span.start
         over = checked_shear(case, x, design.places) > enough
         ends = {}
         for place, spacing in zip(design.places, design.spacings, strict=True):
@@ -326,8 +326,8 @@ def _zones(design: ShearDesign, practical: float) -> tuple[Zone, ...]:
         if span.overhang:
             middle = span.end if "start" in ends else span.start
         first, last = x[over & (x <= middle)], x[over & (x >= middle)]
-        left = span.start + _up(float(first.max()) + 0.01 - span.start) if first.size else span.start
-        right = span.end - _up(span.end - float(last.min()) + 0.01) if last.size else span.end
+        left = span.start + _up(float(first.max()) + FINE - span.start) if first.size else span.start
+        right = span.end - _up(span.end - float(last.min()) + FINE) if last.size else span.end
         left_spacing, right_spacing = ends.get("start", practical), ends.get("end", practical)
         if left_spacing == practical:
             left = span.start
