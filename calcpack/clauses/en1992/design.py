@@ -15,7 +15,7 @@ from calcpack.clauses.en1992.model import Bars, Stirrups, within
 from calcpack.clauses.en1992.service import SpanDeflection, SpanDepth, span_deflections, span_depths
 from calcpack.clauses.en1992.stirrups import CLOSEST, ShearDesign, shear_design, stirrup_sizes
 
-MORE = (1.0, 1.15, 1.3, 1.5)  # bottom bars over those that strength asks for, until deflection is satisfied
+MORE = (1.15, 1.3, 1.5)  # bottom bars over those that strength asks for, until deflection is satisfied
 
 
 class EndAnchorage(NamedTuple):
@@ -202,7 +202,7 @@ def _with(case: BeamCase, stirrups: Stirrups) -> Design:
 def _deflecting(case: BeamCase, stirrups: Stirrups, sizes: Sequence[Sequence[str]]) -> Design:
     """With as many more bottom bars as the deflection asks for."""
     first: Design | None = None
-    for more in MORE if case.given.bottom is None else MORE[:1]:
+    for more in (None, *MORE) if case.given.bottom is None else (None,):
         design = _faces(case, stirrups, more, sizes)
         first = first or design
         if not case.sag or design.deflects_fine:
@@ -211,7 +211,7 @@ def _deflecting(case: BeamCase, stirrups: Stirrups, sizes: Sequence[Sequence[str
     return first
 
 
-def _faces(case: BeamCase, stirrups: Stirrups, more: float, sizes: Sequence[Sequence[str]]) -> Design:
+def _faces(case: BeamCase, stirrups: Stirrups, more: float | None, sizes: Sequence[Sequence[str]]) -> Design:
     diameter = stirrups.bar.diameter
     bottom = _bottom(case, diameter, more, sizes)
     top, through = _top(case, diameter, bottom)
@@ -231,7 +231,7 @@ def _lasting(case: BeamCase) -> tuple[float, float]:
     return max(case.lasting.largest.value, 0.0), max(-case.lasting.smallest.value, 0.0)
 
 
-def _bottom(case: BeamCase, stirrup: float, more: float, sizes: Sequence[Sequence[str]]) -> Face:
+def _bottom(case: BeamCase, stirrup: float, more: float | None, sizes: Sequence[Sequence[str]]) -> Face:
     lasting, _ = _lasting(case)
     hangers = _hangers(case, stirrup)
     if case.given.bottom:
@@ -245,7 +245,7 @@ def _bottom(case: BeamCase, stirrup: float, more: float, sizes: Sequence[Sequenc
     if not case.sag:
         return Face(case, case.sagging, hangers[0], 0.0, 0.0)
     face = choose(case, case.sagging, case.sag, lasting, stirrup, compression=hangers, sizes=sizes)
-    if more > 1:
+    if more:
         least = more * face.required[0]
         face = choose(
             case, case.sagging, case.sag, lasting, stirrup, compression=hangers, least=least, sizes=sizes
