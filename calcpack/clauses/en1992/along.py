@@ -9,6 +9,8 @@ from typing import NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
+from calcpack.clauses.en1992.model import CLOSE, within
+
 Floats = NDArray[np.float64]
 
 
@@ -53,8 +55,8 @@ def shifted(x: Floats, moment: Floats, by: float) -> Floats:
     >>> shifted(np.array([0.0, 1.0, 2.0, 3.0]), np.array([0.0, 5.0, -1.0, -2.0]), 1.0)
     array([5., 5., 5., 0.])
     """
-    first = np.searchsorted(x, x - by - 1e-9)
-    last = np.searchsorted(x, x + by + 1e-9)
+    first = np.searchsorted(x, x - by - CLOSE)
+    last = np.searchsorted(x, x + by + CLOSE)
     found = [moment[low:high].max() for low, high in zip(first, last, strict=True)]
     return np.asarray(np.maximum(np.asarray(found), 0.0))
 
@@ -89,13 +91,13 @@ def top_zones(
     >>> top_zones(x, hogging, 10.0, 0.7)
     (TopZone(start=2.3, end=7.7, full_start=3.0, full_end=7.0),)
     """
-    over = hogging > through * (1 + 1e-9)
+    over = [not within(float(each), through) for each in hogging]
     zones: list[TopZone] = []
     for number in (int(each) for each in np.flatnonzero(over)):
         # the moment is below the resistance one place further on either side
         low, high = float(x[max(number - 1, 0)]), float(x[min(number + 1, len(x) - 1)])
-        start = max(round(math.floor((low - length) / rounding + 1e-9) * rounding, 9), 0.0)
-        end = min(round(math.ceil((high + length) / rounding - 1e-9) * rounding, 9), float(x[-1]))
+        start = max(round(math.floor(round((low - length) / rounding, 6)) * rounding, 9), 0.0)
+        end = min(round(math.ceil(round((high + length) / rounding, 6)) * rounding, 9), float(x[-1]))
         whole_start = 0.0 if start == 0.0 else round(start + length, 12)
         whole_end = float(x[-1]) if end == float(x[-1]) else round(end - length, 12)
         zone = TopZone(start, end, whole_start, whole_end)
@@ -151,5 +153,5 @@ def nearest(x: Floats, moment: Floats, resisted: Floats, hogging: bool) -> Worst
     Source: EN 1992-1-1:2004, 9.2.1.3(1)P: the line of resistance covers the shifted moments.
     """
     ratio = moment / resisted
-    number = int(np.argmax(ratio >= ratio.max() * (1 - 1e-9)))
+    number = int(np.argmax(np.round(ratio, 9)))
     return Worst(float(x[number]), float(moment[number]), float(resisted[number]), hogging)

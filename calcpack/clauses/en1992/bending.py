@@ -32,8 +32,8 @@ class Bending:
     moment: float
     strain: float
     stress: float
-    strain_2: float = 0.0
-    stress_2: float = 0.0
+    strain_2: float
+    stress_2: float
 
 
 def block_force(outline: Outline, strength: Strengths, x: float) -> tuple[float, float]:

@@ -27,7 +27,7 @@ CASES = {
     "overstressed": lambda: beam([6.0], 55.0, given=given(bottom=(12, "25 mm"), stirrups=(2, "10 mm", 0.15))),
     "tee": lambda: beam([6.0, 6.0], 40.0, outline=TEE, half=0.2,
                         given=given(bottom=(3, "25 mm"), top=(5, "25 mm"), stirrups=(2, "10 mm", 0.1))),
-    "web": lambda: beam([6.0], 60.0, outline=THIN, given=given(bottom=(5, "25 mm"), **STIRRUPS)),
+    "web": lambda: beam([6.0], 60.0, outline=THIN, given=given(bottom=(4, "25 mm"), **STIRRUPS)),
     "pressed tee": lambda: beam([6.0], 80.0, outline=THIN, given=given(bottom=(9, "25 mm"), **STIRRUPS)),
     "strong": lambda: beam([6.0], 60.0, strength=concrete(70.0), given=given(bottom=(5, "25 mm"), **STIRRUPS)),
     "high": lambda: beam([7.5], 60.0, strength=concrete(90.0, fctk_005=3500.0),
