@@ -23,7 +23,7 @@ CASES = {
     "narrow": lambda: beam([6.0], 30.0, 10.0, half=0.1, given=given(bottom=(4, "20 mm"), **STIRRUPS)),
     "far": lambda: beam([7.5], 9.0, cover=0.02, given=given(bottom=(2, "20 mm"), **STIRRUPS)),
     "lean": lambda: beam([6.0], 6.0, given=given(bottom=(2, "20 mm"), **STIRRUPS)),
-    "two layers": lambda: beam([6.0], 55.0, given=given(bottom=(7, "25 mm"), **STIRRUPS)),
+    "two layers": lambda: beam([6.0], 50.0, given=given(bottom=(6, "20 mm"), **STIRRUPS)),
     "overstressed": lambda: beam([6.0], 55.0, given=given(bottom=(12, "25 mm"), stirrups=(2, "10 mm", 0.15))),
     "tee": lambda: beam([6.0, 6.0], 40.0, outline=TEE, half=0.2,
                         given=given(bottom=(3, "25 mm"), top=(5, "25 mm"), stirrups=(2, "10 mm", 0.1))),
@@ -253,7 +253,10 @@ def test_the_cases_reach_every_branch():
     assert found("far").line("s_r,max,sag").cite.endswith("(7.14)")
     assert found("plain").line("s_r,max,sag").cite.endswith("(7.11)")
     assert found("lean").line("zeta").value == 0.0
-    assert found("web").has("F_f_sag") or found("web").has("F_f,sag")
+    assert found("web").has("F_f,sag")
+    assert found("web").has("S_f,sag")
+    assert found("two layers").design.bottom.bars.layers == (4, 2)
+    assert not found("two layers").design.bottom.doubly
     assert found("pressed tee").design.bottom.doubly
     assert found("overstressed").design.bottom.doubly
     assert found("stopped").design.zones
@@ -261,7 +264,4 @@ def test_the_cases_reach_every_branch():
     assert found("high").line("f_bd,e").value == pytest.approx(2.25 * 3.1 / 1.5)
     assert found("narrow").design.end.bent
     assert not found("plain").design.end.bent
-    assert (
-        "greatest" in str(found("outdone").line("cot theta").record)
-        or found("outdone").design.shear.cot == 1.0
-    )
+    assert str(found("outdone").line("cot theta").expression).count("Number(text='0')") == 1
