@@ -10,7 +10,7 @@ import pytest
 CLAUSES = Path(__file__).parents[2] / "calcpack" / "clauses"
 # Tables, words and lengths that no clause is about.
 OTHER = {"arranged", "candidates", "choose_bars", "rounded_down", "bound", "guard", "limit_words", "cite",
-         "bare", "shared", "psi", "take_stirrups", "segments"}  # fmt: skip
+         "bare", "shared", "psi", "take_stirrups", "segments", "within", "millimetres", "uniform"}  # fmt: skip
 
 
 def public(standard):
@@ -29,7 +29,7 @@ def figures(node):
 
 FUNCTIONS = [
     (standard, name, node)
-    for standard in ("aci318", "aisc360")
+    for standard in ("aci318", "aisc360", "en1992", "en1993")
     for name, node in public(standard)
     if node.args.args[:1] and node.args.args[0].arg != "self" and not node.name.startswith("_")
 ]

@@ -122,6 +122,8 @@ def merge(base: Mapping[str, Any], own: Mapping[str, Any]) -> dict[str, Any]:
     CalcpackError
         The set has a parameter that the standard does not leave open, or a value that is no number.
 
+    Source: EN 1992-1-1:2004 + AC:2010, foreword, National Annex.
+
     Examples
     --------
     >>> ours = {"name": "ours", "source": "office", "values": {"alpha_cc": {"value": 0.85}}}
