@@ -9,15 +9,13 @@ from calcpack.clauses.en1992.faces import Face
 from calcpack.clauses.en1992.national import STANDARD
 from calcpack.clauses.en1992.service import SpanDeflection
 from calcpack.clauses.en1992.write_bending import FaceLines, SizeLines
+from calcpack.clauses.en1992.write_deflection import limit_term, write_curvature, write_span_depth
 from calcpack.clauses.en1992.write_materials import StrengthLines, millimetres
 from calcpack.clauses.en1992.write_service import (
     ElasticLines,
-    limit_term,
     write_crack,
     write_cracked,
     write_creep,
-    write_curvature,
-    write_span_depth,
 )
 from calcpack.notebook.sections.concrete_en1992_figures import deflection_figure
 from calcpack.notebook.work import Work

@@ -16,9 +16,9 @@ from calcpack.clauses.en1992.write_bending import (
     write_most,
     write_spacing,
 )
+from calcpack.clauses.en1992.write_deflection import write_curvature, write_span_depth
 from calcpack.clauses.en1992.write_materials import StrengthLines, millimetres, write_strengths
-from calcpack.clauses.en1992.write_service import write_crack, write_cracked, write_creep, write_curvature
-from calcpack.clauses.en1992.write_service import write_span_depth as write_slenderness
+from calcpack.clauses.en1992.write_service import write_crack, write_cracked, write_creep
 from calcpack.clauses.en1992.write_shear import ShearLines, write_along, write_shear, write_stirrup_limits
 from calcpack.sheet import Line, Sheet
 
@@ -136,4 +136,4 @@ def _serve(result: Written, used: list[str]) -> None:
             part = design.case.spans[found.number]
             if part.overhang is (tag == "hog"):
                 span = sheet.take("L", part.length, "m", "Span", "grid", word=f"span {found.number}")
-                write_slenderness(sheet, lines, strength, found, span, result.line(f"M_Ed,{tag}"))
+                write_span_depth(sheet, lines, strength, found, span, result.line(f"M_Ed,{tag}"))
