@@ -10,6 +10,7 @@ from scipy.optimize import brentq
 
 from calcpack.clauses.aci318.limits import bound
 from calcpack.job.units import factor
+from calcpack.sheet.evaluation import holds
 
 PSI = factor("psi")  # [kPa]
 INCH = factor("inch")  # [m]
@@ -281,7 +282,7 @@ def stirrup_limits(fc: float, width: float, depth: float, carried: float) -> tup
     >>> round(along / INCH, 2), round(across / INCH, 2)
     (10.0, 20.0)
     """
-    if carried <= 4 * root(fc) * width * depth * (1 + 1e-9):
+    if holds("le", carried, 4 * root(fc) * width * depth):
         return min(depth / 2, 24 * INCH), min(depth, 24 * INCH)
     return min(depth / 4, 12 * INCH), min(depth / 2, 12 * INCH)
 

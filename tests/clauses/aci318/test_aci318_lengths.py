@@ -38,6 +38,8 @@ def test_confinement_counts_up_to_2_5():
     assert ratio.value == pytest.approx(2.5)
     # 3/40 x 60000 / 60 x 0.8 / 2.5 x 0.75 = 18 in
     assert found.length.value / 25.4 == pytest.approx(18.0)
+    number = development_length(0.75 * INCH, 3600 * PSI, 60 * KSI, 3.0, top=False, small=True)
+    assert number / INCH == pytest.approx(18.0)
 
 
 def test_half_the_distance_of_close_bars_confines_less():

@@ -6,7 +6,7 @@ from aci_samples import KSI, PSI, begin, bounded
 from calcpack.clauses.aci318.flange import Wing, state_flange, state_given_flange, wing_width
 from calcpack.clauses.aci318.limits import LIMITS, bound, guard, limit_words
 from calcpack.clauses.aci318.materials import root, shared, state_materials
-from calcpack.clauses.aci318.strength import beta_1, grade_factor, phi_bending
+from calcpack.clauses.aci318.strength import Block, beta_1, grade_factor, phi_bending
 from calcpack.clauses.aci318.strength import root as root_of
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Material
@@ -163,3 +163,12 @@ def test_a_given_width_is_no_more_than_what_acts(most, passes):
     line = sheet.take("b_max", most * 25.4, "mm", "", "test")
     ((name, found),) = state_given_flange(sheet, size, line)
     assert (name, found.passes) == ("flange width", passes)
+
+
+def test_a_block_has_a_flange_where_it_is_given_a_depth():
+    """A face of 600 mm over a web of 300 mm, 5 mm deep: 0.3 x 0.1 + 0.3 x 0.005 m2; with no depth a rectangle."""
+    assert Block(0.6, 0.3, 0.005).flanged
+    assert Block(0.6, 0.3, 0.005).area(0.1) == pytest.approx(0.0315)
+    assert not Block(0.6, 0.3).flanged
+    assert Block(0.6, 0.3).area(0.1) == pytest.approx(0.03)
+    assert not Block(0.3, 0.3, 0.1).flanged

@@ -135,6 +135,15 @@ def test_bending_of_a_simple_beam_by_hand():
     assert asd.bending[0].available == pytest.approx(nominal / 1.67)
 
 
+def test_a_small_moment_has_its_sense_as_well():
+    """1.4 x 0.001 kN/m on 6 m: 0.0063 kNm, sagging."""
+    load = LoadSet("dead", (LineLoad(0, 6, 0.001, 0.001),))
+    analysed = analyse_beam(BeamLine(6.0, (0.0, 6.0)), [load], [ONLY_DEAD], STIFFNESS)
+    (check,) = design(Demands(analysed, (SpanOf(0, 0.0, 6.0, True),), ())).bending
+    assert check.demand == pytest.approx(0.0063)
+    assert check.sagging
+
+
 def test_a_cantilever_has_no_diagram_factor():
     check = next(each for each in design(two_spans(overhang=2.0)).bending if each.segment.free)
     assert (check.diagram_factor, check.segment.unbraced, check.sagging) == (1.0, 2.0, False)

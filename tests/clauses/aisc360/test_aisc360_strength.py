@@ -205,6 +205,8 @@ def test_diagram_factor_by_hand():
     assert strength.diagram_factor(moments(2, -5, 8, 10)) == pytest.approx(125 / 75)
     assert strength.diagram_factor(moments(0, 0, 0, 0)) == 1.0
     assert strength.diagram_factor(moments(10, 10, 10, 10)) == 1.0
+    # a moment so small: 12.5 x 0.008 / (0.02 + 3 x 0.004 + 4 x 0.008 + 3 x 0.004) = 0.1 / 0.076
+    assert strength.diagram_factor(moments(0.004, 0.008, 0.004, 0.008)) == pytest.approx(100 / 76)
     # the smaller sense: 12.5 x 6 / (15 + 6 + 20 + 24) = 75 / 65, and never below 1
     assert strength.diagram_factor(moments(2, -5, 8, 10), 6.0) == pytest.approx(75 / 65)
     assert strength.diagram_factor(moments(2, -5, 8, 10), 1.0) == 1.0
