@@ -13,6 +13,7 @@ from typing import Any
 import calcpack
 from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.copies import audit_copies
+from calcpack.record.auditing.decisive import decisive_line
 from calcpack.record.auditing.files import SheetFiles, Target, find_target
 from calcpack.record.auditing.findings import Audit, Finding, SheetAudit, unchecked
 from calcpack.record.auditing.given import Given, Notebook, read_notebook
@@ -159,7 +160,8 @@ def _audited_sheet(
         digest = digest_of(record, given, stated)
     except (KeyError, TypeError, ValueError):
         digest = Digest(record.mark, record.data["job"], stated)
-    return SheetAudit(record.mark, tuple(findings), record.data["job"]), digest
+    decisive = decisive_line(record, lines)
+    return SheetAudit(record.mark, tuple(findings), record.data["job"], decisive), digest
 
 
 def audit_target(

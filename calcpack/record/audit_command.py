@@ -89,7 +89,7 @@ def _influences(asked: Asked, mark: str, console: Console) -> None:
     found = sensitivity(opened.record, opened.lines)
     rows = [(each.line, each.relative, each.derivative) for each in found.influences[:MOST_ROWS]]
     units = {each.line.no: _per(found.unit, each.line.unit) for each in found.influences}
-    title = f"Sheet {opened.record.mark}: what moves the {found.says}, {found.shown}"
+    title = f"What moves line {found.no} of sheet {opened.record.mark}: {found.says}, {found.shown}"
     print_influence(title, rows, console, units)
     if asked.svg is not None:
         from calcpack.record.audit_figure import influence_figure

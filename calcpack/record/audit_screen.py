@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import shlex
 from collections.abc import Iterator, Mapping, Sequence
 
 from rich.console import Console
@@ -15,6 +16,7 @@ from calcpack.record.auditing.reading import RecordLine
 
 COLUMNS = ("line", "says", "printed", "recomputed", "difference", "verdict")
 ELSEWHERE = "files together"
+MOST_DECISIVE = 12
 MOST_WRONG = 60  # rows shown unless all are asked for
 
 
@@ -44,6 +46,7 @@ def print_audit(audit: Audit, console: Console, *, every: bool = False) -> None:
         for sheet in audit.all:
             _print_all(sheet, console)
     _print_summary(audit, console)
+    _print_decisive(audit, console)
     _print_wrong(audit, console, None if every else MOST_WRONG)
     _print_open(audit, console)
     wrong = sum(len(sheet.wrong) for sheet in audit.all)
@@ -53,6 +56,49 @@ def print_audit(audit: Audit, console: Console, *, every: bool = False) -> None:
         console.print(Text(f"{wrong} of {checked} figures looked at are wrong.", style="bold"))
     else:
         console.print(Text(f"{checked} figures looked at, none is wrong.", style="bold"))
+    _print_next(audit, console)
+
+
+def decisive_rows(audit: Audit) -> list[list[str]]:
+    """What decides on each sheet, the highest ratio first: sheet, line, words, value."""
+    found = [sheet.decisive for sheet in audit.sheets if sheet.decisive is not None]
+    found.sort(key=lambda each: -1.0 if each.ratio is None else each.ratio, reverse=True)
+    return [[each.mark, each.no, each.says, each.shown] for each in found]
+
+
+def _print_decisive(audit: Audit, console: Console) -> None:
+    rows = decisive_rows(audit)
+    if not rows:
+        return
+    console.print()
+    table = _table(
+        "What decides", ["sheet", "line", "the governing check, else the largest moment", "is"], ["is"]
+    )
+    for row in rows[:MOST_DECISIVE]:
+        _row(table, row)
+    console.print(table)
+    if len(rows) > MOST_DECISIVE:
+        console.print(Text(f"... and {len(rows) - MOST_DECISIVE} more sheets with less."))
+
+
+def _print_next(audit: Audit, console: Console) -> None:
+    """The commands that lead on from here, made out for the sheet that is nearest to its limit."""
+    rows = decisive_rows(audit)
+    if not rows:
+        return
+    mark, no, *_ = rows[0]
+    begin = f"calcpack audit {shlex.quote(audit.target)}"
+    asked = f" --sheet {shlex.quote(mark)}" if len(audit.sheets) > 1 else ""
+    ways = {
+        f"{begin}{asked} --trace {no}": f"where line {no} of sheet {mark} comes from, down to the job file",
+        f"{begin} --sensitivity {shlex.quote(mark)}": "which given values move it most",
+        f"{begin}{asked} --who-uses LINE": "what rests on one of them",
+    }
+    console.print()
+    table = _table("To go on", ["command", "shows"])
+    for command, shows in ways.items():
+        _row(table, [command, shows])
+    console.print(table)
 
 
 def summary_rows(audit: Audit) -> tuple[list[str], list[list[str]]]:

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from calcpack.job.errors import CalcpackError
+from calcpack.record.auditing.decisive import decisive_line
 from calcpack.record.auditing.formulas import CONTEXT, Value, evaluate, factor, measured
 from calcpack.record.auditing.lines import WorkedLine
 from calcpack.record.auditing.reading import Record, RecordLine
@@ -14,7 +15,6 @@ from calcpack.record.auditing.units import unit
 
 _STEP = CONTEXT.mpf(10) ** -12  # of the value; in thirty digits twelve are left
 MOST_ROWS = 12
-_MOMENT = "M_max"  # the design moment's line on a load sheet
 
 
 @dataclass(frozen=True)
@@ -42,6 +42,8 @@ class Sensitivity:
 
     Parameters
     ----------
+    no : str
+        Number of the result's line.
     says : str
         The result, in words.
     shown : str
@@ -51,6 +53,7 @@ class Sensitivity:
         Those that move it at all, the strongest first.
     """
 
+    no: str
     says: str
     shown: str
     unit: str
@@ -58,7 +61,7 @@ class Sensitivity:
 
 
 def sensitivity(record: Record, lines: Sequence[WorkedLine]) -> Sensitivity:
-    """Differentiate the governing ratio, or on a load sheet the design moment, by every given value.
+    """Differentiate what decides on a sheet (the governing ratio, else the largest moment) by what is given.
 
     Parameters
     ----------
@@ -72,11 +75,18 @@ def sensitivity(record: Record, lines: Sequence[WorkedLine]) -> Sensitivity:
     Raises
     ------
     CalcpackError
-        The sheet has neither a governing check nor a line of the design moment, or a line at fault.
+        The sheet has nothing that decides, or a line at fault.
     """
     if faulty := [line.line.no for line in lines if line.faults]:
         raise CalcpackError(f"line {faulty[0]} is wrong: what rests on it says nothing", file=record.name)
-    target, says, shown = _target(record, lines)
+    decisive = decisive_line(record, lines)
+    if decisive is None:
+        raise CalcpackError(
+            f"sheet {record.mark} has no check, no moment and no load that anything could move"
+        )
+    target = next(line for line in lines if line.line.no == decisive.no)
+    kind = "" if decisive.ratio is None else "ratio of the governing check, "
+    says = f"{kind}{decisive.says}"
     of = "1" if target.line.kind == "require" else target.line.unit
     behind = _behind(lines, target.line.no)
     exact = _carried(behind, {})
@@ -99,45 +109,11 @@ def sensitivity(record: Record, lines: Sequence[WorkedLine]) -> Sensitivity:
         derivative = float(rate * factor(line.unit) / factor(of))
         found.append(Influence(line, relative, derivative))
     found.sort(key=lambda each: (-abs(each.relative), each.line.rank))
-    return Sensitivity(says, shown, of, tuple(found))
+    return Sensitivity(decisive.no, says, decisive.shown, of, tuple(found))
 
 
 def _moved(value: Value, step: Any) -> Value:
     return Value(value.size + step, value.slack, value.force, value.length)
-
-
-def _target(record: Record, lines: Sequence[WorkedLine]) -> tuple[WorkedLine, str, str]:
-    """The requirement behind the governing check; else the line of the design moment."""
-    governing = record.results.get("governing")
-    checks = record.results.get("checks")
-    if isinstance(governing, dict) and isinstance(checks, list):
-        named = [
-            each for each in checks if isinstance(each, dict) and each.get("name") == governing.get("name")
-        ]
-        for check in named:
-            for line in lines:
-                if line.sides is not None and _is_of(line, check):
-                    name, ratio = str(check["name"]), float(check["ratio"])
-                    return line, f"ratio of the governing check, {name} (line {line.line.no})", f"{ratio:.4g}"
-    for line in lines:
-        if line.line.kind == "hence" and line.line.symbol == _MOMENT:
-            return line, f"{line.line.says} (line {line.line.no})", line.line.shown
-    raise CalcpackError(
-        f"sheet {record.mark} has no check that governs and no line of the design moment",
-        remedy="ask for a sheet with a strength template, or of a beam on two supports",
-    )
-
-
-def _is_of(line: WorkedLine, check: Mapping[str, Any]) -> bool:
-    assert line.sides is not None
-    try:
-        size = float(factor(str(check["unit"])))
-        stated = sorted((float(check["demand"]) * size, float(check["capacity"]) * size))
-    except (KeyError, TypeError, ValueError):
-        return False
-    sides = sorted(float(each.size) for each in line.sides)
-    close = all(abs(a - b) <= 1e-9 * max(abs(a), abs(b)) for a, b in zip(stated, sides, strict=True))
-    return close and line.line.cite == check.get("cite")
 
 
 def _behind(lines: Sequence[WorkedLine], no: str) -> list[WorkedLine]:

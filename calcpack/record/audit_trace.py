@@ -9,9 +9,12 @@ from dataclasses import dataclass, field
 from typing import Any
 
 from calcpack.job.errors import CalcpackError, nearest
+from calcpack.record.auditing.formulas import read_formula
 from calcpack.record.auditing.reading import Record, RecordLine
+from calcpack.record.auditing.written import written
 
 MOST = 2_000  # branches of a tree
+LONGEST = 60  # letters of a formula in it
 
 
 @dataclass
@@ -47,8 +50,20 @@ def _line_of(record: Record, asked: str) -> RecordLine:
 
 
 def _branch(line: RecordLine) -> Branch:
-    value = f"{line.symbol} = {line.shown}" if line.symbol else line.shown
+    formula = "" if line.kind == "take" else _formula(line)
+    if line.kind == "require":
+        value = f"{formula}: {line.shown}"
+    elif formula:
+        value = f"{line.symbol} = {formula} = {line.shown}"
+    else:
+        value = f"{line.symbol} = {line.shown}"
     return Branch(f"{line.no}  {value}", line.says, line.origin or line.cite)
+
+
+def _formula(line: RecordLine) -> str:
+    """The stored formula as text; one too long for a row is left out."""
+    text = written(read_formula(line.expression))
+    return text if len(text) <= LONGEST else "…"
 
 
 def trace(record: Record, asked: str, job: Mapping[str, Any] | None = None) -> Branch:

@@ -100,7 +100,7 @@ def issue(out: Path, purpose: str, now: datetime.datetime, record: Path | None =
             signatures=tuple(map(_entered, ready.signatures)),
             before=entries[-1].hash if entries else "0" * 64,
         )
-        register.append(entry)
+        register.append(entries, entry)
     return Issued(entry, register, False, tuple(notes))
 
 

@@ -1,13 +1,16 @@
 """The register of what was issued: one line an entry, each carrying the hash of the one before.
 
 ``record/register.jsonl`` is read and written as a whole through a file renamed into place, so that no reader
-ever finds half an entry; ``record/files`` holds every issued file under its own SHA-256.
+ever finds half an entry; ``record/files`` holds every issued file under its own SHA-256, and
+``record/entries`` each entry once more in a read-only file of its own, so that entries cut off at the end of
+the list are missed.
 """
 
 from __future__ import annotations
 
 import json
 import os
+import re
 from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 from pathlib import Path
@@ -21,6 +24,8 @@ from calcpack.record.revisions import backwards
 
 REGISTER = "register.jsonl"
 FILES = "files"
+SLIPS = "entries"
+_SLIP = re.compile(r"([0-9]{4,})\.json")
 _LOCK = ".lock"
 _START = "0" * 64
 
@@ -113,6 +118,7 @@ class Register:
             The register cannot be read, or is not as it was written.
         """
         found, problems = self.read()
+        problems = problems or self._slip_problems(found)
         if problems:
             raise CalcpackError(problems[0], file=str(self.file), remedy="see 'calcpack register --check'")
         return found
@@ -141,6 +147,41 @@ class Register:
             found.append(entry)
             before = entry.hash
         return tuple(found), ()
+
+    def slip(self, no: int) -> Path:
+        """Where an entry stands once more by itself."""
+        return self.folder / SLIPS / f"{no:04}.json"
+
+    def _slip_problems(self, entries: Sequence[Entry]) -> tuple[str, ...]:
+        """Entries that stand by themselves and are missing from the list, or are others there."""
+        folder = self.folder / SLIPS
+        numbers = sorted(
+            int(match[1])
+            for path in folder.glob("*.json")
+            if (match := _SLIP.fullmatch(path.name)) is not None
+        )
+        problems = []
+        for no in numbers:
+            try:
+                kept = self.slip(no).read_bytes()
+            except OSError as error:
+                problems.append(f"'{self.slip(no)}' cannot be read: {error.strerror}")
+                continue
+            if no > len(entries):
+                problems.append(f"entry {no} was issued and is missing: the end of the register was cut off")
+            elif no < 1 or kept != entries[no - 1].line:
+                problems.append(f"entry {no} is another than '{SLIPS}/{self.slip(no).name}' says")
+        return tuple(problems)
+
+    def _write_slips(self, entries: Sequence[Entry]) -> None:
+        """Put every entry by itself; those of an issue that was interrupted as well."""
+        missing = [entry for entry in entries if not self.slip(entry.no).exists()]
+        (self.folder / SLIPS).mkdir(exist_ok=True)
+        for entry in missing:
+            write_file(self.slip(entry.no), entry.line)
+            os.chmod(self.slip(entry.no), 0o444)
+        if missing:
+            sync_folder(self.folder / SLIPS)
 
     @contextmanager
     def held(self) -> Iterator[None]:
@@ -180,12 +221,17 @@ class Register:
         os.chmod(path, 0o444)
         return sha256
 
-    def append(self, entry: Entry) -> None:
-        """Add an entry; to be called while the register is held."""
+    def append(self, entries: Sequence[Entry], entry: Entry) -> None:
+        """Add an entry to those there are; to be called while the register is held.
+
+        The list comes first: an interruption leaves an entry without its slip, which the next issue writes,
+        never a slip without its entry.
+        """
         sync_folder(self.folder / FILES)
         data = self.file.read_bytes() if self.file.exists() else b""
         write_file(self.file, data + entry.line)
         sync_folder(self.folder)
+        self._write_slips([*entries, entry])
 
     def files_of(self, entry: Entry) -> dict[str, str]:
         """Name -> SHA-256 of the files of an entry.
@@ -214,7 +260,7 @@ class Register:
             What is wrong; what is to be noted.
         """
         entries, wrong = self.read()
-        problems = list(wrong)
+        problems = [*wrong, *(self._slip_problems(entries) if not wrong else ())]
         named: set[str] = set()
         issued: dict[str, list[str]] = {}
         for entry in entries:
@@ -239,7 +285,13 @@ class Register:
                     problems.append(f"entry {entry.no}: '{name}' is missing")
                 elif digest(path.read_bytes()) != sha256:
                     problems.append(f"entry {entry.no}: '{name}' was changed")
-        return tuple(problems), self._left_over(named)
+        return tuple(problems), (*self._without_slip(entries), *self._left_over(named))
+
+    def _without_slip(self, entries: Sequence[Entry]) -> tuple[str, ...]:
+        without = [str(entry.no) for entry in entries if not self.slip(entry.no).exists()]
+        if not without:
+            return ()
+        return (f"not in '{SLIPS}' yet, the next issue puts them there: entry {', '.join(without)}",)
 
     def _left_over(self, named: set[str]) -> tuple[str, ...]:
         folder = self.folder / FILES
@@ -266,7 +318,7 @@ def open_register(folder: Path | None) -> Register:
         There is none.
     """
     register = Register(folder or Path("record"))
-    if not register.file.is_file():
+    if not register.file.is_file() and not register.slip(1).is_file():
         raise CalcpackError(
             f"'{register.folder}' holds no register", remedy="name its folder with --record, or issue a pack"
         )

@@ -30,6 +30,8 @@ from calcpack.record.statement import statement_of
 NOW = datetime.datetime(2026, 12, 1, 9, 5, tzinfo=datetime.UTC)
 DAY = datetime.timedelta(days=1)
 PASSPHRASE = "correct horse"
+# How often each of signing, issuing and building is killed; CALCPACK_KILLS=50 for a long look.
+KILLS = int(os.environ.get("CALCPACK_KILLS", "8"))
 KIOSK = """\
 format = 1
 [job]

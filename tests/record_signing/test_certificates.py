@@ -286,7 +286,9 @@ MODULE = next((module for module in MODULES if Path(module).is_file()), None)
 
 
 def test_a_token(pack, tmp_path, monkeypatch):
-    pkcs11 = pytest.importorskip("pkcs11")
+    pkcs11 = pytest.importorskip(
+        "pkcs11", reason="python-pkcs11 is not installed: pip install 'calcpack[token]'"
+    )
     if MODULE is None or shutil.which("softhsm2-util") is None:
         pytest.skip("SoftHSM, a token in software, is not installed")
     (tmp_path / "tokens").mkdir()

@@ -251,7 +251,7 @@ def test_killed_while_building(tmp_path, revisions):
     chance, job = random.Random(2), revisions["A"].parent / "jobA" / "job.toml"
     out = tmp_path / "out"
     killed = 0
-    for _ in range(2):
+    for _ in range(packs.KILLS // 2):
         child = packs.FRESH.Process(target=packs.build_pages, args=(str(job), str(out)))
         child.start()
         child.join(chance.uniform(0.4, 0.95) * revisions["seconds"])

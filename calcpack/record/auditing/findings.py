@@ -77,12 +77,42 @@ def good(group: str, place: str, says: str = "") -> Finding:
 
 
 @dataclass(frozen=True)
+class Decisive:
+    """What decides on a sheet.
+
+    Parameters
+    ----------
+    mark : str
+        The sheet's.
+    no : str
+        Number of the line.
+    says : str
+        "bending", "largest moment".
+    shown : str
+        A ratio, or the line's printed value.
+    ratio : float or None
+        Demand over capacity; None on a sheet without checks.
+    """
+
+    mark: str
+    no: str
+    says: str
+    shown: str
+    ratio: float | None = None
+
+    def data(self) -> dict[str, object]:
+        """As plain data."""
+        return {"line": self.no, "says": self.says, "shown": self.shown, "ratio": self.ratio}
+
+
+@dataclass(frozen=True)
 class SheetAudit:
     """All that was found on one sheet, or, under the mark "", on the files of the pack together."""
 
     mark: str
     findings: tuple[Finding, ...]
     header: Mapping[str, Any] = field(default_factory=dict)  # its title block, as stated
+    decisive: Decisive | None = None
 
     @property
     def wrong(self) -> tuple[Finding, ...]:
@@ -112,6 +142,7 @@ class SheetAudit:
             "revision": str(self.header.get("revision", "")),
             "wrong": len(self.wrong),
             "not_checkable": len(self.open),
+            "decisive": None if self.decisive is None else self.decisive.data(),
             "findings": [each.data() for each in self.findings],
         }
 
