@@ -106,6 +106,7 @@ def _as_data(signature: SignatureReport) -> dict[str, Any]:
         "damage": list(signature.damage),
         "trusted": not signature.damage and not signature.doubt,
         "doubt": signature.doubt,
+        "comments": list(signature.comments),
     }
 
 
@@ -185,7 +186,14 @@ def _integrity(signatures: tuple[SignatureReport, ...], stamps: tuple[str, ...])
     broken += stamps
     if broken:
         return [Finding("integrity", False, text) for text in broken]
-    return [Finding("integrity", True, "unchanged since it was signed")]
+    comments = dict.fromkeys(text for each in signatures for text in each.comments)
+    says = (
+        "nothing but comments was added since it was signed" if comments else "unchanged since it was signed"
+    )
+    return [
+        Finding("integrity", True, says),
+        *(Finding("comment", None, f"not part of what was signed: {text}") for text in comments),
+    ]
 
 
 def _people(statement: Statement | None, signatures: tuple[SignatureReport, ...]) -> list[Finding]:

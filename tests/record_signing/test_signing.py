@@ -98,6 +98,72 @@ def test_markup_is_left_possible_where_the_job_wants_it(tmp_path, people):
     assert root["/Perms"]["/DocMDP"]["/Reference"][0]["/TransformParams"]["/P"] == 3
 
 
+def commented(pack, *, more=None, **entries):
+    """A reviewer's comment put on the cover, and whatever else is done in the same go."""
+    update = Update(pack.read_bytes())
+    page = update.find_page_for_modification(0)[0].get_object()
+    comment = generic.DictionaryObject(
+        {
+            name("Type"): name("Annot"),
+            name("Subtype"): name("Text"),
+            name("Rect"): generic.ArrayObject(map(generic.FloatObject, (50, 50, 70, 70))),
+            name("Contents"): generic.TextStringObject("Please show line 4.02"),
+            **{name(key): value for key, value in entries.items()},
+        }
+    )
+    page["/Annots"].append(update.add_object(comment))
+    update.update_container(page["/Annots"])
+    if more is not None:
+        more(update, page)
+    pack.write_bytes(update.bytes())
+
+
+def drawn_over(update, page):
+    page[name("Contents")] = update.add_object(generic.StreamObject(stream_data=b"0 0 400 400 re f"))
+    update.update_container(page)
+
+
+def comment_taken_away(update, page):
+    del page["/Annots"][0]
+
+
+@pytest.mark.parametrize("markup", [True, False])
+def test_a_reviewers_comment_is_said_in_words(tmp_path, people, markup):
+    pack = packs.out_folder(tmp_path / "out", level="self", markup=markup) / "pack.pdf"
+    sign_file(pack, packs.signing("prepared", people[0]))
+    commented(pack)
+    report = verify_file(pack, packs.trust(*people))
+    comment = "page 1: 'Please show line 4.02'"
+    if markup:
+        assert report.passes
+        assert [finding.says for finding in report.findings][:2] == [
+            "nothing but comments was added since it was signed",
+            f"not part of what was signed: {comment}",
+        ]
+        sign_file(pack, packs.signing("checked", people[1]))
+        assert verify_file(pack, packs.trust(*people)).passes
+    else:
+        assert not report.passes
+        assert f"a comment was put into the file after it, and it allows none: {comment}" in says(report)[0]
+
+
+@pytest.mark.parametrize(
+    "how",
+    [
+        {"more": drawn_over},
+        {"more": comment_taken_away},
+        {"A": generic.DictionaryObject({name("S"): name("Launch")})},
+        {"Subtype": name("FileAttachment")},
+    ],
+)
+def test_a_comment_hides_no_other_change(tmp_path, people, how):
+    pack = packs.out_folder(tmp_path / "out", level="self", markup=True) / "pack.pdf"
+    sign_file(pack, packs.signing("prepared", people[0]))
+    commented(pack, **how)
+    report = verify_file(pack, packs.trust(*people))
+    assert "changed after it in a way it does not allow" in says(report)[0]
+
+
 def test_still_an_archival_and_accessible_file(signed):
     reader = pypdf.PdfReader(signed)
     root = reader.trailer["/Root"]
