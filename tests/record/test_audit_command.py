@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import json
+import re
+import shlex
 import shutil
 import sys
 import time
@@ -216,10 +218,59 @@ def governing(opened):
     return next(each for each in results["checks"] if each["name"] == results["governing"]["name"])
 
 
-def test_a_sheet_without_a_result_to_move_says_so(loft):
+def test_a_load_sheet_is_moved_by_its_largest_moment_or_load(loft):
     opened = one_sheet(loft, "B1")
-    with pytest.raises(CalcpackError, match="no check that governs"):
+    found = sensitivity(opened.record, opened.lines)
+    line = next(each for each in opened.record.lines if each.no == found.no)
+    assert line.symbol.startswith("M")
+    assert found.shown == line.shown
+    assert not [
+        each.no
+        for each in opened.record.lines
+        if each.symbol.startswith("M") and each.unit == line.unit and abs(each.value) > abs(line.value)
+    ]
+    # the moment of a uniform load goes with the square of the span; the joist's load stays in the middle
+    span = next(each for each in found.influences if each.line.symbol == "ell_1")
+    assert 1.0 < span.relative <= 2.0
+    # B2 carries its shear equivalent forward: no line works out a moment, all the load on it decides
+    opened = one_sheet(loft, "B2")
+    found = sensitivity(opened.record, opened.lines)
+    assert next(each for each in opened.record.lines if each.no == found.no).symbol == "W_g"
+    joist = next(each for each in found.influences if each.line.symbol.startswith("F_"))
+    assert joist.derivative == pytest.approx(1.0, rel=1e-9)
+
+
+def test_a_sheet_without_lines_has_nothing_to_move(loft, tmp_path):
+    folder = edited(loft, tmp_path, lambda data: data.update(lines=[]))
+    opened = one_sheet(folder, "B1")
+    with pytest.raises(CalcpackError, match="no check, no moment and no load"):
         sensitivity(opened.record, opened.lines)
+
+
+def test_from_a_pdf_alone_to_the_governing_line_in_three_commands(loft, tmp_path, monkeypatch, capsys):
+    monkeypatch.chdir(tmp_path)
+    monkeypatch.setenv("COLUMNS", "200")
+    shutil.copy(loft / "sheets" / "J1.pdf", "my sheet.pdf")
+    status, out, _ = run(monkeypatch, capsys, "audit", "my sheet.pdf")
+    assert status == 0
+    ways = [shlex.split(row.split("  ")[0]) for row in out.splitlines() if row.startswith("calcpack audit")]
+    assert [way[:3] for way in ways] == [["calcpack", "audit", "my sheet.pdf"]] * 3
+    decisive = next(row.split() for row in out.split("What decides")[1].splitlines() if row.startswith("J1"))
+    record = json.loads((loft / "sheets" / "J1.json").read_bytes())
+    line = next(each for each in record["lines"] if each["no"] == decisive[1])
+    assert line["kind"] == "require"
+    assert float(decisive[-1]) == pytest.approx(record["results"]["governing"]["ratio"], abs=5e-4)
+    status, out, _ = run(monkeypatch, capsys, *ways[0][1:])
+    assert status == 0
+    assert out.startswith(f"{line['no']}  ")
+    assert " ≤ " in out.splitlines()[0]
+    status, out, _ = run(monkeypatch, capsys, *ways[1][1:])
+    assert status == 0
+    assert f"What moves line {line['no']} of sheet J1" in out
+    given = next(row.split()[0] for row in out.splitlines() if re.match(r"[0-9]+\.[0-9]+ ", row))
+    status, out, _ = run(monkeypatch, capsys, *ways[2][1:-1], given)
+    assert status == 0
+    assert line["no"] in out
 
 
 @pytest.fixture
