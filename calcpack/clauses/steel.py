@@ -108,7 +108,7 @@ def i_section(section: Section) -> ISection:
     clear, apart = d - 2 * tf, d - tf
     # a fillet: a square of side r less a quarter circle
     fillet = (1 - math.pi / 4) * r**2
-    from_corner = r * (10 - 3 * math.pi) / (12 - 3 * math.pi) if r else 0.0
+    from_corner = r * (10 - 3 * math.pi) / (12 - 3 * math.pi)
     own = (1 / 3 - math.pi / 16 - 1 / (9 * (4 - math.pi))) * r**4
     weak = (2 * tf * b**3 + clear * tw**3) / 12 + 4 * (own + fillet * (tw / 2 + from_corner) ** 2)
     plastic = b * tf * apart + tw * clear**2 / 4 + 4 * fillet * (clear / 2 - from_corner)

@@ -1,15 +1,17 @@
-"""Constants of I-sections: fillets integrated strip by strip, torsion worked by hand from the two fits."""
+"""I-sections: fillets integrated strip by strip, torsion by hand from the two fits; stretches of diagrams."""
 
 from __future__ import annotations
 
 import itertools
 import math
 
+import numpy as np
 import pytest
 from scipy.integrate import quad
 
-from calcpack.clauses.steel import i_section, torsion_constant
+from calcpack.clauses.steel import held_points, i_section, segment_moments, stretch, torsion_constant
 from calcpack.job.library import rolled_sections
+from calcpack.statics import Curve
 
 # Fillets so large that none of their terms is lost beside flanges and web [m]
 DEPTH, WIDTH, WEB, FLANGE, RADIUS = 0.200, 0.180, 0.010, 0.012, 0.060
@@ -90,3 +92,23 @@ def test_without_fillets():
     found = i_section(made_up(root_radius=0.0))
     assert found.plastic_modulus == pytest.approx(483_520e-9)
     assert found.weak_inertia == pytest.approx((2 * 12 * 180**3 + 176 * 10**3) / 12 * 1e-12)
+
+
+def test_a_stretch_far_from_the_start():
+    """2 up to 100 m, from there 5 + 3 (x - 100)."""
+    curve = Curve(np.array([0.0, 100.0, 101.0]), np.array([[2.0, 0.0], [5.0, 3.0]]))
+    part = stretch(curve, 100.0, 101.0)
+    assert (part.at(100.0), part.at(101.0)) == pytest.approx((5.0, 8.0))
+    assert stretch(curve, 10.0, 99.0).largest.value == pytest.approx(2.0)
+
+
+def test_a_stretch_that_only_sags_or_only_hogs():
+    """6 + x and its opposite on 2 m: nothing of the other sense."""
+    for sign in (1.0, -1.0):
+        found = segment_moments(Curve(np.array([0.0, 2.0]), sign * np.array([[6.0, 1.0]])), 0.0, 2.0)
+        assert (found.sagging.value, found.hogging.value) == ((8.0, 0.0) if sign > 0 else (0.0, -8.0))
+        assert found.largest.value == sign * 8.0
+
+
+def test_points_held_close_together():
+    assert held_points(0.0, 0.02, every=0.005) == pytest.approx([0.0, 0.005, 0.01, 0.015, 0.02])
