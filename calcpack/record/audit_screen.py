@@ -166,7 +166,11 @@ def open_rows(audit: Audit) -> list[tuple[str, str]]:
 def _what(finding: Finding) -> str:
     if not finding.place.startswith("lines "):
         return finding.place
-    return "values brought in from outside the job" if finding.says.startswith("brought") else finding.says
+    return (
+        "values that neither job nor results hold (--all lists them)"
+        if finding.says.startswith("brought")
+        else finding.says
+    )
 
 
 def _listed(marks: Sequence[str]) -> str:

@@ -147,7 +147,8 @@ def audit_origins(record: Record, given: Given | None, lines: Sequence[WorkedLin
                 "lines " + ", ".join(each.no for each in outside),
                 "brought in from: " + ", ".join(origins),
                 verdict=Verdict.OPEN,
-                remark="neither the job nor the results name a figure to hold them against",
+                remark="a clause recommends them or the template chose them: no file says what they "
+                "should be; each stands on the sheet with where it comes from, for its reader to judge",
             )
         )
     findings += _handed_on(record, given, lines)
@@ -219,7 +220,7 @@ def _handed_on(record: Record, given: Given, lines: Sequence[WorkedLine]) -> Ite
             "lines " + ", ".join(loose),
             "figures of the analysis inside their formulas",
             verdict=Verdict.OPEN,
-            remark="no result has them: they are held against what the notebook shows, as far as printed",
+            remark="the record holds no such result: they are held against the notebook, to the digits it shows",
         )
 
 

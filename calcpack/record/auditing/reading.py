@@ -105,7 +105,7 @@ def read_json(content: bytes, name: str, largest: int = LARGEST_RECORD) -> Any:
     try:
         text = content.decode("utf-8")
         data = json.loads(text, object_pairs_hook=once, parse_float=finite, parse_constant=finite)
-        if "\\ud" in text.lower():  # half of a letter is no text that a file can hold
+        if "\\ud" in text or "\\uD" in text:  # half of a letter is no text that a file can hold
             json.dumps(data, ensure_ascii=False).encode("utf-8")
         return data
     except (ValueError, RecursionError):
