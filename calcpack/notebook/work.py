@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Hashable, Sequence
 from dataclasses import dataclass, field
 from functools import cached_property
-from typing import Any
+from typing import Any, Literal, NamedTuple
 
 from calcpack.equivalent import Shape, shape_of
 from calcpack.framing.types import EdgeShare, PanelTransfer
@@ -62,11 +62,35 @@ def summed(terms: Sequence[Expression | Line]) -> Expression | Line:
     return total(terms) if len(terms) > 1 else terms[0]
 
 
+class StatedDeflection(NamedTuple):
+    """A deflection of a beam's design, stated everywhere in place of the elastic one.
+
+    Parameters
+    ----------
+    key : "total_mm" or "live_mm"
+        Its field in the results.
+    says : str
+        "deflection, final".
+    at : float [m]
+        From the beam's start.
+    under : str
+        What it holds: "G + 0.6 Q, creep and shrinkage".
+    line : Line [mm]
+    """
+
+    key: Literal["total_mm", "live_mm"]
+    says: str
+    at: float
+    under: str
+    line: Line
+
+
 @dataclass
 class Work:
     """What the sections of a sheet share.
 
-    ``lines`` keeps the lines that later sections draw on, under a key that says what they are:
+    ``deflections`` are those of a design that works out a cracked beam; without any the elastic ones are
+    stated. ``lines`` keeps the lines that later sections draw on, under a key that says what they are:
     ``("peak", "dead", "P1")``. ``checks`` are the requirements on the beam itself, by name.
     """
 
@@ -74,6 +98,7 @@ class Work:
     sheet: Sheet
     lines: dict[Hashable, Line] = field(default_factory=dict)
     checks: list[tuple[str, Line]] = field(default_factory=list)
+    deflections: tuple[StatedDeflection, ...] = ()
 
     @property
     def given(self) -> BeamInput:

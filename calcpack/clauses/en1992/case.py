@@ -62,7 +62,7 @@ class Given(NamedTuple):
 
 
 class Service(NamedTuple):
-    """Moments of one span for its deflections [kNm]; live ones None where no limit asks for them."""
+    """Moments of one span for its deflections [kNm]; live ones None without live load."""
 
     lasting: Curve
     rare: Curve | None

@@ -55,7 +55,8 @@ class SpanDeflection:
     at: float
     total: float
     limit: float | None
-    live: float | None
+    live: float | None  # what live load adds, short term; None without live load
+    live_at: float
     live_limit: float | None
     moment: float  # largest lasting moment [kNm], by size: sagging, of an overhang hogging
     zeta: float  # there
@@ -205,12 +206,14 @@ def span_deflections(
         most = int(np.argmax(np.abs(own)))
         reach = 2 * span.length if span.overhang else span.length
         live = None
-        if live_factor and service.rare is not None and service.dead is not None:
+        live_at = span.start
+        if service.rare is not None and service.dead is not None:
             rare = service.rare.values(x)
             cracked = short.zeta(rare, SINGLE)
             both = short.line(case, x, rare, cracked)
             dead = short.line(case, x, service.dead.values(x), cracked)
-            live = float(np.abs((both - dead)[inside]).max())
+            added = np.abs((both - dead)[inside])
+            live, live_at = float(added.max()), float(places_in[int(np.argmax(added))])
         bent = moment[inside]
         hogging = span.overhang or bent.max() <= 0
         heavy = int(np.argmin(bent) if hogging else np.argmax(bent))
@@ -224,6 +227,7 @@ def span_deflections(
                 float(abs(own[most])),
                 reach / total_factor if total_factor else None,
                 live,
+                live_at,
                 reach / live_factor if live_factor and live is not None else None,
                 float(abs(bent[heavy])),
                 float(degree[inside][heavy]),

@@ -82,6 +82,18 @@ def record_results(work: Work) -> dict[str, Any]:
     checks = checks_of(work)
     governing = max(checks, key=lambda check: check["ratio"], default=None)
     return results_of(work.study) | {
+        **_stated_deflections(work),
         "checks": checks,
         "governing": governing and {"name": governing["name"], "ratio": governing["ratio"]},
+    }
+
+
+def _stated_deflections(work: Work) -> dict[str, Any]:
+    """The deflections of the design, with the lines that state them, in place of the elastic ones."""
+    if not work.deflections:
+        return {}
+    found = {each.key: each.line for each in work.deflections}
+    return {
+        "deflection": {key: found[key].value if key in found else 0.0 for key in ("total_mm", "live_mm")},
+        "deflection_lines": {key: line.no for key, line in found.items()},
     }

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
+from dataclasses import dataclass, replace
 from typing import Literal
 
 from calcpack.clauses.aci318.flange import state_flange, state_given_flange
@@ -16,14 +16,14 @@ from calcpack.notebook.sections.concrete_aci318_deflection import state_deflecti
 from calcpack.notebook.sections.concrete_aci318_design import Design, settle, shortest
 from calcpack.notebook.sections.concrete_aci318_faces import Face
 from calcpack.notebook.sections.concrete_aci318_lines import ENVELOPE, Written
-from calcpack.notebook.sections.concrete_aci318_rehearsal import draft_of, ratio_rows
 from calcpack.notebook.sections.concrete_aci318_shear import state_shear
+from calcpack.notebook.sections.rehearsal import ratio_rows, rehearsal_of
 from calcpack.notebook.study import Study
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line
 
 __all__ = [
-    "begin_design",
+    "begin",
     "settle",
     "state_bars",
     "state_bending_strength",
@@ -31,23 +31,21 @@ __all__ = [
     "state_design",
     "state_load_checks",
     "state_shear",
+    "state_shown",
 ]
 
 
-def begin_design(work: Work) -> Written:
-    """Settle a beam's design and write its first two sections.
+@dataclass(frozen=True)
+class Begun:
+    """A beam whose design is settled, with what its sections will find."""
 
-    The first shows the reinforcement and every check with its ratio, the second materials and section.
+    work: Work
+    design: Design
+    rehearsed: list[tuple[str, Line]]
 
-    Parameters
-    ----------
-    work : Work
-        With the sections of the load sheet written.
 
-    Returns
-    -------
-    Written
-        For the sections that follow.
+def begin(work: Work) -> Begun:
+    """Settle a beam's design, before the first page tells of it.
 
     Raises
     ------
@@ -55,11 +53,23 @@ def begin_design(work: Work) -> Written:
         See :func:`calcpack.notebook.sections.concrete_aci318_design.settle`.
     """
     design = settle(work)
-    rehearsed = draft_of(work)
-    _state_shown(rehearsed, design, [])
-    state_design(_state_section(rehearsed, design))
-    _state_shown(work, design, rehearsed.checks)
-    return _state_section(work, design)
+    draft = rehearsal_of(work)
+    draft.sheet.section("Rehearsal")
+    state_design(_state_section(draft, design))
+    work.deflections = draft.deflections
+    return Begun(work, design, draft.checks)
+
+
+def state_shown(begun: Begun) -> Written:
+    """The reinforcement and every check with its ratio; materials and section.
+
+    Returns
+    -------
+    Written
+        For the sections that follow.
+    """
+    _state_shown(begun.work, begun.design, begun.rehearsed)
+    return _state_section(begun.work, begun.design)
 
 
 def state_design(written: Written) -> None:

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from typing import Literal, NamedTuple
 
 import numpy as np
+from numpy.typing import NDArray
 
 from calcpack.actions.combinations import PLACED
 from calcpack.clauses.aci318.detailing import End
@@ -17,6 +18,7 @@ from calcpack.statics import Band, Envelope, Extreme, PointLoad, envelope
 
 Side = Literal["left", "right"]
 SAMPLES = 400  # places looked at along a span
+DRAWN = 80  # places along a span of a deflected beam
 
 
 @dataclass(frozen=True)
@@ -72,6 +74,9 @@ class Service(NamedTuple):
     hogging: tuple[float, float]  # at start and end
     live: float
     sustained: float
+    x: NDArray[np.float64]  # [m], places along it
+    live_line: NDArray[np.float64]  # there
+    sustained_line: NDArray[np.float64]
 
 
 class Actions:
@@ -293,8 +298,12 @@ class Actions:
                 ),
                 max(_largest(variable.deflection, stretch, "upper"), 0.0),
                 max(_largest(sustained.deflection, stretch, "upper"), 0.0),
+                x,
+                variable.deflection.upper.values(x),
+                sustained.deflection.upper.values(x),
             )
             for stretch in self.stretches
+            for x in [np.linspace(stretch.start, stretch.end, DRAWN + 1)]
         ]
 
 

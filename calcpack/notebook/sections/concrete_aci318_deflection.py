@@ -2,7 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import replace
+from typing import NamedTuple
+
+import numpy as np
+from numpy.typing import NDArray
 
 from calcpack.clauses.aci318.deflection import (
     Bent,
@@ -16,14 +21,28 @@ from calcpack.clauses.aci318.deflection import (
     state_least_depth,
 )
 from calcpack.clauses.aci318.materials import Checks
+from calcpack.figures import deflected_shape
 from calcpack.notebook.sections.concrete_aci318_actions import Service, Stretch
 from calcpack.notebook.sections.concrete_aci318_lines import Written
-from calcpack.notebook.sections.concrete_aci318_rehearsal import draft_of
+from calcpack.notebook.sections.rehearsal import draft_of
+from calcpack.notebook.work import StatedDeflection
 from calcpack.sheet import Expression, Line, measured, number
 
 
+class Deflected(NamedTuple):
+    """A stretch of the beam with the lines of its deflections."""
+
+    stretch: Stretch
+    service: Service
+    checks: Checks
+    inertia: Line  # I_e
+    growth: Line  # λ_Δ
+    live: Line | None
+    after: Line
+
+
 def state_deflections(written: Written) -> None:
-    """The span that comes nearest to its limits in lines, the others in a table."""
+    """The span that comes nearest to its limits in lines, the others in a table; the deflected beam."""
     sheet, work, actions = written.sheet, written.work, written.design.actions
     sheet.section("Deflection")
     name, _ = actions.service_factors
@@ -34,28 +53,103 @@ def state_deflections(written: Written) -> None:
         "E I with live load where it is worst for each."
     )
     gross = state_gross(sheet, written.materials, written.size)
-    found = {}
+    found = []
     for stretch, service in zip(actions.stretches, actions.service(), strict=True):
         draft = replace(written, work=draft_of(work))
-        found[stretch.number] = (stretch, service, _stretch(draft, gross, stretch, service))
-    worst = max(found.values(), key=lambda each: round(_ratio(each[2]), 9))
+        found.append(_stretch(draft, gross, stretch, service))
+    worst = max(found, key=lambda each: round(_ratio(each.checks), 9))
     if len(found) > 1:
-        _table(written, {stretch.number: checks for stretch, _, checks in found.values()})
-    written.note(_stretch(written, gross, worst[0], worst[1]))
+        _table(written, found)
+    shown = _stretch(written, gross, worst.stretch, worst.service)
+    written.note(shown.checks)
+    work.deflections = _stated(written, shown, several=len(found) > 1)
+    _figure(written, found)
+
+
+def _stated(written: Written, shown: Deflected, *, several: bool) -> tuple[StatedDeflection, ...]:
+    """What the first page and the results say."""
+    where = f", {_words(shown.stretch)}" if several else ""
+    after, live = _lines(written, shown)
+    x = shown.service.x
+    stated = [
+        StatedDeflection(
+            "total_mm",
+            f"deflection after attachment{where}",
+            float(x[int(after.argmax())]),
+            f"live load; creep and shrinkage under D + {written.design.actions.sustained_live:g} L",
+            shown.after,
+        )
+    ]
+    if shown.live is not None:
+        at = float(x[int(live.argmax())])
+        stated.append(
+            StatedDeflection("live_mm", f"deflection, live load{where}", at, "immediate, cracked", shown.live)
+        )
+    return tuple(stated)
+
+
+def _lines(written: Written, each: Deflected) -> tuple[NDArray[np.float64], NDArray[np.float64]]:
+    """Deflections along a stretch [m]: after attachment of partitions, and under live load."""
+    rigidity = written.materials.ec.value * 1e3 * each.inertia.value * 1e-12  # [kNm2]
+    live = each.service.live_line / rigidity
+    return each.growth.value * each.service.sustained_line / rigidity + live, live
+
+
+def _figure(written: Written, found: Sequence[Deflected]) -> None:
+    """The deflected beam against its limits; every span with its own effective section."""
+    work, given = written.work, written.work.given
+    limits = given.design["deflection_limits"]
+    x = np.concatenate([each.service.x for each in found])
+    lines = [_lines(written, each) for each in found]
+    after, live = (np.concatenate([pair[which] for pair in lines]) for which in (0, 1))
+
+    def bounds(over: float) -> list[tuple[float, float, float]]:
+        return [
+            (
+                each.stretch.start,
+                each.stretch.end,
+                each.stretch.length * (2 if each.stretch.overhang else 1) / over,
+            )
+            for each in found
+        ]
+
+    further = [("immediate, under live load", x, live, bounds(limits["live"]))] if live.any() else []
+    figure = deflected_shape(
+        given.length,
+        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+        x,
+        after,
+        bounds(limits["total"]),
+        work.study.system,
+        title="after attachment of partitions",
+        further=further,
+        fixed=given.fixed,
+        mark=given.mark,
+        width_mm=150.0,
+    )
+    written.sheet.figure(
+        figure,
+        "Deflections of the cracked beam against their limits, each span with its own effective section and "
+        "live load where it is worst for each place.",
+    )
+
+
+def _words(stretch: Stretch) -> str:
+    return f"{'overhang' if stretch.overhang else 'span'} {stretch.number}"
 
 
 def _ratio(checks: Checks) -> float:
     return max((float(line.check(name)["ratio"]) for name, line in checks), default=0.0)
 
 
-def _table(written: Written, found: dict[int, Checks]) -> None:
+def _table(written: Written, found: Sequence[Deflected]) -> None:
     work, rows = written.work, []
-    for number_, checks in found.items():
-        for name, line in checks:
+    for each in found:
+        for name, line in each.checks:
             check = line.check(name)
             rows.append(
                 [
-                    f"span {number_}",
+                    _words(each.stretch),
                     name.removeprefix("deflection, "),
                     work.show(check["demand"], check["unit"]),
                     work.show(check["capacity"], check["unit"]),
@@ -75,12 +169,12 @@ def _table(written: Written, found: dict[int, Checks]) -> None:
     )
 
 
-def _stretch(written: Written, gross: Gross, stretch: Stretch, service: Service) -> Checks:
+def _stretch(written: Written, gross: Gross, stretch: Stretch, service: Service) -> Deflected:
     sheet, work, size, materials = written.sheet, written.work, written.size, written.materials
     design, keys = written.design, written.work.given.design
     actions = design.actions
     name, _ = actions.service_factors
-    words = f"{'overhang' if stretch.overhang else 'span'} {stretch.number}"
+    words = _words(stretch)
     span = work.lines["span", stretch.number - 1]
     ends = [actions.hogs(stretch, left) and not stretch.overhang for left in (True, False)]
     held = ("simply supported", "one end continuous", "both ends continuous")[sum(ends)]
@@ -111,7 +205,7 @@ def _stretch(written: Written, gross: Gross, stretch: Stretch, service: Service)
         inertia = hogging[0] if hogging else gross.inertia
     reach: Expression = 2 * span if stretch.overhang else span.as_expression()
     limits = keys["deflection_limits"]
-    return state_deflection(
+    checks = state_deflection(
         sheet,
         materials,
         inertia,
@@ -120,6 +214,16 @@ def _stretch(written: Written, gross: Gross, stretch: Stretch, service: Service)
         keys["load_duration"],
         _compression(written, stretch),
         words,
+    )
+    written_lines = {line.symbol: line for line in sheet.lines.values()}
+    return Deflected(
+        stretch,
+        service,
+        checks,
+        inertia,
+        written_lines["lambda_Delta"],
+        written_lines["Delta_L"] if service.live else None,
+        written_lines["Delta_after"],
     )
 
 

@@ -25,7 +25,6 @@ from calcpack.clauses.en1992.write_shear import (
     write_shear,
     write_stirrup_limits,
 )
-from calcpack.notebook.sections.concrete_aci318_rehearsal import draft_of, ratio_rows
 from calcpack.notebook.sections.concrete_en1992_case import Particulars, particulars
 from calcpack.notebook.sections.concrete_en1992_figures import (
     bars_figure,
@@ -40,6 +39,7 @@ from calcpack.notebook.sections.concrete_en1992_words import (
     top_words,
     zone_words,
 )
+from calcpack.notebook.sections.rehearsal import ratio_rows, rehearsal_of
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line, formula
 
@@ -59,6 +59,8 @@ class ConcreteBeam:
         Lines that later sections draw on, once they are written.
     faces : dict
         Lines of the bars: "sag" (bottom), "hog" (all top bars), "end" (top bars that run through).
+    rehearsed : list of (name, requirement)
+        What the sections will find, for the pages before them.
     """
 
     work: Work
@@ -68,6 +70,7 @@ class ConcreteBeam:
     size: SizeLines | None = None
     shear: ShearLines | None = None
     faces: dict[str, FaceLines] = field(default_factory=dict)
+    rehearsed: list[tuple[str, Line]] = field(default_factory=list)
 
     @property
     def place(self) -> str:
@@ -92,7 +95,7 @@ class ConcreteBeam:
 
 
 def begin(work: Work) -> ConcreteBeam:
-    """Work the beam out, bars chosen where the job gives none.
+    """Work the beam out, bars chosen where the job gives none, before the first page tells of it.
 
     Raises
     ------
@@ -100,17 +103,18 @@ def begin(work: Work) -> ConcreteBeam:
         The beam is no concrete rectangle or tee of EN 1992-1-1, or a design key does not fit.
     """
     about = particulars(work)
-    return ConcreteBeam(work, about, design_beam(about.case))
+    beam = ConcreteBeam(work, about, design_beam(about.case))
+    draft = rehearsal_of(work)
+    rehearsed = replace(beam, work=draft)
+    for state in (state_bending, state_shear, state_service):
+        state(rehearsed)
+    work.deflections = draft.deflections
+    return replace(beam, rehearsed=draft.checks)
 
 
 def state_shown(beam: ConcreteBeam) -> None:
     """What the sheet shows, with ratios; how bars came about; their layout."""
-    rehearsed = replace(beam, work=draft_of(beam.work), faces={})
-    rehearsed.work.sheet.section("What is shown")
-    for state in (state_bending, state_shear, state_service):
-        state(rehearsed)
-    checks = rehearsed.work.checks
-    sheet, design = beam.work.sheet, beam.design
+    checks, sheet, design = beam.rehearsed, beam.work.sheet, beam.design
     sheet.section("What is shown, and the reinforcement")
     listed = [each for each in checks if each[0].startswith(SHOWN)]
     others = [line.check(name) for name, line in checks if not name.startswith(SHOWN)]

@@ -18,7 +18,7 @@ from calcpack.clauses.en1992.write_service import (
     write_creep,
 )
 from calcpack.notebook.sections.concrete_en1992_figures import deflection_figure
-from calcpack.notebook.work import Work
+from calcpack.notebook.work import StatedDeflection, Work
 from calcpack.sheet import Expression, Line, formula, measured
 
 Checks = list[tuple[str, Line]]
@@ -94,7 +94,7 @@ def write_service(
     )
     origin = f"beam {work.given.mark} design.shrinkage"
     write_curvature(sheet, design, faces[tag], strength, section(tag), lasting, origin)
-    return checks + _deflection(work, design, found)
+    return checks + _deflection(work, design, found, combination)
 
 
 def _hogs(design: Design, found: SpanDeflection) -> bool:
@@ -174,13 +174,13 @@ def _span_depth(work: Work, design: Design, faces: Mapping[str, FaceLines], stre
     )
 
 
-def _deflection(work: Work, design: Design, found: SpanDeflection) -> Checks:
+def _deflection(work: Work, design: Design, found: SpanDeflection, combination: str) -> Checks:
     sheet, case = work.sheet, design.case
     rows = []
     for each in design.deflections:
         rows.append(
             [
-                f"{'overhang' if case.spans[each.number].overhang else 'span'} {each.number + 1}",
+                _span_words(design, each),
                 work.show(each.moment, "kN*m"),
                 f"{each.zeta:.3f}",
                 work.show(each.total * 1e3, "mm"),
@@ -191,8 +191,12 @@ def _deflection(work: Work, design: Design, found: SpanDeflection) -> Checks:
             ]
         )
     heads = ["final", "at", "limit", "live load", "limit"]
+    kept = 8
     if all(each.live is None for each in design.deflections):
-        rows, heads = [row[:-2] for row in rows], heads[:-2]
+        kept = 6
+    elif not any(each.live_limit for each in design.deflections):
+        kept = 7
+    rows, heads = [row[:kept] for row in rows], heads[: kept - 3]
     sheet.table(
         [
             ("span", "left"),
@@ -211,43 +215,60 @@ def _deflection(work: Work, design: Design, found: SpanDeflection) -> Checks:
     )
     checks: Checks = []
     live_factor, total_factor = case.limits
+    total = sheet.take(
+        "delta",
+        found.total * 1e3,
+        "mm",
+        f"Final deflection of {_span_words(design, found)}",
+        "curvatures integrated",
+        f"{STANDARD}, 7.4.3(7)",
+        given=False,
+        word="final deflection, creep and shrinkage included",
+    )
+    lasting = f"{combination}, creep and shrinkage"
+    where = f", {_span_words(design, found)}" if len(design.deflections) > 1 else ""
+    work.deflections = (StatedDeflection("total_mm", f"deflection, final{where}", found.at, lasting, total),)
     if total_factor:
-        total = sheet.take(
-            "delta",
-            found.total * 1e3,
-            "mm",
-            f"Largest final deflection, span {found.number + 1}",
-            "curvatures integrated",
-            f"{STANDARD}, 7.4.3(7)",
-            given=False,
-        )
         line = sheet.require(
             total <= _limit(work, design, found.number, total_factor),
-            f"Final deflection, {'twice the overhang' if case.spans[found.number].overhang else 'span'} "
-            f"over {total_factor:g}",
+            f"Final deflection, {_reach_words(design, found)} over {total_factor:g}",
             f"{STANDARD}, 7.4.1(4)",
         )
         checks.append(("deflection, total", line))
-    lively = [each for each in design.deflections if each.live is not None and each.live_limit]
-    if live_factor and lively:
+    lively = [each for each in design.deflections if each.live is not None]
+    if lively:
         most = max(lively, key=lambda each: round((each.live or 0.0) / (each.live_limit or 1.0), 12))
         live = sheet.take(
             "delta_live",
             (most.live or 0.0) * 1e3,
             "mm",
-            f"Largest live-load deflection, span {most.number + 1}",
+            f"What live load adds to it, short term, {_span_words(design, most)}",
             "curvatures integrated",
             f"{STANDARD}, 7.4.3",
             given=False,
+            word="deflection that live load adds",
         )
-        line = sheet.require(
-            live <= _limit(work, design, most.number, live_factor),
-            f"Live-load deflection, span over {live_factor:g}",
-            f"{STANDARD}, 7.4.1(5)",
+        where = f", {_span_words(design, most)}" if len(design.deflections) > 1 else ""
+        work.deflections += (
+            StatedDeflection("live_mm", f"deflection, live load{where}", most.live_at, "short term", live),
         )
-        checks.append(("deflection, live load", line))
+        if live_factor:
+            line = sheet.require(
+                live <= _limit(work, design, most.number, live_factor),
+                f"Live-load deflection, {_reach_words(design, most)} over {live_factor:g}",
+                f"{STANDARD}, 7.4.1(5)",
+            )
+            checks.append(("deflection, live load", line))
     sheet.figure(*deflection_figure(work, design))
     return checks
+
+
+def _span_words(design: Design, found: SpanDeflection) -> str:
+    return f"{'overhang' if design.case.spans[found.number].overhang else 'span'} {found.number + 1}"
+
+
+def _reach_words(design: Design, found: SpanDeflection) -> str:
+    return "twice the overhang" if design.case.spans[found.number].overhang else "span"
 
 
 def _limit(work: Work, design: Design, number: int, factor: float) -> Expression:

@@ -200,7 +200,10 @@ def _reduced(work: Work, case: Case, effect: Expression | Line) -> Expression | 
 def state_effects(work: Work) -> None:
     """Diagrams with the envelope and the governing combination, and the reactions."""
     study, given, analysed = work.study, work.given, work.study.analysed
-    work.sheet.section("Reactions, shear, moment and deflection")
+    cracked = bool(work.deflections)
+    work.sheet.section(
+        "Reactions, shear and moment" if cracked else "Reactions, shear, moment and deflection"
+    )
     if study.unloaded:
         work.sheet.text(NOTHING)
         return
@@ -220,7 +223,7 @@ def state_effects(work: Work) -> None:
         f"Shaded: the envelope of all strength combinations. Line: {governing.combination.name} with every "
         "span loaded."
     )
-    if deflection is not None:
+    if deflection is not None and not cracked:
         caption += f" Deflection: {deflection[0].name}, E I = {work.show(study.stiffness or 0.0, 'kN*m^2')}."
     work.sheet.figure(figure, caption)
     _reactions(work)
@@ -240,7 +243,7 @@ def curves_of(work: Work) -> dict[Quantity, list[CurveData]]:
             (*band.lower.sample(SAMPLES), "lower"),
             (*governing.curve(quantity).sample(SAMPLES), "line"),
         ]
-    if (found := analysed.deflection_total) is not None and study.stiffness:
+    if (found := analysed.deflection_total) is not None and study.stiffness and not work.deflections:
         result = next(each for each in analysed.results if each.combination is found[0])
         band = result.envelope.deflection
         high, low = (edge.sample(SAMPLES) for edge in (band.upper, band.lower))
@@ -265,7 +268,7 @@ def extremes_of(work: Work) -> list[tuple[Quantity, float, float]]:
         for extreme in (most, least)
         if study.significant(extreme.value, "force")
     ]
-    if (deflection := analysed.deflection_total) is not None:
+    if (deflection := analysed.deflection_total) is not None and not work.deflections:
         found.append(("deflection", deflection[1].value, deflection[1].at))
     return found
 

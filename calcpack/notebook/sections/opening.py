@@ -93,7 +93,10 @@ def _schedule(work: Work) -> None:
     shear = analysed.governing_shear
     largest = Extreme(abs(shear.shear_max.value), shear.shear_max.at)
     row("shear", largest, "kN", shear.combination.name)
-    if (total := analysed.deflection_total) and (live := analysed.deflection_live):
+    if work.deflections:
+        for stated in work.deflections:
+            rows.append([stated.says, stated.line.shown, work.show(stated.at, "m"), stated.under])
+    elif (total := analysed.deflection_total) and (live := analysed.deflection_live):
         row("deflection, total", _in_mm(total[1]), "mm", total[0].name)
         if "live" in study.cases:
             row("deflection, live load", _in_mm(live), "mm", "live load alone")
@@ -135,7 +138,11 @@ def state_basis(work: Work) -> None:
         + (_FOLDED if given.design_loads == "equivalent" and given.carried else "")
     )
     items += given.template.assumptions
-    if work.study.stiffness is not None:
+    if work.deflections:
+        items.append(
+            "Deflections are those of the cracked beam, creep and shrinkage included where it says so."
+        )
+    elif work.study.stiffness is not None:
         items.append(
             "Deflections take the gross, uncracked section and the short-term modulus; creep, shrinkage and "
             "cracking come on top."

@@ -10,6 +10,7 @@ from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.beam import Load, Solution, solve
 from calcpack.record.auditing.book import Book, figure
 from calcpack.record.auditing.checks import audit_checks
+from calcpack.record.auditing.deflections import STATED_BY, stated_deflections
 from calcpack.record.auditing.demands import Demand, design_demand
 from calcpack.record.auditing.envelopes import Extreme, Worst
 from calcpack.record.auditing.findings import Finding, Verdict
@@ -113,6 +114,7 @@ def audit_results(
         _combinations(book, beam, record)
     except ValueError as error:
         book.wrong("results", str(error))
+    stated_deflections(book, record, lines)
     _envelope_of_combinations(book, record)
     audit_checks(book, record, lines)
     book.leave_open("results.combinations", _NEEDS_NOTEBOOK)
@@ -309,7 +311,8 @@ def _combinations(book: Book, beam: Beam, record: Record) -> None:
     strength = [i for i, each in enumerate(given.combinations) if each["limit"] == "strength"]
     if strength:
         _envelope(book, beam, [moments[i] for i in strength], [shears[i] for i in strength], force, turning)
-    _deflections(book, given, demand, worst)
+    if STATED_BY not in record.results:
+        _deflections(book, given, demand, worst)
 
 
 def _scales(beam: Beam, given: Given) -> tuple[float, float]:

@@ -91,7 +91,7 @@ def sheet_of(tmp_path):
         state_given(work)
         state_transfer(work)
         state_loads(work)
-        written = aci.begin_design(work)
+        written = aci.state_shown(aci.begin(work))
         aci.state_design(written)
         aci.state_load_checks(work)
         return work, written

@@ -6,6 +6,7 @@ from collections.abc import Iterable
 from dataclasses import replace
 from typing import Any
 
+from calcpack.notebook.sections.given import state_given
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line, Sheet, show
 
@@ -35,6 +36,14 @@ class Draft(Sheet):
 def draft_of(work: Work) -> Work:
     """The same work on a draft: what is written on it is not on the sheet."""
     return replace(work, sheet=Draft(work.sheet), lines=dict(work.lines), checks=[])
+
+
+def rehearsal_of(work: Work) -> Work:
+    """A draft with the given values written, where the sheet itself does not have them yet."""
+    draft = draft_of(work)
+    if ("span", 0) not in draft.lines:
+        state_given(draft)
+    return draft
 
 
 def ratio_rows(work: Work, checks: Iterable[tuple[str, Line]]) -> list[dict[str, Any]]:
