@@ -115,6 +115,7 @@ class Line(_Block):
     cite: Words = ""
     origin: Words = ""
     from_: tuple[Words, ...] = Field(default=(), alias="from")
+    like: Words = ""  # the line whose formula this one has, with other values
     passes: bool | None = None
     alt: Words = ""
 

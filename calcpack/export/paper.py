@@ -167,6 +167,7 @@ class Paper:
             "cite": self.words(line.cite) or None,
             "origin": self.words(line.origin) or None,
             "sources": self.runs([Run("line", source) for source in line.from_], place),
+            "like": self.runs([Run("line", line.like)] if line.like else [], place),
             "passes": line.passes,
             "changed": line.no in place.changed,
         }

@@ -26,9 +26,10 @@ from calcpack.sheet.latex import symbol_latex
 from calcpack.sheet.line import SATISFIED, Line, in_unit_of, line_block, side_unit
 from calcpack.sheet.operations import measured
 from calcpack.sheet.record import Cite, cited, make_record
-from calcpack.sheet.runs import Runs, check_runs
+from calcpack.sheet.runs import Runs, check_runs, plain_text
 from calcpack.sheet.screen import blocks_bundle, put, record_bundle
 from calcpack.sheet.symbols import read_symbol
+from calcpack.sheet.trees import shape_of
 
 
 class Sheet:
@@ -68,6 +69,8 @@ class Sheet:
         self._count = 0  # lines in this section
         self._words: dict[str, str] = {}
         self._sink: list[Block] = self.blocks
+        self._repeating = False
+        self._short: set[str] = set()  # lines shown as another one's repetition
         self._unseen = 0  # blocks from here on have not been shown
 
     # Words
@@ -191,6 +194,31 @@ class Sheet:
             )  # fmt: skip
         return self._keep(line)
 
+    @contextmanager
+    def repeating(self) -> Iterator[None]:
+        """Lines whose formula stands on the sheet already, with other values, are shown in short.
+
+        Such a line has its number, its words, its result and the line it is worked out as; the record
+        keeps it like any other.
+
+        Examples
+        --------
+        >>> from calcpack.sheet import PI
+        >>> sheet = Sheet("B1")
+        >>> sheet.section("Bars")
+        >>> for face in ("sag", "hog"):
+        ...     with sheet.repeating():
+        ...         phi = sheet.take(f"phi_{face}", 20, "mm", "Bars", "chosen", word="bar")
+        ...         area = sheet.hence(f"A_s,{face}", PI * phi**2 / 4, "mm^2", "Area")
+        >>> sheet.blocks[-1]["like"], sheet.blocks[-1]["rows"]
+        ('1.02', [['\\\\textbf{314\\xa0mm²}']])
+        """
+        before, self._repeating = self._repeating, True
+        try:
+            yield
+        finally:
+            self._repeating = before
+
     @property
     def failed(self) -> list[Line]:
         """The requirements that do not hold."""
@@ -266,8 +294,13 @@ class Sheet:
     # The end of a sheet
 
     def notation(self) -> None:
-        """Every symbol used so far with its meaning and unit; Latin letters first."""
+        """Every symbol used so far with its meaning and unit; Latin letters first.
+
+        Symbols that mean the same in several places (``x_II,sag``, ``x_II,hog``) stand there once, without
+        the index that says where.
+        """
         rows: dict[str, list[Any]] = {}
+        alike: dict[tuple[str, str, str], set[str]] = {}
         for line in self.lines.values():
             if not line.symbol:
                 continue
@@ -276,6 +309,12 @@ class Sheet:
             meaning = found[1].text if found else self._words.get(line.symbol) or line.says
             unit = display_unit(line.unit, self.system)[0] or "–"
             rows.setdefault(symbol, [symbol_latex(symbol), meaning, unit])
+            alike.setdefault((_stem(symbol), plain_text(meaning), unit), set()).add(symbol)
+        for (stem, meaning, unit), symbols in alike.items():
+            if len(symbols) > 1 and (stem not in rows or stem in symbols):
+                for symbol in symbols:
+                    del rows[symbol]
+                rows[stem] = [symbol_latex(stem), meaning, unit]
         ranked = sorted(
             rows, key=lambda symbol: (symbol_latex(symbol).startswith("\\"), symbol.lower(), symbol)
         )
@@ -353,8 +392,21 @@ class Sheet:
     def _keep(self, line: Line) -> Line:
         self._count += 1
         self.lines[line.no] = line
-        self._add(line_block(line, self.lines, self.system))
+        self._add(line_block(line, self.lines, self.system, self._alike(line)))
         return line
+
+    def _alike(self, line: Line) -> str:
+        """The line shown in full that this one repeats with values of its own, if it may be shown so."""
+        if not self._repeating or line.kind == "take":
+            return ""
+        shape = shape_of(line.expression)
+        for no, earlier in self.lines.items():
+            if no not in self._short and (earlier.kind, earlier.unit, earlier.cite) == (
+                line.kind, line.unit, line.cite
+            ) and earlier is not line and shape_of(earlier.expression) == shape:  # fmt: skip
+                self._short.add(line.no)
+                return no
+        return ""
 
     def _symbol(self, symbol: str, word: str) -> str:
         name = read_symbol(symbol).name
@@ -378,6 +430,12 @@ class Sheet:
                 raise CalcpackError(f"'{symbol}' of line {no} is not on this sheet")
             sizes[no] = in_base(line.value, line.unit)
         return sizes
+
+
+def _stem(symbol: str) -> str:
+    """A symbol without its last index, which says where: "x_II" of "x_II,sag", "x" of "x_hog"."""
+    head, comma, _ = symbol.rpartition(",")
+    return head if comma else symbol.partition("_")[0]
 
 
 @contextmanager

@@ -82,7 +82,8 @@ def _line(block: Mapping[str, Any]) -> str:
     between = " = " if block["symbol"] else r" \qquad "
     formula = math_html(between.join(sides))
     drawn = "from " + ", ".join(block["from"]) if block["from"] else ""
-    side = "; ".join(filter(None, (block["cite"], block["origin"], drawn)))
+    like = f"worked out as {block['like']}" if block.get("like") else ""
+    side = "; ".join(filter(None, (block["cite"], block["origin"], like, drawn)))
     verdict = {True: "satisfied", False: "not satisfied", None: ""}[block["passes"]]
     return (
         f"<p><small>{text_html(block['no'])}</small>&ensp;{runs_html(block['says'])}"

@@ -152,8 +152,8 @@ def in_unit_of(unit: str, size: Measured) -> float:
     return size.value / in_base(1.0, unit).value
 
 
-def line_block(line: Line, known: Mapping[str, Line], system: System) -> dict[str, Any]:
-    """The line as it is shown.
+def line_block(line: Line, known: Mapping[str, Line], system: System, like: str = "") -> dict[str, Any]:
+    """The line as it is shown; one worked out as another one (``like``) with its result alone.
 
     A requirement has no symbol: its rows are whole comparisons, with symbols, with numbers, and, where a
     side has to be worked out, with both sides' values.
@@ -162,6 +162,8 @@ def line_block(line: Line, known: Mapping[str, Line], system: System) -> dict[st
     drawn = {no: known[no] for no in inputs}
     if line.kind == "take":
         rows = [[result(line.shown)]]
+    elif like:
+        rows = [_sides_row(line, system) if line.kind == "require" else [result(line.shown)]]
     else:
         last = _sides_row(line, system) if line.kind == "require" else [result(line.shown)]
         rows = [symbols_row(line.expression, system), numbers_row(line.expression, drawn, system), last]
@@ -182,6 +184,7 @@ def line_block(line: Line, known: Mapping[str, Line], system: System) -> dict[st
         "cite": line.cite,
         "origin": line.origin,
         "from": inputs,
+        **({"like": like} if like else {}),
         "passes": line.passes,
         "alt": _alternative(line, system),
     }

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 from collections.abc import Mapping
 from typing import Any
 
@@ -30,6 +31,27 @@ def to_json(root: Expression) -> dict[str, Any]:
             tree: dict[str, Any] = {"op": root.name, "args": [to_json(each) for each in root.arguments]}
             return tree | {"unit": root.unit} if root.unit else tree
     raise TypeError(f"{root!r} is not an expression")
+
+
+def shape_of(root: Expression) -> str:
+    """A formula with places in place of its symbols: two formulas of one shape are the same but for those.
+
+    Examples
+    --------
+    >>> q, S, w = Reference("q", "2.01"), Reference("S", "1.02"), Reference("w", "2.02")
+    >>> shape_of(q * S / 2) == shape_of(w * q / 2), shape_of(q * S / 2) == shape_of(q * q / 2)
+    (True, False)
+    """
+    places: dict[str, int] = {}
+
+    def written(tree: Any) -> Any:
+        if isinstance(tree, dict):
+            if "symbol" in tree:
+                return places.setdefault(tree["symbol"], len(places))
+            return {key: written(each) for key, each in tree.items()}
+        return [written(each) for each in tree] if isinstance(tree, list) else tree
+
+    return json.dumps(written(to_json(root)))
 
 
 _KEYS = (

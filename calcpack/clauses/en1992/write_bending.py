@@ -297,8 +297,16 @@ def write_amount(
             word="mean width of the tension zone",
         )
     share = greatest(number(national["as_min"]) * strength.fctm / strength.fyk, national["as_min_least"])
+    least_area = sheet.hence(
+        symbol("A_s,min"),
+        share * width * lines.effective,
+        "mm^2",
+        "Least reinforcement",
+        "9.2.1.1(1) (9.1N)",
+        word="least reinforcement",
+    )
     line = sheet.require(
-        share * width * lines.effective <= lines.area,
+        least_area <= lines.area,
         f"Least reinforcement, {WORDS[lines.tag]}",
         f"{STANDARD}, 9.2.1.1(1)",
     )
@@ -344,7 +352,8 @@ def write_spacing(sheet: Sheet, lines: FaceLines, size: SizeLines) -> list[tuple
     first, words = face.bars.layers[0], WORDS[lines.tag]
     if first < 2:
         return []
-    lines.clear = (size.width - 2 * lines.inset - first * lines.bar) / (first - 1)
+    room = size.width - 2 * lines.inset - first * lines.bar
+    lines.clear = room / (first - 1) if first > 2 else room
     rule = greatest(
         number(national["bar_k1"]) * lines.bar if national["bar_k1"] != 1 else lines.bar,
         size.aggregate + measured(millimetres(national["bar_k2"]), "mm"),

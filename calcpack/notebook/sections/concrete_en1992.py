@@ -43,6 +43,7 @@ from calcpack.notebook.sections.rehearsal import ratio_rows, rehearsal_of
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line, formula
 
+SUBTITLES = {"sag": "Span, bottom bars in tension", "hog": "Support, top bars in tension"}
 SHOWN = ("bending", "moments along", "shear", "anchorage", "crack width", "deflection")
 
 
@@ -119,6 +120,15 @@ def state_shown(beam: ConcreteBeam) -> None:
     listed = [each for each in checks if each[0].startswith(SHOWN)]
     others = [line.check(name) for name, line in checks if not name.startswith(SHOWN)]
     failed = [check["name"] for check in others if not check["passes"]]
+    sheet.items(
+        [
+            bottom_words(beam.work, design),
+            " ".join(top_words(beam.work, design)),
+            stirrup_words(beam.work, design),
+            f"Nationally determined parameters: {beam.about.national.name}; {beam.about.national.source}. "
+            f"Holds for {_limits()}.",
+        ]
+    )
     with sheet.columns([10, 13]) as column:
         for figure, caption in section_figures(beam.work, design):
             sheet.figure(figure, caption)
@@ -132,15 +142,6 @@ def state_shown(beam: ConcreteBeam) -> None:
                 f"{', '.join(check['name'] for check in others)}.",
                 role="note",
             )
-    sheet.items(
-        [
-            bottom_words(beam.work, design),
-            " ".join(top_words(beam.work, design)),
-            stirrup_words(beam.work, design),
-            f"Nationally determined parameters: {beam.about.national.name}; {beam.about.national.source}. "
-            f"Holds for {_limits()}.",
-        ]
-    )
     sheet.figure(*bars_figure(beam.work, design))
 
 
@@ -168,20 +169,22 @@ def state_bending(beam: ConcreteBeam) -> None:
     beam.strength, beam.size = strength, size
     checks: list[tuple[str, Line]] = []
     sheet.subsection("Bars and effective depths")
-    beam.faces["sag"] = write_bars(sheet, design.bottom, "sag", size, blocks["sag"], beam.origin("bottom"))
-    if design.top:
-        beam.faces["hog"] = write_bars(sheet, design.top, "hog", size, blocks["hog"], beam.origin("top"))
-    if not design.top or design.top.bars.count != design.through.bars.count:
-        beam.faces["end"] = write_bars(sheet, design.through, "end", size, blocks["hog"], beam.origin("top"))
-    if case.sag:
-        sheet.subsection("Span, bottom bars in tension")
-        checks += _bending(beam, "sag")
-    if design.top:
-        sheet.subsection("Support, top bars in tension")
-        checks += _bending(beam, "hog")
-    if case.end_moment:
-        sheet.subsection("End supports, top bars in tension")
-        checks += _end_support(beam, strength, size)
+    with sheet.repeating():
+        beam.faces["sag"] = write_bars(
+            sheet, design.bottom, "sag", size, blocks["sag"], beam.origin("bottom")
+        )
+        if design.top:
+            beam.faces["hog"] = write_bars(sheet, design.top, "hog", size, blocks["hog"], beam.origin("top"))
+        if not design.top or design.top.bars.count != design.through.bars.count:
+            through = beam.origin("top")
+            beam.faces["end"] = write_bars(sheet, design.through, "end", size, blocks["hog"], through)
+        # the section that is used most stands in full, the other in short
+        for tag, _ in sorted(beam.tags, key=lambda each: -round(each[1].moment / each[1].bending.moment, 9)):
+            sheet.subsection(SUBTITLES[tag])
+            checks += _bending(beam, tag)
+        if case.end_moment:
+            sheet.subsection("End supports, top bars in tension")
+            checks += _end_support(beam, strength, size)
     sheet.subsection("Both faces")
     checks += write_most(sheet, [beam.faces[tag] for tag, _ in beam.tags], size)
     checks += write_cover(sheet, design, size, list(beam.faces.values()))

@@ -158,13 +158,13 @@ def _metadata(record: Record, notebook: Notebook) -> Iterator[Finding]:
 
 def _shown_lines(notebook: Notebook, lines: Sequence[WorkedLine]) -> Iterator[Finding]:
     """What the notebook shows of each line."""
-    shown = notebook.lines
+    shown, by_number = notebook.lines, {line.line.no: line for line in lines}
     for line in lines:
         block = shown.get(line.line.no)
         if block is None:
             yield wrong(_GROUP, f"line {line.line.no}", "the notebook does not show this line")
             continue
-        fault = _block_fault(line, block)
+        fault = _block_fault(line, block) or _likeness_fault(line, block, by_number, shown)
         yield Finding(
             _GROUP,
             f"line {line.line.no}",
@@ -194,7 +194,31 @@ def _block_fault(line: WorkedLine, block: Mapping[str, Any]) -> str:
     texts = ["".join(map(str, row)) for row in rows]
     if record.kind != "require" and f"\\textbf{{{record.shown}}}" not in "".join(texts):
         return f"the notebook does not show it as {record.shown}"
-    return _formula_fault(line, " ".join(texts)) if record.kind != "take" else ""
+    return _formula_fault(line, " ".join(texts)) if record.kind != "take" and not block.get("like") else ""
+
+
+def _likeness_fault(
+    line: WorkedLine,
+    block: Mapping[str, Any],
+    by_number: Mapping[str, WorkedLine],
+    shown: Mapping[str, Mapping[str, Any]],
+) -> str:
+    """A line shown in short names one shown in full whose formula is the same but for its symbols."""
+    like = block.get("like")
+    if not like:
+        return ""
+    other = by_number.get(like) if isinstance(like, str) else None
+    if other is None or shown.get(like, {}).get("like") or other.line.kind != line.line.kind:
+        return "it is said to be worked out as a line that is not shown in full"
+    if _shape(line.formula, {}) != _shape(other.formula, {}):
+        return f"it is said to be worked out as line {like}, whose formula is another"
+    return ""
+
+
+def _shape(part: Part, places: dict[str, int]) -> tuple[object, ...]:
+    """A formula with places in place of its symbols."""
+    text: object = places.setdefault(part.text, len(places)) if part.op == "symbol" else part.text
+    return part.op, text, part.unit, tuple(_shape(each, places) for each in part.args)
 
 
 def _formula_fault(line: WorkedLine, text: str) -> str:
