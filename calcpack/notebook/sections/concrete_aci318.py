@@ -261,11 +261,19 @@ def _flange(written: Written) -> None:
 
 def state_bending_strength(written: Written) -> None:
     """The sections with the largest sagging and hogging moments."""
-    design = written.design
     written.sheet.section("Bending")
-    for name, face in (("bottom", design.bottom), ("top", design.top)):
-        if face.task is not None:
+    bent = [(name, face) for name, face in written.faces if face.task is not None]
+    # the section that is used most stands in full, the other in short
+    with written.sheet.repeating():
+        for name, face in sorted(bent, key=lambda each: -round(_used(each[1]), 9)):
             _bending(written, name, face)
+
+
+def _used(face: Face) -> float:
+    """Moment over design strength."""
+    assert face.extreme is not None
+    assert face.state is not None
+    return face.extreme.value / face.state.design
 
 
 def _bending(written: Written, name: str, face: Face) -> None:

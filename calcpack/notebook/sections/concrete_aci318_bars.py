@@ -15,10 +15,11 @@ from calcpack.clauses.aci318.strength import INCH
 from calcpack.figures import Figure, bar_layout, capacity_figure
 from calcpack.notebook.sections.concrete_aci318_faces import worst_end
 from calcpack.notebook.sections.concrete_aci318_lines import ENVELOPE, Written
+from calcpack.notebook.sections.concrete_aci318_shear import HALF, shear_figure
 from calcpack.sheet import Line
 
 SAMPLES = 120
-WIDTH = 150.0  # of the diagrams [mm]
+WIDTH = 150.0  # of the bar layout [mm]
 
 
 def state_bars(written: Written) -> None:
@@ -36,11 +37,12 @@ def state_bars(written: Written) -> None:
     )
     stress = state_service_stress(sheet, written.materials)
     layers: dict[str, Layer] = {}
-    for name, face in (("bottom", design.bottom), ("top", design.top)):
+    for name, face in written.faces:
         if face.task is not None:
-            layers[name] = state_spacing(
-                sheet, written.size, face.group, aggregate, stress, name, written.tag(name)
-            )
+            with sheet.repeating():
+                layers[name] = state_spacing(
+                    sheet, written.size, face.group, aggregate, stress, name, written.tag(name)
+                )
             written.note(layers[name].checks)
     if design.cage.depth > 36 * INCH:
         sheet.text(
@@ -48,10 +50,11 @@ def state_bars(written: Written) -> None:
             "next to the tension face, spaced as for crack control (ACI 318-19 9.7.2.3).",
             role="caution",
         )
-    if "bottom" in written.bent:
-        _bottom(written, layers["bottom"])
-    top = _top(written, layers["top"]) if "top" in written.bent else None
-    _figure(written, top)
+    with sheet.repeating():
+        if "bottom" in written.bent:
+            _bottom(written, layers["bottom"])
+        top = _top(written, layers["top"]) if "top" in written.bent else None
+    _figures(written, top)
 
 
 def _bottom(written: Written, layer: Layer) -> None:
@@ -139,7 +142,7 @@ def _top(written: Written, layer: Layer) -> Line | None:
     return state_top_length(sheet, bending, development, hogging, span, widest)
 
 
-def _figure(written: Written, top: Line | None) -> None:
+def _figures(written: Written, top: Line | None) -> None:
     work, design, given = written.work, written.design, written.work.given
     layers: list[tuple[str, float, float, str]] = []
     if top is not None:
@@ -161,7 +164,13 @@ def _figure(written: Written, top: Line | None) -> None:
         )
         for zone in design.zones
     ]
-    written.sheet.figure(_moments(written, top), "Moments against the design strength of the bars there.")
+    sheet = written.sheet
+    with sheet.columns([1, 1]) as column:
+        sheet.figure(_moments(written, top), "Moments against the design strength of the bars there.")
+        column()
+        sheet.figure(
+            shear_figure(written), "Shear against its design strength, between the critical sections."
+        )
     figure = bar_layout(
         given.length,
         [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
@@ -172,7 +181,7 @@ def _figure(written: Written, top: Line | None) -> None:
         mark=given.mark,
         width_mm=WIDTH,
     )
-    written.sheet.figure(figure, "Bars and stirrup zones; not a bending schedule.")
+    sheet.figure(figure, "Bars and stirrup zones; not a bending schedule.")
 
 
 def _over_supports(written: Written, reach: float) -> list[tuple[float, float]]:
@@ -220,7 +229,7 @@ def _moments(written: Written, top: Line | None) -> Figure:
         compared=_between_faces(written),
         fixed=given.fixed,
         mark=given.mark,
-        width_mm=WIDTH,
+        width_mm=HALF,
     )
 
 

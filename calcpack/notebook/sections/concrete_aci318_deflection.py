@@ -171,38 +171,14 @@ def _table(written: Written, found: Sequence[Deflected]) -> None:
 
 def _stretch(written: Written, gross: Gross, stretch: Stretch, service: Service) -> Deflected:
     sheet, work, size, materials = written.sheet, written.work, written.size, written.materials
-    design, keys = written.design, written.work.given.design
-    actions = design.actions
-    name, _ = actions.service_factors
+    keys, actions = written.work.given.design, written.design.actions
     words = _words(stretch)
     span = work.lines["span", stretch.number - 1]
     ends = [actions.hogs(stretch, left) and not stretch.overhang for left in (True, False)]
     held = ("simply supported", "one end continuous", "both ends continuous")[sum(ends)]
     state_least_depth(sheet, materials, size, span, "cantilever" if stretch.overhang else held)
-    sagging: Line | None = None
-    if "bottom" in written.bent and not stretch.overhang and service.sagging > 0:
-        bars = written.bent["bottom"]
-        bent = Bent(
-            service.sagging,
-            f"Largest sagging moment of {words} under {name}",
-            bars.steel,
-            bars.depth,
-            False,
-            "m",
-        )
-        sagging = state_effective_inertia(sheet, materials, size, gross, bent)
-    hogging = []
-    for left, tag in ((True, "a"), (False, "b")):
-        moment = service.hogging[0 if left else 1]
-        if "top" in written.bent and actions.hogs(stretch, left) and work.study.significant(moment, "moment"):
-            bars = written.bent["top"]
-            where = f"Hogging moment at the {'left' if left else 'right'} of {words} under {name}"
-            bent = Bent(moment, where, bars.steel, bars.depth, True, tag)
-            hogging.append(state_effective_inertia(sheet, materials, size, gross, bent))
-    if sagging is not None:
-        inertia = state_average(sheet, sagging, hogging)
-    else:
-        inertia = hogging[0] if hogging else gross.inertia
+    with sheet.repeating():
+        inertia = _inertia(written, gross, stretch, service, words)
     reach: Expression = 2 * span if stretch.overhang else span.as_expression()
     limits = keys["deflection_limits"]
     checks = state_deflection(
@@ -225,6 +201,36 @@ def _stretch(written: Written, gross: Gross, stretch: Stretch, service: Service)
         written_lines["Delta_L"] if service.live else None,
         written_lines["Delta_after"],
     )
+
+
+def _inertia(written: Written, gross: Gross, stretch: Stretch, service: Service, words: str) -> Line:
+    """The effective second moment of area of a stretch; the largest moment in full, others in short."""
+    sheet, work, size, materials = written.sheet, written.work, written.size, written.materials
+    actions = written.design.actions
+    name, _ = actions.service_factors
+    sagging: Line | None = None
+    if "bottom" in written.bent and not stretch.overhang and service.sagging > 0:
+        bars = written.bent["bottom"]
+        bent = Bent(
+            service.sagging,
+            f"Largest sagging moment of {words} under {name}",
+            bars.steel,
+            bars.depth,
+            False,
+            "m",
+        )
+        sagging = state_effective_inertia(sheet, materials, size, gross, bent)
+    hogging = []
+    for left, tag in ((True, "a"), (False, "b")):
+        moment = service.hogging[0 if left else 1]
+        if "top" in written.bent and actions.hogs(stretch, left) and work.study.significant(moment, "moment"):
+            bars = written.bent["top"]
+            where = f"Hogging moment at the {'left' if left else 'right'} of {words} under {name}"
+            bent = Bent(moment, where, bars.steel, bars.depth, True, tag)
+            hogging.append(state_effective_inertia(sheet, materials, size, gross, bent))
+    if sagging is not None:
+        return state_average(sheet, sagging, hogging)
+    return hogging[0] if hogging else gross.inertia
 
 
 def _compression(written: Written, stretch: Stretch) -> Expression | None:

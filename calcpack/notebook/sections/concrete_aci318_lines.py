@@ -7,6 +7,7 @@ from dataclasses import dataclass, field
 from calcpack.clauses.aci318.flexure import BendingLines
 from calcpack.clauses.aci318.materials import Checks, Materials, Size
 from calcpack.notebook.sections.concrete_aci318_design import Design
+from calcpack.notebook.sections.concrete_aci318_faces import Face
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line, Sheet
 
@@ -26,6 +27,8 @@ class Written:
         The shortest clear span.
     bent : dict
         The lines of each bent section by the face in tension, "bottom" and "top".
+    shear_strengths : dict
+        The design strength by the spacing of the stirrups [m].
     """
 
     work: Work
@@ -34,11 +37,17 @@ class Written:
     size: Size
     clear: Line
     bent: dict[str, BendingLines] = field(default_factory=dict)
+    shear_strengths: dict[float, Line] = field(default_factory=dict)
 
     @property
     def sheet(self) -> Sheet:
         """What is written on."""
         return self.work.sheet
+
+    @property
+    def faces(self) -> tuple[tuple[str, Face], ...]:
+        """Both faces by their name."""
+        return ("bottom", self.design.bottom), ("top", self.design.top)
 
     @property
     def mark(self) -> str:

@@ -16,11 +16,12 @@ from calcpack.clauses.aci318.shear import (
     state_zone,
     take_stirrups,
 )
-from calcpack.figures import capacity_figure
+from calcpack.figures import Figure, capacity_figure
 from calcpack.notebook.sections.concrete_aci318_lines import ENVELOPE, Written
 from calcpack.sheet import Line
 
 SAMPLES = 120
+HALF = 84.0  # width of a diagram beside another [mm]
 
 
 def state_shear(written: Written) -> None:
@@ -62,7 +63,7 @@ def state_shear(written: Written) -> None:
         written.note(
             state_compression_ties(sheet, written.size, widest.spacing, thinnest, written.size.stirrup)
         )
-    _figure(written, strengths)
+    written.shear_strengths.update(strengths)
     _zones(written, strengths)
     written.note(state_torsion(sheet, written.materials, written.size, concrete.phi))
     if len(design.wings) == 1:
@@ -104,14 +105,15 @@ def _middle(written: Written, spacing: float, concrete: Concrete) -> tuple[Stirr
     return stirrups, design_strength
 
 
-def _figure(written: Written, strengths: dict[float, Line]) -> None:
-    work, given = written.work, written.work.given
+def shear_figure(written: Written) -> Figure:
+    """Shear against what concrete and stirrups carry."""
+    work, given, strengths = written.work, written.work.given, written.shear_strengths
     band = work.study.analysed.band("shear")
     capacity = [
         (zone.start, zone.stop, strengths[zone.spacing].value, strengths[zone.spacing].value)
         for zone in written.design.zones
     ]
-    figure = capacity_figure(
+    return capacity_figure(
         given.length,
         [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
         "shear",
@@ -121,9 +123,8 @@ def _figure(written: Written, strengths: dict[float, Line]) -> None:
         compared=compared(written),
         fixed=given.fixed,
         mark=given.mark,
-        width_mm=150.0,
+        width_mm=HALF,
     )
-    written.sheet.figure(figure, "Shear against its design strength, between the critical sections.")
 
 
 def compared(written: Written) -> list[tuple[float, float]]:
