@@ -107,7 +107,10 @@ def build_job(
         for given, template in inputs
     ]
     notebooks.append(_appendix(framed, [given for given, _ in inputs]))
-    contents = _executed(notebooks, follow)
+    try:
+        contents = _executed(notebooks, follow)
+    except CalcpackError as error:
+        raise CalcpackError(*(_told_by_sheet(framed, each) for each in error.problems)) from None
     front: list[Section] = []
     kept_sheets: Mapping[str, tuple[SheetContent, Any]] = {}
     if since is not None:
@@ -147,7 +150,7 @@ def _inputs(framed: Frame, only: Sequence[str]) -> list[tuple[BeamInput, Templat
         try:
             template = find_template(beam.beam.template, Path(job.folder))
             _check_needs(template, framed, mark)
-            design = template.settle(beam.beam.design, mark)
+            design = template.settle(beam.beam.design, mark, job.data_files)
             found.append((beam_input(framed, mark, design, template.stamp), template))
         except CalcpackError as error:
             problems += [_placed(job, mark, problem) for problem in error.problems]
@@ -165,6 +168,12 @@ def _check_needs(template: Template, framed: Frame, mark: str) -> None:
                 remedy=f"give the beam a {need}",
                 key=need,
             )
+
+
+def _told_by_sheet(framed: Frame, problem: Problem) -> Problem:
+    """What a sheet's notebook found wrong with its beam, with its place in the job's files."""
+    mark = (problem.mark or "").removeprefix("beam ")
+    return _placed(framed.job, mark, problem) if mark in framed.beams and problem.key else problem
 
 
 def _placed(job: Job, mark: str, problem: Problem) -> Problem:

@@ -241,7 +241,8 @@ def print_loads(console: Console) -> None:
 
 
 def _leaves(path: str, parameter: Parameter) -> Iterator[tuple[str, Parameter]]:
-    if not parameter.keys:
+    if parameter.type != "table":
         yield path, parameter
+        return
     for key, inner in parameter.keys.items():
         yield from _leaves(f"{path}.{key}", inner)

@@ -202,12 +202,21 @@ class OwnCombination(Frozen):
     factors: dict[Case, float]
 
 
+class DataFile(Frozen):
+    """A TOML file beside the job file that a design key names."""
+
+    name: str
+    sha256: str
+    data: dict[str, Any]
+    lines: dict[str, int] = {}  # dotted key -> line
+
+
 class Job(Frozen):
     """A whole job as read."""
 
     file: str  # the job file's name, no folder
     folder: str  # where it stands; used to find files beside it, never shown
-    digest: str  # SHA-256 over the job file and its tables, in the order read
+    digest: str  # SHA-256 over the job file, its tables and data files, in the order read
     files: dict[str, str]  # name -> SHA-256 of each file read
     job: Header
     submission: Submission
@@ -221,4 +230,5 @@ class Job(Frozen):
     combinations: tuple[OwnCombination, ...] = ()
     # what "lightest in FAMILY" chooses from: family -> its sections by weight, the job's own among them
     candidates: dict[str, tuple[Section, ...]] = {}
+    data_files: dict[str, DataFile] = {}  # name -> what a design key named
     lines: dict[str, int] = {}  # "beam B1 section" -> line in the job file, for errors found later

@@ -10,6 +10,7 @@ from typing import Any, TypeVar
 
 from pydantic import BaseModel
 
+from calcpack.job.data_files import read_data_files
 from calcpack.job.entries import EXAMPLES, Entry, Problems, validated
 from calcpack.job.errors import CalcpackError, Problem, nearest
 from calcpack.job.fields import shown
@@ -22,7 +23,7 @@ from calcpack.job.members import (
     read_panel,
     read_wall,
 )
-from calcpack.job.model import Basis, Column, Header, Job, OwnCombination, Submission
+from calcpack.job.model import Basis, Beam, Column, DataFile, Header, Job, OwnCombination, Submission
 from calcpack.job.own_tables import catalogue
 from calcpack.job.plan import CLOSE, Grid, distance
 from calcpack.job.raw import RawGrid
@@ -107,6 +108,7 @@ class _Reader:
         columns = [read_column(each, around) for each in entries["column"]]
         walls = [read_wall(each, around) for each in entries["wall"]]
         combinations = self._combinations()
+        data_files = self._data_files(_sound(beams))
         self._check_columns(columns, entries["column"])
         self.problems.tell()
         assert header
@@ -131,6 +133,7 @@ class _Reader:
                 for each in sections.values()
                 if each is not None and each.open
             },
+            data_files=data_files,
             lines=self.lines,
         )
 
@@ -278,6 +281,13 @@ class _Reader:
             if entry.mark and kind in MEMBERS:
                 self._keep_lines(entry.mark, entry)
             yield entry
+
+    def _data_files(self, beams: tuple[Beam, ...]) -> dict[str, DataFile]:
+        """The files that design keys name, now part of the input."""
+        found = read_data_files(self.folder, beams, self.lines, self.problems)
+        known = {each.name for each in self.files}
+        self.files += [file for file, _ in found if file.name not in known]
+        return {data.name: data for _, data in found}
 
     def _loads(self, beams: list[Entry]) -> list[list[Entry]]:
         """The loads of each beam, those in its own table first."""

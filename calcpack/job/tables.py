@@ -88,6 +88,13 @@ _BARE = re.compile(r"\s*[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?\s*
 _ITEM = re.compile(r"\((?P<pair>[^()]*)\)|(?P<word>[^\s,;()]+)|(?P<gap>[\s,;]+)|(?P<stray>.)")
 
 
+def inside(folder: Path, name: str) -> bool:
+    """Whether a name leads to a place in the job's folder or below it, and nowhere else."""
+    pure = PurePosixPath(name)
+    outside = pure.is_absolute() or ".." in pure.parts or "\\" in name or ":" in name or "\0" in name
+    return not outside and (folder / name).resolve().is_relative_to(folder.resolve())
+
+
 def table_path(folder: Path, name: str) -> Path:
     """Where a table stands: beside the job file or in a folder below it, nowhere else.
 
@@ -98,8 +105,7 @@ def table_path(folder: Path, name: str) -> Path:
     """
     path = folder / name
     pure = PurePosixPath(name)
-    outside = pure.is_absolute() or ".." in pure.parts or "\\" in name or ":" in name or "\0" in name
-    if outside or not path.resolve().is_relative_to(folder.resolve()):
+    if not inside(folder, name):
         raise CalcpackError(
             f"the table '{name}' is outside the job's folder", remedy="put it beside the job file"
         )

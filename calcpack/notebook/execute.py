@@ -5,6 +5,7 @@ from __future__ import annotations
 import asyncio
 import contextlib
 import os
+import re
 import sys
 import tempfile
 from collections.abc import Callable, Sequence
@@ -12,12 +13,13 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
-from calcpack.job.errors import CalcpackError
+from calcpack.job.errors import CalcpackError, Problem
 from calcpack.notebook.fill import FilledNotebook
 
 CELL_SECONDS = 300
 # Loaded while the kernel waits, forgotten by the reset between two notebooks but still in memory.
 WARM_UP = "import calcpack.notebook, calcpack.equivalent, calcpack.figures"
+_KEYED = re.compile(r"((?:design|basis)\.[a-zA-Z0-9_.]+): (.*)")
 RESET = "get_ipython().reset(new_session=True, aggressive=False)"
 
 
@@ -70,12 +72,13 @@ class _Kernel:
             await runner.async_execute(reset_kc=False)
         except CellExecutionError as error:
             said = str(error.evalue).strip() or error.ename
+            if error.ename == "CalcpackError":
+                raise CalcpackError(*_problems(said, f"beam {filled.mark}")) from None
             raise CalcpackError(
-                said if error.ename == "CalcpackError" else f"the notebook stops: {error.ename}: {said}",
-                mark=f"beam {filled.mark}",
+                f"the notebook stops: {error.ename}: {said}", mark=f"beam {filled.mark}"
             ) from None
         except (CellTimeoutError, DeadKernelError):
-            raise CalcpackError(
+            raise _Unfinished(
                 f"the notebook did not finish (limit {CELL_SECONDS} s a cell)", mark=f"beam {filled.mark}"
             ) from None
         await self._execute_quietly(RESET)
@@ -91,6 +94,26 @@ class _Kernel:
             if self.client is not None:
                 self.client.stop_channels()
             await self.manager.shutdown_kernel(now=True)
+
+
+class _Unfinished(CalcpackError):
+    """A notebook without an end: of its own, or because another one stopped all."""
+
+
+def _problems(said: str, mark: str) -> list[Problem]:
+    """What a notebook found wrong, one a line; a design key at its beginning is its place.
+
+    Examples
+    --------
+    >>> print(*_problems("design.cover: leaves no room for bars", "beam B1"))
+    beam B1: design.cover: leaves no room for bars
+    """
+    found = []
+    for line in said.splitlines():
+        match = _KEYED.fullmatch(line.removeprefix(f"{mark}: "))
+        key, message = match.groups() if match else (None, line.removeprefix(f"{mark}: "))
+        found.append(Problem(message, mark=mark, key=key))
+    return found
 
 
 def _settled(node: Any) -> Any:
@@ -130,6 +153,8 @@ async def _execute(
                     tasks.create_task(work(kernel))
         except BaseExceptionGroup as group:
             found = [error for error in group.exceptions if isinstance(error, CalcpackError)]
+            # where one notebook has stopped the others, theirs is no fault of their own
+            found = [error for error in found if not isinstance(error, _Unfinished)] or found
             if not found:
                 raise
             problems = [problem for error in found for problem in error.problems]

@@ -175,7 +175,8 @@ def _by_template(framed: Frame, mark: str) -> Worst:
     beam = framed.beams[mark].beam
     template = find_template(beam.template, Path(framed.job.folder))
     try:
-        given = beam_input(framed, mark, template.settle(beam.design, mark), template.stamp)
+        design = template.settle(beam.design, mark, framed.job.data_files)
+        given = beam_input(framed, mark, design, template.stamp)
         module: Any = import_module(CHOOSERS[beam.template])
         return Worst(*module.worst_of(Study(given)))
     except CalcpackError as error:

@@ -5,8 +5,9 @@ from __future__ import annotations
 import hashlib
 import tomllib
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
+from types import MappingProxyType
 from typing import Any, Literal
 
 import nbformat
@@ -14,7 +15,7 @@ from pydantic import Field, ValidationError
 
 from calcpack.job.errors import CalcpackError, Problem, nearest
 from calcpack.job.house import house_folder
-from calcpack.job.model import Frozen
+from calcpack.job.model import DataFile, Frozen
 from calcpack.job.units import parse_quantity
 from calcpack.notebook.parameters import TemplateStamp
 
@@ -26,10 +27,12 @@ class Parameter(Frozen):
     """A key that a job may put under ``[beam.design]``."""
 
     says: str
-    type: Literal["number", "integer", "text", "choice", "true or false", "table", "quantity"]
+    type: Literal["number", "integer", "text", "choice", "true or false", "table", "quantity", "data file"]
     of: str = ""  # for a quantity its kind: "length", "stress", ...
     choices: tuple[str, ...] = ()  # for a number: words that may stand in its place
-    keys: dict[str, Parameter] = Field(default_factory=dict)  # for a table, its own keys
+    keys: dict[str, Parameter] = Field(default_factory=dict)  # of a table, or of what a data file holds
+    keys_of: str = ""  # a table parameter of the template whose keys it has as well
+    required: bool = False  # in a data file
     minimum: float | None = None
     maximum: float | None = None
     default: Any = None
@@ -81,8 +84,18 @@ class Template:
             not_covered=self.settings.not_covered,
         )
 
-    def settle(self, design: Mapping[str, Any], mark: str) -> dict[str, Any]:
+    def settle(
+        self, design: Mapping[str, Any], mark: str, files: Mapping[str, DataFile] = MappingProxyType({})
+    ) -> dict[str, Any]:
         """Check a beam's design keys against the template's, and fill in the defaults.
+
+        Parameters
+        ----------
+        design : mapping
+            As the job gives them.
+        mark : str
+        files : mapping
+            The job's data files by name; a key that names one gets what it holds.
 
         Raises
         ------
@@ -90,7 +103,7 @@ class Template:
             Every key that is unknown or does not fit, with what would be right.
         """
         problems: list[Problem] = []
-        settled = _settle(design, self.settings.parameters, f"beam {mark}", "design", problems)
+        settled = _settle(design, self.settings.parameters, f"beam {mark}", "design", problems, files)
         if problems:
             raise CalcpackError(*problems)
         return settled
@@ -136,7 +149,21 @@ def read_template(folder: Path) -> Template:
         detail = error.strerror if isinstance(error, OSError) else "it is not a readable template"
         raise CalcpackError(f"the template '{folder.name}' cannot be read: {detail}") from None
     digest = hashlib.sha256(notebook + settings_text).hexdigest()
-    return Template(folder, settings, notebook.decode("utf-8"), digest)
+    return Template(folder, _shared_keys(settings), notebook.decode("utf-8"), digest)
+
+
+def _shared_keys(settings: TemplateSettings) -> TemplateSettings:
+    """The settings with every ``keys_of`` followed."""
+
+    def followed(parameter: Parameter) -> Parameter:
+        keys = {key: followed(each) for key, each in parameter.keys.items()}
+        if parameter.keys_of in settings.parameters:
+            keys = {**settings.parameters[parameter.keys_of].keys, **keys}
+        return parameter.model_copy(update={"keys": keys})
+
+    return settings.model_copy(
+        update={"parameters": {key: followed(each) for key, each in settings.parameters.items()}}
+    )
 
 
 def _settle(
@@ -145,22 +172,28 @@ def _settle(
     mark: str,
     prefix: str,
     problems: list[Problem],
+    files: Mapping[str, DataFile],
 ) -> dict[str, Any]:
     settled = {}
     for key in given:
         if key not in known:
             problems.append(
-                Problem("there is no such key", nearest(key, known), mark=mark, key=f"{prefix}.{key}")
+                Problem("there is no such key", nearest(key, known), mark=mark, key=_joined(prefix, key))
             )
     for key, parameter in known.items():
-        path = f"{prefix}.{key}"
+        path = _joined(prefix, key)
         if key not in given:
+            if parameter.required:
+                problems.append(
+                    Problem("this key is missing", f"it says {parameter.says}", mark=mark, key=path)
+                )
+            table = parameter.type == "table"
             settled[key] = (
-                _settle({}, parameter.keys, mark, path, problems) if parameter.keys else parameter.default
+                _settle({}, parameter.keys, mark, path, problems, files) if table else parameter.default
             )
             continue
         try:
-            settled[key] = _value(given[key], parameter, mark, path, problems)
+            settled[key] = _value(given[key], parameter, mark, path, problems, files)
         except CalcpackError as error:
             problems += [problem.at(mark=mark, key=path) for problem in error.problems]
         except ValueError as error:
@@ -168,12 +201,27 @@ def _settle(
     return settled
 
 
-def _value(given: Any, parameter: Parameter, mark: str, path: str, problems: list[Problem]) -> Any:
+def _joined(prefix: str, key: str) -> str:
+    return f"{prefix}.{key}" if prefix else key
+
+
+def _value(
+    given: Any,
+    parameter: Parameter,
+    mark: str,
+    path: str,
+    problems: list[Problem],
+    files: Mapping[str, DataFile],
+) -> Any:
     match parameter.type:
         case "table":
             if not isinstance(given, Mapping):
                 raise ValueError(f"a table of {', '.join(parameter.keys)} is expected")
-            return _settle(given, parameter.keys, mark, path, problems)
+            return _settle(given, parameter.keys, mark, path, problems, files)
+        case "data file":
+            if not isinstance(given, str):
+                raise ValueError("the name of a set, or of a file beside the job file, is expected")
+            return _held(files[given], parameter, problems) if given in files else given
         case "quantity":
             return parse_quantity(given, parameter.of)
         case "true or false":
@@ -191,6 +239,18 @@ def _value(given: Any, parameter: Parameter, mark: str, path: str, problems: lis
     if isinstance(given, str) and given in parameter.choices:
         return given
     return _number(given, parameter)
+
+
+def _held(file: DataFile, parameter: Parameter, problems: list[Problem]) -> dict[str, Any]:
+    """What a data file holds, checked like the design keys themselves; each problem with its own line."""
+    found: list[Problem] = []
+    held = _settle(file.data, parameter.keys, "", "", found, {})
+    for each in found:
+        key = each.key or ""
+        while key and key not in file.lines:
+            key = key.rpartition(".")[0]
+        problems.append(replace(each, file=file.name, line=file.lines.get(key, 1)))
+    return {"file": file.name, "sha256": file.sha256, **held}
 
 
 def _number(given: Any, parameter: Parameter) -> float | int:

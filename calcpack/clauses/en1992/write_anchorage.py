@@ -6,7 +6,7 @@ from calcpack.clauses.en1992.anchorage import Anchorage
 from calcpack.clauses.en1992.design import Design
 from calcpack.clauses.en1992.national import STANDARD
 from calcpack.clauses.en1992.write_bending import FaceLines, SizeLines
-from calcpack.clauses.en1992.write_materials import StrengthLines, millimetres
+from calcpack.clauses.en1992.write_materials import StrengthLines, millimetres, origin_of
 from calcpack.clauses.en1992.write_shear import ShearLines
 from calcpack.sheet import Expression, Line, Sheet, greatest, least, measured, number, quantity
 
@@ -31,7 +31,9 @@ def write_cover(
         millimetres(national.cover[case.exposure]),
         "mm",
         f"Least cover for durability, {case.exposure}, structural class S4",
-        national.name,
+        f"{national.file} cover.{case.exposure}"
+        if national.file and case.exposure in national.own
+        else origin_of(national, case.exposure),
         "4.4.1.2(5), Table 4.4N",
         word="least cover for durability",
     )
@@ -40,7 +42,7 @@ def write_cover(
         millimetres(national["delta_c_dev"]),
         "mm",
         "Allowance for deviation",
-        national.name,
+        origin_of(national, "delta_c_dev"),
         national.values["delta_c_dev"].clause,
         word="allowance for cover",
     )

@@ -72,7 +72,7 @@ def write_strengths(
         return sheet.take(symbol, value / 1e3, "MPa", says, origin, cite, word=word)
 
     def parameter(key: str, symbol: str, says: str, word: str = "") -> Line:
-        place = changed.get(key, RECOMMENDED if national.name.startswith(RECOMMENDED) else national.name)
+        place = changed.get(key) or origin_of(national, key)
         return sheet.take(symbol, national[key], "1", says, place, national.values[key].clause, word=word)
 
     fck = material("f_ck", strength.fck, "Concrete, characteristic strength", "Table 3.1")
@@ -117,6 +117,13 @@ def write_strengths(
     lam, eta = _block(sheet, strength, fck)
     limit = _limit(sheet, strength, national, origin, changed)
     return StrengthLines(fck, fctm, fctk, ecm, fyk, es, gamma_c, fcd, fyd, fctd, lam, eta, strain, limit)
+
+
+def origin_of(national: National, key: str) -> str:
+    """Where a national parameter comes from, as a line says it."""
+    if national.file and key in national.own:
+        return f"{national.file} values.{key}"
+    return RECOMMENDED if national.name.startswith(RECOMMENDED) or national.file else national.name
 
 
 def _block(sheet: Sheet, strength: Strengths, fck: Line) -> tuple[Line, Line]:

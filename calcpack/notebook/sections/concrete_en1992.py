@@ -7,7 +7,7 @@ from dataclasses import dataclass, field, replace
 from calcpack.clauses.en1992.design import Design, design_beam
 from calcpack.clauses.en1992.faces import Face
 from calcpack.clauses.en1992.model import LIMITS
-from calcpack.clauses.en1992.national import STANDARD
+from calcpack.clauses.en1992.national import STANDARD, National
 from calcpack.clauses.en1992.write_anchorage import write_bond, write_cover, write_end
 from calcpack.clauses.en1992.write_bending import (
     FaceLines,
@@ -125,8 +125,7 @@ def state_shown(beam: ConcreteBeam) -> None:
             bottom_words(beam.work, design),
             " ".join(top_words(beam.work, design)),
             stirrup_words(beam.work, design),
-            f"Nationally determined parameters: {beam.about.national.name}; {beam.about.national.source}. "
-            f"Holds for {_limits()}.",
+            _national_words(beam.about.national),
         ]
     )
     with sheet.columns([10, 13]) as column:
@@ -143,6 +142,17 @@ def state_shown(beam: ConcreteBeam) -> None:
                 role="note",
             )
     sheet.figure(*bars_figure(beam.work, design))
+
+
+def _national_words(national: National) -> str:
+    """The set of national parameters, what it was taken from, and every value that is not the recommended."""
+    place = f" ({national.file}, beside the job file)" if national.file else ""
+    words = f"Nationally determined parameters: {national.name}{place}; {national.source}."
+    if differing := [each.words for each in national.differing]:
+        words += f" Not as recommended: {'; '.join(differing)}."
+    elif national.file:
+        words += " Every value is the recommended one."
+    return f"{words} The clauses hold for {_limits()}."
 
 
 def _limits() -> str:

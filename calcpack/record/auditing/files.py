@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterable, Mapping
+from collections.abc import Mapping
 from dataclasses import dataclass, field
 from pathlib import Path, PurePosixPath
 from typing import Any
@@ -178,12 +178,14 @@ def find_target(path: Path, *, records: Path | None = None, job: Path | None = N
 
 
 def _job_inputs(job: Path) -> dict[str, bytes]:
-    """The job file and the tables beside it that a table key may name."""
+    """The job file, and the tables and data files beside it that a key may name."""
     found = {job.name: read_file(job)}
-    for path in sorted(job.resolve().parent.rglob("*")):
-        if path.suffix.lower() in (".csv", ".xlsx") and path.is_file():
+    # tables first: a table of beams may name data files too
+    beside = sorted(job.resolve().parent.rglob("*"), key=lambda path: (path.suffix.lower() == ".toml", path))
+    for path in beside:
+        if path.suffix.lower() in (".csv", ".xlsx", ".toml") and path.is_file() and path != job.resolve():
             name = path.relative_to(job.resolve().parent).as_posix()
-            if name.encode() in found[job.name]:
+            if any(name.encode() in content for content in found.values()):
                 found[name] = read_file(path)
     return found
 
@@ -298,6 +300,12 @@ def _first_page(by_mark: Mapping[str, tuple[str, ...]], name: str) -> tuple[int,
 
 def _inputs(attached: Mapping[str, bytes]) -> dict[str, bytes]:
     """The job file and its tables among the files a pack carries."""
-    names: Iterable[str] = [name for name in attached if name.endswith(".toml")]
+    names = [name for name in attached if name.lower().endswith(".toml")]
+    names.sort(key=lambda name: not _is_job(attached[name]))
     tables = [name for name in attached if name.lower().endswith((".csv", ".xlsx"))]
     return {name: attached[name] for name in (*names, *tables)}
+
+
+def _is_job(content: bytes) -> bool:
+    """Whether a TOML file is a job file, not a data file that one names."""
+    return re.search(rb"(?m)^[ \t]*(?:\[[ \t]*job[ \t]*\]|job[ \t]*[.=])", content) is not None

@@ -9,6 +9,7 @@ from pathlib import Path
 from typing import Any
 
 from calcpack.job.errors import CalcpackError
+from calcpack.job.model import Beam, Job
 from calcpack.record.auditing.beam import Load
 from calcpack.record.auditing.copies import differences
 from calcpack.record.auditing.files import Target, stays_below
@@ -67,8 +68,20 @@ def job_facts(target: Target) -> JobFacts:
             "submission": job.submission.model_dump(mode="json"),
             "panels": {each.mark: each.model_dump(mode="json", exclude={"place"}) for each in job.panels},
             "beams": {each.mark: each.model_dump(mode="json") for each in job.beams},
+            "design": {each.mark: keys for each in job.beams if (keys := _design(job, each)) is not None},
         }
     )
+
+
+def _design(job: Job, beam: Beam) -> dict[str, Any] | None:
+    """A beam's design keys as its template takes them; None where the template is not at hand."""
+    from calcpack.notebook.templates import find_template
+
+    try:
+        template = find_template(beam.template, Path(job.folder))
+        return template.settle(beam.design, beam.mark, job.data_files)
+    except CalcpackError:
+        return None
 
 
 def left_at_earlier_revision(header: object, now: object) -> bool:
@@ -125,6 +138,11 @@ def audit_job(given: Given | None, facts: Mapping[str, Any] | None) -> tuple[Fin
         *_same("line", given.data.get("points"), beam["points"]),
         *_same("fixed", given.data.get("fixed"), [beam["fixed_start"], beam["fixed_end"]]),
         *_same("free", given.data.get("free"), [beam["free_start"], beam["free_end"]]),
+        *(
+            _same("design", given.data.get("design"), facts["design"][given.mark])
+            if given.mark in facts["design"]
+            else ()
+        ),
         *_same("equivalent", given.equivalent, beam["equivalent"]),
         *_same("design_loads", given.design_loads, beam["design_loads"]),
         *_own_loads(given, beam["loads"]),
