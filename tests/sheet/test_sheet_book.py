@@ -357,3 +357,41 @@ def test_sums_of_many_lines() -> None:
     line = sheet.hence("F", total(parts), "kN", "All")
     assert line.value == 6.0
     assert sheet.blocks[-1]["rows"][1] == [r"1.5\,\text{kN}", *[r"+ 1.5\,\text{kN}"] * 3]
+
+
+def repeated():
+    sheet = Sheet("B1")
+    sheet.section("Bars")
+    lines = []
+    with sheet.repeating():
+        for face, value in (("sag", 20), ("hog", 16)):
+            bar = sheet.take(f"phi_{face}", value, "mm", "Bars", "chosen", word="bar")
+            lines.append(sheet.hence(f"A_{face}", 3 * bar**2, "mm^2", "Area", word="area"))
+            sheet.require(
+                lines[-1] >= sheet.take(f"m_{face}", 9, "mm^2", "Least", "job", word="least"), "Enough"
+            )
+        more = sheet.hence("A_all", 4 * bar**2, "mm^2", "Area", word="area of all")
+    again = sheet.hence("A_out", 3 * bar**2, "mm^2", "Area", word="area outside")
+    return sheet, lines, more, again
+
+
+def test_a_formula_that_stands_already_is_shown_in_short_and_kept_in_full():
+    sheet, (_, hog), more, again = repeated()
+    blocks = {block["no"]: block for block in sheet.blocks if block["type"] == "line"}
+    assert blocks[hog.no]["like"] == "1.02"
+    assert blocks[hog.no]["rows"] == [["\\textbf{768\xa0mm²}"]]
+    assert blocks["1.08"]["like"] == "1.04"
+    assert "".join(blocks["1.08"]["rows"][0]) == "\\textbf{768\xa0mm²}\\ge \\textbf{9.00\xa0mm²}"
+    # another number in the formula, or no repetition asked for: in full
+    assert "like" not in blocks[more.no]
+    assert "like" not in blocks[again.no]
+    assert hog.expression is not None
+    assert hog.inputs == {"phi_hog": "1.05"}
+
+
+def test_symbols_that_differ_by_their_place_stand_once_in_the_notation():
+    sheet, *_ = repeated()
+    sheet.notation()
+    meanings = [(row[0], row[1]) for row in sheet.blocks[-1]["rows"]]
+    assert ("\\phi", "bar") in meanings
+    assert [meaning for _, meaning in meanings].count("area") == 1
