@@ -30,7 +30,7 @@ def test_results_checks_and_page_one_say_the_same(job, mark, total, live, built)
     if live in checks:
         assert results["deflection"]["live_mm"] == checks[live]
     page = (built(job) / "sheets" / f"{mark}.html").read_text(encoding="utf-8")
-    opening = page[: page.index("Basis, assumptions")]
+    opening = page[: page.index("Actions and combinations:")]
     for key, no in results["deflection_lines"].items():
         assert results["deflection"][key] == lines[no]["value"]
         assert lines[no]["shown"] in opening
