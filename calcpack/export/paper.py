@@ -30,6 +30,7 @@ _TEXT = re.compile(r"(<text\b[^>]*>)(.*?)(</text>)", re.S)
 _BETWEEN_TAGS = re.compile(r"[^<>]+(?=<|$)")
 _PNG_HEAD = b"\x89PNG\r\n\x1a\n"
 _DOTS_PER_MM = 96 / 25.4
+MOST_RATIO = 100  # a ratio beyond it says no more than that
 
 
 class Paper:
@@ -192,7 +193,7 @@ class Paper:
             "demand": self.words(row.demand),
             "resistance": self.words(row.resistance),
             "ratio": row.ratio,
-            "shown": f"{row.ratio:.2f}",
+            "shown": f"{row.ratio:.2f}" if row.ratio < MOST_RATIO else f"over {MOST_RATIO}",
             "passes": row.passes,
         }
 

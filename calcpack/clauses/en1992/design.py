@@ -137,6 +137,12 @@ class Design:
         )
 
     @property
+    def held(self) -> bool:
+        """Bars enough for the force at every end support. Source: EN 1992-1-1:2004, 9.2.1.4(2)."""
+        strong = self.bottom.bars.area * self.case.strength.fyd
+        return all(each.force <= strong * (1 + CLOSE) for each in self.ends)
+
+    @property
     def anchored(self) -> bool:
         """Room for the bottom bars at every end support whose width is given."""
         return all(each.room is None or within(each.length.length, each.room) for each in self.ends)
@@ -200,15 +206,18 @@ def _with(case: BeamCase, stirrups: Stirrups) -> Design:
 
 
 def _deflecting(case: BeamCase, stirrups: Stirrups, sizes: Sequence[Sequence[str]]) -> Design:
-    """With as many more bottom bars as the deflection asks for."""
+    """With as many more bottom bars as deflection and the force at the end supports ask for."""
     first: Design | None = None
+    held: Design | None = None
     for more in (None, *MORE) if case.given.bottom is None else (None,):
         design = _faces(case, stirrups, more, sizes)
         first = first or design
-        if not case.sag or design.deflects_fine:
+        if not case.sag or (design.deflects_fine and design.held):
             return design
+        if design.held and held is None:
+            held = design
     assert first is not None
-    return first
+    return held or first
 
 
 def _faces(case: BeamCase, stirrups: Stirrups, more: float | None, sizes: Sequence[Sequence[str]]) -> Design:
@@ -246,7 +255,7 @@ def _bottom(case: BeamCase, stirrup: float, more: float | None, sizes: Sequence[
         return Face(case, case.sagging, hangers[0], 0.0, 0.0)
     face = choose(case, case.sagging, case.sag, lasting, stirrup, compression=hangers, sizes=sizes)
     if more:
-        least = more * face.required[0]
+        least = more * max(face.required[0], face.least)
         face = choose(
             case, case.sagging, case.sag, lasting, stirrup, compression=hangers, least=least, sizes=sizes
         )

@@ -161,6 +161,11 @@ def settle(work: Work) -> Design:
         if keys["stirrups"]["spacing"] or best.spacings[0] >= CLOSEST[system] * (1 - 1e-9):
             break
     assert best is not None
+    if not keys["stirrups"]["spacing"] and best.spacings[0] < CLOSEST[system] * (1 - 1e-9):
+        how.append(
+            f"no stirrups at {work.show(CLOSEST[system] * 1000, 'mm')} or more carry the shear: the section "
+            "is too small"
+        )
     return replace(best, how=(*how, *best.how))
 
 

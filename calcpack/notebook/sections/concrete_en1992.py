@@ -44,7 +44,7 @@ from calcpack.notebook.work import Work
 from calcpack.sheet import Line, formula
 
 SUBTITLES = {"sag": "Span, bottom bars in tension", "hog": "Support, top bars in tension"}
-SHOWN = ("bending", "moments along", "shear", "anchorage", "crack width", "deflection")
+SHOWN = ("no deep beam", "bending", "moments along", "shear", "anchorage", "crack width", "deflection")
 
 
 @dataclass
@@ -196,6 +196,7 @@ def state_bending(beam: ConcreteBeam) -> None:
             sheet.subsection("End supports, top bars in tension")
             checks += _end_support(beam, strength, size)
     sheet.subsection("Both faces")
+    checks += _not_deep(beam, size)
     checks += write_most(sheet, [beam.faces[tag] for tag, _ in beam.tags], size)
     checks += write_cover(sheet, design, size, list(beam.faces.values()))
     beam.keep(checks)
@@ -241,6 +242,24 @@ def _end_support(beam: ConcreteBeam, strength: StrengthLines, size: SizeLines) -
         moment <= resistance, "Bending, end support, all top bars running through", f"{STANDARD}, 9.2.1.2(1)"
     )
     return [("bending, end support", line)]
+
+
+def _not_deep(beam: ConcreteBeam, size: SizeLines) -> list[tuple[str, Line]]:
+    """A span shorter than three depths is no beam to these clauses: said only where it is so."""
+    spans = beam.design.case.spans
+    shortest = min(
+        (number for number, span in enumerate(spans) if not span.overhang),
+        key=lambda number: spans[number].length,
+        default=None,
+    )
+    if shortest is None or 3 * size.depth.value <= spans[shortest].length * 1e3 * (1 + 1e-9):
+        return []
+    line = beam.work.sheet.require(
+        beam.work.lines["span", shortest] >= 3 * size.depth,
+        "The beam is not a deep one: these clauses do not hold",
+        f"{STANDARD}, 5.3.1(3)",
+    )
+    return [("no deep beam", line)]
 
 
 def _size(beam: ConcreteBeam) -> SizeLines:

@@ -138,7 +138,10 @@ def _given(design: Mapping[str, Any]) -> Given:
                 remedy=f"give {', '.join(needed)}, or leave {key} out and let the template choose",
                 key=f"design.{key}",
             )  # fmt: skip
-        sizes = bar(design[key]["size"])
+        try:
+            sizes = bar(design[key]["size"])
+        except CalcpackError as error:
+            raise CalcpackError(*(each.at(key=f"design.{key}.size") for each in error.problems)) from None
         found[key] = (values[0], sizes, *values[2:])
     return Given(**found, cot=None if design["cot_theta"] == "best" else design["cot_theta"])
 

@@ -35,10 +35,15 @@ def bottom_words(work: Work, design: Design) -> str:
         return f"Bottom, as the job gives them: {bars}; {_asked(work, face)}."
     if not case.sag:
         return f"Bottom: {bars}, to hold the stirrups; no moment stretches them."
+    if not (face.resists and face.fits and face.cracks_fine):
+        return (
+            f"Bottom, chosen: {bars}; {_asked(work, face)}. No bars that fit satisfy moment, x/d, spacing "
+            "and crack width; these come nearest. The section is too small."
+        )
     return (
         f"Bottom, chosen: {bars}; {_asked(work, face)}. Rule: {_rule()}; more, up to half as much "
-        "again, where the deflection asks for it, and thinner ones where an end support has no room to "
-        "anchor them."
+        "again, where the deflection or the force at an end support asks for it, and thinner ones where an "
+        "end support has no room to anchor them."
     )
 
 
@@ -50,7 +55,9 @@ def top_words(work: Work, design: Design) -> list[str]:
         bars = f"{design.top.bars.words} = {_area(work, design.top.bars.area)}"
         if case.given.top:
             return [f"Top, as the job gives them, all running through: {bars}; {_asked(work, design.top)}."]
-        words.append(f"Top over supports, chosen by the same rule: {bars}; {_asked(work, design.top)}.")
+        enough = design.top.resists and design.top.fits and design.top.cracks_fine
+        rule = "chosen by the same rule" if enough else "none that fit satisfy everything, these come nearest"
+        words.append(f"Top over supports, {rule}: {bars}; {_asked(work, design.top)}.")
         if not design.zones:
             return [*words, "They all run through."]
         count = f"{through.bars.count} of them run through"

@@ -248,3 +248,49 @@ def test_struts_do_not_depend_on_the_spacing():
     case, shear = beam.design.case, beam.design.shear
     one = truss(case.sagging.web, shear.arm, 1e-3, shear.cot, case.strength, case.national)
     assert one[1] == shear.capacity(0.1)[1]
+
+
+def deep(depth, load):
+    """A span of 5 m, B1 to C1, of some depth."""
+    section = f'[sections.deep]\nshape = "rectangle"\nwidth = "300 mm"\ndepth = "{depth} mm"\n'
+    job = HEAD.format(units="SI") + section + "".join(COLUMN.format(mark=mark) for mark in ("B1", "C1"))
+    job += BEAM.format(
+        mark="D",
+        line='["B1", "C1"]',
+        keys="",
+        section="deep",
+        material="c30",
+        design="",
+        dead=load,
+        live=load,
+    )
+    return worked(job, "D")
+
+
+def test_bottom_bars_grow_where_an_end_support_pulls_at_them_most():
+    work, beam = deep(1600, 70)
+    found = checks(work)
+    # short and deep, the force at the support, V a_l / z = V cot θ / 2, asks for more than bending does
+    assert found["bars at the end support"]["passes"]
+    assert found["bars at the end support"]["ratio"] > found["bending, span"]["ratio"]
+    assert beam.design.bottom.bars.area > 1.1 * beam.design.bottom.required[0]
+
+
+def test_a_deep_beam_is_said_to_be_none_of_these_clauses():
+    for depth, is_deep in ((1650, False), (1700, True)):
+        found = checks(deep(depth, 20)[0])
+        assert ("no deep beam" in found) is is_deep
+    assert found["no deep beam"]["demand"] == pytest.approx(5.1)
+    assert found["no deep beam"]["capacity"] == pytest.approx(5.0)
+    assert not found["no deep beam"]["passes"]
+
+
+def test_a_size_that_is_none_is_told_with_its_key():
+    job = HEAD.format(units="SI") + "".join(COLUMN.format(mark=mark) for mark in ("B1", "C1"))
+    job += BEAM.format(
+        mark="D", line='["B1", "C1"]', keys="", section="r", material="c30",
+        design='bottom = { count = 2, size = "23 mm" }', dead=9, live=9,
+    )  # fmt: skip
+    with pytest.raises(CalcpackError) as caught:
+        worked(job, "D")
+    assert str(caught.value) == "design.bottom.size: there is no bar '23 mm'; the nearest is '25 mm'"
