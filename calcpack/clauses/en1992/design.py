@@ -140,7 +140,7 @@ class Design:
     def held(self) -> bool:
         """Bars enough for the force at every end support. Source: EN 1992-1-1:2004, 9.2.1.4(2)."""
         strong = self.bottom.bars.area * self.case.strength.fyd
-        return all(each.force <= strong * (1 + CLOSE) for each in self.ends)
+        return all(within(each.force, strong) for each in self.ends)
 
     @property
     def anchored(self) -> bool:
