@@ -220,7 +220,7 @@ def _handed_on(record: Record, given: Given, lines: Sequence[WorkedLine]) -> Ite
             "lines " + ", ".join(loose),
             "figures of the analysis inside their formulas",
             verdict=Verdict.OPEN,
-            remark="the record holds no such result: they are held against the notebook, to the digits it shows",
+            remark="no result has them: they are held against the notebook, to the digits it shows",
         )
 
 
