@@ -10,8 +10,9 @@ from calcpack.clauses.bars import Bar
 from calcpack.clauses.en1992.national import STANDARD, National
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Material, Section
+from calcpack.sheet.evaluation import holds
 
-CLOSE = 1e-9  # [m] within which two places are one; as a part, two sides of a requirement
+CLOSE = 1e-9  # [m] within which two places are one
 
 
 def within(demand: float, capacity: float) -> bool:
@@ -22,7 +23,7 @@ def within(demand: float, capacity: float) -> bool:
     >>> within(0.1 + 0.2, 0.3), within(0.3001, 0.3)
     (True, False)
     """
-    return demand <= capacity * (1 + CLOSE)
+    return holds("le", demand, capacity)
 
 
 class Limit(NamedTuple):

@@ -31,6 +31,7 @@ from numpy.typing import NDArray
 from calcpack.clauses.en1993.rules import CURVE, IMPERFECTION, SLENDER, Curves, Factors
 from calcpack.clauses.en1993.section import Profile
 from calcpack.clauses.steel import SegmentMoments, stretch
+from calcpack.sheet.evaluation import holds
 from calcpack.statics import Curve, LineLoad, Load
 
 Floats = NDArray[np.float64]
@@ -267,7 +268,7 @@ def imperfection(profile: Profile, curves: Curves) -> tuple[str, float]:
     (('c', 0.49), ('b', 0.34))
     """
     stocky, slender = CURVE[curves]
-    curve = stocky if profile.shape.depth / profile.shape.width <= SLENDER * (1 + 1e-12) else slender
+    curve = stocky if holds("le", profile.shape.depth / profile.shape.width, SLENDER) else slender
     return curve, IMPERFECTION[curve]
 
 
@@ -303,11 +304,11 @@ def reduction(
     """
     if curves == "general":
         phi = 0.5 * (1 + alpha * (slenderness - 0.2) + slenderness**2)
-        chi = min(1.0, 1 / (phi + math.sqrt(max(phi**2 - slenderness**2, 0.0))))
+        chi = min(1.0, 1 / (phi + math.sqrt(phi**2 - slenderness**2)))
         return Reduction(alpha, phi, chi, 1.0, chi)
     plateau, beta = factors.plateau, factors.beta
     phi = 0.5 * (1 + alpha * (slenderness - plateau) + beta * slenderness**2)
-    root = math.sqrt(max(phi**2 - beta * slenderness**2, 0.0))
+    root = math.sqrt(phi**2 - beta * slenderness**2)
     chi = min(1.0, 1 / slenderness**2, 1 / (phi + root))
     share = 1 / math.sqrt(diagram)
     correction = min(1.0, 1 - 0.5 * (1 - share) * (1 - 2.0 * (slenderness - 0.8) ** 2))

@@ -11,7 +11,7 @@ import numpy as np
 from calcpack.actions import AnalysedBeam, CombinationResult
 from calcpack.clauses.en1993 import bearing as local
 from calcpack.clauses.en1993 import buckling
-from calcpack.clauses.en1993.rules import LARGEST_DIAGRAM, OVERHANG, Curves, LoadHeight
+from calcpack.clauses.en1993.rules import HALF, LARGEST_DIAGRAM, OVERHANG, Curves, LoadHeight
 from calcpack.clauses.en1993.section import Profile
 from calcpack.clauses.en1993.segments import Segment, tried
 from calcpack.clauses.steel import Arrangement, SegmentMoments, segment_moments
@@ -211,7 +211,7 @@ def beside_shear(profile: Profile, analysed: AnalysedBeam) -> Beside | None:
     Source: EN 1993-1-1:2005, 6.2.8.
     """
     moment, shear = analysed.band("moment"), analysed.band("shear")
-    if abs(shear.largest_absolute.value) <= profile.shear / 2:
+    if abs(shear.largest_absolute.value) <= HALF * profile.shear:
         return None
     curves = (moment.upper, moment.lower, shear.upper, shear.lower)
     breaks = np.unique(np.concatenate([curve.breaks for curve in curves]))
@@ -220,7 +220,7 @@ def beside_shear(profile: Profile, analysed: AnalysedBeam) -> Beside | None:
     for x in places.tolist():
         for side in ("left", "right"):
             forces = [abs(curve.at(x, side)) for curve in (shear.upper, shear.lower)]
-            if max(forces) <= profile.shear / 2:
+            if max(forces) <= HALF * profile.shear:
                 continue
             bent = max(abs(curve.at(x, side)) for curve in (moment.upper, moment.lower))
             found = Beside(x, bent, max(forces), profile.bending_with_shear(max(forces)))

@@ -8,9 +8,10 @@ from calcpack.clauses.en1993.buckling import imperfection
 from calcpack.clauses.en1993.design import Buckling, Conditions
 from calcpack.clauses.en1993.lines_profile import Partial, ProfileLines
 from calcpack.clauses.en1993.lines_section import modulus_line
-from calcpack.clauses.en1993.rules import CODE, CURVE_CITE, LARGEST_DIAGRAM, OVERHANG, OVERHANG_CITE
+from calcpack.clauses.en1993.rules import CODE, CURVE_CITE, LARGEST_DIAGRAM, OVERHANG, OVERHANG_CITE, SLENDER
 from calcpack.clauses.en1993.section import Profile
 from calcpack.sheet import PI, Expression, Line, Sheet, least, number, sqrt
+from calcpack.sheet.evaluation import holds
 
 SERNA = "Serna et al., JCSR 62 (2006) 566 (from memory)"
 ENERGY = "half sine wave; Timoshenko and Gere, ch. 6"
@@ -298,12 +299,12 @@ def buckling(
         f"{CODE} 6.3.2.2(1)",
     )
     curve, value = imperfection(profile, conditions.curves)
-    stocky = profile.shape.depth / profile.shape.width <= 2
+    stocky = holds("le", profile.shape.depth / profile.shape.width, SLENDER)
     alpha = sheet.take(
         "alpha_LT",
         value,
         "1",
-        f"Imperfection factor, curve {curve}: h/b {'not over' if stocky else 'over'} 2",
+        f"Imperfection factor, curve {curve}: h/b {'not over' if stocky else 'over'} {SLENDER:g}",
         "rolled I-section",
         CURVE_CITE[conditions.curves],
     )

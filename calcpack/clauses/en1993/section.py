@@ -6,6 +6,7 @@ import math
 from dataclasses import dataclass
 
 from calcpack.clauses.en1993.rules import (
+    HALF,
     OUTSTAND,
     RECOMMENDED,
     REFERENCE_STRENGTH,
@@ -104,7 +105,7 @@ class Profile:
         In classes 1 and 2 equation (6.30); in class 3 the web's part of the elastic modulus is taken with
         the reduced strength of 6.2.8(3).
         """
-        if abs(shear) <= self.shear / 2:
+        if abs(shear) <= HALF * self.shear:
             return self.bending
         rho = (2 * abs(shear) / self.shear - 1) ** 2
         s, web = self.shape, self.web_depth
