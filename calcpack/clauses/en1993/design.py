@@ -274,9 +274,9 @@ def _checked(
     demand = abs(moments.largest.value)
     height = height_of(profile, conditions.load_height)
     length, diagram, share, twisting, load = part.length, 1.0, 1.0, 0.0, 0.0
-    where = conditions.load_height
+    above = conditions.load_height == "top"
     if part.free_tip:
-        length *= OVERHANG[where == "top"]
+        length *= OVERHANG[above]
         critical = buckling.critical_moment(profile, length, diagram, 0.0)
     elif part.held_top:
         diagram = buckling.held_factor(profile, arrangement.moment, part.start, part.end, length)
@@ -294,8 +294,8 @@ def _checked(
             for load in each.loads
         ]
         if height:
-            twisting = max(buckling.twisting_load(loads, part.start, part.end, above=height > 0), 0.0)
-        load = buckling.load_factor(diagram if height > 0 else 1.0, length, twisting, demand)
+            twisting = max(buckling.twisting_load(loads, part.start, part.end, above=above), 0.0)
+        load = buckling.load_factor(diagram if above else 1.0, length, twisting, demand)
         critical = buckling.critical_moment(profile, length, diagram, load * height)
     slenderness = (profile.modulus_of_section * profile.strength / critical) ** 0.5
     alpha = buckling.imperfection(profile, conditions.curves)[1]

@@ -50,7 +50,7 @@ def critical(
 
     Source: as ``clauses.en1993.buckling`` has it.
     """
-    part = found.segment
+    part, above = found.segment, conditions.load_height == "top"
     arrangement = f"analysis, {found.arrangement.combination.name}"
     demand = sheet.take(
         "M_Ed,b",
@@ -61,7 +61,7 @@ def critical(
         given=False,
     )
     if part.free_tip:
-        length = _overhang_length(sheet, found, origin)
+        length = _overhang_length(sheet, part.length, above, origin)
         diagram = sheet.take(
             "C_1", 1.0, "1", "Diagram factor, on the safe side for an overhang", "template", OVERHANG_CITE
         )
@@ -76,13 +76,13 @@ def critical(
         )
     load, term = None, None
     if found.height:
-        load = _load_factor(sheet, demand, length, diagram, found, arrangement)
+        load = _load_factor(sheet, demand, length, diagram if above else None, found, arrangement)
         height = sheet.take(
             "z_g",
             found.height * 1000,
             "mm",
             "Load above the shear centre: half the depth"
-            if found.height > 0
+            if above
             else "Load below the shear centre: half the depth, negative",
             f"{origin}.load_height",
             word="height of the load above the shear centre",
@@ -116,7 +116,7 @@ def _euler(sheet: Sheet, given: ProfileLines, length: Line) -> Line:
 
 def _length(sheet: Sheet, found: Buckling, origin: str) -> Line:
     part = found.segment
-    own = abs(part.length - (part.end - part.start)) < 1e-9
+    own = holds("eq", part.length, part.end - part.start)
     return sheet.take(
         "L_cr",
         part.length,
@@ -156,11 +156,10 @@ def _held(
     return Critical(demand, length, None, None, value)
 
 
-def _overhang_length(sheet: Sheet, found: Buckling, origin: str) -> Line:
-    above = found.length > found.segment.length * (1 + 1e-9)
+def _overhang_length(sheet: Sheet, overhang: float, above: bool, origin: str) -> Line:
     reach = sheet.take(
         "ell_o",
-        found.segment.length,
+        overhang,
         "m",
         "Overhang whose tip nothing holds",
         f"{origin}.tip_held",
@@ -224,23 +223,24 @@ def _diagram(sheet: Sheet, demand: Line, found: Buckling, arrangement: str) -> L
 
 
 def _load_factor(
-    sheet: Sheet, demand: Line, length: Line, diagram: Line, found: Buckling, arrangement: str
+    sheet: Sheet, demand: Line, length: Line, diagram: Line | None, found: Buckling, arrangement: str
 ) -> Line:
+    """C2; without C1 for a load below the shear centre."""
     twisting = sheet.take(
         "F_phi",
         found.twisting,
         "kN",
         "Load on the segment times sin² of its place in the half wave of twist"
-        + ("; point loads times sin" if found.height > 0 else ""),
+        + ("; point loads times sin" if diagram is not None else ""),
         arrangement,
         word="load times the square of the half sine wave",
         given=False,
     )
     return sheet.hence(
         "C_2",
-        (diagram * length if found.height > 0 else length) * twisting / (PI**2 * demand),
+        (diagram * length if diagram is not None else length) * twisting / (PI**2 * demand),
         "1",
-        "Load factor, for its height" + ("" if found.height > 0 else "; below, as for C1 = 1"),
+        "Load factor, for its height" + ("" if diagram is not None else "; below, as for C1 = 1"),
         ENERGY,
         word="load factor, for the load's height",
     )

@@ -196,6 +196,9 @@ CASES = {
     "centre, given C1": (Conditions("general", "centre", 1.3), {}),
     "longer": (Conditions(), {"unbraced": 9.0}),
     "shorter": (Conditions("rolled"), {"unbraced": 2.0}),
+    "very short, general": (Conditions("general", "centre"), {"unbraced": 0.3}),
+    "very short, rolled": (Conditions("rolled", "centre"), {"unbraced": 0.3}),
+    "very long, rolled": (Conditions("rolled", "centre", 1.3), {"unbraced": 16.0}),
     "held, rolled": (Conditions("rolled"), {"braced": "continuous"}),
     "held, general": (Conditions(), {"braced": "continuous", "unbraced": 3.0}),
 }
