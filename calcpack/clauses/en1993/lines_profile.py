@@ -15,6 +15,7 @@ from calcpack.clauses.en1993.rules import (
 )
 from calcpack.clauses.en1993.section import Profile
 from calcpack.sheet import Line, Sheet, greatest, number, quantity, sqrt
+from calcpack.sheet.evaluation import holds
 
 RANK = {1: "class 1", 2: "class 2", 3: "class 3", 4: "class 4"}
 
@@ -83,7 +84,7 @@ def take_profile(
     def steel(symbol: str, value: float, says: str, cite: str) -> Line:
         return sheet.take(symbol, value / 1e3, "MPa", says, material, cite)
 
-    band = "up to" if profile.thickness <= THICK else "over"
+    band = "up to" if holds("le", profile.thickness, THICK) else "over"
     h = size("h", s.depth, f"Depth of {profile.name}", "depth")
     b = size("b", s.width, "Width of the flanges")
     t_w = size("t_w", s.web, "Thickness of the web")

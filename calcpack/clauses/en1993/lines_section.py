@@ -28,7 +28,7 @@ def modulus_line(given: ProfileLines, profile: Profile) -> tuple[Line, str]:
 
     Source: EN 1993-1-1:2005, 6.2.5(2) and 6.3.2.1(3).
     """
-    if profile.section_class <= 2:
+    if profile.section_class in (1, 2):
         return given.W_pl, f"plastic, {RANK[profile.section_class]}"
     return given.W_el, f"elastic, {RANK[profile.section_class]}"
 
@@ -80,7 +80,7 @@ def bending(
     """
     moment = _demand(sheet, "M_Ed", demand, "kN*m", says, origin, stated)
     modulus, words = modulus_line(given, profile)
-    equation = "(6.13)" if profile.section_class <= 2 else "(6.14)"
+    equation = "(6.13)" if profile.section_class in (1, 2) else "(6.14)"
     resistance = sheet.hence(
         "M_c,Rd",
         modulus * given.f_y / partial.gamma_M0,
@@ -211,7 +211,7 @@ def bending_beside_shear(
     )
     modulus, words = modulus_line(given, profile)
     lost: Expression
-    if profile.section_class <= 2:
+    if profile.section_class in (1, 2):
         lost = rho * (given.h_w * given.t_w) ** 2 / (4 * given.t_w)
         cite = f"{CODE} 6.2.8(5) (6.30)"
     else:

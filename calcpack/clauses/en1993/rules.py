@@ -7,6 +7,8 @@ from __future__ import annotations
 
 from typing import Literal, NamedTuple
 
+from calcpack.sheet.evaluation import holds
+
 Curves = Literal["general", "rolled"]
 LoadHeight = Literal["top", "centre", "bottom"]
 
@@ -27,7 +29,7 @@ OUTSTAND = ClassLimits(9, 10, 14, f"{CODE} Table 5.2, sheet 2")
 WEB = ClassLimits(72, 83, 124, f"{CODE} Table 5.2, sheet 1")
 REFERENCE_STRENGTH = 235e3  # [kPa], ε = √(235/fy)
 
-IMPERFECTION: dict[str, float] = {"a": 0.21, "b": 0.34, "c": 0.49, "d": 0.76}  # Tables 6.3 and 6.5
+IMPERFECTION: dict[str, float] = {"a": 0.21, "b": 0.34, "c": 0.49}  # Tables 6.3 and 6.5
 SLENDER = 2.0  # h/b up to which the better curve holds
 CURVE: dict[Curves, tuple[str, str]] = {"general": ("a", "b"), "rolled": ("b", "c")}
 CURVE_CITE: dict[Curves, str] = {
@@ -54,7 +56,7 @@ class Validity(NamedTuple):
 
     def holds(self, value: float) -> bool:
         """Whether a value [unit] lies within, the ends included."""
-        return self.least * (1 - 1e-9) <= value <= self.largest * (1 + 1e-9)
+        return holds("ge", value, self.least) and holds("le", value, self.largest)
 
 
 LIMITS: dict[str, Validity] = {

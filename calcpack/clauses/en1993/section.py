@@ -19,6 +19,7 @@ from calcpack.clauses.en1993.rules import (
 from calcpack.clauses.steel import ISection, i_section
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Material, Section
+from calcpack.sheet.evaluation import holds
 
 
 @dataclass(frozen=True)
@@ -75,7 +76,7 @@ class Profile:
     @property
     def modulus_of_section(self) -> float:
         """W_y: plastic in classes 1 and 2, else elastic [m3], 6.2.5(2) and 6.3.2.1(3)."""
-        return self.shape.plastic_modulus if self.section_class <= 2 else self.shape.elastic_modulus
+        return self.shape.plastic_modulus if self.section_class in (1, 2) else self.shape.elastic_modulus
 
     @property
     def shear_area(self) -> float:
@@ -109,7 +110,7 @@ class Profile:
             return self.bending
         rho = (2 * abs(shear) / self.shear - 1) ** 2
         s, web = self.shape, self.web_depth
-        if self.section_class <= 2:
+        if self.section_class in (1, 2):
             lost = rho * (web * s.web) ** 2 / (4 * s.web)
         else:
             lost = rho * s.web * web**3 / (6 * s.depth)
@@ -135,7 +136,7 @@ def part_class(slenderness: float, epsilon: float, limits: ClassLimits) -> int:
     (1, 2, 4)
     """
     bounds = (limits.first, limits.second, limits.third)
-    return 1 + sum(slenderness > bound * epsilon * (1 + 1e-12) for bound in bounds)
+    return 1 + sum(holds("gt", slenderness, bound * epsilon) for bound in bounds)
 
 
 def yield_strength(material: Material, thickness: float) -> float:
@@ -154,7 +155,7 @@ def yield_strength(material: Material, thickness: float) -> float:
     CalcpackError
         The material has no yield strength, or none for parts over 40 mm.
     """
-    key = "fy" if thickness <= THICK * (1 + 1e-9) else "fy_thick"
+    key = "fy" if holds("le", thickness, THICK) else "fy_thick"
     value = material.values.get(key)
     if material.kind != "steel" or not isinstance(value, int | float):
         raise CalcpackError(

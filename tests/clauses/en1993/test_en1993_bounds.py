@@ -21,7 +21,6 @@ from calcpack.clauses.en1993.buckling import (
 )
 from calcpack.clauses.en1993.design import (
     Conditions,
-    LocalForce,
     _point_loads,
     beside_shear,
     buckling_of,
@@ -29,13 +28,9 @@ from calcpack.clauses.en1993.design import (
     height_of,
     local_forces,
 )
-from calcpack.clauses.en1993.lines_bearing import bearing as write
-from calcpack.clauses.en1993.lines_buckling import buckling, critical
-from calcpack.clauses.en1993.lines_profile import take_factors, take_profile
 from calcpack.clauses.en1993.rules import RECOMMENDED, Factors
 from calcpack.clauses.en1993.segments import segments
 from calcpack.clauses.steel import SegmentMoments
-from calcpack.sheet import Sheet
 from calcpack.statics import BeamLine, Curve, Extreme, LineLoad, PointLoad
 
 IPE = profile("IPE 330")
@@ -298,60 +293,3 @@ def test_force_and_bending_together():
     assert found.together(each) == pytest.approx(
         each.force / each.bearing.resistance + 0.8 * each.moment / elastic, rel=1e-12
     )
-
-
-# What the lines say --------------------------------------------------------------------------------------
-
-
-def said(beam, conditions, **keys):
-    """Lines of the first segment."""
-    part = buckled(beam, conditions, **keys)
-    sheet = Sheet("B1")
-    sheet.section("Buckling")
-    given, partial = take_profile(sheet, IPE), take_factors(sheet, IPE)
-    start = critical(sheet, given, part, conditions)
-    return sheet, start, buckling(sheet, given, partial, IPE, conditions, start)
-
-
-def found_line(sheet, symbol):
-    return next(each for each in sheet.lines.values() if each.symbol == symbol)
-
-
-def test_words_on_the_loads_height():
-    sheet, start, _ = said(simple(10.0), Conditions(load_height="top"))
-    assert "above the shear centre" in found_line(sheet, "z_g").says
-    assert found_line(sheet, "F_phi").says.endswith("point loads times sin")
-    assert start.load.says == "Load factor, for its height"
-    sheet, start, _ = said(simple(10.0), Conditions(load_height="bottom"))
-    assert "below the shear centre" in found_line(sheet, "z_g").says
-    assert found_line(sheet, "F_phi").says.endswith("half wave of twist")
-    assert start.load.says.endswith("below, as for C1 = 1")
-
-
-def test_where_the_buckling_length_comes_from():
-    """A length that the job gives and that is longer than the segment is said to be the job's."""
-    assert said(simple(10.0), Conditions())[1].length.origin == "segment"
-    assert said(simple(10.0), Conditions(), unbraced=2.0)[1].length.origin == "segment"
-    assert said(simple(10.0), Conditions(), unbraced=5.0)[1].length.origin == "design.unbraced_length"
-
-
-def test_words_on_the_side_ratio():
-    """IPE 330: h/b = 330/160, over 2; IPE 300 exactly 2."""
-    for name, words in (("IPE 330", "h/b over 2"), ("IPE 300", "h/b not over 2")):
-        steel = profile(name)
-        (part,) = buckling_of(steel, simple(10.0), segments([(0, 4)], [0, 4]), Conditions())
-        sheet = Sheet("B1")
-        sheet.section("Buckling")
-        given, partial = take_profile(sheet, steel), take_factors(sheet, steel)
-        buckling(sheet, given, partial, steel, Conditions(), critical(sheet, given, part, Conditions()))
-        assert found_line(sheet, "alpha_LT").says.endswith(words)
-
-
-@pytest.mark.parametrize(("share", "passes"), [(0.99, True), (1.01, False)])
-def test_force_at_the_resistance_of_the_web(share, passes):
-    web = bearing(IPE, 0.1, None)
-    force = LocalForce(None, 2.0, share * web.resistance, "G", 0.0, None, web)
-    sheet = Sheet("B1")
-    sheet.section("Bearing")
-    given, partial = take_profile(sheet, IPE), take_factors(sheet, IPE)
-    assert write(sheet, given, partial, force, Conditions(), "at 2 m").check.passes is passes

@@ -198,7 +198,7 @@ CASES = {
     "shorter": (Conditions("rolled"), {"unbraced": 2.0}),
     "very short, general": (Conditions("general", "centre"), {"unbraced": 0.3}),
     "very short, rolled": (Conditions("rolled", "centre"), {"unbraced": 0.3}),
-    "very long, rolled": (Conditions("rolled", "centre", 1.3), {"unbraced": 16.0}),
+    "very long, rolled": (Conditions("rolled", "centre", 1.3), {"unbraced": 40.0}),
     "held, rolled": (Conditions("rolled"), {"braced": "continuous"}),
     "held, general": (Conditions(), {"braced": "continuous", "unbraced": 3.0}),
 }

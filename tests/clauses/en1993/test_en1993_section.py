@@ -101,7 +101,7 @@ def test_web_slenderness_limit_counts_eta():
     assert profile("IPE 600", "S460", Factors(eta=1.2)).web_may_buckle  # against 42.9
 
 
-@pytest.mark.parametrize("name", ["IPE 330", "HE 300 A", "HE 200 B", "IPE 600"])
+@pytest.mark.parametrize("name", ["IPE 330", "HE 200 A", "HE 300 A", "HE 200 B", "IPE 600"])
 @pytest.mark.parametrize("grade", ["S235", "S355"])
 def test_lines_say_what_the_numbers_say(name, grade):
     found = profile(name, grade, Factors(1.05, 1.1, 1.1))
