@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from calcpack.clauses.en1992.model import Outline, Strengths
+from calcpack.clauses.en1992.model import Outline, Strengths, within
 from calcpack.clauses.en1992.national import National
 
 BOND = 0.8  # k_1 of 7.3.4(3), ribbed bars
@@ -155,7 +155,7 @@ def crack_width(
     alpha = strength.es / strength.ecm
     stiffened = stress - LONG_TERM * strength.fctm / ratio * (1 + alpha * ratio)
     strain = max(stiffened, LEAST_STRAIN * stress) / strength.es
-    near = apart <= 5 * (cover + diameter / 2) + 1e-12
+    near = within(apart, 5 * (cover + diameter / 2))
     if near:
         spacing = national["crack_k3"] * cover + BOND * PURE_BENDING * national["crack_k4"] * diameter / ratio
     else:

@@ -8,7 +8,6 @@ from calcpack.clauses.en1992.national import National
 
 LEAST_CLEAR = 0.020  # [m], 8.2(2)
 LEAST_COVER = 0.010  # [m], 4.4.1.2(2)P
-SLACK = 1e-9
 
 
 def clear_distance(diameter: float, aggregate: float, national: National) -> float:
@@ -73,7 +72,7 @@ def fitting(bar: Bar, width: float, inset: float, clear: float) -> int:
     >>> fitting(bar("20 mm"), 0.3, 0.043, 0.021)
     5
     """
-    return int((width - 2 * inset + clear + SLACK) / (bar.diameter + clear))
+    return int(round((width - 2 * inset + clear) / (bar.diameter + clear), 6))
 
 
 def arranged(bar: Bar, count: int, width: float, inset: float, clear: float) -> Bars:
@@ -132,6 +131,6 @@ def clear_between(bars: Bars, width: float) -> float:
     77.0
     """
     number = bars.layers[0]
-    if number < 2:
+    if number == 1:
         return width - 2 * bars.inset - bars.bar.diameter
     return (width - 2 * bars.inset - number * bars.bar.diameter) / (number - 1)

@@ -186,7 +186,7 @@ def strengths(material: Material, national: National) -> Strengths:
     fyk = guard("fyk", values["fyk"] / 1e3)
     fctm = values.get("fctm") or 1e3 * mean_tensile_strength(fck)
     fctk = values.get("fctk_005") or 0.7 * fctm
-    high = max(fck - 50.0, 0.0) > 0.0
+    high = fck > 50.0
     eps_cu = 1e-3 * (2.6 + 35.0 * ((90.0 - fck) / 100.0) ** 4) if high else 3.5e-3
     lam, eta = block_factors(fck)
     es = values.get("Es", 200e6)

@@ -130,7 +130,7 @@ def tried(analysed: AnalysedBeam, part: Segment) -> tuple[Arrangement, ...]:
     for quarter in (0.25, 0.5, 0.75):
         at = part.start + quarter * (part.end - part.start)
         there = np.array([curve.at(at) for curve in curves])
-        slack = 1e-12 * np.abs(there).max(initial=0.0)
+        slack = 1e-12 * np.abs(there).max()
         for result in analysed.of_limit("strength"):
             always, placed = analysed.factors(result.combination)
             for sense in (1, -1):

@@ -12,7 +12,7 @@ from calcpack.clauses.en1993.design import Conditions, beside_shear, design
 from calcpack.clauses.en1993.lines_buckling import buckling, critical
 from calcpack.clauses.en1993.lines_profile import take_factors, take_profile
 from calcpack.clauses.en1993.rules import RECOMMENDED, Factors
-from calcpack.clauses.en1993.segments import segments
+from calcpack.clauses.en1993.segments import segments, tried
 from calcpack.job.errors import CalcpackError
 from calcpack.sheet import Sheet
 from calcpack.statics import BeamLine, LineLoad, PointLoad
@@ -229,3 +229,28 @@ def test_modified_reduction_is_never_above_one():
     assert reduction(0.45, 0.34, "rolled", RECOMMENDED, 2.5).reduced == 1.0
     assert reduction(0.3, 0.34, "rolled", RECOMMENDED, 1.0).chi == 1.0
     assert reduction(0.1, 0.34, "general", RECOMMENDED, 1.0).reduced == 1.0
+
+
+def test_diagrams_that_a_segment_is_tried_under():
+    """4, 9 and 4 m, the middle one: live load where it sags or hogs most, at the quarters too, and everywhere.
+
+    By the influence lines of a continuous beam: beside the far support a load on the near span hogs, one on
+    the far span sags.
+    """
+    beam = analysed([4.0, 9.0, 4.0], 2.0, 20.0)
+    found = {
+        (each.sense, each.at): each.factors[1:]
+        for each in tried(beam, segments([(4, 13)], [4, 13])[0])
+        if each.combination.name == "1.35 G + 1.5 Q" and each.sense
+    }
+    first, middle, last = 1.5, 1.5, 1.5
+    assert found == {
+        (1, 8.5): (0.0, middle, 0.0),
+        (-1, 4.0): (first, middle, 0.0),
+        (1, 6.25): (0.0, middle, last),
+        (-1, 6.25): (first, 0.0, 0.0),
+        (-1, 8.5): (first, 0.0, last),
+        (-1, 10.75): (0.0, 0.0, last),
+    }
+    every = [each.factors for each in tried(beam, segments([(4, 13)], [4, 13])[0]) if not each.sense]
+    assert every == [(1.35, 1.5, 1.5, 1.5), (1.0, 1.5, 1.5, 1.5)]
