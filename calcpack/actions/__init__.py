@@ -2,7 +2,7 @@
 
 from calcpack.actions.analysis import AnalysedBeam, CombinationResult, LoadSet, analyse_beam
 from calcpack.actions.combinations import Combination, CombinationSet, combination_set, set_names
-from calcpack.actions.occupancies import Occupancy, OccupancyTable, occupancy_tables
+from calcpack.job.occupancies import Occupancy, OccupancyTable, occupancy_tables
 from calcpack.actions.reduction import Reduction, reduction
 
 __all__ = [

@@ -15,6 +15,7 @@ from calcpack.job.entries import Entry, Problems, validated
 from calcpack.job.errors import nearest
 from calcpack.job.house import house_folder
 from calcpack.job.model import Material, Section
+from calcpack.job.names import alike
 from calcpack.job.raw import CONCRETE_VALUES, STEEL_VALUES, RawMaterial, RawSection
 from calcpack.job.units import factor
 
@@ -29,11 +30,6 @@ class Grade:
     kind: str
     values: dict[str, Any]
     source: str
-
-
-def alike(name: str) -> str:
-    """A name as it is compared: "W18x50" is "W 18X50", "S 355" is "s355"."""
-    return "".join(name.split()).casefold()
 
 
 @lru_cache(maxsize=1)

@@ -21,9 +21,11 @@ from calcpack.job.model import (
     Section,
     Wall,
 )
+from calcpack.job.occupancies import Occupancy
 from calcpack.job.plan import CLOSE, Grid, Named, check_line, distance, outline
 from calcpack.job.raw import RawBeam, RawColumn, RawCombination, RawLoad, RawPanel, RawTableLoad, RawWall
 from calcpack.job.units import factor
+from calcpack.job.uses import Uses, live_load, with_use
 
 
 @dataclass(frozen=True)
@@ -36,6 +38,7 @@ class Surroundings:
     materials: Mapping[str, Material | None]
     sections: Mapping[str, Section | None]
     problems: Problems
+    uses: Uses
 
     def points(self, entry: Entry, key: str, given: Sequence[str | Spot]) -> list[Named] | None:
         """Places of the points a key lists; None with the problems noted."""
@@ -65,6 +68,19 @@ class Surroundings:
             self.problems.add(entry.problem(f"there is no section '{name}'", remedy, "section"))
         return self.sections.get(name) if name is not None else None
 
+    def use(self, raw: RawPanel, entry: Entry) -> Occupancy | None:
+        """The use that a panel names."""
+        if raw.use is None:
+            return None
+        found = self.uses.find(raw.use)
+        if found is None:
+            remedy = nearest(raw.use, self.uses.names)
+            self.problems.add(entry.problem(f"there is no use '{raw.use}'", remedy, "use"))
+        elif raw.live is not None:
+            message = f"the use '{found.key}' has a live load of its own, {found.written[0]}"
+            self.problems.add(entry.problem(message, "leave out the load or the use", "live"))
+        return found
+
     @property
     def unit_weight(self) -> float:
         """Unit weight of a slab that names none [kN/m3]: common practice under either family of codes.
@@ -84,7 +100,7 @@ def read_panel(entry: Entry, around: Surroundings) -> Panel | None:
     raw = validated(RawPanel, entry, around.problems)
     if raw is None:
         return None
-    material = around.material(raw.material, entry)
+    material, use = around.material(raw.material, entry), around.use(raw, entry)
     points = around.points(entry, "corners", raw.corners)
     if points is None:
         return None
@@ -101,11 +117,12 @@ def read_panel(entry: Entry, around: Surroundings) -> Panel | None:
         thickness=raw.thickness or 0.0,
         unit_weight=own if raw.unit_weight is None else raw.unit_weight,
         dead=raw.dead,
-        live=raw.live,
+        live=live_load(raw.live, use),
         roof_live=raw.roof_live,
         snow=raw.snow,
         transfer=raw.transfer,
         place=entry.place,
+        **(with_use(use, around.uses) if use else {}),
     )
 
 

@@ -10,6 +10,8 @@ from typing import Any, Literal
 
 from pydantic import BaseModel, ConfigDict
 
+from calcpack.job.occupancies import Occupancy
+
 Point = tuple[float, float]
 Case = Literal["dead", "live", "roof_live", "snow"]
 CASES: tuple[Case, ...] = ("dead", "live", "roof_live", "snow")
@@ -122,6 +124,25 @@ class Section(Frozen):
         return bool(self.family) and self.designation.startswith("lightest in ")
 
 
+class BarSize(Frozen):
+    """A bar size of the job's own."""
+
+    name: str
+    diameter: float  # [m]
+    area: float  # [m2]
+    source: str
+
+
+class Psi(Frozen):
+    """Combination factors of the live load that the job states itself, in place of the table's."""
+
+    psi0: float
+    psi1: float
+    psi2: float
+    use: str  # "archive"
+    source: str
+
+
 class Panel(Frozen):
     """A slab panel: a convex outline with its loads."""
 
@@ -132,6 +153,9 @@ class Panel(Frozen):
     unit_weight: float = 0.0  # [kN/m3]
     dead: float = 0.0  # [kPa], superimposed
     live: float = 0.0
+    use: str = ""  # what the live load is for, where the job names a use in place of a load
+    use_source: str = ""  # where its live load comes from
+    unreduced: str = ""  # why the live load of this use is not reduced for area; "" where it may be
     roof_live: float = 0.0
     snow: float = 0.0
     transfer: Literal["auto", "two-way", "one-way x", "one-way y"] = "auto"
@@ -230,5 +254,8 @@ class Job(Frozen):
     combinations: tuple[OwnCombination, ...] = ()
     # what "lightest in FAMILY" chooses from: family -> its sections by weight, the job's own among them
     candidates: dict[str, tuple[Section, ...]] = {}
+    bars: tuple[BarSize, ...] = ()  # the job's own bar sizes
+    psi: Psi | None = None  # the job's own
+    occupancies: tuple[Occupancy, ...] = ()  # the job's own
     data_files: dict[str, DataFile] = {}  # name -> what a design key named
     lines: dict[str, int] = {}  # "beam B1 section" -> line in the job file, for errors found later

@@ -7,6 +7,7 @@ from typing import Literal
 from pydantic import BaseModel, ConfigDict, Field
 
 from calcpack.job.fields import (
+    Area,
     Factor,
     FlangeWidth,
     Force,
@@ -16,6 +17,7 @@ from calcpack.job.fields import (
     Plain,
     PointGiven,
     Pressure,
+    Share,
     Size,
     Strain,
     Stress,
@@ -30,15 +32,10 @@ class Raw(BaseModel):
     model_config = ConfigDict(frozen=True, extra="forbid", strict=True)
 
 
-class RawMaterial(Raw):
-    """A material: a grade, or its values key by key, or some of both.
+class RawValues(Raw):
+    """Values of a material or a grade, with the symbols of the standard they belong to."""
 
-    The values carry the symbols of the standard they belong to.
-    """
-
-    kind: Literal["concrete", "steel"] | None = None
-    grade: str | None = None
-    bars: str | None = None
+    bars: str | None = None  # the grade of a concrete's bars; no grade has any
     modulus: Stress | None = None
     unit_weight: UnitWeight | None = None
     # concrete, EN 1992-1-1
@@ -67,6 +64,13 @@ class RawMaterial(Raw):
     fy_thick: Stress | None = None
     fu_thick: Stress | None = None
     G: Stress | None = None
+
+
+class RawMaterial(RawValues):
+    """A material: a grade, or its values key by key, or some of both."""
+
+    kind: Literal["concrete", "steel"] | None = None
+    grade: str | None = None
 
 
 BAR_VALUES = ("fyk", "fy", "k", "eps_uk", "Es")
@@ -103,18 +107,35 @@ class RawRolled(Raw):
     source: str = ""
 
 
-class RawGrade(Raw):
-    """A steel grade of the job's own table."""
+class RawGrade(RawValues):
+    """A grade of the job's own table; which values it needs depends on its kind."""
 
     name: str
-    kind: Literal["steel"] = "steel"
-    modulus: Stress
-    unit_weight: UnitWeight
-    fy: Stress
-    fu: Stress | None = None
-    fy_thick: Stress | None = None
-    fu_thick: Stress | None = None
-    G: Stress | None = None
+    kind: Literal["concrete", "reinforcement", "steel"] = "steel"
+    source: str = ""
+
+
+class RawBar(Raw):
+    """A bar size of the job's own table."""
+
+    name: str
+    diameter: Size
+    area: Area | None = None
+    source: str = ""
+
+
+class RawUse(Raw):
+    """An occupancy of the job's own table."""
+
+    name: str
+    says: str = ""
+    uniform: Pressure
+    point: Force | None = None
+    category: Literal["", "A", "B", "C", "D", "E", "F", "G"] = ""
+    psi0: Share | None = None
+    psi1: Share | None = None
+    psi2: Share | None = None
+    reduced: str = ""
     source: str = ""
 
 
@@ -127,7 +148,8 @@ class RawPanel(Raw):
     unit_weight: UnitWeight | None = None
     material: str | None = None
     dead: Pressure = 0.0
-    live: Pressure = 0.0
+    live: Pressure | None = None
+    use: str | None = None
     roof_live: Pressure = 0.0
     snow: Pressure = 0.0
     transfer: Literal["auto", "two-way", "one-way x", "one-way y"] = "auto"

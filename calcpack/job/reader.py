@@ -23,21 +23,32 @@ from calcpack.job.members import (
     read_panel,
     read_wall,
 )
-from calcpack.job.model import Basis, Beam, Column, DataFile, Header, Job, OwnCombination, Submission
-from calcpack.job.own_tables import catalogue
+from calcpack.job.model import (
+    Basis,
+    Beam,
+    Column,
+    DataFile,
+    Header,
+    Job,
+    OwnCombination,
+    Panel,
+    Psi,
+    Submission,
+)
+from calcpack.job.own_tables import bar_sizes, catalogue, occupancies
 from calcpack.job.plan import CLOSE, Grid, distance
 from calcpack.job.raw import RawGrid
 from calcpack.job.source import Document, FileBytes, KeyPath, parse_toml, read_bytes
 from calcpack.job.sweep import sweep
 from calcpack.job.tables import load, read_table
+from calcpack.job.uses import Fault, Uses
 
 MEMBERS = ("panel", "beam", "column", "wall")
 SINGLE = ("job", "submission", "basis", "grid")
 NAMED = {"materials": "material", "sections": "section"}
-OWN = {"rolled_sections": "rolled section", "grades": "grade"}
+OWN = {"rolled_sections": "rolled section", "grades": "grade", "bars": "bar", "occupancies": "occupancy"}
 TABLES = {f"{kind}s": kind for kind in MEMBERS} | {"beam_loads": "beam load"} | OWN
 TOP = ("format", *SINGLE, *NAMED, *MEMBERS, "combination", *TABLES)
-OCCUPANCIES = tuple("ABCDEFGH")
 
 Model = TypeVar("Model", bound=BaseModel)
 
@@ -90,6 +101,8 @@ class _Reader:
         grid = self._grid()
         own = {key: list(self._table(key)) if key in self.data else [] for key in OWN}
         known = catalogue(own["rolled_sections"], own["grades"], self.problems)
+        own_bars = bar_sizes(own["bars"], self.problems)
+        own_uses = occupancies(own["occupancies"], self.problems)
         sections = {
             key: read_section(key, each, self.problems, known) for key, each in self._named("sections")
         }
@@ -102,9 +115,11 @@ class _Reader:
             },
             sections=sections,
             problems=self.problems,
+            uses=Uses(basis.actions, own_uses),
         )
         panels = [read_panel(each, around) for each in entries["panel"]]
         beams = [read_beam(each, loads[place], around) for place, each in enumerate(entries["beam"])]
+        basis, psi = self._use(basis, _sound(panels), around.uses)
         columns = [read_column(each, around) for each in entries["column"]]
         walls = [read_wall(each, around) for each in entries["wall"]]
         combinations = self._combinations()
@@ -133,6 +148,9 @@ class _Reader:
                 for each in sections.values()
                 if each is not None and each.open
             },
+            bars=own_bars,
+            psi=psi,
+            occupancies=own_uses,
             data_files=data_files,
             lines=self.lines,
         )
@@ -201,9 +219,14 @@ class _Reader:
                 self._problem("this text is empty", f"write for example {EXAMPLES[key]}", "job", key)
         if basis.one_way_ratio < 1.0:
             self._problem("the ratio is long side to short side", "give 1 or more", "basis", "one_way_ratio")
-        if basis.occupancy and basis.occupancy not in OCCUPANCIES:
-            message = f"there is no category '{basis.occupancy}'"
-            self._problem(message, nearest(basis.occupancy, OCCUPANCIES), "basis", "occupancy")
+
+    def _use(self, basis: Basis, panels: tuple[Panel, ...], uses: Uses) -> tuple[Basis, Psi | None]:
+        """The basis with the category of its use, and the job's own combination factors."""
+        found = uses.settled(basis, panels)
+        if isinstance(found, Fault):
+            self._problem(found.message, found.remedy, "basis", "occupancy")
+            return basis, None
+        return found
 
     def _named(self, table: str) -> Iterator[tuple[str, Entry]]:
         """The materials or the sections."""

@@ -13,7 +13,7 @@ from typing import Any, NamedTuple
 
 from calcpack.job.entries import Entry, Problems
 from calcpack.job.errors import CalcpackError, Problem, nearest
-from calcpack.job.raw import STEEL_VALUES
+from calcpack.job.raw import RawValues
 from calcpack.job.source import FileBytes, read_bytes
 from calcpack.job.units import KINDS, dimension, kind_of
 
@@ -21,7 +21,7 @@ MOST_ROWS = 20_000
 MOST_COLUMNS = 100
 LARGEST_UNPACKED = 100_000_000  # bytes of a workbook's parts
 
-# What a cell holds: "text", "points" or one "point" of the plan, "words", or a quantity of a kind of
+# What a cell holds: "text", "points" or one "point" of the plan, "words", a plain "number", or a quantity of a kind of
 # ``units.KINDS``. Beams take any "design." key besides.
 COLUMNS: dict[str, dict[str, str]] = {
     "panel": {
@@ -32,6 +32,7 @@ COLUMNS: dict[str, dict[str, str]] = {
         "material": "text",
         "dead": "pressure",
         "live": "pressure",
+        "use": "text",
         "roof_live": "pressure",
         "snow": "pressure",
         "transfer": "text",
@@ -74,12 +75,27 @@ COLUMNS: dict[str, dict[str, str]] = {
         "kind": "text",
         "modulus": "stress",
         "unit_weight": "unit weight",
-        **dict.fromkeys(STEEL_VALUES, "stress"),
+        **{
+            name: "number" if name.startswith("eps_") or name in ("n", "k") else "stress"
+            for name in RawValues.model_fields
+            if name not in ("bars", "modulus", "unit_weight")
+        },
+        "source": "text",
+    },
+    "bar": {"name": "text", "diameter": "length", "area": "area", "source": "text"},
+    "occupancy": {
+        "name": "text",
+        "says": "text",
+        "uniform": "pressure",
+        "point": "force",
+        "category": "text",
+        **dict.fromkeys(("psi0", "psi1", "psi2"), "number"),
+        "reduced": "text",
         "source": "text",
     },
 }
 # The column that says what a row is about.
-SAYS = {"beam load": "beam", "rolled section": "designation", "grade": "name"}
+SAYS = {"beam load": "beam", "rolled section": "designation"} | dict.fromkeys(("grade", "bar", "occupancy"), "name")
 
 Row = tuple[int, list[Any]]  # line (or row of the sheet), cells
 
@@ -209,7 +225,7 @@ def _unit_fits(unit: str, holds: str, key: str, header: Entry, problems: Problem
     except CalcpackError as error:
         problems.add(header.placed(error, key))
         return False
-    if holds == "text":
+    if holds in ("text", "number"):
         problems.add(
             header.problem(f"this key has no unit, the header says '{unit}'", "leave the unit out", key)
         )
@@ -243,7 +259,7 @@ def _value(cell: Any, column: Column) -> Any:
         return f"{cell:g}" if float(cell).is_integer() else str(cell)
     if column.unit and (number or (isinstance(cell, str) and _BARE.fullmatch(cell))):
         return f"{cell} {column.unit}"
-    return _plain(cell) if column.holds == "anything" and isinstance(cell, str) else cell
+    return _plain(cell) if column.holds in ("anything", "number") and isinstance(cell, str) else cell
 
 
 def _plain(text: str) -> Any:

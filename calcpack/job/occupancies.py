@@ -1,13 +1,15 @@
-"""Imposed loads by occupancy, read as data from shared/live_loads."""
+"""Imposed loads by occupancy: data of shared/live_loads, a job's own before them."""
 
 from __future__ import annotations
 
 import tomllib
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from functools import cache
 from typing import Any
 
 from calcpack.job.house import house_folder
+from calcpack.job.names import alike
 from calcpack.job.units import parse_quantity
 
 
@@ -31,6 +33,8 @@ class Occupancy:
     reduced : str
         Why area does not reduce it; "" where it does.
     cite : str
+    psi : (float, float, float) or None
+        ψ0, ψ1, ψ2 that a job states of its own; None where the category's hold.
     """
 
     key: str
@@ -42,6 +46,7 @@ class Occupancy:
     category: str
     reduced: str
     cite: str
+    psi: tuple[float, float, float] | None = None
 
 
 @dataclass(frozen=True)
@@ -68,6 +73,34 @@ def occupancy_tables() -> tuple[OccupancyTable, ...]:
     """
     files = sorted(house_folder("shared").joinpath("live_loads").glob("*.toml"))
     return tuple(_table(tomllib.loads(path.read_text(encoding="utf-8"))) for path in files)
+
+
+def applying(actions: str, own: Sequence[Occupancy] = ()) -> Iterator[tuple[Occupancy, str]]:
+    """The uses a job may name, each with its source: its own, then those of its actions' standard.
+
+    Parameters
+    ----------
+    actions : str
+        ``basis.actions``; for "job" the tables of every standard apply.
+    own : sequence of Occupancy
+        The job's own; they stand in for ours of the same name.
+
+    Examples
+    --------
+    >>> found = dict((use.key, source) for use, source in applying("EN 1990"))
+    >>> found["C1"]
+    'EN 1991-1-1 Table 6.2'
+    >>> "dining" in found
+    False
+    """
+    for use in own:
+        yield use, use.cite
+    replaced = {alike(use.key) for use in own}
+    for table in occupancy_tables():
+        if actions == "job" or actions.split(" ")[0] == table.name.split(" ")[0]:
+            for use in table.uses:
+                if alike(use.key) not in replaced:
+                    yield use, f"{table.name} {use.cite}"
 
 
 def _table(data: dict[str, Any]) -> OccupancyTable:
