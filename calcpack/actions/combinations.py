@@ -11,7 +11,8 @@ from typing import Any, Literal
 
 from calcpack.job.errors import CalcpackError, nearest
 from calcpack.job.house import house_folder
-from calcpack.job.model import CASES, Case, OwnCombination
+from calcpack.job.model import CASES, Case, OwnCombination, Psi
+from calcpack.job.uses import DEFAULT_CATEGORY
 
 VARIABLE: tuple[Case, ...] = ("live", "roof_live", "snow")
 PLACED: tuple[Case, ...] = ("live", "roof_live")  # put span by span where they are worst
@@ -82,6 +83,7 @@ def combination_set(
     *,
     occupancy: str = "",
     own: Sequence[OwnCombination] = (),
+    live_psi: Psi | None = None,
 ) -> CombinationSet:
     """Write out a set of combinations for the load cases that occur.
 
@@ -95,6 +97,8 @@ def combination_set(
         Category of the live load, A to G, where the set has ψ factors; "" takes B.
     own : sequence of OwnCombination
         What the job file states itself, put behind those of the set.
+    live_psi : Psi or None
+        The job's own factors of the live load, in place of the category's.
 
     Raises
     ------
@@ -117,7 +121,7 @@ def combination_set(
     else:
         data = _files()[name]
     symbols = {"dead": "D", "live": "L", "roof_live": "Lr", "snow": "S"} | data["symbols"]
-    psi = _psi_factors(occupancy) if "rule" in data else {}
+    psi = _psi_factors(occupancy, live_psi) if "rule" in data else {}
     written = [
         *(each for rule in data.get("rule", ()) for each in _by_rule(rule, data, present, psi)),
         *(each for entry in data.get("combination", ()) for each in _by_entry(entry, present)),
@@ -136,19 +140,26 @@ def combination_set(
         family=data["family"],
         combinations=combinations,
         psi={case: factors for case, factors in psi.items() if case in present},
-        psi_source=_psi()["source"] if psi else "",
+        psi_source=_psi_source(live_psi if "live" in present else None) if psi else "",
     )
 
 
-def _psi_factors(occupancy: str) -> dict[Case, dict[str, Any]]:
+def _psi_source(live: Psi | None) -> str:
+    """Where the factors are from."""
+    table = str(_psi()["source"])
+    return f"Live load: {live.source}; otherwise {table}" if live else table
+
+
+def _psi_factors(occupancy: str, live: Psi | None) -> dict[Case, dict[str, Any]]:
     table = _psi()
-    category = occupancy or "B"
+    category = occupancy or DEFAULT_CATEGORY
     if category not in table["live"]:
         raise CalcpackError(
             f"no category '{category}'", remedy=nearest(category, table["live"]), key="basis.occupancy"
         )
+    own = live.model_dump(exclude={"source"}) if live else {}
     return {
-        "live": table["live"][category] | {"category": category},
+        "live": table["live"][category] | own | {"category": category},
         "roof_live": table["roof_live"]["H"] | {"category": "H"},
         "snow": table["snow"]["low"] | {"category": "snow"},
     }

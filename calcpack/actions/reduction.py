@@ -12,6 +12,7 @@ from dataclasses import dataclass
 from typing import Literal
 
 from calcpack.actions.combinations import combination_set
+from calcpack.job.uses import DEFAULT_CATEGORY
 
 Rule = Literal["ASCE 7-22 4.7", "EN 1991-1-1 6.3.1.2"]
 ASCE: Rule = "ASCE 7-22 4.7"
@@ -34,7 +35,6 @@ EN_AREA = 10.0  # A0 [m2]
 EN_LEAST = 0.6  # categories C and D
 EN_CATEGORIES = ("A", "B", "C", "D")
 EN_LEAST_CATEGORIES = ("C", "D")
-DEFAULT_CATEGORY = "B"  # as for the combination factors, where the job names none
 
 
 @dataclass(frozen=True)
@@ -68,7 +68,9 @@ class Reduction:
         return self.element_factor * self.area
 
 
-def reduction(rule: Rule, area: float, *, category: str = "", cantilever: bool = False) -> Reduction:
+def reduction(
+    rule: Rule, area: float, *, category: str = "", cantilever: bool = False, own_psi0: float | None = None
+) -> Reduction:
     """How far the live load of a beam is reduced for the area it carries.
 
     Parameters
@@ -80,6 +82,8 @@ def reduction(rule: Rule, area: float, *, category: str = "", cantilever: bool =
         EN 1990 category of use; "" takes B.
     cantilever : bool
         A cantilever, or an edge beam with a cantilever slab.
+    own_psi0 : float or None
+        ψ0 that the job states itself, in place of the category's.
 
     Returns
     -------
@@ -99,8 +103,13 @@ def reduction(rule: Rule, area: float, *, category: str = "", cantilever: bool =
     category = category or DEFAULT_CATEGORY
     psi0 = 0.0
     if category in EN_CATEGORIES:
-        psi0 = float(combination_set("EN 1990", ("live",), occupancy=category).psi["live"]["psi0"])
+        psi0 = own_psi0 if own_psi0 is not None else _psi0(category)
     return Reduction(rule, area, 1.0, psi0, category, en_factor(area, psi0, category))
+
+
+def _psi0(category: str) -> float:
+    """ψ0 of a category, EN 1990, Table A1.1."""
+    return float(combination_set("EN 1990", ("live",), occupancy=category).psi["live"]["psi0"])
 
 
 def asce_factor(area: float, element_factor: float, floors: int = 1) -> float:

@@ -11,6 +11,7 @@ from calcpack.job.names import alike
 from calcpack.job.occupancies import Occupancy, applying
 
 CATEGORIES = tuple("ABCDEFGH")
+DEFAULT_CATEGORY = "B"
 
 
 class Fault(NamedTuple):
@@ -86,7 +87,10 @@ class Uses:
             names = ", ".join(f"{use.key} (category {use.category})" for use in kinds.values())
             message = f"the panels' uses have different factors: {names}"
             return Fault(message, "name the use or the category whose factors the job takes")
-        return self._taken(basis, found[0]) if found else (basis, None)
+        if found:
+            return self._taken(basis, found[0])
+        usual = self.own.get(alike(DEFAULT_CATEGORY))  # what is taken where nothing is named
+        return basis, self._taken(basis, usual)[1] if usual else None
 
     def _named(self, basis: Basis) -> tuple[Basis, Psi | None] | Fault:
         """The basis of a job that names its category or use."""

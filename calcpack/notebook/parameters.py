@@ -20,7 +20,18 @@ from calcpack.framing.types import (
     Placement,
 )
 from calcpack.job.errors import CalcpackError
-from calcpack.job.model import Basis, Case, EquivalentKind, Frozen, Header, Material, Section, Submission
+from calcpack.job.model import (
+    BarSize,
+    Basis,
+    Case,
+    EquivalentKind,
+    Frozen,
+    Header,
+    Material,
+    Psi,
+    Section,
+    Submission,
+)
 from calcpack.notebook.tributary import Tributary, tributaries
 from calcpack.statics import Load
 
@@ -62,6 +73,8 @@ class BeamInput(Frozen):
     placements: tuple[Placement, ...]
     reactions: dict[Case, tuple[float, ...]]
     panels: tuple[PanelTransfer, ...]
+    bars: tuple[BarSize, ...] = ()  # the job's own
+    live_psi: Psi | None = None  # the job's own
     tributary: tuple[Tributary, ...] = ()  # where the job asks for a live-load reduction
     plan: dict[str, Any]
     design: dict[str, Any]
@@ -112,7 +125,7 @@ def beam_input(frame: Frame, mark: str, design: dict[str, Any], template: Templa
         submission=job.submission,
         basis=job.basis,
         actions=combination_set(
-            job.basis.actions, cases, occupancy=job.basis.occupancy, own=job.combinations
+            job.basis.actions, cases, occupancy=job.basis.occupancy, own=job.combinations, live_psi=job.psi
         ),
         length=framed.length,
         bearings=framed.bearings,
@@ -129,6 +142,8 @@ def beam_input(frame: Frame, mark: str, design: dict[str, Any], template: Templa
         placements=framed.placements,
         reactions={case: framed.reactions.get(case, (0.0,) * len(framed.bearings)) for case in cases},
         panels=tuple(frame.panels[panel] for panel in framed.panels),
+        bars=job.bars,
+        live_psi=job.psi,
         tributary=()
         if job.basis.live_load_reduction == "none"
         else tributaries(frame, mark, job.basis.live_load_reduction),

@@ -127,7 +127,11 @@ class Study:
         # A slab held along one edge only is a cantilever from this beam.
         slabs = any(sum(transfer.supported) == 1 for transfer in self.given.panels)
         return reduction(
-            rule, area, category=self.given.basis.occupancy, cantilever=slabs or any(self.given.free)
+            rule,
+            area,
+            category=self.given.basis.occupancy,
+            cantilever=slabs or any(self.given.free),
+            own_psi0=self.given.live_psi.psi0 if self.given.live_psi else None,
         )
 
     @cached_property

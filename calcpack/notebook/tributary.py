@@ -52,7 +52,7 @@ def tributaries(frame: Frame, mark: str, rule: Rule) -> tuple[Tributary, ...]:
         area = math.fsum(share.area for share in transfer.shares if share.carrier == mark)
         if not pressure or not area:
             continue
-        exempt = exemption(rule, pressure, category)
+        exempt = transfer.panel.unreduced or exemption(rule, pressure, category)
         found.append(
             Tributary(
                 source=name, kind="panel", area=0.0 if exempt else area, pressure=pressure, exempt=exempt
