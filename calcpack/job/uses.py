@@ -129,5 +129,8 @@ def with_use(use: Occupancy, uses: Uses) -> Mapping[str, str]:
     {'use': 'B', 'use_source': 'EN 1991-1-1 Table 6.2, offices', 'unreduced': ''}
     """
     source = f"{uses.source(use)}, {use.says}" if use.says else uses.source(use)
-    reason = use.reduced.removeprefix("no, ") if use.reduced else ""
-    return {"use": use.key, "use_source": source, "unreduced": f"use {use.key}: {reason}" if reason else ""}
+    unreduced = ""
+    if use.reduced:
+        reason = use.reduced.removeprefix("no").lstrip(", ")
+        unreduced = f"use {use.key} is not reduced" + (f" ({reason})" if reason else "")
+    return {"use": use.key, "use_source": source, "unreduced": unreduced}

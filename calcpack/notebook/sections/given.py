@@ -90,13 +90,16 @@ def _panel(work: Work, transfer: PanelTransfer) -> None:
     panel, sheet = transfer.panel, work.sheet
     index, place = work.sources[panel.mark].index, f"panel {panel.mark}"
 
-    def take(key: str, symbol: str, value: float, unit: str, words: str, origin: str) -> None:
+    def take(
+        key: str, symbol: str, value: float, unit: str, words: str, origin: str, cite: str = ""
+    ) -> None:
         work.lines[key, panel.mark] = sheet.take(
             f"{symbol}_{index}",
             value,
             unit,
             says=f"{words} of panel {panel.mark}",
             origin=f"{place} {origin}",
+            cite=cite,
             given=unit != "m" or _in_full(value),
         )
 
@@ -111,7 +114,8 @@ def _panel(work: Work, transfer: PanelTransfer) -> None:
     for case in work.study.cases:
         if case != "dead" and panel.pressure(case):
             words = CASE_WORDS[case].capitalize()
-            take(f"pressure {case}", LETTER[case], panel.pressure(case), "kPa", words, case)
+            source = panel.use_source if case == "live" else ""
+            take(f"pressure {case}", LETTER[case], panel.pressure(case), "kPa", words, case, source)
 
 
 def _carried(work: Work, source: Source) -> None:

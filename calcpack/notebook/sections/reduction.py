@@ -119,13 +119,14 @@ def _asce(work: Work, found: Reduction, area: Line) -> Line | None:
 
 def _en(work: Work, found: Reduction, area: Line) -> Line:
     sheet = work.sheet
+    own = work.given.live_psi
     psi = sheet.take(
         "psi_0",
         found.psi0,
         "1",
         says=f"Combination factor, category {found.category}",
         origin="basis occupancy",
-        cite="EN 1990 Table A1.1",
+        cite=own.source if own else "EN 1990 Table A1.1",
     )
     basic = sheet.take(
         "A_0",
@@ -162,7 +163,8 @@ def _scope(work: Work, found: Reduction) -> None:
             "case, are not reduced, so that the supports carry all that is applied.",
             role="note",
         )
-    if found.rule == ASCE and not found.category:
+    unnamed = any(each.panel.live and not each.panel.use for each in work.given.panels)
+    if found.rule == ASCE and not found.category and (unnamed or work.given.carried):
         work.sheet.text(
             "The job names no use of the floor: live loads above 100 psf are kept in full, but assembly uses "
             "(4.7.5) and garages for passenger vehicles (4.7.4) may not be reduced either. Make sure that "
