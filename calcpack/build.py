@@ -222,7 +222,11 @@ def _pack(
 ) -> Pack:
     job = framed.job
     actions = combination_set(
-        job.basis.actions, framed.cases or ("dead",), occupancy=job.basis.occupancy, own=job.combinations, live_psi=job.psi
+        job.basis.actions,
+        framed.cases or ("dead",),
+        occupancy=job.basis.occupancy,
+        own=job.combinations,
+        live_psi=job.psi,
     )
     notes = dict.fromkeys(
         note

@@ -135,11 +135,16 @@ def templates() -> None:
 
 
 @app.command()
-def loads() -> None:
+def loads(
+    job: Annotated[
+        Path | None, typer.Option(metavar="JOB", help="A job file whose own occupancies come first.")
+    ] = None,
+) -> None:
     """List the imposed loads of occupancies, standard by standard, with their sources."""
+    from calcpack.job import read_job
     from calcpack.overview import print_loads
 
-    print_loads(_console())
+    print_loads(_console(), read_job(job).occupancies if job else ())
 
 
 identities = typer.Typer(no_args_is_help=True, help="Identities to sign with.")

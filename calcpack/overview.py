@@ -12,11 +12,12 @@ from rich.progress import BarColumn, MofNCompleteColumn, Progress, TaskID, TextC
 from rich.table import Table
 from rich.text import Text
 
-from calcpack.actions import occupancy_tables
+from calcpack.actions import Occupancy, occupancy_tables
 from calcpack.figures import key_plan
 from calcpack.files import write_file
 from calcpack.framing import Frame, FramedBeam, PanelTransfer
 from calcpack.job.model import Case
+from calcpack.job.names import alike
 from calcpack.notebook.parameters import plan_of
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.templates import Parameter, find_template, template_names
@@ -228,16 +229,32 @@ def print_templates(console: Console) -> None:
                 console.print(Text(f"    {path}: {leaf.says}{default}"))
 
 
-def print_loads(console: Console) -> None:
-    """Print the imposed loads by occupancy, one table a standard, each value as the standard writes it."""
+def print_loads(console: Console, own: Sequence[Occupancy] = ()) -> None:
+    """Print the imposed loads by occupancy, one table a standard, each value as the standard writes it.
+
+    Parameters
+    ----------
+    console : Console
+    own : sequence of Occupancy
+        A job's own, which come first and stand in for ours of the same name.
+    """
+    if own:
+        console.print(_uses("the job's own", own, "source"))
+        console.print(Text("They go before the following ones.\n"))
+    replaced = {alike(use.key) for use in own}
     for table in occupancy_tables():
-        rows = [
-            [use.key, use.says, use.written[0], use.written[1] or "–", use.reduced or "yes", use.cite]
-            for use in table.uses
-        ]
-        heads = [(head, "left") for head in ("use", "says", "uniform", "point", "reduced for area", "clause")]
-        console.print(_table(table.name, heads, rows))
+        uses = [use for use in table.uses if alike(use.key) not in replaced]
+        console.print(_uses(table.name, uses, "clause"))
         console.print(Text(f"{table.source}. Reduced for area: {table.reduction}.\n"))
+
+
+def _uses(title: str, uses: Sequence[Occupancy], cited: str) -> Table:
+    rows = [
+        [use.key, use.says, use.written[0], use.written[1] or "–", use.reduced or "yes", use.cite]
+        for use in uses
+    ]
+    heads = [(head, "left") for head in ("use", "says", "uniform", "point", "reduced for area", cited)]
+    return _table(title, heads, rows)
 
 
 def _leaves(path: str, parameter: Parameter) -> Iterator[tuple[str, Parameter]]:

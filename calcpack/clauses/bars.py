@@ -5,17 +5,18 @@ from __future__ import annotations
 import csv
 import math
 import re
+from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import lru_cache
 from typing import Literal
 
-from calcpack.job.errors import CalcpackError
+from calcpack.job.errors import CalcpackError, nearest
 from calcpack.job.house import house_folder
+from calcpack.job.model import BarSize
+from calcpack.job.names import alike, bar_name
 from calcpack.job.units import factor
 
-# "20 mm", "20", "Ø20"; "#8", "No. 8", "no 8". A bare number is a diameter in mm.
-_METRIC = re.compile(r"(?:[øØ⌀]\s*)?(\d+)(?:\.0*)?\s*(?:mm)?", re.IGNORECASE)
-_US = re.compile(r"(?:#|no\.?)\s*(\d+)", re.IGNORECASE)
+_METRIC = re.compile(r"[0-9]+ mm")
 
 
 @dataclass(frozen=True)
@@ -32,12 +33,25 @@ class Bar:
         Nominal.
     source : str
         The table it is from.
+    own : bool
+        Whether that is a table of the job's own.
     """
 
     name: str
     diameter: float
     area: float
     source: str = ""
+    own: bool = False
+
+    @property
+    def words(self) -> str:
+        """The bar in a bar list: "#8", "⌀20 mm", or the name of one of the job's own."""
+        return f"\u2300{self.name}" if _METRIC.fullmatch(self.name) else self.name
+
+    @property
+    def cite(self) -> str:
+        """Its source where that is the job's own table."""
+        return self.source if self.own else ""
 
 
 @lru_cache(maxsize=1)
@@ -108,19 +122,99 @@ def bar(size: str) -> Bar:
     >>> bar("20").name
     '20 mm'
     """
-    text = size.strip()
-    for system, pattern, form in (("metric", _METRIC, "{} mm"), ("us", _US, "#{}")):
-        match = pattern.fullmatch(text)
-        if match and len(match[1]) <= 6:
-            number = int(match[1])
-            name = form.format(number)
-            sizes = _tables()[system]
-            for each in sizes:
-                if each.name == name:
-                    return each
-            close = min(sizes, key=lambda each: abs(_number(each) - number))
+    return OFFICE.bar(size)
+
+
+@dataclass(frozen=True)
+class Stock:
+    """The bars a job can have: the office's, the job's own before them.
+
+    Parameters
+    ----------
+    own : tuple of Bar
+
+    Examples
+    --------
+    >>> sizes = [BarSize(name="D18", diameter=0.018, area=255e-6, source="bars.csv")]
+    >>> stock = stock_of(sizes)
+    >>> stock.bar("d18").area, stock.bar("20 mm").own
+    (0.000255, False)
+    >>> stock.among(("12 mm", "16 mm", "20 mm"))
+    ('12 mm', '16 mm', 'D18', '20 mm')
+    """
+
+    own: tuple[Bar, ...] = ()
+
+    def bar(self, size: str) -> Bar:
+        """The bar of a size as a job names it.
+
+        Raises
+        ------
+        CalcpackError
+            There is no such size; the nearest one is named.
+        """
+        name = bar_name(size)
+        sizes = [each for system in _tables().values() for each in system]
+        for each in (*self.own, *sizes):
+            if alike(each.name) == alike(name):
+                return each
+        kind = _tables().get("metric" if _METRIC.fullmatch(name) else "us" if name.startswith("#") else "")
+        if kind and name.strip("# m").isdigit():
+            of_kind = [each for each in self.own if each.name.strip("# m").isdigit()]
+            number = int(name.strip("# m"))
+            near = [each for each in (*of_kind, *kind) if (each.name[0] == "#") == (name[0] == "#")]
+            close = min(near, key=lambda each: abs(_number(each) - number))
             raise CalcpackError(f"there is no bar '{size}'", remedy=f"the nearest is '{close.name}'")
-    raise CalcpackError(f"'{size}' is not a bar size", remedy="write a diameter ('20 mm') or a number ('#8')")
+        remedy = "write a diameter ('20 mm') or a number ('#8')"
+        if self.own:
+            remedy += f", or one of your own: {nearest(name, [each.name for each in self.own])}"
+        raise CalcpackError(f"'{size}' is not a bar size", remedy=remedy)
+
+    def among(self, usual: Sequence[str], above: float = 0.0) -> tuple[str, ...]:
+        """Sizes to choose from, thinnest first: usual ones, and the job's own within their range.
+
+        Parameters
+        ----------
+        usual : sequence of str
+            Thinnest first.
+        above : float [m]
+            The range begins beyond this diameter, if it is given, else at the thinnest usual size.
+        """
+        bars = [self.bar(size) for size in usual]
+        if not self.own:
+            return tuple(each.name for each in bars)
+        least, most = min(each.diameter for each in bars), max(each.diameter for each in bars)
+        found = {
+            each.name: each
+            for each in self.own
+            if (above < each.diameter if above else least <= each.diameter) and each.diameter <= most
+        }
+        found |= {each.name: each for each in bars}
+        return tuple(sorted(found, key=lambda name: (found[name].diameter, found[name].area)))
+
+    def groups(self, usual: Sequence[Sequence[str]]) -> tuple[tuple[str, ...], ...]:
+        """Groups of usual sizes, each with the job's own that fall into it.
+
+        Examples
+        --------
+        >>> stock_of([BarSize(name="28 mm", diameter=0.028, area=616e-6, source="")]).groups(
+        ...     (("20 mm", "25 mm"), ("32 mm",))
+        ... )
+        (('20 mm', '25 mm'), ('28 mm', '32 mm'))
+        """
+        found: list[tuple[str, ...]] = []
+        for group in usual:
+            above = self.bar(found[-1][-1]).diameter if found else 0.0
+            found.append(self.among(group, above))
+        return tuple(found)
+
+
+OFFICE = Stock()
+
+
+def stock_of(sizes: Sequence[BarSize]) -> Stock:
+    """The bars of a job with its own sizes."""
+    return Stock(tuple(Bar(each.name, each.diameter, each.area, each.source, True) for each in sizes))
 
 
 def _number(each: Bar) -> int:

@@ -9,7 +9,7 @@ from calcpack.job.entries import Entry, Problems, validated
 from calcpack.job.errors import nearest
 from calcpack.job.library import Catalogue, Grade, office, rolled_area_and_inertia
 from calcpack.job.model import BarSize, Section
-from calcpack.job.names import alike
+from calcpack.job.names import alike, bar_name
 from calcpack.job.occupancies import Occupancy
 from calcpack.job.raw import BAR_VALUES, CONCRETE_VALUES, STEEL_VALUES, RawBar, RawGrade, RawRolled, RawUse
 
@@ -62,7 +62,7 @@ def bar_sizes(entries: Iterable[Entry], problems: Problems) -> tuple[BarSize, ..
     problems : Problems
         Faults of single rows go here.
     """
-    found = [size for entry in _once(entries, "name", problems) if (size := _bar(entry, problems))]
+    found = [size for entry in _once(entries, "name", problems, bars=True) if (size := _bar(entry, problems))]
     return tuple(sorted(found, key=lambda each: (each.diameter, each.area, each.name)))
 
 
@@ -80,11 +80,12 @@ def occupancies(entries: Iterable[Entry], problems: Problems) -> tuple[Occupancy
     return tuple(use for use in found if use)
 
 
-def _once(entries: Iterable[Entry], key: str, problems: Problems) -> Iterator[Entry]:
+def _once(entries: Iterable[Entry], key: str, problems: Problems, *, bars: bool = False) -> Iterator[Entry]:
     """Rows whose name is there and not taken."""
     seen: dict[str, Entry] = {}
     for entry in entries:
         name = str(entry.data.get(key, ""))
+        name = bar_name(name) if bars else name
         if len(name) > LONGEST:
             problems.add(entry.problem(f"this name has {len(name)} letters", f"at most {LONGEST}", key))
         elif (other := seen.setdefault(alike(name), entry)) is not entry:
@@ -162,7 +163,9 @@ def _bar(entry: Entry, problems: Problems) -> BarSize | None:
     if fault:
         problems.add(entry.problem(*fault))
         return None
-    return BarSize(name=raw.name, diameter=raw.diameter, area=area, source=_source(entry, raw.source))
+    return BarSize(
+        name=bar_name(raw.name), diameter=raw.diameter, area=area, source=_source(entry, raw.source)
+    )
 
 
 def _use(entry: Entry, problems: Problems) -> Occupancy | None:

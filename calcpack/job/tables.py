@@ -21,8 +21,8 @@ MOST_ROWS = 20_000
 MOST_COLUMNS = 100
 LARGEST_UNPACKED = 100_000_000  # bytes of a workbook's parts
 
-# What a cell holds: "text", "points" or one "point" of the plan, "words", a plain "number", or a quantity of a kind of
-# ``units.KINDS``. Beams take any "design." key besides.
+# What a cell holds: "text", "points" or one "point" of the plan, "words", a plain "number", or a quantity of
+# a kind of ``units.KINDS``. Beams take any "design." key besides.
 COLUMNS: dict[str, dict[str, str]] = {
     "panel": {
         "mark": "text",
@@ -95,7 +95,9 @@ COLUMNS: dict[str, dict[str, str]] = {
     },
 }
 # The column that says what a row is about.
-SAYS = {"beam load": "beam", "rolled section": "designation"} | dict.fromkeys(("grade", "bar", "occupancy"), "name")
+SAYS = {"beam load": "beam", "rolled section": "designation"} | dict.fromkeys(
+    ("grade", "bar", "occupancy"), "name"
+)
 
 Row = tuple[int, list[Any]]  # line (or row of the sheet), cells
 

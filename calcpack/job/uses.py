@@ -39,7 +39,7 @@ class Uses:
     >>> uses.settled(Basis(occupancy="C3"), ())[0].occupancy
     'C'
     >>> uses.settled(Basis(occupancy="J"), ())
-    Fault(message="there is no category 'J'", remedy="write one of 'A', 'B', 'C', 'D', 'E', 'F', 'G', 'H'")
+    Fault(message="there is no category 'J'", remedy="it can be 'A', 'B', 'C', 'D', 'E', 'F', 'G' or 'H'")
     """
 
     def __init__(self, actions: str, own: Iterable[Occupancy]) -> None:

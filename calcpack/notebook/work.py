@@ -7,6 +7,7 @@ from dataclasses import dataclass, field
 from functools import cached_property
 from typing import Any, Literal, NamedTuple
 
+from calcpack.clauses.bars import Stock, stock_of
 from calcpack.equivalent import Shape, shape_of
 from calcpack.framing.types import EdgeShare, PanelTransfer
 from calcpack.job.model import Case
@@ -108,6 +109,11 @@ class Work:
     def show(self, value: float, unit: str, *, exact: bool = False) -> str:
         """A value in words of the job's unit system."""
         return show(value, unit, self.study.system, exact)
+
+    @cached_property
+    def stock(self) -> Stock:
+        """The bars there are, the job's own before the office's."""
+        return stock_of(self.given.bars)
 
     @cached_property
     def sources(self) -> dict[str, Source]:

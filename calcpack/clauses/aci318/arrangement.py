@@ -87,9 +87,7 @@ class Group:
     @property
     def words(self) -> str:
         """ "4 #8", "5 #8 in two layers"."""
-        return f"{self.count} {self.bar.name if self.bar.name[0] == '#' else '⌀' + self.bar.name}" + (
-            " in two layers" if self.layers[1:] else ""
-        )
+        return f"{self.count} {self.bar.words}" + (" in two layers" if self.layers[1:] else "")
 
     @property
     def fits(self) -> bool:

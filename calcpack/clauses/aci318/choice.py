@@ -21,7 +21,7 @@ from calcpack.clauses.aci318.strength import (
     shear_of_concrete,
     stirrup_limits,
 )
-from calcpack.clauses.bars import bar
+from calcpack.clauses.bars import OFFICE, Stock
 from calcpack.sheet.evaluation import holds
 
 MOST_BARS = 20
@@ -118,9 +118,11 @@ class Chosen(NamedTuple):
     satisfied: bool
 
 
-def candidates(cage: Cage, sizes: Sequence[str], fewest: int, most: int) -> Iterable[Group]:
+def candidates(
+    cage: Cage, sizes: Sequence[str], fewest: int, most: int, stock: Stock = OFFICE
+) -> Iterable[Group]:
     """Groups of bars: one layer before two, few bars before many, thin before thick."""
-    bars = [bar(size) for size in sizes]
+    bars = [stock.bar(size) for size in sizes]
     for layers in (1, 2):
         for count in range(fewest, most + 1):
             for each in bars:
@@ -129,7 +131,9 @@ def candidates(cage: Cage, sizes: Sequence[str], fewest: int, most: int) -> Iter
                     yield group
 
 
-def choose_bars(task: Task, sizes: Sequence[str], fewest: int = 2, most: int = MOST_BARS) -> Chosen:
+def choose_bars(
+    task: Task, sizes: Sequence[str], fewest: int = 2, most: int = MOST_BARS, stock: Stock = OFFICE
+) -> Chosen:
     """The fewest bars that satisfy the clauses, in one layer if possible; with compression bars if needed.
 
     Parameters
@@ -139,6 +143,8 @@ def choose_bars(task: Task, sizes: Sequence[str], fewest: int = 2, most: int = M
         Thinnest first.
     fewest, most : int
         How many bars there may be.
+    stock : Stock
+        The bars that the sizes name.
 
     Returns
     -------
@@ -159,7 +165,7 @@ def choose_bars(task: Task, sizes: Sequence[str], fewest: int = 2, most: int = M
     >>> choose_bars(task, MAIN["US"]).group.words
     '2 #10'
     """
-    groups = list(candidates(task.cage, sizes, fewest, most))
+    groups = list(candidates(task.cage, sizes, fewest, most, stock))
     if not groups:
         raise ValueError("no bars fit into the web")
     for group in groups:

@@ -10,7 +10,7 @@ from typing import NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
-from calcpack.clauses.bars import Bar
+from calcpack.clauses.bars import OFFICE, Bar, Stock
 from calcpack.clauses.en1992.model import CLOSE, Outline, Strengths
 from calcpack.clauses.en1992.national import National
 from calcpack.statics import Band, Curve
@@ -96,6 +96,8 @@ class BeamCase:
     service : tuple of Service
         One a span.
     given : Given
+    stock : Stock
+        The bars to choose from.
     """
 
     sagging: Outline
@@ -118,6 +120,7 @@ class BeamCase:
     points: tuple[float, ...] = ()
     service: tuple[Service, ...] = ()
     given: Given = field(default_factory=Given)
+    stock: Stock = OFFICE
 
     @property
     def length(self) -> float:

@@ -10,7 +10,7 @@ from typing import NamedTuple
 from calcpack.clauses.en1992.along import TopZone, Worst, nearest, resistance, shifted, top_zones
 from calcpack.clauses.en1992.anchorage import Anchorage, anchorage, good_bond
 from calcpack.clauses.en1992.case import BeamCase, Floats, SupportCase
-from calcpack.clauses.en1992.faces import HANGERS, SIZES, THINNER, Face, bars_of, candidates, choose
+from calcpack.clauses.en1992.faces import HANGERS, SIZES, Face, bars_of, candidates, choose, thinner
 from calcpack.clauses.en1992.model import Bars, Stirrups, within
 from calcpack.clauses.en1992.service import SpanDeflection, SpanDepth, span_deflections, span_depths
 from calcpack.clauses.en1992.stirrups import CLOSEST, ShearDesign, shear_design, stirrup_sizes
@@ -194,10 +194,10 @@ def design_beam(case: BeamCase) -> Design:
 
 def _with(case: BeamCase, stirrups: Stirrups) -> Design:
     """With stirrups of one size; thinner bottom bars where an end support has no room to anchor others."""
-    first = _deflecting(case, stirrups, SIZES)
+    first = _deflecting(case, stirrups, case.stock.groups(SIZES))
     if first.anchored or case.given.bottom:
         return first
-    for sizes in THINNER:
+    for sizes in thinner(case):
         design = _deflecting(case, stirrups, sizes)
         face = design.bottom
         if design.anchored and face.resists and face.fits and face.cracks_fine:
@@ -268,7 +268,7 @@ def _hangers(case: BeamCase, stirrup: float) -> Sequence[Bars]:
         count, size = case.given.top
         return [bars_of(case, size, count, stirrup)]
     return sorted(
-        (each for each in candidates(case, stirrup, HANGERS) if len(each.layers) == 1),
+        (each for each in candidates(case, stirrup, case.stock.groups(HANGERS)) if len(each.layers) == 1),
         key=lambda each: (each.area, each.count),
     )
 
@@ -298,7 +298,7 @@ def _top(case: BeamCase, stirrup: float, bottom: Face) -> tuple[Face | None, Fac
         hangers = (each for each in _hangers(case, stirrup) if each.area >= least)
         bars = next(hangers, bars_of(case, bottom.bars.bar, 2, stirrup))
         return None, Face(case, outline, bars, 0.0, 0.0)
-    return None, choose(case, outline, moment, 0.0, stirrup, least=least, sizes=HANGERS)
+    return None, choose(case, outline, moment, 0.0, stirrup, least=least, sizes=case.stock.groups(HANGERS))
 
 
 def _shear_fine(shear: ShearDesign) -> bool:

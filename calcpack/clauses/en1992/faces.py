@@ -6,7 +6,7 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from functools import cached_property
 
-from calcpack.clauses.bars import Bar, bar
+from calcpack.clauses.bars import Bar
 from calcpack.clauses.en1992.bending import Bending, bending, depth_limit, least_steel, steel_for
 from calcpack.clauses.en1992.case import BeamCase
 from calcpack.clauses.en1992.cracking import Crack, Elastic, crack_width, elastic
@@ -15,11 +15,7 @@ from calcpack.clauses.en1992.model import Bars, Outline, within
 
 # Sizes to choose from; the thickest only where the others do not fit.
 SIZES: tuple[tuple[str, ...], ...] = (("12 mm", "16 mm", "20 mm", "25 mm"), ("32 mm",))
-# Where an end support leaves little room, in turn.
-THINNER: tuple[tuple[tuple[str, ...], ...], ...] = tuple(
-    (SIZES[0][:number],) for number in range(len(SIZES[0]) - 1, 0, -1)
-)
-HANGERS: tuple[tuple[str, ...], ...] = (("12 mm", "16 mm", "20 mm", "25 mm"),)
+HANGERS = SIZES[:1]
 MOST_BARS = 16
 
 
@@ -167,7 +163,9 @@ def bars_of(case: BeamCase, size: Bar, count: int, stirrup: float) -> Bars:
     return arranged(size, count, case.sagging.web, case.cover + stirrup, clear)
 
 
-def candidates(case: BeamCase, stirrup: float, sizes: Sequence[Sequence[str]] = SIZES) -> Iterator[Bars]:
+def candidates(
+    case: BeamCase, stirrup: float, sizes: Sequence[Sequence[str]] | None = None
+) -> Iterator[Bars]:
     """Bars to try: fewest layers, then fewest bars, then least area; thick sizes last.
 
     Parameters
@@ -176,14 +174,24 @@ def candidates(case: BeamCase, stirrup: float, sizes: Sequence[Sequence[str]] = 
     stirrup : float [m]
         Diameter.
     sizes : sequence of groups of sizes
+        Where left out those of ``SIZES``, the job's own among them.
 
     Source: common practice.
     """
-    for group in sizes:
+    for group in sizes if sizes is not None else case.stock.groups(SIZES):
         found = [
-            bars_of(case, bar(size), count, stirrup) for size in group for count in range(2, MOST_BARS + 1)
+            bars_of(case, case.stock.bar(size), count, stirrup)
+            for size in group
+            for count in range(2, MOST_BARS + 1)
         ]
         yield from sorted(found, key=lambda each: (len(each.layers), each.count, each.area))
+
+
+def thinner(case: BeamCase) -> Iterator[tuple[tuple[str, ...], ...]]:
+    """Sizes to choose from where an end support leaves little room, in turn."""
+    usual = case.stock.groups(SIZES)[0]
+    for number in range(len(usual) - 1, 0, -1):
+        yield (usual[:number],)
 
 
 def choose(
@@ -195,7 +203,7 @@ def choose(
     *,
     compression: Sequence[Bars] = (),
     least: float = 0.0,
-    sizes: Sequence[Sequence[str]] = SIZES,
+    sizes: Sequence[Sequence[str]] | None = None,
 ) -> Face:
     """The first of the candidates that does everything; else the one that comes nearest.
 
@@ -210,6 +218,7 @@ def choose(
     least : float [m2]
         Area not to go below.
     sizes : sequence of groups of sizes
+        Those of ``SIZES`` with the job's own among them, where left out.
 
     Returns
     -------
@@ -229,7 +238,7 @@ def choose(
                 return face
             found.append(face)
     if not found:
-        return Face(case, outline, bars_of(case, bar("12 mm"), 2, stirrup), moment, lasting)
+        return Face(case, outline, bars_of(case, case.stock.bar("12 mm"), 2, stirrup), moment, lasting)
     return next((face for face in found if face.resists), max(found, key=_nearest))
 
 

@@ -9,7 +9,6 @@ from typing import Literal, NamedTuple
 
 import numpy as np
 
-from calcpack.clauses.bars import bar
 from calcpack.clauses.en1992.case import BeamCase, places
 from calcpack.clauses.en1992.model import CLOSE, Stirrups, within
 from calcpack.clauses.en1992.shear import (
@@ -21,14 +20,11 @@ from calcpack.clauses.en1992.shear import (
     truss,
 )
 
-TRIED: tuple[tuple[str, int], ...] = (
-    ("8 mm", 2),
-    ("10 mm", 2),
-    ("12 mm", 2),
-    ("10 mm", 4),
-    ("12 mm", 4),
-    ("12 mm", 6),
-    ("16 mm", 6),
+# Legs, and the sizes tried with so many.
+TRIED: tuple[tuple[int, tuple[str, ...]], ...] = (
+    (2, ("8 mm", "10 mm", "12 mm")),
+    (4, ("10 mm", "12 mm")),
+    (6, ("12 mm", "16 mm")),
 )
 STEP = 0.025  # [m], spacings are multiples of it
 CLOSEST, WIDEST = 0.075, 0.300  # [m], common practice
@@ -367,7 +363,8 @@ def stirrup_sizes(case: BeamCase) -> list[Stirrups]:
     if case.given.stirrups:
         legs, size, _ = case.given.stirrups
         return [Stirrups(size, legs)]
-    found = [Stirrups(bar(size), legs) for size, legs in TRIED]
+    stock = case.stock
+    found = [Stirrups(stock.bar(size), legs) for legs, usual in TRIED for size in stock.among(usual)]
     most = largest_leg_spacing(0.8 * case.sagging.depth, case.national)
     inside = case.sagging.web - 2 * case.cover
     return [each for each in found if within((inside - each.bar.diameter) / (each.legs - 1), most)] or found[

@@ -76,6 +76,7 @@ def write_bars(sheet: Sheet, face: Face, tag: str, size: SizeLines, block: Line,
         "mm",
         f"Bars, {words}: {bars.words}",
         origin,
+        bars.bar.cite,
         word="bar diameter",
     )
     circle = abs(bars.bar.area - 3.141592653589793 * bars.bar.diameter**2 / 4) <= 1e-9 * bars.bar.area

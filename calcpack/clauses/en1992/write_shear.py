@@ -172,14 +172,13 @@ def _stirrups(sheet: Sheet, design: Design, origin: str) -> tuple[Line, Line]:
     stirrups = design.shear.stirrups
     legs = number(stirrups.legs)
     bar = next(line for line in sheet.lines.values() if line.symbol == "phi_w")
+    circle = abs(stirrups.bar.area - 3.141592653589793 * stirrups.bar.diameter**2 / 4) < 1e-12
     area = sheet.hence(
         "A_sw",
-        legs * PI * bar**2 / 4
-        if abs(stirrups.bar.area - 3.141592653589793 * stirrups.bar.diameter**2 / 4) < 1e-12
-        else legs * measured(stirrups.bar.area * 1e6, "mm^2"),
+        legs * PI * bar**2 / 4 if circle else legs * measured(stirrups.bar.area * 1e6, "mm^2"),
         "mm^2",
         f"Area of a stirrup's {stirrups.legs} legs",
-        "geometry",
+        "geometry" if circle else stirrups.bar.source,
         word="shear reinforcement within one spacing",
     )
     spacing = sheet.take(

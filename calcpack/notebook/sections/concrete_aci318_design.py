@@ -152,7 +152,7 @@ def settle(work: Work) -> Design:
     flange = _flange(section, wings, shortest(actions.stretches).clear)
     aggregate = keys["aggregate"] or AGGREGATE[system]
     best: Design | None = None
-    for size, more in _stirrup_trials(keys["stirrups"]["size"], system):
+    for size, more in _stirrup_trials(work, keys["stirrups"]["size"]):
         stirrup = read_bar(work, size, "design.stirrups.size")
         cage = Cage(
             section.dimensions["width"], section.dimensions["depth"], cover, stirrup.diameter, aggregate
@@ -214,9 +214,9 @@ def _flange(section: Section, wings: tuple[Wing, ...], clear: float) -> float | 
     return section.dimensions["width"] + sum(wing_width(slab, each.clear, clear, both=both) for each in wings)
 
 
-def _stirrup_trials(given: str | None, system: str) -> list[tuple[str, int]]:
+def _stirrup_trials(work: Work, given: str | None) -> list[tuple[str, int]]:
     """Sizes of stirrups with the legs they have beyond the needed ones, in the order they are tried."""
-    sizes = (given,) if given else STIRRUPS[system]
+    sizes = (given,) if given else work.stock.among(STIRRUPS[work.study.system])
     return [(size, more) for more in (0, 2) for size in sizes]
 
 
@@ -245,8 +245,9 @@ def _with_stirrups(
         how.append(f"{legs} stirrup legs: as many as their distance across the web asks for"
                    + (", and two more for strength" if more else ""))  # fmt: skip
     if not keys["size"]:
+        tried = ", ".join(work.stock.among(STIRRUPS[system]))
         how.append(
-            f"stirrups {stirrup.name}: the thinnest of {', '.join(STIRRUPS[system])} that need not stand "
+            f"stirrups {stirrup.name}: the thinnest of {tried} that need not stand "
             f"closer than {work.show(CLOSEST[system] * 1000, 'mm')}"
         )
     area = legs * stirrup.area

@@ -9,7 +9,7 @@ from calcpack.clauses.aci318.arrangement import Cage, Group, arranged
 from calcpack.clauses.aci318.choice import MAIN, MOST_BARS, Chosen, Strengths, Task, choose_bars
 from calcpack.clauses.aci318.detailing import End, available, is_small
 from calcpack.clauses.aci318.strength import INCH, Bending, Block, development_length
-from calcpack.clauses.bars import Bar, bar
+from calcpack.clauses.bars import Bar
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Section
 from calcpack.notebook.sections.concrete_aci318_actions import Actions
@@ -51,7 +51,7 @@ def is_high(group: Group) -> bool:
 def read_bar(work: Work, size: str, key: str) -> Bar:
     """The bar of a size that the job names, or an error that says where."""
     try:
-        return bar(size)
+        return work.stock.bar(size)
     except CalcpackError as error:
         raise CalcpackError(
             *(problem.at(mark=f"beam {work.given.mark}", key=key) for problem in error.problems)
@@ -143,18 +143,18 @@ def _settled(work: Work, name: str, task: Task | None, cage: Cage, how: list[str
     """The bars of one face: the job's, or chosen ones."""
     keys, system = work.given.design[name], work.study.system
     count, size = keys["count"], keys["size"]
-    sizes: tuple[str, ...] = MAIN[system]
+    sizes = work.stock.among(MAIN[system])
     if size:
         sizes = (read_bar(work, size, f"design.{name}.size").name,)
     if count and size:
-        return Chosen(arranged(count, bar(sizes[0]), cage), None, True)
+        return Chosen(arranged(count, work.stock.bar(sizes[0]), cage), None, True)
     if task is None:
         words = "hangers for the stirrups, no moment puts this face in tension"
-        group = arranged(count or 2, bar(sizes[0] if size else HANGERS[system]), cage)
+        group = arranged(count or 2, work.stock.bar(sizes[0] if size else HANGERS[system]), cage)
         how.append(f"{name} bars: {group.words}, {words} (common practice)")
         return Chosen(group, None, True)
     try:
-        chosen = choose_bars(task, sizes, count or 2, count or MOST_BARS)
+        chosen = choose_bars(task, sizes, count or 2, count or MOST_BARS, work.stock)
     except ValueError:
         raise CalcpackError(
             "no bars fit into the web with the clear distances of 25.2.1",

@@ -273,8 +273,8 @@ def _size(beam: ConcreteBeam) -> SizeLines:
         value = millimetres(section.dimensions[key])
         return sheet.take(symbol, value, "mm", says, f"section {section.key} {key}")
 
-    def detail(symbol: str, value: float, says: str, origin: str, word: str) -> Line:
-        return sheet.take(symbol, millimetres(value), "mm", says, origin, word=word)
+    def detail(symbol: str, value: float, says: str, origin: str, word: str, cite: str = "") -> Line:
+        return sheet.take(symbol, millimetres(value), "mm", says, origin, cite, word=word)
 
     width, depth = size("width", "b", "Width of the beam"), size("depth", "h", "Depth of the beam")
     flange = size("flange_depth", "h_f", "Depth of the flange") if section.shape == "tee" else None
@@ -292,6 +292,7 @@ def _size(beam: ConcreteBeam) -> SizeLines:
         "Diameter of the stirrups",
         beam.origin("stirrups"),
         "diameter of stirrups",
+        beam.design.shear.stirrups.bar.cite,
     )
     inset = sheet.hence(
         "c", cover + stirrup, "mm", "Cover of the bars", "geometry", word="cover of the longitudinal bars"

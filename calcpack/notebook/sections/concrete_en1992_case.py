@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 
 from calcpack.actions import CombinationResult
-from calcpack.clauses.bars import bar
+from calcpack.clauses.bars import Stock
 from calcpack.clauses.en1992.case import BeamCase, Given, Service, SpanCase, SupportCase
 from calcpack.clauses.en1992.detailing import nominal_cover
 from calcpack.clauses.en1992.flange import (
@@ -96,7 +96,8 @@ def particulars(work: Work) -> Particulars:
         fixed=given.fixed,
         points=_points(work),
         service=tuple(_service(work, lasting, span) for span in spans),
-        given=_given(design),
+        given=_given(design, work.stock),
+        stock=work.stock,
     )
     _guard(case)
     return Particulars(case, parameters, flanges, lasting, design["support_width"])
@@ -120,7 +121,7 @@ def _guard(case: BeamCase) -> None:
         )
 
 
-def _given(design: Mapping[str, Any]) -> Given:
+def _given(design: Mapping[str, Any], stock: Stock) -> Given:
     found: dict[str, Any] = {"bottom": None, "top": None, "stirrups": None}
     for key, needed in (
         ("bottom", ("count", "size")),
@@ -139,7 +140,7 @@ def _given(design: Mapping[str, Any]) -> Given:
                 key=f"design.{key}",
             )  # fmt: skip
         try:
-            sizes = bar(design[key]["size"])
+            sizes = stock.bar(design[key]["size"])
         except CalcpackError as error:
             raise CalcpackError(*(each.at(key=f"design.{key}.size") for each in error.problems)) from None
         found[key] = (values[0], sizes, *values[2:])

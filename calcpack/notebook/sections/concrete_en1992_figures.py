@@ -7,6 +7,7 @@ from itertools import pairwise
 
 import numpy as np
 
+from calcpack.clauses.bars import Bar
 from calcpack.clauses.en1992.design import Design
 from calcpack.clauses.en1992.model import Bars
 from calcpack.figures.bar_layout import bar_layout
@@ -24,8 +25,12 @@ def _bearings(work: Work) -> list[tuple[float, str, str]]:
     return [(bearing.at, bearing.kind, bearing.mark) for bearing in work.given.bearings]
 
 
+def _size(bar: Bar) -> str:
+    return bar.words.removesuffix(" mm")
+
+
 def _text(work: Work, bars: Bars) -> str:
-    return f"{bars.count} \u2300{bars.bar.name.removesuffix(' mm')}"
+    return f"{bars.count} {_size(bars.bar)}"
 
 
 def _places(bars: Bars, web: float, depth: float, top: bool) -> list[tuple[float, float, float]]:
@@ -45,7 +50,7 @@ def section_figures(work: Work, design: Design) -> list[tuple[Figure, str]]:
     assert section is not None
     shear, outline = design.shear, design.case.sagging
     spacings = sorted({round(zone.spacing * 1e3) for zone in shear.zones})
-    stirrups = f"\u2300{shear.stirrups.bar.name.removesuffix(' mm')} at {'/'.join(map(str, spacings))}"
+    stirrups = f"{_size(shear.stirrups.bar)} at {'/'.join(map(str, spacings))}"
     found = []
     tops = [(design.through.bars, "in the span"), (design.top.bars, "over supports")] if design.top else []
     if not tops or len({bars.count for bars, _ in tops}) == 1:
@@ -86,14 +91,14 @@ def bars_figure(work: Work, design: Design) -> tuple[Figure, str]:
     layers.append(("top", 0.0, length, _text(work, through)))
     if design.top:
         more = design.top.bars.count - through.count
-        size = design.top.bars.bar.name.removesuffix(" mm")
-        layers += [("top", zone.start, zone.end, f"{more} \u2300{size}") for zone in design.zones]
-    size = design.shear.stirrups.bar.name.removesuffix(" mm")
+        size = _size(design.top.bars.bar)
+        layers += [("top", zone.start, zone.end, f"{more} {size}") for zone in design.zones]
+    size = _size(design.shear.stirrups.bar)
     zones = []
     for zone in design.shear.zones:
         count = math.ceil((zone.end - zone.start) / zone.spacing - 1e-9)
         zones.append(
-            (zone.start, zone.end, zone.spacing, f"\u2300{size} at {round(zone.spacing * 1e3)}, {count} pcs")
+            (zone.start, zone.end, zone.spacing, f"{size} at {round(zone.spacing * 1e3)}, {count} pcs")
         )
     figure = bar_layout(
         length, _bearings(work), layers, zones, work.study.system, fixed=case.fixed, mark=work.given.mark

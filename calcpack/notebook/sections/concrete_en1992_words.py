@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
+from calcpack.clauses.bars import Stock
 from calcpack.clauses.en1992.design import Design
 from calcpack.clauses.en1992.faces import SIZES, Face
 from calcpack.notebook.work import Work
@@ -19,10 +22,16 @@ def _asked(work: Work, face: Face) -> str:
     return words
 
 
-def _rule() -> str:
-    first, second = (", ".join(size.removesuffix(" mm") for size in group) for group in SIZES)
+def _listed(sizes: Sequence[str]) -> str:
+    if all(size.endswith(" mm") for size in sizes):
+        sizes = [*(size.removesuffix(" mm") for size in sizes[:-1]), sizes[-1]]
+    return ", ".join(sizes)
+
+
+def _rule(stock: Stock) -> str:
+    first, second = (_listed(group) for group in stock.groups(SIZES))
     return (
-        f"fewest layers, then fewest bars, then least area, of {first} mm ({second} mm only where these "
+        f"fewest layers, then fewest bars, then least area, of {first} ({second} only where these "
         "do not fit), that satisfy moment, x/d, least reinforcement, spacing and crack width"
     )
 
@@ -41,7 +50,7 @@ def bottom_words(work: Work, design: Design) -> str:
             "and crack width; these come nearest. The section is too small."
         )
     return (
-        f"Bottom, chosen: {bars}; {_asked(work, face)}. Rule: {_rule()}; more, up to half as much "
+        f"Bottom, chosen: {bars}; {_asked(work, face)}. Rule: {_rule(case.stock)}; more, up to half as much "
         "again, where the deflection or the force at an end support asks for it, and thinner ones where an "
         "end support has no room to anchor them."
     )

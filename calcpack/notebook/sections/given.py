@@ -90,9 +90,7 @@ def _panel(work: Work, transfer: PanelTransfer) -> None:
     panel, sheet = transfer.panel, work.sheet
     index, place = work.sources[panel.mark].index, f"panel {panel.mark}"
 
-    def take(
-        key: str, symbol: str, value: float, unit: str, words: str, origin: str, cite: str = ""
-    ) -> None:
+    def take(key: str, symbol: str, value: float, unit: str, words: str, origin: str, cite: str = "") -> None:
         work.lines[key, panel.mark] = sheet.take(
             f"{symbol}_{index}",
             value,

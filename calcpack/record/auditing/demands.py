@@ -43,7 +43,7 @@ def reduction_factor(given: Given) -> tuple[float, frozenset[str]]:
     """How far live load is reduced, and that of which sources.
 
     Source: ASCE/SEI 7-22, 4.7.2; EN 1991-1-1:2002, 6.3.1.2(10), with ψ0 = 0.7 for categories A to D (both
-    from memory).
+    from memory), unless the job states its own.
     """
     rule = given.basis.get("live_load_reduction", "none")
     if rule == "none":
@@ -60,7 +60,8 @@ def reduction_factor(given: Given) -> tuple[float, frozenset[str]]:
         category = given.basis.get("occupancy") or "B"
         if category not in ("A", "B", "C", "D") or area <= 0:
             return 1.0, frozenset()
-        factor = min(5 / 7 * 0.7 + 10 / area, 1.0)
+        psi0 = (given.data.get("live_psi") or {"psi0": 0.7})["psi0"]
+        factor = min(5 / 7 * psi0 + 10 / area, 1.0)
         factor = max(factor, 0.6) if category in ("C", "D") else factor
     return (factor, sources) if factor != 1.0 else (1.0, frozenset())
 

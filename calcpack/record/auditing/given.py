@@ -59,6 +59,8 @@ _PARAMETERS = {
     "carried": [{"mark": str, "at": float, "reactions": Each(float)}],
     "basis": {"dividing_lines": str, "live_load_reduction": Maybe(str), "occupancy": Maybe(str)},
     "actions": {"combinations": [{"name": str, "limit": str, "factors": Each(float)}]},
+    "bars": Maybe([{"name": str, "diameter": float, "area": float, "source": str}]),
+    "live_psi": Maybe({"psi0": float, "psi1": float, "psi2": float}),
     "tributary": Maybe([{"area": float, "source": str, "exempt": str}]),
 }  # fmt: skip
 

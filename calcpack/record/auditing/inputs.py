@@ -67,6 +67,8 @@ def job_facts(target: Target) -> JobFacts:
             "basis": job.basis.model_dump(mode="json"),
             "submission": job.submission.model_dump(mode="json"),
             "panels": {each.mark: each.model_dump(mode="json", exclude={"place"}) for each in job.panels},
+            "bars": [each.model_dump(mode="json") for each in job.bars],
+            "live_psi": job.psi.model_dump(mode="json") if job.psi else None,
             "beams": {each.mark: each.model_dump(mode="json") for each in job.beams},
             "design": {each.mark: keys for each in job.beams if (keys := _design(job, each)) is not None},
         }
@@ -135,6 +137,8 @@ def audit_job(given: Given | None, facts: Mapping[str, Any] | None) -> tuple[Fin
         *_panels(given, facts),
         *_same("section", given.data.get("section"), beam["section"]),
         *_same("material", given.data.get("material"), beam["material"]),
+        *_same("bars", given.data.get("bars"), facts["bars"]),
+        *_same("live_psi", given.data.get("live_psi"), facts["live_psi"]),
         *_same("line", given.data.get("points"), beam["points"]),
         *_same("fixed", given.data.get("fixed"), [beam["fixed_start"], beam["fixed_end"]]),
         *_same("free", given.data.get("free"), [beam["free_start"], beam["free_end"]]),

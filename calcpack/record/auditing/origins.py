@@ -56,6 +56,9 @@ class _Pools:
         given = self.given
         if origin.startswith(("design.", f"beam {given.mark} design.")):
             return self._once("design", given.data.get("design") or {}), False
+        own = [each for each in given.data.get("bars") or () if each["source"] == origin]
+        if own:
+            return sorted(numbers(own)), True
         match = _NAMED.match(origin)
         if not match:
             return [], False
