@@ -180,8 +180,8 @@ def candidates(
     """
     for group in sizes if sizes is not None else case.stock.groups(SIZES):
         found = [
-            bars_of(case, case.stock.bar(size), count, stirrup)
-            for size in group
+            bars_of(case, size, count, stirrup)
+            for size in map(case.stock.bar, group)
             for count in range(2, MOST_BARS + 1)
         ]
         yield from sorted(found, key=lambda each: (len(each.layers), each.count, each.area))
