@@ -188,7 +188,10 @@ def candidates(
 
 
 def thinner(case: BeamCase) -> Iterator[tuple[tuple[str, ...], ...]]:
-    """Sizes to choose from where an end support leaves little room, in turn."""
+    """Sizes to choose from where an end support leaves little room, in turn.
+
+    Source: common practice.
+    """
     usual = case.stock.groups(SIZES)[0]
     for number in range(len(usual) - 1, 0, -1):
         yield (usual[:number],)
