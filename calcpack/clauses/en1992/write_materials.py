@@ -120,7 +120,10 @@ def write_strengths(
 
 
 def origin_of(national: National, key: str) -> str:
-    """Where a national parameter comes from, as a line says it."""
+    """Where a national parameter comes from, as a line says it.
+
+    Source: EN 1992-1-1:2004, foreword, national annex.
+    """
     if national.file and key in national.own:
         return f"{national.file} values.{key}"
     return RECOMMENDED if national.name.startswith(RECOMMENDED) or national.file else national.name
