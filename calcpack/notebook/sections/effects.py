@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from calcpack.actions import AnalysedBeam, CombinationResult
+from calcpack.actions import AnalysedBeam, Combination, CombinationResult
 from calcpack.figures import response_figure
 from calcpack.figures.response import CurveData, Quantity
 from calcpack.job.model import Case
@@ -10,8 +10,10 @@ from calcpack.notebook.sections.resultants import CLOSE, before, midspan_moment,
 from calcpack.notebook.study import CASE_WORDS, SpanLoads
 from calcpack.notebook.work import LETTER, NOTHING, Work, summed
 from calcpack.sheet import Expression, Line, measured, number, total
+from calcpack.statics import Extreme
 
 SAMPLES = 120
+Deflected = tuple[Combination, Extreme]  # under which combination, and the largest
 
 
 def state_combinations(work: Work) -> None:
@@ -197,12 +199,20 @@ def _reduced(work: Work, case: Case, effect: Expression | Line) -> Expression | 
     return effect
 
 
-def state_effects(work: Work) -> None:
-    """Diagrams with the envelope and the governing combination, and the reactions."""
+def state_effects(work: Work, *, deflection: bool = True) -> None:
+    """Diagrams with the envelope and the governing combination, and the reactions.
+
+    Parameters
+    ----------
+    work : Work
+    deflection : bool
+        Whether to draw the deflected beam; False where the design draws it within its limits. That of an
+        uncracked beam is never drawn where the design works out a cracked one.
+    """
     study, given, analysed = work.study, work.given, work.study.analysed
-    cracked = bool(work.deflections)
+    deflected = analysed.deflection_total if deflection and study.stiffness and not work.deflections else None
     work.sheet.section(
-        "Reactions, shear and moment" if cracked else "Reactions, shear, moment and deflection"
+        "Reactions, shear and moment" if deflected is None else "Reactions, shear, moment and deflection"
     )
     if study.unloaded:
         work.sheet.text(NOTHING)
@@ -211,26 +221,25 @@ def state_effects(work: Work) -> None:
     figure = response_figure(
         given.length,
         [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
-        curves_of(work),
+        curves_of(work, deflected),
         study.system,
         mark=given.mark,
         width_mm=170,
         fixed=given.fixed,
-        extremes=extremes_of(work),
+        extremes=extremes_of(work, deflected),
     )
-    deflection = analysed.deflection_total
     caption = (
         f"Shaded: the envelope of all strength combinations. Line: {governing.combination.name} with every "
         "span loaded."
     )
-    if deflection is not None and not cracked:
-        caption += f" Deflection: {deflection[0].name}, E I = {work.show(study.stiffness or 0.0, 'kN*m^2')}."
+    if deflected is not None:
+        caption += f" Deflection: {deflected[0].name}, E I = {work.show(study.stiffness or 0.0, 'kN*m^2')}."
     work.sheet.figure(figure, caption)
     _reactions(work)
 
 
-def curves_of(work: Work) -> dict[Quantity, list[CurveData]]:
-    """What the figure draws: the envelope over all strength combinations, and the governing one."""
+def curves_of(work: Work, deflected: Deflected | None) -> dict[Quantity, list[CurveData]]:
+    """What the figure draws: the envelope of all strength combinations, the governing one, the deflection."""
     study, analysed = work.study, work.study.analysed
     curves: dict[Quantity, list[CurveData]] = {}
     always, placed = analysed.factors(analysed.governing_moment.combination)
@@ -243,8 +252,8 @@ def curves_of(work: Work) -> dict[Quantity, list[CurveData]]:
             (*band.lower.sample(SAMPLES), "lower"),
             (*governing.curve(quantity).sample(SAMPLES), "line"),
         ]
-    if (found := analysed.deflection_total) is not None and study.stiffness and not work.deflections:
-        result = next(each for each in analysed.results if each.combination is found[0])
+    if deflected is not None and study.stiffness:
+        result = next(each for each in analysed.results if each.combination is deflected[0])
         band = result.envelope.deflection
         high, low = (edge.sample(SAMPLES) for edge in (band.upper, band.lower))
         curves["deflection"] = [
@@ -254,7 +263,7 @@ def curves_of(work: Work) -> dict[Quantity, list[CurveData]]:
     return curves
 
 
-def extremes_of(work: Work) -> list[tuple[Quantity, float, float]]:
+def extremes_of(work: Work, deflected: Deflected | None) -> list[tuple[Quantity, float, float]]:
     """Extreme values with their places, for the figure: (quantity, value, at)."""
     study, analysed = work.study, work.study.analysed
     found: list[tuple[Quantity, float, float]] = [
@@ -268,8 +277,8 @@ def extremes_of(work: Work) -> list[tuple[Quantity, float, float]]:
         for extreme in (most, least)
         if study.significant(extreme.value, "force")
     ]
-    if (deflection := analysed.deflection_total) is not None and not work.deflections:
-        found.append(("deflection", deflection[1].value, deflection[1].at))
+    if deflected is not None:
+        found.append(("deflection", deflected[1].value, deflected[1].at))
     return found
 
 
