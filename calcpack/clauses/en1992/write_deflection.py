@@ -212,17 +212,16 @@ def write_curvature(
     )
 
 
-def limit_term(span: Line, reach: float, factor: float) -> Expression:
+def limit_term(span: Line, overhang: bool, factor: float) -> Expression:
     """Span over a number, twice an overhang over it.
 
     Parameters
     ----------
     span : Line [m]
-    reach : float
-        Over the span: 2 for an overhang.
+    overhang : bool
     factor : float
         Span over ...
 
     Source: EN 1992-1-1:2004, 7.4.1(4), for an overhang twice its length.
     """
-    return (2 * span if reach > 1 else span) / number(factor)
+    return (2 * span if overhang else span) / number(factor)

@@ -226,4 +226,4 @@ def _reach_words(design: Design, found: SpanDeflection) -> str:
 
 def _limit(work: Work, design: Design, number: int, factor: float) -> Expression:
     span = work.lines["span", number]
-    return limit_term(span, 2.0 if design.case.spans[number].overhang else 1.0, factor)
+    return limit_term(span, design.case.spans[number].overhang, factor)

@@ -12,7 +12,7 @@ from calcpack.clauses.en1993.design import Conditions, LocalForce, buckling_of
 from calcpack.clauses.en1993.lines_bearing import bearing as write
 from calcpack.clauses.en1993.lines_buckling import buckling, critical
 from calcpack.clauses.en1993.lines_profile import classify, take_factors, take_profile
-from calcpack.clauses.en1993.lines_section import bending, bending_beside_shear, shear
+from calcpack.clauses.en1993.lines_section import bending, bending_beside_shear, modulus_line, shear
 from calcpack.clauses.en1993.rules import Factors
 from calcpack.clauses.en1993.segments import segments
 from calcpack.sheet import Sheet
@@ -117,3 +117,18 @@ def test_force_at_the_resistance_of_the_web(share, passes):
     sheet.section("Bearing")
     given, partial = take_profile(sheet, IPE), take_factors(sheet, IPE)
     assert write(sheet, given, partial, force, Conditions(), "at 2 m").check.passes is passes
+
+
+@pytest.mark.parametrize(
+    ("name", "grade", "symbol", "words"),
+    [("IPE 330", "S235", "W_pl,y", "plastic, class 1"), ("HE 200 A", "S355", "W_pl,y", "plastic, class 2"),
+     ("HE 300 A", "S355", "W_el,y", "elastic, class 3")],
+)  # fmt: skip
+def test_modulus_of_the_class(name, grade, symbol, words):
+    """6.2.5(2)."""
+    sheet = Sheet("B1")
+    sheet.section("Section")
+    steel = profile(name, grade)
+    line, said_so = modulus_line(take_profile(sheet, steel), steel)
+    assert (line.symbol, said_so) == (symbol, words)
+    assert line.value == pytest.approx(steel.modulus_of_section * 1e9)
