@@ -292,11 +292,15 @@ def _top(case: BeamCase, stirrup: float, bottom: Face) -> tuple[Face | None, Fac
             Face(case, outline, bars_of(case, top.bars.bar, count, stirrup), moment, 0.0)
             for count in range(2, top.bars.layers[0] + 1)
         ]
-        enough = (each for each in tried if each.bars.area >= least and (not moment or each.resists))
-        return top, next(enough, replace(top, moment=moment, lasting=0.0, compression=None))
+        enough = [each for each in tried if each.bars.area >= least and (not moment or each.resists)]
+        if enough:
+            return top, enough[0]
+        # the end supports, or the bars counted in compression, ask for more than the hogging moments
+        ask = max(moment, case.hog)
+        more = choose(case, outline, ask, lasting, stirrup, compression=(bottom.bars,), least=least)
+        return replace(more, moment=case.hog), replace(more, moment=moment, lasting=0.0, compression=None)
     if not moment:
-        hangers = (each for each in _hangers(case, stirrup) if each.area >= least)
-        bars = next(hangers, bars_of(case, bottom.bars.bar, 2, stirrup))
+        bars = next(each for each in _hangers(case, stirrup) if each.area >= least)
         return None, Face(case, outline, bars, 0.0, 0.0)
     return None, choose(case, outline, moment, 0.0, stirrup, least=least, sizes=case.stock.groups(HANGERS))
 

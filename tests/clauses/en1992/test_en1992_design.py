@@ -136,11 +136,28 @@ def test_a_cantilever_has_bars_at_the_bottom_that_carry_nothing():
 
 def test_a_fixed_beam_has_no_free_end():
     """No end moment to allow for: the thinnest bars hold the stirrups where no bars are needed at the top."""
-    held = beam([6.0], 0.1, points=((3.0, 1.0),))
+    held = beam([6.0], 20.0, points=((3.0, 1.0),))
     bare = replace(held, supports=tuple(each._replace(end=False) for each in held.supports))
     found = design_beam(bare)
     assert bars(found)[1:] == [None, (2, "12 mm")]
     assert (found.through.moment, found.through.lasting) == (0.0, 0.0)
+    # where bars in compression are counted, with as much as is counted
+    pressed = design_beam(replace(beam([6.0], 95.0, limits=(None, None)), supports=bare.supports))
+    assert pressed.bottom.doubly
+    assert pressed.through.bars == pressed.bottom.compression
+    assert pressed.bottom.resists
+
+
+@pytest.mark.parametrize("load", [66.0, 75.0])
+def test_end_supports_that_ask_for_more_than_the_hogging_moments(load):
+    """An overhang of 300 mm hogs with 0.045 q, the end support with 0.15 of q L2/8: more than two of 12 mm."""
+    found = design_beam(beam([6.0], load, overhang=0.3, half=0.2, limits=(None, None)))
+    assert found.top.moment == pytest.approx(load * 0.3**2 / 2)
+    assert found.top.lasting == pytest.approx(load * 0.3**2 / 2)
+    assert found.through.moment > 44.04  # what two of 12 mm carry
+    assert found.through.resists
+    assert found.through.lasting == 0.0
+    assert found.top.bars == found.through.bars
 
 
 def test_lasting_moments_of_each_face():
@@ -214,6 +231,15 @@ def test_shear_at_its_limit(share, fine):
     more = 60.0 * share / found.ratio(0)
     case = beam([6.0], more, half=0.15, given=given(stirrups=(2, "8 mm", 0.15)))
     assert module._shear_fine(module.shear_design(case, found.stirrups, found.depth, None)) is fine
+
+
+@pytest.mark.parametrize(("share", "fine"), [(0.995, True), (1.005, False)])
+def test_struts_at_their_limit(share, fine):
+    """Faces 2.5 m from the supports: 0.5 q there, 442.4 kN the struts carry (6.9); the stirrups carry more."""
+    load = share * 0.3 * 0.9 * 0.45 * 0.528 * 20e3 / 2.9 / 0.5
+    case = beam([6.0], load, half=2.5, given=given(stirrups=(2, "10 mm", 0.075), cot=2.5))
+    shear = module.shear_design(case, module.stirrup_sizes(case)[0], 0.45, None)
+    assert module._shear_fine(shear) is fine
 
 
 @pytest.mark.parametrize(("spacing", "fine"), [(0.0751, True), (0.0749, False)])
