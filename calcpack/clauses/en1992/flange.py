@@ -134,7 +134,7 @@ def _reach(
     web: float,
 ) -> float:
     edge = 0.0
-    while True:  # from panel to panel, to where the slab ends
+    for _ in panels:  # from panel to panel, to where the slab ends
         ahead = (at[0] + way[0] * (edge + NEAR), at[1] + way[1] * (edge + NEAR))
         panel = next((each for each in panels if _inside(ahead, each)), None)
         if panel is None:
