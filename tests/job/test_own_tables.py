@@ -12,7 +12,7 @@ from calcpack.notebook import load_sheet
 from calcpack.notebook.lightest import choose_sections
 from calcpack.notebook.parameters import beam_input, to_text
 from calcpack.notebook.sections import steel_aisc360, steel_en1993
-from calcpack.notebook.sections.steel_en1993_results import shown_of
+from calcpack.notebook.sections.steel_en1993.results import shown_of
 from calcpack.notebook.templates import find_template
 
 JOB = """\

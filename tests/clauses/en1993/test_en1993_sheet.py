@@ -17,7 +17,7 @@ from calcpack.notebook.parameters import beam_input, to_text
 from calcpack.notebook.sections import steel_en1993 as steel
 from calcpack.notebook.sections import steel_figures
 from calcpack.notebook.sections.closing import record_results
-from calcpack.notebook.sections.steel_en1993_results import shown_of
+from calcpack.notebook.sections.steel_en1993.results import shown_of
 from calcpack.notebook.templates import find_template
 
 JOB = """

@@ -25,15 +25,15 @@ from calcpack.clauses.en1992.write_shear import (
     write_shear,
     write_stirrup_limits,
 )
-from calcpack.notebook.sections.concrete_en1992_case import Particulars, particulars
-from calcpack.notebook.sections.concrete_en1992_figures import (
+from calcpack.notebook.sections.concrete_en1992.case import Particulars, particulars
+from calcpack.notebook.sections.concrete_en1992.figures import (
     bars_figure,
     moment_figure,
     section_figures,
     shear_figure,
 )
-from calcpack.notebook.sections.concrete_en1992_service import write_service
-from calcpack.notebook.sections.concrete_en1992_words import (
+from calcpack.notebook.sections.concrete_en1992.service import write_service
+from calcpack.notebook.sections.concrete_en1992.words import (
     bottom_words,
     stirrup_words,
     top_words,

@@ -17,7 +17,7 @@ from calcpack.clauses.en1992.write_service import (
     write_cracked,
     write_creep,
 )
-from calcpack.notebook.sections.concrete_en1992_figures import deflection_figure
+from calcpack.notebook.sections.concrete_en1992.figures import deflection_figure
 from calcpack.notebook.work import StatedDeflection, Work
 from calcpack.sheet import Expression, Line, formula
 

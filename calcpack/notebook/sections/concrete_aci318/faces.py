@@ -12,7 +12,7 @@ from calcpack.clauses.aci318.strength import INCH, Bending, Block, development_l
 from calcpack.clauses.bars import Bar
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Section
-from calcpack.notebook.sections.concrete_aci318_actions import Actions
+from calcpack.notebook.sections.concrete_aci318.actions import Actions
 from calcpack.notebook.work import Work
 from calcpack.statics import Extreme
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from calcpack.clauses.aisc360 import lines, shape_lines, strength, web_lines
 from calcpack.clauses.aisc360.design import DeflectionCheck, ForceCheck
 from calcpack.clauses.aisc360.shape_lines import AISC, available
-from calcpack.notebook.sections._steel_aisc360 import SteelBeam, deflection_name, force_name, span_words
+from calcpack.notebook.sections.steel_aisc360.beam import SteelBeam, deflection_name, force_name, span_words
 from calcpack.notebook.sections.steel_figures import deflected_figure, shear_figure, state_ponding
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import Work

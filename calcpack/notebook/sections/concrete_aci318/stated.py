@@ -11,28 +11,16 @@ from calcpack.clauses.aci318.limits import limit_words
 from calcpack.clauses.aci318.materials import Size, state_cover, state_materials, state_not_deep
 from calcpack.figures import section_figure
 from calcpack.notebook.sections.checks import state_checks
-from calcpack.notebook.sections.concrete_aci318_bars import state_bars
-from calcpack.notebook.sections.concrete_aci318_deflection import state_deflections
-from calcpack.notebook.sections.concrete_aci318_design import Design, settle, shortest
-from calcpack.notebook.sections.concrete_aci318_faces import Face
-from calcpack.notebook.sections.concrete_aci318_lines import ENVELOPE, Written
-from calcpack.notebook.sections.concrete_aci318_shear import state_shear
+from calcpack.notebook.sections.concrete_aci318.bars import state_bars
+from calcpack.notebook.sections.concrete_aci318.deflection import state_deflections
+from calcpack.notebook.sections.concrete_aci318.design import Design, settle, shortest
+from calcpack.notebook.sections.concrete_aci318.faces import Face
+from calcpack.notebook.sections.concrete_aci318.lines import ENVELOPE, Written
+from calcpack.notebook.sections.concrete_aci318.shear import state_shear
 from calcpack.notebook.sections.rehearsal import ratio_rows, rehearsal_of
 from calcpack.notebook.study import Study
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line
-
-__all__ = [
-    "begin",
-    "settle",
-    "state_bars",
-    "state_bending_strength",
-    "state_deflections",
-    "state_design",
-    "state_load_checks",
-    "state_shear",
-    "state_shown",
-]
 
 
 @dataclass(frozen=True)
@@ -50,7 +38,7 @@ def begin(work: Work) -> Begun:
     Raises
     ------
     CalcpackError
-        See :func:`calcpack.notebook.sections.concrete_aci318_design.settle`.
+        See :func:`calcpack.notebook.sections.concrete_aci318.design.settle`.
     """
     design = settle(work)
     draft = rehearsal_of(work)

@@ -13,9 +13,9 @@ from calcpack.clauses.aci318.detailing import (
 from calcpack.clauses.aci318.materials import cite
 from calcpack.clauses.aci318.strength import INCH
 from calcpack.figures import Figure, bar_layout, capacity_figure
-from calcpack.notebook.sections.concrete_aci318_faces import worst_end
-from calcpack.notebook.sections.concrete_aci318_lines import ENVELOPE, Written
-from calcpack.notebook.sections.concrete_aci318_shear import HALF, shear_figure
+from calcpack.notebook.sections.concrete_aci318.faces import worst_end
+from calcpack.notebook.sections.concrete_aci318.lines import ENVELOPE, Written
+from calcpack.notebook.sections.concrete_aci318.shear import HALF, shear_figure
 from calcpack.sheet import Line
 
 SAMPLES = 120

@@ -17,7 +17,7 @@ from calcpack.clauses.aci318.shear import (
     take_stirrups,
 )
 from calcpack.figures import Figure, capacity_figure
-from calcpack.notebook.sections.concrete_aci318_lines import ENVELOPE, Written
+from calcpack.notebook.sections.concrete_aci318.lines import ENVELOPE, Written
 from calcpack.sheet import Line
 
 SAMPLES = 120

@@ -10,7 +10,7 @@ from calcpack.clauses.en1993.lines_profile import RANK
 from calcpack.clauses.en1993.rules import LIMITS, STRESS_SHARE, WEB_BUCKLING
 from calcpack.clauses.en1993.section import Profile
 from calcpack.figures import Capacity, Figure, Governing, capacity_figure, section_figure
-from calcpack.notebook.sections.steel_en1993_given import design_of, profile_in
+from calcpack.notebook.sections.steel_en1993.given import design_of, profile_in
 from calcpack.notebook.sections.steel_figures import HALF_WIDTH, deflected_figure, shear_figure, state_ponding
 from calcpack.notebook.study import Study
 from calcpack.notebook.work import Work

@@ -12,14 +12,12 @@ from calcpack.clauses.aisc360.strength import Zone
 from calcpack.clauses.steel import Arrangement
 from calcpack.figures.capacity import capacity_figure
 from calcpack.figures.section import section_figure
-from calcpack.notebook.sections._steel_aisc360 import (
+from calcpack.notebook.sections.steel_aisc360.beam import (
     SteelBeam,
     bending_name,
     span_words,
     steel_design,
 )
-from calcpack.notebook.sections._steel_aisc360_shown import state_shown, worst_of
-from calcpack.notebook.sections._steel_aisc360_web import state_deflection, state_shear
 from calcpack.notebook.sections.steel_chosen import chosen_words
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line
@@ -317,15 +315,3 @@ def _capacities(beam: SteelBeam) -> list[tuple[float, float, float, float]]:
             (segment.start, segment.end, design.carries(segment, True), design.carries(below, False))
         )
     return found
-
-
-__all__ = [
-    "SteelBeam",
-    "design_beam",
-    "state_bending",
-    "state_deflection",
-    "state_section",
-    "state_shear",
-    "state_shown",
-    "worst_of",
-]

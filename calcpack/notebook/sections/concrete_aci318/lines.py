@@ -6,8 +6,8 @@ from dataclasses import dataclass, field
 
 from calcpack.clauses.aci318.flexure import BendingLines
 from calcpack.clauses.aci318.materials import Checks, Materials, Size
-from calcpack.notebook.sections.concrete_aci318_design import Design
-from calcpack.notebook.sections.concrete_aci318_faces import Face
+from calcpack.notebook.sections.concrete_aci318.design import Design
+from calcpack.notebook.sections.concrete_aci318.faces import Face
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line, Sheet
 

@@ -23,8 +23,8 @@ from calcpack.clauses.aci318.strength import INCH
 from calcpack.clauses.bars import Bar
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Material, Section
-from calcpack.notebook.sections.concrete_aci318_actions import Actions, Critical, Stretch, wings_of
-from calcpack.notebook.sections.concrete_aci318_faces import Face, is_high, read_bar, settle_faces
+from calcpack.notebook.sections.concrete_aci318.actions import Actions, Critical, Stretch, wings_of
+from calcpack.notebook.sections.concrete_aci318.faces import Face, is_high, read_bar, settle_faces
 from calcpack.notebook.work import Work
 
 COVER = {

@@ -6,7 +6,7 @@ from typing import Any
 
 from calcpack.clauses.aisc360 import strength
 from calcpack.clauses.aisc360.shape_lines import AISC
-from calcpack.notebook.sections._steel_aisc360 import (
+from calcpack.notebook.sections.steel_aisc360.beam import (
     SteelBeam,
     bending_name,
     deflection_name,

@@ -22,8 +22,8 @@ from calcpack.clauses.aci318.deflection import (
 )
 from calcpack.clauses.aci318.materials import Checks
 from calcpack.figures import deflected_shape
-from calcpack.notebook.sections.concrete_aci318_actions import Service, Stretch
-from calcpack.notebook.sections.concrete_aci318_lines import Written
+from calcpack.notebook.sections.concrete_aci318.actions import Service, Stretch
+from calcpack.notebook.sections.concrete_aci318.lines import Written
 from calcpack.notebook.sections.rehearsal import draft_of
 from calcpack.notebook.work import StatedDeflection
 from calcpack.sheet import Expression, Line, measured, number

@@ -17,27 +17,14 @@ from calcpack.clauses.en1993.lines_profile import (
 )
 from calcpack.clauses.en1993.lines_section import bending, bending_beside_shear, shear, shear_share
 from calcpack.notebook.sections.steel_chosen import chosen_words
-from calcpack.notebook.sections.steel_en1993_given import design_of
-from calcpack.notebook.sections.steel_en1993_results import (
+from calcpack.notebook.sections.steel_en1993.results import (
     SENSE,
     force_name,
     place,
-    state_steel_results,
-    worst_of,
 )
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line, formula
 from calcpack.sheet.latex import symbol_latex
-
-__all__ = [
-    "design_of",
-    "state_steel_bearing",
-    "state_steel_buckling",
-    "state_steel_resistance",
-    "state_steel_results",
-    "state_steel_section",
-    "worst_of",
-]
 
 ORIGIN = "design"  # the beam's own keys in the job file
 
