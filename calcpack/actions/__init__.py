@@ -3,7 +3,8 @@
 from calcpack.actions.analysis import AnalysedBeam, CombinationResult, LoadSet, analyse_beam
 from calcpack.actions.combinations import Combination, CombinationSet, combination_set, set_names
 from calcpack.actions.reduction import Reduction, reduction
-from calcpack.job.occupancies import Occupancy, OccupancyTable, occupancy_tables
+from calcpack.job.model import Occupancy
+from calcpack.job.occupancies import OccupancyTable, occupancy_tables
 
 __all__ = [
     "AnalysedBeam",

@@ -16,12 +16,12 @@ from calcpack.job.model import (
     Case,
     Column,
     Material,
+    Occupancy,
     OwnCombination,
     Panel,
     Section,
     Wall,
 )
-from calcpack.job.occupancies import Occupancy
 from calcpack.job.plan import CLOSE, Grid, Named, check_line, distance, outline
 from calcpack.job.raw import RawBeam, RawColumn, RawCombination, RawLoad, RawPanel, RawTableLoad, RawWall
 from calcpack.job.units import factor

@@ -9,44 +9,9 @@ from functools import cache
 from typing import Any
 
 from calcpack.job.house import house_folder
+from calcpack.job.model import Occupancy
 from calcpack.job.names import alike
 from calcpack.job.units import parse_quantity
-
-
-@dataclass(frozen=True)
-class Occupancy:
-    """What a use of a floor asks for.
-
-    Parameters
-    ----------
-    key, says : str
-        Its short name in the table, and in words.
-    uniform : float [kPa]
-    point : float or None [kN]
-        Concentrated load; None where the table has none.
-    bounds : (float, float) or None [kPa]
-        Between which a national choice lies.
-    written : (str, str)
-        Uniform and concentrated load as the table writes them.
-    category : str
-        EN 1990 category, the key of the combination factors; "" where there is none.
-    reduced : str
-        Why area does not reduce it; "" where it does.
-    cite : str
-    psi : (float, float, float) or None
-        ψ0, ψ1, ψ2 that a job states of its own; None where the category's hold.
-    """
-
-    key: str
-    says: str
-    uniform: float
-    point: float | None
-    bounds: tuple[float, float] | None
-    written: tuple[str, str]
-    category: str
-    reduced: str
-    cite: str
-    psi: tuple[float, float, float] | None = None
 
 
 @dataclass(frozen=True)

@@ -8,9 +8,8 @@ from collections.abc import Iterable, Iterator
 from calcpack.job.entries import Entry, Problems, validated
 from calcpack.job.errors import nearest
 from calcpack.job.library import Catalogue, Grade, office, rolled_area_and_inertia
-from calcpack.job.model import BarSize, Section
+from calcpack.job.model import BarSize, Occupancy, Section
 from calcpack.job.names import alike, bar_name
-from calcpack.job.occupancies import Occupancy
 from calcpack.job.raw import BAR_VALUES, CONCRETE_VALUES, STEEL_VALUES, RawBar, RawGrade, RawRolled, RawUse
 
 LONGEST = 40  # letters of a name

@@ -6,9 +6,9 @@ from collections.abc import Iterable, Mapping
 from typing import NamedTuple
 
 from calcpack.job.errors import nearest
-from calcpack.job.model import Basis, Panel, Psi
+from calcpack.job.model import Basis, Occupancy, Panel, Psi
 from calcpack.job.names import alike
-from calcpack.job.occupancies import Occupancy, applying
+from calcpack.job.occupancies import applying
 
 CATEGORIES = tuple("ABCDEFGH")
 DEFAULT_CATEGORY = "B"
