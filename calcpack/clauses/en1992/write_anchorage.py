@@ -90,9 +90,7 @@ def write_bond(
     tensile: Line | Expression = strength.fctd
     if case.strength.fctk > 3100:
         tensile = strength.fctd * (quantity("3.1", "MPa") / strength.fctk)
-    factors: Expression = number("2.25") * (1 if good else number("0.7"))
-    if good:
-        factors = number("2.25")
+    factors: Expression = number("2.25") if good else number("2.25") * number("0.7")
     if lines.face.bars.bar.diameter > 0.032:
         factors = factors * ((quantity(132, "mm") - lines.bar) / quantity(100, "mm"))
     bond = sheet.hence(
