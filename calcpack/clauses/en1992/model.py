@@ -368,7 +368,7 @@ class Bars:
     @property
     def words(self) -> str:
         """As a bar list says it."""
-        layers = f" ({' + '.join(str(number) for number in self.layers)})" if len(self.layers) > 1 else ""
+        layers = f" ({' + '.join(str(number) for number in self.layers)})" if self.layers[1:] else ""
         return f"{self.count} \u00d7 {self.bar.name}{layers}"
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 
@@ -9,6 +10,7 @@ from calcpack.clauses.en1992.faces import Face
 from calcpack.clauses.en1992.national import STANDARD
 from calcpack.clauses.en1992.write_materials import StrengthLines, millimetres
 from calcpack.sheet import PI, Expression, Line, Sheet, absolute, greatest, least, measured, number, sqrt
+from calcpack.sheet.evaluation import holds
 
 WORDS = {"sag": "bottom", "hog": "top", "end": "top, running through"}
 
@@ -79,7 +81,7 @@ def write_bars(sheet: Sheet, face: Face, tag: str, size: SizeLines, block: Line,
         bars.bar.cite,
         word="bar diameter",
     )
-    circle = abs(bars.bar.area - 3.141592653589793 * bars.bar.diameter**2 / 4) <= 1e-9 * bars.bar.area
+    circle = holds("eq", bars.bar.area, math.pi * bars.bar.diameter**2 / 4)
     if circle:
         area = sheet.hence(
             symbol("A_s"), count * PI * bar**2 / 4, "mm^2", f"Area of the bars, {words}", "geometry"
@@ -90,11 +92,11 @@ def write_bars(sheet: Sheet, face: Face, tag: str, size: SizeLines, block: Line,
         )
         area = sheet.hence(symbol("A_s"), count * one, "mm^2", f"Area of the bars, {words}", "geometry")
     to_centre: Expression = size.depth - size.inset - bar / 2
-    if len(bars.layers) > 1:
+    if bars.layers[1:]:
         inner = sum(number_ * layer for layer, number_ in enumerate(bars.layers))
         to_centre = to_centre - measured(millimetres(bars.pitch), "mm") * inner / bars.count
     says = "Effective depth, " + words
-    if len(bars.layers) > 1:
+    if bars.layers[1:]:
         says += f"; layers of {' and '.join(map(str, bars.layers))} bars"
     effective = sheet.hence(symbol("d"), to_centre, "mm", says, "geometry")
     return FaceLines(face, tag, bar, area, size.inset, effective, block)
@@ -331,7 +333,7 @@ def write_most(sheet: Sheet, faces: Sequence[FaceLines], size: SizeLines) -> lis
     if size.flange_depth is not None and flange is not None and outline.width > outline.web:
         gross = gross + (flange - size.width) * size.flange_depth
     areas = [each.area for each in faces]
-    largest = greatest(*areas) if len(areas) > 1 else areas[0]
+    largest = greatest(*areas) if areas[1:] else areas[0]
     share = number(faces[0].face.case.national["as_max"])
     line = sheet.require(largest <= share * gross, "Most reinforcement at a face", f"{STANDARD}, 9.2.1.1(3)")
     return [("most reinforcement", line)]
@@ -384,10 +386,7 @@ def write_required(
     case = face.case.strength
     plain = case.eta * case.fcd * face.outline.block_width * face.depth**2
     within = 1 - 2 * moment.value / plain
-    closed = 0.0
-    if within > 0:
-        closed = plain / face.depth / case.fyd * (1 - within**0.5)
-    if abs(closed - required) <= 1e-9 * required:
+    if within > 0 and holds("eq", plain / face.depth / case.fyd * (1 - within**0.5), required):
         return sheet.hence(
             lines.symbol("A_s,req"),
             stress

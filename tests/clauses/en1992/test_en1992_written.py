@@ -1,10 +1,17 @@
 """Lines of EN 1992 written one at a time: effective flange, limits of deflection, bars required."""
 
 import pytest
-from cases_en1992 import NATIONAL, concrete
+from cases_en1992 import NATIONAL, beam, concrete, given
+from written_en1992 import start
 
+from calcpack.clauses.bars import bar
+from calcpack.clauses.en1992.anchorage import anchorage
+from calcpack.clauses.en1992.bending import steel_for
+from calcpack.clauses.en1992.design import design_beam
 from calcpack.clauses.en1992.flange import effective_side
 from calcpack.clauses.en1992.samples import C30
+from calcpack.clauses.en1992.write_anchorage import write_bond
+from calcpack.clauses.en1992.write_bending import write_required
 from calcpack.clauses.en1992.write_deflection import limit_term
 from calcpack.clauses.en1992.write_materials import millimetres, write_flange, write_strengths
 from calcpack.sheet import Sheet
@@ -99,3 +106,55 @@ def test_limit_of_a_deflection(sheet, length, overhang, limit):
     line = span(sheet, length, "span 1")
     found = sheet.hence("w_lim", limit_term(line, overhang, 250.0), "mm", "Limit", "7.4.1(4)", word="limit")
     assert found.value == pytest.approx(limit)
+
+
+# Bond and anchorage --------------------------------------------------------------------------------------
+
+
+@pytest.mark.parametrize(
+    ("size", "inset", "stress", "good", "bent", "fctk"),
+    [("20 mm", 0.04, 300.0, True, False, 2000.0), ("20 mm", 0.04, 300.0, False, False, 2000.0),
+     ("12 mm", 0.04, 300.0, True, False, 2000.0), ("12 mm", 0.04, 300.0, True, True, 2000.0),
+     ("12 mm", 0.0362, 300.0, True, True, 2000.0), ("12 mm", 0.0359, 300.0, True, True, 2000.0),
+     ("20 mm", 0.04, 1.0, True, False, 2000.0), ("8 mm", 0.04, 1.0, True, False, 2000.0),
+     ("20 mm", 0.04, 300.0, True, False, 3090.0), ("20 mm", 0.04, 300.0, True, False, 3110.0),
+     ("20 mm", 0.01, 300.0, True, False, 2000.0)],
+)  # fmt: skip
+def test_anchorage_length_on_the_sheet(size, inset, stress, good, bent, fctk):
+    """8.4.2 to 8.4.4 at their bounds: alpha from 0.7 to 1, a bend from 3 phi on, 10 phi and 100 mm at least."""
+    diameter = bar(size).diameter
+    case = beam([6.0], 20.0, cover=inset - 0.008, strength=concrete(60.0, fctk_005=fctk),
+                given=given(bottom=(2, size), top=(2, "12 mm"), stirrups=(2, "8 mm", 0.2)))  # fmt: skip
+    sheet, strength, _, faces = start(case, design_beam(case))
+    steel = sheet.take("sigma", stress, "MPa", "Stress", "trial", word="stress")
+    expected = anchorage(diameter, stress * 1e3, inset, good, case.strength, bent=bent)
+    found = write_bond(sheet, faces["sag"], strength, steel, expected, good=good, tag="x", bent=bent)
+    lines = {each.symbol: each for each in sheet.lines.values()}
+    assert lines["f_bd,x"].value == pytest.approx(expected.bond / 1e3, rel=1e-12)
+    assert lines["alpha_x,a"].value == pytest.approx(expected.alpha, rel=1e-12)
+    assert found.value == pytest.approx(expected.length * 1e3, rel=1e-12)
+    assert ("not above that of C60/75" in lines["f_bd,x"].says) is (fctk > 3100)
+    assert ("other than good" in lines["f_bd,x"].says) is not good
+
+
+# Words and forms -----------------------------------------------------------------------------------------
+
+
+def test_layers_are_said_with_the_depth():
+    for bottom, words in (((6, "20 mm"), "layers of 4 and 2 bars"), ((4, "20 mm"), "bottom")):
+        case = beam(
+            [6.0], 20.0, cover=0.03, given=given(bottom=bottom, top=(2, "12 mm"), stirrups=(2, "10 mm", 0.2))
+        )
+        sheet, _, _, faces = start(case, design_beam(case))
+        assert faces["sag"].effective.says.endswith(words)
+
+
+@pytest.mark.parametrize(("moment", "kind"), [(90.0, "hence"), (400.0, "take")])
+def test_bars_required_in_closed_form_or_solved(moment, kind):
+    """Up to the limit of x/d As = fcd b d/fyd (1 - root(1 - 2K)); beyond it by equilibrium of the section."""
+    case = beam([6.0], 20.0, given=given(bottom=(4, "20 mm"), top=(2, "12 mm"), stirrups=(2, "10 mm", 0.2)))
+    sheet, strength, _, faces = start(case, design_beam(case))
+    demand = sheet.take("M", moment, "kN*m", "Moment", "trial", word="moment")
+    required, _ = steel_for(moment, case.sagging, case.strength, faces["sag"].face.depth, 0.448, 0.04)
+    found = write_required(sheet, faces["sag"], strength, demand, required)
+    assert (found.kind, found.value) == (kind, pytest.approx(required * 1e6, rel=1e-9))
