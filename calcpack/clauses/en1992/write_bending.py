@@ -288,7 +288,7 @@ def write_amount(
     """
     face, national, symbol = lines.face, lines.face.case.national, lines.symbol
     width: Line | Expression = size.width
-    if face.outline.tension_width > face.outline.web * (1 + 1e-12):
+    if holds("gt", face.outline.tension_width, face.outline.web):
         width = sheet.take(
             symbol("b_t"),
             face.outline.tension_width * 1e3,

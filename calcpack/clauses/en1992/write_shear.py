@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 
 from calcpack.clauses.en1992.design import Design
@@ -24,6 +25,7 @@ from calcpack.sheet import (
     show,
     sqrt,
 )
+from calcpack.sheet.evaluation import holds
 
 
 @dataclass(frozen=True)
@@ -172,7 +174,7 @@ def _stirrups(sheet: Sheet, design: Design, origin: str) -> tuple[Line, Line]:
     stirrups = design.shear.stirrups
     legs = number(stirrups.legs)
     bar = next(line for line in sheet.lines.values() if line.symbol == "phi_w")
-    circle = abs(stirrups.bar.area - 3.141592653589793 * stirrups.bar.diameter**2 / 4) < 1e-12
+    circle = holds("eq", stirrups.bar.area, math.pi * stirrups.bar.diameter**2 / 4)
     area = sheet.hence(
         "A_sw",
         legs * PI * bar**2 / 4 if circle else legs * measured(stirrups.bar.area * 1e6, "mm^2"),

@@ -34,6 +34,7 @@ CASES = {
                          given=given(bottom=(4, "32 mm"), cot=1.5, **STIRRUPS)),
     "next to C60": lambda: beam([6.0], 30.0, strength=concrete(60.0, fctk_005=3110.0),
                                 given=given(bottom=(4, "20 mm"), **STIRRUPS)),
+    "fine": lambda: beam([6.0], 10.0, aggregate=0.010, given=given(bottom=(5, "12 mm"), **STIRRUPS)),
     "No. 10": lambda: beam([6.0], 30.0, cover=0.05, given=given(bottom=(3, "#10"), **STIRRUPS)),
     "as far as deep": lambda: beam([6.0], 30.0, outline=Outline(0.3008, 0.5, 0.3008, 0.0),
                                    given=given(bottom=(3, "20 mm"), **STIRRUPS)),
