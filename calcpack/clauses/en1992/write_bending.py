@@ -138,7 +138,7 @@ def write_bending(
         origin,
         given=False,
     )
-    if face.doubly or face.bending.stress < face.case.strength.fyd * (1 - 1e-12):
+    if face.doubly or holds("lt", face.bending.stress, face.case.strength.fyd):
         x, resistance = _by_strains(sheet, lines, strength, size, other)
     else:
         x, resistance = _yielding(sheet, lines, strength, size)

@@ -271,3 +271,7 @@ def test_the_cases_reach_every_branch():
     assert found("narrow").design.end.bent
     assert not found("plain").design.end.bent
     assert str(found("outdone").line("cot theta").expression).count("Number(text='0')") == 1
+    # a metric bar's area is that of its circle, a US bar's that of its table
+    for name, circle in (("plain", True), ("numbered", False)):
+        assert found(name).has("A_sag") is not circle
+        assert ("pi" in str(found(name).line("A_sw").expression).lower()) is circle
