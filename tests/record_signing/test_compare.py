@@ -56,6 +56,9 @@ mark = "B2"
 line = ["B1", "C1"]
 section = "s"
 material = "m"
+[[beam.load]]
+case = "dead"
+line = "4 kN/m"
 {limit}
 [[wall]]
 mark = "W1"
