@@ -21,6 +21,8 @@ from calcpack.clauses.en1992.shear import (
 )
 
 # Legs, and the sizes tried with so many.
+Side = Literal["left", "right"]
+SIDES: tuple[tuple[Side, float], ...] = (("left", -1.0), ("right", 1.0))
 TRIED: tuple[tuple[int, tuple[str, ...]], ...] = (
     (2, ("8 mm", "10 mm", "12 mm")),
     (4, ("10 mm", "12 mm")),
@@ -36,7 +38,7 @@ class ShearPlace(NamedTuple):
     """A face of a support, or a place beside it, where shear is checked."""
 
     support: int
-    side: Literal["left", "right"]  # of the support
+    side: Side  # of the support
     face: float  # [m] from the beam's start
     at: float  # [m]
     v_face: float  # [kN]
@@ -158,21 +160,21 @@ def shear_places(case: BeamCase, depth: float) -> tuple[ShearPlace, ...]:
     """
     found = []
     for number, support in enumerate(case.supports):
-        for side, way in (("left", -1.0), ("right", 1.0)):
+        for side, way in SIDES:
             face = support.at + way * support.half
-            if (face if way < 0 else case.length - face) <= CLOSE:
+            if (face if side == "left" else case.length - face) <= CLOSE:
                 continue
             why = ""
             if not support.direct:
                 why = "carried by a beam"
             elif any(CLOSE < way * (point - support.at) <= support.half + 2 * depth for point in case.points):
                 why = "point load near"
-            room = face if way < 0 else case.length - face
+            room = face if side == "left" else case.length - face
             at = face if why else face + way * min(depth, room)
             found.append(
                 ShearPlace(
                     number,
-                    "left" if way < 0 else "right",
+                    side,
                     face,
                     at,
                     _shear(case, face, side),
@@ -183,9 +185,8 @@ def shear_places(case: BeamCase, depth: float) -> tuple[ShearPlace, ...]:
     return tuple(found)
 
 
-def _shear(case: BeamCase, at: float, side: str) -> float:
-    way: Literal["left", "right"] = "left" if side == "left" else "right"
-    return max(abs(case.shear.upper.at(at, way)), abs(case.shear.lower.at(at, way)))
+def _shear(case: BeamCase, at: float, side: Side) -> float:
+    return max(abs(case.shear.upper.at(at, side)), abs(case.shear.lower.at(at, side)))
 
 
 def checked_shear(case: BeamCase, x: np.ndarray, at: Sequence[ShearPlace]) -> np.ndarray:

@@ -9,6 +9,7 @@ from calcpack.clauses.en1992.write_bending import FaceLines, write_required
 from calcpack.clauses.en1992.write_materials import StrengthLines
 from calcpack.clauses.en1992.write_service import ElasticLines
 from calcpack.sheet import Expression, Line, Sheet, least, measured, number, number_in, quantity, sqrt
+from calcpack.sheet.evaluation import holds
 
 
 def write_span_depth(
@@ -35,7 +36,7 @@ def write_span_depth(
     """
     cite = "7.4.2(2)"
     moment = design_moment
-    if moment is None or abs(moment.value - found.moment) > 1e-9 * found.moment:
+    if moment is None or not holds("eq", moment.value, found.moment):
         moment = sheet.take(
             "M_Ed,s",
             found.moment,

@@ -271,6 +271,9 @@ def test_the_cases_reach_every_branch():
     assert found("narrow").design.end.bent
     assert not found("plain").design.end.bent
     assert str(found("outdone").line("cot theta").expression).count("Number(text='0')") == 1
+    # the largest moment of a span is said anew where it is not that of the face
+    assert not found("plain").has("M_Ed,s")
+    assert found("overhang").has("M_Ed,s")
     # a metric bar's area is that of its circle, a US bar's that of its table
     for name, circle in (("plain", True), ("numbered", False)):
         assert found(name).has("A_sag") is not circle

@@ -153,6 +153,15 @@ def test_zones_of_an_overhang():
     assert before.zones[1].spacing == before.spacings[0] < 0.3
 
 
+def test_close_zone_up_to_a_load_beside_midspan():
+    """2 x 147.5 kN at 2.985 m of 6 m: 148.3 kN on its left, which 300 mm do not carry, 146.8 on its right."""
+    found = shear_design(beam([6.0], 0.0, points=((2.985, 2 * carried(0.3)),)), TWO, D, None)
+    assert [tuple(zone) for zone in found.zones] == [
+        pytest.approx((0.0, 3.0, 0.275)),
+        pytest.approx((3.0, 6.0, 0.3)),
+    ]
+
+
 def test_one_spacing_where_the_close_zones_meet():
     """A load at 0.8 m of 1.7 m: 318 kN on its left, 282 on its right; the closer spacing all along."""
     found = shear_design(beam([1.7], 0.0, points=((0.8, 600.0),)), TWO, D, None)
