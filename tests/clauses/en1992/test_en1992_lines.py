@@ -35,6 +35,8 @@ CASES = {
     "next to C60": lambda: beam([6.0], 30.0, strength=concrete(60.0, fctk_005=3110.0),
                                 given=given(bottom=(4, "20 mm"), **STIRRUPS)),
     "fine": lambda: beam([6.0], 10.0, aggregate=0.010, given=given(bottom=(5, "12 mm"), **STIRRUPS)),
+    "pressed": lambda: beam([6.0], 100.0, given=given(bottom=(6, "25 mm"), top=(4, "25 mm"),
+                                                      stirrups=(2, "10 mm", 0.1))),
     "No. 10": lambda: beam([6.0], 30.0, cover=0.05, given=given(bottom=(3, "#10"), **STIRRUPS)),
     "as far as deep": lambda: beam([6.0], 30.0, outline=Outline(0.3008, 0.5, 0.3008, 0.0),
                                    given=given(bottom=(3, "20 mm"), **STIRRUPS)),
@@ -271,6 +273,7 @@ def test_the_cases_reach_every_branch():
     assert found("narrow").design.end.bent
     assert not found("plain").design.end.bent
     assert str(found("outdone").line("cot theta").expression).count("Number(text='0')") == 1
+    assert found("pressed").design.span_depths[0].ratio_2 > 0
     # the largest moment of a span is said anew where it is not that of the face
     assert not found("plain").has("M_Ed,s")
     assert found("overhang").has("M_Ed,s")
