@@ -59,10 +59,9 @@ class Witness:
         self.seconds[nodeid] += time.perf_counter()
 
     def callers(self, functions: set[Function]) -> list[str]:
-        """The tests that call any of the functions, the quickest first."""
-        found = sorted(
-            (name for name in self.calls if self.calls[name] & functions), key=self.seconds.__getitem__
-        )
+        """The tests that call any of the functions, the quickest first; all, where a module has none."""
+        named = (name for name in self.calls if self.calls[name] & functions or not functions)
+        found = sorted(named, key=self.seconds.__getitem__)
         return [name for place, name in enumerate(found) if place < ENOUGH or self.seconds[name] < SLOW]
 
     def neighbours(self, near: list[str]) -> list[str]:
