@@ -289,6 +289,9 @@ def test_force_and_bending_together():
     each = found.interaction
     elastic = IPE.shape.elastic_modulus * 235e3
     assert each.support == 1
+    assert found.force.force / found.force.bearing.resistance == max(
+        one.force / one.bearing.resistance for one in found.forces
+    )
     assert each.moment == pytest.approx(1.35 * 20 * 16 / 8)
     assert found.together(each) == pytest.approx(
         each.force / each.bearing.resistance + 0.8 * each.moment / elastic, rel=1e-12
