@@ -132,3 +132,28 @@ def test_modulus_of_the_class(name, grade, symbol, words):
     line, said_so = modulus_line(take_profile(sheet, steel), steel)
     assert (line.symbol, said_so) == (symbol, words)
     assert line.value == pytest.approx(steel.modulus_of_section * 1e9)
+
+
+@pytest.mark.parametrize("curves", ["general", "rolled"])
+def test_nothing_is_lost_on_a_short_segment(curves):
+    """300 mm: on the plateau chi is 1, not more (6.56), (6.57)."""
+    sheet, _, lines = said(simple(10.0), Conditions(curves, "centre"), unbraced=0.3)
+    assert (lines.chi.value, found_line(sheet, "chi_LT").value) == (1.0, 1.0)
+
+
+def test_very_slender_segments_stay_below_the_critical_moment():
+    """6.57: chi up to 1/lambda2, which is less than the curve from lambda = 3 on."""
+    sheet, _, lines = said(simple(10.0), Conditions("rolled", "centre", 1.0), unbraced=60.0)
+    assert lines.slenderness.value > 3
+    assert found_line(sheet, "chi_LT").value == pytest.approx(1 / lines.slenderness.value**2, rel=1e-12)
+
+
+@pytest.mark.parametrize(
+    ("name", "equation"), [("IPE 330", "(6.13)"), ("HE 200 A", "(6.13)"), ("HE 300 A", "(6.14)")]
+)
+def test_equation_of_the_class(name, equation):
+    """6.2.5(2): S355, classes 1, 2 and 3."""
+    sheet, steel = Sheet("B1"), profile(name, "S355")
+    sheet.section("Section")
+    given, partial = take_profile(sheet, steel), take_factors(sheet, steel)
+    assert bending(sheet, given, partial, steel, 10.0, "moment").resistance.cite.endswith(equation)
