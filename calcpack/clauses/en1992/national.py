@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import tomllib
 from collections.abc import Mapping
-from functools import lru_cache
+from functools import cache
 from typing import Any, NamedTuple
 
 from pydantic import ValidationError
@@ -104,7 +104,7 @@ class National(Frozen):
         return f"{STANDARD}, {self.values[key].clause}"
 
 
-@lru_cache(maxsize=8)
+@cache
 def _read(name: str) -> dict[str, Any]:
     path = house_folder("shared").joinpath("national", f"{_PREFIX}{name}.toml")
     return tomllib.loads(path.read_text(encoding="utf-8"))

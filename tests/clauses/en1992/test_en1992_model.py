@@ -18,7 +18,7 @@ from calcpack.clauses.en1992.model import (
     outline,
     strengths,
 )
-from calcpack.clauses.en1992.national import national, national_names
+from calcpack.clauses.en1992.national import merge, national, national_names
 from calcpack.clauses.en1992.samples import C30
 from calcpack.clauses.en1992.shear import strut_factor
 from calcpack.job.errors import CalcpackError
@@ -184,3 +184,20 @@ def test_sets_of_national_parameters():
     assert own.cite("gamma_C") == "EN 1992-1-1, Table 2.1N"
     with pytest.raises(CalcpackError, match="there is no such parameter"):
         national(changes={"gamma_c": 1.4})
+
+
+def test_what_differs_from_the_recommended_values():
+    """Lengths in mm, the others plain; the standard's symbol and both values."""
+    ours = {"file": "a.toml", "name": "Annex A", "source": "office",
+            "values": {"gamma_C": 1.4, "delta_c_dev": 0.005}, "cover": {"XC1": 0.02}}  # fmt: skip
+    assert [each.words for each in national(ours).differing] == [
+        "γ_C = 1.4 (recommended 1.5)",
+        "Δc_dev = 5 mm (recommended 10 mm)",
+        "c_min,dur of XC1 = 20 mm (recommended 15 mm)",
+    ]
+
+
+def test_a_value_that_is_no_number():
+    base = NATIONAL.model_dump()
+    with pytest.raises(CalcpackError, match="the national set 'ours': input should be a valid number"):
+        merge(base, {"name": "ours", "source": "office", "values": {"gamma_C": {"value": "much"}}})
