@@ -370,19 +370,15 @@ def test_asking_twice_gives_the_same_object_and_fresh_data() -> None:
     assert "scribble" not in json.dumps(one.block())
 
 
-def test_the_first_derivation_is_quick_and_the_same_in_every_process() -> None:
+def test_a_derivation_is_the_same_in_every_process() -> None:
     """sympy orders some things by hash: two processes with different hashes must write the same bytes."""
     code = (
-        "import time\n"
-        "from calcpack.equivalent.derive import derivation\n"
-        "before = time.process_time()\n"
-        "derivation('trapezoid', 'moment')\n"
-        "took = time.process_time() - before\n"
         "import hashlib, json\n"
+        "from calcpack.equivalent.derive import derivation\n"
         "from calcpack.equivalent import KINDS\n"
         "shapes = ('uniform', 'triangle', 'trapezoid', 'general')\n"
         "every = [derivation(shape, kind).block() for shape in shapes for kind in KINDS]\n"
-        "print(hashlib.sha256(json.dumps(every).encode()).hexdigest(), took)\n"
+        "print(hashlib.sha256(json.dumps(every).encode()).hexdigest())\n"
     )
     seen = []
     for seed in ("1", "77"):
@@ -393,9 +389,7 @@ def test_the_first_derivation_is_quick_and_the_same_in_every_process() -> None:
             text=True,
             check=True,
         )
-        digest, seconds = done.stdout.split()
-        seen.append(digest)
-        assert float(seconds) < 1.5
+        seen.append(done.stdout.strip())
     assert seen[0] == seen[1]
 
 
