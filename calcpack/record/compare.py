@@ -11,6 +11,7 @@ from typing import Any
 from calcpack.record.editions import Edition, RecordLine, SheetRecord
 
 _NOISE = 1e-9  # what rounding may leave between two runs of the same numbers
+_FOUND = ("analysis", "chosen", "second method")  # how the origin of a value begins that no file gives
 
 
 @dataclass(frozen=True)
@@ -51,7 +52,8 @@ class LineChange:
     @property
     def is_input(self) -> bool:
         """Whether it is a value that the job gives."""
-        return self.line.kind == "take" and bool(self.line.origin)
+        origin = self.line.origin
+        return self.line.kind == "take" and bool(origin) and not origin.startswith(_FOUND)
 
 
 @dataclass(frozen=True)

@@ -131,6 +131,16 @@ def test_requirements_that_change_side_and_beams_that_come_and_go():
     assert table[-1]["requirement"] == "not satisfied any more"
 
 
+def test_what_the_analysis_finds_is_no_input():
+    def taken(value, origin):
+        return line("3.01", "Value", value, kind="take", origin=origin)
+
+    for origin, counts in (("panel P2 live", 1), ("analysis, envelope", 0), ("chosen", 0)):
+        comparison = compare(edition(("B1", [taken(1.0, origin)])), edition(("B1", [taken(2.0, origin)])))
+        assert len(comparison.inputs) == counts
+        assert comparison.changed == ("B1",)
+
+
 def test_text_of_a_record_is_no_formula_in_a_table():
     comparison = compare(edition(("=B1", [line("1", "@x", 1.0)])), edition(("=B1", [line("1", "@x", -2.0)])))
     (row,) = csv.DictReader(io.StringIO(as_csv(comparison)))
