@@ -34,7 +34,7 @@ from changed import CALLED, Replaced, drawing_on, module_of, replace_function, t
 from mutants import INDIFFERENT, Function, Indifferent, Mutant, around, mutants, read_indifferent
 
 SECONDS = 240
-SLOW = 0.3  # s
+SLOW = 1.0  # s
 ENOUGH = 3  # tests
 ROOT = Path(__file__).resolve().parents[2]
 TESTS = str(ROOT / "tests")

@@ -14,7 +14,7 @@ IPE = profile("IPE 330")
 L = 5.0
 
 
-def by_energy(hogging, waves=16, points=8000):
+def by_energy(hogging, waves=16, points=2000):
     """Least load factor over that of an even moment: K v = mu G v in half waves of twist, by the midpoint rule."""
     x = (np.arange(points) + 0.5) / points
     order = np.arange(1, waves + 1)
