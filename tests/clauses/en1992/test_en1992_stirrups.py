@@ -162,6 +162,17 @@ def test_close_zone_up_to_a_load_beside_midspan():
     ]
 
 
+def test_close_zones_on_both_sides_of_a_load_beside_midspan():
+    """4 kN/m besides 294.7 kN at 2.985 m: over 147.5 kN up to the load, and again from 3.22 m on."""
+    load = 0.999 * 2 * carried(0.3)
+    found = shear_design(beam([6.0], 4.0, points=((2.985, load),)), TWO, D, None)
+    assert [tuple(zone) for zone in found.zones] == [
+        pytest.approx((0.0, 3.0, 0.275)),
+        pytest.approx((3.0, 3.2, 0.3)),
+        pytest.approx((3.2, 6.0, 0.275)),
+    ]
+
+
 def test_one_spacing_where_the_close_zones_meet():
     """A load at 0.8 m of 1.7 m: 318 kN on its left, 282 on its right; the closer spacing all along."""
     found = shear_design(beam([1.7], 0.0, points=((0.8, 600.0),)), TWO, D, None)
