@@ -17,7 +17,6 @@ from calcpack.figures import key_plan
 from calcpack.files import write_file
 from calcpack.framing import Frame, FramedBeam, PanelTransfer
 from calcpack.job.model import Case
-from calcpack.job.names import alike
 from calcpack.notebook.parameters import plan_of
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.templates import Parameter, find_template, template_names
@@ -241,10 +240,8 @@ def print_loads(console: Console, own: Sequence[Occupancy] = ()) -> None:
     if own:
         console.print(_uses("the job's own", own, "source"))
         console.print(Text("They go before the following ones.\n"))
-    replaced = {alike(use.key) for use in own}
     for table in occupancy_tables():
-        uses = [use for use in table.uses if alike(use.key) not in replaced]
-        console.print(_uses(table.name, uses, "clause"))
+        console.print(_uses(table.name, table.beside(own), "clause"))
         console.print(Text(f"{table.source}. Reduced for area: {table.reduction}.\n"))
 
 

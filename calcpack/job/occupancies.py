@@ -23,6 +23,11 @@ class OccupancyTable:
     reduction: str
     uses: tuple[Occupancy, ...]
 
+    def beside(self, own: Sequence[Occupancy]) -> list[Occupancy]:
+        """The uses that a job's own do not stand in for."""
+        replaced = {alike(use.key) for use in own}
+        return [use for use in self.uses if alike(use.key) not in replaced]
+
 
 @cache
 def occupancy_tables() -> tuple[OccupancyTable, ...]:
@@ -60,12 +65,10 @@ def applying(actions: str, own: Sequence[Occupancy] = ()) -> Iterator[tuple[Occu
     """
     for use in own:
         yield use, use.cite
-    replaced = {alike(use.key) for use in own}
     for table in occupancy_tables():
         if actions == "job" or actions.split(" ")[0] == table.name.split(" ")[0]:
-            for use in table.uses:
-                if alike(use.key) not in replaced:
-                    yield use, f"{table.name} {use.cite}"
+            for use in table.beside(own):
+                yield use, f"{table.name} {use.cite}"
 
 
 def _table(data: dict[str, Any]) -> OccupancyTable:

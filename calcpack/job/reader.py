@@ -281,9 +281,7 @@ class _Reader:
         kind, name = TABLES[key], self.data[key]
         if not isinstance(name, str):
             example = f'{key} = "{key}.csv"'
-            singly = (
-                "" if key not in (f"{each}s" for each in MEMBERS) else f", or write each {kind} as [[{kind}]]"
-            )
+            singly = f", or write each {kind} as [[{kind}]]" if kind in MEMBERS else ""
             self._problem("this key names a table file", f"write for example {example}{singly}", key)
             return
         try:

@@ -110,6 +110,11 @@ class Work:
         """A value in words of the job's unit system."""
         return show(value, unit, self.study.system, exact)
 
+    @property
+    def bearings(self) -> list[tuple[float, str, str]]:
+        """Where the beam rests, as figures take it: place [m], kind, mark."""
+        return [(each.at, each.kind, each.mark) for each in self.given.bearings]
+
     @cached_property
     def stock(self) -> Stock:
         """The bars there are, the job's own before the office's."""

@@ -70,7 +70,7 @@ class Sheet:
         self._words: dict[str, str] = {}
         self._sink: list[Block] = self.blocks
         self._repeating = False
-        self._short: set[str] = set()  # lines shown as another one's repetition
+        self._shapes: dict[tuple[str, ...], str] = {}  # of the lines shown in full, the first of each
         self._unseen = 0  # blocks from here on have not been shown
 
     # Words
@@ -397,16 +397,11 @@ class Sheet:
 
     def _alike(self, line: Line) -> str:
         """The line shown in full that this one repeats with values of its own, if it may be shown so."""
-        if not self._repeating or line.kind == "take":
+        if line.kind == "take":
             return ""
-        shape = shape_of(line.expression)
-        for no, earlier in self.lines.items():
-            if no not in self._short and (earlier.kind, earlier.unit, earlier.cite) == (
-                line.kind, line.unit, line.cite
-            ) and earlier is not line and shape_of(earlier.expression) == shape:  # fmt: skip
-                self._short.add(line.no)
-                return no
-        return ""
+        shape = line.kind, line.unit, line.cite, shape_of(line.expression)
+        first = self._shapes.setdefault(shape, line.no)
+        return first if self._repeating and first != line.no else ""
 
     def _symbol(self, symbol: str, word: str) -> str:
         name = read_symbol(symbol).name

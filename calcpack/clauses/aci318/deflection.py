@@ -285,6 +285,26 @@ class Limits(NamedTuple):
     reach: Expression  # the span, or twice an overhang
 
 
+class Deflections(NamedTuple):
+    """What is stated of a span's deflections.
+
+    Parameters
+    ----------
+    checks : Checks
+    growth : Line
+        λ_Δ, the multiplier for creep and shrinkage.
+    live : Line or None [mm]
+        Immediate, under live load; None without any.
+    after : Line [mm]
+        After attachment of partitions.
+    """
+
+    checks: Checks
+    growth: Line
+    live: Line | None
+    after: Line
+
+
 def state_deflection(
     sheet: Sheet,
     materials: Materials,
@@ -294,7 +314,7 @@ def state_deflection(
     duration: str,
     compression: Expression | None,
     words: str,
-) -> Checks:
+) -> Deflections:
     """Immediate and long-term deflections of a span against their limits.
 
     Parameters
@@ -365,4 +385,4 @@ def state_deflection(
         f"Deflection after attachment of partitions, {words}",
         cite("Table 24.2.2"),
     )
-    return (*checks, ("deflection, long-term", line))
+    return Deflections((*checks, ("deflection, long-term", line)), growth, immediate, total)

@@ -220,7 +220,7 @@ def state_effects(work: Work, *, deflection: bool = True) -> None:
     governing = analysed.governing_moment
     figure = response_figure(
         given.length,
-        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+        work.bearings,
         curves_of(work, deflected),
         study.system,
         mark=given.mark,

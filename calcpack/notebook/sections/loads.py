@@ -28,7 +28,7 @@ def state_loads(work: Work) -> None:
     }
     figure = load_figure(
         given.length,
-        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+        work.bearings,
         {case: list(given.loads[case]) for case in study.cases},
         given.mark,
         study.system,

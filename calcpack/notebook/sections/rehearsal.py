@@ -28,7 +28,7 @@ class Draft(Sheet):
         self.lines = dict(sheet.lines)
         self._sections, self._count = sheet._sections, sheet._count
         self._words = dict(sheet._words)
-        self._repeating, self._short = sheet._repeating, set(sheet._short)
+        self._repeating, self._shapes = sheet._repeating, dict(sheet._shapes)
 
     def show(self) -> None:
         """Nothing is shown."""

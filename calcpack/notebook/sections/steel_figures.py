@@ -7,11 +7,12 @@ from collections.abc import Callable
 import numpy as np
 
 from calcpack.actions.combinations import PLACED
-from calcpack.figures import Capacity, Figure, capacity_figure, deflected_shape
+from calcpack.figures import Capacity, Figure, deflected_shape
 from calcpack.figures.deflected import Deflection
 from calcpack.figures.diagram import between, largest
 from calcpack.figures.shapes import Array
 from calcpack.job.model import Case
+from calcpack.notebook.sections.strength_figures import strength_figure
 from calcpack.notebook.study import CASE_WORDS
 from calcpack.notebook.work import Work
 from calcpack.statics import Band, envelope
@@ -22,18 +23,8 @@ HALF_WIDTH = 82.0  # [mm]
 
 def shear_figure(work: Work, resistance: float) -> Figure:
     """The envelope of shears in the resistance [kN], which is the same all along."""
-    given, band = work.given, work.study.analysed.band("shear")
-    return capacity_figure(
-        given.length,
-        _bearings(work),
-        "shear",
-        (band.upper.sample(SAMPLES), band.lower.sample(SAMPLES)),
-        [Capacity(0.0, given.length, resistance, resistance)],
-        work.study.system,
-        fixed=given.fixed,
-        mark=given.mark,
-        width_mm=HALF_WIDTH,
-    )
+    whole = [Capacity(0.0, work.given.length, resistance, resistance)]
+    return strength_figure(work, "shear", whole, samples=SAMPLES, width_mm=HALF_WIDTH)
 
 
 def deflected_figure(work: Work, limit: Callable[[str, int], float | None]) -> Figure | None:
@@ -74,7 +65,7 @@ def deflected_figure(work: Work, limit: Callable[[str, int], float | None]) -> F
     first, *others = strips
     return deflected_shape(
         given.length,
-        _bearings(work),
+        work.bearings,
         first.x,
         first.deflection,
         first.limits,
@@ -96,10 +87,6 @@ def state_ponding(work: Work, cite: str) -> None:
             f"be looked at for ponding, {cite}; ponded water is not in it.",
             role="caution",
         )
-
-
-def _bearings(work: Work) -> list[tuple[float, str, str]]:
-    return [(each.at, each.kind, each.mark) for each in work.given.bearings]
 
 
 def _of_case(work: Work, case: Case) -> Band:

@@ -12,7 +12,7 @@ from typing import IO
 
 from calcpack.job.errors import CalcpackError
 
-_TOO_DEAR = "it takes more time or memory to read than any pack of its size"
+TOO_DEAR = "it takes more time or memory to read than any pack of its size"
 _MODULE = "calcpack.record.auditing.pdf_reading"
 
 
@@ -57,7 +57,7 @@ class PdfReading:
                 ]
         except (OSError, ValueError):  # it has ended in the middle
             self.close()
-            raise CalcpackError(_TOO_DEAR, file=name) from None
+            raise CalcpackError(TOO_DEAR, file=name) from None
         raise CalcpackError(head["fault"], file=name)
 
     def _pipes(self) -> tuple[IO[bytes], IO[bytes]]:

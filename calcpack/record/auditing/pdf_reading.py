@@ -20,12 +20,13 @@ from typing import BinaryIO
 import pypdf
 import pypdfium2  # type: ignore[import-untyped]
 
+from calcpack.record.auditing.confined import TOO_DEAR
+
 MOST_PAGES = 20_000
 MOST_ATTACHED = 5_000
 MEMORY, MEMORY_EACH = 200_000_000, 6  # bytes: for any PDF, and for each of its bytes
 SECONDS, SECONDS_EACH = 1.5, 0.3e-6  # of one processor; a pack takes a tenth of it
 UNREADABLE = "it is no readable PDF"
-TOO_DEAR = "it takes more time or memory to read than any pack of its size"
 # A PDF ends with the place of its table of objects; without it a reader would have to guess.
 _END = re.compile(rb"startxref\s+([0-9]{1,12})\s+%%EOF\s*\Z")
 _TABLE = re.compile(rb"\s*(?:xref\b|[0-9]+ [0-9]+ obj\b)")

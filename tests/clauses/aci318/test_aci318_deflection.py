@@ -129,7 +129,7 @@ def test_immediate_and_long_term(duration, xi, pressed):
     span = sheet.take("ell", 6.0, "m", "", "test")
     sag, limits = Sag(100.0, 150.0, "test"), Limits(360, 240, span.as_expression())
     ratio = number(pressed) if pressed else None
-    checks = dict(state_deflection(sheet, materials, inertia, sag, limits, duration, ratio, "span 1"))
+    checks = dict(state_deflection(sheet, materials, inertia, sag, limits, duration, ratio, "span 1").checks)
     rigidity = materials.ec.value * 1e3 * 1e9 / 1e12  # [kNm2]
     live, sustained = 100 / rigidity * 1000, 150 / rigidity * 1000
     after = xi / (1 + 50 * pressed) * sustained + live

@@ -12,10 +12,11 @@ from calcpack.clauses.aci318.detailing import (
 )
 from calcpack.clauses.aci318.materials import cite
 from calcpack.clauses.aci318.strength import INCH
-from calcpack.figures import Figure, bar_layout, capacity_figure
+from calcpack.figures import Figure, bar_layout
 from calcpack.notebook.sections.concrete_aci318.faces import worst_end
 from calcpack.notebook.sections.concrete_aci318.lines import ENVELOPE, Written
 from calcpack.notebook.sections.concrete_aci318.shear import HALF, shear_figure
+from calcpack.notebook.sections.strength_figures import strength_figure
 from calcpack.sheet import Line
 
 SAMPLES = 120
@@ -173,7 +174,7 @@ def _figures(written: Written, top: Line | None) -> None:
         )
     figure = bar_layout(
         given.length,
-        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+        work.bearings,
         layers,
         zones,
         work.study.system,
@@ -203,8 +204,7 @@ def _over_supports(written: Written, reach: float) -> list[tuple[float, float]]:
 
 def _moments(written: Written, top: Line | None) -> Figure:
     """Moments and their design strength, the hogging one as far as the top bars lie."""
-    work, design, given = written.work, written.design, written.work.given
-    band = work.study.analysed.band("moment")
+    design, given = written.design, written.work.given
     sagging = design.bottom.state.design if design.bottom.state is not None else 0.0
     hogging = design.top.state.design if design.top.state is not None else 0.0
     less = hogging
@@ -219,18 +219,7 @@ def _moments(written: Written, top: Line | None) -> Figure:
         place = end
     if place < given.length:
         capacity.append((place, given.length, sagging, less))
-    return capacity_figure(
-        given.length,
-        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
-        "moment",
-        (band.upper.sample(SAMPLES), band.lower.sample(SAMPLES)),
-        capacity,
-        work.study.system,
-        compared=_between_faces(written),
-        fixed=given.fixed,
-        mark=given.mark,
-        width_mm=HALF,
-    )
+    return strength_figure(written.work, "moment", capacity, compared=_between_faces(written), width_mm=HALF)
 
 
 def _between_faces(written: Written) -> list[tuple[float, float]]:

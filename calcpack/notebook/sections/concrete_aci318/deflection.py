@@ -116,7 +116,7 @@ def _figure(written: Written, found: Sequence[Deflected]) -> None:
     further = [("immediate, under live load", x, live, bounds(limits["live"]))] if live.any() else []
     figure = deflected_shape(
         given.length,
-        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+        work.bearings,
         x,
         after,
         bounds(limits["total"]),
@@ -181,7 +181,7 @@ def _stretch(written: Written, gross: Gross, stretch: Stretch, service: Service)
         inertia = _inertia(written, gross, stretch, service, words)
     reach: Expression = 2 * span if stretch.overhang else span.as_expression()
     limits = keys["deflection_limits"]
-    checks = state_deflection(
+    stated = state_deflection(
         sheet,
         materials,
         inertia,
@@ -191,16 +191,7 @@ def _stretch(written: Written, gross: Gross, stretch: Stretch, service: Service)
         _compression(written, stretch),
         words,
     )
-    written_lines = {line.symbol: line for line in sheet.lines.values()}
-    return Deflected(
-        stretch,
-        service,
-        checks,
-        inertia,
-        written_lines["lambda_Delta"],
-        written_lines["Delta_L"] if service.live else None,
-        written_lines["Delta_after"],
-    )
+    return Deflected(stretch, service, stated.checks, inertia, stated.growth, stated.live, stated.after)
 
 
 def _inertia(written: Written, gross: Gross, stretch: Stretch, service: Service, words: str) -> Line:

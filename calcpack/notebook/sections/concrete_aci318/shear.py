@@ -16,8 +16,9 @@ from calcpack.clauses.aci318.shear import (
     state_zone,
     take_stirrups,
 )
-from calcpack.figures import Figure, capacity_figure
+from calcpack.figures import Figure
 from calcpack.notebook.sections.concrete_aci318.lines import ENVELOPE, Written
+from calcpack.notebook.sections.strength_figures import strength_figure
 from calcpack.sheet import Line
 
 SAMPLES = 120
@@ -107,24 +108,12 @@ def _middle(written: Written, spacing: float, concrete: Concrete) -> tuple[Stirr
 
 def shear_figure(written: Written) -> Figure:
     """Shear against what concrete and stirrups carry."""
-    work, given, strengths = written.work, written.work.given, written.shear_strengths
-    band = work.study.analysed.band("shear")
+    strengths = written.shear_strengths
     capacity = [
         (zone.start, zone.stop, strengths[zone.spacing].value, strengths[zone.spacing].value)
         for zone in written.design.zones
     ]
-    return capacity_figure(
-        given.length,
-        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
-        "shear",
-        (band.upper.sample(SAMPLES), band.lower.sample(SAMPLES)),
-        capacity,
-        work.study.system,
-        compared=compared(written),
-        fixed=given.fixed,
-        mark=given.mark,
-        width_mm=HALF,
-    )
+    return strength_figure(written.work, "shear", capacity, compared=compared(written), width_mm=HALF)
 
 
 def compared(written: Written) -> list[tuple[float, float]]:

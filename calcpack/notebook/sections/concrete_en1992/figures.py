@@ -21,10 +21,6 @@ SAMPLES = 160
 HALF = 84.0  # [mm], two figures side by side
 
 
-def _bearings(work: Work) -> list[tuple[float, str, str]]:
-    return [(bearing.at, bearing.kind, bearing.mark) for bearing in work.given.bearings]
-
-
 def _size(bar: Bar) -> str:
     return bar.words.removesuffix(" mm")
 
@@ -101,7 +97,7 @@ def bars_figure(work: Work, design: Design) -> tuple[Figure, str]:
             (zone.start, zone.end, zone.spacing, f"{size} at {round(zone.spacing * 1e3)}, {count} pcs")
         )
     figure = bar_layout(
-        length, _bearings(work), layers, zones, work.study.system, fixed=case.fixed, mark=work.given.mark
+        length, work.bearings, layers, zones, work.study.system, fixed=case.fixed, mark=work.given.mark
     )
     return figure, "Bars along the beam, without what reaches into supports; diameters and spacings in mm."
 
@@ -122,7 +118,7 @@ def moment_figure(work: Work, design: Design) -> tuple[Figure, str]:
     ]
     figure = capacity_figure(
         case.length,
-        _bearings(work),
+        work.bearings,
         "moment",
         ((x, design.sagging), (x, -design.hogging)),
         stretches,
@@ -156,7 +152,7 @@ def shear_figure(work: Work, design: Design) -> tuple[Figure, str]:
         compared.append((start, max(start, end)))
     figure = capacity_figure(
         case.length,
-        _bearings(work),
+        work.bearings,
         "shear",
         (case.shear.upper.sample(SAMPLES), case.shear.lower.sample(SAMPLES)),
         stretches,
@@ -181,7 +177,7 @@ def deflection_figure(work: Work, design: Design) -> tuple[Figure, str]:
     ]
     figure = deflected_shape(
         work.given.length,
-        _bearings(work),
+        work.bearings,
         x[::4],
         line[::4],
         limits,

@@ -10,7 +10,6 @@ from calcpack.clauses.aisc360.design import BendingCheck
 from calcpack.clauses.aisc360.shape_lines import AISC, available
 from calcpack.clauses.aisc360.strength import Zone
 from calcpack.clauses.steel import Arrangement
-from calcpack.figures.capacity import capacity_figure
 from calcpack.figures.section import section_figure
 from calcpack.notebook.sections.steel_aisc360.beam import (
     SteelBeam,
@@ -19,6 +18,7 @@ from calcpack.notebook.sections.steel_aisc360.beam import (
     steel_design,
 )
 from calcpack.notebook.sections.steel_chosen import chosen_words
+from calcpack.notebook.sections.strength_figures import strength_figure
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line
 from calcpack.sheet.runs import Runs
@@ -273,21 +273,15 @@ def _unbraced(work: Work, check: BendingCheck) -> Line:
 
 def _figure(work: Work, beam: SteelBeam) -> None:
     """The envelope of moments with what each stretch can carry."""
-    given, band = work.given, work.study.analysed.band("moment")
-    figure = capacity_figure(
-        given.length,
-        [(bearing.at, bearing.kind, bearing.mark) for bearing in given.bearings],
+    figure = strength_figure(
+        work,
         "moment",
-        (band.upper.sample(SAMPLES), band.lower.sample(SAMPLES)),
         _capacities(beam),
-        work.study.system,
         governing=[
             (check.at, sign * check.demand, sign * check.available)
             for check in beam.bending
             for sign in (1.0 if check.sagging else -1.0,)
         ],
-        fixed=given.fixed,
-        mark=given.mark,
     )
     work.sheet.figure(
         figure,

@@ -9,9 +9,10 @@ from calcpack.clauses.en1993.design import LocalForce, SteelBeam
 from calcpack.clauses.en1993.lines_profile import RANK
 from calcpack.clauses.en1993.rules import LIMITS, STRESS_SHARE, WEB_BUCKLING
 from calcpack.clauses.en1993.section import Profile
-from calcpack.figures import Capacity, Figure, Governing, capacity_figure, section_figure
+from calcpack.figures import Capacity, Figure, Governing, section_figure
 from calcpack.notebook.sections.steel_en1993.given import design_of, profile_in
 from calcpack.notebook.sections.steel_figures import HALF_WIDTH, deflected_figure, shear_figure, state_ponding
+from calcpack.notebook.sections.strength_figures import strength_figure
 from calcpack.notebook.study import Study
 from calcpack.notebook.work import Work
 from calcpack.sheet import Sheet
@@ -243,24 +244,13 @@ def _figures(work: Work, beam: SteelBeam) -> None:
 
 
 def _moment_figure(work: Work, beam: SteelBeam, width: float) -> Figure:
-    given, band = work.given, work.study.analysed.band("moment")
     governing = None
     if (worst := beam.buckling) is not None:
         signed = worst.moments.largest
         sign = 1.0 if signed.value >= 0 else -1.0
         governing = [Governing(signed.at, signed.value, sign * worst.resistance)]
-    return capacity_figure(
-        given.length,
-        [(each.at, each.kind, each.mark) for each in given.bearings],
-        "moment",
-        (band.upper.sample(SAMPLES), band.lower.sample(SAMPLES)),
-        capacities(beam, given.length),
-        work.study.system,
-        governing=governing,
-        fixed=given.fixed,
-        mark=given.mark,
-        width_mm=width,
-    )
+    stretches = capacities(beam, work.given.length)
+    return strength_figure(work, "moment", stretches, samples=SAMPLES, governing=governing, width_mm=width)
 
 
 def _limit(work: Work) -> Callable[[str, int], float | None]:
