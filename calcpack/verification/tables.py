@@ -248,8 +248,14 @@ def _read(path: Path) -> Topic:
     except ValidationError as error:
         first = error.errors()[0]
         place = ".".join(str(part) for part in first["loc"])
-        message = first["msg"].removeprefix("Value error, ")
-        raise CalcpackError(message, file=path.name, key=place, remedy="see DEVELOPERS.md") from None
+        message = "this key is missing" if first["type"] == "missing" else first["msg"]
+        message = message.removeprefix("Value error, ")
+        raise CalcpackError(
+            message,
+            file=path.name,
+            key=place,
+            remedy="compare it with a table of shared/verification; DEVELOPERS.md says what a table holds",
+        ) from None
     except (OSError, ValueError) as error:
         raise CalcpackError(f"the table cannot be read: {error}", file=path.name) from None
 

@@ -6,6 +6,8 @@ import csv
 import hashlib
 import json
 import math
+import re
+from pathlib import Path
 
 import pytest
 
@@ -100,3 +102,13 @@ def test_patterns_of_live_load_reach_further_than_all_spans_loaded(built):
     worst = strength[0]["reactions_max"]
     assert all(one >= other - 1e-9 for one, other in zip(worst, together, strict=True))
     assert any(one > other * 1.01 for one, other in zip(worst, together, strict=True))
+
+
+def test_the_audit_in_the_readme_is_that_of_the_example(built):
+    readme = (Path(__file__).parents[2] / "README.md").read_text(encoding="utf-8")
+    sheet = record(built("rope_walk"), "B1")
+    bond = next(line for line in sheet["lines"] if line["says"] == "Cover of the bars, for bond")
+    governing = sheet["results"]["governing"]
+    assert re.search(rf"\nB1 +{bond['no']}  {governing['name']} +{governing['ratio']:.3g}\n", readme)
+    assert f"calcpack audit B1.pdf --trace {bond['no']}\n{bond['no']}  " in readme
+    assert re.search(rf"\nB1 +{len(sheet['lines'])} ", readme)

@@ -169,8 +169,14 @@ def find_target(path: Path, *, records: Path | None = None, job: Path | None = N
         )
     elif path.suffix.lower() == ".pdf":
         target = _pdf(path, records)
-    else:
+    elif path.suffix.lower() == ".json":
         target = _record(path)
+    else:
+        raise CalcpackError(
+            "it is neither a record nor a PDF",
+            file=str(path),
+            remedy="name an output folder, a record (sheets/B1.json), a sheet's PDF or a pack",
+        )
     if job is not None:
         inputs = _job_inputs(job)
         target = Target(**{**vars(target), "inputs": inputs, "job_folder": job.resolve().parent})
