@@ -17,6 +17,7 @@ from calcpack.job.names import alike, bar_name
 from calcpack.job.units import factor
 
 _METRIC = re.compile(r"[0-9]+ mm")
+_US = re.compile(r"#[0-9]+")
 
 
 @dataclass(frozen=True)
@@ -154,16 +155,14 @@ class Stock:
             There is no such size; the nearest one is named.
         """
         name = bar_name(size)
-        sizes = [each for system in _tables().values() for each in system]
-        for each in (*self.own, *sizes):
+        bars = [*self.own, *(each for system in _tables().values() for each in system)]
+        for each in bars:
             if alike(each.name) == alike(name):
                 return each
-        kind = _tables().get("metric" if _METRIC.fullmatch(name) else "us" if name.startswith("#") else "")
-        if kind and name.strip("# m").isdigit():
-            of_kind = [each for each in self.own if each.name.strip("# m").isdigit()]
-            number = int(name.strip("# m"))
-            near = [each for each in (*of_kind, *kind) if (each.name[0] == "#") == (name[0] == "#")]
-            close = min(near, key=lambda each: abs(_number(each) - number))
+        if wanted := _numbered(name):
+            numbered = [(each, found) for each in bars if (found := _numbered(each.name))]
+            near = [(abs(found[1] - wanted[1]), each) for each, found in numbered if found[0] == wanted[0]]
+            _, close = min(near, key=lambda each: each[0])
             raise CalcpackError(f"there is no bar '{size}'", remedy=f"the nearest is '{close.name}'")
         remedy = "write a diameter ('20 mm') or a number ('#8')"
         if self.own:
@@ -217,6 +216,7 @@ def stock_of(sizes: Sequence[BarSize]) -> Stock:
     return Stock(tuple(Bar(each.name, each.diameter, each.area, each.source, True) for each in sizes))
 
 
-def _number(each: Bar) -> int:
-    """The number in a bar's name."""
-    return int(re.sub(r"\D", "", each.name))
+def _numbered(name: str) -> tuple[str, int] | None:
+    """Kind and number of a size's name: "20 mm" is ("mm", 20), "#8" is ("#", 8); None for another name."""
+    kind = "mm" if _METRIC.fullmatch(name) else "#" if _US.fullmatch(name) else ""
+    return (kind, int(name.strip("# m"))) if kind else None
