@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 import json
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
@@ -10,11 +11,11 @@ from typing import Any
 
 from calcpack.actions import combination_set
 from calcpack.export.blocks import Figure as FigureBlock
-from calcpack.export.content import SheetContent, notebook_bytes, sheet_content
+from calcpack.export.content import SheetContent, SheetNumbers, notebook_bytes, sheet_content
 from calcpack.export.mathematics import Mathematics
-from calcpack.export.pack import Pack, PackedFile, Section, build_pack, index_html, paginate
+from calcpack.export.pack import Pack, PackedFile, Section, build_pack, index_html, paginate, set_sheets
 from calcpack.export.page_html import sheet_html
-from calcpack.export.pdf import sheet_pdf
+from calcpack.export.press import Press
 from calcpack.export.tables import schedule_csv
 from calcpack.export.typesetting import Attached
 from calcpack.figures import Figure, key_plan
@@ -299,44 +300,64 @@ def _files(
     ]
     listed = ["job.json", "schedule.csv", *names]
     pack = replace(pack, files=tuple(PackedFile(name, "") for name in listed))
-    follow("setting the pages", 0, len(names))
-    numbers = paginate(pack, mathematics)
+    with Press(len(pack.bound)) as press:
+        steps = itertools.count(1)
+        most = len(pack.bound) * (2 if "pdf" in formats else 1)
+
+        def step() -> None:
+            follow("setting the pages", next(steps), most)
+
+        follow("setting the pages", 0, most)
+        numbers = paginate(pack, mathematics, press, done=step)
+        pack = _numbered(pack, nodes, numbers, kept)
+        pdfs = set_sheets(pack, mathematics, press, done=step) if "pdf" in formats else {}
     files: dict[str, bytes] = {}
-    contents = {}
     for content in pack.bound:
-        node = nodes[content.mark]
-        if content.mark in kept and kept[content.mark][0].numbers == numbers[content.mark]:
-            content, node = kept[content.mark]
-        node.metadata["calcpack"]["sheets"] = numbers[content.mark].model_dump()
-        content = replace(content.numbered(numbers[content.mark]), notebook=notebook_bytes(node))
-        contents[content.mark] = content
         stem = f"sheets/{content.mark}"
         if "notebook" in formats:
             files[f"{stem}.ipynb"] = content.notebook
         if "html" in formats:
             files[f"{stem}.html"] = sheet_html(content, mathematics).encode()
         if "pdf" in formats:
-            files[f"{stem}.pdf"] = sheet_pdf(content, mathematics)
+            files[f"{stem}.pdf"] = pdfs[content.mark].pdf
         if content.record is not None:
             files[f"{stem}.json"] = content.record_bytes
-        follow("setting the pages", len(files), len(names))
-    sheets = tuple(contents[content.mark] for content in pack.sheets)
     first_pages = {mark: each.first for mark, each in numbers.items()}
-    files["schedule.csv"] = schedule_csv(sheets, first_pages).encode()
+    files["schedule.csv"] = schedule_csv(pack.sheets, first_pages).encode()
     files["job.json"] = _job_json(framed)
     pack = replace(
         pack,
-        sheets=sheets,
-        appendices=tuple(contents[content.mark] for content in pack.appendices),
         files=tuple(PackedFile.of(name, files[name]) for name in listed),
     )
     if "html" in formats:
         files["index.html"] = index_html(pack, mathematics).encode()
     if "pdf" in formats:
-        built = build_pack(pack, mathematics)
-        statement = statement_of(pack.header, pack.submission, [content.record for content in sheets])
+        built = build_pack(pack, mathematics, pdfs)
+        statement = statement_of(pack.header, pack.submission, [content.record for content in pack.sheets])
         files["pack.pdf"] = ready_to_sign(built.pdf, built.signing, statement)
     return files
+
+
+def _numbered(
+    pack: Pack,
+    nodes: Mapping[str, Any],
+    numbers: Mapping[str, SheetNumbers],
+    kept: Mapping[str, tuple[SheetContent, Any]],
+) -> Pack:
+    """The pack with its sheets numbered, in their notebooks too."""
+
+    def with_number(content: SheetContent) -> SheetContent:
+        node, number = nodes[content.mark], numbers[content.mark]
+        if content.mark in kept and kept[content.mark][0].numbers == number:
+            content, node = kept[content.mark]
+        node.metadata["calcpack"]["sheets"] = number.model_dump()
+        return replace(content.numbered(number), notebook=notebook_bytes(node))
+
+    return replace(
+        pack,
+        sheets=tuple(with_number(content) for content in pack.sheets),
+        appendices=tuple(with_number(content) for content in pack.appendices),
+    )
 
 
 def _job_json(framed: Frame) -> bytes:

@@ -24,9 +24,11 @@ from calcpack.export.pack import (
     build_pack,
     index_html,
     paginate,
+    set_sheets,
 )
 from calcpack.export.page_html import sheet_html
 from calcpack.export.pdf import sheet_pdf
+from calcpack.export.press import Press
 from calcpack.export.tables import schedule_csv
 from calcpack.export.typesetting import Attached
 
@@ -48,6 +50,7 @@ __all__ = [
     "Mathematics",
     "Pack",
     "PackedFile",
+    "Press",
     "Section",
     "SheetContent",
     "SheetHTMLExporter",
@@ -60,6 +63,7 @@ __all__ = [
     "paginate",
     "record_bytes",
     "schedule_csv",
+    "set_sheets",
     "sheet_content",
     "sheet_html",
     "sheet_pdf",

@@ -1,36 +1,41 @@
 """The pack: cover, index, basis, schedule, reactions, all sheets, appendices and manifest as one document.
 
-``paginate`` lays the pack out and tells every sheet its numbers; with these the single sheets are
-written, and ``build_pack`` sets the pack itself, its manifest naming their hashes. Nothing in a number
-changes the layout, so a sheet's own file has the pages the pack has.
+``paginate`` lays everything out and tells every sheet its numbers; with these ``set_sheets`` sets the single
+sheets, and ``build_pack`` sets what stands around them, its manifest naming their hashes, and binds all.
+Nothing in a number changes the layout, and a sheet's own file has the pages the pack has.
 """
 
 from __future__ import annotations
 
 import hashlib
+import itertools
 import posixpath
-from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, field
+from collections import Counter
+from collections.abc import Callable, Iterator, Mapping, Sequence
+from dataclasses import dataclass, field, replace
 from typing import Any
 from urllib.parse import quote
 
 from markupsafe import Markup
 
 from calcpack.export import blocks as kinds
+from calcpack.export.binding import Bound, Place, bind
 from calcpack.export.blocks import Block, formulas_of, levelled, read_blocks
 from calcpack.export.content import CAUTION, SheetContent, SheetNumbers
 from calcpack.export.mathematics import Mathematics
 from calcpack.export.page_html import Screen, header_fields, render
-from calcpack.export.paper import Data, Paper, document_data, foot, sheet_part
-from calcpack.export.pdf import attachments
+from calcpack.export.paper import BOUND, Data, Paper, document_data, foot
+from calcpack.export.pdf import sheet_setting
+from calcpack.export.press import Press
 from calcpack.export.tables import reaction_blocks, schedule_blocks
 from calcpack.export.text import shown_date
-from calcpack.export.typesetting import Attached, Typeset, typeset, with_known_letters
+from calcpack.export.typesetting import Attached, Setting, Typeset, typeset, with_known_letters
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Header, Submission
 
 _HEIGHTS = {"A4": 297.0, "Letter": 279.4}  # [mm]
 _POINT = 72 / 25.4
+_MOST_TRIES = 8  # to lay out an index that tells numbers which depend on its own length
 
 
 @dataclass(frozen=True)
@@ -127,8 +132,14 @@ class BuiltPack:
     signing: tuple[SigningPlace, ...]
 
 
-def paginate(pack: Pack, mathematics: Mathematics | None = None) -> dict[str, SheetNumbers]:
-    """Lay the pack out and number its sheets.
+def paginate(
+    pack: Pack,
+    mathematics: Mathematics | None = None,
+    press: Press | None = None,
+    *,
+    done: Callable[[], None] = lambda: None,
+) -> dict[str, SheetNumbers]:
+    """Lay everything out and number the sheets.
 
     Parameters
     ----------
@@ -136,6 +147,10 @@ def paginate(pack: Pack, mathematics: Mathematics | None = None) -> dict[str, Sh
         With as many ``files`` as the final one will have, under their final names; their hashes may be empty.
     mathematics : Mathematics
         Formulas known already.
+    press : Press
+        Sets the sheets.
+    done : callable
+        Called as each sheet is laid out.
 
     Returns
     -------
@@ -147,17 +162,50 @@ def paginate(pack: Pack, mathematics: Mathematics | None = None) -> dict[str, Sh
     CalcpackError
         Two sheets have the same mark, or something cannot be set.
     """
-    return _numbers(_set(pack, mathematics or Mathematics(), pdf=False))
+    design = _Design(pack, mathematics or Mathematics())
+    laid = (press or Press()).set_all(design.sheets(), pdf=False, done=done)
+    return design.numbers([_pages(each) for each in laid])
 
 
-def build_pack(pack: Pack, mathematics: Mathematics | None = None) -> BuiltPack:
-    """Set the pack.
+def set_sheets(
+    pack: Pack,
+    mathematics: Mathematics | None = None,
+    press: Press | None = None,
+    *,
+    done: Callable[[], None] = lambda: None,
+) -> dict[str, Typeset]:
+    """Every sheet and appendix of a pack as its own PDF, and where the lines stand that the pack leads to.
 
     Parameters
     ----------
     pack : Pack
+        Its sheets numbered.
+    mathematics, press, done
+        As of :func:`paginate`.
+
+    Returns
+    -------
+    dict
+        Mark -> its file, the same as that of :func:`sheet_pdf`.
+    """
+    design = _Design(pack, mathematics or Mathematics())
+    done_sheets = (press or Press()).set_all(design.sheets(), done=done)
+    return {content.mark: each for content, each in zip(pack.bound, done_sheets, strict=True)}
+
+
+def build_pack(
+    pack: Pack, mathematics: Mathematics | None = None, sheets: Mapping[str, Typeset] | None = None
+) -> BuiltPack:
+    """Set what stands before and behind the sheets and bind all.
+
+    Parameters
+    ----------
+    pack : Pack
+        Its sheets numbered.
     mathematics : Mathematics
         Formulas known already.
+    sheets : mapping
+        The sheets as :func:`set_sheets` made them of the same pack; without it they are set here.
 
     Returns
     -------
@@ -170,57 +218,102 @@ def build_pack(pack: Pack, mathematics: Mathematics | None = None) -> BuiltPack:
         Two sheets have the same mark, something cannot be set, or the manifest changed the count of
         pages since the sheets were numbered.
     """
-    done = _set(pack, mathematics or Mathematics(), pdf=True)
-    numbers = _numbers(done)
+    mathematics = mathematics or Mathematics()
+    design = _Design(pack, mathematics)
+    made = sheets or set_sheets(pack, mathematics)
+    numbers = design.numbers([_pages(made[content.mark]) for content in pack.bound])
     for content in pack.bound:
         given = content.numbers
-        if given.of > 1 and given != numbers[content.mark]:
+        if given != numbers[content.mark]:
             raise CalcpackError(
                 f"the sheet is numbered {given.first} of {given.of}, but the pack puts it at"
                 f" {numbers[content.mark].first} of {numbers[content.mark].of}",
                 mark=content.mark,
                 remedy="number the sheets again with the pack as it is",
             )
-    height = _HEIGHTS[pack.submission.paper]
-    signing = tuple(
-        SigningPlace(
-            place["role"],
-            place["page"] - 1,
-            (
-                round(place["x"] * _POINT, 2),
-                round((height - place["y"] - place["height"]) * _POINT, 2),
-                round((place["x"] + place["width"]) * _POINT, 2),
-                round((height - place["y"]) * _POINT, 2),
-            ),
-        )
-        for place in done.places["signing"]
-        if place["part"] == "cover"
+    start, end = (typeset(each) for each in design.around)
+    parts = [
+        Bound("start", start.pdf),
+        *(
+            Bound(
+                str(number),
+                made[content.mark].pdf,
+                {
+                    at["line"]: Place(at["page"] - 1, at["x"], at["y"])
+                    for at in made[content.mark].places["led-to"]
+                },
+            )
+            for number, content in enumerate(pack.bound)
+        ),
+        Bound("end", end.pdf),
+    ]
+    return BuiltPack(
+        bind(parts, files=pack.submission.attachments), numbers, tuple(_signing(start, pack.submission.paper))
     )
-    return BuiltPack(done.pdf, numbers, signing)
 
 
-def _numbers(done: Typeset) -> dict[str, SheetNumbers]:
-    (total,) = done.places["pages"]
-    return {
-        start["sheet"]: SheetNumbers(first=start["page"], of=total)
-        for start in done.places["start"]
-        if start["sheet"]
-    }
+def _pages(done: Typeset) -> int:
+    (count,) = done.places["pages"]
+    return int(count)
 
 
-def _set(pack: Pack, mathematics: Mathematics, *, pdf: bool) -> Typeset:
-    marks = [content.mark for content in pack.bound]
-    for mark in marks:
-        if marks.count(mark) > 1:
-            raise CalcpackError(f"two sheets of the pack have the mark '{mark}'")
-    general = _sections(pack)
-    shown = [*(content.blocks for content in pack.bound), *(part.blocks for part in (*general, *pack.annex))]
-    mathematics.learn(latex for blocks in shown for latex in formulas_of(blocks))
-    paper = Paper(mathematics)
-    header = pack.header
-    bound = [sheet_part(content, paper, str(number)) for number, content in enumerate(pack.bound)]
-    manifest = _part("manifest", "", "Manifest", pack) | {
-        "files": [
+def _signing(start: Typeset, paper: str) -> Iterator[SigningPlace]:
+    height = _HEIGHTS[paper]
+    for place in start.places["signing"]:
+        if place["part"] == "cover":
+            box = (
+                place["x"],
+                height - place["y"] - place["height"],
+                place["x"] + place["width"],
+                height - place["y"],
+            )
+            left, bottom, right, top = (round(each * _POINT, 2) for each in box)
+            yield SigningPlace(place["role"], place["page"] - 1, (left, bottom, right, top))
+
+
+class _Design:
+    """What a pack is set from: its beginning, its sheets and its end, each a document of its own.
+
+    Parameters
+    ----------
+    pack : Pack
+    mathematics : Mathematics
+
+    Raises
+    ------
+    CalcpackError
+        Two sheets have the same mark.
+    """
+
+    def __init__(self, pack: Pack, mathematics: Mathematics) -> None:
+        marks = [content.mark for content in pack.bound]
+        if twice := [mark for mark, count in Counter(marks).items() if count > 1]:
+            raise CalcpackError(f"two sheets of the pack have the mark '{twice[0]}'")
+        self._pack = pack
+        self._mathematics = mathematics
+        general = _sections(pack)
+        shown = [
+            *(content.blocks for content in pack.bound),
+            *(part.blocks for part in (*general, *pack.annex)),
+        ]
+        mathematics.learn(latex for blocks in shown for latex in formulas_of(blocks))
+        self._led_to: set[str] = set()
+        self._start = self._beginning(general)
+        self._end = self._ending()
+
+    def _beginning(self, general: Sequence[Section]) -> Setting:
+        pack, paper = self._pack, Paper(self._mathematics)
+        data = {
+            "cover": _part("cover", "", "Cover", pack) | _cover(pack, paper),
+            "general": _general("general", "General", general, pack, paper),
+            "behind": [],
+        }
+        attached = pack.attached if pack.submission.attachments else ()
+        return self._around("pack.typ", data, paper, attached, ("pages", "signing"))
+
+    def _ending(self) -> Setting:
+        pack, paper = self._pack, Paper(self._mathematics)
+        files = [
             {
                 "name": paper.words(file.name),
                 "sha256": (file.sha256 or "0" * 64)[:64],
@@ -228,31 +321,83 @@ def _set(pack: Pack, mathematics: Mathematics, *, pdf: bool) -> Typeset:
             }
             for file in pack.files
         ]
-    }
-    title = f"{header.title} – structural calculations, job {header.number}, revision {header.revision}"
-    data = document_data(header, pack.submission.paper, title, f"Calculation pack of {header.title}")
-    data |= {
-        "first": 1,
-        "of": 0,
-        "cover": _part("cover", "", "Cover", pack) | _cover(pack, paper),
-        "general": _general("general", "General", general, pack, paper),
-        "parts": bound,
-        "annex": _general("annex", "Annex", pack.annex, pack, paper),
-        "manifest": manifest,
-        "maths": paper.formulas,
-    }
-    attached: list[Attached] = []
-    if pack.submission.attachments and pdf:
-        attached = [file for content in pack.bound for file in attachments(content)] + list(pack.attached)
-    return typeset(
-        "pack.typ",
-        data,
-        header.date,
-        attached=attached,
-        files=paper.pictures,
-        queries=("start", "pages", "signing"),
-        pdf=pdf,
-    )
+        data = {
+            "annex": _general("annex", "Annex", pack.annex, pack, paper),
+            "manifest": _part("manifest", "", "Manifest", pack) | {"files": files},
+        }
+        return self._around("pack_end.typ", data, paper, (), ("pages", "entry"))
+
+    def _around(
+        self, design: str, own: Data, paper: Paper, attached: Sequence[Attached], queries: Sequence[str]
+    ) -> Setting:
+        pack, header = self._pack, self._pack.header
+        self._led_to |= paper.ways_out
+        title = f"{header.title} – structural calculations, job {header.number}, revision {header.revision}"
+        data = document_data(header, pack.submission.paper, title, f"Calculation pack of {header.title}")
+        return Setting(
+            design,
+            data | own | {"maths": paper.formulas},
+            header.date,
+            attached=attached,
+            files=paper.pictures,
+            queries=queries,
+        )
+
+    def sheets(self) -> list[Setting]:
+        """The sheets and appendices, numbered as they are."""
+        return [
+            sheet_setting(content, self._mathematics, self._lines_led_to(place))
+            for place, content in enumerate(self._pack.bound)
+        ]
+
+    def _lines_led_to(self, place: int) -> list[str]:
+        start = f"{BOUND}{place}/"
+        return sorted(
+            way.removeprefix(start) for way in self._led_to if way.startswith(start) and way != start
+        )
+
+    def numbers(self, pages: Sequence[int]) -> dict[str, SheetNumbers]:
+        """Where every sheet begins, from the pages each has; what stands around them is numbered too."""
+        end = typeset(self._end, pdf=False)
+        before = 0
+        for _ in range(_MOST_TRIES):
+            firsts = list(itertools.accumulate(pages, initial=before + 1))
+            total = firsts[-1] - 1 + _pages(end)
+            start = replace(
+                self._start,
+                data={**self._start.data, "behind": self._behind(firsts, end.places["entry"])},
+                of=total,
+            )
+            found = _pages(typeset(start, pdf=False))
+            if found == before:
+                break
+            before = found
+        else:
+            raise CalcpackError("the index has no settled count of pages", remedy="please report this")
+        self._start, self._end = start, replace(self._end, first=firsts[-1], of=total)
+        return {
+            content.mark: SheetNumbers(first=first, of=total)
+            for content, first in zip(self._pack.bound, firsts, strict=False)
+        }
+
+    def _behind(self, firsts: Sequence[int], entries: Sequence[int]) -> list[list[Any]]:
+        """The index's rows of what is bound behind it: name, first page, way there."""
+        pack = self._pack
+        rows = [
+            [with_known_letters(f"{content.mark} {content.title}"), first, f"{BOUND}{place}/"]
+            for place, (content, first) in enumerate(zip(pack.bound, firsts, strict=False))
+        ]
+        names = [*(with_known_letters(section.title) for section in pack.annex), "Manifest"]
+        rows += [
+            [name, firsts[-1] - 1 + page, f"{BOUND}end/{number}"]
+            for number, (name, page) in enumerate(zip(names, entries, strict=True))
+        ]
+        return rows
+
+    @property
+    def around(self) -> tuple[Setting, Setting]:
+        """What stands before and what behind the sheets, as they were last numbered."""
+        return self._start, self._end
 
 
 def _part(identity: str, mark: str, title: str, pack: Pack) -> Data:
@@ -264,7 +409,6 @@ def _part(identity: str, mark: str, title: str, pack: Pack) -> Data:
         "running": identity != "cover",
         "revision": with_known_letters(pack.header.revision),
         "date": shown_date(pack.header.date),
-        "sheet": None,
         "hangs": False,
         "narrow": False,
     }
@@ -272,9 +416,9 @@ def _part(identity: str, mark: str, title: str, pack: Pack) -> Data:
 
 def _general(identity: str, title: str, sections: Sequence[Section], pack: Pack, paper: Paper) -> Data:
     """Sections that follow each other without a new page; their text can lead to every sheet and line."""
-    elsewhere = {content.mark: f"{place}/" for place, content in enumerate(pack.bound)}
+    elsewhere = {content.mark: f"{BOUND}{place}/" for place, content in enumerate(pack.bound)}
     elsewhere |= {
-        f"{content.mark} {line}": f"{place}/{line}"
+        f"{content.mark} {line}": f"{BOUND}{place}/{line}"
         for place, content in enumerate(pack.bound)
         for line in content.line_numbers
     }
@@ -326,8 +470,6 @@ def _cover(pack: Pack, paper: Paper) -> Data:
         "check-level": pack.submission.check_level,
         "signers": signers,
         "caution": CAUTION,
-        "contents": [with_known_letters(section.title) for section in _sections(pack)],
-        "sheets": len(pack.sheets),
     }
 
 

@@ -26,6 +26,8 @@ from calcpack.job.model import Header, Person
 Data = dict[str, Any]
 _NOWHERE: Mapping[str, str] = MappingProxyType({})
 PAPERS = {"A4": "a4", "Letter": "us-letter"}
+SHEET = "sheet"  # what the labels of a sheet begin with
+BOUND = "bound:"  # what an address in another document of the same pack begins with
 _TEXT = re.compile(r"(<text\b[^>]*>)(.*?)(</text>)", re.S)
 _BETWEEN_TAGS = re.compile(r"[^<>]+(?=<|$)")
 _PNG_HEAD = b"\x89PNG\r\n\x1a\n"
@@ -34,7 +36,7 @@ MOST_RATIO = 100  # a ratio beyond it says no more than that
 
 
 class Paper:
-    """Turns blocks into data; gathers the document's formulas and pictures on the way.
+    """Turns blocks into data; gathers the document's formulas, pictures and ways out of it.
 
     Parameters
     ----------
@@ -47,6 +49,7 @@ class Paper:
         self._numbers: dict[str, int] = {}
         self.formulas: list[str] = []
         self.pictures: dict[str, bytes] = {}
+        self.ways_out: set[str] = set()
 
     def part(
         self,
@@ -56,7 +59,7 @@ class Paper:
         changed: frozenset[str] = frozenset(),
         elsewhere: Mapping[str, str] = _NOWHERE,
     ) -> list[Data]:
-        """A part's blocks; its own ``lines`` can be linked to, and what stands ``elsewhere`` by its label."""
+        """A part's blocks, with links to its own ``lines`` and to what stands ``elsewhere`` by its label."""
         self._mathematics.learn(formulas_of(blocks))
         place = _Place(identity, lines, changed, elsewhere)
         return [self._block(block, place) for block in blocks]
@@ -69,13 +72,20 @@ class Paper:
                 formula = self._mathematics[run.text]
                 found.append(["m", self.formula(run.text), with_known_letters(formula.spoken)])
             elif run.kind == "line":
-                label = place.known(run.text) if place is not None else None
-                found.append(["l", with_known_letters(run.text), label])
+                found.append(self._link(run.text, place))
             else:
                 for number, piece in enumerate(pieces(with_known_letters(run.text))):
                     found += [["b"]] if number else []
                     found.append([{"text": "t", "strong": "s", "em": "e", "code": "c"}[run.kind], piece])
         return found
+
+    def _link(self, text: str, place: _Place | None) -> list[Any]:
+        """What leads to a line or a section: in this document, or in another that is bound with it."""
+        leads = place.known(text) if place is not None else None
+        if leads is None or not leads.startswith(BOUND):
+            return ["l", with_known_letters(text), leads]
+        self.ways_out.add(leads)
+        return ["x", with_known_letters(text), leads]
 
     def words(self, text: str) -> list[list[Any]]:
         """A string as running text."""
@@ -220,7 +230,7 @@ class Paper:
 
 @dataclass(frozen=True)
 class _Place:
-    """Where a block stands: its part, the part's lines and those of them that are revised."""
+    """Where a block stands: its part, the part's lines, those that are revised, and what is elsewhere."""
 
     identity: str
     lines: frozenset[str]
@@ -231,7 +241,7 @@ class _Place:
         return f"{self.identity}/{number}"
 
     def known(self, text: str) -> str | None:
-        """The label of a line here, or of a sheet or a sheet's line elsewhere: "B7", "B7 3.05"."""
+        """The label of a line here, or of what stands elsewhere: "B7", "B7 3.05", "section 4"."""
         return self.label(text) if text in self.lines else self.elsewhere.get(text)
 
 
@@ -323,13 +333,12 @@ def document_data(header: Header, paper: str, title: str, says: str) -> Data:
     }
 
 
-def sheet_part(content: SheetContent, paper: Paper, identity: str = "0") -> Data:
-    """A sheet as a part of a document; ``identity`` sets its lines' labels apart from other sheets'."""
+def sheet_part(content: SheetContent, paper: Paper) -> Data:
+    """A sheet as the part of a document."""
     mark = with_known_letters(content.mark)
     title = with_known_letters(content.title)
     return {
-        "id": identity,
-        "sheet": content.mark,
+        "id": SHEET,
         "mark": mark,
         "title": title,
         "name": f"{mark} {title}",
@@ -339,5 +348,5 @@ def sheet_part(content: SheetContent, paper: Paper, identity: str = "0") -> Data
         "running": True,
         "hangs": True,
         "narrow": True,
-        "blocks": paper.part(identity, content.blocks, content.line_numbers, content.changed),
+        "blocks": paper.part(SHEET, content.blocks, content.line_numbers, content.changed),
     }

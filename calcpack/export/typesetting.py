@@ -13,7 +13,7 @@ import shutil
 import tempfile
 from collections.abc import Iterator, Mapping, Sequence
 from contextlib import contextmanager
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Any, Literal
 
@@ -115,51 +115,9 @@ class Attached:
     says: str
 
 
-@contextmanager
-def _root(
-    data: Mapping[str, Any], attached: Sequence[Attached], extra: Mapping[str, bytes]
-) -> Iterator[Path]:
-    """A folder with the page designs, the data and the files to carry, for one document."""
-    with tempfile.TemporaryDirectory(prefix="calcpack-") as name:
-        root = Path(name)
-        for design in sorted(page_folder().glob("*.typ")):
-            shutil.copy(design, root)
-        for file_name, content in extra.items():
-            (root / file_name).write_bytes(content)
-        files = []
-        for number, file in enumerate(attached):
-            (root / f"attached{number}").write_bytes(file.data)
-            files.append(
-                {"file": f"attached{number}", "name": file.name, "mime": file.mime, "says": file.says}
-            )
-        text = json.dumps({**data, "attached": files}, ensure_ascii=False)
-        (root / "data.json").write_text(text, encoding="utf-8")
-        yield root
-
-
-def _midnight(date: datetime.date) -> int:
-    return int(datetime.datetime(date.year, date.month, date.day, tzinfo=datetime.UTC).timestamp())
-
-
 @dataclass(frozen=True)
-class Typeset:
-    """A set document: the file, and what its design says of its own places (label -> values)."""
-
-    pdf: bytes
-    places: dict[str, list[Any]]
-
-
-def typeset(
-    design: str,
-    data: Mapping[str, Any],
-    date: datetime.date,
-    *,
-    attached: Sequence[Attached] = (),
-    files: Mapping[str, bytes] | None = None,
-    queries: Sequence[str] = (),
-    pdf: bool = True,
-) -> Typeset:
-    """Set a document.
+class Setting:
+    """A document to be set.
 
     Parameters
     ----------
@@ -175,6 +133,63 @@ def typeset(
         Name -> content of pictures the data name.
     queries : sequence of str
         Labels whose metadata to bring back.
+    first, of : int
+        Number of its first page and of the last one of all it is bound with; ``of`` may be 0 for its own.
+        They stand in a file of their own: other numbers leave all but the running heads as laid out before.
+    """
+
+    design: str
+    data: Mapping[str, Any]
+    date: datetime.date
+    attached: Sequence[Attached] = ()
+    files: Mapping[str, bytes] = field(default_factory=dict)
+    queries: Sequence[str] = ()
+    first: int = 1
+    of: int = 0
+
+
+@contextmanager
+def _root(setting: Setting) -> Iterator[Path]:
+    """A folder with the page designs, the data and the files to carry, for one document."""
+    with tempfile.TemporaryDirectory(prefix="calcpack-") as name:
+        root = Path(name)
+        for design in sorted(page_folder().glob("*.typ")):
+            shutil.copy(design, root)
+        for file_name, content in setting.files.items():
+            (root / file_name).write_bytes(content)
+        files = []
+        for number, file in enumerate(setting.attached):
+            (root / f"attached{number}").write_bytes(file.data)
+            files.append(
+                {"file": f"attached{number}", "name": file.name, "mime": file.mime, "says": file.says}
+            )
+        for file_name, data in (
+            ("data.json", setting.data),
+            ("numbers.json", {"first": setting.first, "of": setting.of}),
+            ("attached.json", files),
+        ):
+            (root / file_name).write_text(json.dumps(data, ensure_ascii=False), encoding="utf-8")
+        yield root
+
+
+def _midnight(date: datetime.date) -> int:
+    return int(datetime.datetime(date.year, date.month, date.day, tzinfo=datetime.UTC).timestamp())
+
+
+@dataclass(frozen=True)
+class Typeset:
+    """A set document: the file, and what its design says of its own places (label -> values)."""
+
+    pdf: bytes
+    places: dict[str, list[Any]]
+
+
+def typeset(setting: Setting, *, pdf: bool = True) -> Typeset:
+    """Set a document.
+
+    Parameters
+    ----------
+    setting : Setting
     pdf : bool
         False only lays out and answers the queries.
 
@@ -183,26 +198,26 @@ def typeset(
     CalcpackError
         The design cannot be set with this data.
     """
-    with _root(data, attached, files or {}) as root:
+    with _root(setting) as root:
         compiler = typst.Compiler(
-            str(root / design),
+            str(root / setting.design),
             root=str(root),
             font_paths=_fonts(),
             sys_inputs={"faces": _families_beside()},
         )
         try:
             written = (
-                compiler.compile(format="pdf", pdf_standards=[*STANDARDS], timestamp=_midnight(date))
+                compiler.compile(format="pdf", pdf_standards=[*STANDARDS], timestamp=_midnight(setting.date))
                 if pdf
                 else b""
             )
             places = {
                 label: json.loads(compiler.query(f"<{label}>", field="value", format="json"))
-                for label in queries
+                for label in setting.queries
             }
         except typst.TypstError as error:
             raise CalcpackError(
-                f"the page design '{design}' cannot be set: {str(error.message)[:400]}",
+                f"the page design '{setting.design}' cannot be set: {str(error.message)[:400]}",
                 remedy="if the design is calcpack's own, please report this",
             ) from error
     assert isinstance(written, bytes)

@@ -14,7 +14,7 @@ from pyhanko.stamp import StaticStampStyle
 from calcpack.export.mathematics import Mathematics
 from calcpack.export.paper import Paper
 from calcpack.export.text import clean, shown_date
-from calcpack.export.typesetting import typeset
+from calcpack.export.typesetting import Setting, typeset
 from calcpack.job.errors import CalcpackError
 from calcpack.record.pdf_update import name
 
@@ -73,22 +73,18 @@ def appearance(
     """
     width, height = box[2] - box[0], box[3] - box[1]
     paper = Paper(Mathematics())
-    done = typeset(
-        "signature.typ",
-        {
-            "title": "Signature",
-            "date": [moment.year, moment.month, moment.day],
-            "width": width,
-            "height": height,
-            "name": paper.words(clean(signer)),
-            "licence": paper.words(clean(licence)),
-            "role": paper.words(role),
-            "time": paper.words(shown_time(moment)),
-            "notes": [paper.words(clean(note)) for note in notes],
-        },
-        moment.date(),
-        queries=("fits",),
-    )
+    data = {
+        "title": "Signature",
+        "date": [moment.year, moment.month, moment.day],
+        "width": width,
+        "height": height,
+        "name": paper.words(clean(signer)),
+        "licence": paper.words(clean(licence)),
+        "role": paper.words(role),
+        "time": paper.words(shown_time(moment)),
+        "notes": [paper.words(clean(note)) for note in notes],
+    }
+    done = typeset(Setting("signature.typ", data, moment.date(), queries=("fits",)))
     if not all(done.places["fits"]):
         raise CalcpackError(
             "the reason is too long to be read in the signature's place",

@@ -7,7 +7,7 @@ from collections.abc import Mapping
 from typing import Any
 
 from calcpack.export.text import shown_date
-from calcpack.export.typesetting import typeset, with_known_letters
+from calcpack.export.typesetting import Setting, typeset, with_known_letters
 from calcpack.record.audit_screen import COLUMNS, open_rows, summary_rows, wrong_rows
 from calcpack.record.auditing.findings import Audit, Verdict
 
@@ -84,7 +84,7 @@ def audit_report(audit: Audit, *, every: bool = False, paper: str = "a4") -> byt
             if sheet.findings
         ],
     }
-    return typeset("audit.typ", _settable(data), date).pdf
+    return typeset(Setting("audit.typ", _settable(data), date)).pdf
 
 
 def _date(header: Mapping[str, Any]) -> datetime.date:

@@ -11,7 +11,7 @@ from calcpack.export.content import CAUTION
 from calcpack.export.mathematics import Mathematics
 from calcpack.export.paper import PAPERS, Paper
 from calcpack.export.text import shown_date
-from calcpack.export.typesetting import typeset, with_known_letters
+from calcpack.export.typesetting import Setting, typeset, with_known_letters
 from calcpack.figures.figure import Figure
 from calcpack.verification import shown
 from calcpack.verification.charts import plate_figure, tolerance_figure
@@ -327,7 +327,6 @@ def manual_data(found: Findings, paper_size: Literal["A4", "Letter"] = "A4") -> 
         "authors": [],
         "keywords": [version(), "verification"],
         "date": [revised.year, revised.month, revised.day],
-        "first": 1,
         "program": version(),
         "foot": with_known_letters(CAUTION),
         "front": paper.part("front", read_blocks(front)),
@@ -361,4 +360,4 @@ def manual_pdf(found: Findings, paper_size: Literal["A4", "Letter"] = "A4") -> b
     """
     data, paper = manual_data(found, paper_size)
     revised = max(topic.revised for topic in found.topics)
-    return typeset("verification.typ", data, revised, files=paper.pictures).pdf
+    return typeset(Setting("verification.typ", data, revised, files=paper.pictures)).pdf

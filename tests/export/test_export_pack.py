@@ -304,7 +304,7 @@ def test_hostile_titles_in_the_pack(mathematics):
     pack = made()
     hostile = sheet_content(samples.hostile())
     pack = dataclasses.replace(pack, header=hostile.header, sheets=(hostile,), appendices=())
-    built = build_pack(pack, mathematics)
+    built = build_pack(numbered(pack, mathematics), mathematics)
     cover = squeezed(page_texts(built.pdf)[0])
     for words in (
         samples.HOSTILE[0],
@@ -320,7 +320,8 @@ def test_hostile_titles_in_the_pack(mathematics):
 def test_us_units_and_letter():
     pack = made("Letter")
     header = pack.header.model_copy(update={"units": "US"})
-    texts = page_texts(build_pack(dataclasses.replace(pack, header=header), Mathematics()).pdf)
+    pack = numbered(dataclasses.replace(pack, header=header), Mathematics())
+    texts = page_texts(build_pack(pack, Mathematics()).pdf)
     general = squeezed("".join(texts[1:4]))
     assert "kip·ft" in general
     assert "81.6" in general  # 110.7 kNm

@@ -1,0 +1,109 @@
+"""Documents set several at a time, in processes that are replaced before they have remembered too much.
+
+A typesetter remembers what it has laid out, some 100 MB for a strength sheet. That makes the second setting
+of a document quick and a large pack heavy: a process sets a few documents, then another takes its place.
+"""
+
+from __future__ import annotations
+
+import multiprocessing
+import os
+import signal
+from collections.abc import Callable, Sequence
+from concurrent.futures import Future, ProcessPoolExecutor
+from concurrent.futures.process import BrokenProcessPool
+from contextlib import ExitStack
+from types import TracebackType
+
+from calcpack.export.typesetting import Setting, Typeset, typeset
+from calcpack.job.errors import CalcpackError
+
+MOST_PROCESSES = 4
+REMEMBERED = 6  # documents a process may set before another takes its place
+
+
+class Press:
+    """Sets documents; as a context manager it ends its processes.
+
+    Parameters
+    ----------
+    documents : int
+        How many there are to set, so that a few are set here, without any other process.
+    """
+
+    def __init__(self, documents: int = 1) -> None:
+        available = min(MOST_PROCESSES, len(os.sched_getaffinity(0)))
+        self._count = min(available, documents // 2) if documents > 3 else 0
+        self._processes: list[ProcessPoolExecutor] = []
+        self._stack = ExitStack()
+
+    def __enter__(self) -> Press:
+        return self
+
+    def __exit__(
+        self, kind: type[BaseException] | None, error: BaseException | None, trace: TracebackType | None
+    ) -> None:
+        self._end(at_once=error is not None)
+
+    def set_all(
+        self, settings: Sequence[Setting], *, pdf: bool = True, done: Callable[[], None] = lambda: None
+    ) -> list[Typeset]:
+        """Documents set, in the order given.
+
+        Parameters
+        ----------
+        settings : sequence of Setting
+            Given again in the same order a document is set where it was before, and sooner.
+        pdf : bool
+            False only lays out.
+        done : callable
+            Called as each is finished.
+
+        Raises
+        ------
+        CalcpackError
+            One of them cannot be set, or a process was ended from outside.
+        """
+        found = []
+        if not self._count:
+            for setting in settings:
+                found.append(typeset(setting, pdf=pdf))
+                done()
+            return found
+        most = self._count * REMEMBERED
+        for start in range(0, len(settings), most):
+            if len(settings) > most or not self._processes:
+                self._begin()
+            waiting: list[Future[Typeset]] = [
+                self._processes[number % self._count].submit(typeset, setting, pdf=pdf)
+                for number, setting in enumerate(settings[start : start + most])
+            ]
+            for each in waiting:
+                try:
+                    found.append(each.result())
+                except BrokenProcessPool:
+                    raise CalcpackError(
+                        "a process that sets pages was ended from outside",
+                        remedy="see that there is memory enough (some 2 GB) and build again",
+                    ) from None
+                done()
+        return found
+
+    def _begin(self) -> None:
+        self._end()
+        context = multiprocessing.get_context("spawn")
+        self._processes = [
+            self._stack.enter_context(
+                ProcessPoolExecutor(
+                    1, mp_context=context, initializer=signal.signal, initargs=(signal.SIGINT, signal.SIG_IGN)
+                )
+            )
+            for _ in range(self._count)
+        ]
+
+    def _end(self, *, at_once: bool = False) -> None:
+        if at_once:
+            for process in self._processes:
+                process.shutdown(wait=False, cancel_futures=True)
+        self._processes = []
+        self._stack.close()
