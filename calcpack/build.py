@@ -13,7 +13,9 @@ from calcpack.actions import combination_set
 from calcpack.export.blocks import Figure as FigureBlock
 from calcpack.export.content import SheetContent, SheetNumbers, notebook_bytes, sheet_content
 from calcpack.export.mathematics import Mathematics
-from calcpack.export.pack import Pack, PackedFile, Section, build_pack, index_html, paginate, set_sheets
+from calcpack.export.pack import Pack, PackedFile, Section
+from calcpack.export.pack_html import index_html
+from calcpack.export.pack_pdf import build_pack, paginate, set_sheets
 from calcpack.export.page_html import sheet_html
 from calcpack.export.press import Press
 from calcpack.export.tables import schedule_csv

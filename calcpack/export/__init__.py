@@ -15,17 +15,9 @@ from calcpack.export.content import (
     sheet_content,
 )
 from calcpack.export.mathematics import Mathematics
-from calcpack.export.pack import (
-    BuiltPack,
-    Pack,
-    PackedFile,
-    Section,
-    SigningPlace,
-    build_pack,
-    index_html,
-    paginate,
-    set_sheets,
-)
+from calcpack.export.pack import Pack, PackedFile, Section
+from calcpack.export.pack_html import index_html
+from calcpack.export.pack_pdf import BuiltPack, SigningPlace, build_pack, paginate, set_sheets
 from calcpack.export.page_html import sheet_html
 from calcpack.export.pdf import sheet_pdf
 from calcpack.export.press import Press

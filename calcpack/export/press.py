@@ -6,11 +6,12 @@ of a document quick and a large pack heavy: a process sets a few documents, then
 
 from __future__ import annotations
 
+import itertools
 import multiprocessing
 import os
 import signal
-from collections.abc import Callable, Sequence
-from concurrent.futures import Future, ProcessPoolExecutor
+from collections.abc import Callable, Iterable, Iterator
+from concurrent.futures import ProcessPoolExecutor
 from concurrent.futures.process import BrokenProcessPool
 from contextlib import ExitStack
 from types import TracebackType
@@ -34,6 +35,7 @@ class Press:
     def __init__(self, documents: int = 1) -> None:
         available = min(MOST_PROCESSES, len(os.sched_getaffinity(0)))
         self._count = min(available, documents // 2) if documents > 3 else 0
+        self._documents = documents
         self._processes: list[ProcessPoolExecutor] = []
         self._stack = ExitStack()
 
@@ -46,14 +48,15 @@ class Press:
         self._end(at_once=error is not None)
 
     def set_all(
-        self, settings: Sequence[Setting], *, pdf: bool = True, done: Callable[[], None] = lambda: None
+        self, settings: Iterable[Setting], *, pdf: bool = True, done: Callable[[], None] = lambda: None
     ) -> list[Typeset]:
         """Documents set, in the order given.
 
         Parameters
         ----------
-        settings : sequence of Setting
-            Given again in the same order a document is set where it was before, and sooner.
+        settings : iterable of Setting
+            No more of them are kept than are being set. Given again in the same order a document is set
+            where it was before, and sooner.
         pdf : bool
             False only lays out.
         done : callable
@@ -65,29 +68,33 @@ class Press:
             One of them cannot be set, or a process was ended from outside.
         """
         found = []
-        if not self._count:
-            for setting in settings:
-                found.append(typeset(setting, pdf=pdf))
-                done()
-            return found
+        for each in self._set_here(settings, pdf) if not self._count else self._set_elsewhere(settings, pdf):
+            found.append(each)
+            done()
+        return found
+
+    def _set_here(self, settings: Iterable[Setting], pdf: bool) -> Iterator[Typeset]:
+        for setting in settings:
+            yield typeset(setting, pdf=pdf)
+
+    def _set_elsewhere(self, settings: Iterable[Setting], pdf: bool) -> Iterator[Typeset]:
         most = self._count * REMEMBERED
-        for start in range(0, len(settings), most):
-            if len(settings) > most or not self._processes:
+        ahead = iter(settings)
+        while some := list(itertools.islice(ahead, most)):
+            if self._documents > most or not self._processes:
                 self._begin()
-            waiting: list[Future[Typeset]] = [
+            waiting = [
                 self._processes[number % self._count].submit(typeset, setting, pdf=pdf)
-                for number, setting in enumerate(settings[start : start + most])
+                for number, setting in enumerate(some)
             ]
             for each in waiting:
                 try:
-                    found.append(each.result())
+                    yield each.result()
                 except BrokenProcessPool:
                     raise CalcpackError(
                         "a process that sets pages was ended from outside",
-                        remedy="see that there is memory enough (some 2 GB) and build again",
+                        remedy="see that there is memory enough (some 3 GB) and build again",
                     ) from None
-                done()
-        return found
 
     def _begin(self) -> None:
         self._end()

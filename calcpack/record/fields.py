@@ -9,7 +9,7 @@ from typing import Any
 from pyhanko.pdf_utils import generic
 from pyhanko.sign.fields import SigFieldSpec, append_signature_field
 
-from calcpack.export.pack import SigningPlace
+from calcpack.export.pack_pdf import SigningPlace
 from calcpack.record.pdf_update import Update, name
 from calcpack.record.statement import Statement, put_statement
 

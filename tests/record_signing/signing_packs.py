@@ -15,7 +15,8 @@ from collections.abc import Callable
 from pathlib import Path
 
 from calcpack.build import build_job
-from calcpack.export.pack import BuiltPack, Pack, Section, build_pack
+from calcpack.export.pack import Pack, Section
+from calcpack.export.pack_pdf import BuiltPack, build_pack
 from calcpack.files import OutputFolder
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Header, Person, Submission
