@@ -77,7 +77,7 @@ class _Whole:
     def __init__(self, with_files: bool) -> None:
         self._with_files = with_files
         self._pdf = Pdf.new()
-        self._sources: list[Pdf] = []  # their streams are read when the whole is written
+        self._count = 0
         self._bookmarks: list[Any] = []
         self._places: dict[str, Array] = {}
         self._files: dict[str, Any] = {}
@@ -93,8 +93,8 @@ class _Whole:
     def add(self, part: Bound) -> None:
         """Bind one more part."""
         source = Pdf.open(io.BytesIO(part.pdf))
-        number = len(self._sources)
-        self._sources.append(source)
+        number = self._count
+        self._count += 1
         self._instances.update(bytes(source.trailer.ID[1]))
         _set_apart(source, f"{number}-", self._next_key)
         if number == 0:

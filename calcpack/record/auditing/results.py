@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import functools
 import math
 from collections.abc import Mapping, Sequence
 from itertools import pairwise
@@ -75,7 +76,7 @@ class Beam:
         """The second method; None where it is not known where the beam stands."""
         return None if self.supports is None else solve(self.length, self.supports, self.fixed, sets)
 
-    @property
+    @functools.cached_property
     def weight(self) -> float:
         """All load by size [kN]: what rounding is measured against."""
         return sum(abs(load.total) for loads in self.loads.values() for load in loads)
