@@ -11,6 +11,8 @@ from pathlib import Path
 
 import pytest
 
+from calcpack.record.audit import audit_target
+
 EXAMPLES = ["rope_walk", "seed_store"]
 KIP, FOOT = 4.4482216152605, 0.3048
 
@@ -102,6 +104,14 @@ def test_patterns_of_live_load_reach_further_than_all_spans_loaded(built):
     worst = strength[0]["reactions_max"]
     assert all(one >= other - 1e-9 for one, other in zip(worst, together, strict=True))
     assert any(one > other * 1.01 for one, other in zip(worst, together, strict=True))
+
+
+@pytest.mark.parametrize("name", EXAMPLES)
+@pytest.mark.parametrize("file", [".", "pack.pdf"])
+def test_an_audit_finds_nothing_wrong(name, file, built):
+    audit = audit_target(built(name) / file, processes=1)
+    assert [(each.place, each.remark) for each in audit.all for each in each.wrong] == []
+    assert sum(len(sheet.findings) for sheet in audit.sheets) > 3000
 
 
 def test_the_audit_in_the_readme_is_that_of_the_example(built):

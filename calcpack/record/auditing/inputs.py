@@ -70,6 +70,11 @@ def job_facts(target: Target) -> JobFacts:
             "bars": [each.model_dump(mode="json") for each in job.bars],
             "live_psi": job.psi.model_dump(mode="json") if job.psi else None,
             "beams": {each.mark: each.model_dump(mode="json") for each in job.beams},
+            "candidates": {
+                family: [each.model_dump(mode="json") for each in job.candidates[family]]
+                for beam in job.beams
+                if beam.section is not None and beam.section.open and (family := beam.section.family)
+            },
             "design": {each.mark: keys for each in job.beams if (keys := _design(job, each)) is not None},
         }
     )
@@ -135,7 +140,7 @@ def audit_job(given: Given | None, facts: Mapping[str, Any] | None) -> tuple[Fin
         *_title_block(given.data.get("header"), facts["header"]),
         *_same("basis", given.data.get("basis"), facts["basis"]),
         *_panels(given, facts),
-        *_same("section", given.data.get("section"), beam["section"]),
+        *_section(given.data.get("section"), beam["section"], facts["candidates"]),
         *_same("material", given.data.get("material"), beam["material"]),
         *_same("bars", given.data.get("bars"), facts["bars"]),
         *_same("live_psi", given.data.get("live_psi"), facts["live_psi"]),
@@ -164,6 +169,33 @@ def _same(says: str, ours: object, theirs: object) -> Iterator[Finding]:
     yield wrong(
         _GROUP, place, "the parameters are not what the job file says", printed=first[1], other=first[2]
     )
+
+
+def _section(
+    ours: object, asked: Mapping[str, Any] | None, candidates: Mapping[str, list[Mapping[str, Any]]]
+) -> Iterator[Finding]:
+    """The section against the one the job names, or against the family the lightest of which it asks for."""
+    family = asked["family"] if asked else ""
+    if not family or not isinstance(ours, Mapping):
+        yield from _same("section", ours, asked)
+        return
+    names = [each["designation"] for each in candidates[family]]
+    place, name = f"job file, section lightest in {family}", str(ours.get("designation"))
+    if name not in names:
+        yield wrong(_GROUP, place, "the section is none of the family", printed=name[:60], other=family)
+        return
+    number = names.index(name)
+    chosen = {**candidates[family][number], "key": asked and asked["key"], "family": family}
+    left_to_the_choice = {key: ours.get(key) for key in ("tried", "fits")}
+    yield from _same("section", ours, chosen | left_to_the_choice)
+    rows = ours.get("tried") if isinstance(ours.get("tried"), list | tuple) else ()
+    tried = [each.get("designation") for each in rows or () if isinstance(each, Mapping)]
+    passed_over = names[:number] if ours.get("fits", True) else names[:number] + names[number + 1 :]
+    if tried == passed_over:
+        yield good(_GROUP, place, "every section passed over was tried")
+    else:
+        missing = next((each for each in passed_over if each not in tried), "nothing more")
+        yield wrong(_GROUP, place, "the sections tried are not those passed over", other=missing)
 
 
 def _panels(given: Given, facts: Mapping[str, Any]) -> Iterator[Finding]:

@@ -2,6 +2,7 @@
 
 import json
 import tomllib
+from types import SimpleNamespace
 
 import numpy as np
 import pytest
@@ -19,6 +20,9 @@ from calcpack.notebook.sections import steel_figures
 from calcpack.notebook.sections.closing import record_results
 from calcpack.notebook.sections.steel_en1993.results import shown_of
 from calcpack.notebook.templates import find_template
+from calcpack.record.auditing.findings import Verdict
+from calcpack.record.auditing.given import Given
+from calcpack.record.auditing.inputs import audit_job, job_facts
 
 JOB = """
 format = 1
@@ -290,6 +294,38 @@ def test_where_none_passes_the_nearest_is_shown_with_what_it_lacks(tmp_path):
     assert f"None of the {len(families()['IPE'])} IPE sections passes all checks" in said
     assert "is the lightest" not in said
     assert "Not satisfied" in said
+
+
+def audited(tmp_path, settled, asked, change=lambda section: None):
+    """What an audit finds wrong with a chosen section where the job asks for this designation."""
+    text = (tmp_path / "job.toml").read_text()
+    size = next(line for line in text.splitlines() if line.startswith("designation"))
+    inputs = {"job.toml": text.replace(size, f'designation = "{asked}"').encode()}
+    given = find_template("steel_beam_en1993", settled.job.folder)
+    design = given.settle(settled.beams["G1"].beam.design, "G1")
+    data = json.loads(to_text(beam_input(settled, "G1", design, given.stamp)))
+    change(data["section"])
+    found = audit_job(Given(data, "G1.ipynb"), job_facts(SimpleNamespace(inputs=inputs)).data)
+    return [(each.place, each.remark, each.recomputed) for each in found if each.verdict is Verdict.WRONG]
+
+
+@pytest.mark.parametrize("live", ["60 kN", "6000 kN"])
+def test_an_audit_holds_the_chosen_section_against_its_family(tmp_path, live):
+    settled = choose_sections(loft(tmp_path, "lightest in IPE", live=live))
+    asked = "lightest in IPE"
+    assert audited(tmp_path, settled, asked) == []
+    place = "job file, section lightest in"
+    assert audited(tmp_path, settled, "lightest in HEB") == [
+        (f"{place} HEB", "the section is none of the family", "HEB")
+    ]
+    ((where, _, theirs),) = audited(tmp_path, settled, asked, lambda section: section.update(area=0.5))
+    assert (where, theirs[:4]) == ("job file, section area", f"{settled.beams['G1'].beam.section.area}"[:4])
+    for tried in ([], None, [7], {"designation": "IPE 80"}):
+        ((where, says, theirs),) = audited(
+            tmp_path, settled, asked, lambda section: section.update(tried=tried)
+        )  # noqa: B023
+        assert (where, theirs) == (f"{place} IPE", "IPE 80")
+        assert says == "the sections tried are not those passed over"
 
 
 # Figures and words the sheets of both steel templates share
