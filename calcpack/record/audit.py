@@ -25,6 +25,7 @@ from calcpack.record.auditing.pages import audit_pages
 from calcpack.record.auditing.provenance import audit_manifest, audit_provenance, input_digests
 from calcpack.record.auditing.reading import Record, read_record
 from calcpack.record.auditing.results import audit_results
+from calcpack.record.auditing.screens import audit_screen
 from calcpack.record.auditing.sources import audit_sources
 from calcpack.record.auditing.together import Digest, audit_together, digest_of
 
@@ -128,7 +129,9 @@ def audit_sheet(
     """
     opened = open_sheet(files)
     try:
-        return _audited_sheet(opened, files.page_texts(), digests, facts, job_folder)
+        audit, digest = _audited_sheet(opened, files.page_texts(), digests, facts, job_folder)
+        seen = audit_screen(opened.record, files.screen_bytes(), files.record_name.replace(".json", ".html"))
+        return replace(audit, findings=(*audit.findings, *seen)), digest
     except _UNLIKE_A_SHEET as error:
         # Whoever made the files decides what is in them: where they are like no sheet's, that is their fault.
         raise CalcpackError(

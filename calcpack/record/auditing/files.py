@@ -30,6 +30,8 @@ class SheetFiles:
         The sheet's own PDF.
     pages : tuple of str or None
         Its pages' text, where they stand in a pack.
+    screen : Path or None
+        Its page for the screen.
     """
 
     record: bytes
@@ -38,10 +40,15 @@ class SheetFiles:
     notebook_name: str = ""
     pdf: Path | None = None
     pages: tuple[str, ...] | None = None
+    screen: Path | None = None
 
     def notebook_bytes(self) -> bytes | None:
         """The notebook's content."""
         return read_file(self.notebook) if isinstance(self.notebook, Path) else self.notebook
+
+    def screen_bytes(self) -> bytes | None:
+        """The page for the screen, as its file holds it; None where there is none."""
+        return None if self.screen is None else read_file(self.screen)
 
     def page_texts(self) -> tuple[str, ...] | None:
         """The visible text, page by page; None where there is no PDF."""
@@ -241,6 +248,7 @@ def _beside(record: Path) -> SheetFiles:
         notebook=_own(notebook, folder),
         notebook_name=notebook.name,
         pdf=_own(record.with_suffix(".pdf"), folder),
+        screen=_own(record.with_suffix(".html"), folder),
     )
 
 

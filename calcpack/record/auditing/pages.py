@@ -32,14 +32,14 @@ def sheet_pages(pages: Sequence[str]) -> dict[str, tuple[str, ...]]:
     return {mark: tuple(texts) for mark, texts in found.items()}
 
 
-def _upright(text: str) -> str:
+def upright(text: str) -> str:
     """With plain letters: how a PDF slants and raises them says nothing."""
     return unicodedata.normalize("NFKC", text.replace("·", "\ue000")).replace("\ue000", "·")
 
 
-def _bare(text: str) -> str:
+def bare(text: str) -> str:
     """Upright, and without any space: how a PDF spaces its letters says nothing either."""
-    return _SPACE.sub("", _upright(text))
+    return _SPACE.sub("", upright(text))
 
 
 def audit_pages(record: Record, pages: Sequence[str] | None) -> tuple[Finding, ...]:
@@ -76,22 +76,39 @@ def _parts(text: str, record: Record) -> dict[str, list[str]]:
     A number at the beginning of a row is that of a line where the line's words follow it; else it is
     a number in a fraction.
     """
-    says = {line.no: _bare(line.says)[:_WORDS] for line in record.lines}
+    says = {line.no: bare(line.says)[:_WORDS] for line in record.lines}
     begins = [
         match
         for match in _BEGINS.finditer(text)
-        if match[1] in says and _bare(text[match.end() : match.end() + 6 * _WORDS]).startswith(says[match[1]])
+        if match[1] in says and bare(text[match.end() : match.end() + 6 * _WORDS]).startswith(says[match[1]])
     ]
     found: dict[str, list[str]] = {}
     for place, match in enumerate(begins):
         end = begins[place + 1].start() if place + 1 < len(begins) else len(text)
-        found.setdefault(match[1], []).append(_upright(text[match.end() : end]))
+        found.setdefault(match[1], []).append(upright(text[match.end() : end]))
     return found
+
+
+def shows_value(line: RecordLine, parts: Sequence[str]) -> bool:
+    """Whether one of some texts of a line shows its printed value, or its verdict.
+
+    Parameters
+    ----------
+    line : RecordLine
+    parts : sequence of str
+        With plain letters, as :func:`upright` makes them.
+    """
+    if line.kind == "require":
+        shown, flat = bare(line.shown), [_SPACE.sub("", part) for part in parts]
+        return any(shown in part and ("notsatisfied" in part) == (line.passes is False) for part in flat)
+    words = r"\s*".join(map(re.escape, upright(line.shown).split()))
+    whole = re.compile(rf"=\s*{words}(?![0-9.])")
+    return any(whole.search(part) for part in parts)
 
 
 def _shown_on(line: RecordLine, by_line: Mapping[str, Sequence[str]]) -> Finding:
     parts = by_line.get(line.no, ())
-    place, shown = f"line {line.no}", _bare(line.shown)
+    place = f"line {line.no}"
     if not parts:
         return wrong(
             "pages",
@@ -100,14 +117,7 @@ def _shown_on(line: RecordLine, by_line: Mapping[str, Sequence[str]]) -> Finding
             says=line.says,
             printed=line.shown,
         )
-    if line.kind == "require":
-        flat = [_SPACE.sub("", part) for part in parts]
-        right = any(shown in part and ("notsatisfied" in part) == (line.passes is False) for part in flat)
-    else:
-        words = r"\s*".join(map(re.escape, _upright(line.shown).split()))
-        whole = re.compile(rf"=\s*{words}(?![0-9.])")
-        right = any(whole.search(part) for part in parts)
-    if right:
+    if shows_value(line, parts):
         return Finding("pages", place, line.says, line.shown)
     return Finding(
         "pages",

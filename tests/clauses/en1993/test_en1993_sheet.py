@@ -323,7 +323,7 @@ def test_an_audit_holds_the_chosen_section_against_its_family(tmp_path, live):
     for tried in ([], None, [7], {"designation": "IPE 80"}):
         ((where, says, theirs),) = audited(
             tmp_path, settled, asked, lambda section: section.update(tried=tried)
-        )  # noqa: B023
+        )
         assert (where, theirs) == (f"{place} IPE", "IPE 80")
         assert says == "the sections tried are not those passed over"
 

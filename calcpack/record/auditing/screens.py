@@ -1,0 +1,104 @@
+"""What a sheet's page for the screen shows, held against the record: read as text, nothing of it is run."""
+
+from __future__ import annotations
+
+import html
+import re
+from collections.abc import Iterator
+
+from calcpack.job.errors import CalcpackError
+from calcpack.record.auditing.findings import Finding, Verdict, good, wrong
+from calcpack.record.auditing.pages import bare, shows_value, upright
+from calcpack.record.auditing.reading import Record, RecordLine
+
+LARGEST_SCREEN = 50_000_000  # bytes
+_GROUP = "pages"
+_LINE = re.compile(r'<div class="line [a-z ]{1,40}" id="line-([0-9]{1,3}\.[0-9]{2,3})">\n')
+_PART = re.compile(r'<div class="(no|main|notes)">')
+_END = "</div>\n</div>"
+_TAG = re.compile(r"<[^<>]*>")
+# What could hide a line, show another in its place or do something; no sheet has any of it.
+_FOREIGN = re.compile(
+    r"<!--|<\?|<!\[|<(?:script|iframe|frame|object|embed|link|base|form|input|button|template|noscript|svg:script|"
+    r"foreignobject|portal|dialog|details|marquee|audio|video|canvas|animate|set)\b|<[^<>]*\son[a-z]{1,30}\s*=|"
+    r"""(?:href|src)\s*=\s*["']?\s*(?:javascript|data:text|vbscript)|@import|http-equiv\s*=\s*["']?refresh""",
+    re.I,
+)
+
+
+def audit_screen(record: Record, content: bytes | None, name: str) -> Iterator[Finding]:
+    """Whether a sheet's HTML shows each line with its words and its printed value.
+
+    Parameters
+    ----------
+    record : Record
+    content : bytes or None
+        The page; None where there is none, of which nothing is said.
+    name : str
+        Of its file, for messages.
+
+    Yields
+    ------
+    Finding
+        One a line, and one for what the page is made of.
+
+    Raises
+    ------
+    CalcpackError
+        It is no text, or larger than any sheet.
+    """
+    if content is None:
+        return
+    if len(content) > LARGEST_SCREEN:
+        raise CalcpackError("it is larger than any sheet", file=name)
+    try:
+        page = content.decode("utf-8")
+    except UnicodeDecodeError:
+        raise CalcpackError("it is no text", file=name) from None
+    yield _plain(page, name)
+    shown = _lines(page)
+    for line in record.lines:
+        yield _shown_in(line, shown.get(line.no, []), name)
+    for number in sorted(set(shown) - {line.no for line in record.lines}):
+        yield wrong(_GROUP, f"{name}, line {number}", "the page shows a line that the record does not have")
+
+
+def _plain(page: str, name: str) -> Finding:
+    """A sheet has one style sheet of its own, no script and nothing hidden."""
+    found = _FOREIGN.search(page)
+    if found is None and page.count("<style") == 1 and "<style" not in page[page.find("<body") :]:
+        return good(_GROUP, name, "no script, no comment, one style sheet")
+    said = found[0][:40] if found else "<style"
+    return wrong(_GROUP, name, "the page holds what no sheet has", printed=" ".join(said.split()))
+
+
+def _lines(page: str) -> dict[str, list[str]]:
+    """The marked-up text of each line by its number; of a line that stands there twice, both."""
+    found: dict[str, list[str]] = {}
+    for begin in _LINE.finditer(page):
+        end = page.find(_END, begin.end())
+        found.setdefault(begin[1], []).append(page[begin.end() : end if end >= 0 else len(page)])
+    return found
+
+
+def _parts(marked_up: str) -> dict[str, str]:
+    """Number, main part and notes of a line, as they are read."""
+    pieces = _PART.split(marked_up)
+    return {
+        kind: html.unescape(_TAG.sub("", text)) for kind, text in zip(pieces[1::2], pieces[2::2], strict=True)
+    }
+
+
+def _shown_in(line: RecordLine, shown: list[str], name: str) -> Finding:
+    place = f"{name}, line {line.no}"
+    if len(shown) != 1:
+        times = "not" if not shown else f"{len(shown)} times"
+        return wrong(_GROUP, place, f"the page shows this line {times}", says=line.says, printed=line.shown)
+    parts = _parts(shown[0])
+    main = parts.get("main", "")
+    if bare(parts.get("no", "")) != line.no or not bare(main).startswith(bare(line.says)):
+        return wrong(_GROUP, place, "the page shows this line with other words", says=line.says)
+    if shows_value(line, [upright(main)]):
+        return Finding(_GROUP, place, line.says, line.shown)
+    remark = "the page shows this line with another value"
+    return Finding(_GROUP, place, line.says, line.shown, verdict=Verdict.WRONG, remark=remark)
