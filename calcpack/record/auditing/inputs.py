@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import contextlib
+import functools
 import tempfile
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
@@ -9,7 +11,7 @@ from pathlib import Path
 from typing import Any
 
 from calcpack.job.errors import CalcpackError
-from calcpack.job.model import Beam, Job
+from calcpack.job.model import Job
 from calcpack.record.auditing.beam import Load
 from calcpack.record.auditing.copies import differences
 from calcpack.record.auditing.files import Target, stays_below
@@ -75,20 +77,19 @@ def job_facts(target: Target) -> JobFacts:
                 for beam in job.beams
                 if beam.section is not None and beam.section.open and (family := beam.section.family)
             },
-            "design": {each.mark: keys for each in job.beams if (keys := _design(job, each)) is not None},
+            "design": dict(_designs(job)),
         }
     )
 
 
-def _design(job: Job, beam: Beam) -> dict[str, Any] | None:
-    """A beam's design keys as its template takes them; None where the template is not at hand."""
+def _designs(job: Job) -> Iterator[tuple[str, dict[str, Any]]]:
+    """Beams' design keys as their templates take them, where the template is at hand."""
     from calcpack.notebook.templates import find_template
 
-    try:
-        template = find_template(beam.template, Path(job.folder))
-        return template.settle(beam.design, beam.mark, job.data_files)
-    except CalcpackError:
-        return None
+    find = functools.lru_cache(functools.partial(find_template, job_folder=Path(job.folder)))
+    for beam in job.beams:
+        with contextlib.suppress(CalcpackError):
+            yield beam.mark, find(beam.template).settle(beam.design, beam.mark, job.data_files)
 
 
 def left_at_earlier_revision(header: object, now: object) -> bool:

@@ -10,14 +10,12 @@ and the PDF after it: ``{"ask": "texts" | "attached", "size": bytes}``. The answ
 
 from __future__ import annotations
 
-import io
 import json
 import re
 import sys
 from collections.abc import Iterable
 from typing import BinaryIO
 
-import pypdf
 import pypdfium2  # type: ignore[import-untyped]
 
 from calcpack.record.auditing.confined import TOO_DEAR
@@ -31,7 +29,6 @@ UNREADABLE = "it is no readable PDF"
 _END = re.compile(rb"startxref\s+([0-9]{1,12})\s+%%EOF\s*\Z")
 _TABLE = re.compile(rb"\s*(?:xref\b|[0-9]+ [0-9]+ obj\b)")
 _BROKEN = (
-    pypdf.errors.PyPdfError,
     pypdfium2.PdfiumError,
     ArithmeticError,
     AssertionError,
@@ -64,20 +61,24 @@ def attached_files(content: bytes) -> list[tuple[str, bytes]]:
         It is no PDF, is encrypted, or carries too much.
     """
     _see_whole(content)
-    reader = pypdf.PdfReader(io.BytesIO(content))
-    if reader.is_encrypted:
-        raise Refused("it is encrypted")
-    names = list(reader.attachments)
-    if len(names) > MOST_ATTACHED:
-        raise Refused(f"it carries more than {MOST_ATTACHED} files")
-    found, room = [], MEMORY // 4 + MEMORY_EACH * len(content)
-    for name in names:
-        data = bytes(next(iter(reader.attachments[name]), b""))
-        room -= len(data)
-        if room < 0:
-            raise Refused(TOO_DEAR)
-        found.append((name, data))
-    return found
+    document = pypdfium2.PdfDocument(content)
+    try:
+        if pypdfium2.raw.FPDF_GetSecurityHandlerRevision(document) >= 0:
+            raise Refused("it is encrypted")
+        count = document.count_attachments()
+        if count > MOST_ATTACHED:
+            raise Refused(f"it carries more than {MOST_ATTACHED} files")
+        found, room = [], MEMORY // 4 + MEMORY_EACH * len(content)
+        for number in range(count):
+            attachment = document.get_attachment(number)
+            data = bytes(attachment.get_data())
+            room -= len(data)
+            if room < 0:
+                raise Refused(TOO_DEAR)
+            found.append((attachment.get_name(), data))
+        return found
+    finally:
+        document.close()
 
 
 def page_texts(content: bytes) -> list[str]:

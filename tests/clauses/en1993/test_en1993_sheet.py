@@ -322,7 +322,7 @@ def test_an_audit_holds_the_chosen_section_against_its_family(tmp_path, live):
     assert (where, theirs[:4]) == ("job file, section area", f"{settled.beams['G1'].beam.section.area}"[:4])
     for tried in ([], None, [7], {"designation": "IPE 80"}):
         ((where, says, theirs),) = audited(
-            tmp_path, settled, asked, lambda section: section.update(tried=tried)
+            tmp_path, settled, asked, lambda section, tried=tried: section.update(tried=tried)
         )
         assert (where, theirs) == (f"{place} IPE", "IPE 80")
         assert says == "the sections tried are not those passed over"
