@@ -18,7 +18,7 @@ from calcpack.notebook.fill import FilledNotebook
 
 CELL_SECONDS = 300
 # Loaded while the kernel waits, forgotten by the reset between two notebooks but still in memory.
-WARM_UP = "import calcpack.notebook, calcpack.equivalent, calcpack.figures"
+WARM_UP = "import calcpack.notebook.work, calcpack.equivalent, calcpack.figures"
 _KEYED = re.compile(r"((?:design|basis)\.[a-zA-Z0-9_.]+): (.*)")
 RESET = "get_ipython().reset(new_session=True, aggressive=False)"
 

@@ -32,21 +32,11 @@ from calcpack.job.model import (
     Section,
     Submission,
 )
+from calcpack.notebook.templates import TemplateStamp
 from calcpack.notebook.tributary import Tributary, tributaries
 from calcpack.statics import Load
 
 PROGRAM = f"calcpack {calcpack.__version__}"
-
-
-class TemplateStamp(Frozen):
-    """Which template made a sheet."""
-
-    name: str
-    version: str
-    sha256: str
-    title: str
-    assumptions: tuple[str, ...] = ()
-    not_covered: tuple[str, ...] = ()
 
 
 class BeamInput(Frozen):

@@ -17,10 +17,20 @@ from calcpack.job.errors import CalcpackError, Problem, nearest
 from calcpack.job.house import house_folder
 from calcpack.job.model import DataFile, Frozen
 from calcpack.job.units import parse_quantity
-from calcpack.notebook.parameters import TemplateStamp
 
 NOTEBOOK = "notebook.ipynb"
 SETTINGS = "template.toml"
+
+
+class TemplateStamp(Frozen):
+    """Which template made a sheet."""
+
+    name: str
+    version: str
+    sha256: str
+    title: str
+    assumptions: tuple[str, ...] = ()
+    not_covered: tuple[str, ...] = ()
 
 
 class Parameter(Frozen):

@@ -90,7 +90,7 @@ def loft(tmp_path_factory) -> Path:
 
     home = tmp_path_factory.mktemp("loft")
     (home / "job.toml").write_text(JOB, encoding="utf-8")
-    build_job(home / "job.toml", home / "out", formats=frozenset({"notebook", "pdf"}))
+    build_job(home / "job.toml", home / "out", formats=frozenset({"html", "notebook", "pdf"}))
     return home / "out"
 
 

@@ -144,8 +144,9 @@ def costs(loft, tmp_path_factory):
     home = tmp_path_factory.mktemp("hostile")
     record = (loft / "sheets" / "B1.json").read_bytes()
     notebook = json.loads((loft / "sheets" / "B1.ipynb").read_bytes())
+    page = (loft / "sheets" / "B1.html").read_bytes()
     targets = {}
-    for kind, make in {**RECORDS, **HEAVY, **NOTEBOOKS, **PDFS}.items():
+    for kind, make in {**RECORDS, **HEAVY, **NOTEBOOKS, **PDFS, **SCREENS}.items():
         folder = home / str(len(targets))
         folder.mkdir()
         if kind in PDFS:
@@ -153,6 +154,10 @@ def costs(loft, tmp_path_factory):
             targets[kind].write_bytes(make())
             continue
         targets[kind] = folder / "B1.json"
+        if kind in SCREENS:
+            targets[kind].write_bytes(record)
+            targets[kind].with_suffix(".html").write_bytes(make(page))
+            continue
         made = make(notebook if kind in NOTEBOOKS else json.loads(record))
         content = (
             made if isinstance(made, bytes) else as_bytes(made) if kind in NOTEBOOKS else canonical(made)
@@ -270,6 +275,37 @@ NOTEBOOKS = {
 @pytest.mark.parametrize("kind", NOTEBOOKS)
 def test_a_notebook_made_to_cost(costs, kind):
     assert "B1.ipynb" in bounded(costs, kind)
+
+
+# ------------------------------------------------------------------ pages for the screen
+
+
+def swamped(piece):
+    """A page with four million letters more."""
+    return lambda page: page.replace(b"</body>", piece * (4_000_000 // len(piece)) + b"</body>")
+
+
+SCREENS = {
+    "no text": lambda page: b"\xff" + page,
+    "a very large page": lambda page: page + b" " * 21_000_000,
+    **{
+        f"page full of {piece.decode()!r}": swamped(piece)
+        for piece in (
+            b"<", b"<div ", b'<div class="line take" id="line-1.01">\n', b" on", b" onclick=", b'"', b"<b",
+            b"&#x10ffff;", b"</div>\n", b"<!", b"\n", b'<div class="main">',
+        )
+    },
+}  # fmt: skip
+
+
+@pytest.mark.parametrize("kind", SCREENS)
+def test_a_page_for_the_screen_made_to_cost(costs, kind):
+    if kind in ("no text", "a very large page"):
+        assert "B1.html" in bounded(costs, kind)
+    else:  # what stands beside the lines need not be wrong
+        found = costs[kind][0]
+        assert found in (0, 1)
+        assert ("B1.html" in bounded(costs, kind, status=found)) == bool(found)
 
 
 # ------------------------------------------------------------------ PDFs

@@ -17,6 +17,7 @@ from calcpack.record.auditing.units import printed_unit, unit
 
 MOST_DIFFERENCES = 200
 _GROUP = "second copy"
+_PLAIN = (str, float, int, bool, type(None))
 _TERM = re.compile(
     r"(?P<whole>[0-9]+)(?:\.(?P<part>[0-9]+))?"
     r"(?:\s*(?:\\times|×)\s*10(?:\^\{(?P<power>-?[0-9]+)\}|(?P<raised>⁻?[⁰¹²³⁴⁵⁶⁷⁸⁹]+)))?"
@@ -98,6 +99,8 @@ def differences(one: object, other: object, path: str) -> Iterator[tuple[str, st
     >>> list(differences({"a": [1, 2]}, {"a": [1, 3]}, ""))
     [('a[1]', '2', '3')]
     """
+    if type(one) is type(other) and type(one) in _PLAIN and one == other:
+        return
     if isinstance(one, Mapping) and isinstance(other, Mapping):
         for key in dict.fromkeys((*one, *other)):
             inner = f"{path}.{key}" if path else str(key)

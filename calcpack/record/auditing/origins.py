@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import bisect
 import re
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Iterator, Sequence
 from itertools import pairwise
 
 from calcpack.record.auditing.findings import Finding, Verdict, good, wrong
@@ -23,15 +23,16 @@ _EQUIVALENT = re.compile(r"w_eq,([gqrs])([0-9]*)")
 
 
 def numbers(data: object) -> Iterator[float]:
-    """Every number in nested data."""
-    if isinstance(data, Mapping):
-        for each in data.values():
+    """Every number in nested plain data."""
+    kind = type(data)
+    if kind is dict:
+        for each in data.values():  # type: ignore[attr-defined]
             yield from numbers(each)
-    elif isinstance(data, Sequence) and not isinstance(data, str):
-        for each in data:
+    elif kind is list or kind is tuple:
+        for each in data:  # type: ignore[attr-defined]
             yield from numbers(each)
-    elif isinstance(data, int | float) and not isinstance(data, bool):
-        yield float(data)
+    elif kind is float or kind is int:
+        yield float(data)  # type: ignore[arg-type]
 
 
 class _Pools:

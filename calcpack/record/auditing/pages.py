@@ -34,6 +34,8 @@ def sheet_pages(pages: Sequence[str]) -> dict[str, tuple[str, ...]]:
 
 def upright(text: str) -> str:
     """With plain letters: how a PDF slants and raises them says nothing."""
+    if text.isascii():
+        return text
     return unicodedata.normalize("NFKC", text.replace("·", "\ue000")).replace("\ue000", "·")
 
 

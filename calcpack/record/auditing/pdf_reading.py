@@ -61,7 +61,12 @@ def attached_files(content: bytes) -> list[tuple[str, bytes]]:
         It is no PDF, is encrypted, or carries too much.
     """
     _see_whole(content)
-    document = pypdfium2.PdfDocument(content)
+    try:
+        document = pypdfium2.PdfDocument(content)
+    except pypdfium2.PdfiumError as error:
+        if error.err_code == pypdfium2.raw.FPDF_ERR_PASSWORD:
+            raise Refused("it is encrypted") from None
+        raise
     try:
         if pypdfium2.raw.FPDF_GetSecurityHandlerRevision(document) >= 0:
             raise Refused("it is encrypted")

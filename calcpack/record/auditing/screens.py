@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import html
+import itertools
 import re
 from collections.abc import Iterator
 
@@ -11,22 +12,22 @@ from calcpack.record.auditing.findings import Finding, Verdict, good, wrong
 from calcpack.record.auditing.pages import bare, shows_value, upright
 from calcpack.record.auditing.reading import Record, RecordLine
 
-LARGEST_SCREEN = 50_000_000  # bytes
+LARGEST_SCREEN = 20_000_000  # bytes
+MOST_LINES = 20_000
+_MOST_LIKE, _LONGEST_TAG = 5_000, 20_000  # words like an attribute that are looked at; letters of a tag
 _GROUP = "pages"
 _LINE = re.compile(r'<div class="line [a-z ]{1,40}" id="line-([0-9]{1,3}\.[0-9]{2,3})">\n')
 _PART = re.compile(r'<div class="(no|main|notes)">')
 _END = "</div>\n</div>"
 _TAG = re.compile(r"<[^<>]*>")
-_OPENING = re.compile(r"<[^<>]*>")
-_NAME = re.compile(r"<(/?[^\s<>/]*)")
-_QUOTED = re.compile(r'="[^"]*"')
-_BARE = re.compile(r"['=]|\son[a-z]")
 # What could hide a line, show another in its place or do something; no sheet has any of it.
 _FOREIGN = re.compile(
-    "/?(?:script|iframe|frame|frameset|object|embed|link|base|form|input|button|select|textarea|template|"
-    "noscript|foreignobject|portal|dialog|details|audio|video|canvas|animate|set|style|[!?].*)"
+    "<(?:[!?]|/?(?:script|iframe|frame|frameset|object|embed|link|base|form|input|button|select|textarea|template|"
+    "noscript|foreignobject|portal|dialog|details|audio|video|canvas|animate|set|style)(?![a-z]))"
 )
-_LEADS = ("javascript:", "vbscript:", "data:text", 'http-equiv="refresh', "@import")
+# The same of attributes, which words of a sheet may be like.
+_ACTING = re.compile(r"on[a-z]{1,30}\s*=")
+_LEADING = ('="javascript:', '="vbscript:', '="data:text', '="refresh', "='", "= '")
 
 
 def audit_screen(record: Record, content: bytes | None, name: str) -> Iterator[Finding]:
@@ -79,20 +80,25 @@ def _plain(page: str, name: str) -> Finding:
 
 def _strange(part: str) -> Iterator[str]:
     """What of a page's text no sheet has."""
-    names = {each.lower() for each in _NAME.findall(part)}
-    yield from sorted(each for each in names if _FOREIGN.fullmatch(each))
-    tags = "".join(_OPENING.findall(part)).lower()
-    yield from (each for each in _LEADS if each in tags)
-    if found := _BARE.search(_QUOTED.sub("", tags)):  # an attribute outside double quotes, or one that acts
-        yield found[0]
+    low = part.lower()
+    yield from (found[0] for found in _FOREIGN.finditer(low))
+    yield from (each for each in _LEADING if each in low)
+    for found in itertools.islice(_ACTING.finditer(low), _MOST_LIKE):
+        at = found.start()
+        tag = low.rfind("<", max(0, at - _LONGEST_TAG), at)
+        begun = tag >= 0 and low.find(">", tag, at) < 0
+        if begun and low[at - 1] in " \t\n\f\r/\"'" and not low.count('"', tag, at) % 2:
+            yield found[0]
 
 
 def _lines(page: str) -> dict[str, list[str]]:
     """The marked-up text of each line by its number; of a line that stands there twice, both."""
     found: dict[str, list[str]] = {}
-    for begin in _LINE.finditer(page):
-        end = page.find(_END, begin.end())
-        found.setdefault(begin[1], []).append(page[begin.end() : end if end >= 0 else len(page)])
+    begins = list(itertools.islice(_LINE.finditer(page), MOST_LINES))
+    for begin, following in itertools.zip_longest(begins, begins[1:]):
+        last = following.start() if following else len(page)
+        end = page.find(_END, begin.end(), last)
+        found.setdefault(begin[1], []).append(page[begin.end() : end if end >= 0 else last])
     return found
 
 
@@ -113,7 +119,11 @@ def _shown_in(line: RecordLine, shown: list[str], name: str) -> Finding:
     main = parts.get("main", "")
     if bare(parts.get("no", "")) != line.no or not bare(main).startswith(bare(line.says)):
         return wrong(_GROUP, place, "the page shows this line with other words", says=line.says)
-    if shows_value(line, [upright(main)]):
+    if line.kind == "require":
+        right = shows_value(line, [upright(main)])
+    else:  # what follows the last sign of equality
+        right = bare(main).rpartition("=")[2] == bare(line.shown)
+    if right:
         return Finding(_GROUP, place, line.says, line.shown)
     remark = "the page shows this line with another value"
     return Finding(_GROUP, place, line.says, line.shown, verdict=Verdict.WRONG, remark=remark)
