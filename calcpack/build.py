@@ -125,6 +125,7 @@ def build_job(
         front.append(answers)
     pack = replace(_pack(framed, inputs, contents), front=tuple(front))
     nodes = {content.mark: node for content, node in contents}
+    del contents, notebooks  # each node goes when its sheet has been written: they are most of the memory
     files = _files(framed, pack, nodes, formats, follow, kept_sheets)
     kept = folder.write(files, keep=bool(only))
     main = next((ending for name, ending in _ENDINGS if name in formats), "json")
@@ -284,7 +285,7 @@ def _inputs_attached(job: Job) -> tuple[Attached, ...]:
 def _files(
     framed: Frame,
     pack: Pack,
-    nodes: Mapping[str, Any],
+    nodes: dict[str, Any],
     formats: frozenset[str],
     follow: Follow,
     kept: Mapping[str, tuple[SheetContent, Any]],
@@ -342,14 +343,14 @@ def _files(
 
 def _numbered(
     pack: Pack,
-    nodes: Mapping[str, Any],
+    nodes: dict[str, Any],
     numbers: Mapping[str, SheetNumbers],
     kept: Mapping[str, tuple[SheetContent, Any]],
 ) -> Pack:
-    """The pack with its sheets numbered, in their notebooks too."""
+    """The pack with its sheets numbered, in their notebooks too; ``nodes`` are used up."""
 
     def with_number(content: SheetContent) -> SheetContent:
-        node, number = nodes[content.mark], numbers[content.mark]
+        node, number = nodes.pop(content.mark), numbers[content.mark]
         if content.mark in kept and kept[content.mark][0].numbers == number:
             content, node = kept[content.mark]
         node.metadata["calcpack"]["sheets"] = number.model_dump()

@@ -16,6 +16,7 @@ import pytest
 
 from calcpack.job.errors import CalcpackError
 from calcpack.record.audit import audit_sheet, audit_target
+from calcpack.record.auditing import confined
 from calcpack.record.auditing.confined import PdfReading
 from calcpack.record.auditing.files import find_target
 from calcpack.record.auditing.reading import canonical
@@ -457,3 +458,14 @@ def test_devices_and_pipes_are_no_files(tmp_path):
         find_target(tmp_path / "B1.json")
     with pytest.raises(CalcpackError, match="it is no file"):
         find_target(tmp_path)
+
+
+def test_many_pages_are_read_in_parts(loft, monkeypatch):
+    content = (loft / "pack.pdf").read_bytes()
+    whole = confined.READING.texts(content, "pack.pdf")
+    monkeypatch.setattr(confined, "_LARGE", 0)
+    for processors in (1, 2, 5):
+        monkeypatch.setattr(os, "cpu_count", lambda processors=processors: processors)
+        assert confined.texts_of_many_pages(content, "pack.pdf") == whole
+    with pytest.raises(CalcpackError, match=r"x\.pdf: it is no readable PDF"):
+        confined.texts_of_many_pages(b"%PDF-1.7 nothing", "x.pdf")

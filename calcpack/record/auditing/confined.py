@@ -8,11 +8,13 @@ import json
 import os
 import subprocess
 import sys
+from concurrent.futures import ThreadPoolExecutor
 from typing import IO
 
 from calcpack.job.errors import CalcpackError
 
 TOO_DEAR = "it takes more time or memory to read than any pack of its size"
+_LARGE, _MOST_CHILDREN = 4_000_000, 8  # bytes; children at once
 _MODULE = "calcpack.record.auditing.pdf_reading"
 
 
@@ -23,15 +25,15 @@ class PdfReading:
         self._child: subprocess.Popen[bytes] | None = None
         self._owner = 0
 
-    def texts(self, content: bytes, name: str) -> tuple[str, ...]:
-        """The visible text of a PDF, page by page.
+    def texts(self, content: bytes, name: str, part: int = 0, of: int = 1) -> tuple[str, ...]:
+        """The visible text of a PDF, page by page, or of one of several equal parts of its pages.
 
         Raises
         ------
         CalcpackError
             It is no readable PDF, or would cost more than any pack of its size.
         """
-        return tuple(part.decode("utf-8") for _, part in self._ask("texts", content, name))
+        return tuple(part.decode("utf-8") for _, part in self._ask("texts", content, name, part, of))
 
     def attached(self, content: bytes, name: str) -> dict[str, bytes]:
         """The files that a PDF carries inside, by name.
@@ -43,10 +45,13 @@ class PdfReading:
         """
         return dict(self._ask("attached", content, name))
 
-    def _ask(self, ask: str, content: bytes, name: str) -> list[tuple[str, bytes]]:
+    def _ask(
+        self, ask: str, content: bytes, name: str, part: int = 0, of: int = 1
+    ) -> list[tuple[str, bytes]]:
         questions, answers = self._pipes()
+        question = {"ask": ask, "size": len(content), "part": part, "of": of}
         try:
-            questions.write(json.dumps({"ask": ask, "size": len(content)}).encode() + b"\n")
+            questions.write(json.dumps(question).encode() + b"\n")
             questions.write(content)
             questions.flush()
             head = json.loads(answers.readline())
@@ -84,6 +89,29 @@ class PdfReading:
             if pipe is not None:
                 with contextlib.suppress(OSError):
                     pipe.close()
+
+
+def texts_of_many_pages(content: bytes, name: str) -> tuple[str, ...]:
+    """The visible text of a large PDF, page by page, read by as many children as there are processors.
+
+    Raises
+    ------
+    CalcpackError
+        As of :meth:`PdfReading.texts`.
+    """
+    of = min(_MOST_CHILDREN, os.cpu_count() or 1)
+    if of == 1 or len(content) < _LARGE:
+        return READING.texts(content, name)
+    children = [READING, *(PdfReading() for _ in range(of - 1))]
+    try:
+        with ThreadPoolExecutor(of) as threads:
+            asked = [
+                threads.submit(child.texts, content, name, part, of) for part, child in enumerate(children)
+            ]
+            return tuple(text for each in asked for text in each.result())
+    finally:
+        for child in children[1:]:
+            child.close()
 
 
 READING = PdfReading()

@@ -9,7 +9,7 @@ from pathlib import Path, PurePosixPath
 from typing import Any
 
 from calcpack.job.errors import CalcpackError
-from calcpack.record.auditing.confined import READING
+from calcpack.record.auditing.confined import READING, texts_of_many_pages
 from calcpack.record.auditing.pages import sheet_pages
 from calcpack.record.auditing.reading import read_json
 
@@ -285,7 +285,7 @@ def _pdf(path: Path, records: Path | None) -> Target:
             file=str(path),
             remedy="name the folder that holds the records with --record",
         )
-    pages = READING.texts(content, path.name)
+    pages = texts_of_many_pages(content, path.name)
     by_mark = sheet_pages(pages)
     return Target(
         name=str(path),

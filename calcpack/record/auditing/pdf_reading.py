@@ -4,7 +4,8 @@ Whoever sends a PDF decides what its streams grow into. So reading it is left to
 memory and time by the size of the file; where that child ends, so does nothing else. Nothing of a PDF is run.
 
 ``python -m calcpack.record.auditing.pdf_reading`` answers, until its input ends, questions of a line of JSON
-and the PDF after it: ``{"ask": "texts" | "attached", "size": bytes}``. The answer is a line of JSON,
+and the PDF after it: ``{"ask": "texts" | "attached", "size": bytes, "part": 0, "of": 1}``, where texts may be
+those of one of several equal parts of the pages. The answer is a line of JSON,
 ``{"names": [...], "sizes": [...]}`` with what is named after it, or ``{"fault": words}``.
 """
 
@@ -13,8 +14,8 @@ from __future__ import annotations
 import json
 import re
 import sys
-from collections.abc import Iterable
-from typing import BinaryIO
+from collections.abc import Iterable, Mapping
+from typing import Any, BinaryIO
 
 import pypdfium2  # type: ignore[import-untyped]
 
@@ -86,8 +87,8 @@ def attached_files(content: bytes) -> list[tuple[str, bytes]]:
         document.close()
 
 
-def page_texts(content: bytes) -> list[str]:
-    """The visible text of a PDF, page by page.
+def page_texts(content: bytes, part: int = 0, of: int = 1) -> list[str]:
+    """The visible text of a PDF, page by page, or of one of several equal parts of it.
 
     Raises
     ------
@@ -97,10 +98,11 @@ def page_texts(content: bytes) -> list[str]:
     _see_whole(content)
     document = pypdfium2.PdfDocument(content)
     try:
-        if len(document) > MOST_PAGES:
+        count = len(document)
+        if count > MOST_PAGES:
             raise Refused(f"it has more than {MOST_PAGES} pages")
         texts = []
-        for number in range(len(document)):
+        for number in range(count * part // of, count * (part + 1) // of):
             page = document[number]
             text_page = page.get_textpage()
             texts.append(text_page.get_text_range().replace("\r\n", "\n"))
@@ -136,11 +138,12 @@ def _mapped() -> int:
         return 1_000_000_000
 
 
-def answer(ask: str, content: bytes) -> tuple[dict[str, object], Iterable[bytes]]:
+def answer(asked: Mapping[str, Any], content: bytes) -> tuple[dict[str, object], Iterable[bytes]]:
     """The answer to a question: its line, and what comes after it."""
     try:
-        if ask == "texts":
-            parts = [text.encode("utf-8", "replace") for text in page_texts(content)]
+        if asked["ask"] == "texts":
+            texts = page_texts(content, asked["part"], asked["of"])
+            parts = [text.encode("utf-8", "replace") for text in texts]
             names = [""] * len(parts)
         else:
             attached = attached_files(content)
@@ -160,7 +163,7 @@ def serve(questions: BinaryIO, answers: BinaryIO) -> None:
         asked = json.loads(line)
         content = questions.read(asked["size"])
         _confine(len(content))
-        head, parts = answer(asked["ask"], content)
+        head, parts = answer(asked, content)
         answers.write(json.dumps(head).encode() + b"\n")
         for part in parts:
             answers.write(part)
