@@ -8,6 +8,7 @@ from numpy.typing import NDArray
 Floats = NDArray[np.float64]
 _STEPS = 60
 _CLOSE = 4e-16
+_ROUNDING = 2e-15  # of the sum of a polynomial's coefficients by size
 
 
 def value(coefficients: Floats, t: Floats) -> Floats:
@@ -59,6 +60,11 @@ def zeros(coefficients: Floats) -> Floats:
     ends = value(coefficients[..., None, :], knots)
     crosses = ends[..., :-1] * ends[..., 1:] < 0
     found = np.ones(crosses.shape)
+    # What is nothing but rounding at a turning point changes sign there.
+    nothing = np.abs(ends) <= _ROUNDING * np.abs(coefficients).sum(axis=-1)[..., None]
+    found = np.where(crosses & nothing[..., 1:], knots[..., 1:], found)
+    found = np.where(crosses & nothing[..., :-1], knots[..., :-1], found)
+    crosses &= ~(nothing[..., 1:] | nothing[..., :-1])
     if crosses.any():
         place = np.nonzero(crosses)
         found[place] = _crossings(
