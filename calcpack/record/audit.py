@@ -13,7 +13,7 @@ from typing import Any
 
 import calcpack
 from calcpack.job.errors import CalcpackError
-from calcpack.record.auditing.copies import audit_copies
+from calcpack.record.auditing.copies import audit_copies, comparisons
 from calcpack.record.auditing.decisive import decisive_line
 from calcpack.record.auditing.files import SheetFiles, Target, find_target
 from calcpack.record.auditing.findings import Audit, Finding, SheetAudit, unchecked
@@ -130,7 +130,8 @@ def audit_sheet(
     opened = open_sheet(files)
     try:
         audit, digest = _audited_sheet(opened, files.page_texts(), digests, facts, job_folder)
-        seen = audit_screen(opened.record, files.screen_bytes(), files.record_name.replace(".json", ".html"))
+        name = files.record_name.removesuffix(".json") + ".html"
+        seen = audit_screen(opened.record, files.screen_bytes(), name, comparisons(opened.notebook))
         return replace(audit, findings=(*audit.findings, *seen)), digest
     except _UNLIKE_A_SHEET as error:
         # Whoever made the files decides what is in them: where they are like no sheet's, that is their fault.
@@ -156,7 +157,7 @@ def _audited_sheet(
         findings += audit_sources(given)
     findings += audit_job(given, facts)
     findings += audit_copies(record, notebook, lines)
-    findings += audit_pages(record, pages)
+    findings += audit_pages(record, pages, comparisons(notebook))
     earlier = facts is not None and left_at_earlier_revision(record.data["job"], facts["header"])
     findings += audit_provenance(record, notebook, digests, job_folder, earlier)
     stated = str(notebook.metadata.get("input", "")) if notebook is not None else ""

@@ -2,17 +2,24 @@
 
 from __future__ import annotations
 
+import json
 import random
 import re
+from dataclasses import replace
 
 import pytest
 
 from calcpack.job.errors import CalcpackError
+from calcpack.record.audit import audit_sheet
+from calcpack.record.auditing.copies import comparisons
+from calcpack.record.auditing.files import find_target
 from calcpack.record.auditing.findings import Verdict
+from calcpack.record.auditing.given import read_notebook
 from calcpack.record.auditing.reading import read_record
 from calcpack.record.auditing.screens import audit_screen
 
 DIGITS = 200
+NOTHING: dict[str, str] = {}
 
 
 @pytest.fixture(scope="module")
@@ -22,9 +29,9 @@ def sheet(loft):
     return read_record(path.read_bytes(), path.name), path.with_suffix(".html").read_text(encoding="utf-8")
 
 
-def wrong(record, page: str | bytes) -> list[str]:
+def wrong(record, page: str | bytes, compared=NOTHING) -> list[str]:
     content = page if isinstance(page, bytes) else page.encode()
-    found = list(audit_screen(record, content, "B1.html"))
+    found = list(audit_screen(record, content, "B1.html", compared))
     assert len(found) >= len(record.lines)
     return [f"{each.place}: {each.remark}" for each in found if each.verdict is Verdict.WRONG]
 
@@ -60,6 +67,77 @@ def test_any_digit_of_a_printed_value_is_found(sheet):
         assert found[:1] == [f"B1.html, line {line}: the page shows this line with another value"], page[
             place - 20 : place + 9
         ]
+
+
+@pytest.fixture(scope="module")
+def steel(loft):
+    """A sheet with requirements: its files, its record, its page, what its notebook compares."""
+    (files,) = (each for each in find_target(loft).sheets if each.record_name == "J1.json")
+    notebook = read_notebook(files.notebook_bytes(), "J1.ipynb")
+    page = files.screen_bytes().decode("utf-8")
+    return files, read_record(files.record, "J1.json"), page, comparisons(notebook)
+
+
+def compared_digits(text: str, sides: str) -> list[int]:
+    """Places of the digits of what is compared, where it stands last in a line's text."""
+    text = re.sub("<[^>]*>", lambda tag: " " * len(tag[0]), text)
+    found, at = [], len(text)
+    for letter in reversed(sides):
+        if letter.isdigit() or letter == ".":
+            at = text.rindex(letter, 0, at)
+            found += [at] if letter.isdigit() else []
+    return found
+
+
+def test_any_digit_that_a_requirement_compares_is_found_on_the_screen(steel):
+    _, record, page, sides = steel
+    assert wrong(record, page, sides) == []
+    required = [line.no for line in record.lines if line.kind == "require"]
+    assert required == list(sides)
+    count = 0
+    for number in required:
+        start = page.index(f'id="line-{number}"')
+        text = page[start : page.index('<div class="notes">', start)]
+        for place in compared_digits(text, re.sub("[⁰¹²³⁴⁵⁶⁷⁸⁹]", "", sides[number])):
+            changed = text[:place] + str((int(text[place]) + 1) % 10) + text[place + 1 :]
+            assert wrong(record, page.replace(text, changed), sides) == [
+                f"B1.html, line {number}: the page shows this line with another value"
+            ]
+            count += 1
+    assert count > 40
+
+
+def test_any_digit_that_a_requirement_compares_is_found_in_the_notebook(steel):
+    files, record, _, _ = steel
+    content = files.notebook_bytes()
+    node = json.loads(content)
+    rows = [block["rows"][-1] for block in blocks_of(node) if block.get("kind") == "require"]
+    assert len(rows) == sum(line.kind == "require" for line in record.lines)
+    count = 0
+    for row in rows:
+        for side, text in enumerate(row):
+            for place in [
+                match.start() for match in re.finditer("[0-9](?![^{]*})|[0-9](?=[^{}]*\\xa0)", text)
+            ]:
+                row[side] = text[:place] + str((int(text[place]) + 1) % 10) + text[place + 1 :]
+                changed = replace(files, notebook=json.dumps(node).encode(), pdf=None, screen=None)
+                audit, _ = audit_sheet(changed)
+                assert [each for each in audit.wrong if each.group == "second copy"], row[side]
+                count += 1
+            row[side] = text
+    assert count > 40
+
+
+def blocks_of(node):
+    """Every block a notebook shows."""
+    if isinstance(node, dict):
+        if "rows" in node and "no" in node:
+            yield node
+        for each in node.values():
+            yield from blocks_of(each)
+    elif isinstance(node, list):
+        for each in node:
+            yield from blocks_of(each)
 
 
 def test_lines_left_out_doubled_invented_or_reworded(sheet):

@@ -11,9 +11,9 @@ from calcpack.record.auditing.findings import Finding, Verdict, good, unchecked,
 from calcpack.record.auditing.formulas import Part
 from calcpack.record.auditing.given import Notebook
 from calcpack.record.auditing.lines import WorkedLine
-from calcpack.record.auditing.printed import rounded_to, twelve_digits
+from calcpack.record.auditing.printed import rounded_to, rounding_fault, twelve_digits
 from calcpack.record.auditing.reading import Record, canonical
-from calcpack.record.auditing.units import printed_unit, unit
+from calcpack.record.auditing.units import Unit, printed_unit, unit
 
 MOST_DIFFERENCES = 200
 _GROUP = "second copy"
@@ -23,6 +23,12 @@ _TERM = re.compile(
     r"(?:\s*(?:\\times|×)\s*10(?:\^\{(?P<power>-?[0-9]+)\}|(?P<raised>⁻?[⁰¹²³⁴⁵⁶⁷⁸⁹]+)))?"
     r"(?:\\,)?(?:\\text\{(?P<unit>[^}]{1,40})\})?"
 )
+_SIGNS = {"\\le": "≤", "\\ge": "≥", "<": "<", ">": ">", "=": "="}
+_SIGNS_OF = {"le": "≤", "ge": "≥", "lt": "<", "gt": ">", "eq": "="}
+_RELATION = re.compile(r"(\\le(?![a-z])|\\ge(?![a-z])|[<>=])")
+_POWER = re.compile(r"\s*\\times\s*10\^\{(-?[0-9]{1,2})\}")
+_SETTING = re.compile(r"\\text(?:bf)?\{([^{}]*)\}|\\,")
+_RAISE = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
 _RAISED = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻", "0123456789-")
 
 
@@ -197,7 +203,53 @@ def _block_fault(line: WorkedLine, block: Mapping[str, Any]) -> str:
     texts = ["".join(map(str, row)) for row in rows]
     if record.kind != "require" and f"\\textbf{{{record.shown}}}" not in "".join(texts):
         return f"the notebook does not show it as {record.shown}"
+    if record.kind == "require" and (fault := _sides_fault(line, compared(block))):
+        return fault
     return _formula_fault(line, " ".join(texts)) if record.kind != "take" and not block.get("like") else ""
+
+
+def compared(block: Mapping[str, Any]) -> tuple[str, str, str] | None:
+    """What a requirement's last row sets against each other: left, sign, right; None where there is no such.
+
+    Examples
+    --------
+    >>> compared({"rows": [["137.3\\\\,\\\\text{kN·m}", "\\\\le \\\\textbf{1.2 × 10³ kN·m}"]]})
+    ('137.3 kN·m', '≤', '1.2 × 10³ kN·m')
+    """
+    rows = block.get("rows")
+    if not isinstance(rows, list) or not rows or not isinstance(rows[-1], list):
+        return None
+    left, sign, right = ([*_RELATION.split("".join(map(str, rows[-1]))), "", ""])[:3]
+    if not sign:
+        return None
+    return _printed(left), _SIGNS[sign], _printed(right)
+
+
+def comparisons(notebook: Notebook | None) -> dict[str, str]:
+    """What the notebook shows each requirement to compare, by its line's number: "25.0 mm ≤ 30.0 mm"."""
+    if notebook is None:
+        return {}
+    found = {no: compared(block) for no, block in notebook.lines.items() if block.get("kind") == "require"}
+    return {no: " ".join(sides) for no, sides in found.items() if sides is not None}
+
+
+def _printed(latex: str) -> str:
+    """A printed value without what sets it."""
+    text = _POWER.sub(lambda power: " × 10" + power[1].translate(_RAISE), latex.strip())
+    return _SETTING.sub(lambda part: part[1] or (" " if part[0] == "\\," else ""), text).strip()
+
+
+def _sides_fault(line: WorkedLine, shown: tuple[str, str, str] | None) -> str:
+    """What a requirement compares is what is shown, rounded as it is shown."""
+    if line.sides is None:
+        return ""
+    if shown is None or shown[1] != _SIGNS_OF.get(line.formula.op):
+        return "what it compares is not shown"
+    for side, text in zip(line.sides, (shown[0], shown[2]), strict=True):
+        base = Unit(Fraction(1), side.force, side.length)  # type: ignore[arg-type]
+        if fault := rounding_fault(float(side.size), base, text):
+            return fault
+    return ""
 
 
 def _likeness_fault(

@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 import unicodedata
 from collections.abc import Mapping, Sequence
+from types import MappingProxyType
 
 from calcpack.record.auditing.findings import Finding, Verdict, unchecked, wrong
 from calcpack.record.auditing.reading import Record, RecordLine
@@ -12,6 +13,7 @@ from calcpack.record.auditing.reading import Record, RecordLine
 _FOOT = re.compile(r"^(?P<mark>.{1,200}) page (?P<page>[0-9]+) of [0-9]+$", re.M)
 _BEGINS = re.compile(r"(?m)^([0-9]{1,3}\.[0-9]{2,3})(?=\s)")
 _SPACE = re.compile(r"\s+")
+_NOTHING: Mapping[str, str] = MappingProxyType({})
 _WORDS = 12  # letters of a line's words that tell it from a number
 
 
@@ -44,13 +46,17 @@ def bare(text: str) -> str:
     return _SPACE.sub("", upright(text))
 
 
-def audit_pages(record: Record, pages: Sequence[str] | None) -> tuple[Finding, ...]:
+def audit_pages(
+    record: Record, pages: Sequence[str] | None, compared: Mapping[str, str] = _NOTHING
+) -> tuple[Finding, ...]:
     """Whether the visible pages show each line with its printed value.
 
     Parameters
     ----------
     record : Record
     pages : sequence of str or None
+    compared : mapping
+        What requirements compare as a copy shows it, by line: "25.0 mm ≤ 30.0 mm".
 
     Returns
     -------
@@ -62,7 +68,7 @@ def audit_pages(record: Record, pages: Sequence[str] | None) -> tuple[Finding, .
     if not pages:
         return (wrong("pages", "PDF", "the PDF has no pages of this sheet"),)
     by_line = _parts("\n".join(_without_foot(page) for page in pages), record)
-    return tuple(_shown_on(line, by_line) for line in record.lines)
+    return tuple(_shown_on(line, by_line, compared.get(line.no, "")) for line in record.lines)
 
 
 def _without_foot(page: str) -> str:
@@ -91,24 +97,26 @@ def _parts(text: str, record: Record) -> dict[str, list[str]]:
     return found
 
 
-def shows_value(line: RecordLine, parts: Sequence[str]) -> bool:
-    """Whether one of some texts of a line shows its printed value, or its verdict.
+def shows_value(line: RecordLine, parts: Sequence[str], compared: str) -> bool:
+    """Whether one of some texts of a line shows its value; of a requirement what it compares and its verdict.
 
     Parameters
     ----------
     line : RecordLine
     parts : sequence of str
         With plain letters, as :func:`upright` makes them.
+    compared : str
+        What a requirement compares; "" where no copy tells.
     """
     if line.kind == "require":
-        shown, flat = bare(line.shown), [_SPACE.sub("", part) for part in parts]
+        shown, flat = bare(compared) + bare(line.shown), [_SPACE.sub("", part) for part in parts]
         return any(shown in part and ("notsatisfied" in part) == (line.passes is False) for part in flat)
     words = r"\s*".join(map(re.escape, upright(line.shown).split()))
     whole = re.compile(rf"=\s*{words}(?![0-9.])")
     return any(whole.search(part) for part in parts)
 
 
-def _shown_on(line: RecordLine, by_line: Mapping[str, Sequence[str]]) -> Finding:
+def _shown_on(line: RecordLine, by_line: Mapping[str, Sequence[str]], compared: str) -> Finding:
     parts = by_line.get(line.no, ())
     place = f"line {line.no}"
     if not parts:
@@ -119,7 +127,7 @@ def _shown_on(line: RecordLine, by_line: Mapping[str, Sequence[str]]) -> Finding
             says=line.says,
             printed=line.shown,
         )
-    if shows_value(line, parts):
+    if shows_value(line, parts, compared):
         return Finding("pages", place, line.says, line.shown)
     return Finding(
         "pages",

@@ -5,7 +5,8 @@ from __future__ import annotations
 import html
 import itertools
 import re
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
+from types import MappingProxyType
 
 from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.findings import Finding, Verdict, good, wrong
@@ -16,6 +17,7 @@ LARGEST_SCREEN = 20_000_000  # bytes
 MOST_LINES = 20_000
 _MOST_LIKE, _LONGEST_TAG = 5_000, 20_000  # words like an attribute that are looked at; letters of a tag
 _GROUP = "pages"
+_NOTHING: Mapping[str, str] = MappingProxyType({})
 _LINE = re.compile(r'<div class="line [a-z ]{1,40}" id="line-([0-9]{1,3}\.[0-9]{2,3})">\n')
 _PART = re.compile(r'<div class="(no|main|notes)">')
 _END = "</div>\n</div>"
@@ -30,7 +32,9 @@ _ACTING = re.compile(r"on[a-z]{1,30}\s*=")
 _LEADING = ('="javascript:', '="vbscript:', '="data:text', '="refresh', "='", "= '")
 
 
-def audit_screen(record: Record, content: bytes | None, name: str) -> Iterator[Finding]:
+def audit_screen(
+    record: Record, content: bytes | None, name: str, compared: Mapping[str, str] = _NOTHING
+) -> Iterator[Finding]:
     """Whether a sheet's HTML shows each line with its words and its printed value.
 
     Parameters
@@ -40,6 +44,8 @@ def audit_screen(record: Record, content: bytes | None, name: str) -> Iterator[F
         The page; None where there is none, of which nothing is said.
     name : str
         Of its file, for messages.
+    compared : mapping
+        What requirements compare as a copy shows it, by line: "25.0 mm ≤ 30.0 mm".
 
     Yields
     ------
@@ -62,7 +68,7 @@ def audit_screen(record: Record, content: bytes | None, name: str) -> Iterator[F
     yield _plain(page, name)
     shown = _lines(page)
     for line in record.lines:
-        yield _shown_in(line, shown.get(line.no, []), name)
+        yield _shown_in(line, shown.get(line.no, []), name, compared.get(line.no, ""))
     for number in sorted(set(shown) - {line.no for line in record.lines}):
         yield wrong(_GROUP, f"{name}, line {number}", "the page shows a line that the record does not have")
 
@@ -110,7 +116,7 @@ def _parts(marked_up: str) -> dict[str, str]:
     }
 
 
-def _shown_in(line: RecordLine, shown: list[str], name: str) -> Finding:
+def _shown_in(line: RecordLine, shown: list[str], name: str, compared: str) -> Finding:
     place = f"{name}, line {line.no}"
     if len(shown) != 1:
         times = "not" if not shown else f"{len(shown)} times"
@@ -120,7 +126,7 @@ def _shown_in(line: RecordLine, shown: list[str], name: str) -> Finding:
     if bare(parts.get("no", "")) != line.no or not bare(main).startswith(bare(line.says)):
         return wrong(_GROUP, place, "the page shows this line with other words", says=line.says)
     if line.kind == "require":
-        right = shows_value(line, [upright(main)])
+        right = shows_value(line, [upright(main)], compared)
     else:  # what follows the last sign of equality
         right = bare(main).rpartition("=")[2] == bare(line.shown)
     if right:
