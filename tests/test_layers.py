@@ -11,6 +11,7 @@ ROOT = Path(calcpack.__file__).parent
 LAYERS = [
     "job",
     "files",
+    "processes",
     "statics",
     "actions",
     "framing",

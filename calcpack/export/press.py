@@ -9,7 +9,6 @@ from __future__ import annotations
 import itertools
 import multiprocessing
 import os
-import signal
 from collections.abc import Callable, Iterable, Iterator
 from concurrent.futures import ProcessPoolExecutor
 from concurrent.futures.process import BrokenProcessPool
@@ -18,6 +17,7 @@ from types import TracebackType
 
 from calcpack.export.typesetting import Setting, Typeset, typeset
 from calcpack.job.errors import CalcpackError
+from calcpack.processes import work_for_another
 
 MOST_PROCESSES = 4
 REMEMBERED = 6  # documents a process may set before another takes its place
@@ -101,9 +101,7 @@ class Press:
         context = multiprocessing.get_context("spawn")
         self._processes = [
             self._stack.enter_context(
-                ProcessPoolExecutor(
-                    1, mp_context=context, initializer=signal.signal, initargs=(signal.SIGINT, signal.SIG_IGN)
-                )
+                ProcessPoolExecutor(1, mp_context=context, initializer=work_for_another)
             )
             for _ in range(self._count)
         ]

@@ -13,6 +13,7 @@ from typing import Any
 
 import calcpack
 from calcpack.job.errors import CalcpackError
+from calcpack.processes import work_for_another
 from calcpack.record.auditing.copies import audit_copies, comparisons
 from calcpack.record.auditing.decisive import decisive_line
 from calcpack.record.auditing.files import SheetFiles, Target, find_target
@@ -254,6 +255,7 @@ def _prepare(common: _Common) -> None:
 
 def _begin(common: _Common) -> None:
     """A worker's beginning: what it has loaded stays, and what a sheet leaves is looked through seldom."""
+    work_for_another()
     gc.freeze()
     gc.set_threshold(100_000, 50, 100)
     _prepare(common)
