@@ -176,13 +176,14 @@ class Ratios(_Block):
 
 
 class Figure(_Block):
-    """A drawing in SVG, its lettering at true size at ``width_mm``."""
+    """A drawing in SVG, its lettering at true size at ``width_mm``; paper leaves out one for a ``screen``."""
 
     type: Literal["figure"]
     svg: Drawing
     alt: Words
     caption: Runs = ()
     width_mm: Annotated[float, Field(gt=0, le=2000)] = 160.0
+    screen: bool = False
 
 
 class SignoffRow(_Block):

@@ -62,7 +62,8 @@ class Paper:
         """A part's blocks, with links to its own ``lines`` and to what stands ``elsewhere`` by its label."""
         self._mathematics.learn(formulas_of(blocks))
         place = _Place(identity, lines, changed, elsewhere)
-        return [self._block(block, place) for block in blocks]
+        on_paper = (block for block in blocks if not (isinstance(block, kinds.Figure) and block.screen))
+        return [self._block(block, place) for block in on_paper]
 
     def runs(self, runs: Iterable[Run], place: _Place | None = None) -> list[list[Any]]:
         """Running text as (kind, text, ...)."""

@@ -5,6 +5,7 @@ from calcpack.figures.capacity import Capacity, Governing, capacity_figure
 from calcpack.figures.deflected import Deflection, deflected_shape
 from calcpack.figures.figure import Figure
 from calcpack.figures.free_body import equivalents_figure, free_body
+from calcpack.figures.influence import influence_figure
 from calcpack.figures.loads import load_figure
 from calcpack.figures.panel import panel_drainage
 from calcpack.figures.plan import key_plan
@@ -23,6 +24,7 @@ __all__ = [
     "deflected_shape",
     "equivalents_figure",
     "free_body",
+    "influence_figure",
     "key_plan",
     "load_figure",
     "panel_drainage",

@@ -28,6 +28,7 @@ from calcpack.record.auditing.reading import Record, read_record
 from calcpack.record.auditing.results import audit_results
 from calcpack.record.auditing.screens import audit_screen
 from calcpack.record.auditing.sources import audit_sources
+from calcpack.record.auditing.tables import audit_tables, shown_rows
 from calcpack.record.auditing.together import Digest, audit_together, digest_of
 
 Follow = Callable[[str, int, int], None]  # stage, steps done, steps in all
@@ -131,8 +132,8 @@ def audit_sheet(
     opened = open_sheet(files)
     try:
         audit, digest = _audited_sheet(opened, files.page_texts(), digests, facts, job_folder)
-        name = files.record_name.removesuffix(".json") + ".html"
-        seen = audit_screen(opened.record, files.screen_bytes(), name, comparisons(opened.notebook))
+        name, rows = files.record_name.removesuffix(".json") + ".html", shown_rows(opened.notebook)
+        seen = audit_screen(opened.record, files.screen_bytes(), name, comparisons(opened.notebook), rows)
         return replace(audit, findings=(*audit.findings, *seen)), digest
     except _UNLIKE_A_SHEET as error:
         # Whoever made the files decides what is in them: where they are like no sheet's, that is their fault.
@@ -158,6 +159,7 @@ def _audited_sheet(
         findings += audit_sources(given)
     findings += audit_job(given, facts)
     findings += audit_copies(record, notebook, lines)
+    findings += audit_tables(record, notebook, lines)
     findings += audit_pages(record, pages, comparisons(notebook))
     earlier = facts is not None and left_at_earlier_revision(record.data["job"], facts["header"])
     findings += audit_provenance(record, notebook, digests, job_folder, earlier)

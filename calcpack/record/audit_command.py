@@ -92,9 +92,10 @@ def _influences(asked: Asked, mark: str, console: Console) -> None:
     title = f"What moves line {found.no} of sheet {opened.record.mark}: {found.says}, {found.shown}"
     print_influence(title, rows, console, units)
     if asked.svg is not None:
-        from calcpack.record.audit_figure import influence_figure
+        from calcpack.figures import influence_figure
 
-        write_file(asked.svg, influence_figure(found).svg.encode("utf-8"))
+        bars = [(each.line.no, each.line.says, each.relative) for each in found.influences[:MOST_ROWS]]
+        write_file(asked.svg, influence_figure(bars, found.says).svg.encode("utf-8"))
 
 
 def _per(of: str, by: str) -> str:

@@ -119,8 +119,8 @@ def ratios(rows: Iterable[Mapping[str, Any]]) -> Block:
     }
 
 
-def figure(drawing: Drawing, caption: Runs) -> Block:
-    """A drawing, with what it shows in words."""
+def figure(drawing: Drawing, caption: Runs, screen: bool = False) -> Block:
+    """A drawing, with what it shows in words; one for the screen is left out on paper."""
     if not drawing.svg.lstrip().startswith("<svg") or not drawing.alt.strip():
         raise CalcpackError("a figure is one <svg> element, and words that say what it shows")
     return {
@@ -129,6 +129,7 @@ def figure(drawing: Drawing, caption: Runs) -> Block:
         "alt": drawing.alt,
         "caption": check_runs(caption),
         "width_mm": finite(drawing.width_mm),
+        **({"screen": True} if screen else {}),
     }
 
 

@@ -248,9 +248,9 @@ class Sheet:
         """A schedule of checks with bars: ``says, demand, resistance, ratio, passes`` of each."""
         self._add(make.ratios(rows))
 
-    def figure(self, drawing: Drawing, caption: Runs = "") -> None:
-        """A drawing, with what it shows in words."""
-        self._add(make.figure(drawing, caption))
+    def figure(self, drawing: Drawing, caption: Runs = "", *, screen: bool = False) -> None:
+        """A drawing, with what it shows in words; one for the screen is left out on paper."""
+        self._add(make.figure(drawing, caption, screen))
 
     def derivation(self, steps: Iterable[Any]) -> None:
         """Steps that lead to a formula, each with ``says``, ``rows`` of LaTeX, and ``alt``, spoken."""

@@ -11,7 +11,9 @@ from pathlib import Path
 
 import pytest
 
-from calcpack.record.audit import audit_target
+from calcpack.record.audit import audit_target, open_sheet
+from calcpack.record.audit_sensitivity import sensitivity
+from calcpack.record.auditing.files import find_target
 
 EXAMPLES = ["rope_walk", "seed_store"]
 KIP, FOOT = 4.4482216152605, 0.3048
@@ -112,6 +114,44 @@ def test_an_audit_finds_nothing_wrong(name, file, built):
     audit = audit_target(built(name) / file, processes=1)
     assert [(each.place, each.remark) for each in audit.all for each in each.wrong] == []
     assert sum(len(sheet.findings) for sheet in audit.sheets) > 3000
+
+
+@pytest.mark.parametrize("name", EXAMPLES)
+def test_what_is_drawn_to_move_the_result_is_what_the_audit_derives(name, built):
+    """Two evaluators that share no code: floats with a small step, thirty digits with a smaller one."""
+    drawn = 0
+    for files in find_target(built(name)).sheets:
+        opened = open_sheet(files)
+        shown = [block for block in figures(json.loads(files.notebook_bytes())) if block.get("screen")]
+        if opened.record.mark == "Appendix":
+            assert shown == []
+            continue
+        (block,) = shown
+        exact = sensitivity(opened.record, opened.lines)
+        rows = " ".join(block["alt"].partition("for one per cent of each value. ")[2].split()).split("; ")
+        known = {
+            " ".join(f"{each.line.says}: {each.relative:+.2f} per cent".split()) for each in exact.influences
+        }
+        assert set(rows) <= known
+        assert len(rows) == min(8, len(exact.influences))
+        assert rows[0].endswith(f"{exact.influences[0].relative:+.2f} per cent".lstrip("+-"))
+        assert block["caption"][1] == {"line": exact.no}
+        assert "filled raises" in files.screen_bytes().decode("utf-8")
+        assert not any("filled raises" in text for text in files.page_texts())
+        drawn += 1
+    assert drawn >= 10
+
+
+def figures(node):
+    """Every figure a notebook shows."""
+    if isinstance(node, dict):
+        if node.get("type") == "figure":
+            yield node
+        for each in node.values():
+            yield from figures(each)
+    elif isinstance(node, list):
+        for each in node:
+            yield from figures(each)
 
 
 def test_the_audit_in_the_readme_is_that_of_the_example(built):

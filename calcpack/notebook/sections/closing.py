@@ -4,10 +4,13 @@ from __future__ import annotations
 
 from typing import Any
 
+from calcpack.figures import influence_figure
 from calcpack.notebook.sections.checks import checks_of
 from calcpack.notebook.study import CASE_WORDS, results_of
 from calcpack.notebook.work import Work
-from calcpack.sheet.runs import plain_text
+from calcpack.sheet import Line
+from calcpack.sheet.influence import influences
+from calcpack.sheet.runs import Runs, plain_text
 
 
 def state_summary(work: Work) -> None:
@@ -36,6 +39,7 @@ def state_summary(work: Work) -> None:
     if not unmet:
         parts.append("All checks on this sheet are satisfied.")
     sheet.text(" ".join(parts))
+    _show_influence(work)
     header = given.header
     sheet.signoff(
         [
@@ -47,6 +51,41 @@ def state_summary(work: Work) -> None:
             )
         ]
     )
+
+
+MOST_BARS = 8
+
+
+def _show_influence(work: Work) -> None:
+    """On the screen, which given values move what decides on this sheet."""
+    found = _deciding(work)
+    if found is None:
+        return
+    target, says = found
+    moving = influences(work.sheet.lines, target)[:MOST_BARS]
+    if moving:
+        bars = [(each.line.no, plain_text(each.line.says), each.relative) for each in moving]
+        caption: Runs = [f"What moves the {says}, line ", target.link, ", most."]
+        work.sheet.figure(influence_figure(bars, says), caption, screen=True)
+
+
+def _deciding(work: Work) -> tuple[Line, str] | None:
+    """The requirement with the largest ratio, else the design moment, else the largest moment or load."""
+    if work.checks:
+        name, line = max(work.checks, key=lambda each: each[1].check(each[0])["ratio"])
+        return line, f"ratio of the governing check, {name}"
+    worked = [line for line in work.sheet.lines.values() if line.kind == "hence"]
+    kinds = (
+        [line for line in worked if line.symbol == "M_max"],
+        [line for line in worked if line.symbol.startswith("M") and line.unit == "kN*m"],
+        [line for line in worked if line.symbol.startswith("W_")],
+    )
+    found = next((lines for lines in kinds if lines), None)
+    if found is None:
+        return None
+    most = max(found, key=lambda line: abs(line.value))
+    says = plain_text(most.says)
+    return most, says[:1].lower() + says[1:]
 
 
 def state_notation(work: Work) -> None:

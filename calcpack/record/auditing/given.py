@@ -248,25 +248,45 @@ class Notebook:
         return found[-1] if found and isinstance(found[-1], dict) else None
 
     @cached_property
-    def lines(self) -> dict[str, Mapping[str, Any]]:
-        """The lines it shows, by number."""
-        found: dict[str, Mapping[str, Any]] = {}
+    def blocks(self) -> list[Mapping[str, Any]]:
+        """What it shows, in order; of blocks side by side those in the columns."""
+        found: list[Mapping[str, Any]] = []
 
         def gather(blocks: object) -> None:
             for block in blocks if isinstance(blocks, list) else ():
                 if not isinstance(block, dict):
                     continue
-                if block.get("type") == "line":
-                    found.setdefault(str(block.get("no")), block)
-                elif block.get("type") == "columns" and isinstance(block.get("columns"), list):
+                if block.get("type") == "columns" and isinstance(block.get("columns"), list):
                     for column in block["columns"]:
                         gather(column)
+                else:
+                    found.append(block)
 
         for data in self._outputs():
             held = data.get(BLOCKS)
             if isinstance(held, dict):
                 gather(held.get("blocks"))
         return found
+
+    @cached_property
+    def lines(self) -> dict[str, Mapping[str, Any]]:
+        """The lines it shows, by number."""
+        found: dict[str, Mapping[str, Any]] = {}
+        for block in self.blocks:
+            if block.get("type") == "line":
+                found.setdefault(str(block.get("no")), block)
+        return found
+
+    @cached_property
+    def tables(self) -> list[Mapping[str, Any]]:
+        """The tables it shows, in order."""
+        return [
+            block
+            for block in self.blocks
+            if block.get("type") == "table"
+            and isinstance(block.get("columns"), list)
+            and isinstance(block.get("rows"), list)
+        ]
 
     @cached_property
     def given(self) -> Given | None:

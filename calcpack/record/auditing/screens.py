@@ -5,7 +5,8 @@ from __future__ import annotations
 import html
 import itertools
 import re
-from collections.abc import Iterator, Mapping
+from collections import Counter
+from collections.abc import Iterator, Mapping, Sequence
 from types import MappingProxyType
 
 from calcpack.job.errors import CalcpackError
@@ -21,6 +22,8 @@ _NOTHING: Mapping[str, str] = MappingProxyType({})
 _LINE = re.compile(r'<div class="line [a-z ]{1,40}" id="line-([0-9]{1,3}\.[0-9]{2,3})">\n')
 _PART = re.compile(r'<div class="(no|main|notes)">')
 _END = "</div>\n</div>"
+_ROW = re.compile(r"<tr[^<>]*>(.*?)</tr>", re.S)
+_CELL = re.compile(r"<td[^<>]*>(.*?)</td>", re.S)
 _TAG = re.compile(r"<[^<>]*>")
 # What could hide a line, show another in its place or do something; no sheet has any of it.
 _FOREIGN = re.compile(
@@ -33,7 +36,11 @@ _LEADING = ('="javascript:', '="vbscript:', '="data:text', '="refresh', "='", "=
 
 
 def audit_screen(
-    record: Record, content: bytes | None, name: str, compared: Mapping[str, str] = _NOTHING
+    record: Record,
+    content: bytes | None,
+    name: str,
+    compared: Mapping[str, str] = _NOTHING,
+    rows: Sequence[str] = (),
 ) -> Iterator[Finding]:
     """Whether a sheet's HTML shows each line with its words and its printed value.
 
@@ -46,11 +53,13 @@ def audit_screen(
         Of its file, for messages.
     compared : mapping
         What requirements compare as a copy shows it, by line: "25.0 mm ≤ 30.0 mm".
+    rows : sequence of str
+        The rows of tables as a copy shows them, their cells' bare letters parted by "|".
 
     Yields
     ------
     Finding
-        One a line, and one for what the page is made of.
+        One a line, one for what the page is made of, one for the tables or one a row that is not there.
 
     Raises
     ------
@@ -71,6 +80,21 @@ def audit_screen(
         yield _shown_in(line, shown.get(line.no, []), name, compared.get(line.no, ""))
     for number in sorted(set(shown) - {line.no for line in record.lines}):
         yield wrong(_GROUP, f"{name}, line {number}", "the page shows a line that the record does not have")
+    if rows:
+        yield from _tables(page, rows, name)
+
+
+def _tables(page: str, rows: Sequence[str], name: str) -> Iterator[Finding]:
+    """Whether the page has every row of a copy's tables."""
+    there = Counter(
+        "|".join(bare(html.unescape(_TAG.sub("", cell))) for cell in _CELL.findall(row))
+        for row in _ROW.findall(page)
+    )
+    missing = Counter(rows) - there
+    for row in missing:
+        yield wrong(_GROUP, f"{name}, a table's row", "the page does not show it so", other=row[:80])
+    if not missing:
+        yield good(_GROUP, f"{name}, tables", f"{len(rows)} rows as the notebook shows them")
 
 
 def _plain(page: str, name: str) -> Finding:

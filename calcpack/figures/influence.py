@@ -2,53 +2,53 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from calcpack.figures.drawing import HAIR, INK, PALE, SMALL, Drawing, Stroke
 from calcpack.figures.figure import Figure
-from calcpack.record.audit_sensitivity import MOST_ROWS, Sensitivity
 
 _ROW, _BAR, _HALF = 5.2, 3.0, 34.0  # [mm]
 _WORDS, _LONGEST = 62.0, 46  # [mm], letters
 
 
-def influence_figure(found: Sensitivity, width_mm: float = 165.0) -> Figure:
+def influence_figure(rows: Sequence[tuple[str, str, float]], says: str, width_mm: float = 165.0) -> Figure:
     """Bars of how many per cent a result changes for one per cent of each given value.
 
     Parameters
     ----------
-    found : Sensitivity
+    rows : sequence of (line's number, its words, change [%])
+        The strongest first.
+    says : str
+        The result, in words.
     width_mm : float [mm]
 
     Returns
     -------
     Figure
     """
-    rows = found.influences[:MOST_ROWS]
-    most = max((abs(each.relative) for each in rows), default=0.0) or 1.0
+    most = max((abs(relative) for _, _, relative in rows), default=0.0) or 1.0
     drawing = Drawing()
     middle = _WORDS + _HALF + 4.0
-    for number, each in enumerate(rows):
+    for number, (no, words, relative) in enumerate(rows):
         y = -_ROW * (number + 1)
-        end = middle + _HALF * each.relative / most
-        drawing.text(
-            0.0, y, f"{each.line.no}  {_short(each.line.says)}", SMALL, anchor="left", level="middle"
-        )
+        end = middle + _HALF * relative / most
+        drawing.text(0.0, y, f"{no}  {_short(words)}", SMALL, anchor="left", level="middle")
         low, high = y - _BAR / 2, y + _BAR / 2
         corners = [(middle, low), (end, low), (end, high), (middle, high)]
         # What raises the result is filled, what lowers it hatched: told apart without colour.
-        drawing.area(corners, PALE if each.relative > 0 else "#ffffff")
-        if each.relative < 0:
+        drawing.area(corners, PALE if relative > 0 else "#ffffff")
+        if relative < 0:
             drawing.hatch(corners)
         drawing.outline(corners, Stroke(HAIR, INK))
-        drawing.text(
-            middle + _HALF + 3.0, y, f"{each.relative:+.2f} %".replace("-", "\u2212"), SMALL, anchor="left"
-        )
+        change = f"{relative:+.2f} %".replace("-", "\u2212")
+        drawing.text(middle + _HALF + 3.0, y, change, SMALL, anchor="left")
     foot = -_ROW * (len(rows) + 0.6)
     drawing.line([(middle, -_ROW * 0.4), (middle, foot)], Stroke(HAIR, INK))
     drawing.text(
         middle, foot - 3.0, "change for 1 % more; filled raises, hatched lowers", SMALL, anchor="center"
     )
-    said = "; ".join(f"{each.line.says}: {each.relative:+.2f} per cent" for each in rows)
-    return drawing.finish(width_mm, f"What moves the {found.says}, for one per cent of each value. {said}")
+    said = "; ".join(f"{words}: {relative:+.2f} per cent" for _, words, relative in rows)
+    return drawing.finish(width_mm, f"What moves the {says}, for one per cent of each value. {said}")
 
 
 def _short(text: str) -> str:
