@@ -160,7 +160,7 @@ def _audited_sheet(
     findings += audit_job(given, facts)
     findings += audit_copies(record, notebook, lines)
     findings += audit_tables(record, notebook, lines)
-    findings += audit_pages(record, pages, comparisons(notebook))
+    findings += audit_pages(record, pages, comparisons(notebook), shown_rows(notebook))
     earlier = facts is not None and left_at_earlier_revision(record.data["job"], facts["header"])
     findings += audit_provenance(record, notebook, digests, job_folder, earlier)
     stated = str(notebook.metadata.get("input", "")) if notebook is not None else ""

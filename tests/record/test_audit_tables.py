@@ -13,6 +13,7 @@ from calcpack.record.audit import audit_sheet, open_sheet
 from calcpack.record.auditing.files import find_target
 from calcpack.record.auditing.findings import Verdict
 from calcpack.record.auditing.given import Notebook
+from calcpack.record.auditing.pages import audit_pages
 from calcpack.record.auditing.screens import audit_screen
 from calcpack.record.auditing.tables import audit_tables, shown_rows
 
@@ -91,6 +92,26 @@ def test_a_table_on_the_screen_shows_the_notebooks_rows(sheet):
         place = cell.start(1) + re.search("[0-9]", cell[1]).start()
         digit = str((int(page[place]) + 1) % 10)
         assert missing(page[:place] + digit + page[place + 1 :]), cell[0]
+
+
+def test_a_table_on_paper_shows_the_notebooks_rows(sheet):
+    opened, files = sheet
+    pages, rows = files.page_texts(), shown_rows(opened.notebook)
+
+    def missing(changed):
+        found = audit_pages(opened.record, changed, {}, rows)
+        return [each for each in found if each.verdict is Verdict.WRONG and "table" in each.place]
+
+    assert missing(pages) == []
+    count = 0
+    for number, page in enumerate(pages):
+        for row in re.finditer(r"^R[0-9] (?:wall|column|beam) .*$", page, re.M):
+            for digit in re.finditer("[0-9]", row[0]):
+                place = row.start() + digit.start()
+                other = page[:place] + str((int(page[place]) + 1) % 10) + page[place + 1 :]
+                assert missing([*pages[:number], other, *pages[number + 1 :]]), row[0]
+                count += 1
+    assert count > 20
 
 
 @pytest.mark.parametrize(

@@ -4,16 +4,17 @@ from __future__ import annotations
 
 import re
 import unicodedata
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from types import MappingProxyType
 
-from calcpack.record.auditing.findings import Finding, Verdict, unchecked, wrong
+from calcpack.record.auditing.findings import Finding, Verdict, good, unchecked, wrong
 from calcpack.record.auditing.reading import Record, RecordLine
 
 _FOOT = re.compile(r"^(?P<mark>.{1,200}) page (?P<page>[0-9]+) of [0-9]+$", re.M)
 _BEGINS = re.compile(r"(?m)^([0-9]{1,3}\.[0-9]{2,3})(?=\s)")
 _SPACE = re.compile(r"\s+")
 _NOTHING: Mapping[str, str] = MappingProxyType({})
+_LONG = 25  # letters of a cell that may take several rows of text
 _WORDS = 12  # letters of a line's words that tell it from a number
 
 
@@ -47,7 +48,10 @@ def bare(text: str) -> str:
 
 
 def audit_pages(
-    record: Record, pages: Sequence[str] | None, compared: Mapping[str, str] = _NOTHING
+    record: Record,
+    pages: Sequence[str] | None,
+    compared: Mapping[str, str] = _NOTHING,
+    rows: Sequence[str] = (),
 ) -> tuple[Finding, ...]:
     """Whether the visible pages show each line with its printed value.
 
@@ -57,18 +61,40 @@ def audit_pages(
     pages : sequence of str or None
     compared : mapping
         What requirements compare as a copy shows it, by line: "25.0 mm ≤ 30.0 mm".
+    rows : sequence of str
+        The rows of tables as a copy shows them, their cells' bare letters parted by "|".
 
     Returns
     -------
     tuple of Finding
-        One a line.
+        One a line; one for the tables, or one a row that is not there.
     """
     if pages is None:
         return (unchecked("pages", "PDF", "there is no PDF of this sheet at hand"),)
     if not pages:
         return (wrong("pages", "PDF", "the PDF has no pages of this sheet"),)
-    by_line = _parts("\n".join(_without_foot(page) for page in pages), record)
-    return tuple(_shown_on(line, by_line, compared.get(line.no, "")) for line in record.lines)
+    text = "\n".join(_without_foot(page) for page in pages)
+    by_line = _parts(text, record)
+    lines = (_shown_on(line, by_line, compared.get(line.no, "")) for line in record.lines)
+    return (*lines, *_tables(text, rows))
+
+
+def _tables(text: str, rows: Sequence[str]) -> Iterator[Finding]:
+    """Whether the pages have every row of a copy's tables.
+
+    A row with long words may be broken at the end of a page: of such a one every cell is looked for.
+    """
+    letters = bare(text)
+    missing = [
+        row
+        for row in dict.fromkeys(rows)
+        if row.replace("|", "") not in letters
+        and (max(map(len, row.split("|"))) < _LONG or not all(cell in letters for cell in row.split("|")))
+    ]
+    for row in missing:
+        yield wrong("pages", "a table's row in the PDF", "the pages do not show it so", other=row[:80])
+    if rows and not missing:
+        yield good("pages", "tables in the PDF", f"{len(rows)} rows as the notebook shows them")
 
 
 def _without_foot(page: str) -> str:
