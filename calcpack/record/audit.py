@@ -2,11 +2,15 @@
 
 from __future__ import annotations
 
+import functools
 import gc
 import multiprocessing
 import os
+import pickle
+import tempfile
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from concurrent.futures import ProcessPoolExecutor
+from contextlib import contextmanager
 from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Any
@@ -41,6 +45,7 @@ _UNLIKE_A_SHEET = (
     ValueError,
 )
 FEW = 12  # sheets that one process does as fast as several
+LARGE = 4_000_000  # bytes of a pack of more sheets than that
 
 
 @dataclass(frozen=True)
@@ -207,19 +212,20 @@ def audit_target(
         Something cannot be read.
     """
     follow("reading the files", 0, 1)
-    target = find_target(path, records=records, job=job)
-    if only is not None:
-        target = replace(target, sheets=(choose_sheet(target, only),), whole=False)
-    job_file = job_facts(target)
-    common = _Common(input_digests(target.inputs), job_file.data, target.job_folder)
-    follow("reading the files", 1, 1)
-    audits, digests = [], []
-    count = len(target.sheets)
-    follow("auditing the sheets", 0, count)
-    for audit, digest in _each(target, common, processes):
-        audits.append(audit)
-        digests.append(digest)
-        follow("auditing the sheets", len(audits), count)
+    with _crew(path, processes if only is None else 1) as pool:
+        target = find_target(path, records=records, job=job)
+        if only is not None:
+            target = replace(target, sheets=(choose_sheet(target, only),), whole=False)
+        job_file = job_facts(target)
+        common = _Common(input_digests(target.inputs), job_file.data, target.job_folder)
+        follow("reading the files", 1, 1)
+        audits, digests = [], []
+        count = len(target.sheets)
+        follow("auditing the sheets", 0, count)
+        for audit, digest in _each(target, common, pool):
+            audits.append(audit)
+            digests.append(digest)
+            follow("auditing the sheets", len(audits), count)
     together = (*_unread(job_file), *audit_together(target, digests), *audit_manifest(target))
     return Audit(
         target=target.name,
@@ -236,33 +242,64 @@ def _unread(job_file: JobFacts) -> Iterator[Finding]:
         yield unchecked("pack", "job file", remark)
 
 
-def _each(target: Target, common: _Common, processes: int | None) -> Iterator[tuple[SheetAudit, Digest]]:
+@contextmanager
+def _crew(path: Path, processes: int | None) -> Iterator[ProcessPoolExecutor | None]:
+    """Processes for a target of many sheets, which load what they need while the files are read."""
     workers = processes or os.cpu_count() or 1
-    if workers == 1 or len(target.sheets) <= FEW:
-        _prepare(common)
-        yield from map(_audited, target.sheets)
+    if workers == 1 or not _is_large(path):
+        yield None
         return
     # Started afresh rather than forked: a progress display has its thread running already.
     context = multiprocessing.get_context("spawn")
-    with ProcessPoolExecutor(workers, mp_context=context, initializer=_begin, initargs=(common,)) as pool:
-        yield from pool.map(_audited, target.sheets, chunksize=4)
+    with ProcessPoolExecutor(workers, mp_context=context, initializer=_begin) as pool:
+        for _ in range(workers):
+            pool.submit(_load)
+        yield pool
 
 
-_COMMON: list[_Common] = []
+def _is_large(path: Path) -> bool:
+    """Whether a target is likely to have more sheets than one process does as fast as several."""
+    try:
+        if path.is_dir():
+            return len(list((path / "sheets").glob("*.json"))) > FEW
+        return path.is_file() and path.stat().st_size > LARGE
+    except OSError:
+        return False
 
 
-def _prepare(common: _Common) -> None:
-    _COMMON[:] = [common]
+def _each(
+    target: Target, common: _Common, pool: ProcessPoolExecutor | None
+) -> Iterator[tuple[SheetAudit, Digest]]:
+    if pool is None or len(target.sheets) <= FEW:
+        yield from (_audited(files, common) for files in target.sheets)
+        return
+    with tempfile.TemporaryDirectory(prefix="calcpack-") as folder:
+        shared = Path(folder) / "common"
+        shared.write_bytes(pickle.dumps(common))
+        yield from pool.map(functools.partial(_audited_by_crew, str(shared)), target.sheets, chunksize=4)
 
 
-def _begin(common: _Common) -> None:
+def _begin() -> None:
     """A worker's beginning: what it has loaded stays, and what a sheet leaves is looked through seldom."""
     work_for_another()
     gc.freeze()
     gc.set_threshold(100_000, 50, 100)
-    _prepare(common)
 
 
-def _audited(files: SheetFiles) -> tuple[SheetAudit, Digest]:
-    (common,) = _COMMON
+def _load() -> None:
+    """Nothing: a worker that has done it has loaded this module."""
+
+
+@functools.lru_cache(maxsize=1)
+def _common(shared: str) -> _Common:
+    found = pickle.loads(Path(shared).read_bytes())  # written by the process this one works for
+    assert isinstance(found, _Common)
+    return found
+
+
+def _audited_by_crew(shared: str, files: SheetFiles) -> tuple[SheetAudit, Digest]:
+    return _audited(files, _common(shared))
+
+
+def _audited(files: SheetFiles, common: _Common) -> tuple[SheetAudit, Digest]:
     return audit_sheet(files, digests=common.digests, facts=common.facts, job_folder=common.job_folder)
