@@ -338,7 +338,8 @@ def test_killed_while_issuing(ready, tmp_path):
     killed = 0
     for number in range(1, packs.KILLS + 1):
         out = ready(f"out{number}", number=str(number))
-        killed += packs.killed_at_random(lambda out=out: issue(out, "for permit", packs.NOW), longest, chance)
+        was = packs.killed_at_random(lambda out=out: issue(out, "for permit", packs.NOW), longest, chance)
+        killed, longest = killed + was, longest if was else 0.6 * longest  # the first issue takes longest
         assert register.check()[0] == ()
         issue(out, "for permit", packs.NOW)
     assert killed
