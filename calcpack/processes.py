@@ -1,4 +1,4 @@
-"""What every process that works for another one does first."""
+"""Processes that work for another one: how many, how they are started, what each does first."""
 
 from __future__ import annotations
 
@@ -6,7 +6,26 @@ import multiprocessing
 import os
 import signal
 import threading
+from collections.abc import Callable
+from concurrent.futures import ProcessPoolExecutor
 from multiprocessing.connection import wait
+
+
+def processors(most: int) -> int:
+    """How many processors this process may use, up to a number."""
+    return min(most, len(os.sched_getaffinity(0)))
+
+
+def process_pool(workers: int, begin: Callable[[], None]) -> ProcessPoolExecutor:
+    """Processes started afresh, not forked: whoever starts them may have threads running.
+
+    Parameters
+    ----------
+    workers : int
+    begin : callable
+        What each does first; :func:`work_for_another`, or something that does it.
+    """
+    return ProcessPoolExecutor(workers, mp_context=multiprocessing.get_context("spawn"), initializer=begin)
 
 
 def work_for_another() -> None:

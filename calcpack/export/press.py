@@ -7,8 +7,6 @@ of a document quick and a large pack heavy: a process sets a few documents, then
 from __future__ import annotations
 
 import itertools
-import multiprocessing
-import os
 from collections.abc import Callable, Iterable, Iterator
 from concurrent.futures import ProcessPoolExecutor
 from concurrent.futures.process import BrokenProcessPool
@@ -17,7 +15,7 @@ from types import TracebackType
 
 from calcpack.export.typesetting import Setting, Typeset, typeset
 from calcpack.job.errors import CalcpackError
-from calcpack.processes import work_for_another
+from calcpack.processes import process_pool, processors, work_for_another
 
 MOST_PROCESSES = 4
 REMEMBERED = 6  # documents a process may set before another takes its place
@@ -33,8 +31,7 @@ class Press:
     """
 
     def __init__(self, documents: int = 1) -> None:
-        available = min(MOST_PROCESSES, len(os.sched_getaffinity(0)))
-        self._count = min(available, documents // 2) if documents > 3 else 0
+        self._count = processors(min(MOST_PROCESSES, documents // 2)) if documents > 3 else 0
         self._documents = documents
         self._processes: list[ProcessPoolExecutor] = []
         self._stack = ExitStack()
@@ -98,12 +95,8 @@ class Press:
 
     def _begin(self) -> None:
         self._end()
-        context = multiprocessing.get_context("spawn")
         self._processes = [
-            self._stack.enter_context(
-                ProcessPoolExecutor(1, mp_context=context, initializer=work_for_another)
-            )
-            for _ in range(self._count)
+            self._stack.enter_context(process_pool(1, work_for_another)) for _ in range(self._count)
         ]
 
     def _end(self, *, at_once: bool = False) -> None:

@@ -15,6 +15,7 @@ from typing import Any
 
 from calcpack.job.errors import CalcpackError, Problem
 from calcpack.notebook.fill import FilledNotebook
+from calcpack.processes import processors
 
 CELL_SECONDS = 300
 # Loaded while the kernel waits, forgotten by the reset between two notebooks but still in memory.
@@ -193,5 +194,5 @@ def execute(
     """
     if not notebooks:
         return []
-    count = kernels or min(4, len(os.sched_getaffinity(0)))
+    count = kernels or processors(4)
     return asyncio.run(_execute(notebooks, count, done))

@@ -4,8 +4,6 @@ from __future__ import annotations
 
 import functools
 import gc
-import multiprocessing
-import os
 import pickle
 import tempfile
 from collections.abc import Callable, Iterator, Mapping, Sequence
@@ -17,10 +15,10 @@ from typing import Any
 
 import calcpack
 from calcpack.job.errors import CalcpackError
-from calcpack.processes import work_for_another
+from calcpack.processes import process_pool, processors, work_for_another
 from calcpack.record.auditing.copies import audit_copies, comparisons
 from calcpack.record.auditing.decisive import decisive_line
-from calcpack.record.auditing.files import SheetFiles, Target, find_target
+from calcpack.record.auditing.files import SheetFiles, Target, find_target, sheets_folder
 from calcpack.record.auditing.findings import Audit, Finding, SheetAudit, unchecked
 from calcpack.record.auditing.given import Given, Notebook, read_notebook
 from calcpack.record.auditing.inputs import JobFacts, audit_job, job_facts, left_at_earlier_revision
@@ -45,6 +43,7 @@ _UNLIKE_A_SHEET = (
     ValueError,
 )
 FEW = 12  # sheets that one process does as fast as several
+_MOST_PROCESSES = 64
 LARGE = 4_000_000  # bytes of a pack of more sheets than that
 
 
@@ -136,10 +135,7 @@ def audit_sheet(
     """
     opened = open_sheet(files)
     try:
-        audit, digest = _audited_sheet(opened, files.page_texts(), digests, facts, job_folder)
-        name, rows = files.record_name.removesuffix(".json") + ".html", shown_rows(opened.notebook)
-        seen = audit_screen(opened.record, files.screen_bytes(), name, comparisons(opened.notebook), rows)
-        return replace(audit, findings=(*audit.findings, *seen)), digest
+        return _audited_sheet(opened, files.page_texts(), files.screen_bytes(), digests, facts, job_folder)
     except _UNLIKE_A_SHEET as error:
         # Whoever made the files decides what is in them: where they are like no sheet's, that is their fault.
         raise CalcpackError(
@@ -151,6 +147,7 @@ def audit_sheet(
 def _audited_sheet(
     opened: OpenedSheet,
     pages: Sequence[str] | None,
+    screen: bytes | None,
     digests: frozenset[str],
     facts: Mapping[str, Any] | None,
     job_folder: Path | None,
@@ -165,7 +162,9 @@ def _audited_sheet(
     findings += audit_job(given, facts)
     findings += audit_copies(record, notebook, lines)
     findings += audit_tables(record, notebook, lines)
-    findings += audit_pages(record, pages, comparisons(notebook), shown_rows(notebook))
+    compared, rows = comparisons(notebook), shown_rows(notebook)
+    findings += audit_pages(record, pages, compared, rows)
+    findings += audit_screen(record, screen, f"{record.name.removesuffix('.json')}.html", compared, rows)
     earlier = facts is not None and left_at_earlier_revision(record.data["job"], facts["header"])
     findings += audit_provenance(record, notebook, digests, job_folder, earlier)
     stated = str(notebook.metadata.get("input", "")) if notebook is not None else ""
@@ -245,13 +244,11 @@ def _unread(job_file: JobFacts) -> Iterator[Finding]:
 @contextmanager
 def _crew(path: Path, processes: int | None) -> Iterator[ProcessPoolExecutor | None]:
     """Processes for a target of many sheets, which load what they need while the files are read."""
-    workers = processes or os.cpu_count() or 1
+    workers = processes or processors(_MOST_PROCESSES)
     if workers == 1 or not _is_large(path):
         yield None
         return
-    # Started afresh rather than forked: a progress display has its thread running already.
-    context = multiprocessing.get_context("spawn")
-    with ProcessPoolExecutor(workers, mp_context=context, initializer=_begin) as pool:
+    with process_pool(workers, _begin) as pool:
         for _ in range(workers):
             pool.submit(_load)
         yield pool
@@ -261,7 +258,7 @@ def _is_large(path: Path) -> bool:
     """Whether a target is likely to have more sheets than one process does as fast as several."""
     try:
         if path.is_dir():
-            return len(list((path / "sheets").glob("*.json"))) > FEW
+            return len(list(sheets_folder(path).glob("*.json"))) > FEW
         return path.is_file() and path.stat().st_size > LARGE
     except OSError:
         return False

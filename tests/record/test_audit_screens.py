@@ -109,9 +109,8 @@ def test_any_digit_that_a_requirement_compares_is_found_on_the_screen(steel):
 
 def test_any_digit_that_a_requirement_compares_is_found_in_the_notebook(steel):
     files, record, _, _ = steel
-    content = files.notebook_bytes()
-    node = json.loads(content)
-    rows = [block["rows"][-1] for block in blocks_of(node) if block.get("kind") == "require"]
+    notebook = read_notebook(files.notebook_bytes(), "J1.ipynb")
+    rows = [block["rows"][-1] for block in notebook.lines.values() if block["kind"] == "require"]
     assert len(rows) == sum(line.kind == "require" for line in record.lines)
     count = 0
     for row in rows:
@@ -120,24 +119,12 @@ def test_any_digit_that_a_requirement_compares_is_found_in_the_notebook(steel):
                 match.start() for match in re.finditer("[0-9](?![^{]*})|[0-9](?=[^{}]*\\xa0)", text)
             ]:
                 row[side] = text[:place] + str((int(text[place]) + 1) % 10) + text[place + 1 :]
-                changed = replace(files, notebook=json.dumps(node).encode(), pdf=None, screen=None)
+                changed = replace(files, notebook=json.dumps(notebook.data).encode(), pdf=None, screen=None)
                 audit, _ = audit_sheet(changed)
                 assert [each for each in audit.wrong if each.group == "second copy"], row[side]
                 count += 1
             row[side] = text
     assert count > 40
-
-
-def blocks_of(node):
-    """Every block a notebook shows."""
-    if isinstance(node, dict):
-        if "rows" in node and "no" in node:
-            yield node
-        for each in node.values():
-            yield from blocks_of(each)
-    elif isinstance(node, list):
-        for each in node:
-            yield from blocks_of(each)
 
 
 def test_lines_left_out_doubled_invented_or_reworded(sheet):

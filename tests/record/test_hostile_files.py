@@ -464,8 +464,8 @@ def test_many_pages_are_read_in_parts(loft, monkeypatch):
     content = (loft / "pack.pdf").read_bytes()
     whole = confined.READING.texts(content, "pack.pdf")
     monkeypatch.setattr(confined, "_LARGE", 0)
-    for processors in (1, 2, 5):
-        monkeypatch.setattr(os, "cpu_count", lambda processors=processors: processors)
+    for count in (1, 2, 5):
+        monkeypatch.setattr(os, "sched_getaffinity", lambda _, count=count: set(range(count)))
         assert confined.texts_of_many_pages(content, "pack.pdf") == whole
     with pytest.raises(CalcpackError, match=r"x\.pdf: it is no readable PDF"):
         confined.texts_of_many_pages(b"%PDF-1.7 nothing", "x.pdf")

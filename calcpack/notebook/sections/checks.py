@@ -284,6 +284,12 @@ def _span_at(work: Work, at: float) -> int:
     return next((number for number, (_, end) in enumerate(spans) if at < end), len(spans) - 1)
 
 
+def governing_check(work: Work) -> tuple[str, Line, float] | None:
+    """Name, requirement and ratio of what the beam uses most; None without checks."""
+    rated = [(name, line, float(line.check(name)["ratio"])) for name, line in work.checks]
+    return max(rated, key=lambda each: each[2], default=None)
+
+
 def checks_of(work: Work) -> list[dict[str, Any]]:
     """The ``checks`` of the record: what is required of the beam, not of the calculation."""
     return [line.check(name) for name, line in work.checks]

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from calcpack.figures import influence_figure
-from calcpack.notebook.sections.checks import checks_of
+from calcpack.notebook.sections.checks import checks_of, governing_check
 from calcpack.notebook.study import CASE_WORDS, results_of
 from calcpack.notebook.work import Work
 from calcpack.sheet import Line
@@ -71,8 +71,8 @@ def _show_influence(work: Work) -> None:
 
 def _deciding(work: Work) -> tuple[Line, str] | None:
     """The requirement with the largest ratio, else the design moment, else the largest moment or load."""
-    if work.checks:
-        name, line = max(work.checks, key=lambda each: each[1].check(each[0])["ratio"])
+    if governing := governing_check(work):
+        name, line, _ = governing
         return line, f"ratio of the governing check, {name}"
     worked = [line for line in work.sheet.lines.values() if line.kind == "hence"]
     kinds = (
@@ -118,12 +118,11 @@ def write_record(work: Work) -> None:
 
 def record_results(work: Work) -> dict[str, Any]:
     """Results with the checks, and the one that governs."""
-    checks = checks_of(work)
-    governing = max(checks, key=lambda check: check["ratio"], default=None)
+    governing = governing_check(work)
     return results_of(work.study) | {
         **_stated_deflections(work),
-        "checks": checks,
-        "governing": governing and {"name": governing["name"], "ratio": governing["ratio"]},
+        "checks": checks_of(work),
+        "governing": governing and {"name": governing[0], "ratio": governing[2]},
     }
 
 

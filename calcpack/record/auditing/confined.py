@@ -12,6 +12,7 @@ from concurrent.futures import ThreadPoolExecutor
 from typing import IO
 
 from calcpack.job.errors import CalcpackError
+from calcpack.processes import processors
 
 TOO_DEAR = "it takes more time or memory to read than any pack of its size"
 _LARGE, _MOST_CHILDREN = 4_000_000, 8  # bytes; children at once
@@ -99,7 +100,7 @@ def texts_of_many_pages(content: bytes, name: str) -> tuple[str, ...]:
     CalcpackError
         As of :meth:`PdfReading.texts`.
     """
-    of = min(_MOST_CHILDREN, os.cpu_count() or 1)
+    of = processors(_MOST_CHILDREN)
     if of == 1 or len(content) < _LARGE:
         return READING.texts(content, name)
     children = [READING, *(PdfReading() for _ in range(of - 1))]

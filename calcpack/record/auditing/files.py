@@ -203,8 +203,13 @@ def _job_inputs(job: Path) -> dict[str, bytes]:
     return found
 
 
+def sheets_folder(path: Path) -> Path:
+    """Where the sheets of a pack's folder stand; the folder itself where it has no such place."""
+    return path / "sheets" if (path / "sheets").is_dir() else path
+
+
 def _folder(path: Path) -> Target:
-    sheets = path / "sheets" if (path / "sheets").is_dir() else path
+    sheets = sheets_folder(path)
     records = sorted(sheets.glob("*.json"))
     if sheets == path:
         records = [each for each in records if each.name != "job.json"]
@@ -277,8 +282,8 @@ def _pdf(path: Path, records: Path | None) -> Target:
     if records is not None:
         if not records.is_dir():
             raise CalcpackError(f"'{records}' is no folder", remedy="name the folder that holds the records")
-        held = records / "sheets" if (records / "sheets").is_dir() else records
-        found = {each.name: read_file(each) for each in held.glob("*.json") if each.name != "job.json"}
+        held = sheets_folder(records).glob("*.json")
+        found = {each.name: read_file(each) for each in held if each.name != "job.json"}
     if not found:
         raise CalcpackError(
             "it carries no record",

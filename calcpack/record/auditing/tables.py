@@ -233,7 +233,7 @@ def _largest(rows: Sequence[Sequence[str]], results: Mapping[str, Any]) -> Cells
     for i, row in enumerate(rows):
         for j, key in enumerate(_LARGEST.get(row[0], ()), start=1):
             if key is not None:
-                found[i, j] = abs(results[key[0]][key[1]]) * key[2] * (-1 if row[j].startswith("−") else 1)
+                found[i, j] = float(results[key[0]][key[1]]) * key[2]
     return found
 
 
