@@ -237,7 +237,7 @@ def _pack(
         for _, template in inputs
         for note in (
             *template.settings.assumptions,
-            f"{template.settings.title}s do not cover: {', '.join(template.settings.not_covered)}.",
+            f"{template.settings.title}, not covered: {', '.join(template.settings.not_covered)}.",
         )
     )
     plan = key_plan(plan_of(framed), None, job.job.units, width_mm=165)
