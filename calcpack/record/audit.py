@@ -18,7 +18,7 @@ from calcpack.job.errors import CalcpackError
 from calcpack.processes import process_pool, processors, work_for_another
 from calcpack.record.auditing.copies import audit_copies, comparisons
 from calcpack.record.auditing.decisive import decisive_line
-from calcpack.record.auditing.files import SheetFiles, Target, find_target, sheets_folder
+from calcpack.record.auditing.files import SheetFiles, Target, find_target
 from calcpack.record.auditing.findings import Audit, Finding, SheetAudit, unchecked
 from calcpack.record.auditing.given import Given, Notebook, read_notebook
 from calcpack.record.auditing.inputs import JobFacts, audit_job, job_facts, left_at_earlier_revision
@@ -44,7 +44,6 @@ _UNLIKE_A_SHEET = (
 )
 FEW = 12  # sheets that one process does as fast as several
 _MOST_PROCESSES = 64
-LARGE = 4_000_000  # bytes of a pack of more sheets than that
 
 
 @dataclass(frozen=True)
@@ -211,15 +210,15 @@ def audit_target(
         Something cannot be read.
     """
     follow("reading the files", 0, 1)
-    with _crew(path, processes if only is None else 1) as pool:
-        target = find_target(path, records=records, job=job)
-        if only is not None:
-            target = replace(target, sheets=(choose_sheet(target, only),), whole=False)
+    target = find_target(path, records=records, job=job)
+    if only is not None:
+        target = replace(target, sheets=(choose_sheet(target, only),), whole=False)
+    count = len(target.sheets)
+    with _crew(count, processes) as pool:
         job_file = job_facts(target)
         common = _Common(input_digests(target.inputs), job_file.data, target.job_folder)
         follow("reading the files", 1, 1)
         audits, digests = [], []
-        count = len(target.sheets)
         follow("auditing the sheets", 0, count)
         for audit, digest in _each(target, common, pool):
             audits.append(audit)
@@ -242,10 +241,10 @@ def _unread(job_file: JobFacts) -> Iterator[Finding]:
 
 
 @contextmanager
-def _crew(path: Path, processes: int | None) -> Iterator[ProcessPoolExecutor | None]:
-    """Processes for a target of many sheets, which load what they need while the files are read."""
+def _crew(sheets: int, processes: int | None) -> Iterator[ProcessPoolExecutor | None]:
+    """Processes for a target of many sheets, which load what they need at once."""
     workers = processes or processors(_MOST_PROCESSES)
-    if workers == 1 or not _is_large(path):
+    if workers == 1 or sheets <= FEW:
         yield None
         return
     with process_pool(workers, _begin) as pool:
@@ -254,20 +253,10 @@ def _crew(path: Path, processes: int | None) -> Iterator[ProcessPoolExecutor | N
         yield pool
 
 
-def _is_large(path: Path) -> bool:
-    """Whether a target is likely to have more sheets than one process does as fast as several."""
-    try:
-        if path.is_dir():
-            return len(list(sheets_folder(path).glob("*.json"))) > FEW
-        return path.is_file() and path.stat().st_size > LARGE
-    except OSError:
-        return False
-
-
 def _each(
     target: Target, common: _Common, pool: ProcessPoolExecutor | None
 ) -> Iterator[tuple[SheetAudit, Digest]]:
-    if pool is None or len(target.sheets) <= FEW:
+    if pool is None:
         yield from (_audited(files, common) for files in target.sheets)
         return
     with tempfile.TemporaryDirectory(prefix="calcpack-") as folder:

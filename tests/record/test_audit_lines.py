@@ -232,5 +232,5 @@ def test_the_audit_shares_no_arithmetic_with_what_it_audits():
     code += "print(*(name for name in sys.modules if name.startswith('calcpack.')))"
     loaded = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True).stdout
     layers = {name.split(".")[1] for name in loaded.split()}
-    assert layers <= {"job", "files", "record"}
+    assert layers <= {"job", "files", "processes", "record"}
     assert "calcpack.job.units" not in loaded.split()
