@@ -7,18 +7,17 @@ import gc
 import pickle
 import tempfile
 from collections.abc import Callable, Iterator, Mapping, Sequence
-from concurrent.futures import ProcessPoolExecutor
-from contextlib import contextmanager
+from concurrent.futures import ProcessPoolExecutor, ThreadPoolExecutor
 from dataclasses import dataclass, replace
 from pathlib import Path
-from typing import Any
+from typing import Any, Self
 
 import calcpack
 from calcpack.job.errors import CalcpackError
 from calcpack.processes import process_pool, processors, work_for_another
 from calcpack.record.auditing.copies import audit_copies, comparisons
 from calcpack.record.auditing.decisive import decisive_line
-from calcpack.record.auditing.files import SheetFiles, Target, find_target
+from calcpack.record.auditing.files import SheetFiles, Target, find_target, records_in
 from calcpack.record.auditing.findings import Audit, Finding, SheetAudit, unchecked
 from calcpack.record.auditing.given import Given, Notebook, read_notebook
 from calcpack.record.auditing.inputs import JobFacts, audit_job, job_facts, left_at_earlier_revision
@@ -210,21 +209,24 @@ def audit_target(
         Something cannot be read.
     """
     follow("reading the files", 0, 1)
-    target = find_target(path, records=records, job=job)
-    if only is not None:
-        target = replace(target, sheets=(choose_sheet(target, only),), whole=False)
-    count = len(target.sheets)
-    with _crew(count, processes) as pool:
+    with ThreadPoolExecutor(1) as aside, _Crew(processes if only is None else 1) as crew:
+        crew.expect(len(records_in(path)))
+        target = find_target(path, records=records, job=job)
+        if only is not None:
+            target = replace(target, sheets=(choose_sheet(target, only),), whole=False)
+        manifest = aside.submit(lambda: tuple(audit_manifest(target)))
+        count = len(target.sheets)
+        crew.expect(count)
         job_file = job_facts(target)
         common = _Common(input_digests(target.inputs), job_file.data, target.job_folder)
         follow("reading the files", 1, 1)
         audits, digests = [], []
         follow("auditing the sheets", 0, count)
-        for audit, digest in _each(target, common, pool):
+        for audit, digest in crew.audit(target, common):
             audits.append(audit)
             digests.append(digest)
             follow("auditing the sheets", len(audits), count)
-    together = (*_unread(job_file), *audit_together(target, digests), *audit_manifest(target))
+        together = (*_unread(job_file), *audit_together(target, digests), *manifest.result())
     return Audit(
         target=target.name,
         sheets=tuple(audits),
@@ -240,29 +242,43 @@ def _unread(job_file: JobFacts) -> Iterator[Finding]:
         yield unchecked("pack", "job file", remark)
 
 
-@contextmanager
-def _crew(sheets: int, processes: int | None) -> Iterator[ProcessPoolExecutor | None]:
-    """Processes for a target of many sheets, which load what they need at once."""
-    workers = processes or processors(_MOST_PROCESSES)
-    if workers == 1 or sheets <= FEW:
-        yield None
-        return
-    with process_pool(workers, _begin) as pool:
-        for _ in range(workers):
-            pool.submit(_load)
-        yield pool
+class _Crew:
+    """Processes for a target of many sheets, which load what they need while files are still read.
 
+    Parameters
+    ----------
+    processes : int or None
+        How many; as many as there are processors if left out.
+    """
 
-def _each(
-    target: Target, common: _Common, pool: ProcessPoolExecutor | None
-) -> Iterator[tuple[SheetAudit, Digest]]:
-    if pool is None:
-        yield from (_audited(files, common) for files in target.sheets)
-        return
-    with tempfile.TemporaryDirectory(prefix="calcpack-") as folder:
-        shared = Path(folder) / "common"
-        shared.write_bytes(pickle.dumps(common))
-        yield from pool.map(functools.partial(_audited_by_crew, str(shared)), target.sheets, chunksize=4)
+    def __init__(self, processes: int | None) -> None:
+        self._workers = processes or processors(_MOST_PROCESSES)
+        self._pool: ProcessPoolExecutor | None = None
+
+    def __enter__(self) -> Self:
+        return self
+
+    def __exit__(self, *_: object) -> None:
+        if self._pool is not None:
+            self._pool.shutdown(cancel_futures=True)
+
+    def expect(self, sheets: int) -> None:
+        """So many sheets are to be audited, as far as is known by now."""
+        if self._pool is None and self._workers > 1 and sheets > FEW:
+            self._pool = process_pool(self._workers, _begin)
+            for _ in range(self._workers):
+                self._pool.submit(_load)
+
+    def audit(self, target: Target, common: _Common) -> Iterator[tuple[SheetAudit, Digest]]:
+        """Every sheet of a target, in its order."""
+        if self._pool is None:
+            yield from (_audited(files, common) for files in target.sheets)
+            return
+        with tempfile.TemporaryDirectory(prefix="calcpack-") as folder:
+            shared = Path(folder) / "common"
+            shared.write_bytes(pickle.dumps(common))
+            audited = functools.partial(_audited_by_crew, str(shared))
+            yield from self._pool.map(audited, target.sheets, chunksize=4)
 
 
 def _begin() -> None:

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import hashlib
 import io
-import re
 
 from pyhanko.pdf_utils import generic
 from pyhanko.pdf_utils.generic import pdf_name
@@ -13,8 +12,6 @@ from pyhanko.pdf_utils.misc import PdfError
 from pyhanko.pdf_utils.reader import PdfFileReader
 
 from calcpack.job.errors import CalcpackError
-
-_END = re.compile(rb"startxref\s+\d+\s+%%EOF(?:\r\n|\n|\r)?")
 
 
 class Update(IncrementalPdfFileWriter):  # type: ignore[misc, unused-ignore]
@@ -59,47 +56,6 @@ def open_pdf(data: bytes, name: str) -> PdfFileReader:
     except (PdfError, ValueError, KeyError, TypeError, AttributeError, IndexError, RecursionError) as error:
         raise CalcpackError(f"'{name}' cannot be read as a PDF: {error}") from None
     return reader
-
-
-def built_length(data: bytes, signed_from: int | None) -> int:
-    """How many bytes of a pack were there before the first signature was appended.
-
-    Parameters
-    ----------
-    data : bytes
-    signed_from : int or None
-        Where the first signature's container begins; None where nothing is signed.
-
-    Examples
-    --------
-    >>> file = b"... startxref 9 %%EOF" + bytes([10]) + b"signature startxref 30 %%EOF"
-    >>> built_length(file, 25), built_length(file, None)
-    (22, 50)
-    """
-    if signed_from is None:
-        return len(data)
-    ends = [match.end() for match in _END.finditer(data, 0, signed_from)]
-    return ends[-1] if ends else 0
-
-
-def grown_from(data: bytes, sha256: str) -> bool:
-    """Whether a PDF is one of that hash with additions appended, as signatures are.
-
-    Parameters
-    ----------
-    data : bytes
-    sha256 : str
-        In hexadecimal.
-
-    Examples
-    --------
-    >>> first = b"... startxref 9 %%EOF" + bytes([10])
-    >>> grown_from(first + b"signature", hashlib.sha256(first).hexdigest())
-    True
-    >>> grown_from(b"%" + first, hashlib.sha256(first).hexdigest())
-    False
-    """
-    return any(hashlib.sha256(data[: match.end()]).hexdigest() == sha256 for match in _END.finditer(data))
 
 
 def name(text: str) -> generic.NameObject:

@@ -31,7 +31,8 @@ from calcpack.record.folder import as_built, output_folder
 from calcpack.record.identity import Identity, token_errors
 from calcpack.record.locking import locked, sync_folder
 from calcpack.record.numbers import audited
-from calcpack.record.pdf_update import Update, built_length, open_pdf
+from calcpack.record.additions import built_length
+from calcpack.record.pdf_update import Update, open_pdf
 from calcpack.record.roles import ROLES, Role
 from calcpack.record.rules import hindrances, same_name
 from calcpack.record.signatures import (

@@ -466,6 +466,6 @@ def test_many_pages_are_read_in_parts(loft, monkeypatch):
     monkeypatch.setattr(confined, "_LARGE", 0)
     for count in (1, 2, 5):
         monkeypatch.setattr(os, "sched_getaffinity", lambda _, count=count: set(range(count)))
-        assert confined.texts_of_many_pages(content, "pack.pdf") == whole
+        assert confined.whole_pdf(content, "pack.pdf")[1] == whole
     with pytest.raises(CalcpackError, match=r"x\.pdf: it is no readable PDF"):
-        confined.texts_of_many_pages(b"%PDF-1.7 nothing", "x.pdf")
+        confined.whole_pdf(b"%PDF-1.7 nothing", "x.pdf")

@@ -144,18 +144,19 @@ def solve(
     at = {place: _nearest(nodes, place) for place in dict.fromkeys(places)}
     h = np.diff(nodes)
     forces, intensity = _loading(nodes, at, sets)
-    stiff = _stiffness(h, count)
     held = sorted({2 * at[place] for place in supports})
     held += [2 * node + 1 for node, is_fixed in ((0, fixed[0]), (count - 1, fixed[1])) if is_fixed]
     if len(held) < 2:
         raise ValueError("the beam is a mechanism")
-    free = np.setdiff1d(np.arange(2 * count), held)
     turned = np.zeros((2 * count, len(sets)))
+    free = np.ones(2 * count, dtype=bool)
+    free[held] = False
+    elements = _elements(h)
     try:
-        turned[free] = splu(stiff[free][:, free].tocsc()).solve(forces[free])
+        turned[free] = splu(_stiffness(elements, free)).solve(forces[free])
     except RuntimeError:  # what scipy says of a singular matrix
         raise ValueError("spans so unlike each other that the beam cannot be solved") from None
-    residual = stiff @ turned - forces
+    residual = _holding(elements, turned) - forces
     reactions = -residual[[2 * at[place] for place in supports]].T
     shear, moment, deflection = _recovered(h, turned, intensity)
     ends = np.stack([moment[:, 0, 0] * fixed[0], _at_end(moment[:, -1], h[-1]) * fixed[1]], axis=1)
@@ -199,9 +200,10 @@ def _loading(nodes: Floats, at: dict[float, int], sets: Sequence[Sequence[Load]]
     return forces, intensity
 
 
-def _stiffness(h: Floats, count: int) -> sparse.csr_matrix:
+def _elements(h: Floats) -> Floats:
+    """Stiffness of each element, (4, 4, elements): moved and turned at its start, then at its end."""
     one = np.ones_like(h)
-    matrix = np.array(
+    found: Floats = np.array(
         [
             [12 * one, 6 * h, -12 * one, 6 * h],
             [6 * h, 4 * h**2, -6 * h, 2 * h**2],
@@ -209,12 +211,30 @@ def _stiffness(h: Floats, count: int) -> sparse.csr_matrix:
             [6 * h, 2 * h**2, -6 * h, 4 * h**2],
         ]
     ) / (h**3)
-    first = 2 * np.arange(len(h))
-    rows = np.stack([first + i for i in range(4)])
-    i = np.broadcast_to(rows[:, None, :], matrix.shape)
-    j = np.broadcast_to(rows[None, :, :], matrix.shape)
-    shape = (2 * count, 2 * count)
-    return sparse.coo_matrix((matrix.ravel(), (i.ravel(), j.ravel())), shape=shape).tocsr()
+    return found
+
+
+def _freedoms(count: int) -> NDArray[np.int_]:
+    """Numbers of the freedoms of each element, (4, elements)."""
+    return 2 * np.arange(count) + np.arange(4)[:, None]
+
+
+def _stiffness(elements: Floats, free: NDArray[np.bool_]) -> sparse.csc_matrix:
+    """Of the freedoms that are free, among themselves."""
+    own, place = _freedoms(elements.shape[-1]), np.cumsum(free) - 1
+    i = np.broadcast_to(own[:, None], elements.shape)
+    j = np.broadcast_to(own[None], elements.shape)
+    inner = free[i] & free[j]
+    size = int(free.sum())
+    return sparse.csc_matrix((elements[inner], (place[i[inner]], place[j[inner]])), shape=(size, size))
+
+
+def _holding(elements: Floats, turned: Floats) -> Floats:
+    """The forces that hold all freedoms where they are."""
+    own = _freedoms(elements.shape[-1])
+    found = np.zeros_like(turned)
+    np.add.at(found, own, np.einsum("ijn,jns->ins", elements, turned[own]))
+    return found
 
 
 def _recovered(h: Floats, turned: Floats, intensity: Floats) -> tuple[Floats, Floats, Floats]:

@@ -8,9 +8,9 @@ from typing import Any
 from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.book import Book
 from calcpack.record.auditing.findings import Finding, Verdict
-from calcpack.record.auditing.formulas import factor
 from calcpack.record.auditing.lines import WorkedLine
 from calcpack.record.auditing.reading import Record
+from calcpack.record.auditing.units import unit
 
 # The ratio stated for a demand without any resistance.
 NO_RESISTANCE = 1.0e6
@@ -43,13 +43,17 @@ def audit_checks(book: Book, record: Record, lines: Sequence[WorkedLine]) -> Non
         if not isinstance(check, dict):
             book.wrong(f"results.checks[{number}]", "it is not written as a check")
             continue
-        ranked = sorted(
-            (line for line in required if line.line.no not in taken),
-            key=lambda line: len(_check_faults(check, line)),
-        )
-        faults = _check_faults(check, ranked[0]) if ranked else {"": "no line requires anything"}
-        if ranked and len(faults) < 3:
-            taken.add(ranked[0].line.no)
+        left = [line for line in required if line.line.no not in taken]
+        try:
+            size = unit(str(check.get("unit"))).near
+            nearest, misfits = _nearest(check, left, size)
+            faults = {"": "no line requires anything"}
+            if nearest is not None:
+                faults = {key: _in_words(key, again, check, nearest) for key, again in misfits.items()}
+                if len(faults) < 3:
+                    taken.add(nearest.line.no)
+        except ValueError as error:
+            nearest, faults = None, {"unit": str(error)}
         for key in ("name", "demand", "capacity", "unit", "ratio", "passes", "cite"):
             book.seen(f"results.checks[{number}].{key}")
         key = next(iter(faults), "")
@@ -60,7 +64,7 @@ def audit_checks(book: Book, record: Record, lines: Sequence[WorkedLine]) -> Non
                 f"{path}.{key}" if key else path,
                 str(check.get("name", "")),
                 _check_said(check),
-                f"line {ranked[0].line.no}" if ranked else "",
+                f"line {nearest.line.no}" if nearest is not None else "",
                 "",
                 Verdict.WRONG if faults else Verdict.AGREES,
                 "; ".join(faults.values()),
@@ -76,32 +80,47 @@ def _check_said(check: Mapping[str, Any]) -> str:
         return ""
 
 
-def _check_faults(check: Mapping[str, Any], line: WorkedLine) -> dict[str, str]:
-    """What of a check is not what a requirement says, by its key."""
+def _nearest(
+    check: Mapping[str, Any], lines: Sequence[WorkedLine], size: float
+) -> tuple[WorkedLine | None, dict[str, object]]:
+    """The first of the requirements that a check is most like, and what of it is not so."""
+    nearest, least = None, {}
+    for line in lines:
+        misfits = _misfits(check, line, size)
+        if nearest is None or len(misfits) < len(least):
+            nearest, least = line, misfits
+        if not least:
+            break
+    return nearest, least
+
+
+def _misfits(check: Mapping[str, Any], line: WorkedLine, size: float) -> dict[str, object]:
+    """What of a check is not what a requirement says, by its key: what it should be."""
     assert line.sides is not None
-    no, faults = line.line.no, {}
     sides = line.sides if line.formula.op in ("le", "lt", "eq") else line.sides[::-1]
-    try:
-        size = float(factor(str(check.get("unit"))))
-        demand, capacity = (float(side.size) / size for side in sides)
-    except ValueError as error:
-        return {"unit": str(error), "demand": "", "capacity": ""}
-    for key, again in (("demand", demand), ("capacity", capacity)):
-        stated = check.get(key)
-        if not _close(stated, again):
-            faults[key] = f"line {no} gives a {key} of {again:.12g}, stated is {stated!r:.40}"
+    demand, capacity = sides[0].near / size, sides[1].near / size
     passes = bool(line.value.size) if line.value is not None else None
     if line.formula.op != "eq" and capacity > 0:
         ratio = max(demand, 0.0) / capacity
     else:
         ratio = 0.0 if passes else NO_RESISTANCE
-    if not _close(check.get("ratio"), ratio):
-        faults["ratio"] = f"the ratio is {ratio:.12g}, stated is {check.get('ratio')!r:.40}"
+    numbers = {"demand": demand, "capacity": capacity, "ratio": ratio}
+    found: dict[str, object] = {key: each for key, each in numbers.items() if not _close(check.get(key), each)}
     if check.get("passes") is not passes:
-        faults["passes"] = f"line {no} is {'' if passes else 'not '}satisfied"
+        found["passes"] = passes
     if check.get("cite") != line.line.cite:
-        faults["cite"] = f"line {no} cites '{line.line.cite[:60]}'"
-    return faults
+        found["cite"] = line.line.cite
+    return found
+
+
+def _in_words(key: str, again: object, check: Mapping[str, Any], line: WorkedLine) -> str:
+    no = line.line.no
+    if key == "passes":
+        return f"line {no} is {'' if again else 'not '}satisfied"
+    if key == "cite":
+        return f"line {no} cites '{str(again)[:60]}'"
+    gives = "the ratio is" if key == "ratio" else f"line {no} gives a {key} of"
+    return f"{gives} {again:.12g}, stated is {check.get(key)!r:.40}"
 
 
 def _close(stated: object, again: float) -> bool:

@@ -92,26 +92,27 @@ class PdfReading:
                     pipe.close()
 
 
-def texts_of_many_pages(content: bytes, name: str) -> tuple[str, ...]:
-    """The visible text of a large PDF, page by page, read by as many children as there are processors.
+def whole_pdf(content: bytes, name: str) -> tuple[dict[str, bytes], tuple[str, ...]]:
+    """The files that a PDF carries and the visible text of its pages; of a large one read by several children.
 
     Raises
     ------
     CalcpackError
-        As of :meth:`PdfReading.texts`.
+        As of :class:`PdfReading`.
     """
     of = processors(_MOST_CHILDREN)
     if of == 1 or len(content) < _LARGE:
-        return READING.texts(content, name)
-    children = [READING, *(PdfReading() for _ in range(of - 1))]
+        return READING.attached(content, name), READING.texts(content, name)
+    children = [PdfReading() for _ in range(of)]
     try:
         with ThreadPoolExecutor(of) as threads:
             asked = [
                 threads.submit(child.texts, content, name, part, of) for part, child in enumerate(children)
             ]
-            return tuple(text for each in asked for text in each.result())
+            attached = READING.attached(content, name)
+            return attached, tuple(text for each in asked for text in each.result())
     finally:
-        for child in children[1:]:
+        for child in children:
             child.close()
 
 

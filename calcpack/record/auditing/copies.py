@@ -5,14 +5,15 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator, Mapping, Sequence
 from fractions import Fraction
+from itertools import islice
 from typing import Any
 
 from calcpack.record.auditing.findings import Finding, Verdict, good, unchecked, wrong
 from calcpack.record.auditing.formulas import Part
 from calcpack.record.auditing.given import Notebook
 from calcpack.record.auditing.lines import WorkedLine
-from calcpack.record.auditing.printed import rounded_to, rounding_fault, twelve_digits
-from calcpack.record.auditing.reading import Record, canonical
+from calcpack.record.auditing.printed import rounded_to, rounding_fault, rounds_to, twelve_digits
+from calcpack.record.auditing.reading import Record, canonical, compact, written_alike
 from calcpack.record.auditing.units import Unit, printed_unit, unit
 
 MOST_DIFFERENCES = 200
@@ -48,7 +49,8 @@ def audit_copies(
     tuple of Finding
         One for each place where they differ.
     """
-    findings = list(_canonical(record))
+    written = compact(record.data)
+    findings = list(_canonical(record, written))
     if notebook is None:
         findings.append(
             unchecked(
@@ -62,11 +64,10 @@ def audit_copies(
     if copy is None:
         findings.append(wrong(_GROUP, notebook.name, "the notebook holds no record; it was not executed"))
     else:
-        differing = []
-        for difference in differences(record.data, copy, ""):
-            differing.append(difference)
-            if len(differing) >= MOST_DIFFERENCES:
-                break
+        alike = compact(copy) == written
+        differing = (
+            [] if alike else list(islice(differences(record.data, copy, ""), MOST_DIFFERENCES))
+        )
         for path, here, there in differing:
             place = _named(record, path)
             findings.append(
@@ -79,12 +80,12 @@ def audit_copies(
     return tuple(findings)
 
 
-def _canonical(record: Record) -> Iterator[Finding]:
+def _canonical(record: Record, written: bytes) -> Iterator[Finding]:
     """Bytes that say the same as others would: a digit beyond the sixteen that a number has."""
-    right = canonical(record.data)
-    if right == record.content:
+    if written_alike(record.content, written):
         yield good(_GROUP, record.name, "written as records are")
         return
+    right = canonical(record.data)
     ours, theirs = record.content.splitlines(), right.splitlines()
     rows = [number for number, (a, b) in enumerate(zip(ours, theirs, strict=False), start=1) if a != b]
     where = f"row {rows[0]}" if rows and len(ours) == len(theirs) else "its layout"
@@ -247,7 +248,7 @@ def _sides_fault(line: WorkedLine, shown: tuple[str, str, str] | None) -> str:
         return "what it compares is not shown"
     for side, text in zip(line.sides, (shown[0], shown[2]), strict=True):
         base = Unit(Fraction(1), side.force, side.length)  # type: ignore[arg-type]
-        if fault := rounding_fault(float(side.size), base, text):
+        if fault := rounding_fault(side.near, base, text):
             return fault
     return ""
 
@@ -278,15 +279,17 @@ def _shape(part: Part, places: dict[str, int]) -> tuple[object, ...]:
 
 def _formula_fault(line: WorkedLine, text: str) -> str:
     """Every number in the stored formula stands in the shown one, rounded as it is shown."""
-    terms = [_term(match) for match in _TERM.finditer(text)]
+    terms: list[_Term] | None = None
     for part, bare in _literals(line.formula, ""):
-        of = part.unit or "1"
+        if _is_left_out(part):
+            continue
+        if terms is None:
+            terms = [_Term(match) for match in _TERM.finditer(text)]
         try:
-            size = twelve_digits(float(part.text)) * unit(of).size
-            kept = any(_stands_for(size, of, bare, *term) for term in terms)
+            kept = any(term.stands_for(part, bare) for term in terms)
         except ValueError as error:
             return str(error)
-        if not kept and not _is_left_out(part):
+        if not kept:
             return f"the formula holds {part.text} {part.unit}".rstrip() + ", and it is not shown so"
     return ""
 
@@ -305,25 +308,38 @@ def _literals(part: Part, bare: str) -> Iterator[tuple[Part, str]]:
             yield from _literals(each, part.unit if part.op == "number_in" else bare)
 
 
-def _term(match: re.Match[str]) -> tuple[Fraction, Fraction, str]:
-    """A shown number: what it says, one of its last digit, its unit's label."""
-    part = match["part"] or ""
-    power = int(match["power"] or (match["raised"] or "0").translate(_RAISED)) if match[0] else 0
-    step = Fraction(10) ** (max(-40, min(power, 40)) - len(part))
-    return int(match["whole"] + part) * step, step, match["unit"] or ""
+class _Term:
+    """A number that a formula shows, with its unit's label; one of its last digit is its step."""
 
+    def __init__(self, match: re.Match[str]) -> None:
+        part = match["part"] or ""
+        power = int(match["power"] or (match["raised"] or "0").translate(_RAISED))
+        self.digits = int(match["whole"] + part)
+        self.power = max(-40, min(power, 40)) - len(part)
+        self.label = match["unit"] or ""
 
-def _stands_for(size: Fraction, of: str, bare: str, number: Fraction, step: Fraction, label: str) -> bool:
-    """Whether a shown number is the literal, rounded."""
-    if label:
-        try:
-            shown = printed_unit(label)
-        except ValueError:
-            return False
-        if shown.dimension != unit(of).dimension:
-            return False
-        return rounded_to(size / shown.size, step) == number
-    scale = unit(bare).size if bare else unit(of).size if of == "1" else None
-    if scale is None:  # a number shown without its unit, inside one that is worked on without
-        scale = unit(of).size
-    return rounded_to(size / scale, step) == number
+    def stands_for(self, part: Part, bare: str) -> bool:
+        """Whether it is a literal of the formula, rounded.
+
+        Raises
+        ------
+        ValueError
+            The literal's unit is none.
+        """
+        of = part.unit or "1"
+        if not self.label:  # a number shown without its unit, inside one that is worked on without
+            shown = unit(bare) if bare else unit(of)
+        else:
+            try:
+                shown = printed_unit(self.label)
+            except ValueError:
+                return False
+            if shown.dimension != unit(of).dimension:
+                return False
+        step = 10.0**self.power
+        sure = rounds_to(float(part.text) * unit(of).near / shown.near, self.digits * step, step)
+        if sure is not None:
+            return sure
+        size = twelve_digits(float(part.text)) * unit(of).size / shown.size
+        exact = Fraction(10) ** self.power
+        return rounded_to(size, exact) == self.digits * exact

@@ -63,6 +63,6 @@ def _is_of(line: WorkedLine, check: Mapping[str, Any]) -> bool:
         float(check["ratio"])
     except (KeyError, TypeError, ValueError):
         return False
-    sides = sorted(float(each.size) for each in line.sides)
+    sides = sorted(each.near for each in line.sides)
     close = all(abs(a - b) <= 1e-9 * max(abs(a), abs(b)) for a, b in zip(stated, sides, strict=True))
     return close and line.line.cite == check.get("cite")

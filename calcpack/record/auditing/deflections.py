@@ -47,7 +47,7 @@ def stated_deflections(book: Book, record: Record, lines: Sequence[WorkedLine]) 
             book.wrong(at, f"line {no} is no length")
             book.seen(path)
             continue
-        book.compare(path, float(size.size) * 1000, "mm", f"{worked.line.says}, line {no}", scale=1.0)
+        book.compare(path, size.near * 1000, "mm", f"{worked.line.says}, line {no}", scale=1.0)
 
 
 def _without(book: Book, record: Record, key: str, path: str) -> None:

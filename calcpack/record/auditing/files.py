@@ -9,7 +9,7 @@ from pathlib import Path, PurePosixPath
 from typing import Any
 
 from calcpack.job.errors import CalcpackError
-from calcpack.record.auditing.confined import READING, texts_of_many_pages
+from calcpack.record.auditing.confined import READING, whole_pdf
 from calcpack.record.auditing.pages import sheet_pages
 from calcpack.record.auditing.reading import read_json
 
@@ -208,11 +208,16 @@ def sheets_folder(path: Path) -> Path:
     return path / "sheets" if (path / "sheets").is_dir() else path
 
 
-def _folder(path: Path) -> Target:
+def records_in(path: Path) -> list[Path]:
+    """The records of a pack's folder by name; none of what is no folder."""
+    if not path.is_dir():
+        return []
     sheets = sheets_folder(path)
-    records = sorted(sheets.glob("*.json"))
-    if sheets == path:
-        records = [each for each in records if each.name != "job.json"]
+    return sorted(each for each in sheets.glob("*.json") if sheets != path or each.name != "job.json")
+
+
+def _folder(path: Path) -> Target:
+    sheets, records = sheets_folder(path), records_in(path)
     if not records:
         raise CalcpackError(f"there is no record in '{sheets}'", remedy="name the folder of a pack")
     home = path if sheets != path else path.parent
@@ -277,7 +282,7 @@ def _manifest(path: Path) -> dict[str, str] | None:
 
 def _pdf(path: Path, records: Path | None) -> Target:
     content = read_file(path)
-    attached = READING.attached(content, path.name)
+    attached, pages = whole_pdf(content, path.name)
     found = {name: data for name, data in attached.items() if name.endswith(".json")}
     if records is not None:
         if not records.is_dir():
@@ -290,7 +295,6 @@ def _pdf(path: Path, records: Path | None) -> Target:
             file=str(path),
             remedy="name the folder that holds the records with --record",
         )
-    pages = texts_of_many_pages(content, path.name)
     by_mark = sheet_pages(pages)
     return Target(
         name=str(path),

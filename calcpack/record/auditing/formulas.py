@@ -38,6 +38,13 @@ _RANGE = 1e120  # no quantity of a building is beyond
 _ROUNDING = 2.0**-52
 # Sides of a comparison as close as this count as equal: relative to the larger; beside zero [kN, m].
 EQUAL, NOTHING = 1e-9, 1e-12
+_LEAVES = {
+    "symbol": frozenset({"symbol"}),
+    "quantity": frozenset({"quantity", "unit"}),
+    "measured": frozenset({"measured", "unit"}),
+    "number": frozenset({"number"}),
+}
+_PARTS = frozenset({"op", "args", "unit"})
 _DECIMAL = re.compile(r"[0-9]{1,40}(?:\.[0-9]{1,40})?")
 
 
@@ -69,7 +76,15 @@ class Part:
     @property
     def symbols(self) -> dict[str, None]:
         """What it draws on, in order of appearance."""
-        return {part.text: None for part in self.walk() if part.op == "symbol"}
+        found: dict[str, None] = {}
+        self._gather(found)
+        return found
+
+    def _gather(self, found: dict[str, None]) -> None:
+        if self.op == "symbol":
+            found[self.text] = None
+        for each in self.args:
+            each._gather(found)
 
 
 class Budget:
@@ -108,9 +123,9 @@ def read_formula(tree: object, budget: Budget | None = None) -> Part:
             raise CalcpackError(f"a formula is at most {DEEPEST} deep and has at most {LARGEST} parts")
         if not isinstance(node, dict) or len(node) > 3:
             raise CalcpackError("a part of the formula is none of number, quantity, symbol, operation")
-        keys = set(node)
-        for kind in ("quantity", "measured", "number", "symbol"):
-            if kind in keys and keys <= ({kind, "unit"} if kind in ("quantity", "measured") else {kind}):
+        keys = node.keys()
+        for kind, whole in _LEAVES.items():
+            if kind in node and keys <= whole:
                 text, of = node[kind], node.get("unit", "")
                 if not isinstance(text, str) or not isinstance(of, str) or len(text) > 82:
                     raise CalcpackError("a part of the formula has no text where one should be")
@@ -122,7 +137,7 @@ def read_formula(tree: object, budget: Budget | None = None) -> Part:
         name, args, of = node.get("op"), node.get("args"), node.get("unit", "")
         if not isinstance(name, str) or name not in ARGUMENTS:
             raise CalcpackError(f"a formula has no operation '{str(name)[:40]}'")
-        if not keys <= {"op", "args", "unit"} or not isinstance(args, list) or not isinstance(of, str):
+        if not keys <= _PARTS or not isinstance(args, list) or not isinstance(of, str):
             raise CalcpackError(f"'{name}' is not written as an operation is")
         least, most = ARGUMENTS[name]
         if not least <= len(args) <= most:
@@ -138,14 +153,29 @@ def read_formula(tree: object, budget: Budget | None = None) -> Part:
     return read(tree, 1)
 
 
-@dataclass(frozen=True, slots=True)
 class Value:
-    """A value in kN and m, what sixteen digits may have lost of it, its dimension."""
+    """A value in kN and m, what sixteen digits may have lost of it, its dimension.
 
-    size: Real
-    slack: float = 0.0
-    force: Fraction | int = 0
-    length: Fraction | int = 0
+    Parameters
+    ----------
+    size : mpmath.mpf
+    slack : float
+    force, length : Fraction or int
+        Exponents.
+
+    Attributes
+    ----------
+    near : float
+        Its size in sixteen digits.
+    """
+
+    __slots__ = ("force", "length", "near", "size", "slack")
+
+    def __init__(
+        self, size: Real, slack: float = 0.0, force: Fraction | int = 0, length: Fraction | int = 0
+    ) -> None:
+        self.size, self.slack, self.force, self.length = size, slack, force, length
+        self.near = float(size)
 
     @property
     def dimension(self) -> tuple[Fraction | int, Fraction | int]:
@@ -165,11 +195,17 @@ def _real(text: str) -> Real:
     return CONTEXT.mpf(text)
 
 
+@lru_cache(maxsize=8192)
 def measured(number: float | str, of: str) -> Value:
     """A number of a unit."""
     known = unit(of)
     size = (_real(number) if isinstance(number, str) else CONTEXT.mpf(number)) * factor(of)
     return Value(size, abs(float(size)) * _ROUNDING, *known.dimension)
+
+
+@lru_cache(maxsize=8192)
+def _number(text: str) -> Value:
+    return Value(_real(text), abs(float(text)) * _ROUNDING)
 
 
 def same(left: Real, right: Real) -> bool:
@@ -217,11 +253,11 @@ def evaluate(part: Part, known: Mapping[str, Value]) -> Value:
     if part.op == "symbol":
         return known[part.text]
     if part.op == "number":
-        return Value(_real(part.text), abs(float(part.text)) * _ROUNDING)
+        return _number(part.text)
     if part.op in ("quantity", "measured"):
         return measured(part.text, part.unit)
     result = _OPERATIONS[part.op](part, [evaluate(each, known) for each in part.args])
-    if not -_RANGE < result.size < _RANGE or not result.slack < _RANGE:
+    if not abs(result.near) < _RANGE or not result.slack < _RANGE:
         raise CalcpackError(f"'{part.op}' gives a value beyond all bounds")
     return result
 
@@ -232,6 +268,9 @@ def _is_zero(part: Part) -> bool:
 
 def _alike(part: Part, values: list[Value], start: int = 0) -> tuple[Fraction | int, Fraction | int]:
     """The dimension that all arguments share; a bare 0 goes with any."""
+    first = values[start]
+    if all(each.force == first.force and each.length == first.length for each in values[start:]):
+        return first.dimension
     rows = list(zip(part.args[start:], values[start:], strict=True))
     judged = [value for each, value in rows if not _is_zero(each)] or [value for _, value in rows]
     for value in judged[1:]:
@@ -251,8 +290,7 @@ def _plain(part: Part, value: Value) -> Value:
 
 def _sum(part: Part, values: list[Value]) -> Value:
     sizes = [-value.size if part.op == "sub" and place else value.size for place, value in enumerate(values)]
-    most = max(abs(float(size)) for size in sizes)
-    slack = sum(value.slack for value in values) + len(values) * most * _ROUNDING
+    slack = sum(value.slack for value in values) + len(values) * max(abs(value.near) for value in values) * _ROUNDING
     return Value(sum(sizes[1:], sizes[0]), slack, *_alike(part, values))
 
 
@@ -264,18 +302,17 @@ def _extreme(part: Part, values: list[Value]) -> Value:
 
 def _product(part: Part, values: list[Value]) -> Value:
     a, b = values
-    size = a.size * b.size
-    slack = abs(float(a.size)) * b.slack + abs(float(b.size)) * a.slack + abs(float(size)) * _ROUNDING
-    return Value(size, slack, a.force + b.force, a.length + b.length)
+    slack = abs(a.near) * b.slack + abs(b.near) * a.slack + abs(a.near * b.near) * _ROUNDING
+    return Value(a.size * b.size, slack, a.force + b.force, a.length + b.length)
 
 
 def _quotient(part: Part, values: list[Value]) -> Value:
     a, b = values
     if not b.size:
         raise ValueError("a division by zero")
-    size = a.size / b.size
-    slack = (a.slack + abs(float(size)) * b.slack) / abs(float(b.size)) + abs(float(size)) * _ROUNDING
-    return Value(size, slack, a.force - b.force, a.length - b.length)
+    near = abs(a.near / b.near)
+    slack = (a.slack + near * b.slack) / abs(b.near) + near * _ROUNDING
+    return Value(a.size / b.size, slack, a.force - b.force, a.length - b.length)
 
 
 def _root(part: Part, values: list[Value]) -> Value:
@@ -285,7 +322,13 @@ def _root(part: Part, values: list[Value]) -> Value:
     size = CONTEXT.sqrt(a.size)
     near = float(size)
     slack = (min(a.slack / (2 * near), a.slack**0.5) if near else a.slack**0.5) + near * _ROUNDING
-    return Value(size, slack, Fraction(a.force) / 2, Fraction(a.length) / 2)
+    return Value(size, slack, _times(a.force, Fraction(1, 2)), _times(a.length, Fraction(1, 2)))
+
+
+def _times(exponent: Fraction | int, by: Fraction) -> Fraction | int:
+    """An exponent of a dimension times a number, whole where it is."""
+    found = exponent * by
+    return int(found) if found.denominator == 1 else found
 
 
 def _constant(part: Part) -> Fraction | None:
@@ -312,7 +355,7 @@ def _power(part: Part, values: list[Value]) -> Value:
     if not base.size and exponent.size < 0:
         raise ValueError("a division by zero")
     size = base.size**exponent.size
-    near, steep = abs(float(base.size)), abs(float(exponent.size))
+    near, steep = abs(base.near), abs(exponent.near)
     slack = abs(float(size)) * _ROUNDING
     if near:
         grows = abs(float(CONTEXT.log(near)))
@@ -324,7 +367,7 @@ def _power(part: Part, values: list[Value]) -> Value:
         raise ValueError(
             f"{dimension_words(*base.dimension)} is raised to something else than a small number"
         )
-    return Value(size, slack, base.force * exact, base.length * exact)
+    return Value(size, slack, _times(base.force, exact), _times(base.length, exact))
 
 
 def _negative(part: Part, values: list[Value]) -> Value:

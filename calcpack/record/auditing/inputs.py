@@ -8,15 +8,17 @@ import tempfile
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from calcpack.job.errors import CalcpackError
-from calcpack.job.model import Job
 from calcpack.record.auditing.beam import Load
 from calcpack.record.auditing.copies import differences
 from calcpack.record.auditing.files import Target, stays_below
 from calcpack.record.auditing.findings import Finding, good, unchecked, wrong
 from calcpack.record.auditing.given import Given
+
+if TYPE_CHECKING:
+    from calcpack.job.model import Job
 
 _GROUP = "origins"
 

@@ -85,10 +85,10 @@ class WorkedLine:
         if self.line.kind == "require" or self.value is None:
             return ""
         try:
-            stated = measured(self.line.value, self.line.unit).size
+            stated = measured(self.line.value, self.line.unit)
         except ValueError:
             return ""
-        return relative(float(stated), float(self.value.size), float(stated - self.value.size))
+        return relative(stated.near, self.value.near, float(stated.size - self.value.size))
 
 
 def relative(stated: float, other: float, apart: float | None = None) -> str:
@@ -183,9 +183,10 @@ def _worked(
     values: Mapping[str, Value],
     order: Sequence[str],
 ) -> WorkedLine:
-    faults = [*order, *_link_faults(line, formula, earlier), *_kind_faults(line, formula)]
+    symbols = formula.symbols
+    faults = [*order, *_link_faults(line, symbols, earlier), *_kind_faults(line, formula)]
     known = {symbol: values[no] for symbol, no in line.inputs.items() if no in values}
-    if missing := [symbol for symbol in formula.symbols if symbol not in known]:
+    if missing := [symbol for symbol in symbols if symbol not in known]:
         if not faults:
             faults.append(f"'{missing[0][:40]}' has no value")
         return WorkedLine(line, formula, None, None, tuple(faults))
@@ -205,7 +206,9 @@ def _worked(
     return WorkedLine(line, formula, value, None, tuple(faults))
 
 
-def _link_faults(line: RecordLine, formula: Part, earlier: Mapping[str, RecordLine]) -> list[str]:
+def _link_faults(
+    line: RecordLine, symbols: Mapping[str, None], earlier: Mapping[str, RecordLine]
+) -> list[str]:
     """What is wrong with where its inputs come from."""
     faults = []
     for symbol, no in line.inputs.items():
@@ -216,7 +219,6 @@ def _link_faults(line: RecordLine, formula: Part, earlier: Mapping[str, RecordLi
             faults.append(f"'{symbol[:40]}' is taken from line {no}, which gives no value")
         elif source.symbol != symbol:
             faults.append(f"'{symbol[:40]}' is taken from line {no}, which gives '{source.symbol[:40]}'")
-    symbols = formula.symbols
     if drawn := [symbol for symbol in symbols if symbol not in line.inputs]:
         faults.append(f"the formula's '{drawn[0][:40]}' comes from no line")
     if idle := [symbol for symbol in line.inputs if symbol not in symbols]:
@@ -263,9 +265,8 @@ def _value_faults(line: RecordLine, formula: Part, value: Value) -> list[str]:
             f"the formula gives {dimension_words(*value.dimension)}, "
             f"its unit is that of {dimension_words(*of.dimension)}"
         ]
-    stated = CONTEXT.mpf(line.value) * factor(line.unit)
-    apart = abs(stated - value.size)
-    if apart > AGREEMENT * abs(value.size) + 8 * value.slack:
+    apart = abs(float(measured(line.value, line.unit).size - value.size))
+    if apart > AGREEMENT * abs(value.near) + 8 * value.slack:
         right = CONTEXT.nstr(value.size / factor(line.unit), 12)
         faults.append(f"the value is {right} {line.unit}, stated is {line.value!r}")
     elif line.kind == "take" and not _literally(line, formula):

@@ -165,7 +165,7 @@ def audit_origins(record: Record, given: Given | None, lines: Sequence[WorkedLin
 
 def _held(line: WorkedLine, pool: Sequence[float]) -> Finding:
     try:
-        size = line.line.value * float(unit(line.line.unit).size)
+        size = line.line.value * unit(line.line.unit).near
     except ValueError:
         size = line.line.value
     near = _nearest(pool, size)
@@ -215,7 +215,7 @@ def _handed_on(record: Record, given: Given, lines: Sequence[WorkedLine]) -> Ite
         if worked.line.kind == "take":
             continue
         for part in worked.formula.walk():
-            if part.op == "measured" and not _is_known(float(part.text) * float(unit(part.unit).size), known):
+            if part.op == "measured" and not _is_known(float(part.text) * unit(part.unit).near, known):
                 loose.append(worked.line.no)
                 break
     if loose:
@@ -237,7 +237,7 @@ def _is_known(size: float, known: Sequence[float]) -> bool:
 def _from_results(line: RecordLine, results: Sequence[float]) -> bool:
     """Whether a value brought in from the analysis is one of the figures of the results, in size."""
     try:
-        size = abs(line.value) * float(unit(line.unit).size)
+        size = abs(line.value) * unit(line.unit).near
     except ValueError:
         return False
     return _is_known(size, results) or _is_known(1000 * size, results)  # deflections stand in mm
@@ -267,7 +267,7 @@ def _shared(record: Record, given: Given | None, lines: Sequence[WorkedLine]) ->
 
 
 def _equal(line: RecordLine, stated: object, path: str) -> Finding:
-    size = line.value * float(unit(line.unit).size)
+    size = line.value * unit(line.unit).near
     agrees = (
         isinstance(stated, int | float)
         and not isinstance(stated, bool)

@@ -12,7 +12,7 @@ from calcpack.record.auditing.reading import Record, RecordLine
 
 _FOOT = re.compile(r"^(?P<mark>.{1,200}) page (?P<page>[0-9]+) of [0-9]+$", re.M)
 _BEGINS = re.compile(r"(?m)^([0-9]{1,3}\.[0-9]{2,3})(?=\s)")
-_SPACE = re.compile(r"\s+")
+_MORE_DIGITS = frozenset("0123456789.")
 _NOTHING: Mapping[str, str] = MappingProxyType({})
 _LONG = 25  # letters of a cell that may take several rows of text
 _WORDS = 12  # letters of a line's words that tell it from a number
@@ -44,7 +44,7 @@ def upright(text: str) -> str:
 
 def bare(text: str) -> str:
     """Upright, and without any space: how a PDF spaces its letters says nothing either."""
-    return _SPACE.sub("", upright(text))
+    return "".join(upright(text).split())
 
 
 def audit_pages(
@@ -135,9 +135,13 @@ def shows_value(line: RecordLine, parts: Sequence[str], compared: str) -> bool:
         What a requirement compares; "" where no copy tells.
     """
     if line.kind == "require":
-        shown, flat = bare(compared) + bare(line.shown), [_SPACE.sub("", part) for part in parts]
+        shown, flat = bare(compared) + bare(line.shown), ["".join(part.split()) for part in parts]
         return any(shown in part and ("notsatisfied" in part) == (line.passes is False) for part in flat)
-    words = r"\s*".join(map(re.escape, upright(line.shown).split()))
+    pieces = upright(line.shown).split()
+    usual = "= " + " ".join(pieces)
+    if any(usual in part and part.partition(usual)[2][:1] not in _MORE_DIGITS for part in parts):
+        return True
+    words = r"\s*".join(map(re.escape, pieces))
     whole = re.compile(rf"=\s*{words}(?![0-9.])")
     return any(whole.search(part) for part in parts)
 

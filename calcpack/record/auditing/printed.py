@@ -6,6 +6,7 @@ import math
 import re
 from dataclasses import dataclass
 from fractions import Fraction
+from functools import cached_property, lru_cache
 
 from calcpack.record.auditing.units import Unit, dimension_words, printed_unit
 
@@ -17,7 +18,7 @@ _TEXT = re.compile(
 _RAISED = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻", "0123456789-")
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class Printed:
     """What a printed text says.
 
@@ -33,12 +34,18 @@ class Printed:
     step: Fraction
     unit: Unit
 
-    @property
-    def base(self) -> Fraction:
-        """The number in kN and m."""
-        return self.number * self.unit.size
+    @cached_property
+    def near(self) -> float:
+        """The number in kN and m, in sixteen digits."""
+        return float(self.number * self.unit.size)
+
+    @cached_property
+    def near_step(self) -> float:
+        """The step in kN and m, in sixteen digits."""
+        return float(self.step * self.unit.size)
 
 
+@lru_cache(maxsize=4096)
 def read_printed(text: str) -> Printed:
     """Read a printed value.
 
@@ -89,6 +96,21 @@ def rounded_to(value: Fraction, step: Fraction) -> Fraction:
     return -count * step if value < 0 else count * step
 
 
+def rounds_to(near: float, number: float, step: float) -> bool | None:
+    """Whether a value rounds to a number, where sixteen digits of all three tell; None where they do not.
+
+    Examples
+    --------
+    >>> rounds_to(10.0562, 10.06, 0.01), rounds_to(10.0562, 10.05, 0.01), rounds_to(10.055, 10.06, 0.01)
+    (True, False, None)
+    """
+    apart = abs(near - number)
+    lost = 1e-9 * step + 1e-11 * (abs(near) + abs(number))  # twelve digits count, see above
+    if apart < step / 2 - lost:
+        return True
+    return False if apart > step / 2 + lost else None
+
+
 def rounding_fault(value: float, unit: Unit, text: str) -> str:
     """What is wrong with a value's printed text; "" if nothing.
 
@@ -104,6 +126,10 @@ def rounding_fault(value: float, unit: Unit, text: str) -> str:
     """
     try:
         said = read_printed(text)
+        if said.unit.dimension == unit.dimension and rounds_to(
+            value * unit.near, said.near, said.near_step
+        ):
+            return ""
         exact = twelve_digits(value) * unit.size / said.unit.size
     except ValueError as error:
         return str(error)

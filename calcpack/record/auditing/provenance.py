@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import functools
 import hashlib
 import itertools
 import tomllib
@@ -11,12 +12,12 @@ from typing import Any
 
 import calcpack
 from calcpack.job.house import house_folder
+from calcpack.record.additions import grown_from
 from calcpack.record.auditing.files import Target, is_file, leads_out, read_file, stays_below
 from calcpack.record.auditing.findings import Finding, Verdict, good, unchecked, wrong
 from calcpack.record.auditing.given import Notebook
 from calcpack.record.auditing.reading import Record
 from calcpack.record.folder import PACK
-from calcpack.record.pdf_update import grown_from
 
 MOST_TABLES = 6
 _GROUP = "provenance"
@@ -62,7 +63,7 @@ def _template(stated: Mapping[str, Any], job_folder: Path | None) -> Iterator[Fi
     try:
         notebook = read_file(found[0] / "notebook.ipynb")
         settings = read_file(found[0] / _SETTINGS)
-        here = str(tomllib.loads(settings.decode("utf-8")).get("version", ""))
+        here = _version(settings)
     except ValueError:
         yield unchecked(_GROUP, place, "the template here cannot be read")
         return
@@ -93,6 +94,11 @@ def _template(stated: Mapping[str, Any], job_folder: Path | None) -> Iterator[Fi
         Verdict.WRONG,
         f"version {here} of the template as it is here has another hash",
     )
+
+
+@functools.lru_cache(maxsize=16)
+def _version(settings: bytes) -> str:
+    return str(tomllib.loads(settings.decode("utf-8")).get("version", ""))
 
 
 def input_digests(inputs: Mapping[str, bytes]) -> frozenset[str]:

@@ -164,6 +164,7 @@ def read_record(content: bytes, name: str) -> Record:
 
 
 _TEXTS = ("no", "kind", "symbol", "says", "unit", "shown", "cite")
+_PARTS = frozenset({*_TEXTS, "value", "inputs", "expression", "origin", "passes"})
 
 
 def _line(data: object, name: str, place: int) -> RecordLine:
@@ -192,7 +193,7 @@ def _line(data: object, name: str, place: int) -> RecordLine:
         raise CalcpackError("a text is expected", file=name, mark=at, key="origin")
     if not isinstance(passes, bool | None):
         raise CalcpackError("true or false is expected", file=name, mark=at, key="passes")
-    if extra := sorted(data.keys() - {*_TEXTS, "value", "inputs", "expression", "origin", "passes"}):
+    if extra := sorted(data.keys() - _PARTS):
         raise CalcpackError("a line has no such part", file=name, mark=at, key=extra[0][:40])
     return RecordLine(
         no=data["no"],
@@ -214,3 +215,21 @@ def canonical(data: Mapping[str, Any]) -> bytes:
     """A record as its file should hold it, byte for byte."""
     text = json.dumps(dict(data), ensure_ascii=False, indent=1, allow_nan=False, sort_keys=True)
     return (text + "\n").encode()
+
+
+def compact(data: object) -> bytes:
+    """Plain data as text without layout, keys sorted: equal where two pieces are, to the last digit."""
+    return json.dumps(
+        data, ensure_ascii=False, allow_nan=False, sort_keys=True, separators=(",", ":")
+    ).encode()
+
+
+def written_alike(one: bytes, other: bytes) -> bool:
+    """Whether two ways to write the same data differ in spaces and ends of rows at most.
+
+    Examples
+    --------
+    >>> written_alike(b'{"a": [\\n 1, 2]}', compact({"a": [1, 2]})), written_alike(b"[1.0]", compact([1]))
+    (True, False)
+    """
+    return one.translate(None, b" \n") == other.translate(None, b" \n")

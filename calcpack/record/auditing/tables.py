@@ -141,8 +141,7 @@ def _read(text: str, head: str) -> Printed | None:
 
 def _is(value: float, shown: Printed) -> bool:
     """Whether a value in kN and m is the one shown."""
-    apart = abs(value - float(shown.base))
-    return apart <= _HALF * float(shown.step * shown.unit.size) + 1e-12
+    return abs(value - shown.near) <= _HALF * shown.near_step + 1e-12
 
 
 class _Pool:
@@ -153,7 +152,7 @@ class _Pool:
         for line in lines:
             for each in (line.value, *(line.sides or ())):
                 if each is not None:
-                    found.setdefault(each.dimension, []).append(float(each.size))
+                    found.setdefault(each.dimension, []).append(each.near)
         for value, dimension in (*_stated(record.results), *_resultants(record.results)):
             found.setdefault(dimension, []).append(value)
         self._sorted = {dimension: sorted(values) for dimension, values in found.items()}
@@ -161,8 +160,8 @@ class _Pool:
     def holds(self, shown: Printed) -> bool:
         """Whether one of them is shown, by size: a table may tell a direction in words."""
         values = self._sorted.get(shown.unit.dimension, [])
-        slack = _HALF * float(shown.step * shown.unit.size) + 1e-12
-        for middle in (float(shown.base), -float(shown.base)):
+        slack = _HALF * shown.near_step + 1e-12
+        for middle in (shown.near, -shown.near):
             place = bisect_left(values, middle - slack)
             if place < len(values) and values[place] <= middle + slack:
                 return True

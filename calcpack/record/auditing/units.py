@@ -5,7 +5,7 @@ from __future__ import annotations
 import re
 from dataclasses import dataclass
 from fractions import Fraction
-from functools import lru_cache
+from functools import cached_property, lru_cache
 
 # International foot; pound-force of 0.45359237 kg at 9.80665 m/s2 (ISO 80000-4). Base: kN and m.
 _FT = Fraction(3048, 10000)
@@ -44,13 +44,18 @@ _PIECE = re.compile(r"([*/]?)([A-Za-z]+|1)(?:\^(-?[0-9]))?")
 _RAISED = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻", "0123456789-")
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class Unit:
     """A unit: its size in kN and m, and its dimension."""
 
     size: Fraction
     force: int
     length: int
+
+    @cached_property
+    def near(self) -> float:
+        """Its size in sixteen digits."""
+        return float(self.size)
 
     @property
     def dimension(self) -> tuple[int, int]:
