@@ -8,9 +8,9 @@ from pathlib import Path
 
 from calcpack.files import OutputFolder, digest
 from calcpack.job.errors import CalcpackError, Problem
+from calcpack.record.additions import built_length
 from calcpack.record.folder import MANIFEST, PACK
 from calcpack.record.numbers import audited
-from calcpack.record.additions import built_length
 from calcpack.record.pdf_update import open_pdf
 from calcpack.record.register import Entry, EntrySignature, Register, last_of
 from calcpack.record.revisions import backwards

@@ -25,13 +25,13 @@ import calcpack
 from calcpack.files import write_file
 from calcpack.job.errors import CalcpackError
 from calcpack.job.model import Header, Submission
+from calcpack.record.additions import built_length
 from calcpack.record.appearance import appearance
 from calcpack.record.declaration import Declaring
 from calcpack.record.folder import as_built, output_folder
 from calcpack.record.identity import Identity, token_errors
 from calcpack.record.locking import locked, sync_folder
 from calcpack.record.numbers import audited
-from calcpack.record.additions import built_length
 from calcpack.record.pdf_update import Update, open_pdf
 from calcpack.record.roles import ROLES, Role
 from calcpack.record.rules import hindrances, same_name

@@ -9,9 +9,9 @@ from typing import Any
 
 from calcpack.files import digest
 from calcpack.job.errors import CalcpackError
+from calcpack.record.additions import built_length
 from calcpack.record.appearance import shown_time
 from calcpack.record.numbers import NumbersResult, audited
-from calcpack.record.additions import built_length
 from calcpack.record.pdf_update import open_pdf
 from calcpack.record.register import FILES, REGISTER, Register, last_of
 from calcpack.record.roles import PERSON, Role, needed_roles

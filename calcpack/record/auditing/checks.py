@@ -105,7 +105,9 @@ def _misfits(check: Mapping[str, Any], line: WorkedLine, size: float) -> dict[st
     else:
         ratio = 0.0 if passes else NO_RESISTANCE
     numbers = {"demand": demand, "capacity": capacity, "ratio": ratio}
-    found: dict[str, object] = {key: each for key, each in numbers.items() if not _close(check.get(key), each)}
+    found: dict[str, object] = {
+        key: again for key, again in numbers.items() if not _close(check.get(key), again)
+    }
     if check.get("passes") is not passes:
         found["passes"] = passes
     if check.get("cite") != line.line.cite:

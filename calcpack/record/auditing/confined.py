@@ -8,6 +8,8 @@ import json
 import os
 import subprocess
 import sys
+import threading
+from collections.abc import Mapping, Sequence
 from concurrent.futures import ThreadPoolExecutor
 from typing import IO
 
@@ -25,6 +27,7 @@ class PdfReading:
     def __init__(self) -> None:
         self._child: subprocess.Popen[bytes] | None = None
         self._owner = 0
+        self._one_at_a_time = threading.Lock()
 
     def texts(self, content: bytes, name: str, part: int = 0, of: int = 1) -> tuple[str, ...]:
         """The visible text of a PDF, page by page, or of one of several equal parts of its pages.
@@ -34,23 +37,25 @@ class PdfReading:
         CalcpackError
             It is no readable PDF, or would cost more than any pack of its size.
         """
-        return tuple(part.decode("utf-8") for _, part in self._ask("texts", content, name, part, of))
+        return tuple(text.decode("utf-8") for _, text in self._ask("texts", content, name, part=part, of=of))
 
-    def attached(self, content: bytes, name: str) -> dict[str, bytes]:
-        """The files that a PDF carries inside, by name.
+    def attached(self, content: bytes, name: str, endings: Sequence[str] = ("",)) -> dict[str, bytes]:
+        """The files that a PDF carries inside, by name; only those whose names end so.
 
         Raises
         ------
         CalcpackError
             It is no readable PDF, is encrypted, or would cost more than any pack of its size.
         """
-        return dict(self._ask("attached", content, name))
+        return dict(self._ask("attached", content, name, endings=endings))
 
-    def _ask(
-        self, ask: str, content: bytes, name: str, part: int = 0, of: int = 1
-    ) -> list[tuple[str, bytes]]:
+    def _ask(self, ask: str, content: bytes, name: str, **more: object) -> list[tuple[str, bytes]]:
+        question = {"ask": ask, "size": len(content), **more}
+        with self._one_at_a_time:
+            return self._answered(question, content, name)
+
+    def _answered(self, question: Mapping[str, object], content: bytes, name: str) -> list[tuple[str, bytes]]:
         questions, answers = self._pipes()
-        question = {"ask": ask, "size": len(content), "part": part, "of": of}
         try:
             questions.write(json.dumps(question).encode() + b"\n")
             questions.write(content)
@@ -93,7 +98,7 @@ class PdfReading:
 
 
 def whole_pdf(content: bytes, name: str) -> tuple[dict[str, bytes], tuple[str, ...]]:
-    """The files that a PDF carries and the visible text of its pages; of a large one read by several children.
+    """The files that a PDF carries and the visible text of its pages; a large one is read by several children.
 
     Raises
     ------

@@ -65,9 +65,7 @@ def audit_copies(
         findings.append(wrong(_GROUP, notebook.name, "the notebook holds no record; it was not executed"))
     else:
         alike = compact(copy) == written
-        differing = (
-            [] if alike else list(islice(differences(record.data, copy, ""), MOST_DIFFERENCES))
-        )
+        differing = [] if alike else list(islice(differences(record.data, copy, ""), MOST_DIFFERENCES))
         for path, here, there in differing:
             place = _named(record, path)
             findings.append(

@@ -14,6 +14,8 @@ from calcpack.record.auditing.pages import sheet_pages
 from calcpack.record.auditing.reading import read_json
 
 LARGEST_FILE = 400_000_000
+_JOB, _TABLES = (".toml", ".TOML"), (".csv", ".xlsx", ".CSV", ".XLSX")
+_INPUTS = (*_JOB, *_TABLES)
 
 
 @dataclass(frozen=True)
@@ -72,8 +74,6 @@ class Target:
     job_json : mapping or None
     manifest : mapping of file name to SHA-256, or None
     pack : Path or None
-    attached : mapping of name to bytes
-        What the PDF carries.
     inputs : mapping of name to bytes
         The job file first, then its tables.
     """
@@ -85,7 +85,6 @@ class Target:
     job_json: Mapping[str, Any] | None = None
     manifest: Mapping[str, str] | None = None
     pack: Path | None = None
-    attached: Mapping[str, bytes] = field(default_factory=dict)
     inputs: Mapping[str, bytes] = field(default_factory=dict)
     job_folder: Path | None = None
 
@@ -225,7 +224,7 @@ def _folder(path: Path) -> Target:
     order = {str(mark): place for place, mark in enumerate((job_json or {}).get("beams") or ())}
     records.sort(key=lambda each: (order.get(each.stem, len(order)), each.stem))
     pack = _own(home / "pack.pdf", home)
-    attached = READING.attached(read_file(pack), pack.name) if pack else {}
+    attached = READING.attached(read_file(pack), pack.name, _INPUTS) if pack else {}
     return Target(
         name=str(path),
         sheets=tuple(_beside(each) for each in records),
@@ -234,7 +233,6 @@ def _folder(path: Path) -> Target:
         job_json=job_json,
         manifest=_manifest(home / "manifest.sha256"),
         pack=pack,
-        attached=attached,
         inputs=_inputs(attached),
     )
 
@@ -310,7 +308,6 @@ def _pdf(path: Path, records: Path | None) -> Target:
         ),
         whole=len(found) > 1,
         pack=path,
-        attached=attached,
         inputs=_inputs(attached),
     )
 
@@ -323,9 +320,9 @@ def _first_page(by_mark: Mapping[str, tuple[str, ...]], name: str) -> tuple[int,
 
 def _inputs(attached: Mapping[str, bytes]) -> dict[str, bytes]:
     """The job file and its tables among the files a pack carries."""
-    names = [name for name in attached if name.lower().endswith(".toml")]
+    names = [name for name in attached if name.endswith(_JOB)]
     names.sort(key=lambda name: not _is_job(attached[name]))
-    tables = [name for name in attached if name.lower().endswith((".csv", ".xlsx"))]
+    tables = [name for name in attached if name.endswith(_TABLES)]
     return {name: attached[name] for name in (*names, *tables)}
 
 

@@ -290,7 +290,8 @@ def _plain(part: Part, value: Value) -> Value:
 
 def _sum(part: Part, values: list[Value]) -> Value:
     sizes = [-value.size if part.op == "sub" and place else value.size for place, value in enumerate(values)]
-    slack = sum(value.slack for value in values) + len(values) * max(abs(value.near) for value in values) * _ROUNDING
+    most = max(abs(value.near) for value in values)
+    slack = sum(value.slack for value in values) + len(values) * most * _ROUNDING
     return Value(sum(sizes[1:], sizes[0]), slack, *_alike(part, values))
 
 

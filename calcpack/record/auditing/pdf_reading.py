@@ -4,8 +4,9 @@ Whoever sends a PDF decides what its streams grow into. So reading it is left to
 memory and time by the size of the file; where that child ends, so does nothing else. Nothing of a PDF is run.
 
 ``python -m calcpack.record.auditing.pdf_reading`` answers, until its input ends, questions of a line of JSON
-and the PDF after it: ``{"ask": "texts" | "attached", "size": bytes, "part": 0, "of": 1}``, where texts may be
-those of one of several equal parts of the pages. The answer is a line of JSON,
+and the PDF after it: ``{"ask": "texts", "size": bytes, "part": 0, "of": 1}``, where texts may be those of one
+of several equal parts of the pages; or ``{"ask": "attached", "size": bytes, "endings": [""]}``, where the
+files are those whose names end in one of several ways. The answer is a line of JSON,
 ``{"names": [...], "sizes": [...]}`` with what is named after it, or ``{"fault": words}``.
 """
 
@@ -14,7 +15,7 @@ from __future__ import annotations
 import json
 import re
 import sys
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from typing import Any, BinaryIO
 
 import pypdfium2  # type: ignore[import-untyped]
@@ -53,8 +54,8 @@ def _see_whole(content: bytes) -> None:
         raise Refused(f"{UNREADABLE}: it is cut off or damaged")
 
 
-def attached_files(content: bytes) -> list[tuple[str, bytes]]:
-    """The files that a PDF carries inside, with their names.
+def attached_files(content: bytes, endings: Sequence[str] = ("",)) -> list[tuple[str, bytes]]:
+    """The files that a PDF carries inside and whose names end so, with their names.
 
     Raises
     ------
@@ -77,11 +78,13 @@ def attached_files(content: bytes) -> list[tuple[str, bytes]]:
         found, room = [], MEMORY // 4 + MEMORY_EACH * len(content)
         for number in range(count):
             attachment = document.get_attachment(number)
+            if not (name := attachment.get_name()).endswith(tuple(endings)):
+                continue
             data = bytes(attachment.get_data())
             room -= len(data)
             if room < 0:
                 raise Refused(TOO_DEAR)
-            found.append((attachment.get_name(), data))
+            found.append((name, data))
         return found
     finally:
         document.close()
@@ -146,7 +149,7 @@ def answer(asked: Mapping[str, Any], content: bytes) -> tuple[dict[str, object],
             parts = [text.encode("utf-8", "replace") for text in texts]
             names = [""] * len(parts)
         else:
-            attached = attached_files(content)
+            attached = attached_files(content, asked["endings"])
             names, parts = [name for name, _ in attached], [data for _, data in attached]
     except Refused as fault:
         return {"fault": str(fault)}, ()

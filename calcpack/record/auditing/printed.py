@@ -126,9 +126,7 @@ def rounding_fault(value: float, unit: Unit, text: str) -> str:
     """
     try:
         said = read_printed(text)
-        if said.unit.dimension == unit.dimension and rounds_to(
-            value * unit.near, said.near, said.near_step
-        ):
+        if said.unit.dimension == unit.dimension and rounds_to(value * unit.near, said.near, said.near_step):
             return ""
         exact = twelve_digits(value) * unit.size / said.unit.size
     except ValueError as error:

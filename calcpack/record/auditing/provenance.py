@@ -13,6 +13,7 @@ from typing import Any
 import calcpack
 from calcpack.job.house import house_folder
 from calcpack.record.additions import grown_from
+from calcpack.record.auditing.confined import READING
 from calcpack.record.auditing.files import Target, is_file, leads_out, read_file, stays_below
 from calcpack.record.auditing.findings import Finding, Verdict, good, unchecked, wrong
 from calcpack.record.auditing.given import Notebook
@@ -181,7 +182,9 @@ def audit_manifest(target: Target) -> Iterator[Finding]:
     for sheet in target.sheets:
         if only is None and f"sheets/{sheet.record_name}" not in target.manifest:
             yield wrong("pack", f"sheets/{sheet.record_name}", "the manifest does not name it")
-    for name, data in target.attached.items():
+    pack = target.pack
+    attached = READING.attached(read_file(pack), pack.name) if pack is not None else {}
+    for name, data in attached.items():
         path = target.folder / "sheets" / name
         if "/" in name or not stays_below(name) or not is_file(path):
             continue
