@@ -3,17 +3,25 @@
 from __future__ import annotations
 
 import json
+import random
 import subprocess
 import sys
 import time
 import tracemalloc
+from fractions import Fraction
 
 import pytest
 
 from calcpack.job.errors import CalcpackError
 from calcpack.record.auditing.formulas import ARGUMENTS, Budget, evaluate, measured, read_formula
 from calcpack.record.auditing.lines import work_lines
-from calcpack.record.auditing.printed import read_printed, rounding_fault
+from calcpack.record.auditing.printed import (
+    read_printed,
+    rounded_to,
+    rounding_fault,
+    rounds_to,
+    twelve_digits,
+)
 from calcpack.record.auditing.reading import read_json, read_record
 from calcpack.record.auditing.units import printed_unit, unit
 
@@ -217,6 +225,21 @@ def test_units_are_exact_where_they_are_by_definition():
     for wrong in ("", "kN**m", "kN/", "*m", "m^", "kN m", "1/1", "q", "x" * 50):
         with pytest.raises(ValueError, match="there is no unit"):
             unit(wrong)
+
+
+def test_sixteen_digits_settle_only_what_exact_rounding_says_too():
+    """Decimals about the halves of a last digit, where the two could part; elsewhere they would agree anyway."""
+    chance, settled = random.Random(31), 0
+    for _ in range(4000):
+        step = Fraction(10) ** chance.randint(-6, 6)
+        half = step * (2 * chance.randint(0, 10 ** chance.randint(1, 6)) + 1) / 2
+        value = float(half * (1 + Fraction(chance.choice([-1, 0, 1]), 10 ** chance.randint(5, 17))))
+        exact = rounded_to(twelve_digits(value), step)
+        for number in (exact - step, exact, exact + step):
+            sure = rounds_to(value, float(number), float(step))
+            assert sure in (None, number == exact), (value, number, step)
+            settled += sure is not None
+    assert 6000 < settled < 12000  # neither everything nor nothing
 
 
 def test_measured_takes_a_number_in_its_unit():

@@ -98,7 +98,7 @@ class PdfReading:
 
 
 def whole_pdf(content: bytes, name: str) -> tuple[dict[str, bytes], tuple[str, ...]]:
-    """The files that a PDF carries and the visible text of its pages; a large one is read by several children.
+    """The files that a PDF carries and the visible text of its pages, a large one read by several children.
 
     Raises
     ------
