@@ -211,7 +211,9 @@ def audit_target(
     follow("reading the files", 0, 1)
     with ThreadPoolExecutor(1) as aside, _Crew(processes if only is None else 1) as crew:
         crew.expect(len(records_in(path)))
-        target = find_target(path, records=records, job=job)
+        target = find_target(
+            path, records=records, job=job, told=functools.partial(follow, "reading the pages")
+        )
         if only is not None:
             target = replace(target, sheets=(choose_sheet(target, only),), whole=False)
         manifest = aside.submit(lambda: tuple(audit_manifest(target)))

@@ -128,12 +128,16 @@ def _progress(console: Console) -> Iterator[Follow]:
         yield follow
 
 
-_OFTEN = 50  # sheets between two lines of plain progress
+_MANY = 50  # sheets or pages of which plain progress is worth a line
+_LINES = 4  # of a stage, after the first
 
 
 def _plain_progress(console: Console) -> Follow:
+    said: dict[str, int] = {}
+
     def follow(stage: str, done: int, of: int) -> None:
-        if of > _OFTEN and (done % _OFTEN == 0 or done == of):
+        if of > _MANY and said.get(stage, -1) < (reached := done * _LINES // of):
+            said[stage] = reached
             console.print(f"{stage}: {done} of {of}", markup=False, highlight=False)
 
     return follow

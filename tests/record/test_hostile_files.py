@@ -466,6 +466,12 @@ def test_many_pages_are_read_in_parts(loft, monkeypatch):
     monkeypatch.setattr(confined, "_LARGE", 0)
     for count in (1, 2, 5):
         monkeypatch.setattr(os, "sched_getaffinity", lambda _, count=count: set(range(count)))
-        assert confined.whole_pdf(content, "pack.pdf")[1] == whole
+        told = []
+        _, texts = confined.whole_pdf(
+            content, "pack.pdf", lambda done, of, told=told: told.append((done, of))
+        )
+        assert texts == whole
+        assert [done for done, _ in told] == sorted(done for done, _ in told)
+        assert told[-1] == (len(whole), len(whole))
     with pytest.raises(CalcpackError, match=r"x\.pdf: it is no readable PDF"):
         confined.whole_pdf(b"%PDF-1.7 nothing", "x.pdf")

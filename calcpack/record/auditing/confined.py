@@ -9,7 +9,7 @@ import os
 import subprocess
 import sys
 import threading
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from concurrent.futures import ThreadPoolExecutor
 from typing import IO
 
@@ -18,6 +18,7 @@ from calcpack.processes import processors
 
 TOO_DEAR = "it takes more time or memory to read than any pack of its size"
 _LARGE, _MOST_CHILDREN = 4_000_000, 8  # bytes; children at once
+Told = Callable[[int, int], None]  # pages read, pages in all
 _MODULE = "calcpack.record.auditing.pdf_reading"
 
 
@@ -29,15 +30,20 @@ class PdfReading:
         self._owner = 0
         self._one_at_a_time = threading.Lock()
 
-    def texts(self, content: bytes, name: str, part: int = 0, of: int = 1) -> tuple[str, ...]:
+    def texts(
+        self, content: bytes, name: str, part: int = 0, of: int = 1, told: Told = lambda _done, _all: None
+    ) -> tuple[str, ...]:
         """The visible text of a PDF, page by page, or of one of several equal parts of its pages.
+
+        What is told now and then is how many pages are read, and how many the whole PDF has.
 
         Raises
         ------
         CalcpackError
             It is no readable PDF, or would cost more than any pack of its size.
         """
-        return tuple(text.decode("utf-8") for _, text in self._ask("texts", content, name, part=part, of=of))
+        question = {"ask": "texts", "part": part, "of": of}
+        return tuple(text.decode("utf-8") for _, text in self._ask(question, content, name, told))
 
     def attached(self, content: bytes, name: str, endings: Sequence[str] = ("",)) -> dict[str, bytes]:
         """The files that a PDF carries inside, by name; only those whose names end so.
@@ -47,20 +53,25 @@ class PdfReading:
         CalcpackError
             It is no readable PDF, is encrypted, or would cost more than any pack of its size.
         """
-        return dict(self._ask("attached", content, name, endings=endings))
+        question = {"ask": "attached", "endings": endings}
+        return dict(self._ask(question, content, name, lambda _done, _all: None))
 
-    def _ask(self, ask: str, content: bytes, name: str, **more: object) -> list[tuple[str, bytes]]:
-        question = {"ask": ask, "size": len(content), **more}
+    def _ask(
+        self, question: Mapping[str, object], content: bytes, name: str, told: Told
+    ) -> list[tuple[str, bytes]]:
         with self._one_at_a_time:
-            return self._answered(question, content, name)
+            return self._answered({**question, "size": len(content)}, content, name, told)
 
-    def _answered(self, question: Mapping[str, object], content: bytes, name: str) -> list[tuple[str, bytes]]:
+    def _answered(
+        self, question: Mapping[str, object], content: bytes, name: str, told: Told
+    ) -> list[tuple[str, bytes]]:
         questions, answers = self._pipes()
         try:
             questions.write(json.dumps(question).encode() + b"\n")
             questions.write(content)
             questions.flush()
-            head = json.loads(answers.readline())
+            while "done" in (head := json.loads(answers.readline())):
+                told(head["done"], head["pages"])
             if "fault" not in head:
                 return [
                     (each, answers.read(size))
@@ -97,8 +108,18 @@ class PdfReading:
                     pipe.close()
 
 
-def whole_pdf(content: bytes, name: str) -> tuple[dict[str, bytes], tuple[str, ...]]:
+def whole_pdf(
+    content: bytes, name: str, told: Told = lambda _done, _all: None
+) -> tuple[dict[str, bytes], tuple[str, ...]]:
     """The files that a PDF carries and the visible text of its pages, a large one read by several children.
+
+    Parameters
+    ----------
+    content : bytes
+    name : str
+        For messages.
+    told : callable
+        Told now and then how many pages are read, of how many.
 
     Raises
     ------
@@ -107,18 +128,39 @@ def whole_pdf(content: bytes, name: str) -> tuple[dict[str, bytes], tuple[str, .
     """
     of = processors(_MOST_CHILDREN)
     if of == 1 or len(content) < _LARGE:
-        return READING.attached(content, name), READING.texts(content, name)
+        return READING.attached(content, name), READING.texts(content, name, told=told)
+    together = _Together(told)
     children = [PdfReading() for _ in range(of)]
     try:
         with ThreadPoolExecutor(of) as threads:
             asked = [
-                threads.submit(child.texts, content, name, part, of) for part, child in enumerate(children)
+                threads.submit(child.texts, content, name, part, of, together.of(part))
+                for part, child in enumerate(children)
             ]
             attached = READING.attached(content, name)
             return attached, tuple(text for each in asked for text in each.result())
     finally:
         for child in children:
             child.close()
+
+
+class _Together:
+    """What several children tell, as one tells it."""
+
+    def __init__(self, told: Told) -> None:
+        self._told = told
+        self._done: dict[int, int] = {}
+        self._one_at_a_time = threading.Lock()
+
+    def of(self, part: int) -> Told:
+        """Who listens to the child that reads a part."""
+
+        def told(done: int, pages: int) -> None:
+            with self._one_at_a_time:
+                self._done[part] = done
+                self._told(sum(self._done.values()), pages)
+
+        return told
 
 
 READING = PdfReading()

@@ -9,7 +9,7 @@ from pathlib import Path, PurePosixPath
 from typing import Any
 
 from calcpack.job.errors import CalcpackError
-from calcpack.record.auditing.confined import READING, whole_pdf
+from calcpack.record.auditing.confined import READING, Told, whole_pdf
 from calcpack.record.auditing.pages import sheet_pages
 from calcpack.record.auditing.reading import read_json
 
@@ -150,7 +150,13 @@ def _own(path: Path, folder: Path) -> Path | None:
     return path
 
 
-def find_target(path: Path, *, records: Path | None = None, job: Path | None = None) -> Target:
+def find_target(
+    path: Path,
+    *,
+    records: Path | None = None,
+    job: Path | None = None,
+    told: Told = lambda _done, _all: None,
+) -> Target:
     """Find what is to be audited.
 
     Parameters
@@ -161,6 +167,8 @@ def find_target(path: Path, *, records: Path | None = None, job: Path | None = N
         Folder with the records, for a PDF that carries none.
     job : Path
         The job file, where it does not come with the target.
+    told : callable
+        Told now and then how many pages of a PDF are read, of how many.
 
     Raises
     ------
@@ -174,7 +182,7 @@ def find_target(path: Path, *, records: Path | None = None, job: Path | None = N
             f"there is no '{path}'", remedy="name an output folder, a record, a sheet's PDF or a pack"
         )
     elif path.suffix.lower() == ".pdf":
-        target = _pdf(path, records)
+        target = _pdf(path, records, told)
     elif path.suffix.lower() == ".json":
         target = _record(path)
     else:
@@ -278,9 +286,9 @@ def _manifest(path: Path) -> dict[str, str] | None:
     return {name: digest for digest, name in pairs}
 
 
-def _pdf(path: Path, records: Path | None) -> Target:
+def _pdf(path: Path, records: Path | None, told: Told) -> Target:
     content = read_file(path)
-    attached, pages = whole_pdf(content, path.name)
+    attached, pages = whole_pdf(content, path.name, told)
     found = {name: data for name, data in attached.items() if name.endswith(".json")}
     if records is not None:
         if not records.is_dir():

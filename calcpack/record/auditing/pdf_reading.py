@@ -6,7 +6,8 @@ memory and time by the size of the file; where that child ends, so does nothing 
 ``python -m calcpack.record.auditing.pdf_reading`` answers, until its input ends, questions of a line of JSON
 and the PDF after it: ``{"ask": "texts", "size": bytes, "part": 0, "of": 1}``, where texts may be those of one
 of several equal parts of the pages; or ``{"ask": "attached", "size": bytes, "endings": [""]}``, where the
-files are those whose names end in one of several ways. The answer is a line of JSON,
+files are those whose names end in one of several ways. Before the answer there may be lines of
+``{"done": pages, "pages": all of them}``. The answer is a line of JSON,
 ``{"names": [...], "sizes": [...]}`` with what is named after it, or ``{"fault": words}``.
 """
 
@@ -15,7 +16,7 @@ from __future__ import annotations
 import json
 import re
 import sys
-from collections.abc import Iterable, Mapping, Sequence
+from collections.abc import Callable, Iterable, Mapping, Sequence
 from typing import Any, BinaryIO
 
 import pypdfium2  # type: ignore[import-untyped]
@@ -30,6 +31,7 @@ UNREADABLE = "it is no readable PDF"
 # A PDF ends with the place of its table of objects; without it a reader would have to guess.
 _END = re.compile(rb"startxref\s+([0-9]{1,12})\s+%%EOF\s*\Z")
 _TABLE = re.compile(rb"\s*(?:xref\b|[0-9]+ [0-9]+ obj\b)")
+_OFTEN = 50  # pages between two reports
 _BROKEN = (
     pypdfium2.PdfiumError,
     ArithmeticError,
@@ -90,8 +92,17 @@ def attached_files(content: bytes, endings: Sequence[str] = ("",)) -> list[tuple
         document.close()
 
 
-def page_texts(content: bytes, part: int = 0, of: int = 1) -> list[str]:
+def page_texts(
+    content: bytes, part: int = 0, of: int = 1, tell: Callable[[int, int], None] = lambda _done, _all: None
+) -> list[str]:
     """The visible text of a PDF, page by page, or of one of several equal parts of it.
+
+    Parameters
+    ----------
+    content : bytes
+    part, of : int
+    tell : callable
+        Told now and then how many pages are read, and how many the whole PDF has.
 
     Raises
     ------
@@ -104,13 +115,17 @@ def page_texts(content: bytes, part: int = 0, of: int = 1) -> list[str]:
         count = len(document)
         if count > MOST_PAGES:
             raise Refused(f"it has more than {MOST_PAGES} pages")
-        texts = []
-        for number in range(count * part // of, count * (part + 1) // of):
+        texts: list[str] = []
+        first, end = count * part // of, count * (part + 1) // of
+        for number in range(first, end):
+            if len(texts) % _OFTEN == 0:
+                tell(len(texts), count)
             page = document[number]
             text_page = page.get_textpage()
             texts.append(text_page.get_text_range().replace("\r\n", "\n"))
             text_page.close()
             page.close()
+        tell(len(texts), count)
         return texts
     finally:
         document.close()
@@ -141,11 +156,13 @@ def _mapped() -> int:
         return 1_000_000_000
 
 
-def answer(asked: Mapping[str, Any], content: bytes) -> tuple[dict[str, object], Iterable[bytes]]:
+def answer(
+    asked: Mapping[str, Any], content: bytes, tell: Callable[[int, int], None]
+) -> tuple[dict[str, object], Iterable[bytes]]:
     """The answer to a question: its line, and what comes after it."""
     try:
         if asked["ask"] == "texts":
-            texts = page_texts(content, asked["part"], asked["of"])
+            texts = page_texts(content, asked["part"], asked["of"], tell)
             parts = [text.encode("utf-8", "replace") for text in texts]
             names = [""] * len(parts)
         else:
@@ -162,12 +179,20 @@ def answer(asked: Mapping[str, Any], content: bytes) -> tuple[dict[str, object],
 
 def serve(questions: BinaryIO, answers: BinaryIO) -> None:
     """Answer questions until there are no more."""
+
+    def say(line: Mapping[str, object]) -> None:
+        answers.write(json.dumps(line).encode() + b"\n")
+
+    def tell(done: int, pages: int) -> None:
+        say({"done": done, "pages": pages})
+        answers.flush()
+
     while line := questions.readline():
         asked = json.loads(line)
         content = questions.read(asked["size"])
         _confine(len(content))
-        head, parts = answer(asked, content)
-        answers.write(json.dumps(head).encode() + b"\n")
+        head, parts = answer(asked, content, tell)
+        say(head)
         for part in parts:
             answers.write(part)
         answers.flush()
