@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import os
+import time
 from pathlib import Path
 
 import pytest
@@ -14,6 +15,19 @@ settings.register_profile("landing", deadline=None, derandomize=True)
 settings.load_profile("landing" if os.environ.get("CI") else "calm")
 
 ROOT = Path(__file__).parent.parent
+_SUM = 0.023  # seconds of processor that the sum below took where the bounds on time were set
+
+
+@pytest.fixture(scope="session")
+def allowed():
+    """A bound in seconds of processor, for a machine as slow as this one is at the moment."""
+
+    def bound(seconds: float) -> float:
+        begun = time.process_time()
+        sum(each * each % 7 for each in range(300_000))
+        return seconds * max(1.0, (time.process_time() - begun) / _SUM)
+
+    return bound
 
 
 @pytest.fixture(scope="session")

@@ -7,6 +7,7 @@ import hashlib
 import subprocess
 import sys
 import tomllib
+from collections.abc import Callable
 from pathlib import Path
 
 import pytest
@@ -199,18 +200,20 @@ def test_points_in_feet_and_their_names(tmp_path: Path) -> None:
     assert column.point_name == "(14'-6\", 3 ft)"
 
 
-def test_reading_is_quick_and_needs_neither_pint_nor_openpyxl(tmp_path: Path) -> None:
+def test_reading_is_quick_and_needs_neither_pint_nor_openpyxl(
+    tmp_path: Path, allowed: Callable[[float], float]
+) -> None:
     code = (
-        "import sys, time; begin = time.perf_counter(); from calcpack.job import read_job; "
+        "import sys, time; begin = time.process_time(); from calcpack.job import read_job; "
         "read_job(sys.argv[1]);"
-        "print(time.perf_counter() - begin, sorted({'pint', 'openpyxl'} & set(sys.modules)))"
+        "print(time.process_time() - begin, sorted({'pint', 'openpyxl'} & set(sys.modules)))"
     )
     command = [sys.executable, "-c", code, str(write(tmp_path))]
     seconds, _, loaded = subprocess.run(command, capture_output=True, text=True, check=True).stdout.partition(
         " "
     )
     assert loaded == "[]\n"
-    assert float(seconds) < 3.0  # 0.3 s on an idle machine
+    assert float(seconds) < allowed(1.5)  # 0.3 s on an idle machine
 
 
 KEYS = st.from_regex(r"[A-Za-z0-9_-]{1,4}", fullmatch=True) | st.text("ab .\"\\'é", min_size=1, max_size=4)

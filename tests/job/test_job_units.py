@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 import time
+from collections.abc import Callable
 from fractions import Fraction
 
 import pytest
@@ -160,15 +161,15 @@ HOSTILE = [
 
 
 @pytest.mark.parametrize("text", HOSTILE, ids=range(len(HOSTILE)))
-def test_hostile_text_is_refused_at_once(text: str) -> None:
+def test_hostile_text_is_refused_at_once(text: str, allowed: Callable[[float], float]) -> None:
     factor("yard")  # pint is loaded, which is not what is timed
-    begin = time.perf_counter()
+    begin = time.process_time()
     for kind in KINDS:
         with pytest.raises(CalcpackError):
             parse_quantity(text, kind)
     with pytest.raises(CalcpackError):
         factor(text)
-    assert time.perf_counter() - begin < 0.5
+    assert time.process_time() - begin < allowed(0.5)
 
 
 @settings(deadline=None)

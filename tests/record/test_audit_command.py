@@ -285,10 +285,10 @@ def many(loft, tmp_path):
 
 
 @pytest.mark.slow
-def test_two_hundred_sheets_are_audited_in_twenty_seconds(many):
+def test_two_hundred_sheets_are_audited_in_twenty_seconds(many, allowed):
     began = time.process_time()  # of one process alone, whatever else the machine does
     audit = audit_target(many, processes=1)
-    assert time.process_time() - began < 20.0
+    assert time.process_time() - began < allowed(20.0)
     assert len(audit.sheets) == 200
     assert audit.passes
 

@@ -167,7 +167,7 @@ HOSTILE = {
 
 
 @pytest.mark.parametrize("kind", HOSTILE)
-def test_a_hostile_record_ends_in_a_clear_error_soon(kind):
+def test_a_hostile_record_ends_in_a_clear_error_soon(kind, allowed):
     content = HOSTILE[kind]()
     tracemalloc.start()
     began = time.process_time()
@@ -176,16 +176,16 @@ def test_a_hostile_record_ends_in_a_clear_error_soon(kind):
     spent, (_, peak) = time.process_time() - began, tracemalloc.get_traced_memory()
     tracemalloc.stop()
     assert "B1.json" in str(error.value)
-    assert spent < 8.0  # tracing makes it some four times slower than the two seconds it may take
+    assert spent < allowed(8.0)  # tracing makes it some four times slower than the two seconds it may take
     assert peak < 200e6
 
 
-def test_a_record_that_costs_as_much_as_may_be_is_done_in_two_seconds():
+def test_a_record_that_costs_as_much_as_may_be_is_done_in_two_seconds(allowed):
     lines = [line(f"{i}.01", op("sum", *[op("atan", num("3"))] * 98)) for i in range(1, 150)]
     content = record_of(lines)
     began = time.process_time()
     worked = work_lines(read_record(content, "B1.json"))
-    assert time.process_time() - began < 2.0
+    assert time.process_time() - began < allowed(2.0)
     assert len(worked) == 149
 
 

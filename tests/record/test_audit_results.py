@@ -349,7 +349,7 @@ def test_results_that_no_beam_has_are_refused(spans, loads, case):
         audit_results(crowded(spans, loads, case), None, ())
 
 
-def test_results_as_crowded_as_may_be_are_done_in_two_seconds():
+def test_results_as_crowded_as_may_be_are_done_in_two_seconds(allowed):
     began = time.process_time()
     audit_results(crowded(55, 950), None, ())
-    assert time.process_time() - began < 2.0
+    assert time.process_time() - began < allowed(2.0)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import time
+from collections.abc import Callable
 from decimal import Decimal
 from random import Random
 from typing import Any
@@ -188,11 +189,11 @@ HOSTILE: list[Any] = [
 
 
 @pytest.mark.parametrize("tree", HOSTILE, ids=range(len(HOSTILE)))
-def test_hostile_trees_are_refused_at_once(tree: Any) -> None:
-    begun = time.perf_counter()
+def test_hostile_trees_are_refused_at_once(tree: Any, allowed: Callable[[float], float]) -> None:
+    begun = time.process_time()
     with pytest.raises(CalcpackError):
         from_json(tree, {"q": "2.01"})
-    assert time.perf_counter() - begun < 0.2
+    assert time.process_time() - begun < allowed(0.2)
 
 
 def test_a_tree_as_large_as_may_be() -> None:
