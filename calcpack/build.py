@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import itertools
 import json
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Any
@@ -33,6 +33,7 @@ from calcpack.notebook.fill import FilledNotebook, fill, sheet_metadata
 from calcpack.notebook.lightest import choose_sections
 from calcpack.notebook.parameters import PROGRAM, BeamInput, beam_input, plan_of, to_text
 from calcpack.notebook.templates import Template, find_template
+from calcpack.progress import Follow
 from calcpack.record.comments import comments_section
 from calcpack.record.editions import Edition
 from calcpack.record.fields import ready_to_sign
@@ -43,7 +44,6 @@ APPENDIX = "Appendix"
 APPENDIX_TEMPLATE = "derivations"
 ALL_FORMATS = frozenset({"pdf", "html", "notebook"})
 XLSX = "application/vnd.openxmlformats-officedocument.spreadsheetml.sheet"
-Follow = Callable[[str, int, int], None]  # stage, steps done, steps in all
 
 
 @dataclass(frozen=True)

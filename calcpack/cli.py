@@ -108,7 +108,8 @@ def build(
 ) -> None:
     """Make the calculation sheets of a job and bind them into a pack."""
     from calcpack.build import build_job
-    from calcpack.overview import print_summary, print_unmet, progress
+    from calcpack.overview import print_summary, print_unmet
+    from calcpack.progress import progress
     from calcpack.record.editions import read_edition
 
     old = read_edition(since, record) if since else None
@@ -403,7 +404,7 @@ def verification(
     paper: Annotated[Paper, typer.Option(help="Size of the manual's pages.")] = Paper.A4,
 ) -> None:
     """Compare the program with published values, and make the verification manual."""
-    from calcpack.overview import progress
+    from calcpack.progress import progress
     from calcpack.verification.command import Asked, print_failing, run_verification
 
     with progress(Console(stderr=True)) as follow:

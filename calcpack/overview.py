@@ -3,12 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
-from contextlib import contextmanager
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 from rich.console import Console
-from rich.progress import BarColumn, MofNCompleteColumn, Progress, TaskID, TextColumn, TimeElapsedColumn
 from rich.table import Table
 from rich.text import Text
 
@@ -23,7 +21,7 @@ from calcpack.notebook.templates import Parameter, find_template, template_names
 from calcpack.sheet import display_unit, show, shown_number
 
 if TYPE_CHECKING:
-    from calcpack.build import BuiltJob, Follow
+    from calcpack.build import BuiltJob
 
 
 def _table(title: str, columns: Sequence[tuple[str, str]], rows: Sequence[Sequence[str]]) -> Table:
@@ -141,34 +139,6 @@ def write_plan(frame: Frame, path: Path) -> None:
     """Draw the whole plan with every beam labelled into an SVG file."""
     figure = key_plan(plan_of(frame), None, frame.job.job.units, width_mm=180)
     write_file(path, figure.svg.encode("utf-8"))
-
-
-@contextmanager
-def progress(console: Console) -> Iterator[Follow]:
-    """A progress bar that a build reports its stages and steps to."""
-    bar = Progress(
-        TextColumn("{task.description}"),
-        BarColumn(),
-        MofNCompleteColumn(),
-        TimeElapsedColumn(),
-        console=console,
-        transient=True,
-        disable=not console.is_terminal,
-    )
-    tasks: dict[str, TaskID] = {}
-    try:
-
-        def follow(stage: str, done: int, of: int) -> None:
-            if not tasks:
-                bar.start()
-            if stage not in tasks:
-                tasks[stage] = bar.add_task(stage, total=of)
-            bar.update(tasks[stage], completed=done, total=of)
-
-        yield follow
-    finally:
-        if tasks:
-            bar.stop()
 
 
 def print_summary(built: BuiltJob, console: Console) -> None:

@@ -13,7 +13,8 @@ from multiprocessing.connection import wait
 
 def processors(most: int) -> int:
     """How many processors this process may use, up to a number."""
-    return min(most, len(os.sched_getaffinity(0)))
+    ours = len(os.sched_getaffinity(0)) if hasattr(os, "sched_getaffinity") else os.cpu_count() or 1
+    return min(most, ours)
 
 
 def process_pool(workers: int, begin: Callable[[], None]) -> ProcessPoolExecutor:

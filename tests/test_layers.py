@@ -12,6 +12,7 @@ LAYERS = [
     "job",
     "files",
     "processes",
+    "progress",
     "statics",
     "actions",
     "framing",

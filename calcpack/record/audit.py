@@ -6,11 +6,11 @@ import functools
 import gc
 import pickle
 import tempfile
-from collections.abc import Callable, Iterator, Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from concurrent.futures import ProcessPoolExecutor, ThreadPoolExecutor
 from dataclasses import dataclass, replace
 from pathlib import Path
-from typing import Any, Self
+from typing import TYPE_CHECKING, Any, Self
 
 import calcpack
 from calcpack.job.errors import CalcpackError
@@ -32,7 +32,9 @@ from calcpack.record.auditing.sources import audit_sources
 from calcpack.record.auditing.tables import audit_tables, shown_rows
 from calcpack.record.auditing.together import Digest, audit_together, digest_of
 
-Follow = Callable[[str, int, int], None]  # stage, steps done, steps in all
+if TYPE_CHECKING:
+    from calcpack.progress import Follow
+
 _UNLIKE_A_SHEET = (
     ArithmeticError,
     AttributeError,

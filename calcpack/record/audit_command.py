@@ -3,17 +3,15 @@
 from __future__ import annotations
 
 import json
-from collections.abc import Iterator
-from contextlib import contextmanager
 from dataclasses import dataclass
 from pathlib import Path
 
 from rich.console import Console
-from rich.progress import BarColumn, MofNCompleteColumn, Progress, TaskID, TextColumn, TimeElapsedColumn
 
 from calcpack.files import write_file
 from calcpack.job.errors import CalcpackError
-from calcpack.record.audit import Follow, audit_target, choose_sheet, open_sheet
+from calcpack.progress import progress
+from calcpack.record.audit import audit_target, choose_sheet, open_sheet
 from calcpack.record.audit_screen import print_audit, print_branch, print_influence
 from calcpack.record.audit_sensitivity import MOST_ROWS, sensitivity
 from calcpack.record.audit_trace import job_data, trace, who_uses
@@ -37,13 +35,13 @@ class Asked:
     svg: Path | None = None
 
 
-def run_audit(asked: Asked, console: Console, progress: Console) -> bool:
+def run_audit(asked: Asked, console: Console, aside: Console) -> bool:
     """Do what is asked and say whether nothing is wrong.
 
     Parameters
     ----------
     asked : Asked
-    console, progress : rich Console
+    console, aside : rich Console
         For what is found, and for how far it is.
 
     Raises
@@ -59,7 +57,7 @@ def run_audit(asked: Asked, console: Console, progress: Console) -> bool:
     if asked.sensitivity is not None:
         _influences(asked, asked.sensitivity, console)
         return True
-    with _progress(progress) as follow:
+    with progress(aside, plain=True) as follow:
         audit = audit_target(
             asked.target, records=asked.records, job=asked.job, only=asked.sheet, follow=follow
         )
@@ -101,43 +99,3 @@ def _influences(asked: Asked, mark: str, console: Console) -> None:
 def _per(of: str, by: str) -> str:
     """A derivative's unit in words; a plain number is not named."""
     return ("" if of == "1" else of) + ("" if by == "1" else f" per {by}")
-
-
-@contextmanager
-def _progress(console: Console) -> Iterator[Follow]:
-    """Progress on a terminal; elsewhere a plain line now and then where there are many sheets."""
-    if not console.is_terminal:
-        yield _plain_progress(console)
-        return
-    bar = Progress(
-        TextColumn("{task.description}"),
-        BarColumn(),
-        MofNCompleteColumn(),
-        TimeElapsedColumn(),
-        console=console,
-        transient=True,
-    )
-    tasks: dict[str, TaskID] = {}
-
-    def follow(stage: str, done: int, of: int) -> None:
-        if stage not in tasks:
-            tasks[stage] = bar.add_task(stage, total=of)
-        bar.update(tasks[stage], completed=done, total=of)
-
-    with bar:
-        yield follow
-
-
-_MANY = 50  # sheets or pages of which plain progress is worth a line
-_LINES = 4  # of a stage, after the first
-
-
-def _plain_progress(console: Console) -> Follow:
-    said: dict[str, int] = {}
-
-    def follow(stage: str, done: int, of: int) -> None:
-        if of > _MANY and said.get(stage, -1) < (reached := done * _LINES // of):
-            said[stage] = reached
-            console.print(f"{stage}: {done} of {of}", markup=False, highlight=False)
-
-    return follow

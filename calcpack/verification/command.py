@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import json
-from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Literal
@@ -13,10 +12,10 @@ from rich.text import Text
 
 from calcpack.files import write_file
 from calcpack.job.errors import CalcpackError
+from calcpack.progress import Follow
 from calcpack.record.listing import print_table
 from calcpack.verification import shown
 from calcpack.verification.findings import Findings, Summary, verify
-from calcpack.verification.reckon import Follow
 
 HEADS = (
     "topic",
@@ -93,7 +92,7 @@ def summary_row(summary: Summary) -> list[str]:
     ]
 
 
-def _tell(follow: Callable[[str, int, int], None] | None, stage: str, done: int) -> None:
+def _tell(follow: Follow | None, stage: str, done: int) -> None:
     if follow:
         follow(stage, done, 1)
 

@@ -8,10 +8,11 @@ from functools import cached_property
 from pathlib import Path
 from typing import Any
 
+from calcpack.progress import Follow
 from calcpack.verification.comparison import Comparison
 from calcpack.verification.identity import parts, version
 from calcpack.verification.methods import MethodResult, run_all
-from calcpack.verification.reckon import Follow, compare_all
+from calcpack.verification.reckon import compare_all
 from calcpack.verification.tables import Topic, read_topics
 
 

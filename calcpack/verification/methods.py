@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from functools import cache
 from typing import Any
 
+from calcpack.progress import Follow
 from calcpack.statics import BeamLine, Load
 from calcpack.verification.beam_methods import (
     BEAMS,
@@ -21,7 +22,6 @@ from calcpack.verification.beam_methods import (
 )
 from calcpack.verification.fibres import block_and_fibres
 from calcpack.verification.plate import plate
-from calcpack.verification.reckon import Follow
 from calcpack.verification.tables import Method, Topic
 
 

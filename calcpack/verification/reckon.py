@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator, Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 
 from calcpack.job.errors import CalcpackError
+from calcpack.progress import Follow
 from calcpack.verification.comparison import Comparison, Reckoner
 from calcpack.verification.ours import (
     aci318,
@@ -20,7 +21,6 @@ from calcpack.verification.ours import (
 )
 from calcpack.verification.tables import Row, Table, Topic, find_topic
 
-Follow = Callable[[str, int, int], None]
 RECKONERS: Mapping[str, Mapping[str, Reckoner]] = {
     "statics": beams.RECKONERS,
     "equivalent": equivalent.RECKONERS,

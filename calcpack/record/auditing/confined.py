@@ -22,6 +22,10 @@ Told = Callable[[int, int], None]  # pages read, pages in all
 _MODULE = "calcpack.record.auditing.pdf_reading"
 
 
+def untold(_done: int, _all: int) -> None:
+    """Nobody is told."""
+
+
 class PdfReading:
     """A child that reads PDFs, started when it is first asked and again when a PDF has been the end of it."""
 
@@ -31,7 +35,7 @@ class PdfReading:
         self._one_at_a_time = threading.Lock()
 
     def texts(
-        self, content: bytes, name: str, part: int = 0, of: int = 1, told: Told = lambda _done, _all: None
+        self, content: bytes, name: str, part: int = 0, of: int = 1, told: Told = untold
     ) -> tuple[str, ...]:
         """The visible text of a PDF, page by page, or of one of several equal parts of its pages.
 
@@ -46,7 +50,7 @@ class PdfReading:
         return tuple(text.decode("utf-8") for _, text in self._ask(question, content, name, told))
 
     def attached(self, content: bytes, name: str, endings: Sequence[str] = ("",)) -> dict[str, bytes]:
-        """The files that a PDF carries inside, by name; only those whose names end so.
+        """The files that a PDF carries inside, by name; only those whose names end so, in small letters.
 
         Raises
         ------
@@ -54,7 +58,7 @@ class PdfReading:
             It is no readable PDF, is encrypted, or would cost more than any pack of its size.
         """
         question = {"ask": "attached", "endings": endings}
-        return dict(self._ask(question, content, name, lambda _done, _all: None))
+        return dict(self._ask(question, content, name, untold))
 
     def _ask(
         self, question: Mapping[str, object], content: bytes, name: str, told: Told
@@ -108,9 +112,7 @@ class PdfReading:
                     pipe.close()
 
 
-def whole_pdf(
-    content: bytes, name: str, told: Told = lambda _done, _all: None
-) -> tuple[dict[str, bytes], tuple[str, ...]]:
+def whole_pdf(content: bytes, name: str, told: Told = untold) -> tuple[dict[str, bytes], tuple[str, ...]]:
     """The files that a PDF carries and the visible text of its pages, a large one read by several children.
 
     Parameters

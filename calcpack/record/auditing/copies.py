@@ -277,12 +277,9 @@ def _shape(part: Part, places: dict[str, int]) -> tuple[object, ...]:
 
 def _formula_fault(line: WorkedLine, text: str) -> str:
     """Every number in the stored formula stands in the shown one, rounded as it is shown."""
-    terms: list[_Term] | None = None
-    for part, bare in _literals(line.formula, ""):
-        if _is_left_out(part):
-            continue
-        if terms is None:
-            terms = [_Term(match) for match in _TERM.finditer(text)]
+    literals = [(part, bare) for part, bare in _literals(line.formula, "") if not _is_left_out(part)]
+    terms = [_Term(match) for match in _TERM.finditer(text)] if literals else []
+    for part, bare in literals:
         try:
             kept = any(term.stands_for(part, bare) for term in terms)
         except ValueError as error:

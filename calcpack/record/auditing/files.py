@@ -9,13 +9,12 @@ from pathlib import Path, PurePosixPath
 from typing import Any
 
 from calcpack.job.errors import CalcpackError
-from calcpack.record.auditing.confined import READING, Told, whole_pdf
+from calcpack.record.auditing.confined import READING, Told, untold, whole_pdf
 from calcpack.record.auditing.pages import sheet_pages
 from calcpack.record.auditing.reading import read_json
 
 LARGEST_FILE = 400_000_000
-_JOB, _TABLES = (".toml", ".TOML"), (".csv", ".xlsx", ".CSV", ".XLSX")
-_INPUTS = (*_JOB, *_TABLES)
+_JOB, _TABLES = ".toml", (".csv", ".xlsx")
 
 
 @dataclass(frozen=True)
@@ -155,7 +154,7 @@ def find_target(
     *,
     records: Path | None = None,
     job: Path | None = None,
-    told: Told = lambda _done, _all: None,
+    told: Told = untold,
 ) -> Target:
     """Find what is to be audited.
 
@@ -232,7 +231,7 @@ def _folder(path: Path) -> Target:
     order = {str(mark): place for place, mark in enumerate((job_json or {}).get("beams") or ())}
     records.sort(key=lambda each: (order.get(each.stem, len(order)), each.stem))
     pack = _own(home / "pack.pdf", home)
-    attached = READING.attached(read_file(pack), pack.name, _INPUTS) if pack else {}
+    attached = READING.attached(read_file(pack), pack.name, (_JOB, *_TABLES)) if pack else {}
     return Target(
         name=str(path),
         sheets=tuple(_beside(each) for each in records),
@@ -328,9 +327,9 @@ def _first_page(by_mark: Mapping[str, tuple[str, ...]], name: str) -> tuple[int,
 
 def _inputs(attached: Mapping[str, bytes]) -> dict[str, bytes]:
     """The job file and its tables among the files a pack carries."""
-    names = [name for name in attached if name.endswith(_JOB)]
+    names = [name for name in attached if name.lower().endswith(_JOB)]
     names.sort(key=lambda name: not _is_job(attached[name]))
-    tables = [name for name in attached if name.endswith(_TABLES)]
+    tables = [name for name in attached if name.lower().endswith(_TABLES)]
     return {name: attached[name] for name in (*names, *tables)}
 
 

@@ -76,15 +76,7 @@ class Part:
     @property
     def symbols(self) -> dict[str, None]:
         """What it draws on, in order of appearance."""
-        found: dict[str, None] = {}
-        self._gather(found)
-        return found
-
-    def _gather(self, found: dict[str, None]) -> None:
-        if self.op == "symbol":
-            found[self.text] = None
-        for each in self.args:
-            each._gather(found)
+        return {part.text: None for part in self.walk() if part.op == "symbol"}
 
 
 class Budget:

@@ -16,12 +16,12 @@ from __future__ import annotations
 import json
 import re
 import sys
-from collections.abc import Callable, Iterable, Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from typing import Any, BinaryIO
 
 import pypdfium2  # type: ignore[import-untyped]
 
-from calcpack.record.auditing.confined import TOO_DEAR
+from calcpack.record.auditing.confined import TOO_DEAR, Told, untold
 
 MOST_PAGES = 20_000
 MOST_ATTACHED = 5_000
@@ -80,7 +80,7 @@ def attached_files(content: bytes, endings: Sequence[str] = ("",)) -> list[tuple
         found, room = [], MEMORY // 4 + MEMORY_EACH * len(content)
         for number in range(count):
             attachment = document.get_attachment(number)
-            if not (name := attachment.get_name()).endswith(tuple(endings)):
+            if not (name := attachment.get_name()).lower().endswith(tuple(endings)):
                 continue
             data = bytes(attachment.get_data())
             room -= len(data)
@@ -92,9 +92,7 @@ def attached_files(content: bytes, endings: Sequence[str] = ("",)) -> list[tuple
         document.close()
 
 
-def page_texts(
-    content: bytes, part: int = 0, of: int = 1, tell: Callable[[int, int], None] = lambda _done, _all: None
-) -> list[str]:
+def page_texts(content: bytes, part: int = 0, of: int = 1, tell: Told = untold) -> list[str]:
     """The visible text of a PDF, page by page, or of one of several equal parts of it.
 
     Parameters
@@ -156,9 +154,7 @@ def _mapped() -> int:
         return 1_000_000_000
 
 
-def answer(
-    asked: Mapping[str, Any], content: bytes, tell: Callable[[int, int], None]
-) -> tuple[dict[str, object], Iterable[bytes]]:
+def answer(asked: Mapping[str, Any], content: bytes, tell: Told) -> tuple[dict[str, object], Iterable[bytes]]:
     """The answer to a question: its line, and what comes after it."""
     try:
         if asked["ask"] == "texts":
