@@ -150,3 +150,19 @@ def test_the_audit_in_the_readme_is_that_of_the_example(built):
     assert re.search(rf"\nB1 +{bond['no']}  {governing['name']} +{governing['ratio']:.3g}\n", readme)
     assert f"calcpack audit B1.pdf --trace {bond['no']}\n{bond['no']}  " in readme
     assert re.search(rf"\nB1 +{len(sheet['lines'])} ", readme)
+
+
+def test_a_figure_names_final_deflections_as_their_table_does(built):
+    held = 0
+    for files in find_target(built("rope_walk")).sheets:
+        notebook = open_sheet(files).notebook
+        for table in notebook.tables:
+            heads = [column["head"] for column in table["columns"]]
+            if "final" not in heads:
+                continue
+            (spoken,) = (each["alt"] for each in notebook.blocks if "final deflection" in each.get("alt", ""))
+            final, at = heads.index("final"), heads.index("at")
+            for row in table["rows"]:
+                assert f"{row[final]} at {row[at]}".replace("\xa0", " ") in spoken.replace("\xa0", " ")
+                held += 1
+    assert held >= 5

@@ -130,7 +130,10 @@ def origin_of(national: National, key: str) -> str:
 
 
 def _block(sheet: Sheet, strength: Strengths, fck: Line) -> tuple[Line, Line]:
-    words = {"lambda": "depth of the stress block over x", "eta": "stress of the block over f_cd"}
+    words = {
+        "lambda": "depth of the stress block over x",
+        "eta": "stress of the block over the design strength",
+    }
     if strength.fck <= 50e3:
         return (
             sheet.take(
