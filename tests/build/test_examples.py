@@ -166,3 +166,14 @@ def test_a_figure_names_final_deflections_as_their_table_does(built):
                 assert f"{row[final]} at {row[at]}".replace("\xa0", " ") in spoken.replace("\xa0", " ")
                 held += 1
     assert held >= 5
+
+
+@pytest.mark.parametrize("name", EXAMPLES)
+def test_comparisons_of_a_requirement_are_not_joined_as_if_they_were_equal(name, built):
+    count = 0
+    for files in find_target(built(name)).sheets:
+        page = files.screen_bytes().decode("utf-8")
+        for part in page.split('<div class="line require')[1:]:
+            assert 'class="sign"' not in part.partition('class="notes"')[0]
+            count += 1
+    assert count > 50
