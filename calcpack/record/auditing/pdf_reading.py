@@ -26,7 +26,7 @@ from calcpack.record.auditing.confined import TOO_DEAR, Told, untold
 MOST_PAGES = 20_000
 MOST_ATTACHED = 5_000
 MEMORY, MEMORY_EACH = 200_000_000, 6  # bytes: for any PDF, and for each of its bytes
-SECONDS, SECONDS_EACH = 1.5, 0.3e-6  # of one processor; a pack takes a tenth of it
+SECONDS, SECONDS_EACH = 1.5, 1.5e-6  # of one processor; a pack of 35 kB a page takes a fifth of it
 UNREADABLE = "it is no readable PDF"
 # A PDF ends with the place of its table of objects; without it a reader would have to guess.
 _END = re.compile(rb"startxref\s+([0-9]{1,12})\s+%%EOF\s*\Z")
